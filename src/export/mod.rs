@@ -1,0 +1,1 @@
+//! Findings written out: JSON and tables.

@@ -1,0 +1,1 @@
+//! Drawing-free descriptions of pictures, drawn alike on screen and in files.

@@ -1,0 +1,104 @@
+//! All results of a study: per step a value or that step's failure, and the notices.
+
+use crate::estimate::Estimate;
+use crate::fit::{Fit, FitError, FitRequest};
+use crate::notice::{Notice, Severity};
+use crate::potential::curve::ScanCurve;
+use crate::radial::Level;
+use crate::reach::Reach;
+use crate::scan::Layout;
+use crate::settings::Settings;
+use crate::species::Masses;
+use crate::spectroscopy::Constants;
+use crate::units::{EnergyUnit, LengthUnit};
+use std::sync::Arc;
+
+/// A point of the curve, used or not.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Point {
+    /// Row of the scan, counted from 0 in file order.
+    pub row: usize,
+    /// Bond length as read, in the scan's unit.
+    pub r_as_read: f64,
+    /// Bond length in bohr.
+    pub r_bohr: f64,
+    /// Energy in hartree.
+    pub energy_hartree: f64,
+    /// Whether the study uses it.
+    pub used: bool,
+    /// Weight in fits.
+    pub weight: f64,
+    /// Why it is not used.
+    pub why_not: Option<String>,
+}
+
+/// Where the curve came from.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Source {
+    /// File name without folder.
+    pub file_name: String,
+    /// SHA-256 of the bytes read.
+    pub sha256: String,
+    /// Layout of the file.
+    pub layout: Layout,
+    /// Full header name of the energy column.
+    pub curve: String,
+    /// The same without the unit, for display.
+    pub curve_label: String,
+    /// Unit of the bond lengths as read.
+    pub length_unit: LengthUnit,
+    /// Unit of the energies as read.
+    pub energy_unit: EnergyUnit,
+    /// Header name of the bond-length column.
+    pub length_column: String,
+    /// The points, ascending in r.
+    pub points: Vec<Point>,
+}
+
+/// One fit that was asked for, with what follows from it.
+#[derive(Clone, Debug)]
+pub struct FitFindings {
+    /// What was asked.
+    pub request: FitRequest,
+    /// The fit, or why there is none.
+    pub result: Result<Fit, FitError>,
+    /// Constants of the fitted function by name, in cm⁻¹; none where it has none.
+    pub constants_per_cm: Vec<(&'static str, Option<Estimate>)>,
+    /// The fitted function's own levels in cm⁻¹ above its own minimum, v ascending.
+    pub levels_per_cm: Vec<f64>,
+}
+
+/// All results of a study.
+#[derive(Clone, Debug)]
+pub struct Findings {
+    /// Where the curve came from.
+    pub source: Source,
+    /// The masses; none when the scan names no atoms and no mass was given.
+    pub masses: Option<Masses>,
+    /// The settings in force.
+    pub settings: Settings,
+    /// The curve; none when the study is impossible.
+    pub curve: Option<Arc<ScanCurve>>,
+    /// The fits, in the order of the settings.
+    pub fits: Vec<FitFindings>,
+    /// The levels, v ascending.
+    pub levels: Vec<Level>,
+    /// The constants.
+    pub constants: Constants,
+    /// The reach; none without a minimum.
+    pub reach: Option<Reach>,
+    /// All remarks, the gravest first.
+    pub notices: Vec<Notice>,
+}
+
+impl Findings {
+    /// Whether the study was impossible (a notice says why).
+    pub fn impossible(&self) -> bool {
+        self.notices.iter().any(|n| n.severity == Severity::Stop)
+    }
+
+    /// The fit of a family that succeeded, where there is one.
+    pub fn fit_of(&self, family: crate::fit::Family) -> Option<&Fit> {
+        self.fits.iter().find(|f| f.request.family == family).and_then(|f| f.result.as_ref().ok())
+    }
+}

@@ -1,0 +1,116 @@
+//! The radial Schrödinger equation: bound levels E(v, J) of any potential.
+//!
+//! −1/(2μ) ψ″ + [V(r) + X/(2 μ r²)] ψ = E ψ in atomic units, X = J(J+1) − Λ²; X = 0 drops the term.
+
+use crate::potential::Potential;
+use thiserror::Error;
+
+/// What the solver is asked for.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct RadialRequest {
+    /// Reduced mass in electron masses.
+    pub reduced_mass_me: f64,
+    /// Rotational factor X = J(J+1) − Λ².
+    pub rotation_x: f64,
+    /// Accuracy of the energies asked for, relative to the well depth searched.
+    pub relative_accuracy: f64,
+    /// Only levels with v up to this one.
+    pub highest_v: Option<usize>,
+}
+
+/// A wavefunction on its mesh, normalised: Σ w ψ² = 1.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Wavefunction {
+    /// Mesh points in bohr, ascending.
+    pub r_bohr: Vec<f64>,
+    /// Quadrature weights in bohr.
+    pub weight_bohr: Vec<f64>,
+    /// ψ in bohr^(−1/2); positive at the inner end.
+    pub psi: Vec<f64>,
+}
+
+/// One bound state.
+#[derive(Clone, Debug, PartialEq)]
+pub struct BoundState {
+    /// Vibrational quantum number: index among the bound states, checked against the nodes.
+    pub v: usize,
+    /// Energy in hartree, on the potential's own zero.
+    pub energy_hartree: f64,
+    /// Estimated numerical error of the energy, in hartree.
+    pub error_hartree: f64,
+    /// Nodes counted in the wavefunction.
+    pub nodes: usize,
+    /// The wavefunction.
+    pub wavefunction: Wavefunction,
+}
+
+/// Why there are no levels.
+#[derive(Clone, Debug, PartialEq, Error)]
+pub enum RadialError {
+    /// The reduced mass is not positive and finite.
+    #[error("reduced mass {reduced_mass_me} electron masses: a positive number is needed")]
+    Mass {
+        /// The value given.
+        reduced_mass_me: f64,
+    },
+    /// The potential is not finite somewhere inside its range.
+    #[error("the potential is not finite at {r_bohr} bohr")]
+    NotFinite {
+        /// Where.
+        r_bohr: f64,
+    },
+}
+
+/// All bound states of `potential` in the well around its minimum, v ascending.
+///
+/// # Errors
+/// [`RadialError`]
+pub fn bound_states(
+    _potential: &dyn Potential,
+    _request: &RadialRequest,
+) -> Result<Vec<BoundState>, RadialError> {
+    todo!("radial solver")
+}
+
+/// One level with all that is derived from its wavefunction. Energies count from V_e.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Level {
+    /// Vibrational quantum number.
+    pub v: usize,
+    /// Rotational quantum number.
+    pub j: u32,
+    /// Energy above V_e in cm⁻¹.
+    pub energy_per_cm: f64,
+    /// Standard error of the energy in cm⁻¹ (interpolation and noise), where known.
+    pub energy_error_per_cm: Option<f64>,
+    /// V_inf − E in cm⁻¹; none where no asymptote is known.
+    pub below_asymptote_per_cm: Option<f64>,
+    /// Rotational constant B_v in cm⁻¹.
+    pub b_v_per_cm: f64,
+    /// Centrifugal constant D_v in cm⁻¹ [Hutson 1981].
+    pub d_v_per_cm: f64,
+    /// Centrifugal constant H_v in cm⁻¹ [Hutson 1981].
+    pub h_v_per_cm: Option<f64>,
+    /// Inner classical turning point in bohr.
+    pub inner_turning_point_bohr: f64,
+    /// Outer classical turning point in bohr.
+    pub outer_turning_point_bohr: f64,
+    /// ⟨r⟩ in bohr.
+    pub mean_r_bohr: f64,
+    /// ⟨(r − r_e)²⟩ in bohr².
+    pub mean_square_x_bohr2: f64,
+    /// Probability beyond the turning points.
+    pub forbidden_probability: f64,
+    /// Probability inside the energy reach; none where there is no reach.
+    pub inside_reach: Option<f64>,
+    /// Probability outside the scanned range.
+    pub outside_scan: f64,
+    /// Whether the level would change if the tails did.
+    pub leans_on_tail: bool,
+    /// E − ω_e (v + ½) in cm⁻¹.
+    pub minus_harmonic_per_cm: f64,
+    /// E − E_Morse(v) in cm⁻¹, each on its own zero; none without a Morse fit or such a level.
+    pub minus_morse_per_cm: Option<f64>,
+    /// The wavefunction.
+    pub wavefunction: Wavefunction,
+}

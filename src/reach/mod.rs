@@ -1,0 +1,84 @@
+//! Reach: the interval of displacements, and the levels, for which the harmonic picture holds.
+
+use serde::{Deserialize, Serialize};
+
+/// Tolerances of the reach.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(default, deny_unknown_fields)]
+pub struct ReachSettings {
+    /// Relative tolerance τ of energy and force.
+    pub tolerance: f64,
+    /// Tolerance of the level reach in cm⁻¹; none takes τ ω_e.
+    pub level_tolerance_per_cm: Option<f64>,
+    /// Tolerance of the spacing reach in cm⁻¹; none takes τ ω_e.
+    pub spacing_tolerance_per_cm: Option<f64>,
+}
+
+impl Default for ReachSettings {
+    fn default() -> Self {
+        Self { tolerance: 0.05, level_tolerance_per_cm: None, spacing_tolerance_per_cm: None }
+    }
+}
+
+/// What ends the reach on one side.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum EndedBy {
+    /// The deviation crosses the tolerance there.
+    Tolerance,
+    /// The scan ends before it does.
+    Scan,
+}
+
+/// The connected interval around the minimum within one criterion; displacements in bohr.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Interval {
+    /// Inner end (negative); none when the scan ends first.
+    pub x_minus_bohr: Option<f64>,
+    /// Outer end; none when the scan ends first.
+    pub x_plus_bohr: Option<f64>,
+    /// Leading-order estimate of both: 3 τ k/|V‴| (energy) or 2 τ k/|V‴| (force).
+    pub leading_order_bohr: Option<f64>,
+    /// What ends it inside.
+    pub ended_by_minus: EndedBy,
+    /// What ends it outside.
+    pub ended_by_plus: EndedBy,
+}
+
+/// Reach by level or by spacing.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct LevelReach {
+    /// Tolerance in cm⁻¹.
+    pub tolerance_per_cm: f64,
+    /// Highest v within it; none when v = 0 is already outside.
+    pub highest_v: Option<usize>,
+}
+
+/// The reach of the parabola by every criterion.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Reach {
+    /// Relative tolerance τ.
+    pub tolerance: f64,
+    /// By energy.
+    pub energy: Interval,
+    /// By force.
+    pub force: Interval,
+    /// By level; none without levels.
+    pub levels: Option<LevelReach>,
+    /// By level spacing; none without levels.
+    pub spacing: Option<LevelReach>,
+    /// Highest temperature (K) for the partition function, the mean energy and the mean square amplitude.
+    pub temperature_kelvin: TemperatureReach,
+    /// sqrt(ħ/(μ ω)) in bohr; none without a mass.
+    pub zero_point_amplitude_bohr: Option<f64>,
+}
+
+/// Temperature reach by three quantities, in K.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+pub struct TemperatureReach {
+    /// |ln q_h − ln q| ≤ 0.01.
+    pub partition_function: Option<f64>,
+    /// |U_h − U| ≤ 0.01 k_B T.
+    pub mean_energy: Option<f64>,
+    /// ⟨x²⟩ within 5 %.
+    pub mean_square_x: Option<f64>,
+}

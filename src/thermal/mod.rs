@@ -1,0 +1,1 @@
+//! Thermal averages over levels.

@@ -1,0 +1,235 @@
+//! Physical constants of one vintage (CODATA 2022) and the only unit conversions of the program.
+//!
+//! Source of every constant: CODATA recommended values 2022 (E. Tiesinga, P. J. Mohr, D. B. Newell,
+//! B. N. Taylor), digits as published; those marked *exact* are fixed by the SI of 2019.
+
+use serde::{Deserialize, Serialize};
+
+/// Bohr radius in angstrom (CODATA 2022: 5.29177210544(82)e-11 m).
+pub const ANGSTROM_PER_BOHR: f64 = 0.529_177_210_544;
+/// Hartree in cm⁻¹ (CODATA 2022: hartree-inverse metre 2.1947463136314(24)e7 m⁻¹).
+pub const PER_CM_PER_HARTREE: f64 = 219_474.631_363_14;
+/// Hartree in electronvolt (CODATA 2022: 27.211386245981(30)).
+pub const ELECTRONVOLT_PER_HARTREE: f64 = 27.211_386_245_981;
+/// Hartree in joule (CODATA 2022: 4.3597447222060(48)e-18).
+pub const JOULE_PER_HARTREE: f64 = 4.359_744_722_206e-18;
+/// Avogadro constant in 1/mol (exact).
+pub const AVOGADRO_PER_MOL: f64 = 6.022_140_76e23;
+/// Boltzmann constant in J/K (exact).
+pub const BOLTZMANN_JOULE_PER_KELVIN: f64 = 1.380_649e-23;
+/// Planck constant in J s (exact).
+pub const PLANCK_JOULE_SECOND: f64 = 6.626_070_15e-34;
+/// Speed of light in m/s (exact).
+pub const LIGHT_METRE_PER_SECOND: f64 = 299_792_458.0;
+/// Electron mass in u (CODATA 2022: 5.485799090441(97)e-4).
+pub const U_PER_ELECTRON_MASS: f64 = 5.485_799_090_441e-4;
+/// Thermochemical calorie in joule (exact by definition).
+pub const JOULE_PER_CALORIE: f64 = 4.184;
+/// Hartree in kJ/mol, from the hartree in joule and the Avogadro constant.
+pub const KILOJOULE_PER_MOLE_PER_HARTREE: f64 = JOULE_PER_HARTREE * AVOGADRO_PER_MOL * 1e-3;
+/// Hartree/bohr² in N/m, from the hartree in joule and the Bohr radius.
+pub const NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2: f64 =
+    JOULE_PER_HARTREE / (ANGSTROM_PER_BOHR * ANGSTROM_PER_BOHR * 1e-20);
+/// Boltzmann constant in cm⁻¹/K: k_B/(h c).
+pub const BOLTZMANN_PER_CM_PER_KELVIN: f64 =
+    BOLTZMANN_JOULE_PER_KELVIN / (PLANCK_JOULE_SECOND * LIGHT_METRE_PER_SECOND * 100.0);
+/// Molar gas constant in J/(mol K) (exact): N_A k_B.
+pub const GAS_CONSTANT_JOULE_PER_MOLE_KELVIN: f64 = AVOGADRO_PER_MOL * BOLTZMANN_JOULE_PER_KELVIN;
+/// Speed of light in atomic units: 1/α with α = 0.0072973525643 (CODATA 2022).
+pub const LIGHT_ATOMIC_UNITS: f64 = 1.0 / 0.007_297_352_564_3;
+
+/// Unit of an energy column.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
+pub enum EnergyUnit {
+    /// Hartree, E_h.
+    #[serde(rename = "hartree")]
+    Hartree,
+    /// Electronvolt.
+    #[serde(rename = "eV")]
+    Electronvolt,
+    /// Millielectronvolt.
+    #[serde(rename = "meV")]
+    Millielectronvolt,
+    /// Kilojoule per mole.
+    #[serde(rename = "kJ/mol")]
+    KilojoulePerMole,
+    /// Kilocalorie (thermochemical) per mole.
+    #[serde(rename = "kcal/mol")]
+    KilocaloriePerMole,
+    /// Wavenumber, E/(h c).
+    #[serde(rename = "cm-1")]
+    PerCm,
+}
+
+impl EnergyUnit {
+    /// All energy units, in the order in which they are offered.
+    pub const ALL: [Self; 6] = [
+        Self::Hartree,
+        Self::Electronvolt,
+        Self::Millielectronvolt,
+        Self::KilojoulePerMole,
+        Self::KilocaloriePerMole,
+        Self::PerCm,
+    ];
+
+    /// The name used in files and options.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Hartree => "hartree",
+            Self::Electronvolt => "eV",
+            Self::Millielectronvolt => "meV",
+            Self::KilojoulePerMole => "kJ/mol",
+            Self::KilocaloriePerMole => "kcal/mol",
+            Self::PerCm => "cm-1",
+        }
+    }
+
+    /// How many of this unit make one hartree.
+    pub const fn per_hartree(self) -> f64 {
+        match self {
+            Self::Hartree => 1.0,
+            Self::Electronvolt => ELECTRONVOLT_PER_HARTREE,
+            Self::Millielectronvolt => ELECTRONVOLT_PER_HARTREE * 1e3,
+            Self::KilojoulePerMole => KILOJOULE_PER_MOLE_PER_HARTREE,
+            Self::KilocaloriePerMole => KILOJOULE_PER_MOLE_PER_HARTREE / JOULE_PER_CALORIE,
+            Self::PerCm => PER_CM_PER_HARTREE,
+        }
+    }
+
+    /// Converts a value in this unit to hartree.
+    pub const fn to_hartree(self, value: f64) -> f64 {
+        value / self.per_hartree()
+    }
+
+    /// Converts a value in hartree to this unit.
+    pub const fn from_hartree(self, value_hartree: f64) -> f64 {
+        value_hartree * self.per_hartree()
+    }
+}
+
+/// Unit of a length column.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
+pub enum LengthUnit {
+    /// 1e-10 m.
+    #[serde(rename = "angstrom")]
+    Angstrom,
+    /// Bohr radius.
+    #[serde(rename = "bohr")]
+    Bohr,
+    /// 1e-12 m.
+    #[serde(rename = "pm")]
+    Picometre,
+    /// 1e-9 m.
+    #[serde(rename = "nm")]
+    Nanometre,
+}
+
+impl LengthUnit {
+    /// All length units, in the order in which they are offered.
+    pub const ALL: [Self; 4] = [Self::Angstrom, Self::Bohr, Self::Picometre, Self::Nanometre];
+
+    /// The name used in files and options.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Angstrom => "angstrom",
+            Self::Bohr => "bohr",
+            Self::Picometre => "pm",
+            Self::Nanometre => "nm",
+        }
+    }
+
+    /// Converts a value in this unit to bohr.
+    pub const fn to_bohr(self, value: f64) -> f64 {
+        match self {
+            Self::Bohr => value,
+            Self::Angstrom => value / ANGSTROM_PER_BOHR,
+            Self::Picometre => value / (ANGSTROM_PER_BOHR * 100.0),
+            Self::Nanometre => value / (ANGSTROM_PER_BOHR / 10.0),
+        }
+    }
+
+    /// Converts a value in bohr to this unit.
+    pub const fn from_bohr(self, value_bohr: f64) -> f64 {
+        match self {
+            Self::Bohr => value_bohr,
+            Self::Angstrom => value_bohr * ANGSTROM_PER_BOHR,
+            Self::Picometre => value_bohr * (ANGSTROM_PER_BOHR * 100.0),
+            Self::Nanometre => value_bohr * (ANGSTROM_PER_BOHR / 10.0),
+        }
+    }
+
+    /// Converts a value in this unit to `other`; the same unit gives the same digits.
+    pub fn convert(self, value: f64, other: Self) -> f64 {
+        if self == other { value } else { other.from_bohr(self.to_bohr(value)) }
+    }
+}
+
+/// Mass in u to electron masses.
+pub const fn u_to_electron_masses(mass_u: f64) -> f64 {
+    mass_u / U_PER_ELECTRON_MASS
+}
+
+/// Mass in electron masses to u.
+pub const fn electron_masses_to_u(mass_me: f64) -> f64 {
+    mass_me * U_PER_ELECTRON_MASS
+}
+
+/// Bohr to angstrom.
+pub const fn to_angstrom(r_bohr: f64) -> f64 {
+    LengthUnit::Angstrom.from_bohr(r_bohr)
+}
+
+/// Hartree to cm⁻¹.
+pub const fn to_per_cm(energy_hartree: f64) -> f64 {
+    EnergyUnit::PerCm.from_hartree(energy_hartree)
+}
+
+/// Harmonic wavenumber ω_e/cm⁻¹ = sqrt(k/μ)/(2π c), from k in hartree/bohr² and μ in electron masses.
+///
+/// In atomic units the level spacing of the oscillator is sqrt(k/μ) hartree. NaN when k/μ < 0.
+pub fn omega_e_per_cm(force_constant_hartree_per_bohr2: f64, reduced_mass_me: f64) -> f64 {
+    to_per_cm((force_constant_hartree_per_bohr2 / reduced_mass_me).sqrt())
+}
+
+/// Rotational constant B/cm⁻¹ = ħ²/(2 μ r²)/(h c), from r in bohr and μ in electron masses.
+pub fn rotational_constant_per_cm(r_bohr: f64, reduced_mass_me: f64) -> f64 {
+    to_per_cm(1.0 / (2.0 * reduced_mass_me * r_bohr * r_bohr))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use std::f64::consts::PI;
+
+    fn close(a: f64, b: f64, relative: f64) {
+        assert!((a - b).abs() <= relative * b.abs(), "{a} against {b}");
+    }
+
+    /// The published factors must agree with each other through a second route; the tolerance is the
+    /// rounding of the printed digits.
+    #[test]
+    fn factors_agree_by_a_second_route() {
+        let hc = PLANCK_JOULE_SECOND * LIGHT_METRE_PER_SECOND * 100.0;
+        close(PER_CM_PER_HARTREE, JOULE_PER_HARTREE / hc, 1e-12);
+        // Twice the Rydberg constant, 10973731.568157 m⁻¹ (CODATA 2022).
+        close(PER_CM_PER_HARTREE, 2.0 * 109_737.315_681_57, 1e-13);
+        close(ELECTRONVOLT_PER_HARTREE, JOULE_PER_HARTREE / 1.602_176_634e-19, 1e-13);
+        // ħ²/(2 u) in cm⁻¹ u Å² from h, c and m_u = 1.66053906892e-27 kg (CODATA 2022).
+        let hbar = PLANCK_JOULE_SECOND / (2.0 * PI);
+        let si = hbar * hbar / (2.0 * 1.660_539_068_92e-27 * 1e-20) / hc;
+        let ours = rotational_constant_per_cm(LengthUnit::Angstrom.to_bohr(1.0), u_to_electron_masses(1.0));
+        close(ours, si, 5e-12);
+        close(BOLTZMANN_PER_CM_PER_KELVIN, 0.695_034_800_486_127_4, 1e-15);
+    }
+
+    #[test]
+    fn round_trips_keep_the_value() {
+        for unit in EnergyUnit::ALL {
+            close(unit.from_hartree(unit.to_hartree(1.234_5)), 1.234_5, 4e-16);
+        }
+        for unit in LengthUnit::ALL {
+            close(unit.from_bohr(unit.to_bohr(1.234_5)), 1.234_5, 4e-16);
+            assert_eq!(unit.convert(1.234_5, unit).to_bits(), 1.234_5_f64.to_bits());
+        }
+    }
+}
