@@ -1,1 +1,5 @@
-//! Findings written out: JSON and tables.
+//! Findings written out: the findings file (JSON) and tables. Writers take a `Write`; nothing here
+//! opens a file.
+
+pub mod json;
+pub mod table;

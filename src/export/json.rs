@@ -1,0 +1,410 @@
+//! The findings file, format version 1: one function a section, in the order of the format page
+//! (`assets/FINDINGS.md`). The JSON Schema beside that page is tested against real output.
+//!
+//! The sections are written as literal JSON values and not as mirror structs: the code then reads like
+//! the format page, and a key cannot differ between the two without being seen.
+
+use crate::estimate::Estimate;
+use crate::findings::{Findings, FitFindings, Point};
+use crate::fit::{Parameter, ParameterUnit, Window};
+use crate::notice::{Code, Notice};
+use crate::potential::curve::{InnerTail, OuterTail, ScanCurve};
+use crate::radial::Level;
+use crate::reach::{EndedBy, Interval, LevelReach, Reach};
+use crate::species::Masses;
+use crate::spectroscopy::Constants;
+use crate::units::{
+    ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_angstrom, to_per_cm,
+};
+use serde_json::{Map, Value, json};
+
+/// The value of the key `format`.
+pub const FORMAT: &str = "parabound.findings";
+/// The value of the key `format_version`.
+pub const FORMAT_VERSION: u32 = 1;
+
+/// One study as text, ending with a line feed.
+pub fn findings_to_string(findings: &Findings) -> String {
+    let mut text = format!("{:#}", findings_to_value(findings));
+    text.push('\n');
+    text
+}
+
+/// Several studies as one JSON array, ending with a line feed; a single one is not wrapped.
+pub fn all_to_string(findings: &[&Findings]) -> String {
+    if let [one] = findings {
+        return findings_to_string(one);
+    }
+    let mut text = format!("{:#}", Value::Array(findings.iter().map(|f| findings_to_value(f)).collect()));
+    text.push('\n');
+    text
+}
+
+/// One study as a JSON value.
+pub fn findings_to_value(findings: &Findings) -> Value {
+    let source = &findings.source;
+    let mut value = json!({
+        "format": FORMAT,
+        "format_version": FORMAT_VERSION,
+        "made_by": {"program": "parabound", "version": env!("CARGO_PKG_VERSION")},
+        "source": {
+            "file_name": source.file_name,
+            "sha256": source.sha256,
+            "layout": source.layout.word(),
+            "curve": source.curve,
+            "length_unit": source.length_unit.name(),
+            "energy_unit": source.energy_unit.name(),
+            "length_column": source.length_column,
+            "points": source.points.iter().map(point).collect::<Vec<_>>(),
+        },
+        "masses": findings.masses.as_ref().map(masses),
+        "settings": findings.settings,
+        "curve": findings.curve.as_deref().map(curve),
+        "fits": findings.fits.iter().map(fit).collect::<Vec<_>>(),
+        "levels": findings.levels.iter().map(level).collect::<Vec<_>>(),
+        "constants": constants(&findings.constants),
+        "reach": findings.reach.as_ref().map(reach),
+        "thermal": [],
+        "next_points": [],
+        "notices": findings.notices.iter().map(notice).collect::<Vec<_>>(),
+    });
+    let lost = null_quantities_that_lost_a_number(&mut value);
+    if !lost.is_empty()
+        && let Some(Value::Array(notices)) = value.get_mut("notices")
+    {
+        let text = format!("Not a finite number, written as null: {}.", lost.join(", "));
+        notices.push(notice(&Notice::caution(Code::NotFinite, text)));
+    }
+    value
+}
+
+/// A quantity whose value is not finite has become `{"value": null, ...}`; the format wants the whole
+/// quantity to be null and a notice to say where. Returns the paths.
+fn null_quantities_that_lost_a_number(value: &mut Value) -> Vec<String> {
+    fn walk(value: &mut Value, path: &str, lost: &mut Vec<String>) {
+        match value {
+            Value::Object(map) => {
+                let is_quantity = map.contains_key("unit") && map.contains_key("std_error");
+                if is_quantity && map.get("value").is_some_and(Value::is_null) {
+                    lost.push(path.to_owned());
+                    *value = Value::Null;
+                    return;
+                }
+                for (key, inner) in map.iter_mut().filter(|(key, _)| *key != "settings") {
+                    walk(inner, &format!("{path}/{key}"), lost);
+                }
+            }
+            Value::Array(list) => {
+                for (i, inner) in list.iter_mut().enumerate() {
+                    walk(inner, &format!("{path}/{i}"), lost);
+                }
+            }
+            _ => {}
+        }
+    }
+    let mut lost = Vec::new();
+    walk(value, "", &mut lost);
+    lost
+}
+
+fn quantity(value: f64, unit: &str) -> Value {
+    json!({"value": value, "unit": unit, "std_error": null})
+}
+
+/// `estimate` times `factor` in `unit`; carries `method` where the source of the error is known.
+fn estimated(estimate: Estimate, factor: f64, unit: &str) -> Value {
+    let e = estimate.scaled(factor);
+    match e.source {
+        Some(source) => {
+            json!({"value": e.value, "unit": unit, "std_error": e.std_error, "method": source.word()})
+        }
+        None => json!({"value": e.value, "unit": unit, "std_error": e.std_error}),
+    }
+}
+
+fn per_cm(estimate: Option<Estimate>) -> Value {
+    estimate.map_or(Value::Null, |e| estimated(e, 1.0, "cm-1"))
+}
+
+fn angstrom(r_bohr: f64) -> Value {
+    quantity(to_angstrom(r_bohr), "angstrom")
+}
+
+fn point(point: &Point) -> Value {
+    json!({
+        "r": to_angstrom(point.r_bohr),
+        "energy": point.energy_hartree,
+        "used": point.used,
+        "weight": point.weight,
+        "why_not": point.why_not,
+    })
+}
+
+fn masses(masses: &Masses) -> Value {
+    let atoms = masses.atoms.as_ref().map(|atoms| {
+        atoms
+            .iter()
+            .map(|a| {
+                json!({"symbol": a.symbol, "mass_number": a.mass_number, "mass": estimated(a.mass_u, 1.0, "u")})
+            })
+            .collect::<Vec<_>>()
+    });
+    json!({
+        "atoms": atoms,
+        "charge": masses.charge,
+        "reduced_mass": estimated(masses.reduced_mass_u, 1.0, "u"),
+    })
+}
+
+fn curve(curve: &ScanCurve) -> Value {
+    let derivative = |index: usize, power: i32| {
+        curve.derivatives_hartree[index].map_or(Value::Null, |e| {
+            let unit = if power == 2 { "N/m".to_owned() } else { format!("cm-1/angstrom^{power}") };
+            let factor = if power == 2 {
+                NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2
+            } else {
+                PER_CM_PER_HARTREE / ANGSTROM_PER_BOHR.powi(power)
+            };
+            estimated(e, factor, &unit)
+        })
+    };
+    json!({
+        "kind": curve.kind,
+        "spline_variable": curve.variable,
+        "scan_range": {"from": angstrom(curve.scan_range_bohr.0), "to": angstrom(curve.scan_range_bohr.1)},
+        "minimum": {
+            "r_e": estimated(curve.r_e_bohr, ANGSTROM_PER_BOHR, "angstrom"),
+            "energy": estimated(curve.v_e_hartree, 1.0, "hartree"),
+        },
+        "derivatives": {"second": derivative(0, 2), "third": derivative(1, 3), "fourth": derivative(2, 4)},
+        "tails": {"inner": inner_tail(curve.inner), "outer": outer_tail(curve.outer)},
+    })
+}
+
+fn inner_tail(tail: InnerTail) -> Value {
+    match tail {
+        InnerTail::Exponential { b_per_bohr } => {
+            json!({"kind": "exponential", "b": quantity(b_per_bohr / ANGSTROM_PER_BOHR, "1/angstrom")})
+        }
+        InnerTail::HardWall => json!({"kind": "hard-wall", "b": null}),
+    }
+}
+
+fn outer_tail(tail: OuterTail) -> Value {
+    match tail {
+        OuterTail::InversePower { n, c_n_hartree_bohr_n, asymptote_hartree, assumed } => {
+            let factor = PER_CM_PER_HARTREE * ANGSTROM_PER_BOHR.powi(n.cast_signed());
+            json!({
+                "kind": "inverse-power",
+                "asymptote": quantity(asymptote_hartree, "hartree"),
+                "assumed": assumed,
+                "n": n,
+                "c_n": quantity(c_n_hartree_bohr_n * factor, &format!("cm-1 angstrom^{n}")),
+                "b": null,
+                "wall": null,
+            })
+        }
+        OuterTail::Exponential { b_per_bohr, asymptote_hartree, assumed } => json!({
+            "kind": "exponential",
+            "asymptote": quantity(asymptote_hartree, "hartree"),
+            "assumed": assumed,
+            "n": null,
+            "c_n": null,
+            "b": quantity(b_per_bohr / ANGSTROM_PER_BOHR, "1/angstrom"),
+            "wall": null,
+        }),
+        OuterTail::HardWall { r_bohr } => json!({
+            "kind": "hard-wall",
+            "asymptote": null,
+            "assumed": false,
+            "n": null,
+            "c_n": null,
+            "b": null,
+            "wall": angstrom(r_bohr),
+        }),
+    }
+}
+
+/// Unit outside and factor from atomic units for a fitted parameter.
+pub fn parameter_unit(unit: ParameterUnit) -> (String, f64) {
+    match unit {
+        ParameterUnit::TotalEnergy => ("hartree".to_owned(), 1.0),
+        ParameterUnit::Wavenumber => ("cm-1".to_owned(), PER_CM_PER_HARTREE),
+        ParameterUnit::Length => ("angstrom".to_owned(), ANGSTROM_PER_BOHR),
+        ParameterUnit::InverseLength => ("1/angstrom".to_owned(), 1.0 / ANGSTROM_PER_BOHR),
+        ParameterUnit::ForceConstant => ("N/m".to_owned(), NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2),
+        ParameterUnit::Coefficient(n) => {
+            (format!("cm-1/angstrom^{n}"), PER_CM_PER_HARTREE / ANGSTROM_PER_BOHR.powi(n.cast_signed()))
+        }
+        ParameterUnit::Dimensionless => ("1".to_owned(), 1.0),
+    }
+}
+
+fn window_json(window: Window, points: usize) -> Value {
+    let edge =
+        |value: f64| quantity(window.unit.convert(value, crate::units::LengthUnit::Angstrom), "angstrom");
+    json!({"from": edge(window.from), "to": edge(window.to), "points": points})
+}
+
+fn fit(findings: &FitFindings) -> Value {
+    let request = &findings.request;
+    let constants: Map<String, Value> =
+        findings.constants_per_cm.iter().map(|(name, e)| ((*name).to_owned(), per_cm(*e))).collect();
+    let head = |degree: Option<u32>| json!({"model": request.family, "variable": request.variable, "degree": degree});
+    let (mut value, rest) = match &findings.result {
+        Ok(fit) => {
+            let factors: Vec<f64> = fit.parameters.iter().map(|p| parameter_unit(p.unit).1).collect();
+            let covariance: Vec<Vec<f64>> = fit
+                .covariance
+                .iter()
+                .zip(&factors)
+                .map(|(row, fi)| row.iter().zip(&factors).map(|(c, fj)| c * fi * fj).collect())
+                .collect();
+            let rest = json!({
+                "window": window_json(fit.window, fit.points),
+                "converged": true,
+                "failure": null,
+                "parameters": fit.parameters.iter().map(parameter).collect::<Vec<_>>(),
+                "covariance": covariance,
+                "rms_residual": quantity(to_per_cm(fit.rms_residual_hartree), "cm-1"),
+                "largest_residual": quantity(to_per_cm(fit.largest_residual_hartree), "cm-1"),
+                "aicc": fit.aicc,
+                "leave_one_out_rms":
+                    fit.leave_one_out_rms_hartree.map(|e| quantity(to_per_cm(e), "cm-1")),
+                "constants": constants,
+                "levels": findings.levels_per_cm.iter().enumerate()
+                    .map(|(v, e)| json!({"v": v, "energy": quantity(*e, "cm-1")})).collect::<Vec<_>>(),
+            });
+            (head(fit.degree), rest)
+        }
+        Err(error) => (
+            head(request.degree),
+            json!({
+                "window": null, "converged": false, "failure": error.to_string(), "parameters": [],
+                "covariance": [], "rms_residual": null, "largest_residual": null, "aicc": null,
+                "leave_one_out_rms": null, "constants": constants, "levels": [],
+            }),
+        ),
+    };
+    if let (Value::Object(value), Value::Object(rest)) = (&mut value, rest) {
+        value.extend(rest);
+    }
+    value
+}
+
+fn parameter(parameter: &Parameter) -> Value {
+    let (unit, factor) = parameter_unit(parameter.unit);
+    let mut value = json!({"name": parameter.name});
+    if let (Value::Object(head), Value::Object(rest)) =
+        (&mut value, estimated(parameter.estimate, factor, &unit))
+    {
+        head.extend(rest);
+    }
+    value
+}
+
+fn level(level: &Level) -> Value {
+    let energy = match level.energy_error_per_cm {
+        Some(error) => json!({"value": level.energy_per_cm, "unit": "cm-1", "std_error": error}),
+        None => quantity(level.energy_per_cm, "cm-1"),
+    };
+    json!({
+        "v": level.v,
+        "j": level.j,
+        "energy": energy,
+        "below_asymptote": level.below_asymptote_per_cm.map(|e| quantity(e, "cm-1")),
+        "b_v": quantity(level.b_v_per_cm, "cm-1"),
+        "d_v": quantity(level.d_v_per_cm, "cm-1"),
+        "h_v": level.h_v_per_cm.map(|h| quantity(h, "cm-1")),
+        "turning_points": {
+            "inner": angstrom(level.inner_turning_point_bohr),
+            "outer": angstrom(level.outer_turning_point_bohr),
+        },
+        "mean_r": angstrom(level.mean_r_bohr),
+        "mean_square_x": quantity(level.mean_square_x_bohr2 * ANGSTROM_PER_BOHR * ANGSTROM_PER_BOHR, "angstrom^2"),
+        "forbidden_probability": level.forbidden_probability,
+        "inside_reach": level.inside_reach,
+        "outside_scan": level.outside_scan,
+        "leans_on_tail": level.leans_on_tail,
+        "minus_harmonic": quantity(level.minus_harmonic_per_cm, "cm-1"),
+        "minus_morse": level.minus_morse_per_cm.map(|d| quantity(d, "cm-1")),
+    })
+}
+
+fn constants(constants: &Constants) -> Value {
+    let from_derivatives = constants.from_derivatives.as_ref().map(|c| {
+        json!({
+            "omega_e": per_cm(Some(c.omega_e_per_cm)),
+            "omega_e_x_e": per_cm(c.omega_e_x_e_per_cm),
+            "b_e": per_cm(Some(c.b_e_per_cm)),
+            "alpha_e": per_cm(c.alpha_e_per_cm),
+            "centrifugal_d_e": per_cm(Some(c.centrifugal_d_e_per_cm)),
+            "y_00": per_cm(c.y_00_per_cm),
+        })
+    });
+    let from_levels = constants.from_levels.as_ref().map(|c| {
+        json!({
+            "omega_e": per_cm(Some(c.omega_e_per_cm)),
+            "omega_e_x_e": per_cm(c.omega_e_x_e_per_cm),
+            "omega_e_y_e": per_cm(c.omega_e_y_e_per_cm),
+            "b_e": per_cm(c.b_e_per_cm),
+            "alpha_e": per_cm(c.alpha_e_per_cm),
+            "levels_used": c.levels_used,
+        })
+    });
+    json!({
+        "from_derivatives": from_derivatives,
+        "from_levels": from_levels,
+        "zero_point_energy": per_cm(constants.zero_point_energy_per_cm),
+        "fundamental": per_cm(constants.fundamental_per_cm),
+        "d_e": per_cm(constants.well_depth_per_cm),
+        "d_0": per_cm(constants.d_0_per_cm),
+    })
+}
+
+fn interval(interval: &Interval) -> Value {
+    let word = |ended: EndedBy| match ended {
+        EndedBy::Tolerance => "tolerance",
+        EndedBy::Scan => "scan",
+    };
+    json!({
+        "x_minus": interval.x_minus_bohr.map(angstrom),
+        "x_plus": interval.x_plus_bohr.map(angstrom),
+        "leading_order": interval.leading_order_bohr.map(angstrom),
+        "ended_by": {"x_minus": word(interval.ended_by_minus), "x_plus": word(interval.ended_by_plus)},
+    })
+}
+
+fn level_reach(reach: Option<LevelReach>) -> Value {
+    reach.map_or(
+        Value::Null,
+        |r| json!({"tolerance": quantity(r.tolerance_per_cm, "cm-1"), "highest_v": r.highest_v}),
+    )
+}
+
+fn reach(reach: &Reach) -> Value {
+    let kelvin = |t: Option<f64>| t.map(|t| quantity(t, "K"));
+    json!({
+        "tolerance": reach.tolerance,
+        "energy": interval(&reach.energy),
+        "force": interval(&reach.force),
+        "levels": level_reach(reach.levels),
+        "spacing": level_reach(reach.spacing),
+        "temperature": {
+            "partition_function": kelvin(reach.temperature_kelvin.partition_function),
+            "mean_energy": kelvin(reach.temperature_kelvin.mean_energy),
+            "mean_square_x": kelvin(reach.temperature_kelvin.mean_square_x),
+        },
+        "zero_point_amplitude": reach.zero_point_amplitude_bohr.map(angstrom),
+    })
+}
+
+fn notice(notice: &Notice) -> Value {
+    let at = notice.at_angstrom();
+    json!({
+        "severity": notice.severity.word(),
+        "code": notice.code.name(),
+        "text": notice.text,
+        "at": if at.is_empty() { Value::Null } else { json!(at) },
+    })
+}

@@ -1,0 +1,135 @@
+//! Tables as comma-separated text: levels of one or several studies, constants with one row a curve.
+//! Units stand in the header; an empty cell means that the study has no such value.
+
+use crate::estimate::Estimate;
+use crate::findings::Findings;
+use crate::units::{ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom};
+use std::io::Write;
+
+/// Which table.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Table {
+    /// One row a level.
+    Levels,
+    /// One row a curve.
+    Constants,
+}
+
+impl Table {
+    /// The tables by their names on the command line.
+    pub const ALL: [(&'static str, Self); 2] = [("levels", Self::Levels), ("constants", Self::Constants)];
+
+    /// Writes the table of all studies given.
+    ///
+    /// # Errors
+    /// Whatever the writer fails with.
+    pub fn write(self, studies: &[&Findings], out: impl Write) -> Result<(), csv::Error> {
+        match self {
+            Self::Levels => write_levels(studies, out),
+            Self::Constants => write_constants(studies, out),
+        }
+    }
+}
+
+fn cell(value: Option<f64>) -> String {
+    value.filter(|v| v.is_finite()).map_or_else(String::new, |v| v.to_string())
+}
+
+fn write_levels(studies: &[&Findings], out: impl Write) -> Result<(), csv::Error> {
+    let mut writer = csv::Writer::from_writer(out);
+    writer.write_record([
+        "file",
+        "curve",
+        "v",
+        "j",
+        "energy_cm-1",
+        "energy_std_error_cm-1",
+        "below_asymptote_cm-1",
+        "b_v_cm-1",
+        "d_v_cm-1",
+        "h_v_cm-1",
+        "inner_turning_point_angstrom",
+        "outer_turning_point_angstrom",
+        "mean_r_angstrom",
+        "mean_square_x_angstrom2",
+        "forbidden_probability",
+        "inside_reach",
+        "outside_scan",
+        "leans_on_tail",
+        "minus_harmonic_cm-1",
+        "minus_morse_cm-1",
+    ])?;
+    for study in studies {
+        for level in &study.levels {
+            writer.write_record([
+                study.source.file_name.clone(),
+                study.source.curve.clone(),
+                level.v.to_string(),
+                level.j.to_string(),
+                cell(Some(level.energy_per_cm)),
+                cell(level.energy_error_per_cm),
+                cell(level.below_asymptote_per_cm),
+                cell(Some(level.b_v_per_cm)),
+                cell(Some(level.d_v_per_cm)),
+                cell(level.h_v_per_cm),
+                cell(Some(to_angstrom(level.inner_turning_point_bohr))),
+                cell(Some(to_angstrom(level.outer_turning_point_bohr))),
+                cell(Some(to_angstrom(level.mean_r_bohr))),
+                cell(Some(level.mean_square_x_bohr2 * ANGSTROM_PER_BOHR * ANGSTROM_PER_BOHR)),
+                cell(Some(level.forbidden_probability)),
+                cell(level.inside_reach),
+                cell(Some(level.outside_scan)),
+                level.leans_on_tail.to_string(),
+                cell(Some(level.minus_harmonic_per_cm)),
+                cell(level.minus_morse_per_cm),
+            ])?;
+        }
+    }
+    writer.flush()?;
+    Ok(())
+}
+
+/// A column of the constants table: its name with unit, and how to get it.
+type ConstantColumn = (&'static str, fn(&Findings) -> Option<Estimate>);
+
+const CONSTANT_COLUMNS: [ConstantColumn; 15] = [
+    ("r_e_angstrom", |f| f.curve.as_ref().map(|c| c.r_e_bohr.scaled(ANGSTROM_PER_BOHR))),
+    ("energy_at_r_e_hartree", |f| f.curve.as_ref().map(|c| c.v_e_hartree)),
+    ("k_N/m", |f| {
+        let k = f.curve.as_ref()?.derivatives_hartree[0]?;
+        Some(k.scaled(NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2))
+    }),
+    ("omega_e_cm-1", |f| f.constants.from_derivatives.as_ref().map(|c| c.omega_e_per_cm)),
+    ("omega_e_x_e_cm-1", |f| f.constants.from_derivatives.as_ref()?.omega_e_x_e_per_cm),
+    ("b_e_cm-1", |f| f.constants.from_derivatives.as_ref().map(|c| c.b_e_per_cm)),
+    ("alpha_e_cm-1", |f| f.constants.from_derivatives.as_ref()?.alpha_e_per_cm),
+    ("centrifugal_d_e_cm-1", |f| f.constants.from_derivatives.as_ref().map(|c| c.centrifugal_d_e_per_cm)),
+    ("omega_e_from_levels_cm-1", |f| f.constants.from_levels.as_ref().map(|c| c.omega_e_per_cm)),
+    ("omega_e_x_e_from_levels_cm-1", |f| f.constants.from_levels.as_ref()?.omega_e_x_e_per_cm),
+    ("zero_point_energy_cm-1", |f| f.constants.zero_point_energy_per_cm),
+    ("fundamental_cm-1", |f| f.constants.fundamental_per_cm),
+    ("d_e_cm-1", |f| f.constants.well_depth_per_cm),
+    ("d_0_cm-1", |f| f.constants.d_0_per_cm),
+    ("reduced_mass_u", |f| f.masses.as_ref().map(|m| m.reduced_mass_u)),
+];
+
+fn write_constants(studies: &[&Findings], out: impl Write) -> Result<(), csv::Error> {
+    let mut writer = csv::Writer::from_writer(out);
+    let mut header = vec!["file".to_owned(), "curve".to_owned()];
+    for (name, _) in CONSTANT_COLUMNS {
+        header.push(name.to_owned());
+        header.push(format!("{name}_std_error"));
+    }
+    writer.write_record(&header)?;
+    for study in studies {
+        let mut row = vec![study.source.file_name.clone(), study.source.curve.clone()];
+        for (_, get) in CONSTANT_COLUMNS {
+            let estimate = get(study);
+            row.push(cell(estimate.map(|e| e.value)));
+            row.push(cell(estimate.and_then(|e| e.std_error)));
+        }
+        writer.write_record(&row)?;
+    }
+    writer.flush()?;
+    Ok(())
+}
