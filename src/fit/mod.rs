@@ -1,31 +1,30 @@
 //! Least-squares fits of model functions to the points in a window.
+//!
+//! [`linear`] and [`nonlinear`] are the core: they know no potentials and serve any problem. [`fit`]
+//! puts the families of [`crate::potential`] to them and reads statistics off the residuals.
+
+mod data;
+mod families;
+mod guess;
+pub mod linear;
+pub mod nonlinear;
+mod polynomial;
+mod precise;
+mod qr;
+mod run;
+mod statistics;
+mod window;
+
+pub use crate::potential::{Family, ModelFault, ParameterUnit, Variable};
+pub use precise::Precise;
+pub use run::{fit, morse_for_base};
+pub use window::{DEFAULT_HALF_WIDTH_OF_R_E, DEFAULT_LEAST_POINTS, Window, default_window};
 
 use crate::estimate::{ErrorSource, Estimate};
 use crate::notice::Notice;
 use crate::potential::Model;
-use crate::units::LengthUnit;
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
-
-/// A family of model functions.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
-#[serde(rename_all = "snake_case")]
-pub enum Family {
-    /// V = e_min + k x²/2.
-    Harmonic,
-    /// A polynomial in `variable` about its own minimum, no linear term.
-    Polynomial,
-    /// Morse [1929].
-    Morse,
-}
-
-/// The expansion variable of a polynomial.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
-#[serde(rename_all = "snake_case")]
-pub enum Variable {
-    /// x = r − r_e.
-    X,
-}
 
 /// A fit that is asked for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
@@ -39,18 +38,6 @@ pub struct FitRequest {
     /// Variable, for polynomials.
     #[serde(default)]
     pub variable: Option<Variable>,
-}
-
-/// A range of bond lengths, edges inclusive, kept in the unit in which it was given.
-#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize)]
-#[serde(deny_unknown_fields)]
-pub struct Window {
-    /// Lower edge.
-    pub from: f64,
-    /// Upper edge.
-    pub to: f64,
-    /// Unit of both.
-    pub unit: LengthUnit,
 }
 
 /// What the fits of a study do.
@@ -75,25 +62,6 @@ impl Default for FitSettings {
             ],
         }
     }
-}
-
-/// Unit of a fitted parameter, for the doors; values are kept in atomic units.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum ParameterUnit {
-    /// A total energy: hartree inside and outside.
-    TotalEnergy,
-    /// A well depth or coefficient of a dimensionless variable: hartree inside, cm⁻¹ outside.
-    Wavenumber,
-    /// A length: bohr inside, angstrom outside.
-    Length,
-    /// A range parameter: 1/bohr inside, 1/angstrom outside.
-    InverseLength,
-    /// A force constant: hartree/bohr² inside, N/m outside.
-    ForceConstant,
-    /// A coefficient of xⁿ: hartree/bohrⁿ inside, cm⁻¹/angstromⁿ outside.
-    Coefficient(u32),
-    /// A pure number.
-    Dimensionless,
 }
 
 /// A fitted parameter, in atomic units.
@@ -176,6 +144,72 @@ pub enum FitError {
     /// The fitted function has no minimum in the window.
     #[error("the fitted function has no minimum in the window; widen it or move it to the minimum")]
     NoMinimum,
+    /// The parameters cannot be told apart with these points.
+    #[error(
+        "the points in the window cannot tell the parameters apart (reciprocal condition number {reciprocal_condition:.1e}); \
+         widen the window or take fewer parameters"
+    )]
+    IllConditioned {
+        /// Smallest over largest diagonal entry of R of the scaled problem.
+        reciprocal_condition: f64,
+    },
+    /// A bond length, energy or weight is not a finite number, or a length or weight is not positive.
+    #[error(
+        "the point at r = {r_bohr} bohr has a length, energy or weight that cannot be used; set it aside"
+    )]
+    NotFinite {
+        /// Bond length of that point in bohr.
+        r_bohr: f64,
+    },
+    /// The shape of the scan gives this family no starting values.
+    #[error(
+        "the points in the window give this family no starting values; widen the window beyond the minimum on both sides"
+    )]
+    NoStart,
+    /// The best parameters make no well.
+    #[error("the fit makes no well ({what:?} not positive); widen the window towards larger bond lengths")]
+    NoWell {
+        /// Which parameter.
+        what: ModelFault,
+    },
+    /// The degree asked for is not offered.
+    #[error("degree {asked} is not offered; choose from {lowest} to {highest}")]
+    Degree {
+        /// Asked for.
+        asked: u32,
+        /// Lowest offered.
+        lowest: u32,
+        /// Highest offered.
+        highest: u32,
+    },
+}
+
+impl From<linear::LinearError> for FitError {
+    fn from(error: linear::LinearError) -> Self {
+        match error {
+            linear::LinearError::NotFinite => Self::NotFinite { r_bohr: f64::NAN },
+            linear::LinearError::TooFewRows { rows, columns } => {
+                Self::TooFewPoints { points: rows, needed: columns }
+            }
+            linear::LinearError::IllConditioned { reciprocal_condition } => {
+                Self::IllConditioned { reciprocal_condition }
+            }
+        }
+    }
+}
+
+impl From<nonlinear::NonlinearError> for FitError {
+    fn from(error: nonlinear::NonlinearError) -> Self {
+        match error {
+            nonlinear::NonlinearError::NotFinite | nonlinear::NonlinearError::TooFewRows => Self::NoStart,
+            nonlinear::NonlinearError::NotConverged { evaluations } => {
+                Self::NotConverged { iterations: evaluations }
+            }
+            nonlinear::NonlinearError::IllConditioned { reciprocal_condition } => {
+                Self::IllConditioned { reciprocal_condition }
+            }
+        }
+    }
 }
 
 /// One point a fit sees.
@@ -187,12 +221,4 @@ pub struct FitPoint {
     pub energy_hartree: f64,
     /// Weight; points with weight 0 are left out.
     pub weight: f64,
-}
-
-/// Fits one model to the points given (those inside the window).
-///
-/// # Errors
-/// [`FitError`] when there are too few points, no convergence, or no minimum.
-pub fn fit(_request: FitRequest, _points: &[FitPoint], _window: Window) -> Result<Fit, FitError> {
-    todo!("fit")
 }

@@ -1,7 +1,26 @@
 //! Potential-energy functions of one bond length: the trait all of them share, the fitted families
 //! and the curve through the scan's points.
+//!
+//! A further family is one file here, its `mod` line, and one line of the registry below.
 
 pub mod curve;
+mod harmonic;
+mod jet;
+mod morse;
+mod parametric;
+mod polynomial;
+mod roots;
+
+pub use harmonic::Harmonic;
+pub use morse::Morse;
+#[cfg(test)]
+pub(crate) use parametric::check;
+pub(crate) use parametric::named;
+pub use parametric::{LocalShape, ModelFault, ParameterUnit, Parametric};
+pub use polynomial::{Polynomial, Variable};
+pub(crate) use roots::real_roots;
+
+use serde::{Deserialize, Serialize};
 
 /// A potential-energy function V(r) on a range of bond lengths.
 ///
@@ -34,21 +53,94 @@ pub trait Potential: Sync {
     }
 }
 
-/// A fitted function of any family.
-#[derive(Clone, Debug)]
-pub enum Model {}
+/// Writes the two enums and their dispatch from the one list of families.
+macro_rules! registry {
+    ($($(#[$doc:meta])* $name:ident as $word:literal,)*) => {
+        /// A family of model functions.
+        #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
+        pub enum Family {
+            $($(#[$doc])* #[serde(rename = $word)] $name,)*
+        }
 
-impl Potential for Model {
-    fn derivatives_hartree(&self, _r_bohr: f64) -> [f64; 5] {
-        match *self {}
-    }
-    fn range_bohr(&self) -> (f64, f64) {
-        match *self {}
-    }
-    fn limit_hartree(&self) -> f64 {
-        match *self {}
-    }
-    fn minimum_bohr(&self) -> f64 {
-        match *self {}
+        impl Family {
+            /// All families, in the order in which they are offered.
+            pub const ALL: &[Self] = &[$(Self::$name),*];
+
+            /// The word used in findings and settings.
+            pub const fn word(self) -> &'static str {
+                match self { $(Self::$name => $word,)* }
+            }
+        }
+
+        /// A fitted function of any family.
+        #[derive(Clone, Debug, PartialEq)]
+        pub enum Model {
+            $($(#[$doc])* $name($name),)*
+        }
+
+        impl Model {
+            /// Its family.
+            pub const fn family(&self) -> Family {
+                match self { $(Self::$name(_) => Family::$name,)* }
+            }
+
+            /// The function with its parameters.
+            pub fn as_parametric(&self) -> &dyn Parametric {
+                match self { $(Self::$name(model) => model,)* }
+            }
+
+            /// Adds `energy_hartree` to the energy of the minimum, which is every family's first parameter.
+            pub fn shift_energy_hartree(&mut self, energy_hartree: f64) {
+                let model: &mut dyn Parametric = match self { $(Self::$name(model) => model,)* };
+                let mut values = model.values();
+                values[0] += energy_hartree;
+                model.set_values(&values);
+            }
+        }
+
+        $(impl From<$name> for Model {
+            fn from(model: $name) -> Self {
+                Self::$name(model)
+            }
+        })*
+
+        impl Potential for Model {
+            fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+                match self { $(Self::$name(model) => model.derivatives_hartree(r_bohr),)* }
+            }
+            fn energy_hartree(&self, r_bohr: f64) -> f64 {
+                match self { $(Self::$name(model) => model.energy_hartree(r_bohr),)* }
+            }
+            fn range_bohr(&self) -> (f64, f64) {
+                match self { $(Self::$name(model) => model.range_bohr(),)* }
+            }
+            fn limit_hartree(&self) -> f64 {
+                match self { $(Self::$name(model) => model.limit_hartree(),)* }
+            }
+            fn minimum_bohr(&self) -> f64 {
+                match self { $(Self::$name(model) => model.minimum_bohr(),)* }
+            }
+        }
+    };
+}
+
+registry! {
+    /// V = e_min + k x²/2.
+    Harmonic as "harmonic",
+    /// A polynomial about its own minimum, no linear term.
+    Polynomial as "polynomial",
+    /// Morse [1929].
+    Morse as "morse",
+}
+
+impl Model {
+    /// Closed-form levels in hartree above the model's own minimum, v ascending, for a reduced mass in
+    /// electron masses; none where the family has no closed form. At most `count` for a harmonic function.
+    pub fn closed_form_levels_hartree(&self, reduced_mass_me: f64, count: usize) -> Option<Vec<f64>> {
+        match self {
+            Self::Harmonic(model) => Some(model.levels_hartree(reduced_mass_me, count)),
+            Self::Morse(model) => Some(model.levels_hartree(reduced_mass_me)),
+            Self::Polynomial(_) => None,
+        }
     }
 }

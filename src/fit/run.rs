@@ -1,0 +1,282 @@
+//! One fit from request to result.
+
+use super::data::Data;
+use super::nonlinear::IterationSettings;
+use super::{
+    Family, Fit, FitEnd, FitError, FitPoint, FitRequest, Parameter, Variable, Window, families, guess,
+    polynomial, statistics,
+};
+use crate::estimate::{ErrorSource, Estimate};
+use crate::notice::{Code, Notice};
+use crate::potential::{Harmonic, Model, Morse, Parametric, Polynomial, Potential};
+
+/// Degree of a polynomial when none is asked for.
+const DEFAULT_DEGREE: u32 = 6;
+/// Degrees offered.
+const DEGREES: (u32, u32) = (2, 12);
+
+/// What a family's own fit hands on; energies count from the zero of the data.
+struct Solved {
+    model: Model,
+    degree: Option<u32>,
+    /// (Jᵀ W J)⁻¹ of the parameters.
+    unit_covariance: Vec<Vec<f64>>,
+    leave_one_out_rms_hartree: Option<f64>,
+    end: FitEnd,
+    notices: Vec<Notice>,
+}
+
+/// Fits one model to the points given (those inside the window).
+///
+/// Minimises S = Σ w d²; covariance s² (Jᵀ W J)⁻¹ with s² = S/(n − p). Points of weight 0 are left out;
+/// the order of the points does not matter.
+///
+/// # Errors
+/// [`FitError`] when there are too few points, no convergence, no minimum, dependent parameters, or
+/// numbers that are not finite.
+pub fn fit(request: FitRequest, points: &[FitPoint], window: Window) -> Result<Fit, FitError> {
+    let data = Data::new(points, 3)?;
+    let solved = match request.family {
+        Family::Harmonic => harmonic(&data)?,
+        Family::Polynomial => {
+            let variable = request.variable.unwrap_or(Variable::X);
+            power_series(&data, variable, request.degree.unwrap_or(DEFAULT_DEGREE))?
+        }
+        Family::Morse => {
+            let shape = guess::local_shape(&data)?;
+            iterated(&data, &families::morse_starts(&data, &shape))?
+        }
+    };
+    Ok(finish(&data, solved, window))
+}
+
+/// The Morse function through the points given, equal weights, for the base of the curve.
+///
+/// The same core as [`fit`] without its statistics; the caller chooses the points.
+///
+/// # Errors
+/// [`FitError`], as for [`fit`].
+pub fn morse_for_base(points: &[FitPoint]) -> Result<Morse, FitError> {
+    let data = Data::new(points, 4)?;
+    let shape = guess::local_shape(&data)?;
+    let settings = IterationSettings { most_evaluations: 100, ..IterationSettings::default() };
+    let (mut morse, _) = families::fit(&data, &families::morse_starts(&data, &shape), settings)?;
+    morse.e_min_hartree += data.zero_hartree;
+    Ok(morse)
+}
+
+fn harmonic(data: &Data) -> Result<Solved, FitError> {
+    let fit = polynomial::fit(data, Variable::X, 2)?;
+    let model = Harmonic {
+        e_min_hartree: fit.values[0],
+        r_e_bohr: fit.values[1],
+        force_constant_hartree_per_bohr2: 2.0 * fit.values[2],
+    };
+    let mut jacobian = fit.jacobian.clone();
+    jacobian[2].iter_mut().for_each(|d| *d *= 2.0);
+    Ok(linear_solved(data, model.into(), None, &jacobian, &fit))
+}
+
+fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, FitError> {
+    let (lowest, highest) = DEGREES;
+    if !(lowest..=highest).contains(&asked) {
+        return Err(FitError::Degree { asked, lowest, highest });
+    }
+    let degree = asked.min(data.len() as u32 - 1);
+    // The Ogilvie variable is not affine in anything fixed; the fit in z is its start.
+    let linear_variable = if variable == Variable::Ogilvie { Variable::Z } else { variable };
+    let fit = polynomial::fit(data, linear_variable, degree as usize)?;
+    let model = Polynomial::new(linear_variable, fit.values[0], fit.values[1], &fit.values[2..]);
+    let mut solved = if variable == Variable::Ogilvie {
+        // To leading orders z = w − w²/2 + ..., so equal c_2 with the rest zero is a start the iteration can use.
+        let mut from_c2 = vec![0.0; degree as usize - 1];
+        from_c2[0] = fit.values[2];
+        let start = Polynomial::new(Variable::Ogilvie, fit.values[0], fit.values[1], &from_c2);
+        iterated(data, &[start])?
+    } else {
+        linear_solved(data, model.into(), Some(degree), &fit.jacobian, &fit)
+    };
+    solved.degree = Some(degree);
+    if degree < asked {
+        let text = format!(
+            "The polynomial of degree {asked} needs {} points and the window holds {}; degree {degree} was fitted.",
+            asked + 1,
+            data.len()
+        );
+        solved.notices.push(Notice::info(Code::FewPoints, text));
+    }
+    Ok(solved)
+}
+
+fn linear_solved(
+    data: &Data,
+    model: Model,
+    degree: Option<u32>,
+    jacobian: &[Vec<f64>],
+    fit: &polynomial::PolynomialFit,
+) -> Solved {
+    let linear = &fit.linear;
+    let n = data.len();
+    let errors = linear.residuals.iter().zip(&linear.leverages).map(|(d, h)| d / (1.0 - h));
+    let sum: f64 = errors.map(|e| e * e).sum();
+    Solved {
+        model,
+        degree,
+        unit_covariance: statistics::propagate(jacobian, &linear.unit_covariance),
+        leave_one_out_rms_hartree: (n > linear.coefficients.len()).then(|| (sum / n as f64).sqrt()),
+        end: FitEnd::Direct,
+        notices: Vec::new(),
+    }
+}
+
+fn iterated<P: Parametric + Clone + Into<Model>>(data: &Data, starts: &[P]) -> Result<Solved, FitError> {
+    let (model, solution) = families::fit(data, starts, IterationSettings::default())?;
+    Ok(Solved {
+        leave_one_out_rms_hartree: families::leave_one_out_rms(data, &model),
+        model: model.into(),
+        degree: None,
+        unit_covariance: solution.unit_covariance,
+        end: solution.end,
+        notices: Vec::new(),
+    })
+}
+
+/// Statistics from the residuals of the model as it will be evaluated by others.
+fn finish(data: &Data, solved: Solved, window: Window) -> Fit {
+    let Solved { mut model, degree, unit_covariance, leave_one_out_rms_hartree, end, mut notices } = solved;
+    let residuals: Vec<f64> =
+        data.r_bohr.iter().zip(&data.energy_hartree).map(|(&r, e)| model.energy_hartree(r) - e).collect();
+    let (n, p) = (data.len(), unit_covariance.len());
+    let weighted_square_sum: f64 = residuals.iter().zip(&data.weight).map(|(d, w)| w * d * d).sum();
+    let (rms_residual_hartree, largest_residual_hartree) = statistics::rms_and_largest(&residuals);
+    let covariance = statistics::covariance(&unit_covariance, weighted_square_sum, n)
+        .filter(|c| c.iter().flatten().all(|x| x.is_finite()));
+    let source = error_source(&residuals, &covariance, &mut notices, n, model.family());
+    model.shift_energy_hartree(data.zero_hartree);
+    let parametric = model.as_parametric();
+    let parameters = parametric
+        .parameter_names()
+        .into_iter()
+        .zip(parametric.values())
+        .enumerate()
+        .map(|(j, ((name, unit), value))| {
+            let estimate = covariance
+                .as_ref()
+                .map_or(Estimate::exact(value), |c| Estimate::with_error(value, c[j][j].sqrt(), source));
+            Parameter { name, estimate, unit }
+        })
+        .collect();
+    Fit {
+        degree,
+        window,
+        window_bohr: window.bohr(),
+        points: n,
+        parameters,
+        covariance: covariance.unwrap_or_default(),
+        end,
+        rms_residual_hartree,
+        largest_residual_hartree,
+        aicc: statistics::aicc(weighted_square_sum, n, p),
+        leave_one_out_rms_hartree: leave_one_out_rms_hartree.filter(|x| x.is_finite()),
+        residuals: data.r_bohr.iter().copied().zip(residuals).collect(),
+        notices,
+        model,
+    }
+}
+
+/// Noise or misfit, with the notice that says so; or why there is no error at all.
+fn error_source(
+    residuals: &[f64],
+    covariance: &Option<Vec<Vec<f64>>>,
+    notices: &mut Vec<Notice>,
+    n: usize,
+    family: Family,
+) -> ErrorSource {
+    if covariance.is_none() {
+        let text = format!(
+            "The {} fit has as many parameters as points ({n}), so its parameters carry no standard errors.",
+            family.word()
+        );
+        notices.push(Notice::info(Code::FewPoints, text));
+        return ErrorSource::Fit;
+    }
+    match statistics::lag_one_autocorrelation(residuals) {
+        Some(correlation) if correlation > statistics::MISFIT_AUTOCORRELATION => {
+            let text = format!(
+                "The residuals of the {} fit vary smoothly (lag-1 autocorrelation {correlation:.2}): they are misfit \
+                 of the family, not noise, and its standard errors are no error bars of a measurement.",
+                family.word()
+            );
+            notices.push(Notice::info(Code::Misfit, text));
+            ErrorSource::Misfit
+        }
+        _ => ErrorSource::Fit,
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::units::LengthUnit;
+
+    const WINDOW: Window = Window { from: 0.1, to: 10.0, unit: LengthUnit::Bohr };
+
+    fn request(family: Family) -> FitRequest {
+        FitRequest { family, degree: None, variable: None }
+    }
+
+    fn polynomial(degree: u32, variable: Variable) -> FitRequest {
+        FitRequest { family: Family::Polynomial, degree: Some(degree), variable: Some(variable) }
+    }
+
+    /// Invented: `count` even points of a model around its minimum, half width `half` bohr.
+    fn sampled(model: &dyn Potential, count: u32, half: f64) -> Vec<FitPoint> {
+        (0..count)
+            .map(|k| {
+                let r_bohr = model.minimum_bohr() + half * (2.0 * f64::from(k) / f64::from(count - 1) - 1.0);
+                FitPoint { r_bohr, energy_hartree: model.energy_hartree(r_bohr), weight: 1.0 }
+            })
+            .collect()
+    }
+
+    fn assert_recovers(model: &Model, request: FitRequest, points: &[FitPoint], relative: f64) {
+        let found = fit(request, points, WINDOW).unwrap();
+        let wanted = model.as_parametric().values();
+        assert_eq!(found.parameters.len(), wanted.len());
+        for (parameter, want) in found.parameters.iter().zip(wanted) {
+            let error = (parameter.estimate.value - want).abs();
+            assert!(
+                error <= relative * want.abs().max(1e-3),
+                "{}: {} against {want}",
+                parameter.name,
+                parameter.estimate.value
+            );
+        }
+        assert!(found.rms_residual_hartree < 1e-13);
+    }
+
+    /// Invented: noise-free points of each family, with and without a total energy of −100 hartree.
+    #[test]
+    fn exact_points_give_back_the_parameters() {
+        for (e_min_hartree, relative) in [(0.0, 1e-12), (-100.3, 3e-10)] {
+            let harmonic = Harmonic { e_min_hartree, r_e_bohr: 1.4, force_constant_hartree_per_bohr2: 0.37 };
+            assert_recovers(
+                &harmonic.into(),
+                request(Family::Harmonic),
+                &sampled(&harmonic, 15, 0.3),
+                relative,
+            );
+            let morse = Morse { e_min_hartree, r_e_bohr: 1.4, well_depth_hartree: 0.17, a_per_bohr: 1.03 };
+            assert_recovers(&morse.into(), request(Family::Morse), &sampled(&morse, 30, 0.7), relative);
+            for variable in [Variable::X, Variable::Xi, Variable::Z, Variable::Ogilvie] {
+                let model = Polynomial::new(variable, e_min_hartree, 1.4, &[0.3, -0.33, 0.2, -0.1]);
+                assert_recovers(
+                    &model.clone().into(),
+                    polynomial(5, variable),
+                    &sampled(&model, 20, 0.4),
+                    100.0 * relative,
+                );
+            }
+        }
+    }
+}
