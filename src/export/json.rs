@@ -232,6 +232,9 @@ pub fn parameter_unit(unit: ParameterUnit) -> (String, f64) {
         ParameterUnit::Wavenumber => ("cm-1".to_owned(), PER_CM_PER_HARTREE),
         ParameterUnit::Length => ("angstrom".to_owned(), ANGSTROM_PER_BOHR),
         ParameterUnit::InverseLength => ("1/angstrom".to_owned(), 1.0 / ANGSTROM_PER_BOHR),
+        ParameterUnit::InverseLengthPower(n) => {
+            (format!("1/angstrom^{n}"), ANGSTROM_PER_BOHR.powi(-n.cast_signed()))
+        }
         ParameterUnit::ForceConstant => ("N/m".to_owned(), NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2),
         ParameterUnit::Coefficient(n) => {
             (format!("cm-1/angstrom^{n}"), PER_CM_PER_HARTREE / ANGSTROM_PER_BOHR.powi(n.cast_signed()))
