@@ -2,8 +2,10 @@
 //! is decided by the settings.
 
 pub mod error;
+mod names;
 pub mod read;
 
+use self::error::ScanError;
 use crate::notice::Notice;
 use crate::species::AtomChoice;
 use crate::units::{EnergyUnit, LengthUnit};
@@ -57,8 +59,8 @@ pub struct PropertyColumn {
     pub values: Vec<Option<f64>>,
 }
 
-/// A scan, valid by construction: at least one row and one energy column, equal lengths, finite
-/// numbers, positive bond lengths. Rows keep the file's order.
+/// A scan, valid by construction ([`Scan::checked`]): at least one row and one energy column, equal
+/// lengths, finite numbers, positive bond lengths. Rows keep the file's order.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Scan {
     /// File name without folder.
@@ -77,10 +79,137 @@ pub struct Scan {
     pub energies: Vec<EnergyColumn>,
     /// All other numeric columns.
     pub properties: Vec<PropertyColumn>,
+    /// Line of the file each row stands on, from 1; empty when the scan comes from no text.
+    pub row_lines: Vec<usize>,
+    /// Remarks standing behind a row in the file, with the row counted from 0.
+    pub row_remarks: Vec<(usize, String)>,
     /// The atoms, where the file names them.
     pub atoms: Option<[AtomChoice; 2]>,
     /// The molecule's charge, where the file names it.
     pub charge: Option<i32>,
     /// What reading remarked.
     pub notices: Vec<Notice>,
+}
+
+impl Scan {
+    /// A scan of one curve from numbers made in a program; its columns are called `r` and `E`.
+    ///
+    /// # Errors
+    /// As [`Scan::checked`].
+    pub fn from_columns(
+        file_name: &str,
+        (length_unit, bond_lengths): (LengthUnit, Vec<f64>),
+        (energy_unit, energies): (EnergyUnit, Vec<f64>),
+    ) -> Result<Self, ScanError> {
+        Self {
+            file_name: file_name.to_owned(),
+            sha256: read::sha256_hex(&[]),
+            layout: Layout::Delimited,
+            length_column: "r".to_owned(),
+            length_unit,
+            bond_lengths,
+            energies: vec![EnergyColumn {
+                name: "E".to_owned(),
+                label: "E".to_owned(),
+                unit: energy_unit,
+                values: energies.into_iter().map(Some).collect(),
+            }],
+            properties: Vec::new(),
+            row_lines: Vec::new(),
+            row_remarks: Vec::new(),
+            atoms: None,
+            charge: None,
+            notices: Vec::new(),
+        }
+        .checked()
+    }
+
+    /// The one gate: gives the scan back if it is valid. Behind it nobody checks again.
+    ///
+    /// # Errors
+    /// No rows, no energy column or none with a value, columns of unequal length, a number that is not
+    /// finite, a bond length that is not positive.
+    pub fn checked(self) -> Result<Self, ScanError> {
+        let rows = self.bond_lengths.len();
+        if rows == 0 {
+            return Err(ScanError::Empty);
+        }
+        for (row, &r) in self.bond_lengths.iter().enumerate() {
+            if !r.is_finite() {
+                return Err(self.not_finite(row, 1, &self.length_column, r));
+            }
+            if r <= 0.0 {
+                let (line, name) = (self.line(row), self.length_column.clone());
+                return Err(ScanError::LengthNotPositive { line, name, found: r });
+            }
+        }
+        let energies = self.energies.iter().map(|c| (&c.name, &c.values));
+        let properties = self.properties.iter().map(|c| (&c.name, &c.values));
+        for (column, (name, values)) in energies.chain(properties).enumerate() {
+            if values.len() != rows {
+                let (column, found) = (name.clone(), values.len());
+                return Err(ScanError::UnequalColumns { column, found, expected: rows });
+            }
+            for (row, value) in values.iter().enumerate() {
+                if let Some(v) = value.filter(|v| !v.is_finite()) {
+                    return Err(self.not_finite(row, column + 2, name, v));
+                }
+            }
+        }
+        match self.energies.first() {
+            None => Err(ScanError::NoEnergyColumn { columns: vec![self.length_column] }),
+            Some(first) if self.energies.iter().all(|c| c.values.iter().all(Option::is_none)) => {
+                Err(ScanError::NoEnergies { column: first.name.clone() })
+            }
+            Some(_) => Ok(self),
+        }
+    }
+
+    fn not_finite(&self, row: usize, column: usize, name: &str, found: f64) -> ScanError {
+        ScanError::NotFinite { line: self.line(row), column, name: name.to_owned(), found: found.to_string() }
+    }
+
+    /// Line of the file a row stands on, from 1; the row's number from 1 when it comes from no text.
+    pub fn line(&self, row: usize) -> usize {
+        self.row_lines.get(row).copied().unwrap_or(row + 1)
+    }
+
+    /// The energy column that answers to a name: its full header name, the name without the unit, its
+    /// number from 1, or an unambiguous part; none: the first.
+    ///
+    /// # Errors
+    /// Unknown or ambiguous name, with the columns to choose from.
+    pub fn curve_index(&self, wanted: Option<&str>) -> Result<usize, ScanError> {
+        let Some(wanted) = wanted else { return Ok(0) };
+        let names: Vec<(&str, &str)> =
+            self.energies.iter().map(|c| (c.name.as_str(), c.label.as_str())).collect();
+        names::find(&names, wanted)
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn scan(r: Vec<f64>, e: Vec<f64>) -> Result<Scan, ScanError> {
+        Scan::from_columns("made.csv", (LengthUnit::Angstrom, r), (EnergyUnit::Hartree, e))
+    }
+
+    #[test]
+    fn the_gate_lets_only_valid_scans_through() {
+        assert!(scan(vec![1.0, 2.0], vec![0.0, 1.0]).is_ok());
+        assert_eq!(scan(vec![], vec![]), Err(ScanError::Empty));
+        assert!(matches!(
+            scan(vec![1.0, 0.0], vec![0.0; 2]),
+            Err(ScanError::LengthNotPositive { line: 2, .. })
+        ));
+        assert!(matches!(scan(vec![f64::NAN], vec![0.0]), Err(ScanError::NotFinite { column: 1, .. })));
+        assert!(matches!(scan(vec![1.0], vec![f64::INFINITY]), Err(ScanError::NotFinite { column: 2, .. })));
+        assert!(matches!(scan(vec![1.0, 2.0], vec![0.0]), Err(ScanError::UnequalColumns { .. })));
+        let mut hollow = scan(vec![1.0], vec![0.0]).expect("valid");
+        hollow.energies[0].values = vec![None];
+        assert!(matches!(hollow.clone().checked(), Err(ScanError::NoEnergies { .. })));
+        hollow.energies.clear();
+        assert!(matches!(hollow.checked(), Err(ScanError::NoEnergyColumn { .. })));
+    }
 }

@@ -1,26 +1,57 @@
-//! Readers: bytes and a name in, a scan out.
+//! Readers: bytes and a name in, a scan out. They open no files.
+
+mod assemble;
+mod columns;
+mod delimited;
+mod header;
+mod number;
+mod prose;
+mod table;
+#[cfg(test)]
+mod tests;
+mod text;
+mod words;
 
 use super::Scan;
 use super::error::ScanError;
 use crate::units::{EnergyUnit, LengthUnit};
 use serde::{Deserialize, Serialize};
+use sha2::{Digest, Sha256};
+
+pub use delimited::LIMIT_ROWS;
+pub use text::LIMIT_BYTES;
+pub use words::{parse_energy_unit, parse_length_unit};
 
 /// What the user says about a file that the file does not say, or says wrong.
 #[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
 #[serde(default, deny_unknown_fields)]
 pub struct ReadSettings {
-    /// Name of the bond-length column (full, without unit, an unambiguous part, or its number from 1); none: the first.
+    /// Name of the bond-length column (full, without unit, an unambiguous part, or its number from 1); none: the
+    /// first that the header calls a length, or the first of all where there is no header.
     pub length_column: Option<String>,
-    /// Unit of the bond lengths.
+    /// Unit of the bond lengths; it goes before what the file says.
     pub length_unit: Option<LengthUnit>,
-    /// Unit of the energies.
+    /// Unit of all energy columns; it goes before what the file says.
     pub energy_unit: Option<EnergyUnit>,
 }
 
 /// Reads a scan from the bytes of a file.
 ///
+/// A unit comes from the settings, the header, or the words of a comment (then with a notice), in this
+/// order; it is never guessed. Rows keep their order and all numbers their digits.
+///
 /// # Errors
 /// [`ScanError`] with place, value found and remedy.
-pub fn read_scan(_file_name: &str, _bytes: &[u8], _settings: &ReadSettings) -> Result<Scan, ScanError> {
-    todo!("scan reader")
+pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Result<Scan, ScanError> {
+    let (text, encoding) = text::decode(bytes)?;
+    let table = delimited::parse(&text)?;
+    let mut scan = assemble::scan(file_name, table, settings)?;
+    scan.sha256 = sha256_hex(bytes);
+    scan.notices.splice(0..0, encoding);
+    scan.checked()
+}
+
+/// SHA-256 in hexadecimal.
+pub(crate) fn sha256_hex(bytes: &[u8]) -> String {
+    Sha256::digest(bytes).iter().map(|b| format!("{b:02x}")).collect()
 }

@@ -1,0 +1,164 @@
+//! From a table of named columns to a scan: which column is what, in which unit, and who says so.
+
+use super::ReadSettings;
+use super::columns::{ColumnName, Kind};
+use super::delimited::Table;
+use super::prose;
+use super::words::UnitWord;
+use crate::notice::{Code, Notice};
+use crate::scan::error::ScanError;
+use crate::scan::{EnergyColumn, Layout, PropertyColumn, Scan, names};
+use crate::units::{EnergyUnit, LengthUnit};
+
+type Column = (ColumnName, Vec<Option<f64>>);
+
+/// Builds the scan; the caller adds the check sum and passes it through the gate.
+pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -> Result<Scan, ScanError> {
+    let header = table.header.map(|h| h.names).unwrap_or_default();
+    let has_header = header.iter().any(|n| !n.full.starts_with("column "));
+    let mut columns: Vec<Column> = header.into_iter().zip(table.columns).collect();
+    let all: Vec<String> = columns.iter().map(|c| c.0.full.clone()).collect();
+    let length = columns.remove(length_index(&columns, settings, has_header)?);
+    let (lengths_stated, energies_stated) = prose::units(&table.prose);
+    let mut notices = Vec::new();
+    let length_unit = length_unit(&length.0, settings, lengths_stated, &mut notices)?;
+    let bond_lengths = required(&length, &table.row_lines)?;
+    let is_energy = energy_columns(&columns, has_header);
+    if !is_energy.contains(&true) {
+        return Err(ScanError::NoEnergyColumn { columns: all });
+    }
+    let (mut energies, mut properties, mut from_comment) = (Vec::new(), Vec::new(), false);
+    for ((name, values), energy) in columns.into_iter().zip(is_energy) {
+        note_empty(&name.full, &values, &mut notices);
+        if energy {
+            let (unit, by_comment) = energy_unit(&name, settings, energies_stated)?;
+            from_comment |= by_comment;
+            energies.push(EnergyColumn { name: name.full, label: name.label, unit, values });
+        } else {
+            properties.push(PropertyColumn { name: name.full, unit: name.unit_text, values });
+        }
+    }
+    if let Some((unit, line)) = energies_stated.filter(|_| from_comment) {
+        notices.push(stated("energies", unit.name(), line));
+    }
+    let (atoms, charge) = prose::atoms(&table.prose).unzip();
+    Ok(Scan {
+        file_name: file_name.to_owned(),
+        sha256: String::new(),
+        layout: Layout::Delimited,
+        length_column: length.0.full,
+        length_unit,
+        bond_lengths,
+        energies,
+        properties,
+        row_lines: table.row_lines,
+        row_remarks: table.row_remarks,
+        atoms,
+        charge: charge.flatten(),
+        notices,
+    })
+}
+
+fn length_index(columns: &[Column], settings: &ReadSettings, has_header: bool) -> Result<usize, ScanError> {
+    if let Some(wanted) = settings.length_column.as_deref() {
+        let pairs: Vec<(&str, &str)> =
+            columns.iter().map(|c| (c.0.full.as_str(), c.0.label.as_str())).collect();
+        return names::find(&pairs, wanted);
+    }
+    if let Some(first) = columns.iter().position(|c| c.0.kind == Kind::Length) {
+        return Ok(first);
+    }
+    let first_may_be = columns.first().is_some_and(|c| c.0.kind == Kind::Unknown);
+    if !has_header || first_may_be {
+        return Ok(0);
+    }
+    Err(ScanError::NoLengthColumn { columns: columns.iter().map(|c| c.0.full.clone()).collect() })
+}
+
+/// Which columns are energies: those whose header says so; where none does, those it says nothing about.
+fn energy_columns(columns: &[Column], has_header: bool) -> Vec<bool> {
+    let of = |kind: Kind| columns.iter().map(|c| c.0.kind == kind).collect::<Vec<bool>>();
+    let said = of(Kind::Energy);
+    if said.contains(&true) {
+        said
+    } else if has_header {
+        let unsaid = columns.iter().map(|c| c.0.kind == Kind::Unknown && c.0.unit.is_none());
+        unsaid.collect()
+    } else {
+        vec![true; columns.len()]
+    }
+}
+
+fn length_unit(
+    name: &ColumnName,
+    settings: &ReadSettings,
+    comment: prose::Stated<LengthUnit>,
+    notices: &mut Vec<Notice>,
+) -> Result<LengthUnit, ScanError> {
+    if let Some(unit) = settings.length_unit.or_else(|| name.length_unit()) {
+        return Ok(unit);
+    }
+    if let Some(UnitWord::Energy(unit)) = name.unit {
+        return Err(wrong_kind(name, unit.name(), "length"));
+    }
+    match comment.filter(|_| name.unit_text.is_none()) {
+        Some((unit, line)) => {
+            notices.push(stated("bond lengths", unit.name(), line));
+            Ok(unit)
+        }
+        None => Err(ScanError::LengthUnitMissing {
+            column: name.full.clone(),
+            found_unit: name.unit_text.clone(),
+        }),
+    }
+}
+
+/// The unit of an energy column, and whether only a comment states it.
+fn energy_unit(
+    name: &ColumnName,
+    settings: &ReadSettings,
+    comment: prose::Stated<EnergyUnit>,
+) -> Result<(EnergyUnit, bool), ScanError> {
+    if let Some(unit) = settings.energy_unit.or_else(|| name.energy_unit()) {
+        return Ok((unit, false));
+    }
+    if let Some(UnitWord::Length(unit)) = name.unit {
+        return Err(wrong_kind(name, unit.name(), "energy"));
+    }
+    match comment.filter(|_| name.unit_text.is_none()) {
+        Some((unit, _)) => Ok((unit, true)),
+        None => Err(ScanError::EnergyUnitMissing {
+            column: name.full.clone(),
+            found_unit: name.unit_text.clone(),
+        }),
+    }
+}
+
+fn wrong_kind(name: &ColumnName, unit: &'static str, wanted: &'static str) -> ScanError {
+    ScanError::UnitOfWrongKind { column: name.full.clone(), unit, wanted }
+}
+
+fn stated(what: &str, unit: &str, line: usize) -> Notice {
+    Notice::info(
+        Code::UnitFromComment,
+        format!(
+            "The unit of the {what}, {unit}, is stated only in words, in line {line}; the header does not repeat it."
+        ),
+    )
+}
+
+fn required(length: &Column, row_lines: &[usize]) -> Result<Vec<f64>, ScanError> {
+    let missing = |line: &usize| ScanError::LengthMissing { line: *line, name: length.0.full.clone() };
+    length.1.iter().zip(row_lines).map(|(value, line)| value.ok_or_else(|| missing(line))).collect()
+}
+
+fn note_empty(name: &str, values: &[Option<f64>], notices: &mut Vec<Notice>) {
+    let empty = values.iter().filter(|v| v.is_none()).count();
+    if empty > 0 {
+        let text = format!(
+            "Column {name} has no value in {empty} of {} rows; they are left out there.",
+            values.len()
+        );
+        notices.push(Notice::info(Code::EmptyCells, text));
+    }
+}
