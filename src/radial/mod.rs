@@ -2,8 +2,19 @@
 //!
 //! −1/(2μ) ψ″ + [V(r) + X/(2 μ r²)] ψ = E ψ in atomic units, X = J(J+1) − Λ²; X = 0 drops the term.
 
+mod chain;
+mod mesh;
+mod reference_element;
+mod search;
+mod small_eigen;
+mod solve;
+mod wavefunction;
+
 use crate::potential::Potential;
 use thiserror::Error;
+
+/// Highest v searched in a potential that rises without limit when the request names none.
+pub const HIGHEST_V_WITHOUT_LIMIT: usize = 99;
 
 /// What the solver is asked for.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -21,11 +32,13 @@ pub struct RadialRequest {
 /// A wavefunction on its mesh, normalised: Σ w ψ² = 1.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Wavefunction {
-    /// Mesh points in bohr, ascending.
+    /// Polynomial degree p: between points e p and (e + 1) p, ψ is the polynomial through the p + 1 values.
+    pub degree: usize,
+    /// Mesh points in bohr, ascending: Gauss-Lobatto-Legendre nodes of each element, ends shared.
     pub r_bohr: Vec<f64>,
     /// Quadrature weights in bohr.
     pub weight_bohr: Vec<f64>,
-    /// ψ in bohr^(−1/2); positive at the inner end.
+    /// ψ in bohr^(−1/2); the innermost lobe is positive.
     pub psi: Vec<f64>,
 }
 
@@ -59,17 +72,27 @@ pub enum RadialError {
         /// Where.
         r_bohr: f64,
     },
+    /// The iteration inside one mesh element did not converge (the potential jumps there beyond all measure).
+    #[error("no convergence in the mesh element at {r_bohr} bohr: the potential varies too wildly there")]
+    NoConvergence {
+        /// Where.
+        r_bohr: f64,
+    },
 }
 
-/// All bound states of `potential` in the well around its minimum, v ascending.
+/// All bound states of `potential`, v ascending: every level below [`Potential::limit_hartree`] or up to
+/// `highest_v`; without either bound, up to [`HIGHEST_V_WITHOUT_LIMIT`].
+///
+/// Spectral elements with lumped mass (Rescigno and McCurdy 2000) on a mesh laid by the local wavelength;
+/// v is the index by an inertia count, which does not rest on the nodes.
 ///
 /// # Errors
 /// [`RadialError`]
 pub fn bound_states(
-    _potential: &dyn Potential,
-    _request: &RadialRequest,
+    potential: &dyn Potential,
+    request: &RadialRequest,
 ) -> Result<Vec<BoundState>, RadialError> {
-    todo!("radial solver")
+    solve::bound_states(potential, request)
 }
 
 /// One level with all that is derived from its wavefunction. Energies count from V_e.

@@ -1,0 +1,421 @@
+//! The discretised Hamiltonian as a chain of elements, each in the eigenbasis of its own interior.
+//!
+//! Inside one element the lumped-mass Hamiltonian with both end values held at zero is diagonalised once:
+//! modes λ_k, coupled only to the two interface values. What remains is an arrow chain
+//! interface – modes – interface – …; eliminating the modes at a shift s leaves a tridiagonal matrix of
+//! interface values, so one factorisation, one count (Sylvester's law of inertia; W. H. Wittrick,
+//! F. W. Williams, Q. J. Mech. Appl. Math. 24, 263 (1971)) or one inverse iteration costs a few
+//! operations per mesh point. All coordinates are orthonormal: interface value × √mass, and modes.
+
+use super::RadialError;
+use super::reference_element::ReferenceElement;
+use super::small_eigen::diagonalise;
+use crate::potential::Potential;
+
+/// The mesh, the potential on it and the modes of every element.
+#[derive(Clone, Debug)]
+pub(super) struct Chain {
+    /// The reference element all elements share.
+    pub reference: &'static ReferenceElement,
+    /// Element boundaries in bohr, ascending, one more than elements.
+    pub boundaries: Vec<f64>,
+    /// Effective potential at the nodes in hartree, elements × p + 1.
+    pub potential: Vec<f64>,
+    /// Interior modes per element, p − 1.
+    pub modes: usize,
+    /// Their energies in hartree, elements × modes, ascending inside an element.
+    pub lambda: Vec<f64>,
+    /// Coupling of a mode to the left and right interface values, in orthonormal coordinates.
+    pub to_left: Vec<f64>,
+    /// See [`Chain::to_left`].
+    pub to_right: Vec<f64>,
+    /// Modes in terms of interior nodes (orthonormal), elements × modes × modes, a mode per row.
+    pub vectors: Vec<f64>,
+    /// Diagonal of the interface block, one per boundary.
+    pub alpha: Vec<f64>,
+    /// Direct coupling of the two interfaces of an element.
+    pub beta: Vec<f64>,
+    /// Lumped mass in bohr at each boundary.
+    pub mass: Vec<f64>,
+}
+
+impl Chain {
+    /// Discretises −1/(2μ) d²/dr² + V + X/(2μ r²) on `boundaries` with polynomials of `degree`.
+    ///
+    /// # Errors
+    /// [`RadialError::NotFinite`] where the potential is not finite at a node.
+    pub fn new(
+        potential: &dyn Potential,
+        two_mu: f64,
+        rotation_x: f64,
+        boundaries: Vec<f64>,
+        degree: usize,
+    ) -> Result<Self, RadialError> {
+        let reference = ReferenceElement::of_degree(degree);
+        let (p, elements) = (reference.degree, boundaries.len() - 1);
+        let (n, modes) = (p + 1, p - 1);
+        let mut chain = Self {
+            reference,
+            potential: vec![0.0; elements * n],
+            modes,
+            lambda: vec![0.0; elements * modes],
+            to_left: vec![0.0; elements * modes],
+            to_right: vec![0.0; elements * modes],
+            vectors: vec![0.0; elements * modes * modes],
+            alpha: vec![0.0; elements + 1],
+            beta: vec![0.0; elements],
+            mass: vec![0.0; elements + 1],
+            boundaries,
+        };
+        let last = elements - 1;
+        for e in 0..elements {
+            let (from, half) = chain.element(e);
+            for i in 0..n {
+                // Interfaces belong to two elements; one evaluation serves both.
+                if i == 0 && e > 0 {
+                    chain.potential[e * n] = chain.potential[e * n - 1];
+                    continue;
+                }
+                let r = if i == p { chain.boundaries[e + 1] } else { node(from, half, reference.nodes[i]) };
+                let mut v = potential.energy_hartree(r);
+                if rotation_x != 0.0 {
+                    v += rotation_x / (two_mu * r * r);
+                }
+                // At the two walls ψ = 0: an infinite value there does no harm.
+                let at_wall = (e == 0 && i == 0) || (e == last && i == p);
+                if !v.is_finite() {
+                    if at_wall && !v.is_nan() {
+                        v = 0.0;
+                    } else {
+                        return Err(RadialError::NotFinite { r_bohr: r });
+                    }
+                }
+                chain.potential[e * n + i] = v;
+            }
+            chain.mass[e] += reference.weights[0] * half;
+            chain.mass[e + 1] += reference.weights[p] * half;
+        }
+        chain.build_modes(two_mu)?;
+        Ok(chain)
+    }
+
+    /// Left end and half length of element `e`.
+    pub fn element(&self, e: usize) -> (f64, f64) {
+        (self.boundaries[e], 0.5 * (self.boundaries[e + 1] - self.boundaries[e]))
+    }
+
+    /// Number of elements.
+    pub fn elements(&self) -> usize {
+        self.beta.len()
+    }
+
+    fn build_modes(&mut self, two_mu: f64) -> Result<(), RadialError> {
+        let reference = self.reference;
+        let (p, modes) = (reference.degree, self.modes);
+        let n = p + 1;
+        let mut scratch = vec![0.0; 2 * modes];
+        // Stiffness between orthonormal interior nodes, for half length 1 and 2μ = 1.
+        let root: Vec<f64> = reference.weights.iter().map(|w| w.sqrt()).collect();
+        let unit: Vec<f64> = (0..modes * modes)
+            .map(|ij| {
+                let (i, j) = (ij / modes + 1, ij % modes + 1);
+                reference.stiffness[i * n + j] / (root[i] * root[j])
+            })
+            .collect();
+        for e in 0..self.elements() {
+            let (_, half) = self.element(e);
+            let kinetic = 1.0 / (two_mu * half * half);
+            let block = &mut self.vectors[e * modes * modes..(e + 1) * modes * modes];
+            for (x, u) in block.iter_mut().zip(&unit) {
+                *x = kinetic * u;
+            }
+            let v = &self.potential[e * n..(e + 1) * n];
+            for i in 0..modes {
+                block[i * modes + i] += v[i + 1];
+            }
+            let range = e * modes..(e + 1) * modes;
+            if !diagonalise(block, &mut self.lambda[range.clone()], &mut scratch, modes) {
+                return Err(RadialError::NoConvergence { r_bohr: self.boundaries[e] });
+            }
+            // Coupling of the unscaled interface value to an orthonormal interior node:
+            // K_0i/(2μ half)/√(w_i half); the interface's own √mass follows.
+            let scale = 1.0 / (two_mu * half * half.sqrt());
+            let (left_mass, right_mass) = (self.mass[e].sqrt(), self.mass[e + 1].sqrt());
+            for (k, row) in block.chunks_exact(modes).enumerate() {
+                let (mut left, mut right) = (0.0, 0.0);
+                for i in 0..modes {
+                    let x = row[i] / root[i + 1];
+                    left += x * reference.stiffness[i + 1];
+                    right += x * reference.stiffness[p * n + i + 1];
+                }
+                self.to_left[e * modes + k] = scale * left / left_mass;
+                self.to_right[e * modes + k] = scale * right / right_mass;
+            }
+            self.beta[e] = reference.stiffness[p] / (two_mu * half) / (left_mass * right_mass);
+            self.alpha[e] += reference.stiffness[0] / (two_mu * half) / self.mass[e];
+            self.alpha[e + 1] += reference.stiffness[p * n + p] / (two_mu * half) / self.mass[e + 1];
+        }
+        for (e, alpha) in self.alpha.iter_mut().enumerate() {
+            *alpha += if e == 0 { self.potential[0] } else { self.potential[e * n - 1] };
+        }
+        Ok(())
+    }
+
+    /// ψ at the mesh points (elements × p + 1) of a vector of this basis.
+    pub fn to_nodes(&self, vector: &[f64], psi: &mut [f64]) {
+        let (p, modes) = (self.reference.degree, self.modes);
+        let (face, mode) = vector.split_at(self.alpha.len());
+        for e in 0..self.elements() {
+            let half = self.element(e).1;
+            psi[e * p] = face[e] / self.mass[e].sqrt();
+            let inside = &mut psi[e * p + 1..(e + 1) * p];
+            inside.fill(0.0);
+            let rows = self.vectors[e * modes * modes..(e + 1) * modes * modes].chunks_exact(modes);
+            for (row, &amount) in rows.zip(&mode[e * modes..(e + 1) * modes]) {
+                for (x, q) in inside.iter_mut().zip(row) {
+                    *x += amount * q;
+                }
+            }
+            for (x, w) in inside.iter_mut().zip(&self.reference.weights[1..p]) {
+                *x /= (w * half).sqrt();
+            }
+        }
+        let end = self.elements();
+        psi[end * p] = face[end] / self.mass[end].sqrt();
+    }
+
+    /// A vector of this basis from what multiplies √weight ψ at the mesh points, walls dropped.
+    pub fn from_nodes(&self, psi: &[f64], vector: &mut [f64]) {
+        let (p, modes) = (self.reference.degree, self.modes);
+        let faces = self.alpha.len();
+        let (face, mode) = vector.split_at_mut(faces);
+        for e in 0..self.elements() {
+            let half = self.element(e).1;
+            face[e] = psi[e * p] * self.mass[e].sqrt();
+            let inside = &psi[e * p + 1..(e + 1) * p];
+            let rows = self.vectors[e * modes * modes..(e + 1) * modes * modes].chunks_exact(modes);
+            for (row, amount) in rows.zip(&mut mode[e * modes..(e + 1) * modes]) {
+                *amount = row
+                    .iter()
+                    .zip(inside)
+                    .zip(&self.reference.weights[1..p])
+                    .map(|((q, x), w)| q * x * (w * half).sqrt())
+                    .sum();
+            }
+        }
+        face[0] = 0.0;
+        face[faces - 1] = 0.0;
+    }
+
+    /// Rayleigh functional on `other` (the same elements, another degree) of a level of this chain: its interface
+    /// values, with the interiors that solve the equation there at the level's energy.
+    ///
+    /// The interface values are right to the square root of the difference, so the result is right to its square.
+    pub fn energy_on(&self, other: &Self, level: &super::search::Found) -> f64 {
+        let modes = other.modes;
+        let energy = level.energy;
+        let (mut above, mut norm) = (0.0, 0.0);
+        for e in 0..self.elements() {
+            let value = |i: usize| level.vector[i] / self.mass[i].sqrt() * other.mass[i].sqrt();
+            let (left, right) = (value(e), value(e + 1));
+            // Each interface is counted once, with the element to its right.
+            above += left * left * (other.alpha[e] - energy) + 2.0 * left * right * other.beta[e];
+            norm += left * left;
+            for k in e * modes..(e + 1) * modes {
+                let coupling = other.to_left[k] * left + other.to_right[k] * right;
+                let amount = coupling / (other.lambda[k] - energy);
+                above -= amount * coupling;
+                norm += amount * amount;
+            }
+        }
+        energy + above / norm
+    }
+
+    /// Length of a vector in this basis: interface values (both walls included, kept zero), then modes.
+    pub fn len(&self) -> usize {
+        self.alpha.len() + self.lambda.len()
+    }
+}
+
+/// A node of an element.
+pub(super) fn node(from: f64, half: f64, x: f64) -> f64 {
+    from + half * (1.0 + x)
+}
+
+/// Factors of (H − s), kept between solves so that nothing is allocated again.
+#[derive(Clone, Debug, Default)]
+pub(super) struct Factors {
+    shift: f64,
+    /// Levels of the walled problem below the shift.
+    pub below: usize,
+    /// The same with a free (zero-slope) outer end.
+    pub below_free_end: usize,
+    inverse: Vec<f64>,
+    /// Mode kept out of the elimination because it is close to the shift.
+    kept: Vec<Option<usize>>,
+    pivot: Vec<f64>,
+    kept_pivot: Vec<f64>,
+    /// Multipliers: interface to next interface, interface to kept mode, kept mode to next interface.
+    to_next: Vec<f64>,
+    to_kept: Vec<f64>,
+    from_kept: Vec<f64>,
+}
+
+/// A pivot of exactly zero is as good as one of a rounding error.
+fn guarded(pivot: f64, scale: f64) -> f64 {
+    let least = f64::EPSILON * f64::EPSILON * scale.abs().max(f64::MIN_POSITIVE);
+    if pivot.abs() < least { least } else { pivot }
+}
+
+impl Factors {
+    /// Factorises H − `shift` and counts the levels below `shift`.
+    pub fn factorise(&mut self, chain: &Chain, shift: f64) {
+        let (elements, modes) = (chain.elements(), chain.modes);
+        self.shift = shift;
+        self.inverse.resize(chain.lambda.len(), 0.0);
+        self.kept.resize(elements, None);
+        for list in [&mut self.pivot, &mut self.kept_pivot, &mut self.to_next, &mut self.to_kept, &mut self.from_kept] {
+            list.resize(elements + 1, 0.0);
+        }
+        let mut below = 0;
+        // Pivot being collected at the left interface of the element; none at the inner wall.
+        let mut carried = 0.0;
+        for e in 0..elements {
+            let range = e * modes..(e + 1) * modes;
+            let lambda = &chain.lambda[range.clone()];
+            let to_left = &chain.to_left[range.clone()];
+            let to_right = &chain.to_right[range.clone()];
+            let inverse = &mut self.inverse[range];
+            let under = lambda.partition_point(|&value| value < shift);
+            let kept = nearest_mode(lambda, under, shift);
+            let (mut ll, mut lr, mut rr) = (0.0, 0.0, 0.0);
+            for (((inv, &value), &cl), &cr) in inverse.iter_mut().zip(lambda).zip(to_left).zip(to_right) {
+                let d = 1.0 / (value - shift);
+                *inv = d;
+                ll += cl * cl * d;
+                lr += cl * cr * d;
+                rr += cr * cr * d;
+            }
+            below += under;
+            if let Some(k) = kept {
+                // Summed again without it: subtracting a huge term would lose the digits it is kept for.
+                inverse[k] = 0.0;
+                (ll, lr, rr) = (0.0, 0.0, 0.0);
+                for ((inv, &cl), &cr) in inverse.iter().zip(to_left).zip(to_right) {
+                    ll += cl * cl * inv;
+                    lr += cl * cr * inv;
+                    rr += cr * cr * inv;
+                }
+                below -= usize::from(k < under);
+            }
+            self.kept[e] = kept;
+            let direct = chain.beta[e] - lr;
+            let mut next = chain.alpha[e + 1] - shift - rr;
+            let inner_wall = e == 0;
+            let pivot = guarded(carried - ll, chain.alpha[e]);
+            if inner_wall {
+                self.to_next[e] = 0.0;
+                self.to_kept[e] = 0.0;
+            } else {
+                below += usize::from(pivot < 0.0);
+                self.pivot[e] = pivot;
+                self.to_next[e] = direct / pivot;
+                next -= direct * self.to_next[e];
+            }
+            if let Some(k) = kept {
+                let mut own = lambda[k] - shift;
+                let mut right = to_right[k];
+                if !inner_wall {
+                    self.to_kept[e] = to_left[k] / pivot;
+                    own -= to_left[k] * self.to_kept[e];
+                    right -= direct * self.to_kept[e];
+                }
+                let own = guarded(own, chain.alpha[e]);
+                below += usize::from(own < 0.0);
+                self.kept_pivot[e] = own;
+                self.from_kept[e] = right / own;
+                next -= right * self.from_kept[e];
+            }
+            carried = next;
+        }
+        self.below = below;
+        self.below_free_end = below + usize::from(carried < 0.0);
+    }
+
+    /// Solves (H − s) y = x in place.
+    pub fn solve(&self, chain: &Chain, x: &mut [f64]) {
+        let (elements, modes) = (chain.elements(), chain.modes);
+        let (face, mode) = x.split_at_mut(elements + 1);
+        face[0] = 0.0;
+        face[elements] = 0.0;
+        for e in 0..elements {
+            let range = e * modes..(e + 1) * modes;
+            let (mut left, mut right) = (0.0, 0.0);
+            for (((value, inv), cl), cr) in mode[range.clone()]
+                .iter()
+                .zip(&self.inverse[range.clone()])
+                .zip(&chain.to_left[range.clone()])
+                .zip(&chain.to_right[range])
+            {
+                let y = value * inv;
+                left += cl * y;
+                right += cr * y;
+            }
+            face[e] -= left;
+            face[e + 1] -= right;
+            if e == 0 {
+                face[0] = 0.0;
+            }
+            let from = face[e];
+            face[e + 1] -= self.to_next[e] * from;
+            if let Some(k) = self.kept[e] {
+                let own = &mut mode[e * modes + k];
+                *own -= self.to_kept[e] * from;
+                face[e + 1] -= self.from_kept[e] * *own;
+            }
+        }
+        face[elements] = 0.0;
+        for e in (0..elements).rev() {
+            let next = face[e + 1];
+            let mut own = 0.0;
+            if let Some(k) = self.kept[e] {
+                own = mode[e * modes + k] / self.kept_pivot[e] - self.from_kept[e] * next;
+            }
+            let from = if e == 0 {
+                0.0
+            } else {
+                face[e] / self.pivot[e] - self.to_next[e] * next - self.to_kept_if(e) * own
+            };
+            face[e] = from;
+            let range = e * modes..(e + 1) * modes;
+            for (((value, inv), cl), cr) in mode[range.clone()]
+                .iter_mut()
+                .zip(&self.inverse[range.clone()])
+                .zip(&chain.to_left[range.clone()])
+                .zip(&chain.to_right[range])
+            {
+                *value = (*value - cl * from - cr * next) * inv;
+            }
+            if let Some(k) = self.kept[e] {
+                mode[e * modes + k] = own;
+            }
+        }
+    }
+
+    fn to_kept_if(&self, e: usize) -> f64 {
+        if self.kept[e].is_some() { self.to_kept[e] } else { 0.0 }
+    }
+}
+
+/// The mode so close to the shift that eliminating it first would cost digits.
+fn nearest_mode(lambda: &[f64], under: usize, shift: f64) -> Option<usize> {
+    let spacing = if lambda.len() > 1 { lambda[1] - lambda[0] } else { lambda[0].abs() };
+    let near = |k: usize| (lambda[k] - shift).abs() < 0.01 * spacing;
+    if under < lambda.len() && near(under) {
+        Some(under)
+    } else if under > 0 && near(under - 1) {
+        Some(under - 1)
+    } else {
+        None
+    }
+}

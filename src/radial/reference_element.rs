@@ -1,0 +1,190 @@
+//! Gauss-Lobatto-Legendre collocation on the reference element [−1, 1], and Gauss-Legendre quadrature.
+//!
+//! Spectral elements with these nodes and lumped mass are the finite-element discrete variable
+//! representation (T. N. Rescigno, C. W. McCurdy, Phys. Rev. A 62, 032706 (2000)).
+
+use std::sync::OnceLock;
+
+/// Highest polynomial degree for which reference elements are kept.
+pub(super) const HIGHEST_DEGREE: usize = 32;
+
+/// Nodes, weights and stiffness of one polynomial degree on [−1, 1].
+#[derive(Debug)]
+pub(super) struct ReferenceElement {
+    /// Polynomial degree p; there are p + 1 nodes.
+    pub degree: usize,
+    /// Gauss-Lobatto-Legendre nodes, ascending, ends included.
+    pub nodes: Vec<f64>,
+    /// Their quadrature weights (exact for degree 2p − 1).
+    pub weights: Vec<f64>,
+    /// Barycentric interpolation weights of the nodes.
+    pub barycentric: Vec<f64>,
+    /// Stiffness ∫ l_i′ l_j′, row-major (p + 1)².
+    pub stiffness: Vec<f64>,
+    /// Gauss-Legendre nodes, p + 1 of them (exact for degree 2p + 1).
+    pub gauss_nodes: Vec<f64>,
+    /// Gauss-Legendre weights.
+    pub gauss_weights: Vec<f64>,
+}
+
+/// P_n(x) and P_{n−1}(x) by the three-term recurrence.
+fn legendre_pair(n: usize, x: f64) -> (f64, f64) {
+    let (mut last, mut now) = (1.0, x);
+    for k in 1..n {
+        let k = k as f64;
+        (last, now) = (now, ((2.0 * k + 1.0) * x * now - k * last) / (k + 1.0));
+    }
+    if n == 0 { (1.0, 0.0) } else { (now, last) }
+}
+
+impl ReferenceElement {
+    /// The element of degree `degree` (2 to [`HIGHEST_DEGREE`], clamped), computed once.
+    pub fn of_degree(degree: usize) -> &'static Self {
+        static KEPT: [OnceLock<ReferenceElement>; HIGHEST_DEGREE + 1] =
+            [const { OnceLock::new() }; HIGHEST_DEGREE + 1];
+        let degree = degree.clamp(2, HIGHEST_DEGREE);
+        KEPT[degree].get_or_init(|| Self::build(degree))
+    }
+
+    fn build(p: usize) -> Self {
+        let n = p + 1;
+        let order = p as f64;
+        let mut nodes = vec![0.0; n];
+        for (i, node) in nodes.iter_mut().enumerate() {
+            let mut x = -(std::f64::consts::PI * i as f64 / order).cos();
+            // Newton on (1 − x²) P_p′, whose derivative is −p (p + 1) P_p.
+            for _ in 0..100 {
+                let (now, last) = legendre_pair(p, x);
+                let step = (order * (last - x * now)) / (order * (order + 1.0) * now);
+                x += step;
+                if step.abs() <= 1e-16 {
+                    break;
+                }
+            }
+            *node = x;
+        }
+        nodes[0] = -1.0;
+        nodes[p] = 1.0;
+        for i in 0..n / 2 {
+            let half = 0.5 * (nodes[p - i] - nodes[i]);
+            nodes[i] = -half;
+            nodes[p - i] = half;
+        }
+        if n % 2 == 1 {
+            nodes[p / 2] = 0.0;
+        }
+        let at_node: Vec<f64> = nodes.iter().map(|&x| legendre_pair(p, x).0).collect();
+        let weights: Vec<f64> =
+            at_node.iter().map(|&value| 2.0 / (order * (order + 1.0) * value * value)).collect();
+        // Barycentric weights of these nodes are proportional to 1/P_p(x_i).
+        let barycentric: Vec<f64> = at_node.iter().map(|&value| 1.0 / value).collect();
+        let mut derivative = vec![0.0; n * n];
+        for i in 0..n {
+            let mut diagonal = 0.0;
+            for j in 0..n {
+                if i != j {
+                    let d = at_node[i] / (at_node[j] * (nodes[i] - nodes[j]));
+                    derivative[i * n + j] = d;
+                    diagonal -= d;
+                }
+            }
+            // Rows must annihilate constants exactly.
+            derivative[i * n + i] = diagonal;
+        }
+        let mut stiffness = vec![0.0; n * n];
+        for i in 0..n {
+            for j in 0..=i {
+                let value: f64 = (0..n)
+                    .map(|q| weights[q] * derivative[q * n + i] * derivative[q * n + j])
+                    .sum();
+                stiffness[i * n + j] = value;
+                stiffness[j * n + i] = value;
+            }
+        }
+        let (gauss_nodes, gauss_weights) = gauss_legendre(n);
+        Self { degree: p, nodes, weights, barycentric, stiffness, gauss_nodes, gauss_weights }
+    }
+
+    /// Value at `x` in [−1, 1] of the polynomial through `values` at the nodes.
+    pub fn interpolate(&self, values: &[f64], x: f64) -> f64 {
+        let (mut above, mut below) = (0.0, 0.0);
+        for ((&node, &weight), &value) in self.nodes.iter().zip(&self.barycentric).zip(values) {
+            let distance = x - node;
+            if distance == 0.0 {
+                return value;
+            }
+            let share = weight / distance;
+            above += share * value;
+            below += share;
+        }
+        above / below
+    }
+}
+
+/// Nodes and weights of `n`-point Gauss-Legendre quadrature on [−1, 1], ascending.
+fn gauss_legendre(n: usize) -> (Vec<f64>, Vec<f64>) {
+    let count = n as f64;
+    let mut nodes = Vec::with_capacity(n);
+    let mut weights = Vec::with_capacity(n);
+    for i in 0..n {
+        let mut x = -(std::f64::consts::PI * (i as f64 + 0.75) / (count + 0.5)).cos();
+        let mut slope = 1.0;
+        for _ in 0..100 {
+            let (now, last) = legendre_pair(n, x);
+            slope = count * (last - x * now) / (1.0 - x * x);
+            let step = now / slope;
+            x -= step;
+            if step.abs() <= 1e-16 {
+                break;
+            }
+        }
+        nodes.push(x);
+        weights.push(2.0 / ((1.0 - x * x) * slope * slope));
+    }
+    (nodes, weights)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// ∫ xᵏ over [−1, 1].
+    fn monomial(k: i32) -> f64 {
+        if k % 2 == 1 { 0.0 } else { 2.0 / f64::from(k + 1) }
+    }
+
+    #[test]
+    fn quadratures_are_exact_to_their_degree() {
+        for p in [2, 5, 12, 20] {
+            let element = ReferenceElement::of_degree(p);
+            for k in 0..2 * p as i32 {
+                let lobatto: f64 =
+                    element.nodes.iter().zip(&element.weights).map(|(x, w)| w * x.powi(k)).sum();
+                assert!((lobatto - monomial(k)).abs() < 1e-14, "p {p} k {k}");
+                let gauss: f64 = element
+                    .gauss_nodes
+                    .iter()
+                    .zip(&element.gauss_weights)
+                    .map(|(x, w)| w * x.powi(k))
+                    .sum();
+                assert!((gauss - monomial(k)).abs() < 1e-14, "p {p} k {k}");
+            }
+        }
+    }
+
+    #[test]
+    fn stiffness_and_interpolation_reproduce_polynomials() {
+        let element = ReferenceElement::of_degree(10);
+        let n = element.degree + 1;
+        let values: Vec<f64> = element.nodes.iter().map(|x| x.powi(7)).collect();
+        let mut energy = 0.0;
+        for i in 0..n {
+            for j in 0..n {
+                energy += values[i] * element.stiffness[i * n + j] * values[j];
+            }
+        }
+        // ∫ (7 x⁶)² = 49 · 2/13
+        assert!((energy - 98.0 / 13.0).abs() < 1e-12, "{energy}");
+        assert!((element.interpolate(&values, 0.377) - 0.377_f64.powi(7)).abs() < 1e-14);
+    }
+}

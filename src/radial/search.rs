@@ -1,0 +1,226 @@
+//! Finding the levels of a chain: brackets from counts, Rayleigh-quotient iteration inside them.
+
+use super::chain::{Chain, Factors};
+
+/// Relative size of the unwanted part of a vector at which it is finished.
+const FINISHED: f64 = 1e-13;
+/// Rounds for one level before the bracket's middle is taken as it is.
+const MOST_ROUNDS: usize = 400;
+
+/// One level in the coordinates of the chain.
+#[derive(Clone, Debug)]
+pub(super) struct Found {
+    /// Energy in hartree.
+    pub energy: f64,
+    /// Normalised vector.
+    pub vector: Vec<f64>,
+    /// Distance to the nearest other level assumed while the vector was refined.
+    gap: f64,
+}
+
+/// Brackets of the levels below `top`: `low[v]` has at most v levels below it, `high[v]` more than v.
+struct Brackets {
+    low: Vec<f64>,
+    high: Vec<f64>,
+}
+
+impl Brackets {
+    fn note(&mut self, energy: f64, below: usize) {
+        for (v, (low, high)) in self.low.iter_mut().zip(&mut self.high).enumerate() {
+            if below <= v {
+                *low = low.max(energy);
+            } else {
+                *high = high.min(energy);
+            }
+        }
+    }
+}
+
+/// The lowest `wanted` levels of the chain, all of which lie between `bottom` and `top`.
+pub(super) fn lowest_levels(
+    chain: &Chain,
+    factors: &mut Factors,
+    bottom: f64,
+    top: f64,
+    wanted: usize,
+) -> Vec<Found> {
+    let mut brackets = Brackets { low: vec![bottom; wanted], high: vec![top; wanted] };
+    let mut found: Vec<Option<Found>> = vec![None; wanted];
+    let mut work = Work { y: vec![0.0; chain.len()], scale: top - bottom };
+    for v in 0..wanted {
+        if found[v].is_none() {
+            find(chain, factors, &mut brackets, &mut found, v, &mut work);
+        }
+    }
+    let mut levels: Vec<Found> = found.into_iter().flatten().collect();
+    polish_clusters(chain, factors, &mut levels, work.scale);
+    levels
+}
+
+struct Work {
+    y: Vec<f64>,
+    scale: f64,
+}
+
+/// Extrapolates the ladder found so far.
+fn guess(found: &[Option<Found>], v: usize, low: f64, high: f64) -> f64 {
+    let at = |i: usize| found.get(i).and_then(|f| f.as_ref()).map(|f| f.energy);
+    let back = |n: usize| v.checked_sub(n).and_then(at);
+    let guess = match (back(1), back(2), back(3), back(4)) {
+        (Some(a), Some(b), Some(c), Some(d)) => Some(4.0 * a - 6.0 * b + 4.0 * c - d),
+        (Some(a), Some(b), Some(c), None) => Some(3.0 * a - 3.0 * b + c),
+        (Some(a), Some(b), None, _) => Some(2.0 * a - b),
+        _ => None,
+    };
+    guess.filter(|g| *g > low && *g < high).unwrap_or(0.5 * (low + high))
+}
+
+fn find(
+    chain: &Chain,
+    factors: &mut Factors,
+    brackets: &mut Brackets,
+    found: &mut [Option<Found>],
+    v: usize,
+    work: &mut Work,
+) {
+    let rounding = 4.0 * f64::EPSILON * work.scale;
+    let mut shift = guess(found, v, brackets.low[v], brackets.high[v]);
+    for _ in 0..MOST_ROUNDS {
+        // Isolate: a shift whose count says it is next to v.
+        factors.factorise(chain, shift);
+        brackets.note(shift, factors.below);
+        let (low, high) = (brackets.low[v], brackets.high[v]);
+        let near = factors.below == v || factors.below == v + 1;
+        let narrow = high - low <= 16.0 * rounding;
+        if near || narrow {
+            if let Some(level) = refine(chain, factors, brackets, found, (v, narrow), shift, work) {
+                if found[v].is_none() {
+                    found[v] = Some(level);
+                }
+                return;
+            }
+            if narrow {
+                return;
+            }
+        }
+        let (low, high) = (brackets.low[v], brackets.high[v]);
+        shift = 0.5 * (low + high);
+    }
+}
+
+/// Rayleigh-quotient iteration from an already factorised shift; none when it leaves the bracket of v or the
+/// count contradicts v (`forced`: the bracket is down to rounding and any count is taken).
+fn refine(
+    chain: &Chain,
+    factors: &mut Factors,
+    brackets: &mut Brackets,
+    found: &[Option<Found>],
+    (v, forced): (usize, bool),
+    start: f64,
+    work: &mut Work,
+) -> Option<Found> {
+    let rounding = 4.0 * f64::EPSILON * work.scale;
+    let previous = v.checked_sub(1).and_then(|i| found[i].as_ref());
+    let mut shift = start;
+    let mut vector = start_vector(chain);
+    let mut unwanted = 1e2;
+    for round in 0..12 {
+        if round > 0 {
+            factors.factorise(chain, shift);
+            brackets.note(shift, factors.below);
+        }
+        // Distance to other levels: the spacing so far, or what the counts leave open.
+        let below = previous.map_or(f64::INFINITY, |p| (shift - p.energy).abs());
+        let mut gap = below.min(brackets.high[v.min(brackets.high.len() - 1)] - brackets.low[v]);
+        if !below.is_finite() {
+            gap = gap.max(0.05 * work.scale / brackets.low.len() as f64);
+        } else {
+            gap = below;
+        }
+        gap = gap.max(rounding);
+        work.y.copy_from_slice(&vector);
+        factors.solve(chain, &mut work.y);
+        deflate(&mut work.y, found, v, shift, 1e-6 * work.scale);
+        let norm2: f64 = work.y.iter().map(|y| y * y).sum();
+        let overlap: f64 = work.y.iter().zip(&vector).map(|(y, x)| y * x).sum();
+        if !norm2.is_finite() || norm2 == 0.0 {
+            return None;
+        }
+        let norm = norm2.sqrt();
+        let energy = shift + overlap / norm2;
+        for (x, y) in vector.iter_mut().zip(&work.y) {
+            *x = y / norm;
+        }
+        let distance = (energy - shift).abs().max(rounding * 0.25);
+        unwanted *= (distance / gap).min(10.0);
+        if unwanted < FINISHED || (unwanted < 1e-6 && distance <= rounding) {
+            let right = if energy > shift { v } else { v + 1 };
+            let sure = factors.below == right
+                || (distance <= 16.0 * rounding && (factors.below == v || factors.below == v + 1));
+            if !sure && !forced {
+                return None;
+            }
+            return Some(Found { energy, vector, gap });
+        }
+        if energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding {
+            return None;
+        }
+        shift = energy;
+    }
+    None
+}
+
+/// Takes the part along lower levels out that are as good as degenerate with this one.
+fn deflate(y: &mut [f64], found: &[Option<Found>], v: usize, energy: f64, width: f64) {
+    for other in found[..v].iter().rev().flatten() {
+        if (energy - other.energy).abs() > width {
+            break;
+        }
+        let part: f64 = y.iter().zip(&other.vector).map(|(a, b)| a * b).sum();
+        for (a, b) in y.iter_mut().zip(&other.vector) {
+            *a -= part * b;
+        }
+    }
+}
+
+/// Refines again where two levels turned out closer than was assumed.
+fn polish_clusters(chain: &Chain, factors: &mut Factors, levels: &mut [Found], scale: f64) {
+    let rounding = 4.0 * f64::EPSILON * scale;
+    for i in 0..levels.len() {
+        let above = levels.get(i + 1).map_or(f64::INFINITY, |l| l.energy - levels[i].energy);
+        let below = if i == 0 { f64::INFINITY } else { levels[i].energy - levels[i - 1].energy };
+        let gap = above.min(below).max(rounding);
+        if gap >= 0.3 * levels[i].gap || gap <= 1e3 * rounding {
+            continue;
+        }
+        let mut unwanted = 1.0;
+        for _ in 0..6 {
+            // A little beside the level, away from its neighbour, so that the solve stays regular.
+            let beside = if above < below { -1e-4 * gap } else { 1e-4 * gap };
+            factors.factorise(chain, levels[i].energy + beside);
+            factors.solve(chain, &mut levels[i].vector);
+            let vector = &mut levels[i].vector;
+            let norm = vector.iter().map(|x| x * x).sum::<f64>().sqrt();
+            vector.iter_mut().for_each(|x| *x /= norm);
+            unwanted *= 1e-4;
+            if unwanted < FINISHED {
+                break;
+            }
+        }
+        levels[i].gap = gap;
+    }
+}
+
+/// Equal amounts of everything, with signs that no symmetry shares.
+fn start_vector(chain: &Chain) -> Vec<f64> {
+    let mut seed = 0x2545_f491_4f6c_dd1d_u64;
+    (0..chain.len())
+        .map(|_| {
+            seed ^= seed << 13;
+            seed ^= seed >> 7;
+            seed ^= seed << 17;
+            let sign = if seed & 1 == 0 { 1.0 } else { -1.0 };
+            sign * (0.5 + (seed >> 11) as f64 / (1_u64 << 54) as f64)
+        })
+        .collect()
+}

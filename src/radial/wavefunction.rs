@@ -1,0 +1,94 @@
+//! What can be asked of a wavefunction on its mesh.
+
+use super::Wavefunction;
+use super::reference_element::ReferenceElement;
+
+impl Wavefunction {
+    /// Elements of the mesh.
+    fn elements(&self) -> usize {
+        self.psi.len().saturating_sub(1) / self.degree.max(1)
+    }
+
+    /// Ends of element `e` in bohr and the values of ψ on it.
+    fn element(&self, e: usize) -> (f64, f64, &[f64]) {
+        let p = self.degree;
+        (self.r_bohr[e * p], self.r_bohr[(e + 1) * p], &self.psi[e * p..=(e + 1) * p])
+    }
+
+    /// ⟨f⟩ = Σ w f(r) ψ².
+    pub fn expectation(&self, f: impl Fn(f64) -> f64) -> f64 {
+        self.r_bohr
+            .iter()
+            .zip(&self.weight_bohr)
+            .zip(&self.psi)
+            // ψ = 0 at the walls, where f need not be finite.
+            .filter(|(_, psi)| **psi != 0.0)
+            .map(|((&r, w), psi)| w * f(r) * psi * psi)
+            .sum()
+    }
+
+    /// Probability between two bond lengths, ∫ψ² over the part of the mesh between them.
+    ///
+    /// The polynomials are integrated, not the nodes summed: parts of elements count exactly.
+    pub fn probability(&self, from_bohr: f64, to_bohr: f64) -> f64 {
+        if self.psi.is_empty() {
+            return 0.0;
+        }
+        let reference = ReferenceElement::of_degree(self.degree);
+        let mut total = 0.0;
+        for e in 0..self.elements() {
+            let (left, right, values) = self.element(e);
+            let (a, b) = (left.max(from_bohr), right.min(to_bohr));
+            if !(b > a) {
+                continue;
+            }
+            let half = 0.5 * (b - a);
+            for (x, w) in reference.gauss_nodes.iter().zip(&reference.gauss_weights) {
+                let r = a + half * (1.0 + x);
+                let psi = reference.interpolate(values, 2.0 * (r - left) / (right - left) - 1.0);
+                total += w * half * psi * psi;
+            }
+        }
+        total
+    }
+
+    /// ψ at the given bond lengths (any order), from the polynomial of the element each lies in; 0 outside the
+    /// mesh.
+    pub fn sample(&self, r_bohr: &[f64]) -> Vec<f64> {
+        let reference = ReferenceElement::of_degree(self.degree);
+        r_bohr
+            .iter()
+            .map(|&r| {
+                let (Some(first), Some(last)) = (self.r_bohr.first(), self.r_bohr.last()) else {
+                    return 0.0;
+                };
+                if !(r >= *first && r <= *last) {
+                    return 0.0;
+                }
+                let point = self.r_bohr.partition_point(|&x| x < r);
+                let e = (point.saturating_sub(1) / self.degree).min(self.elements() - 1);
+                let (left, right, values) = self.element(e);
+                reference.interpolate(values, 2.0 * (r - left) / (right - left) - 1.0)
+            })
+            .collect()
+    }
+
+    /// ψ² in 1/bohr at the given bond lengths.
+    pub fn density_per_bohr(&self, r_bohr: &[f64]) -> Vec<f64> {
+        self.sample(r_bohr).into_iter().map(|psi| psi * psi).collect()
+    }
+
+    /// Sign changes of ψ between its innermost and outermost mesh values that stand above rounding.
+    pub fn nodes(&self) -> usize {
+        let largest = self.psi.iter().fold(0.0_f64, |a, b| a.max(b.abs()));
+        let mut count = 0;
+        let mut sign = 0.0;
+        for &psi in self.psi.iter().filter(|psi| psi.abs() > 1e-8 * largest) {
+            if psi * sign < 0.0 {
+                count += 1;
+            }
+            sign = psi.signum();
+        }
+        count
+    }
+}
