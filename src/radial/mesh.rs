@@ -13,8 +13,7 @@ pub(super) const FULL_DECAY: f64 = 20.0;
 /// No mesh grows beyond this many elements.
 const MOST_ELEMENTS: usize = 4000;
 /// Energies of the ladder: share of the searched depth below its top.
-const LADDER: [f64; 14] =
-    [0.0, 1e-9, 1e-8, 1e-7, 1e-6, 1e-5, 1e-4, 1e-3, 1e-2, 0.05, 0.15, 0.35, 0.65, 0.95];
+const LADDER: [f64; 14] = [0.0, 1e-9, 1e-8, 1e-7, 1e-6, 1e-5, 1e-4, 1e-3, 1e-2, 0.05, 0.15, 0.35, 0.65, 0.95];
 
 /// What the mesh must serve.
 #[derive(Clone, Copy, Debug)]
@@ -100,11 +99,8 @@ impl Walk {
             }
             let (v, slope) = value_and_slope(potential, demand, r)?;
             let here = self.rate(demand, v, slope);
-            let longest = if singular_at_zero {
-                if self.outward { 0.6 * r } else { 0.35 * r }
-            } else {
-                f64::INFINITY
-            };
+            let longest =
+                if singular_at_zero { if self.outward { 0.6 * r } else { 0.35 * r } } else { f64::INFINITY };
             let to_wall = (wall - r) * sign;
             let mut length = (demand.phase / here).min(longest);
             if !length.is_finite() {

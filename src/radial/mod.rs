@@ -95,6 +95,19 @@ pub fn bound_states(
     solve::bound_states(potential, request)
 }
 
+/// How many levels lie below `energy_hartree` (at most the limit), by Sylvester's law of inertia on a finer mesh
+/// than [`bound_states`] starts from: a count that shares no search with it.
+///
+/// # Errors
+/// [`RadialError`]
+pub fn count_below(
+    potential: &dyn Potential,
+    request: &RadialRequest,
+    energy_hartree: f64,
+) -> Result<usize, RadialError> {
+    solve::count_below(potential, request, energy_hartree)
+}
+
 /// One level with all that is derived from its wavefunction. Energies count from V_e.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Level {

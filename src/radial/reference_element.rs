@@ -94,9 +94,8 @@ impl ReferenceElement {
         let mut stiffness = vec![0.0; n * n];
         for i in 0..n {
             for j in 0..=i {
-                let value: f64 = (0..n)
-                    .map(|q| weights[q] * derivative[q * n + i] * derivative[q * n + j])
-                    .sum();
+                let value: f64 =
+                    (0..n).map(|q| weights[q] * derivative[q * n + i] * derivative[q * n + j]).sum();
                 stiffness[i * n + j] = value;
                 stiffness[j * n + i] = value;
             }
@@ -161,12 +160,8 @@ mod tests {
                 let lobatto: f64 =
                     element.nodes.iter().zip(&element.weights).map(|(x, w)| w * x.powi(k)).sum();
                 assert!((lobatto - monomial(k)).abs() < 1e-14, "p {p} k {k}");
-                let gauss: f64 = element
-                    .gauss_nodes
-                    .iter()
-                    .zip(&element.gauss_weights)
-                    .map(|(x, w)| w * x.powi(k))
-                    .sum();
+                let gauss: f64 =
+                    element.gauss_nodes.iter().zip(&element.gauss_weights).map(|(x, w)| w * x.powi(k)).sum();
                 assert!((gauss - monomial(k)).abs() < 1e-14, "p {p} k {k}");
             }
         }

@@ -6,12 +6,7 @@
 ///
 /// On return row k of `matrix` is the eigenvector of `values[k]`, values ascending. `scratch` holds at
 /// least 2n numbers. Returns false when the iteration does not converge (60 rounds for one value).
-pub(super) fn diagonalise(
-    matrix: &mut [f64],
-    values: &mut [f64],
-    scratch: &mut [f64],
-    n: usize,
-) -> bool {
+pub(super) fn diagonalise(matrix: &mut [f64], values: &mut [f64], scratch: &mut [f64], n: usize) -> bool {
     let (off, column) = scratch.split_at_mut(n);
     tridiagonalise(matrix, values, off, column, n);
     ql(matrix, values, off, n) && {

@@ -174,11 +174,7 @@ impl Walks {
 }
 
 /// Everything below a finite limit, the mesh carried out until the highest level has decayed.
-fn below_limit(
-    potential: &dyn Potential,
-    demand: &MeshDemand,
-    align: bool,
-) -> Result<Problem, RadialError> {
+fn below_limit(potential: &dyn Potential, demand: &MeshDemand, align: bool) -> Result<Problem, RadialError> {
     let limit = demand.top_hartree;
     let depth = limit - demand.bottom_hartree;
     let mut walks = Walks::start(potential);
@@ -190,8 +186,7 @@ fn below_limit(
         factors.factorise(&chain, limit);
         let count = factors.below;
         let may_hold_more = !walks.outward.at_end
-            && (factors.below_free_end != count
-                || tail_phase(potential, demand, walks.outward.end()) > 0.1);
+            && (factors.below_free_end != count || tail_phase(potential, demand, walks.outward.end()) > 0.1);
         // How far below the limit the highest level lies, within a factor of four.
         let mut binding = 0.25;
         if count > 0 {
@@ -219,6 +214,20 @@ fn below_limit(
 fn tail_phase(potential: &dyn Potential, demand: &MeshDemand, r: f64) -> f64 {
     let v = effective(potential, demand.two_mu, demand.rotation_x, r);
     demand.two_mu * (demand.top_hartree - v) * r * r
+}
+
+/// See [`super::count_below`].
+pub(super) fn count_below(
+    potential: &dyn Potential,
+    request: &RadialRequest,
+    energy_hartree: f64,
+) -> Result<usize, RadialError> {
+    let finer = problem(potential, request, 0.71, !potential.breakpoints_bohr().is_empty())?;
+    Ok(finer.map_or(0, |problem| {
+        let mut factors = Factors::default();
+        factors.factorise(&problem.chain, energy_hartree.min(problem.demand.top_hartree));
+        factors.below
+    }))
 }
 
 /// Levels of a problem with vectors.

@@ -110,7 +110,11 @@ fn lennard_jones_levels_agree_to_1e_10_of_the_depth() {
             println!("{v} {error:e} {:e} {:e}", states[v].error_hartree, states[v].energy_hartree);
             assert!(states[v].error_hartree >= error, "stated error of v = {v}");
         }
-        println!("Lennard-Jones {strength}: {} levels, {} points, worst {worst:.1e} of the depth", states.len(), states[0].wavefunction.psi.len());
+        println!(
+            "Lennard-Jones {strength}: {} levels, {} points, worst {worst:.1e} of the depth",
+            states.len(),
+            states[0].wavefunction.psi.len()
+        );
         assert!(worst < 1e-10);
     }
 }
@@ -129,10 +133,20 @@ fn morse_levels_agree_to_1e_10_of_the_depth() {
             let v = level["v"].as_u64().unwrap() as usize;
             let error = (states[v].energy_hartree - number(&level["E_per_cm_exact_full_line"])).abs();
             worst = worst.max(error / depth);
-            println!("{v} {:e} {:e} {:e}", error / depth, states[v].error_hartree / depth, states[v].energy_hartree);
+            println!(
+                "{v} {:e} {:e} {:e}",
+                error / depth,
+                states[v].error_hartree / depth,
+                states[v].energy_hartree
+            );
             assert!(states[v].error_hartree >= error, "stated error of v = {v}");
         }
-        println!("Morse {}: {} levels, {} points, worst {worst:.1e} of the depth", case["name"], states.len(), states[0].wavefunction.psi.len());
+        println!(
+            "Morse {}: {} levels, {} points, worst {worst:.1e} of the depth",
+            case["name"],
+            states.len(),
+            states[0].wavefunction.psi.len()
+        );
         assert!(worst < 1e-10);
     }
 }
