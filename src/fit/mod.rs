@@ -3,6 +3,7 @@
 //! [`linear`] and [`nonlinear`] are the core: they know no potentials and serve any problem. [`fit`]
 //! puts the families of [`crate::potential`] to them and reads statistics off the residuals.
 
+pub mod curve;
 mod data;
 mod families;
 mod guess;

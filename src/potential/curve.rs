@@ -1,8 +1,12 @@
 //! The curve through the scan's points: base function, spline of the rest, tails.
 
 use super::Potential;
+use super::interpolant::Interpolant;
+pub use super::tails::{InnerTail, OuterTail};
+use super::tails::{Joint, OuterForm};
 use crate::estimate::Estimate;
 use serde::{Deserialize, Serialize};
+use std::sync::Arc;
 
 /// How the curve runs through the points.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]
@@ -41,49 +45,41 @@ pub struct CurveSettings {
     pub tail_power: Option<u32>,
 }
 
-/// The inner tail.
+/// Where a function has its minimum and what it is like there, in atomic units.
 #[derive(Clone, Copy, Debug, PartialEq)]
-pub enum InnerTail {
-    /// V_e + (V_1 − V_e) exp(−b (r − r_1)).
-    Exponential {
-        /// b in 1/bohr.
-        b_per_bohr: f64,
-    },
-    /// A hard wall at the first point.
-    HardWall,
+pub struct LocalDerivatives {
+    /// Position of the minimum in bohr.
+    pub r_e_bohr: f64,
+    /// Energy there in hartree, counted from the lowest point.
+    pub v_e_hartree: f64,
+    /// V″ in hartree/bohr².
+    pub second_hartree: f64,
+    /// V‴ in hartree/bohr³.
+    pub third_hartree: f64,
+    /// V⁗ in hartree/bohr⁴; NaN where the function has none.
+    pub fourth_hartree: f64,
 }
 
-/// The outer tail.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum OuterTail {
-    /// V_inf − C_n/rⁿ.
-    InversePower {
-        /// n.
-        n: u32,
-        /// C_n in hartree bohrⁿ.
-        c_n_hartree_bohr_n: f64,
-        /// V_inf in hartree.
-        asymptote_hartree: f64,
-        /// Whether V_inf is the program's assumption.
-        assumed: bool,
-    },
-    /// V_inf − (V_inf − V_last) exp(−b (r − r_last)).
-    Exponential {
-        /// b in 1/bohr.
-        b_per_bohr: f64,
-        /// V_inf in hartree.
-        asymptote_hartree: f64,
-        /// Whether V_inf is the program's assumption.
-        assumed: bool,
-    },
-    /// A hard wall at the last point, or at the first maximum beyond r_e.
-    HardWall {
-        /// Where, in bohr.
-        r_bohr: f64,
-    },
+impl LocalDerivatives {
+    /// From the position and `[V, V′, V″, V‴, V⁗]` there.
+    pub(crate) const fn new(r_e_bohr: f64, d: [f64; 5]) -> Self {
+        Self { r_e_bohr, v_e_hartree: d[0], second_hartree: d[2], third_hartree: d[3], fourth_hartree: d[4] }
+    }
+
+    /// a1 and a2 of V − V_e = a0 ξ² (1 + a1 ξ + a2 ξ² ...), ξ = x/r_e [Dunham 1932]; a2 is NaN without V⁗.
+    pub fn dunham_a1_a2(&self) -> (f64, f64) {
+        let r = self.r_e_bohr;
+        (
+            self.third_hartree * r / (3.0 * self.second_hartree),
+            self.fourth_hartree * r * r / (12.0 * self.second_hartree),
+        )
+    }
 }
 
 /// The curve of a study with what is derived from it near its minimum.
+///
+/// Evaluation costs one exponential, one Horner scheme and a table look-up. Energies are kept from
+/// the lowest point; [`ScanCurve::above_minimum`] gives them without the rounding of a large total energy.
 #[derive(Clone, Debug)]
 pub struct ScanCurve {
     /// Name of the kind as in the findings format, e.g. `morse+quintic`.
@@ -102,19 +98,249 @@ pub struct ScanCurve {
     pub inner: InnerTail,
     /// Outer tail.
     pub outer: OuterTail,
+    /// The curve's own minimum.
+    pub local: LocalDerivatives,
+    /// The same minimum by every other admissible interpolation: half the spread of a quantity over
+    /// these and `local` is its interpolation error.
+    pub alternatives: Vec<LocalDerivatives>,
+    /// The minimum after each energy near it was changed by the noise; empty where no noise is known.
+    pub noise_variants: Vec<LocalDerivatives>,
+    /// Estimated noise of the energies in hartree, where it can be told from curvature.
+    pub noise_hartree: Option<f64>,
+    body: Body,
+}
+
+/// What is evaluated. Energies count from `zero`.
+#[derive(Clone, Debug)]
+struct Body {
+    interpolant: Arc<Interpolant>,
+    zero: f64,
+    v_e: f64,
+    inner: InnerTail,
+    inner_joint: Joint,
+    outer: OuterForm,
+    outer_joint: Joint,
+    outer_assumed: bool,
+    breakpoints: Arc<Vec<f64>>,
+}
+
+/// Everything a curve is put together from.
+pub(crate) struct CurveParts {
+    pub kind: String,
+    pub variable: Option<SplineVariable>,
+    pub scan_range: (f64, f64),
+    pub interpolant: Arc<Interpolant>,
+    pub zero: f64,
+    pub local: LocalDerivatives,
+    pub inner: InnerTail,
+    pub inner_joint: Joint,
+    pub outer: OuterForm,
+    pub outer_joint: Joint,
+    pub outer_assumed: bool,
+    pub alternatives: Vec<LocalDerivatives>,
+    pub noise_variants: Vec<LocalDerivatives>,
+    pub noise_hartree: Option<f64>,
+}
+
+impl ScanCurve {
+    pub(crate) fn assemble(parts: CurveParts) -> Self {
+        let (from, to) = (parts.inner_joint.r, parts.outer_joint.r);
+        let mut breakpoints = vec![from];
+        breakpoints.extend(parts.interpolant.knots_bohr().into_iter().filter(|&r| r > from && r < to));
+        breakpoints.push(to);
+        let mut curve = Self {
+            kind: parts.kind,
+            variable: parts.variable,
+            scan_range_bohr: parts.scan_range,
+            r_e_bohr: Estimate::exact(0.0),
+            v_e_hartree: Estimate::exact(0.0),
+            derivatives_hartree: [None; 3],
+            inner: parts.inner,
+            outer: parts.outer.shown(parts.outer_joint, parts.zero, parts.outer_assumed),
+            local: parts.local,
+            alternatives: parts.alternatives,
+            noise_variants: parts.noise_variants,
+            noise_hartree: parts.noise_hartree,
+            body: Body {
+                interpolant: parts.interpolant,
+                zero: parts.zero,
+                v_e: parts.local.v_e_hartree,
+                inner: parts.inner,
+                inner_joint: parts.inner_joint,
+                outer: parts.outer,
+                outer_joint: parts.outer_joint,
+                outer_assumed: parts.outer_assumed,
+                breakpoints: Arc::new(breakpoints),
+            },
+        };
+        let derivative = |f: fn(&LocalDerivatives) -> f64| {
+            let estimate = curve.estimate(|local| Some(f(local)));
+            estimate.filter(|e| e.value.is_finite())
+        };
+        let derivatives = [
+            derivative(|l| l.second_hartree),
+            derivative(|l| l.third_hartree),
+            derivative(|l| l.fourth_hartree),
+        ];
+        let r_e = derivative(|l| l.r_e_bohr);
+        let v_e = derivative(|l| l.v_e_hartree);
+        let zero = curve.body.zero;
+        curve.derivatives_hartree = derivatives;
+        curve.r_e_bohr = r_e.unwrap_or(Estimate::exact(curve.local.r_e_bohr));
+        curve.v_e_hartree = v_e.unwrap_or(Estimate::exact(curve.local.v_e_hartree));
+        curve.v_e_hartree.value += zero;
+        curve
+    }
+
+    /// Any quantity of the minimum with its standard error: half the spread over the admissible
+    /// interpolations, and the noise of the energies propagated linearly. None where the curve has no
+    /// such quantity; an alternative that has none does not count.
+    pub fn estimate(&self, quantity: impl Fn(&LocalDerivatives) -> Option<f64>) -> Option<Estimate> {
+        let value = quantity(&self.local).filter(|v| v.is_finite())?;
+        let (mut low, mut high, mut known) = (value, value, false);
+        for other in self.alternatives.iter().filter_map(&quantity).filter(|v| v.is_finite()) {
+            (low, high, known) = (low.min(other), high.max(other), true);
+        }
+        let shifts = self.noise_variants.iter().filter_map(&quantity).map(|v| v - value);
+        let variance: f64 = shifts.filter(|s| s.is_finite()).map(|s| s * s).sum();
+        let noise = (!self.noise_variants.is_empty()).then(|| variance.sqrt());
+        Some(Estimate::from_spread_and_noise(value, known.then_some(0.5 * (high - low)), noise))
+    }
+
+    /// The same curve with energies counted from V_e, free of the rounding of large total energies.
+    /// Reach and levels are best computed from this.
+    pub const fn above_minimum(&self) -> AboveMinimum<'_> {
+        AboveMinimum { curve: self }
+    }
+
+    /// V_inf in hartree where it is known, not assumed.
+    pub const fn asymptote_hartree(&self) -> Option<f64> {
+        match self.outer {
+            OuterTail::InversePower { asymptote_hartree, assumed: false, .. }
+            | OuterTail::Exponential { asymptote_hartree, assumed: false, .. } => Some(asymptote_hartree),
+            _ => None,
+        }
+    }
+
+    /// Height of V_inf, known or assumed, above V_e in hartree; none for a hard wall.
+    pub fn tail_depth_hartree(&self) -> Option<f64> {
+        self.body.outer.gap().map(|gap| self.body.outer_joint.energy + gap - self.body.v_e)
+    }
+
+    /// The same curve with V_inf moved by `shift_hartree`; none where there is no outer tail.
+    ///
+    /// For the test whether a level leans on the tail; the spline is not fitted anew. A V_inf that comes
+    /// to lie at or below the last point gives a hard wall.
+    pub fn with_asymptote_shifted(&self, shift_hartree: f64) -> Option<Self> {
+        let gap = self.body.outer.gap()? + shift_hartree;
+        Some(self.with_outer(self.body.outer.with_gap(gap, self.body.outer_joint.slope)))
+    }
+
+    /// The same curve with C_n multiplied by `factor`; none where the tail is no inverse power.
+    ///
+    /// V_inf − C_n [f (1/r)ⁿ − (f − 1) r_last²/rⁿ⁺²]: far out C_n is f times as large, at the last point the
+    /// curve keeps its value, so that a level solver meets no jump.
+    pub fn with_c_n_scaled(&self, factor: f64) -> Option<Self> {
+        match self.body.outer {
+            OuterForm::Power { n, gap, scale } => {
+                Some(self.with_outer(OuterForm::Power { n, gap, scale: scale * factor }))
+            }
+            _ => None,
+        }
+    }
+
+    fn with_outer(&self, outer: OuterForm) -> Self {
+        let mut curve = self.clone();
+        curve.outer = outer.shown(self.body.outer_joint, self.body.zero, self.body.outer_assumed);
+        curve.body.outer = outer;
+        curve
+    }
+}
+
+impl Body {
+    fn energy(&self, r: f64) -> f64 {
+        if r < self.inner_joint.r || r > self.outer_joint.r {
+            return self.derivatives(r)[0];
+        }
+        self.interpolant.energy(r)
+    }
+
+    fn derivatives(&self, r: f64) -> [f64; 5] {
+        if r < self.inner_joint.r {
+            self.inner.derivatives(self.inner_joint, self.v_e, r)
+        } else if r > self.outer_joint.r {
+            self.outer.derivatives(self.outer_joint, r)
+        } else {
+            self.interpolant.derivatives(r)
+        }
+    }
+
+    fn range(&self) -> (f64, f64) {
+        let from = match self.inner {
+            InnerTail::Exponential { .. } => 0.0,
+            InnerTail::HardWall => self.inner_joint.r,
+        };
+        let to = if self.outer == OuterForm::Wall { self.outer_joint.r } else { f64::INFINITY };
+        (from, to)
+    }
+
+    fn limit(&self) -> f64 {
+        let outside = self.outer_joint.energy + self.outer.gap().unwrap_or(0.0);
+        match self.inner {
+            InnerTail::Exponential { .. } => outside,
+            InnerTail::HardWall => outside.min(self.inner_joint.energy),
+        }
+    }
 }
 
 impl Potential for ScanCurve {
-    fn derivatives_hartree(&self, _r_bohr: f64) -> [f64; 5] {
-        todo!("curve")
+    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+        let mut d = self.body.derivatives(r_bohr);
+        d[0] += self.body.zero;
+        d
+    }
+    fn energy_hartree(&self, r_bohr: f64) -> f64 {
+        self.body.energy(r_bohr) + self.body.zero
     }
     fn range_bohr(&self) -> (f64, f64) {
-        todo!("curve")
+        self.body.range()
     }
     fn limit_hartree(&self) -> f64 {
-        todo!("curve")
+        self.body.limit() + self.body.zero
     }
     fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr.value
+        self.local.r_e_bohr
+    }
+    fn breakpoints_bohr(&self) -> &[f64] {
+        &self.body.breakpoints
+    }
+}
+
+/// A scan's curve with energies counted from V_e.
+#[derive(Clone, Copy, Debug)]
+pub struct AboveMinimum<'a> {
+    curve: &'a ScanCurve,
+}
+
+impl Potential for AboveMinimum<'_> {
+    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+        let mut d = self.curve.body.derivatives(r_bohr);
+        d[0] -= self.curve.body.v_e;
+        d
+    }
+    fn energy_hartree(&self, r_bohr: f64) -> f64 {
+        self.curve.body.energy(r_bohr) - self.curve.body.v_e
+    }
+    fn range_bohr(&self) -> (f64, f64) {
+        self.curve.body.range()
+    }
+    fn limit_hartree(&self) -> f64 {
+        self.curve.body.limit() - self.curve.body.v_e
+    }
+    fn minimum_bohr(&self) -> f64 {
+        self.curve.local.r_e_bohr
+    }
+    fn breakpoints_bohr(&self) -> &[f64] {
+        &self.curve.body.breakpoints
     }
 }

@@ -5,11 +5,14 @@
 
 pub mod curve;
 mod harmonic;
+pub(crate) mod interpolant;
 mod jet;
 mod morse;
 mod parametric;
 mod polynomial;
 mod roots;
+pub(crate) mod spline;
+pub(crate) mod tails;
 
 pub use harmonic::Harmonic;
 pub use morse::Morse;

@@ -2,6 +2,7 @@
 //! is decided by the settings.
 
 pub mod error;
+pub mod inspect;
 mod names;
 pub mod read;
 
