@@ -22,10 +22,9 @@ impl Data {
     /// A number that is not finite, a bond length or weight that is not positive, fewer than `needed` points.
     pub fn new(points: &[FitPoint], needed: usize) -> Result<Self, FitError> {
         let mut used: Vec<&FitPoint> = points.iter().filter(|p| p.weight != 0.0).collect();
-        if let Some(bad) = used.iter().find(|p| {
-            !(p.r_bohr > 0.0 && p.r_bohr.is_finite() && p.weight > 0.0 && p.weight.is_finite())
-                || !p.energy_hartree.is_finite()
-        }) {
+        let positive = |x: f64| x > 0.0 && x.is_finite();
+        let usable = |p: &FitPoint| positive(p.r_bohr) && positive(p.weight) && p.energy_hartree.is_finite();
+        if let Some(bad) = used.iter().find(|p| !usable(p)) {
             return Err(FitError::NotFinite { r_bohr: bad.r_bohr });
         }
         if used.len() < needed {

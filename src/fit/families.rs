@@ -87,7 +87,7 @@ pub(crate) fn leave_one_out_rms<P: Parametric + Clone>(data: &Data, model: &P) -
     let mut sum = 0.0;
     for i in 0..data.len() {
         let rest = data.without(i);
-        let settings = IterationSettings { most_evaluations: 100, damping: 1e-6 };
+        let settings = IterationSettings { dampings: &[1e-6], ..IterationSettings::QUICK };
         let solution =
             nonlinear::solve(&mut ModelProblem::new(model.clone(), &rest), &start, settings).ok()?;
         let mut other = model.clone();

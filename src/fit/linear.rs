@@ -103,11 +103,11 @@ pub fn solve(design: &Design, b: &[f64], weights: &[f64]) -> Result<LinearSoluti
     let plain: Vec<f64> = scaled.iter().map(|x| x.hi).collect();
     let qr = Qr::new(&plain, n, p).ok_or(LinearError::IllConditioned { reciprocal_condition: 0.0 })?;
     let reciprocal_condition = qr.reciprocal_condition();
-    // Below this the first solution has no digit that a correction could build on (NaN included).
-    if !(reciprocal_condition > 4.0 * f64::EPSILON) {
+    // Below this the first solution has no digit that a correction could build on.
+    if reciprocal_condition.is_nan() || reciprocal_condition <= 4.0 * f64::EPSILON {
         return Err(LinearError::IllConditioned { reciprocal_condition });
     }
-    let (x, r) = refine(&qr, &scaled, &b);
+    let (x, r) = refine(&qr, &scaled, &b, &vec![0.0; p]);
     let coefficients: Vec<f64> = x.iter().map(|x| x.hi).collect();
     if coefficients.iter().any(|x| !x.is_finite()) {
         return Err(LinearError::NotFinite);
@@ -116,27 +116,52 @@ pub fn solve(design: &Design, b: &[f64], weights: &[f64]) -> Result<LinearSoluti
         coefficients,
         residuals: r.iter().zip(&roots).map(|(r, root)| -r.hi / root.hi).collect(),
         weighted_square_sum: r.iter().map(|r| r.hi * r.hi).sum(),
-        unit_covariance: qr.inverse_gram(),
+        unit_covariance: if reciprocal_condition < REFINE_COVARIANCE_BELOW {
+            inverse_gram(&qr, &scaled, n)
+        } else {
+            qr.inverse_gram()
+        },
         leverages: qr.leverages(),
     })
 }
 
-/// Solution x and residual r = b − A x of the augmented system, by corrections from zero.
-fn refine(qr: &Qr, a: &[Precise], b: &[Precise]) -> (Vec<Precise>, Vec<Precise>) {
-    let (n, p) = (b.len(), a.len() / b.len());
+/// The plain (AᵀA)⁻¹ loses as many digits as the condition number has; nine remain above this.
+const REFINE_COVARIANCE_BELOW: f64 = 1e-6;
+
+/// (AᵀA)⁻¹ column by column: with b = 0 and Aᵀ r = −e_k the augmented system has x = (AᵀA)⁻¹ e_k.
+fn inverse_gram(qr: &Qr, a: &[Precise], n: usize) -> Vec<Vec<f64>> {
+    let p = a.len() / n;
+    let zero = vec![Precise::default(); n];
+    let columns: Vec<Vec<Precise>> = (0..p)
+        .map(|k| {
+            let mut right = vec![0.0; p];
+            right[k] = -1.0;
+            refine(qr, a, &zero, &right).0
+        })
+        .collect();
+    (0..p).map(|i| (0..p).map(|j| columns[i.min(j)][i.max(j)].hi).collect()).collect()
+}
+
+/// Solution of the augmented system r + A x = b, Aᵀ r = g, by corrections from zero.
+fn refine(qr: &Qr, a: &[Precise], b: &[Precise], g: &[f64]) -> (Vec<Precise>, Vec<Precise>) {
+    let (n, p) = (b.len(), g.len());
     let (mut x, mut r) = (vec![Precise::default(); p], vec![Precise::default(); n]);
     let mut last_change = f64::INFINITY;
     for _ in 0..MOST_CORRECTIONS {
-        // f = b − r − A x and g = −Aᵀ r, both in twice the working precision.
+        // What is left of both equations, in twice the working precision.
         let mut left: Vec<Precise> = b.iter().zip(&r).map(|(b, r)| b.plus(r.negative())).collect();
         for (column, x) in a.chunks_exact(n).zip(&x) {
             let minus = x.negative();
             left.iter_mut().zip(column).for_each(|(f, a)| *f = f.plus(a.times(minus)));
         }
         let mut f: Vec<f64> = left.iter().map(|f| f.hi).collect();
+        let along = |column: &[Precise]| {
+            column.iter().zip(&r).fold(Precise::default(), |s, (a, r)| s.plus(a.times(*r)))
+        };
         let mut w: Vec<f64> = a
             .chunks_exact(n)
-            .map(|column| -column.iter().zip(&r).fold(Precise::default(), |s, (a, r)| s.plus(a.times(*r))).hi)
+            .zip(g)
+            .map(|(column, &g)| Precise::new(g).plus(along(column).negative()).hi)
             .collect();
         // With A = Q R: w = R⁻ᵀ g, dx = R⁻¹ (c₁ − w), dr = Q (w, c₂), c = Qᵀ f.
         qr.forward_substitute(&mut w);
@@ -147,7 +172,7 @@ fn refine(qr: &Qr, a: &[Precise], b: &[Precise]) -> (Vec<Precise>, Vec<Precise>)
         qr.times(&mut f);
         let scaled: Vec<f64> = dx.iter().zip(&qr.lengths).map(|(d, s)| d * s).collect();
         let change = length(&scaled) + length(&f);
-        if !(change < last_change) {
+        if change.is_nan() || change >= last_change {
             break;
         }
         x.iter_mut().zip(&dx).for_each(|(x, d)| *x = x.plus(Precise::new(*d)));

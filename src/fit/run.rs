@@ -15,6 +15,10 @@ const DEFAULT_DEGREE: u32 = 6;
 /// Degrees offered.
 const DEGREES: (u32, u32) = (2, 12);
 
+/// Starts come from the scan, so a few hundred evaluations suffice; more would be felt while dragging.
+const SETTINGS: IterationSettings =
+    IterationSettings { most_evaluations: 600, ..IterationSettings::THOROUGH };
+
 /// What a family's own fit hands on; energies count from the zero of the data.
 struct Solved {
     model: Model,
@@ -59,8 +63,8 @@ pub fn fit(request: FitRequest, points: &[FitPoint], window: Window) -> Result<F
 pub fn morse_for_base(points: &[FitPoint]) -> Result<Morse, FitError> {
     let data = Data::new(points, 4)?;
     let shape = guess::local_shape(&data)?;
-    let settings = IterationSettings { most_evaluations: 100, ..IterationSettings::default() };
-    let (mut morse, _) = families::fit(&data, &families::morse_starts(&data, &shape), settings)?;
+    let (mut morse, _) =
+        families::fit(&data, &families::morse_starts(&data, &shape), IterationSettings::QUICK)?;
     morse.e_min_hartree += data.zero_hartree;
     Ok(morse)
 }
@@ -130,7 +134,7 @@ fn linear_solved(
 }
 
 fn iterated<P: Parametric + Clone + Into<Model>>(data: &Data, starts: &[P]) -> Result<Solved, FitError> {
-    let (model, solution) = families::fit(data, starts, IterationSettings::default())?;
+    let (model, solution) = families::fit(data, starts, SETTINGS)?;
     Ok(Solved {
         leave_one_out_rms_hartree: families::leave_one_out_rms(data, &model),
         model: model.into(),

@@ -11,7 +11,7 @@ pub(crate) fn covariance(unit: &[Vec<f64>], weighted_square_sum: f64, n: usize) 
 /// 297 (1989)]; none when n ≤ K + 1 or S = 0.
 pub(crate) fn aicc(weighted_square_sum: f64, n: usize, p: usize) -> Option<f64> {
     let k = p + 1;
-    if n <= k + 1 || !(weighted_square_sum > 0.0) {
+    if n <= k + 1 || weighted_square_sum.is_nan() || weighted_square_sum <= 0.0 {
         return None;
     }
     let (n, k) = (n as f64, k as f64);
