@@ -184,6 +184,29 @@ impl Chain {
         psi[end * p] = face[end] / self.mass[end].sqrt();
     }
 
+    /// The vector of this basis of a function given at the mesh points; its values at the walls are dropped.
+    pub fn to_basis(&self, psi: &[f64], vector: &mut [f64]) {
+        let (p, modes) = (self.reference.degree, self.modes);
+        let faces = self.alpha.len();
+        let (face, mode) = vector.split_at_mut(faces);
+        for e in 0..self.elements() {
+            let half = self.element(e).1;
+            face[e] = psi[e * p] * self.mass[e].sqrt();
+            let inside = &psi[e * p + 1..(e + 1) * p];
+            let rows = self.vectors[e * modes * modes..(e + 1) * modes * modes].chunks_exact(modes);
+            for (row, amount) in rows.zip(&mut mode[e * modes..(e + 1) * modes]) {
+                *amount = row
+                    .iter()
+                    .zip(inside)
+                    .zip(&self.reference.weights[1..p])
+                    .map(|((q, x), w)| q * x * (w * half).sqrt())
+                    .sum();
+            }
+        }
+        face[0] = 0.0;
+        face[faces - 1] = 0.0;
+    }
+
     /// Rayleigh functional on `other` (the same elements, another degree) of a level of this chain: its interface
     /// values, with the interiors that solve the equation there at the level's energy.
     ///

@@ -3,14 +3,20 @@
 //! −1/(2μ) ψ″ + [V(r) + X/(2 μ r²)] ψ = E ψ in atomic units, X = J(J+1) − Λ²; X = 0 drops the term.
 
 mod chain;
+mod distortion;
 mod mesh;
+mod observables;
 mod reference_element;
 mod search;
 mod small_eigen;
 mod solve;
 mod wavefunction;
 
+pub use distortion::Distortion;
+pub use observables::{Observables, turning_points_bohr};
+
 use crate::potential::Potential;
+use std::sync::Arc;
 use thiserror::Error;
 
 /// Highest v searched in a potential that rises without limit when the request names none.
@@ -35,9 +41,9 @@ pub struct Wavefunction {
     /// Polynomial degree p: between points e p and (e + 1) p, ψ is the polynomial through the p + 1 values.
     pub degree: usize,
     /// Mesh points in bohr, ascending: Gauss-Lobatto-Legendre nodes of each element, ends shared.
-    pub r_bohr: Vec<f64>,
+    pub r_bohr: Arc<[f64]>,
     /// Quadrature weights in bohr.
-    pub weight_bohr: Vec<f64>,
+    pub weight_bohr: Arc<[f64]>,
     /// ψ in bohr^(−1/2); the innermost lobe is positive.
     pub psi: Vec<f64>,
 }
@@ -92,7 +98,32 @@ pub fn bound_states(
     potential: &dyn Potential,
     request: &RadialRequest,
 ) -> Result<Vec<BoundState>, RadialError> {
-    solve::bound_states(potential, request)
+    Ok(solve(potential, request)?.states)
+}
+
+/// All bound states with the discretised problem they came from, from which centrifugal constants and
+/// expectation values follow without solving again.
+#[derive(Clone, Debug)]
+pub struct Solution {
+    /// The states, v ascending.
+    pub states: Vec<BoundState>,
+    /// None where nothing is bound.
+    inner: Option<Inner>,
+}
+
+/// The discretised problem and its levels in the coordinates of the chain.
+#[derive(Clone, Debug)]
+struct Inner {
+    problem: solve::Problem,
+    found: Vec<search::Found>,
+}
+
+/// As [`bound_states`], keeping the discretised problem.
+///
+/// # Errors
+/// [`RadialError`]
+pub fn solve(potential: &dyn Potential, request: &RadialRequest) -> Result<Solution, RadialError> {
+    solve::solve(potential, request)
 }
 
 /// How many levels lie below `energy_hartree` (at most the limit), by Sylvester's law of inertia on a finer mesh

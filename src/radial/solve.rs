@@ -1,15 +1,20 @@
 //! From a potential to its levels: range, mesh, count, levels, error estimate.
 
-use super::chain::{Chain, Factors};
+use super::chain::{Chain, Factors, node};
 use super::mesh::{MeshDemand, Walk, survey_points};
 use super::search::{Found, lowest_levels};
-use super::{BoundState, HIGHEST_V_WITHOUT_LIMIT, RadialError, RadialRequest, Wavefunction};
+use super::{BoundState, HIGHEST_V_WITHOUT_LIMIT, Inner, RadialError, RadialRequest, Solution, Wavefunction};
 use crate::potential::Potential;
+use std::sync::Arc;
 
 /// Polynomial degree of the elements.
 pub(super) const DEGREE: usize = 14;
 /// Levels bound by less than this share of the depth are not searched for by extending the mesh.
 const LEAST_BINDING: f64 = 1e-15;
+/// No accuracy below this is attempted: rounding.
+const LEAST_ACCURACY: f64 = 1e-12;
+/// Rounding of an energy, relative to the depth searched (measured: below 1e-13 on Morse functions).
+const ROUNDING: f64 = 2e-13;
 /// Rounds of refinement when the estimated error exceeds the accuracy asked for.
 const MOST_REFINEMENTS: usize = 4;
 
@@ -242,28 +247,27 @@ pub(super) fn levels(problem: &Problem) -> Vec<Found> {
     )
 }
 
-/// See [`super::bound_states`].
-pub(super) fn bound_states(
-    potential: &dyn Potential,
-    request: &RadialRequest,
-) -> Result<Vec<BoundState>, RadialError> {
+/// See [`super::solve`].
+pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Result<Solution, RadialError> {
+    let align = !potential.breakpoints_bohr().is_empty();
     let mut factor = 1.0;
-    let mut align = !potential.breakpoints_bohr().is_empty();
-    for round in 0..=MOST_REFINEMENTS {
+    let mut round = 0;
+    loop {
         let Some(problem) = problem(potential, request, factor, align)? else {
-            return Ok(Vec::new());
+            return Ok(Solution { states: Vec::new(), inner: None });
         };
         let found = levels(&problem);
         let errors = estimated_errors(potential, &problem, &found)?;
         let depth = problem.demand.top_hartree - problem.demand.bottom_hartree;
         let worst = errors.iter().fold(0.0_f64, |a, &b| a.max(b));
-        if worst <= request.relative_accuracy.max(1e-13) * depth || round == MOST_REFINEMENTS {
-            return Ok(states(&problem, found, &errors));
+        let enough = worst <= request.relative_accuracy.max(LEAST_ACCURACY) * depth;
+        if enough || round == MOST_REFINEMENTS {
+            let states = states(&problem, &found, &errors);
+            return Ok(Solution { states, inner: Some(Inner { problem, found }) });
         }
         factor *= 0.75;
-        align = !potential.breakpoints_bohr().is_empty();
+        round += 1;
     }
-    Ok(Vec::new())
 }
 
 /// Difference to the same mesh with polynomials one degree lower, plus rounding.
@@ -281,20 +285,33 @@ fn estimated_errors(
         demand.degree - 1,
     )?;
     let depth = demand.top_hartree - demand.bottom_hartree;
-    let rounding = 2e-13 * depth;
+    let rounding = ROUNDING * depth;
     Ok(found
         .iter()
         .map(|level| (problem.chain.energy_on(&coarse, level) - level.energy).abs() + rounding)
         .collect())
 }
 
-fn states(problem: &Problem, found: Vec<Found>, errors: &[f64]) -> Vec<BoundState> {
+fn states(problem: &Problem, found: &[Found], errors: &[f64]) -> Vec<BoundState> {
+    let (r_bohr, weight_bohr) = mesh_points(&problem.chain);
     found
-        .into_iter()
+        .iter()
         .zip(errors)
         .enumerate()
         .map(|(v, (level, &error_hartree))| {
-            let wavefunction = wavefunction(&problem.chain, &level.vector);
+            let mut psi = vec![0.0; r_bohr.len()];
+            problem.chain.to_nodes(&level.vector, &mut psi);
+            let largest = psi.iter().fold(0.0_f64, |a, b| a.max(b.abs()));
+            let first = psi.iter().find(|x| x.abs() > 1e-4 * largest);
+            if first.is_some_and(|x| *x < 0.0) {
+                psi.iter_mut().for_each(|x| *x = -*x);
+            }
+            let wavefunction = Wavefunction {
+                degree: problem.chain.reference.degree,
+                r_bohr: r_bohr.clone(),
+                weight_bohr: weight_bohr.clone(),
+                psi,
+            };
             BoundState {
                 v,
                 energy_hartree: level.energy,
@@ -306,31 +323,21 @@ fn states(problem: &Problem, found: Vec<Found>, errors: &[f64]) -> Vec<BoundStat
         .collect()
 }
 
-/// Mesh values of a vector of the chain, first lobe positive.
-pub(super) fn wavefunction(chain: &Chain, vector: &[f64]) -> Wavefunction {
+/// Mesh points and their lumped weights, in bohr.
+fn mesh_points(chain: &Chain) -> (Arc<[f64]>, Arc<[f64]>) {
     let (p, elements) = (chain.reference.degree, chain.elements());
-    let points = elements * p + 1;
-    let mut wavefunction = Wavefunction {
-        degree: p,
-        r_bohr: vec![0.0; points],
-        weight_bohr: vec![0.0; points],
-        psi: vec![0.0; points],
-    };
+    let mut r = Vec::with_capacity(elements * p + 1);
+    let mut weight = Vec::with_capacity(elements * p + 1);
     for e in 0..elements {
         let (from, half) = chain.element(e);
-        for i in 0..p {
-            wavefunction.r_bohr[e * p + i] = from + half * (1.0 + chain.reference.nodes[i]);
-            wavefunction.weight_bohr[e * p + i] =
-                if i == 0 { chain.mass[e] } else { half * chain.reference.weights[i] };
+        r.push(from);
+        weight.push(chain.mass[e]);
+        for i in 1..p {
+            r.push(node(from, half, chain.reference.nodes[i]));
+            weight.push(half * chain.reference.weights[i]);
         }
     }
-    wavefunction.r_bohr[points - 1] = chain.boundaries[elements];
-    wavefunction.weight_bohr[points - 1] = chain.mass[elements];
-    chain.to_nodes(vector, &mut wavefunction.psi);
-    let largest = wavefunction.psi.iter().fold(0.0_f64, |a, b| a.max(b.abs()));
-    let first = wavefunction.psi.iter().find(|x| x.abs() > 1e-4 * largest);
-    if first.is_some_and(|x| *x < 0.0) {
-        wavefunction.psi.iter_mut().for_each(|x| *x = -*x);
-    }
-    wavefunction
+    r.push(chain.boundaries[elements]);
+    weight.push(chain.mass[elements]);
+    (r.into(), weight.into())
 }

@@ -19,7 +19,7 @@ impl Wavefunction {
     pub fn expectation(&self, f: impl Fn(f64) -> f64) -> f64 {
         self.r_bohr
             .iter()
-            .zip(&self.weight_bohr)
+            .zip(self.weight_bohr.iter())
             .zip(&self.psi)
             // ψ = 0 at the walls, where f need not be finite.
             .filter(|(_, psi)| **psi != 0.0)
@@ -35,21 +35,32 @@ impl Wavefunction {
             return 0.0;
         }
         let reference = ReferenceElement::of_degree(self.degree);
-        let mut total = 0.0;
-        for e in 0..self.elements() {
-            let (left, right, values) = self.element(e);
-            let (a, b) = (left.max(from_bohr), right.min(to_bohr));
-            if !(b > a) {
-                continue;
-            }
-            let half = 0.5 * (b - a);
-            for (x, w) in reference.gauss_nodes.iter().zip(&reference.gauss_weights) {
+        (0..self.elements())
+            .filter_map(|e| {
+                let (left, right, _) = self.element(e);
+                let (a, b) = (left.max(from_bohr), right.min(to_bohr));
+                (b > a).then(|| self.probability_in_element(reference, e, (a, b)))
+            })
+            .sum()
+    }
+
+    /// ∫ψ² over part of one element; whole elements by their nodes, parts by Gauss-Legendre quadrature.
+    fn probability_in_element(&self, reference: &ReferenceElement, e: usize, (a, b): (f64, f64)) -> f64 {
+        let (left, right, values) = self.element(e);
+        let half = 0.5 * (b - a);
+        if a <= left && b >= right {
+            return reference.weights.iter().zip(values).map(|(w, y)| w * half * y * y).sum();
+        }
+        reference
+            .gauss_nodes
+            .iter()
+            .zip(&reference.gauss_weights)
+            .map(|(x, w)| {
                 let r = a + half * (1.0 + x);
                 let psi = reference.interpolate(values, 2.0 * (r - left) / (right - left) - 1.0);
-                total += w * half * psi * psi;
-            }
-        }
-        total
+                w * half * psi * psi
+            })
+            .sum()
     }
 
     /// ψ at the given bond lengths (any order), from the polynomial of the element each lies in; 0 outside the

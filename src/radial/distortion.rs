@@ -1,0 +1,91 @@
+//! Centrifugal constants by perturbation of the discretised problem.
+//!
+//! With W = 1/(2μr²) and E(v, X) = E + B X − D X² + H X³: B = ⟨W⟩, (H₀ − E) ψ₁ = −(W − B) ψ₀ with ψ₁ ⊥ ψ₀,
+//! −D = ⟨ψ₀|W|ψ₁⟩, H = ⟨ψ₁|W − B|ψ₁⟩ (J. M. Hutson, J. Phys. B 14, 851 (1981); the equations are solved here on
+//! the elements of the level itself).
+
+use super::Solution;
+use super::chain::{Chain, Factors};
+use super::search::Found;
+
+/// Centrifugal constants of one level.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Distortion {
+    /// B_v = ħ²⟨r⁻²⟩/(2μ) in hartree.
+    pub b_v_hartree: f64,
+    /// D_v in hartree.
+    pub d_v_hartree: f64,
+    /// H_v in hartree.
+    pub h_v_hartree: f64,
+}
+
+/// Numbers reused from level to level.
+struct Work {
+    /// 1/(2μr²) at the mesh points.
+    rotation: Vec<f64>,
+    nodes: Vec<f64>,
+    image: Vec<f64>,
+    first: Vec<f64>,
+    factors: Factors,
+}
+
+impl Solution {
+    /// Centrifugal constants of the levels `0..levels` (all there are, if fewer).
+    ///
+    /// One factorisation and one solve a level. For X ≠ 0 they are the derivatives at that X.
+    pub fn distortion(&self, levels: usize) -> Vec<Distortion> {
+        let Some(inner) = &self.inner else {
+            return Vec::new();
+        };
+        let chain = &inner.problem.chain;
+        let Some(state) = self.states.first() else {
+            return Vec::new();
+        };
+        let two_mu = inner.problem.demand.two_mu;
+        let r = &state.wavefunction.r_bohr;
+        let mut work = Work {
+            // At the walls ψ = 0; r = 0 may be one of them.
+            rotation: r.iter().map(|r| if *r == 0.0 { 0.0 } else { 1.0 / (two_mu * r * r) }).collect(),
+            nodes: vec![0.0; r.len()],
+            image: vec![0.0; chain.len()],
+            first: vec![0.0; chain.len()],
+            factors: Factors::default(),
+        };
+        inner.found.iter().take(levels).map(|level| distortion(chain, level, &mut work)).collect()
+    }
+}
+
+/// W times a vector, both in the basis of the chain.
+fn rotate(chain: &Chain, vector: &[f64], rotation: &[f64], nodes: &mut [f64], image: &mut [f64]) {
+    chain.to_nodes(vector, nodes);
+    for (x, w) in nodes.iter_mut().zip(rotation) {
+        *x *= w;
+    }
+    chain.to_basis(nodes, image);
+}
+
+fn dot(a: &[f64], b: &[f64]) -> f64 {
+    a.iter().zip(b).map(|(x, y)| x * y).sum()
+}
+
+fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
+    let zero = &level.vector;
+    rotate(chain, zero, &work.rotation, &mut work.nodes, &mut work.image);
+    let b = dot(zero, &work.image);
+    // −(W − B) ψ₀, orthogonal to ψ₀ by construction.
+    for ((y, w), x) in work.first.iter_mut().zip(&work.image).zip(zero) {
+        *y = b * x - w;
+    }
+    // At the level's own energy the solve leaves some ψ₀ in the result, which is taken out again.
+    work.factors.factorise(chain, level.energy);
+    work.factors.solve(chain, &mut work.first);
+    let part = dot(zero, &work.first);
+    for (y, x) in work.first.iter_mut().zip(zero) {
+        *y -= part * x;
+    }
+    let d = -dot(&work.first, &work.image);
+    let norm2 = dot(&work.first, &work.first);
+    rotate(chain, &work.first, &work.rotation, &mut work.nodes, &mut work.image);
+    let h = dot(&work.first, &work.image) - b * norm2;
+    Distortion { b_v_hartree: b, d_v_hartree: d, h_v_hartree: h }
+}

@@ -1,0 +1,189 @@
+//! What is reported of one level: turning points, probabilities, averages, B_v.
+
+use super::{Inner, Solution};
+use crate::potential::Potential;
+use crate::units::to_per_cm;
+
+/// A level's figures that need its wavefunction and the potential, and nothing of the scan.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Observables {
+    /// Vibrational quantum number.
+    pub v: usize,
+    /// Energy above V_e in cm⁻¹.
+    pub energy_per_cm: f64,
+    /// Estimated numerical error of the energy in cm⁻¹.
+    pub numerical_error_per_cm: f64,
+    /// V_inf − E in cm⁻¹; none for a potential that rises without limit.
+    pub below_limit_per_cm: Option<f64>,
+    /// B_v = ħ²⟨r⁻²⟩/(2μ) in cm⁻¹.
+    pub b_v_per_cm: f64,
+    /// Innermost classical turning point in bohr; the wall where the range ends inside the allowed region.
+    pub inner_turning_point_bohr: f64,
+    /// Outermost classical turning point in bohr; likewise.
+    pub outer_turning_point_bohr: f64,
+    /// ⟨r⟩ in bohr.
+    pub mean_r_bohr: f64,
+    /// ⟨r²⟩ in bohr².
+    pub mean_square_r_bohr2: f64,
+    /// ⟨(r − r_e)²⟩ in bohr².
+    pub mean_square_x_bohr2: f64,
+    /// Probability inside the innermost turning point.
+    pub forbidden_inner: f64,
+    /// Probability beyond the outermost turning point.
+    pub forbidden_outer: f64,
+    /// Probability wherever V > E: beyond both turning points and under barriers between them.
+    pub forbidden_probability: f64,
+}
+
+/// All bond lengths (bohr, ascending) where `effective` crosses `energy_hartree` between neighbouring points of
+/// `r_bohr` (the two walls left out), with `effective_hartree` its values there.
+fn crossings(
+    effective: &dyn Fn(f64) -> f64,
+    energy_hartree: f64,
+    r_bohr: &[f64],
+    effective_hartree: &dyn Fn(usize) -> f64,
+) -> Vec<f64> {
+    let mut found = Vec::new();
+    let mut last = effective_hartree(1) - energy_hartree;
+    for i in 2..r_bohr.len() - 1 {
+        let now = effective_hartree(i) - energy_hartree;
+        if (last > 0.0) != (now > 0.0) {
+            let (a, b) = (r_bohr[i - 1], r_bohr[i]);
+            found.push(root(&|r| effective(r) - energy_hartree, a, b, last, now));
+        }
+        last = now;
+    }
+    found
+}
+
+/// Root of `f` between `a` and `b`, where it has the values `fa` and `fb` of opposite sign: the Illinois variant of
+/// regula falsi (M. Dowell, P. Jarratt, BIT 11, 168 (1971)) with bisection where it is slow.
+fn root(f: &dyn Fn(f64) -> f64, mut a: f64, mut b: f64, mut fa: f64, mut fb: f64) -> f64 {
+    for round in 0..200 {
+        let mut x = b - fb * (b - a) / (fb - fa);
+        if !(x > a && x < b) || round % 8 == 7 {
+            x = 0.5 * (a + b);
+        }
+        if (b - a).abs() <= 2.0 * f64::EPSILON * x.abs() || x == a || x == b {
+            return x;
+        }
+        let fx = f(x);
+        if fx == 0.0 || fx.is_nan() {
+            return x;
+        }
+        if (fx > 0.0) == (fb > 0.0) {
+            (b, fb) = (x, fx);
+            fa *= 0.5;
+        } else {
+            (a, fa) = (x, fx);
+            fb *= 0.5;
+        }
+    }
+    0.5 * (a + b)
+}
+
+/// Innermost and outermost classical turning points (bohr) of `energy_hartree` on V alone: roots of V = E outside
+/// all allowed regions that a walk from the minimum in steps of 1 % of r_e meets; the end of the range where it ends
+/// first. None when V exceeds E at the minimum.
+pub fn turning_points_bohr(potential: &dyn Potential, energy_hartree: f64) -> Option<(f64, f64)> {
+    let minimum = potential.minimum_bohr();
+    let f = |r: f64| potential.energy_hartree(r) - energy_hartree;
+    let at_minimum = f(minimum);
+    if !(at_minimum <= 0.0) {
+        return None;
+    }
+    let (from, to) = potential.range_bohr();
+    let walk = |end: f64, sign: f64| {
+        let mut step = 0.01 * minimum.abs().max(1e-3);
+        let (mut r, mut value) = (minimum, at_minimum);
+        for _ in 0..2000 {
+            let next = r + sign * step;
+            let next = if (next - end) * sign >= 0.0 { end } else { next };
+            let there = f(next);
+            if there > 0.0 {
+                let (low, high) =
+                    if sign > 0.0 { ((r, value), (next, there)) } else { ((next, there), (r, value)) };
+                let there = if there.is_finite() { there } else { f64::MAX };
+                return match sign > 0.0 {
+                    true => root(&f, low.0, high.0, low.1, there),
+                    false => root(&f, low.0, high.0, there, high.1),
+                };
+            }
+            if next == end {
+                break;
+            }
+            (r, value) = (next, there);
+            step *= 1.02;
+        }
+        r
+    };
+    Some((walk(from, -1.0), walk(to, 1.0)))
+}
+
+impl Solution {
+    /// Figures of every level; `r_e_bohr` and `v_e_hartree` are the zero of displacements and energies.
+    pub fn observables(
+        &self,
+        potential: &dyn Potential,
+        r_e_bohr: f64,
+        v_e_hartree: f64,
+    ) -> Vec<Observables> {
+        let Some(inner) = &self.inner else {
+            return Vec::new();
+        };
+        (0..self.states.len())
+            .map(|v| self.observables_of(inner, potential, v, (r_e_bohr, v_e_hartree)))
+            .collect()
+    }
+
+    fn observables_of(
+        &self,
+        inner: &Inner,
+        potential: &dyn Potential,
+        v: usize,
+        (r_e, v_e): (f64, f64),
+    ) -> Observables {
+        let state = &self.states[v];
+        let psi = &state.wavefunction;
+        let demand = &inner.problem.demand;
+        let (two_mu, x) = (demand.two_mu, demand.rotation_x);
+        let effective =
+            |r: f64| potential.energy_hartree(r) + if x == 0.0 { 0.0 } else { x / (two_mu * r * r) };
+        let (p, on_elements) = (psi.degree, &inner.problem.chain.potential);
+        let last = psi.r_bohr.len() - 1;
+        let at_point = |i: usize| {
+            let e = (i / p).min(last / p - 1);
+            on_elements[e * (p + 1) + (i - e * p)]
+        };
+        let energy = state.energy_hartree;
+        let turning = crossings(&effective, energy, &psi.r_bohr, &at_point);
+        let (from, to) = (psi.r_bohr[0], psi.r_bohr[last]);
+        // A wall inside the allowed region takes the place of the turning point.
+        let inner_end = if at_point(1) > energy { turning.first().copied().unwrap_or(to) } else { from };
+        let outer_end =
+            if at_point(last - 1) > energy { turning.last().copied().unwrap_or(from) } else { to };
+        let forbidden_inner = psi.probability(from, inner_end);
+        let forbidden_outer = psi.probability(outer_end, to);
+        let between: Vec<f64> =
+            turning.iter().copied().filter(|r| *r > inner_end && *r < outer_end).collect();
+        let barriers: f64 = between.chunks_exact(2).map(|pair| psi.probability(pair[0], pair[1])).sum();
+        let limit = potential.limit_hartree();
+        let mean_r = psi.expectation(|r| r);
+        let mean_square_r = psi.expectation(|r| r * r);
+        Observables {
+            v: state.v,
+            energy_per_cm: to_per_cm(energy - v_e),
+            numerical_error_per_cm: to_per_cm(state.error_hartree),
+            below_limit_per_cm: limit.is_finite().then(|| to_per_cm(limit - energy)),
+            b_v_per_cm: to_per_cm(psi.expectation(|r| 1.0 / (two_mu * r * r))),
+            inner_turning_point_bohr: inner_end,
+            outer_turning_point_bohr: outer_end,
+            mean_r_bohr: mean_r,
+            mean_square_r_bohr2: mean_square_r,
+            mean_square_x_bohr2: psi.expectation(|r| (r - r_e) * (r - r_e)),
+            forbidden_inner,
+            forbidden_outer,
+            forbidden_probability: forbidden_inner + forbidden_outer + barriers,
+        }
+    }
+}
