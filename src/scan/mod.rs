@@ -170,6 +170,11 @@ impl Scan {
         ScanError::NotFinite { line: self.line(row), column, name: name.to_owned(), found: found.to_string() }
     }
 
+    /// The name of the bond-length column without its unit, for display.
+    pub fn length_label(&self) -> String {
+        read::label_of(&self.length_column)
+    }
+
     /// Line of the file a row stands on, from 1; the row's number from 1 when it comes from no text.
     pub fn line(&self, row: usize) -> usize {
         self.row_lines.get(row).copied().unwrap_or(row + 1)

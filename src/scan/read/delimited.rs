@@ -274,8 +274,8 @@ impl<'a> Reader<'a> {
 
     fn row(&mut self, line: Line<'a>, row: &Row<'a>) -> Result<(), ScanError> {
         if row.cells.len() != self.format.columns {
-            // A text cell explains a wrong width better than the count does.
-            if row.cells.len() == 1 && row.cells.contains(&Cell::Text) {
+            // A row that begins with a word is a remark: that explains more than the count does.
+            if row.cells.first() == Some(&Cell::Text) {
                 if let Some(error) = bad_cell(row, line.number, self.format.sign, self.names()) {
                     return Err(error);
                 }

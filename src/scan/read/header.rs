@@ -51,7 +51,8 @@ pub(crate) fn find(
                 choices.iter().map(|cells| cells.iter().map(|c| ColumnName::parse(c)).collect()).collect();
             let explicit = !is_comment && nearness == 0 && delimiter.sign().is_some();
             let found = choices.iter().zip(&parsed).enumerate().find(|(i, (cells, names))| {
-                fits(cells) && ((explicit && *i == 0) || is_header(names, is_comment))
+                let taken_as_is = explicit && *i == 0 && !cells.iter().any(|c| starts_like_number(c));
+                fits(cells) && (taken_as_is || is_header(names, is_comment))
             });
             if let Some((_, (_, names))) = found {
                 return Ok(Some(finish(line.number, names.clone(), units)));
@@ -80,6 +81,11 @@ fn finish(line: usize, names: Vec<ColumnName>, units: Option<Vec<String>>) -> He
         _ => names,
     };
     Header { line, names }
+}
+
+/// A name does not begin like a number: such a line is a row gone wrong.
+fn starts_like_number(cell: &str) -> bool {
+    cell.trim_start_matches(['+', '-', '.', ',']).starts_with(|c: char| c.is_ascii_digit())
 }
 
 /// Whether a line that stands alone reads as names of columns of a scan.

@@ -55,3 +55,8 @@ pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Resu
 pub(crate) fn sha256_hex(bytes: &[u8]) -> String {
     Sha256::digest(bytes).iter().map(|b| format!("{b:02x}")).collect()
 }
+
+/// A column header without its unit.
+pub(crate) fn label_of(header: &str) -> String {
+    columns::ColumnName::parse(header).label
+}
