@@ -16,7 +16,8 @@ pub(crate) fn find(names: &[(&str, &str)], wanted: &str) -> Result<usize, ScanEr
     if wanted.is_empty() {
         return Err(unknown());
     }
-    let steps: [&dyn Fn(usize, &(&str, &str)) -> bool; 5] = [
+    type Step<'a> = &'a dyn Fn(usize, &(&str, &str)) -> bool;
+    let steps: [Step<'_>; 5] = [
         &|_, n| n.0 == wanted || n.1 == wanted,
         &|_, n| n.0.to_lowercase() == lower || n.1.to_lowercase() == lower,
         &|i, _| wanted.parse() == Ok(i + 1),

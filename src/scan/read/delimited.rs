@@ -58,10 +58,11 @@ fn no_table(text: &str, sample: &[Line<'_>]) -> ScanError {
             let number = |c: &Cell| matches!(c, Cell::Number(_));
             if row.cells.len() == 1 && row.cells.iter().all(number) {
                 single.get_or_insert(line.number);
-            } else if row.cells.len() > 1 && row.cells.iter().any(number) {
-                if let Some(error) = bad_cell(&row, line.number, DecimalSign::Point, &[]) {
-                    return error;
-                }
+            } else if row.cells.len() > 1
+                && row.cells.iter().any(number)
+                && let Some(error) = bad_cell(&row, line.number, DecimalSign::Point, &[])
+            {
+                return error;
             }
         }
     }
@@ -191,9 +192,7 @@ impl<'a> Reader<'a> {
                 return self.text(TextLine { number: line.number, text, is_comment: false });
             }
             self.find_header()?;
-        } else if row.is_blank() {
-            return Ok(());
-        } else if !data && self.header_again(&line)? {
+        } else if row.is_blank() || (!data && self.header_again(&line)?) {
             return Ok(());
         }
         self.row(line, row)
@@ -232,10 +231,12 @@ impl<'a> Reader<'a> {
             row.read(text.text, self.format.delimiter, self.format.sign);
             let numbers = row.cells.iter().any(|c| matches!(c, Cell::Number(_)));
             let above = self.header.is_some() || text.number == last_plain;
-            if above && numbers && row.cells.len() == self.format.columns {
-                if let Some(error) = bad_cell(&row, text.number, self.format.sign, self.names()) {
-                    return Err(error);
-                }
+            if above
+                && numbers
+                && row.cells.len() == self.format.columns
+                && let Some(error) = bad_cell(&row, text.number, self.format.sign, self.names())
+            {
+                return Err(error);
             }
         }
         // Titles are prose, the header itself is not.
@@ -275,10 +276,10 @@ impl<'a> Reader<'a> {
     fn row(&mut self, line: Line<'a>, row: &Row<'a>) -> Result<(), ScanError> {
         if row.cells.len() != self.format.columns {
             // A row that begins with a word is a remark: that explains more than the count does.
-            if row.cells.first() == Some(&Cell::Text) {
-                if let Some(error) = bad_cell(row, line.number, self.format.sign, self.names()) {
-                    return Err(error);
-                }
+            if row.cells.first() == Some(&Cell::Text)
+                && let Some(error) = bad_cell(row, line.number, self.format.sign, self.names())
+            {
+                return Err(error);
             }
             let (found, expected) = (row.cells.len(), self.format.columns);
             return Err(ScanError::RaggedRow { line: line.number, found, expected });
