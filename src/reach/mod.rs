@@ -1,5 +1,17 @@
 //! Reach: the interval of displacements, and the levels, for which the harmonic picture holds.
 
+mod interval;
+mod levels;
+mod temperature;
+
+pub use interval::{energy_and_force_reach, energy_and_force_reach_of};
+pub use levels::{level_reach, spacing_reach};
+pub use temperature::temperature_reach;
+
+use crate::potential::Potential;
+use crate::potential::curve::ScanCurve;
+use crate::radial::Level;
+use crate::units::omega_e_per_cm;
 use serde::{Deserialize, Serialize};
 
 /// Tolerances of the reach.
@@ -81,4 +93,42 @@ pub struct TemperatureReach {
     pub mean_energy: Option<f64>,
     /// ⟨x²⟩ within 5 %.
     pub mean_square_x: Option<f64>,
+}
+
+/// The reach of a curve by every criterion; none without a minimum of positive curvature.
+///
+/// `reduced_mass_me`: none leaves out what needs a mass. `levels`: rotationless, v ascending, energies
+/// from V_e; empty leaves out the reach by level, spacing and temperature.
+pub fn reach(
+    curve: &ScanCurve,
+    reduced_mass_me: Option<f64>,
+    levels: &[Level],
+    settings: &ReachSettings,
+) -> Option<Reach> {
+    let (energy, force) = energy_and_force_reach(curve, settings)?;
+    let k = curve.derivatives_hartree(curve.local.r_e_bohr)[2];
+    let tolerance = settings.tolerance;
+    let mut reach = Reach {
+        tolerance,
+        energy,
+        force,
+        levels: None,
+        spacing: None,
+        temperature_kelvin: TemperatureReach::default(),
+        zero_point_amplitude_bohr: None,
+    };
+    if let Some(mass) = reduced_mass_me.filter(|m| *m > 0.0) {
+        let omega = omega_e_per_cm(k, mass);
+        // sqrt(ħ/(μ ω)) with ω = sqrt(k/μ).
+        reach.zero_point_amplitude_bohr = Some((k * mass).powf(-0.25));
+        if !levels.is_empty() {
+            let energies: Vec<f64> = levels.iter().map(|l| l.energy_per_cm).collect();
+            let or_default = |given: Option<f64>| given.unwrap_or(tolerance * omega);
+            reach.levels = Some(level_reach(&energies, omega, or_default(settings.level_tolerance_per_cm)));
+            reach.spacing =
+                Some(spacing_reach(&energies, omega, or_default(settings.spacing_tolerance_per_cm)));
+            reach.temperature_kelvin = temperature_reach(levels, omega, mass);
+        }
+    }
+    Some(reach)
 }

@@ -1,6 +1,15 @@
 //! Spectroscopic constants from derivatives and from levels.
 
-use crate::estimate::Estimate;
+mod from_derivatives;
+mod from_levels;
+
+pub use from_derivatives::from_derivatives;
+pub use from_levels::from_levels;
+
+use crate::estimate::{ErrorSource, Estimate};
+use crate::potential::curve::ScanCurve;
+use crate::radial::Level;
+use crate::units::to_per_cm;
 
 /// Constants from the derivatives of V at r_e [Dunham 1932]. All in cm⁻¹.
 #[derive(Clone, Debug, PartialEq)]
@@ -17,6 +26,19 @@ pub struct DerivativeConstants {
     pub centrifugal_d_e_per_cm: Estimate,
     /// Dunham's Y_00 as far as the derivatives go.
     pub y_00_per_cm: Option<Estimate>,
+    /// Further Y_kl whose leading term needs no more than V⁗: Y_02, Y_12, Y_03, Y_04.
+    pub dunham_per_cm: Vec<DunhamCoefficient>,
+}
+
+/// A coefficient of E(v, J) = Σ Y_kl (v + ½)ᵏ [J(J + 1)]ˡ.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct DunhamCoefficient {
+    /// Power of (v + ½).
+    pub k: u32,
+    /// Power of J(J + 1).
+    pub l: u32,
+    /// The value in cm⁻¹.
+    pub value_per_cm: Estimate,
 }
 
 /// Constants fitted to numerical levels. All in cm⁻¹.
@@ -51,4 +73,50 @@ pub struct Constants {
     pub well_depth_per_cm: Option<Estimate>,
     /// Dissociation energy V_inf − E(0,0) in cm⁻¹; none where the asymptote is assumed.
     pub d_0_per_cm: Option<Estimate>,
+}
+
+/// What the constants from levels may use.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct LevelSet {
+    /// Highest v.
+    pub highest_v: usize,
+    /// Degree in (v + ½).
+    pub degree: usize,
+}
+
+/// All constants of a curve. Without a mass only the well depth; without levels only what needs none.
+///
+/// `levels`: rotationless, v ascending from 0, energies from V_e.
+pub fn constants(
+    curve: &ScanCurve,
+    reduced_mass_me: Option<f64>,
+    levels: &[Level],
+    set: LevelSet,
+) -> Constants {
+    let error = |e: Option<f64>, value: f64| match e {
+        Some(e) => Estimate::with_error(value, e, ErrorSource::Interpolation),
+        None => Estimate::exact(value),
+    };
+    let level = |v: usize| levels.get(v).map(|l| error(l.energy_error_per_cm, l.energy_per_cm));
+    let minus = |a: Estimate, b: Estimate| {
+        // Errors of neighbouring levels go together; the root of the squares is the cautious choice.
+        let both = a.std_error.zip(b.std_error).map(|(a, b)| a.hypot(b));
+        error(both, a.value - b.value)
+    };
+    let depth = curve.asymptote_hartree().and(curve.tail_depth_hartree()).map(|depth| {
+        let own = curve.v_e_hartree;
+        Estimate { value: depth, ..own }.scaled(to_per_cm(1.0))
+    });
+    let zero_point = level(0);
+    Constants {
+        from_derivatives: reduced_mass_me.filter(|m| *m > 0.0).map(|mass| from_derivatives(curve, mass)),
+        from_levels: from_levels(levels, set),
+        zero_point_energy_per_cm: zero_point,
+        fundamental_per_cm: level(1).zip(zero_point).map(|(one, zero)| minus(one, zero)),
+        well_depth_per_cm: depth,
+        d_0_per_cm: depth.zip(zero_point).map(|(depth, zero)| match (depth.std_error, zero.std_error) {
+            (Some(_), None) => Estimate { value: depth.value - zero.value, ..depth },
+            _ => minus(depth, zero),
+        }),
+    }
 }
