@@ -84,10 +84,10 @@ pub(crate) fn leave_one_out_rms<P: Parametric + Clone>(data: &Data, model: &P) -
     if data.len() <= start.len() {
         return None;
     }
+    let settings = IterationSettings { dampings: &[1e-6], ..IterationSettings::QUICK };
     let mut sum = 0.0;
     for i in 0..data.len() {
         let rest = data.without(i);
-        let settings = IterationSettings { dampings: &[1e-6], ..IterationSettings::QUICK };
         let solution =
             nonlinear::solve(&mut ModelProblem::new(model.clone(), &rest), &start, settings).ok()?;
         let mut other = model.clone();

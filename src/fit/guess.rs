@@ -1,9 +1,9 @@
 //! Starting values found from the scan itself.
 
-use super::FitError;
 use super::data::Data;
-use super::polynomial;
+use super::nonlinear::IterationSettings;
 use super::qr::{Qr, length};
+use super::{FitError, families, polynomial};
 use crate::potential::{LocalShape, Morse, Variable};
 
 /// The shape near the minimum takes the points within this fraction of the lowest point's r,
@@ -53,6 +53,27 @@ pub(crate) fn local_shape(data: &Data) -> Result<LocalShape, FitError> {
         third_hartree: 6.0 * coefficient(3),
         fourth_hartree: 24.0 * coefficient(4),
         depth_hartree: (1.2 * rise).max(second_hartree * 0.01),
+    })
+}
+
+/// The shape with the depth of the Morse function through the points, where there is one: what is left to
+/// guess for a family that is not too far from Morse.
+///
+/// # Errors
+/// As for [`local_shape`].
+pub(crate) fn well_shape(data: &Data) -> Result<LocalShape, FitError> {
+    let shape = local_shape(data)?;
+    let Some(start) = morse_start(data, &shape) else { return Ok(shape) };
+    let morse = families::fit(data, &[start], IterationSettings::QUICK).map_or(start, |(morse, _)| morse);
+    let a = morse.a_per_bohr;
+    let second_hartree = morse.force_constant_hartree_per_bohr2();
+    Ok(LocalShape {
+        e_min_hartree: morse.e_min_hartree,
+        r_e_bohr: morse.r_e_bohr,
+        second_hartree,
+        third_hartree: -3.0 * a * second_hartree,
+        fourth_hartree: 7.0 * a * a * second_hartree,
+        depth_hartree: morse.well_depth_hartree,
     })
 }
 

@@ -33,12 +33,27 @@ use thiserror::Error;
 pub struct FitRequest {
     /// The family.
     pub family: Family,
-    /// Degree, for polynomials; lowered when points are few.
+    /// Degree of a polynomial, order of the exponent of an extended Morse function; lowered when points are few.
     #[serde(default)]
     pub degree: Option<u32>,
     /// Variable, for polynomials.
     #[serde(default)]
     pub variable: Option<Variable>,
+    /// Power p of an extended Morse function's variable; none: 2.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub power: Option<u32>,
+}
+
+impl FitRequest {
+    /// A family with all its choices left open.
+    pub const fn plain(family: Family) -> Self {
+        Self { family, degree: None, variable: None, power: None }
+    }
+
+    /// A polynomial.
+    pub const fn polynomial(degree: u32, variable: Variable) -> Self {
+        Self { degree: Some(degree), variable: Some(variable), ..Self::plain(Family::Polynomial) }
+    }
 }
 
 /// What the fits of a study do.
@@ -53,13 +68,12 @@ pub struct FitSettings {
 
 impl Default for FitSettings {
     fn default() -> Self {
-        let plain = |family| FitRequest { family, degree: None, variable: None };
         Self {
             window: None,
             requests: vec![
-                plain(Family::Harmonic),
-                plain(Family::Morse),
-                FitRequest { family: Family::Polynomial, degree: Some(6), variable: Some(Variable::X) },
+                FitRequest::plain(Family::Harmonic),
+                FitRequest::plain(Family::Morse),
+                FitRequest::polynomial(6, Variable::X),
             ],
         }
     }
@@ -97,7 +111,7 @@ pub enum FitEnd {
 pub struct Fit {
     /// The fitted function.
     pub model: Model,
-    /// Degree used (polynomials); may be lower than asked for.
+    /// Degree of the polynomial, order of the extended Morse exponent used; may be lower than asked for.
     pub degree: Option<u32>,
     /// Window in the unit of the scan, as used.
     pub window: Window,
@@ -174,7 +188,7 @@ pub enum FitError {
         what: ModelFault,
     },
     /// The degree asked for is not offered.
-    #[error("degree {asked} is not offered; choose from {lowest} to {highest}")]
+    #[error("degree, order or power {asked} is not offered; choose from {lowest} to {highest}")]
     Degree {
         /// Asked for.
         asked: u32,

@@ -8,12 +8,23 @@ use super::{
 };
 use crate::estimate::{ErrorSource, Estimate};
 use crate::notice::{Code, Notice};
-use crate::potential::{Harmonic, Model, Morse, Parametric, Polynomial, Potential};
+use crate::potential::{
+    ExtendedMorse, ExtendedRydberg, Harmonic, HulburtHirschfelder, Model, Morse, Parametric, Polynomial,
+    Potential, Rydberg, Varshni,
+};
 
 /// Degree of a polynomial when none is asked for.
 const DEFAULT_DEGREE: u32 = 6;
 /// Degrees offered.
 const DEGREES: (u32, u32) = (2, 12);
+/// Order of an extended Morse exponent when none is asked for.
+const DEFAULT_ORDER: u32 = 4;
+/// Orders offered.
+const ORDERS: (u32, u32) = (0, 12);
+/// Power p of its variable when none is asked for.
+const DEFAULT_POWER: u32 = 2;
+/// Powers offered.
+const POWERS: (u32, u32) = (1, 10);
 
 /// Starts come from the scan, so a few hundred evaluations suffice; more would be felt while dragging.
 const SETTINGS: IterationSettings =
@@ -49,6 +60,13 @@ pub fn fit(request: FitRequest, points: &[FitPoint], window: Window) -> Result<F
         Family::Morse => {
             let shape = guess::local_shape(&data)?;
             iterated(&data, &families::morse_starts(&data, &shape))?
+        }
+        Family::ExtendedMorse => extended_morse(&data, request)?,
+        Family::Varshni => iterated(&data, &Varshni::starts(&guess::well_shape(&data)?))?,
+        Family::Rydberg => iterated(&data, &Rydberg::starts(&guess::well_shape(&data)?))?,
+        Family::ExtendedRydberg => iterated(&data, &ExtendedRydberg::starts(&guess::well_shape(&data)?))?,
+        Family::HulburtHirschfelder => {
+            iterated(&data, &HulburtHirschfelder::starts(&guess::well_shape(&data)?))?
         }
     };
     Ok(finish(&data, solved, window))
@@ -105,6 +123,40 @@ fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, F
         let text = format!(
             "The polynomial of degree {asked} needs {} points and the window holds {}; degree {degree} was fitted.",
             asked + 1,
+            data.len()
+        );
+        solved.notices.push(Notice::info(Code::FewPoints, text));
+    }
+    Ok(solved)
+}
+
+/// Order by order, each started at the one before: a high order far from its minimum has many false ones.
+fn extended_morse(data: &Data, request: FitRequest) -> Result<Solved, FitError> {
+    let (asked, power) = (request.degree.unwrap_or(DEFAULT_ORDER), request.power.unwrap_or(DEFAULT_POWER));
+    for (asked, (lowest, highest)) in [(asked, ORDERS), (power, POWERS)] {
+        if !(lowest..=highest).contains(&asked) {
+            return Err(FitError::Degree { asked, lowest, highest });
+        }
+    }
+    let Some(most) = data.len().checked_sub(4) else {
+        return Err(FitError::TooFewPoints { points: data.len(), needed: 4 });
+    };
+    let order = (asked as usize).min(most);
+    let mut starts = ExtendedMorse::starts(&guess::well_shape(data)?);
+    starts.iter_mut().for_each(|start| start.power = power);
+    for _ in 0..order {
+        // The way there need not be a minimum of its own; what the next order makes of it is what counts.
+        if let Ok((model, _)) = families::fit(data, &starts, IterationSettings::QUICK) {
+            starts = vec![model];
+        }
+        starts.iter_mut().for_each(|start| start.beta_per_bohr.push(0.0));
+    }
+    let mut solved = iterated(data, &starts)?;
+    solved.degree = Some(order as u32);
+    if order < asked as usize {
+        let text = format!(
+            "The extended Morse function of order {asked} needs {} points and the window holds {}; order {order} was fitted.",
+            asked + 4,
             data.len()
         );
         solved.notices.push(Notice::info(Code::FewPoints, text));
@@ -225,14 +277,6 @@ mod tests {
 
     const WINDOW: Window = Window { from: 0.1, to: 10.0, unit: LengthUnit::Bohr };
 
-    fn request(family: Family) -> FitRequest {
-        FitRequest { family, degree: None, variable: None }
-    }
-
-    fn polynomial(degree: u32, variable: Variable) -> FitRequest {
-        FitRequest { family: Family::Polynomial, degree: Some(degree), variable: Some(variable) }
-    }
-
     /// Invented: `count` even points of a model around its minimum, half width `half` bohr.
     fn sampled(model: &dyn Potential, count: u32, half: f64) -> Vec<FitPoint> {
         (0..count)
@@ -266,17 +310,22 @@ mod tests {
             let harmonic = Harmonic { e_min_hartree, r_e_bohr: 1.4, force_constant_hartree_per_bohr2: 0.37 };
             assert_recovers(
                 &harmonic.into(),
-                request(Family::Harmonic),
+                FitRequest::plain(Family::Harmonic),
                 &sampled(&harmonic, 15, 0.3),
                 relative,
             );
             let morse = Morse { e_min_hartree, r_e_bohr: 1.4, well_depth_hartree: 0.17, a_per_bohr: 1.03 };
-            assert_recovers(&morse.into(), request(Family::Morse), &sampled(&morse, 30, 0.7), relative);
+            assert_recovers(
+                &morse.into(),
+                FitRequest::plain(Family::Morse),
+                &sampled(&morse, 30, 0.7),
+                relative,
+            );
             for variable in [Variable::X, Variable::Xi, Variable::Z, Variable::Ogilvie] {
                 let model = Polynomial::new(variable, e_min_hartree, 1.4, &[0.3, -0.33, 0.2, -0.1]);
                 assert_recovers(
                     &model.clone().into(),
-                    polynomial(5, variable),
+                    FitRequest::polynomial(5, variable),
                     &sampled(&model, 20, 0.4),
                     100.0 * relative,
                 );

@@ -4,17 +4,26 @@
 //! A further family is one file here, its `mod` line, and one line of the registry below.
 
 pub mod curve;
+mod extended_morse;
+mod extended_rydberg;
 mod harmonic;
+mod hulburt_hirschfelder;
 pub(crate) mod interpolant;
 mod jet;
 mod morse;
 mod parametric;
 mod polynomial;
 mod roots;
+mod rydberg;
 pub(crate) mod spline;
 pub(crate) mod tails;
+mod varshni;
+mod wells;
 
+pub use extended_morse::ExtendedMorse;
+pub use extended_rydberg::ExtendedRydberg;
 pub use harmonic::Harmonic;
+pub use hulburt_hirschfelder::HulburtHirschfelder;
 pub use morse::Morse;
 #[cfg(test)]
 pub(crate) use parametric::check;
@@ -22,6 +31,8 @@ pub(crate) use parametric::named;
 pub use parametric::{LocalShape, ModelFault, ParameterUnit, Parametric};
 pub use polynomial::{Polynomial, Variable};
 pub(crate) use roots::real_roots;
+pub use rydberg::Rydberg;
+pub use varshni::Varshni;
 
 use serde::{Deserialize, Serialize};
 
@@ -58,7 +69,7 @@ pub trait Potential: Sync {
 
 /// Writes the two enums and their dispatch from the one list of families.
 macro_rules! registry {
-    ($($(#[$doc:meta])* $name:ident as $word:literal,)*) => {
+    ($($(#[$doc:meta])* $name:ident as $word:literal, $title:literal,)*) => {
         /// A family of model functions.
         #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
         pub enum Family {
@@ -72,6 +83,11 @@ macro_rules! registry {
             /// The word used in findings and settings.
             pub const fn word(self) -> &'static str {
                 match self { $(Self::$name => $word,)* }
+            }
+
+            /// The name people read.
+            pub const fn title(self) -> &'static str {
+                match self { $(Self::$name => $title,)* }
             }
         }
 
@@ -129,11 +145,21 @@ macro_rules! registry {
 
 registry! {
     /// V = e_min + k x²/2.
-    Harmonic as "harmonic",
+    Harmonic as "harmonic", "Harmonic",
     /// A polynomial about its own minimum, no linear term.
-    Polynomial as "polynomial",
+    Polynomial as "polynomial", "Polynomial",
     /// Morse [1929].
-    Morse as "morse",
+    Morse as "morse", "Morse",
+    /// Extended Morse, β a polynomial in y_p [Lee et al. 1999].
+    ExtendedMorse as "extended_morse", "Extended Morse",
+    /// Varshni [1957].
+    Varshni as "varshni", "Varshni",
+    /// Rydberg [1931], one range parameter.
+    Rydberg as "rydberg", "Rydberg",
+    /// Extended Rydberg [Murrell & Sorbie 1974].
+    ExtendedRydberg as "extended_rydberg", "Extended Rydberg",
+    /// Hulburt-Hirschfelder [1941, erratum 1961].
+    HulburtHirschfelder as "hulburt_hirschfelder", "Hulburt-Hirschfelder",
 }
 
 impl Model {
@@ -143,7 +169,7 @@ impl Model {
         match self {
             Self::Harmonic(model) => Some(model.levels_hartree(reduced_mass_me, count)),
             Self::Morse(model) => Some(model.levels_hartree(reduced_mass_me)),
-            Self::Polynomial(_) => None,
+            _ => None,
         }
     }
 }
