@@ -3,6 +3,8 @@
 //! [`linear`] and [`nonlinear`] are the core: they know no potentials and serve any problem. [`fit`]
 //! puts the families of [`crate::potential`] to them and reads statistics off the residuals.
 
+#[cfg(test)]
+mod checks;
 pub mod curve;
 mod data;
 mod families;
