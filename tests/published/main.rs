@@ -1,4 +1,6 @@
 //! The program against published and independently computed values; one module per publication or file.
 
+mod experiment;
 mod levels;
+mod scans;
 mod strd;
