@@ -2,6 +2,8 @@
 
 mod error;
 mod minimum;
+#[cfg(test)]
+mod tests;
 
 pub use error::CurveError;
 

@@ -146,7 +146,9 @@ impl ScanCurve {
     pub(crate) fn assemble(parts: CurveParts) -> Self {
         let (from, to) = (parts.inner_joint.r, parts.outer_joint.r);
         let mut breakpoints = vec![from];
-        breakpoints.extend(parts.interpolant.knots_bohr().into_iter().filter(|&r| r > from && r < to));
+        // The margin keeps out the end knots themselves, which a change of variable rounds.
+        let inside = |r: &f64| *r > from * (1.0 + 1e-9) && *r < to * (1.0 - 1e-9);
+        breakpoints.extend(parts.interpolant.knots_bohr().into_iter().filter(inside));
         breakpoints.push(to);
         let mut curve = Self {
             kind: parts.kind,

@@ -67,12 +67,13 @@ impl CurveError {
         if e[0] <= e[n - 1] {
             return Self::MinimumAtEnd { r_bohr: r[0], first: true };
         }
-        // The parabola through the last three points: is its vertex within one more scan length?
+        // The parabola through the last three points: is its vertex within a third of a scan length? Repulsive
+        // curves that level off (as 1/r) have it further out.
         let before = (e[n - 2] - e[n - 3]) / (r[n - 2] - r[n - 3]);
         let after = (e[n - 1] - e[n - 2]) / (last - r[n - 2]);
         let curvature = 2.0 * (after - before) / (last - r[n - 3]);
         let slope = after + 0.5 * curvature * (last - r[n - 2]);
-        if curvature > 0.0 && -slope / curvature < last - r[0] {
+        if curvature > 0.0 && -slope / curvature < 0.3 * (last - r[0]) {
             Self::MinimumAtEnd { r_bohr: last, first: false }
         } else {
             Self::NoMinimum { r_bohr: last }
