@@ -29,6 +29,16 @@ pub enum ScanError {
         /// The most that is read.
         limit_rows: usize,
     },
+    /// More columns than are read.
+    #[error(
+        "line {line}: more than {limit_columns} columns; a bond scan has one row per bond length, so turn the table round"
+    )]
+    TooManyColumns {
+        /// The first such line.
+        line: usize,
+        /// The most that is read.
+        limit_columns: usize,
+    },
     /// Not text.
     #[error(
         "byte {offset} has the value {value}, which no text file holds; export the table as plain text (CSV) and open that"

@@ -3,7 +3,7 @@
 use super::columns::ColumnName;
 use super::header::{self, Header, TextLine};
 use super::number::{Cell, DecimalSign, parse_cell};
-use super::table::{Delimiter, Format, Row, choose_format};
+use super::table::{Delimiter, Format, LIMIT_COLUMNS, Row, choose_format};
 use super::text::{Line, lines};
 use crate::scan::error::ScanError;
 
@@ -14,6 +14,8 @@ pub const LIMIT_ROWS: usize = 1_000_000;
 const SAMPLE_LINES: usize = 400;
 /// Comment and title lines that are searched for names, units and atoms.
 const LIMIT_TEXT_LINES: usize = 1_000;
+/// Longest comment or title that is looked at: a header of as many columns as are read fits.
+const LIMIT_TEXT_BYTES: usize = 64 << 10;
 
 /// A table as read.
 #[derive(Debug)]
@@ -38,6 +40,10 @@ pub(crate) fn parse(text: &str) -> Result<Table<'_>, ScanError> {
     let sample: Vec<Line<'_>> = lines(text).filter(Line::has_content).take(SAMPLE_LINES).collect();
     let contents: Vec<&str> = sample.iter().map(|l| l.content).collect();
     let format = choose_format(&contents).ok_or_else(|| no_table(text, &sample))?;
+    if format.columns > LIMIT_COLUMNS {
+        let line = first_data_line(&sample, format);
+        return Err(ScanError::TooManyColumns { line, limit_columns: LIMIT_COLUMNS });
+    }
     check_commas(&sample, format)?;
     let used = used_columns(&contents, format);
     let mut reader = Reader::new(format, used);
@@ -46,6 +52,15 @@ pub(crate) fn parse(text: &str) -> Result<Table<'_>, ScanError> {
         reader.line(line, &mut row)?;
     }
     reader.finish()
+}
+
+fn first_data_line(sample: &[Line<'_>], format: Format) -> usize {
+    let mut row = Row::default();
+    let found = sample.iter().find(|line| {
+        row.read(line.content, format.delimiter, format.sign);
+        row.is_data() && row.cells.len() == format.columns
+    });
+    found.map_or(1, |line| line.number)
 }
 
 /// Why no line of the sample is a row of a table.
@@ -200,7 +215,8 @@ impl<'a> Reader<'a> {
 
     /// A comment or a title.
     fn text(&mut self, text: TextLine<'a>) -> Result<(), ScanError> {
-        if text.text.is_empty() {
+        // A line of many pages holds no name, unit or atom.
+        if text.text.is_empty() || text.text.len() > LIMIT_TEXT_BYTES {
             return Ok(());
         }
         if self.begun() && text.is_comment {

@@ -2,6 +2,9 @@
 
 use super::number::{Cell, DecimalSign, parse_cell};
 
+/// The most columns that are read; it bounds the memory a line of many separators takes.
+pub const LIMIT_COLUMNS: usize = 1_000;
+
 /// What separates the columns.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub(crate) enum Delimiter {
@@ -29,17 +32,17 @@ impl Delimiter {
         }
     }
 
-    /// The cells of a line, trimmed, quotes taken off.
+    /// The cells of a line, trimmed, quotes taken off; one more than are read at most.
     pub(crate) fn split<'a>(self, content: &'a str, cells: &mut Vec<&'a str>) {
         cells.clear();
         let Some(sign) = self.sign() else {
-            cells.extend(content.split_whitespace().map(unquoted));
+            cells.extend(content.split_whitespace().map(unquoted).take(LIMIT_COLUMNS + 1));
             return;
         };
         if content.contains('"') {
             split_quoted(content, sign, cells);
         } else {
-            cells.extend(content.split(sign).map(str::trim));
+            cells.extend(content.split(sign).map(str::trim).take(LIMIT_COLUMNS + 1));
         }
     }
 }
@@ -56,6 +59,9 @@ fn split_quoted<'a>(content: &'a str, sign: char, cells: &mut Vec<&'a str>) {
         } else if c == sign && !inside {
             cells.push(unquoted(content[start..at].trim()));
             start = at + c.len_utf8();
+            if cells.len() > LIMIT_COLUMNS {
+                return;
+            }
         }
     }
     cells.push(unquoted(content[start..].trim()));

@@ -77,25 +77,31 @@ impl<'a> Line<'a> {
 
 /// The lines of a text, ended by LF, CR LF or CR alone, comments (# or !) cut off.
 pub(crate) fn lines(text: &str) -> impl Iterator<Item = Line<'_>> {
-    let mut rest = Some(text);
+    let mut start = Some(0);
     let mut number = 0;
     std::iter::from_fn(move || {
-        let here = rest?;
-        let line = match here.find(['\n', '\r']) {
-            None => {
-                rest = None;
-                here
+        let from = start?;
+        let bytes = &text.as_bytes()[from..];
+        // One pass over the bytes: all four signs are ASCII, so every cut is at a character.
+        let mut comment = None;
+        let mut end = bytes.len();
+        for (at, byte) in bytes.iter().enumerate() {
+            match byte {
+                b'\n' | b'\r' => {
+                    end = at;
+                    break;
+                }
+                b'#' | b'!' if comment.is_none() => comment = Some(at),
+                _ => {}
             }
-            Some(at) => {
-                let end = if here[at..].starts_with("\r\n") { at + 2 } else { at + 1 };
-                rest = Some(&here[end..]).filter(|r| !r.is_empty());
-                &here[..at]
-            }
-        };
+        }
+        let skipped = if bytes[end..].starts_with(b"\r\n") { 2 } else { 1 };
+        let next = from + end + skipped;
+        start = (next < text.len()).then_some(next);
         number += 1;
         // The end-of-file mark of old systems (byte 26) is no content.
-        let line = line.trim_end_matches('\u{1a}');
-        Some(match line.find(['#', '!']) {
+        let line = text[from..from + end].trim_end_matches('\u{1a}');
+        Some(match comment.filter(|&at| at < line.len()) {
             None => Line { number, content: line, comment: None },
             Some(at) => Line {
                 number,
