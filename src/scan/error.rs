@@ -252,6 +252,94 @@ pub enum ScanError {
         /// That header as written.
         header: String,
     },
+    /// A frame does not begin with the number of its atoms.
+    #[error(
+        "line {line}: {found:?} is not the number of atoms that a frame begins with; check that each frame has as many lines as its first one says"
+    )]
+    AtomCount {
+        /// Line.
+        line: usize,
+        /// What stands there.
+        found: String,
+    },
+    /// A line of a frame is no atom.
+    #[error(
+        "line {line}: {found:?} is not an element symbol followed by three coordinates; check that the frame has as many atoms as its first line says"
+    )]
+    AtomLine {
+        /// Line.
+        line: usize,
+        /// What stands there.
+        found: String,
+    },
+    /// The last frame is incomplete.
+    #[error("line {line}: this frame announces {expected} atoms and has {found}; complete it or remove it")]
+    FrameCut {
+        /// Line where the frame begins.
+        line: usize,
+        /// Number of atoms announced.
+        expected: usize,
+        /// Number of atoms there.
+        found: usize,
+    },
+    /// No comment line holds an energy.
+    #[error(
+        "line {line}: no energy in this comment line nor in any other; write it there as in: energy = -113.25 hartree"
+    )]
+    NoEnergyInComments {
+        /// The first comment line.
+        line: usize,
+    },
+    /// Energies of one file in different units.
+    #[error(
+        "line {line}: the energy has another unit than in line {first}, or only one of them has any; use one unit, or give it with --energy-unit"
+    )]
+    UnitsDiffer {
+        /// Line.
+        line: usize,
+        /// The line it is compared with.
+        first: usize,
+    },
+    /// Frames of different molecules.
+    #[error(
+        "the frame at {place} has the atoms {found}, the first one {expected}; a scan is one molecule with its atoms in one order"
+    )]
+    OtherAtoms {
+        /// Line where the frame begins, or its number from 1.
+        place: usize,
+        /// Its atoms.
+        found: String,
+        /// Atoms of the first frame.
+        expected: String,
+    },
+    /// More than two atoms, and no bond chosen among them.
+    #[error("{} among the atoms {}; name the two atoms of the bond by their numbers with --bond, as in --bond 1,2", no_bond(chosen), atoms.join(", "))]
+    BondNotChosen {
+        /// What was chosen.
+        chosen: Option<[usize; 2]>,
+        /// The atoms with their numbers.
+        atoms: Vec<String>,
+    },
+    /// The file begins like JSON and is none.
+    #[error("line {line}, column {column}: this is not valid JSON ({problem}); export the results again")]
+    NotJson {
+        /// Line.
+        line: usize,
+        /// Column.
+        column: usize,
+        /// What is wrong.
+        problem: JsonProblem,
+    },
+    /// JSON without something that a QCSchema result has.
+    #[error(
+        "result {place}: no {key}; a scan is read from QCSchema results with molecule and energy, one or a list of them"
+    )]
+    KeyMissing {
+        /// Number of the result, from 1.
+        place: usize,
+        /// What is missing.
+        key: &'static str,
+    },
     /// Columns of different length (only from data made in a program).
     #[error(
         "column {column} has {found} values for {expected} bond lengths; give one for each, none where it is unknown"
@@ -264,6 +352,45 @@ pub enum ScanError {
         /// Number of bond lengths.
         expected: usize,
     },
+}
+
+/// What is wrong with a JSON text.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum JsonProblem {
+    /// It breaks the rules of JSON.
+    Syntax,
+    /// It ends too early.
+    CutShort,
+    /// A value is of the wrong sort or too large.
+    Value,
+}
+
+impl From<serde_json::error::Category> for JsonProblem {
+    fn from(category: serde_json::error::Category) -> Self {
+        use serde_json::error::Category;
+        match category {
+            Category::Syntax => Self::Syntax,
+            Category::Eof | Category::Io => Self::CutShort,
+            Category::Data => Self::Value,
+        }
+    }
+}
+
+impl std::fmt::Display for JsonProblem {
+    fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        f.write_str(match self {
+            Self::Syntax => "a sign that JSON does not allow here",
+            Self::CutShort => "the text ends too early",
+            Self::Value => "a value that cannot be represented",
+        })
+    }
+}
+
+fn no_bond(chosen: &Option<[usize; 2]>) -> String {
+    match chosen {
+        None => "no bond is chosen".to_owned(),
+        Some([a, b]) => format!("{a},{b} is no bond"),
+    }
 }
 
 fn unknown_unit(found: Option<&str>) -> String {

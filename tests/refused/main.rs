@@ -3,7 +3,7 @@
 //! The expectations stand in the file itself, on lines that begin with `#>` and are blanked before it is
 //! read, or in a file of the same name with `.expect` added where a further line would change the case.
 //! `#> refused: TEXT` (may be repeated): the message contains TEXT. `#> length-unit`, `energy-unit`,
-//! `length-column`: options. `#> columns`, `rows`, `first`, `notices`, `atoms`, `charge`, `properties`:
+//! `length-column`, `bond`: options. `#> columns`, `rows`, `first`, `notices`, `atoms`, `charge`, `properties`:
 //! what is understood. All numbers in these files are invented.
 
 mod mutation;
@@ -46,6 +46,10 @@ impl Case {
         ReadSettings {
             length_column: one("length-column").map(str::to_owned),
             length_unit: one("length-unit").map(|u| parse_length_unit(u).expect("a length unit")),
+            bond: one("bond").map(|b| {
+                let (a, b) = b.split_once(',').expect("two numbers");
+                [a, b].map(|n| n.parse().expect("a number"))
+            }),
             energy_unit: one("energy-unit").map(|u| parse_energy_unit(u).expect("an energy unit")),
         }
     }

@@ -59,11 +59,12 @@ fn mutated_files_never_panic() {
         paths.sort();
         seeds.extend(paths.iter().map(|p| std::fs::read(p).expect("readable")));
     }
-    seeds.retain(|s| s.len() < 10_000);
+    seeds.retain(|s| s.len() < 40_000);
     let stated = ReadSettings {
         length_unit: Some(LengthUnit::Angstrom),
         energy_unit: Some(EnergyUnit::Hartree),
         length_column: None,
+        bond: Some([1, 2]),
     };
     let mut random = Xorshift(SEED);
     let (mut read, mut refused) = (0, 0);

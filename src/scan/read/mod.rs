@@ -3,14 +3,17 @@
 mod assemble;
 mod columns;
 mod delimited;
+mod frames;
 mod header;
 mod number;
 mod prose;
+mod qcschema;
 mod table;
 #[cfg(test)]
 mod tests;
 mod text;
 mod words;
+mod xyz;
 
 use super::Scan;
 use super::error::ScanError;
@@ -33,9 +36,13 @@ pub struct ReadSettings {
     pub length_unit: Option<LengthUnit>,
     /// Unit of all energy columns; it goes before what the file says.
     pub energy_unit: Option<EnergyUnit>,
+    /// In a file of Cartesian coordinates, the two atoms of the bond by their numbers from 1; none: the
+    /// only two there are.
+    pub bond: Option<[usize; 2]>,
 }
 
-/// Reads a scan from the bytes of a file.
+/// Reads a scan from the bytes of a file: QCSchema JSON, frames of Cartesian coordinates, or delimited text,
+/// told apart by their content.
 ///
 /// A unit comes from the settings, the header, or the words of a comment (then with a notice), in this
 /// order; it is never guessed. Rows keep their order and all numbers their digits.
@@ -44,8 +51,13 @@ pub struct ReadSettings {
 /// [`ScanError`] with place, value found and remedy.
 pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Result<Scan, ScanError> {
     let (text, encoding) = text::decode(bytes)?;
-    let table = delimited::parse(&text)?;
-    let mut scan = assemble::scan(file_name, table, settings)?;
+    let mut scan = if qcschema::looks_like(&text) {
+        qcschema::parse(&text, settings)?.scan(file_name, settings)?
+    } else if xyz::looks_like(&text) {
+        xyz::parse(&text, settings)?.scan(file_name, settings)?
+    } else {
+        assemble::scan(file_name, delimited::parse(&text)?, settings)?
+    };
     scan.sha256 = sha256_hex(bytes);
     scan.notices.splice(0..0, encoding);
     scan.checked()

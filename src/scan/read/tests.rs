@@ -177,6 +177,7 @@ fn options_go_before_the_header() {
         length_unit: Some(LengthUnit::Bohr),
         energy_unit: Some(EnergyUnit::PerCm),
         length_column: Some("r_OH2".to_owned()),
+        bond: None,
     };
     let file = "water_oh_relaxed.csv";
     let scan = read_scan(file, &bytes("sample-scans", file), &settings).expect("read");
@@ -190,4 +191,32 @@ fn options_go_before_the_header() {
 fn the_check_sum_is_that_of_the_bytes() {
     // FIPS 180-4, example of SHA-256 for the message "abc".
     assert_eq!(super::sha256_hex(b"abc"), "ba7816bf8f01cfea414140de5dae2223b00361a396177a9cb410ff61f20015ad");
+}
+
+/// The three files hold the same calculation (README beside them); the coordinates are printed with
+/// eight decimals of an angstrom, converted with 1 bohr = 0.52917721092 angstrom.
+#[test]
+fn three_layouts_of_one_scan_agree() {
+    let table = read("sample-scans", "co_ccsdt_bohr.dat");
+    let frames = read("tests/scans", "co_scan.xyz");
+    let results = read("tests/scans", "co_qcschema.json");
+    assert_eq!((frames.length_column.as_str(), frames.length_unit), ("r(C1-O2)", LengthUnit::Angstrom));
+    assert_eq!(results.length_unit, LengthUnit::Bohr);
+    assert_eq!(results.curve_index(Some("CCSD(T)/cc-pVQZ")), Ok(0));
+    assert_eq!(
+        results.energies.iter().map(|e| e.name.as_str()).collect::<Vec<_>>(),
+        ["return_energy", "scf_total_energy", "ccsd_total_energy", "ccsd_prt_pr_total_energy"]
+    );
+    for scan in [&frames, &results] {
+        assert_eq!(scan.atoms, table.atoms);
+        assert_eq!((scan.bond_lengths.len(), scan.notices.len()), (24, 0));
+    }
+    for row in 0..24 {
+        let r = table.bond_lengths[row];
+        assert!((frames.bond_lengths[row] / 0.529_177_210_92 - r).abs() < 2e-8);
+        assert!((results.bond_lengths[row] - r).abs() < 1e-12);
+        let energy = |scan: &Scan| scan.energies[0].values[row].expect("an energy");
+        assert_eq!(energy(&frames), energy(&table));
+        assert!((energy(&results) - energy(&table)).abs() < 1e-11);
+    }
 }

@@ -57,6 +57,8 @@ const fn is_never_text(byte: u8) -> bool {
 pub(crate) struct Line<'a> {
     /// Number of the line, from 1.
     pub number: usize,
+    /// All of it.
+    pub raw: &'a str,
     /// What stands before a comment sign.
     pub content: &'a str,
     /// What stands behind the comment sign.
@@ -102,9 +104,10 @@ pub(crate) fn lines(text: &str) -> impl Iterator<Item = Line<'_>> {
         // The end-of-file mark of old systems (byte 26) is no content.
         let line = text[from..from + end].trim_end_matches('\u{1a}');
         Some(match comment.filter(|&at| at < line.len()) {
-            None => Line { number, content: line, comment: None },
+            None => Line { number, raw: line, content: line, comment: None },
             Some(at) => Line {
                 number,
+                raw: line,
                 content: &line[..at],
                 comment: Some(line[at..].trim_start_matches(['#', '!']).trim()),
             },
