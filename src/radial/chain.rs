@@ -10,7 +10,6 @@
 use super::RadialError;
 use super::reference_element::ReferenceElement;
 use super::small_eigen::diagonalise;
-use crate::potential::Potential;
 
 /// The mesh, the potential on it and the modes of every element.
 #[derive(Clone, Debug)]
@@ -40,23 +39,23 @@ pub(super) struct Chain {
 }
 
 impl Chain {
-    /// Discretises −1/(2μ) d²/dr² + V + X/(2μ r²) on `boundaries` with polynomials of `degree`.
+    /// Discretises −1/(2μ) d²/dr² + V on `boundaries` with polynomials of `degree`; `values` is the effective
+    /// potential at the nodes, p + 1 an element.
     ///
     /// # Errors
-    /// [`RadialError::NotFinite`] where the potential is not finite at a node.
+    /// [`RadialError::NoConvergence`]
     pub fn new(
-        potential: &dyn Potential,
         two_mu: f64,
-        rotation_x: f64,
         boundaries: Vec<f64>,
+        values: Vec<f64>,
         degree: usize,
     ) -> Result<Self, RadialError> {
         let reference = ReferenceElement::of_degree(degree);
         let (p, elements) = (reference.degree, boundaries.len() - 1);
-        let (n, modes) = (p + 1, p - 1);
+        let modes = p - 1;
         let mut chain = Self {
             reference,
-            potential: vec![0.0; elements * n],
+            potential: values,
             modes,
             lambda: vec![0.0; elements * modes],
             to_left: vec![0.0; elements * modes],
@@ -67,31 +66,8 @@ impl Chain {
             mass: vec![0.0; elements + 1],
             boundaries,
         };
-        let last = elements - 1;
         for e in 0..elements {
-            let (from, half) = chain.element(e);
-            for i in 0..n {
-                // Interfaces belong to two elements; one evaluation serves both.
-                if i == 0 && e > 0 {
-                    chain.potential[e * n] = chain.potential[e * n - 1];
-                    continue;
-                }
-                let r = if i == p { chain.boundaries[e + 1] } else { node(from, half, reference.nodes[i]) };
-                let mut v = potential.energy_hartree(r);
-                if rotation_x != 0.0 {
-                    v += rotation_x / (two_mu * r * r);
-                }
-                // At the two walls ψ = 0: an infinite value there does no harm.
-                let at_wall = (e == 0 && i == 0) || (e == last && i == p);
-                if !v.is_finite() {
-                    if at_wall && !v.is_nan() {
-                        v = 0.0;
-                    } else {
-                        return Err(RadialError::NotFinite { r_bohr: r });
-                    }
-                }
-                chain.potential[e * n + i] = v;
-            }
+            let (_, half) = chain.element(e);
             chain.mass[e] += reference.weights[0] * half;
             chain.mass[e + 1] += reference.weights[p] * half;
         }
@@ -205,6 +181,30 @@ impl Chain {
         }
         face[0] = 0.0;
         face[faces - 1] = 0.0;
+    }
+
+    /// (H − `shift`) x.
+    pub fn apply(&self, x: &[f64], shift: f64, image: &mut [f64]) {
+        let modes = self.modes;
+        let (face, mode) = x.split_at(self.alpha.len());
+        let (face_image, mode_image) = image.split_at_mut(self.alpha.len());
+        for ((y, x), alpha) in face_image.iter_mut().zip(face).zip(&self.alpha) {
+            *y = (alpha - shift) * x;
+        }
+        for e in 0..self.elements() {
+            let (from, to) = (face[e], face[e + 1]);
+            let (mut left, mut right) = (self.beta[e] * to, self.beta[e] * from);
+            for k in e * modes..(e + 1) * modes {
+                left += self.to_left[k] * mode[k];
+                right += self.to_right[k] * mode[k];
+                mode_image[k] =
+                    (self.lambda[k] - shift) * mode[k] + self.to_left[k] * from + self.to_right[k] * to;
+            }
+            face_image[e] += left;
+            face_image[e + 1] += right;
+        }
+        face_image[0] = 0.0;
+        face_image[face.len() - 1] = 0.0;
     }
 
     /// Rayleigh functional on `other` (the same elements, another degree) of a level of this chain: its interface

@@ -26,6 +26,7 @@ struct Work {
     nodes: Vec<f64>,
     image: Vec<f64>,
     first: Vec<f64>,
+    rest: Vec<f64>,
     factors: Factors,
 }
 
@@ -49,6 +50,7 @@ impl Solution {
             nodes: vec![0.0; r.len()],
             image: vec![0.0; chain.len()],
             first: vec![0.0; chain.len()],
+            rest: vec![0.0; chain.len()],
             factors: Factors::default(),
         };
         inner.found.iter().take(levels).map(|level| distortion(chain, level, &mut work)).collect()
@@ -72,18 +74,33 @@ fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
     let zero = &level.vector;
     rotate(chain, zero, &work.rotation, &mut work.nodes, &mut work.image);
     let b = dot(zero, &work.image);
-    // −(W − B) ψ₀, orthogonal to ψ₀ by construction.
-    for ((y, w), x) in work.first.iter_mut().zip(&work.image).zip(zero) {
-        *y = b * x - w;
-    }
-    // At the level's own energy the solve leaves some ψ₀ in the result, which is taken out again.
+    // The right-hand side −(W − B) ψ₀ is orthogonal to ψ₀ by construction. At the level's own energy a solve leaves
+    // some ψ₀ in the result, which is taken out, and a rounding error that the second round removes.
     work.factors.factorise(chain, level.energy);
-    work.factors.solve(chain, &mut work.first);
-    let part = dot(zero, &work.first);
-    for (y, x) in work.first.iter_mut().zip(zero) {
-        *y -= part * x;
+    work.first.fill(0.0);
+    for round in 0..2 {
+        if round == 0 {
+            work.rest.fill(0.0);
+        } else {
+            chain.apply(&work.first, level.energy, &mut work.rest);
+        }
+        for ((y, w), x) in work.rest.iter_mut().zip(&work.image).zip(zero) {
+            *y = b * x - w - *y;
+        }
+        work.factors.solve(chain, &mut work.rest);
+        let part = dot(zero, &work.rest);
+        for ((y, more), x) in work.first.iter_mut().zip(&work.rest).zip(zero) {
+            *y += more - part * x;
+        }
     }
-    let d = -dot(&work.first, &work.image);
+    // Once more, since what was taken out may have been large; then D = −⟨ψ₁|W − B|ψ₀⟩, where the remnant does not
+    // meet the large B.
+    let part = dot(zero, &work.first);
+    let mut d = 0.0;
+    for ((y, w), x) in work.first.iter_mut().zip(&work.image).zip(zero) {
+        *y -= part * x;
+        d -= *y * (w - b * x);
+    }
     let norm2 = dot(&work.first, &work.first);
     rotate(chain, &work.first, &work.rotation, &mut work.nodes, &mut work.image);
     let h = dot(&work.first, &work.image) - b * norm2;

@@ -5,6 +5,8 @@
 //! wavefunction has decayed there; near turning points q is floored by the Airy scale (2μ|V′|)^(1/3).
 
 use super::RadialError;
+use super::chain::node;
+use super::reference_element::ReferenceElement;
 use crate::potential::Potential;
 
 /// Decay exponent ∫κ dr after which a wavefunction is zero to working precision (e⁻²⁰ = 2e-9, squared in
@@ -12,6 +14,10 @@ use crate::potential::Potential;
 pub(super) const FULL_DECAY: f64 = 20.0;
 /// No mesh grows beyond this many elements.
 const MOST_ELEMENTS: usize = 4000;
+/// Cuts of one element before its polynomial is taken as good enough.
+const MOST_CUTS: usize = 24;
+/// Points of the survey on either side of the minimum.
+const SURVEY: u16 = 48;
 /// Energies of the ladder: share of the searched depth below its top.
 const LADDER: [f64; 14] = [0.0, 1e-9, 1e-8, 1e-7, 1e-6, 1e-5, 1e-4, 1e-3, 1e-2, 0.05, 0.15, 0.35, 0.65, 0.95];
 
@@ -30,6 +36,8 @@ pub(super) struct MeshDemand {
     pub phase: f64,
     /// Polynomial degree.
     pub degree: usize,
+    /// Size allowed to the two highest Legendre coefficients of the potential in an element.
+    pub potential_tolerance_hartree: f64,
 }
 
 impl MeshDemand {
@@ -38,37 +46,45 @@ impl MeshDemand {
     }
 }
 
-/// Effective potential and its slope.
-fn value_and_slope(
-    potential: &dyn Potential,
-    demand: &MeshDemand,
-    r: f64,
-) -> Result<(f64, f64), RadialError> {
-    let [v, slope, ..] = potential.derivatives_hartree(r);
-    let centrifugal =
-        if demand.rotation_x == 0.0 { 0.0 } else { demand.rotation_x / (demand.two_mu * r * r) };
-    let (v, slope) = (v + centrifugal, slope - 2.0 * centrifugal / r);
-    if v.is_nan() || v == f64::NEG_INFINITY {
-        return Err(RadialError::NotFinite { r_bohr: r });
-    }
-    Ok((v, if slope.is_finite() { slope } else { 0.0 }))
-}
-
 /// One direction of the walk; can be continued later to larger distances.
 #[derive(Clone, Debug)]
 pub(super) struct Walk {
     /// Boundaries in the order walked.
     pub boundaries: Vec<f64>,
+    /// Effective potential at the nodes of each element, elements and nodes in the order walked.
+    pub values: Vec<f64>,
     outward: bool,
     decay: [f64; LADDER.len()],
     /// Whether the end of the range (a wall) has been reached.
     pub at_end: bool,
 }
 
+/// What a walk looks at.
+#[derive(Clone, Copy)]
+pub(super) struct Ground<'a> {
+    pub potential: &'a dyn Potential,
+    pub demand: &'a MeshDemand,
+    /// (r, V) samples, ascending.
+    pub survey: &'a [(f64, f64)],
+}
+
+impl Ground<'_> {
+    fn value(&self, r: f64) -> Result<f64, RadialError> {
+        let v = effective(self.potential, self.demand.two_mu, self.demand.rotation_x, r);
+        if v.is_nan() || v == f64::NEG_INFINITY { Err(RadialError::NotFinite { r_bohr: r }) } else { Ok(v) }
+    }
+}
+
 impl Walk {
     /// Starts at `from_bohr`.
     pub fn new(from_bohr: f64, outward: bool) -> Self {
-        Self { boundaries: vec![from_bohr], outward, decay: [0.0; LADDER.len()], at_end: false }
+        Self {
+            boundaries: vec![from_bohr],
+            values: Vec::new(),
+            outward,
+            decay: [0.0; LADDER.len()],
+            at_end: false,
+        }
     }
 
     /// Where the walk has arrived.
@@ -76,76 +92,142 @@ impl Walk {
         self.boundaries[self.boundaries.len() - 1]
     }
 
+    fn sign(&self) -> f64 {
+        if self.outward { 1.0 } else { -1.0 }
+    }
+
     /// Walks until the wavefunction at the ladder energy at or below `share` has decayed and `at_least_bohr`
     /// has been passed, or the range ends.
-    pub fn advance(
-        &mut self,
-        potential: &dyn Potential,
-        demand: &MeshDemand,
-        share: f64,
-        at_least_bohr: f64,
-        breaks: &[f64],
-    ) -> Result<(), RadialError> {
+    pub fn advance(&mut self, ground: Ground, share: f64, at_least_bohr: f64) -> Result<(), RadialError> {
         let stop = LADDER.iter().position(|&rung| rung >= share).unwrap_or(LADDER.len() - 1);
-        let range = potential.range_bohr();
-        let wall = if self.outward { range.1 } else { range.0 };
-        let sign = if self.outward { 1.0 } else { -1.0 };
-        let singular_at_zero = range.0 >= 0.0;
+        let (from, to) = ground.potential.range_bohr();
+        let wall = if self.outward { to } else { from };
+        let sign = self.sign();
+        let reference = ReferenceElement::of_degree(ground.demand.degree);
+        let mut values = vec![0.0; reference.degree + 1];
         while !self.at_end && self.boundaries.len() < MOST_ELEMENTS {
             let r = self.end();
-            let passed = (r - at_least_bohr) * sign >= 0.0;
-            if passed && self.decay[stop] >= FULL_DECAY {
+            if (r - at_least_bohr) * sign >= 0.0 && self.decay[stop] >= FULL_DECAY {
                 break;
             }
-            let (v, slope) = value_and_slope(potential, demand, r)?;
-            let here = self.rate(demand, v, slope);
-            let longest =
-                if singular_at_zero { if self.outward { 0.6 * r } else { 0.35 * r } } else { f64::INFINITY };
+            values[0] = match self.values.last() {
+                Some(&value) => value,
+                None => ground.value(r)?,
+            };
+            let (mut length, middle) = self.length_by_phase(ground, values[0], wall)?;
             let to_wall = (wall - r) * sign;
-            let mut length = (demand.phase / here).min(longest);
-            if !length.is_finite() {
-                // A free particle at rest in a range without bound.
-                length = r.abs().max(1.0);
-            }
-            let mut ends = (v, slope);
-            let mut middle = (v, slope);
-            for _ in 0..4 {
-                length = length.min(to_wall);
-                middle = value_and_slope(potential, demand, r + 0.5 * sign * length)?;
-                ends = value_and_slope(potential, demand, r + sign * length)?;
-                let phase = length / 6.0
-                    * (here
-                        + 4.0 * self.rate(demand, middle.0, middle.1)
-                        + self.rate(demand, ends.0, ends.1));
-                if !phase.is_finite() {
-                    // An infinite wall inside the element: closer.
-                    length *= 0.5;
-                    continue;
-                }
-                let better = (length * (demand.phase / phase).clamp(0.3, 1.5)).min(longest);
-                if (better - length).abs() <= 0.08 * length || (better > length && length == to_wall) {
-                    break;
-                }
-                length = better;
-            }
-            if length >= to_wall {
+            // Close to r = 0 one element takes the rest, where the wavefunction is a power of r.
+            if length >= to_wall || (!self.outward && to_wall < 0.12 * self.boundaries[0]) {
                 length = to_wall;
-                self.at_end = true;
             } else if length > 0.7 * to_wall {
                 length = 0.5 * to_wall;
             }
-            let mut next = if self.at_end { wall } else { r + sign * length };
-            if let Some(at) = first_break(breaks, r, next, 1e-3 * length) {
-                next = at;
-                self.at_end = false;
-            }
+            let next = self.fit_to_potential(ground, reference, r + sign * length, wall, &mut values)?;
             if next == r {
                 break;
             }
-            self.decay_over(demand, (next - r).abs(), [v, middle.0, ends.0]);
+            self.at_end = next == wall;
+            let ends = values[reference.degree];
+            self.decay_over(
+                ground.demand,
+                (next - r).abs(),
+                [values[0], middle.min(ends.max(values[0])), ends],
+            );
             self.boundaries.push(next);
+            self.values.extend_from_slice(&values);
         }
         Ok(())
+    }
+
+    /// Length whose phase is the one demanded, and V at its middle.
+    fn length_by_phase(&self, ground: Ground, v: f64, wall: f64) -> Result<(f64, f64), RadialError> {
+        let (demand, r, sign) = (ground.demand, self.end(), self.sign());
+        let singular_at_zero = ground.potential.range_bohr().0 >= 0.0;
+        let longest = match (singular_at_zero, self.outward) {
+            (true, true) => 0.6 * r,
+            (true, false) => 0.35 * r,
+            (false, _) => f64::INFINITY,
+        };
+        let to_wall = (wall - r) * sign;
+        let mut length = (demand.phase / self.rate(demand, v, 0.0)).min(longest);
+        if !length.is_finite() {
+            // A free particle at rest in a range without bound.
+            length = r.abs().max(1.0);
+        }
+        // No element steps over something the survey has seen.
+        for &(at, seen) in survey_inside(ground.survey, r, r + sign * length) {
+            length = length.min((at - r).abs() + demand.phase / self.rate(demand, seen, 0.0));
+        }
+        let mut middle = v;
+        for _ in 0..4 {
+            length = length.min(to_wall);
+            middle = ground.value(r + 0.5 * sign * length)?;
+            let end = ground.value(r + sign * length)?;
+            let slope = (end - v) / length;
+            let phase = length / 6.0
+                * (self.rate(demand, v, slope)
+                    + 4.0 * self.rate(demand, middle, slope)
+                    + self.rate(demand, end, slope));
+            if !phase.is_finite() {
+                // An infinite wall inside the element: closer.
+                length *= 0.5;
+                continue;
+            }
+            let better = (length * (demand.phase / phase).clamp(0.3, 1.5)).min(longest);
+            if (better - length).abs() <= 0.08 * length || (better > length && length == to_wall) {
+                break;
+            }
+            length = better;
+        }
+        Ok((length, middle))
+    }
+
+    /// Shortens the element that would end at `next` until its polynomial follows the potential, at joints of the
+    /// potential where there are any inside, else by halves; leaves V at the nodes in `values`.
+    fn fit_to_potential(
+        &self,
+        ground: Ground,
+        reference: &ReferenceElement,
+        mut next: f64,
+        wall: f64,
+        values: &mut [f64],
+    ) -> Result<f64, RadialError> {
+        let (demand, r) = (ground.demand, self.end());
+        let p = reference.degree;
+        // Where the highest level has decayed, less will do.
+        let tolerance = demand.potential_tolerance_hartree * (2.0 * self.decay[0].min(300.0)).exp();
+        for round in 0..MOST_CUTS {
+            let half = 0.5 * (next - r).abs();
+            for i in 1..=p {
+                let at = match (i == p, self.outward) {
+                    (true, _) => next,
+                    (_, true) => node(r, half, reference.nodes[i]),
+                    // Seen from the other end the nodes are mirrored.
+                    (_, false) => r - half * (1.0 + reference.nodes[i]),
+                };
+                values[i] = if i == p && next == wall {
+                    // ψ = 0 there: an infinite value does no harm.
+                    let v = effective(ground.potential, demand.two_mu, demand.rotation_x, at);
+                    if v.is_finite() { v } else { values[p - 1] }
+                } else {
+                    ground.value(at)?
+                };
+            }
+            let [odd, even] = &reference.highest;
+            let coefficient = |row: &[f64]| row.iter().zip(&*values).map(|(a, b)| a * b).sum::<f64>().abs();
+            let unresolved = coefficient(odd) + coefficient(even);
+            if unresolved <= tolerance || round + 1 == MOST_CUTS {
+                break;
+            }
+            next = match last_break(ground.potential.breakpoints_bohr(), r, next) {
+                Some(at) => at,
+                None => 0.5 * (r + next),
+            };
+        }
+        match values.iter().position(|v| !v.is_finite()) {
+            Some(_) => Err(RadialError::NotFinite { r_bohr: next }),
+            None => Ok(next),
+        }
     }
 
     /// Largest weighted wavenumber of the ladder.
@@ -160,7 +242,7 @@ impl Walk {
             .zip(&self.decay)
             .map(|(&rung, &decay)| {
                 let q = (demand.two_mu * (demand.energy(rung) - v).abs() + airy).sqrt();
-                q * (-decay / demand.degree as f64).exp()
+                q * (-decay / (1.5 * demand.degree as f64)).exp()
             })
             .fold(0.0, f64::max)
     }
@@ -181,20 +263,35 @@ impl Walk {
     }
 }
 
-/// The first break strictly between `from` and `to`, seen from `from`.
-fn first_break(breaks: &[f64], from: f64, to: f64, margin: f64) -> Option<f64> {
+/// Samples of the survey strictly between two bond lengths.
+fn survey_inside(survey: &[(f64, f64)], a: f64, b: f64) -> &[(f64, f64)] {
+    let first = survey.partition_point(|s| s.0 <= a.min(b));
+    let last = survey.partition_point(|s| s.0 < a.max(b));
+    &survey[first..last.max(first)]
+}
+
+/// The break farthest from `from` and strictly before `to`.
+fn last_break(breaks: &[f64], from: f64, to: f64) -> Option<f64> {
+    let margin = 1e-6 * (to - from).abs();
     if to > from {
-        let next = breaks.partition_point(|&b| b <= from + margin);
-        breaks.get(next).copied().filter(|&b| b < to)
+        let inside = breaks.partition_point(|&b| b < to - margin);
+        inside.checked_sub(1).map(|i| breaks[i]).filter(|&b| b > from + margin)
     } else {
-        let next = breaks.partition_point(|&b| b < from - margin);
-        next.checked_sub(1).map(|i| breaks[i]).filter(|&b| b > to)
+        let inside = breaks.partition_point(|&b| b <= to + margin);
+        breaks.get(inside).copied().filter(|&b| b < from - margin)
     }
 }
 
-/// Bond lengths where the potential is looked at before the mesh is laid, to find further wells:
-/// joints of the function and points in geometric (or even) spacing to both ends.
-pub(super) fn survey_points(potential: &dyn Potential) -> Vec<f64> {
+/// (r, effective V) at bond lengths where the potential is looked at before the mesh is laid, ascending, to find the
+/// lowest point and further wells: joints of the function and points in even spacing to both ends.
+///
+/// # Errors
+/// [`RadialError::NotFinite`] where V is NaN.
+pub(super) fn survey(
+    potential: &dyn Potential,
+    two_mu: f64,
+    rotation_x: f64,
+) -> Result<Vec<(f64, f64)>, RadialError> {
     let (from, to) = potential.range_bohr();
     let minimum = potential.minimum_bohr();
     let span = minimum.abs().max(1.0);
@@ -202,12 +299,26 @@ pub(super) fn survey_points(potential: &dyn Potential) -> Vec<f64> {
         potential.breakpoints_bohr().iter().copied().filter(|r| *r > from && *r < to).collect();
     let far = if to.is_finite() { to } else { minimum + 8.0 * span };
     let near = if from.is_finite() { from } else { minimum - 8.0 * span };
-    for i in 0..32 {
-        let t = (f64::from(i) + 0.5) / 32.0;
-        points.push(minimum + t * (far - minimum));
+    for i in 0..SURVEY {
+        let t = (f64::from(i) + 0.5) / f64::from(SURVEY);
+        // Denser towards the minimum: t² outward, where there may be far to go.
+        points.push(minimum + t * t * (far - minimum));
         points.push(minimum + t * (near - minimum));
     }
     points.push(minimum);
     points.sort_by(f64::total_cmp);
+    points.dedup();
     points
+        .into_iter()
+        .map(|r| {
+            let v = effective(potential, two_mu, rotation_x, r);
+            if v.is_nan() { Err(RadialError::NotFinite { r_bohr: r }) } else { Ok((r, v)) }
+        })
+        .collect()
+}
+
+/// Effective potential V + X/(2μr²) in hartree.
+pub(super) fn effective(potential: &dyn Potential, two_mu: f64, x: f64, r: f64) -> f64 {
+    let v = potential.energy_hartree(r);
+    if x == 0.0 { v } else { v + x / (two_mu * r * r) }
 }

@@ -10,6 +10,8 @@ mod reference_element;
 mod search;
 mod small_eigen;
 mod solve;
+#[cfg(test)]
+mod tests;
 mod wavefunction;
 
 pub use distortion::Distortion;

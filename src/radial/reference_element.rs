@@ -21,6 +21,8 @@ pub(super) struct ReferenceElement {
     pub barycentric: Vec<f64>,
     /// Stiffness ∫ l_i′ l_j′, row-major (p + 1)².
     pub stiffness: Vec<f64>,
+    /// Rows that give the Legendre coefficients of degree p − 1 and p of the polynomial through nodal values.
+    pub highest: [Vec<f64>; 2],
     /// Gauss-Legendre nodes, p + 1 of them (exact for degree 2p + 1).
     pub gauss_nodes: Vec<f64>,
     /// Gauss-Legendre weights.
@@ -100,8 +102,15 @@ impl ReferenceElement {
                 stiffness[j * n + i] = value;
             }
         }
+        // c_k = (k + ½) ∫ P_k f; by this quadrature the norm of P_p itself comes out as 2/p.
+        let row = |last: bool| -> Vec<f64> {
+            let factor = if last { 0.5 * order } else { order - 0.5 };
+            let legendre = |x: f64| if last { legendre_pair(p, x).0 } else { legendre_pair(p, x).1 };
+            nodes.iter().zip(&weights).map(|(&x, w)| factor * w * legendre(x)).collect()
+        };
+        let highest = [row(false), row(true)];
         let (gauss_nodes, gauss_weights) = gauss_legendre(n);
-        Self { degree: p, nodes, weights, barycentric, stiffness, gauss_nodes, gauss_weights }
+        Self { degree: p, nodes, weights, barycentric, stiffness, highest, gauss_nodes, gauss_weights }
     }
 
     /// Value at `x` in [−1, 1] of the polynomial through `values` at the nodes.
@@ -180,6 +189,13 @@ mod tests {
         }
         // ∫ (7 x⁶)² = 49 · 2/13
         assert!((energy - 98.0 / 13.0).abs() < 1e-12, "{energy}");
+        for degree in [9, 10] {
+            let values: Vec<f64> = element.nodes.iter().map(|&x| legendre_pair(degree, x).0).collect();
+            for (k, row) in element.highest.iter().enumerate() {
+                let coefficient: f64 = row.iter().zip(&values).map(|(a, b)| a * b).sum();
+                assert!((coefficient - f64::from(u8::from(degree == 9 + k))).abs() < 1e-13);
+            }
+        }
         assert!((element.interpolate(&values, 0.377) - 0.377_f64.powi(7)).abs() < 1e-14);
     }
 }

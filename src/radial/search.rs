@@ -4,6 +4,8 @@ use super::chain::{Chain, Factors};
 
 /// Relative size of the unwanted part of a vector at which it is finished.
 const FINISHED: f64 = 1e-13;
+/// Levels closer than this share of the depth are kept orthogonal explicitly.
+const DEGENERATE: f64 = 1e-6;
 /// Rounds for one level before the bracket's middle is taken as it is.
 const MOST_ROUNDS: usize = 400;
 
@@ -54,6 +56,9 @@ pub(super) fn lowest_levels(
     }
     let mut levels: Vec<Found> = found.into_iter().flatten().collect();
     polish_clusters(chain, factors, &mut levels, work.scale);
+    // Pairs closer than rounding may have come out in either order.
+    levels.sort_by(|a, b| a.energy.total_cmp(&b.energy));
+    orthogonalise(&mut levels, DEGENERATE * work.scale);
     levels
 }
 
@@ -124,6 +129,7 @@ fn refine(
     let mut shift = start;
     let mut vector = start_vector(chain);
     let mut unwanted = 1e2;
+    let mut still = 0;
     for round in 0..12 {
         if round > 0 {
             factors.factorise(chain, shift);
@@ -140,7 +146,7 @@ fn refine(
         gap = gap.max(rounding);
         work.y.copy_from_slice(&vector);
         factors.solve(chain, &mut work.y);
-        deflate(&mut work.y, found, v, shift, 1e-6 * work.scale);
+        deflate(&mut work.y, found, v, shift, DEGENERATE * work.scale);
         let norm2: f64 = work.y.iter().map(|y| y * y).sum();
         let overlap: f64 = work.y.iter().zip(&vector).map(|(y, x)| y * x).sum();
         if !norm2.is_finite() || norm2 == 0.0 {
@@ -153,7 +159,9 @@ fn refine(
         }
         let distance = (energy - shift).abs().max(rounding * 0.25);
         unwanted *= (distance / gap).min(10.0);
-        if unwanted < FINISHED || (unwanted < 1e-6 && distance <= rounding) {
+        // At rounding distance twice over there is nothing more to gain, whatever the neighbours.
+        still = if distance <= 4.0 * rounding { still + 1 } else { 0 };
+        if unwanted < FINISHED || (unwanted < 1e-6 && still > 0) || still > 1 {
             let right = if energy > shift { v } else { v + 1 };
             let sure = factors.below == right
                 || (distance <= 16.0 * rounding && (factors.below == v || factors.below == v + 1));
@@ -162,12 +170,14 @@ fn refine(
             }
             return Some(Found { energy, vector, gap });
         }
-        if energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding {
+        let outside = energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding;
+        if outside && !forced {
             return None;
         }
-        shift = energy;
+        shift = if outside { 0.5 * (brackets.low[v] + brackets.high[v]) } else { energy };
     }
-    None
+    // A bracket down to rounding holds the level, whatever kept the iteration from settling.
+    forced.then_some(Found { energy: shift, vector, gap: rounding })
 }
 
 /// Takes the part along lower levels out that are as good as degenerate with this one.
@@ -176,9 +186,36 @@ fn deflate(y: &mut [f64], found: &[Option<Found>], v: usize, energy: f64, width:
         if (energy - other.energy).abs() > width {
             break;
         }
-        let part: f64 = y.iter().zip(&other.vector).map(|(a, b)| a * b).sum();
-        for (a, b) in y.iter_mut().zip(&other.vector) {
-            *a -= part * b;
+        take_out(y, &other.vector);
+    }
+}
+
+/// Removes from `y` its part along the unit vector `other`.
+fn take_out(y: &mut [f64], other: &[f64]) {
+    let part: f64 = y.iter().zip(other).map(|(a, b)| a * b).sum();
+    for (a, b) in y.iter_mut().zip(other) {
+        *a -= part * b;
+    }
+}
+
+fn normalise(y: &mut [f64]) {
+    let norm = y.iter().map(|x| x * x).sum::<f64>().sqrt();
+    y.iter_mut().for_each(|x| *x /= norm);
+}
+
+/// Makes the vectors of levels closer than `width` orthogonal, each to those below it.
+fn orthogonalise(levels: &mut [Found], width: f64) {
+    for i in 1..levels.len() {
+        let (lower, rest) = levels.split_at_mut(i);
+        let level = &mut rest[0];
+        let near = lower.iter().rev().take_while(|other| level.energy - other.energy <= width);
+        let mut any = false;
+        for other in near {
+            take_out(&mut level.vector, &other.vector);
+            any = true;
+        }
+        if any {
+            normalise(&mut level.vector);
         }
     }
 }
@@ -193,16 +230,20 @@ fn polish_clusters(chain: &Chain, factors: &mut Factors, levels: &mut [Found], s
         if gap >= 0.3 * levels[i].gap || gap <= 1e3 * rounding {
             continue;
         }
+        // A little beside the level, away from its neighbour, so that the solve stays regular.
+        let share = (100.0 * rounding / gap).clamp(1e-4, 0.1);
+        let beside = if above < below { -share * gap } else { share * gap };
+        factors.factorise(chain, levels[i].energy + beside);
         let mut unwanted = 1.0;
-        for _ in 0..6 {
-            // A little beside the level, away from its neighbour, so that the solve stays regular.
-            let beside = if above < below { -1e-4 * gap } else { 1e-4 * gap };
-            factors.factorise(chain, levels[i].energy + beside);
-            factors.solve(chain, &mut levels[i].vector);
-            let vector = &mut levels[i].vector;
-            let norm = vector.iter().map(|x| x * x).sum::<f64>().sqrt();
-            vector.iter_mut().for_each(|x| *x /= norm);
-            unwanted *= 1e-4;
+        for _ in 0..14 {
+            let (lower, rest) = levels.split_at_mut(i);
+            let level = &mut rest[0];
+            factors.solve(chain, &mut level.vector);
+            if let Some(other) = lower.last().filter(|_| below <= above) {
+                take_out(&mut level.vector, &other.vector);
+            }
+            normalise(&mut level.vector);
+            unwanted *= share;
             if unwanted < FINISHED {
                 break;
             }

@@ -1,7 +1,8 @@
 //! From a potential to its levels: range, mesh, count, levels, error estimate.
 
 use super::chain::{Chain, Factors, node};
-use super::mesh::{MeshDemand, Walk, survey_points};
+use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
+use super::reference_element::ReferenceElement;
 use super::search::{Found, lowest_levels};
 use super::{BoundState, HIGHEST_V_WITHOUT_LIMIT, Inner, RadialError, RadialRequest, Solution, Wavefunction};
 use crate::potential::Potential;
@@ -12,9 +13,11 @@ pub(super) const DEGREE: usize = 14;
 /// Levels bound by less than this share of the depth are not searched for by extending the mesh.
 const LEAST_BINDING: f64 = 1e-15;
 /// No accuracy below this is attempted: rounding.
-const LEAST_ACCURACY: f64 = 1e-12;
-/// Rounding of an energy, relative to the depth searched (measured: below 1e-13 on Morse functions).
-const ROUNDING: f64 = 2e-13;
+const LEAST_ACCURACY: f64 = 3e-12;
+/// Rounding of an energy, relative to the depth searched (measured: up to 1e-12 on random functions).
+const ROUNDING: f64 = 1e-12;
+/// Accuracy of the potential's polynomials in units of the accuracy of the energies.
+const POTENTIAL_SHARE: f64 = 30.0;
 /// Rounds of refinement when the estimated error exceeds the accuracy asked for.
 const MOST_REFINEMENTS: usize = 4;
 
@@ -27,8 +30,14 @@ pub(super) struct Problem {
     pub count: usize,
 }
 
+/// (r, V) samples of the survey, ascending.
+type Survey = Vec<(f64, f64)>;
+
 /// Checks the request and finds lowest energy and top of the search.
-fn demand(potential: &dyn Potential, request: &RadialRequest) -> Result<Option<MeshDemand>, RadialError> {
+fn demand(
+    potential: &dyn Potential,
+    request: &RadialRequest,
+) -> Result<Option<(MeshDemand, Survey)>, RadialError> {
     let mu = request.reduced_mass_me;
     if !(mu > 0.0 && mu.is_finite()) {
         return Err(RadialError::Mass { reduced_mass_me: mu });
@@ -43,31 +52,21 @@ fn demand(potential: &dyn Potential, request: &RadialRequest) -> Result<Option<M
     if limit.is_nan() || !x.is_finite() {
         return Err(RadialError::NotFinite { r_bohr: potential.range_bohr().1 });
     }
-    let mut bottom = f64::INFINITY;
-    for r in survey_points(potential) {
-        let v = effective(potential, two_mu, x, r);
-        if v.is_nan() {
-            return Err(RadialError::NotFinite { r_bohr: r });
-        }
-        bottom = bottom.min(v);
-    }
+    let survey = survey(potential, two_mu, x)?;
+    let bottom = survey.iter().fold(f64::INFINITY, |low, sample| low.min(sample.1));
     if bottom >= limit {
         return Ok(None);
     }
-    Ok(Some(MeshDemand {
+    let demand = MeshDemand {
         two_mu,
         rotation_x: x,
         top_hartree: limit,
         bottom_hartree: bottom,
         phase: phase_for(request.relative_accuracy),
         degree: DEGREE,
-    }))
-}
-
-/// Effective potential V + X/(2μr²) in hartree.
-fn effective(potential: &dyn Potential, two_mu: f64, x: f64, r: f64) -> f64 {
-    let v = potential.energy_hartree(r);
-    if x == 0.0 { v } else { v + x / (two_mu * r * r) }
+        potential_tolerance_hartree: 0.0,
+    };
+    Ok(Some((demand, survey)))
 }
 
 /// Phase of one element for an accuracy relative to the depth (measured on Morse functions, see benches).
@@ -83,12 +82,17 @@ pub(super) fn problem(
     potential: &dyn Potential,
     request: &RadialRequest,
     phase_factor: f64,
-    align: bool,
 ) -> Result<Option<Problem>, RadialError> {
-    let Some(mut demand) = demand(potential, request)? else {
+    let Some((mut demand, survey)) = demand(potential, request)? else {
         return Ok(None);
     };
     demand.phase *= phase_factor;
+    let tolerance = POTENTIAL_SHARE * request.relative_accuracy.max(LEAST_ACCURACY) * phase_factor.powi(8);
+    let depth_at = |top: f64, demand: &mut MeshDemand| {
+        demand.top_hartree = top;
+        demand.potential_tolerance_hartree = tolerance * (top - demand.bottom_hartree);
+    };
+    depth_at(demand.top_hartree, &mut demand);
     let limit = demand.top_hartree;
     let wanted = match request.highest_v {
         Some(v) => v.saturating_add(1),
@@ -96,7 +100,7 @@ pub(super) fn problem(
         None => usize::MAX,
     };
     if wanted == usize::MAX {
-        return below_limit(potential, &demand, align).map(Some);
+        return below_limit(potential, &demand, &survey).map(Some);
     }
     // Raise the top until enough levels lie below it, starting from the harmonic estimate.
     let minimum = potential.minimum_bohr();
@@ -111,22 +115,23 @@ pub(super) fn problem(
     for _ in 0..200 {
         let top = demand.bottom_hartree + height;
         if top >= limit {
-            return below_limit(potential, &demand, align).map(|mut problem| {
+            depth_at(limit, &mut demand);
+            return below_limit(potential, &demand, &survey).map(|mut problem| {
                 problem.count = problem.count.min(wanted);
                 Some(problem)
             });
         }
-        demand.top_hartree = top;
+        depth_at(top, &mut demand);
         let mut walks = Walks::start(potential);
-        walks.advance(potential, &demand, 0.0, align)?;
-        let chain = walks.chain(potential, &demand)?;
+        walks.advance(Ground { potential, demand: &demand, survey: &survey }, 0.0)?;
+        let chain = walks.chain(&demand)?;
         let mut factors = Factors::default();
         factors.factorise(&chain, top);
         if factors.below >= wanted {
             return Ok(Some(Problem { chain, demand, count: wanted }));
         }
         height *= (wanted as f64 / factors.below.max(1) as f64).clamp(1.15, 4.0);
-        demand.top_hartree = limit;
+        depth_at(limit, &mut demand);
     }
     Ok(None)
 }
@@ -143,51 +148,40 @@ impl Walks {
     }
 
     /// Walks both ways until the level at `share` below the top has decayed.
-    fn advance(
-        &mut self,
-        potential: &dyn Potential,
-        demand: &MeshDemand,
-        share: f64,
-        align: bool,
-    ) -> Result<(), RadialError> {
+    fn advance(&mut self, ground: Ground, share: f64) -> Result<(), RadialError> {
+        let demand = ground.demand;
         let stop = demand.top_hartree - share * (demand.top_hartree - demand.bottom_hartree);
-        let breaks = if align { potential.breakpoints_bohr() } else { &[] };
         let (mut first, mut last) = (f64::INFINITY, f64::NEG_INFINITY);
-        for r in survey_points(potential) {
-            if effective(potential, demand.two_mu, demand.rotation_x, r) < stop {
-                first = first.min(r);
-                last = last.max(r);
-            }
+        for &(r, _) in ground.survey.iter().filter(|sample| sample.1 < stop) {
+            first = first.min(r);
+            last = last.max(r);
         }
-        self.inward.advance(potential, demand, 0.0, first, breaks)?;
-        self.outward.advance(potential, demand, share, last, breaks)
+        self.inward.advance(ground, 0.0, first)?;
+        self.outward.advance(ground, share, last)
     }
 
-    fn chain(&self, potential: &dyn Potential, demand: &MeshDemand) -> Result<Chain, RadialError> {
-        Chain::new(potential, demand.two_mu, demand.rotation_x, self.boundaries(), demand.degree)
-    }
-
-    fn boundaries(&self) -> Vec<f64> {
+    fn chain(&self, demand: &MeshDemand) -> Result<Chain, RadialError> {
         let inward = self.inward.boundaries.iter().skip(1).rev();
-        let mut all: Vec<f64> = inward.chain(&self.outward.boundaries).copied().collect();
-        if all.len() < 2 {
-            let r = all[0];
-            all.push(r + r.abs().max(1.0));
-        }
-        all
+        let boundaries: Vec<f64> = inward.chain(&self.outward.boundaries).copied().collect();
+        let values = self.inward.values.iter().rev().chain(&self.outward.values).copied().collect();
+        Chain::new(demand.two_mu, boundaries, values, demand.degree)
     }
 }
 
 /// Everything below a finite limit, the mesh carried out until the highest level has decayed.
-fn below_limit(potential: &dyn Potential, demand: &MeshDemand, align: bool) -> Result<Problem, RadialError> {
+fn below_limit(
+    potential: &dyn Potential,
+    demand: &MeshDemand,
+    survey: &[(f64, f64)],
+) -> Result<Problem, RadialError> {
     let limit = demand.top_hartree;
     let depth = limit - demand.bottom_hartree;
     let mut walks = Walks::start(potential);
     let mut factors = Factors::default();
     let mut share = 1e-4;
     for _ in 0..60 {
-        walks.advance(potential, demand, share, align)?;
-        let chain = walks.chain(potential, demand)?;
+        walks.advance(Ground { potential, demand, survey }, share)?;
+        let chain = walks.chain(demand)?;
         factors.factorise(&chain, limit);
         let count = factors.below;
         let may_hold_more = !walks.outward.at_end
@@ -209,7 +203,7 @@ fn below_limit(potential: &dyn Potential, demand: &MeshDemand, align: bool) -> R
         }
         share = if decayed { share / 16.0 } else { binding.min(share / 2.0) }.max(LEAST_BINDING);
     }
-    let chain = walks.chain(potential, demand)?;
+    let chain = walks.chain(demand)?;
     factors.factorise(&chain, limit);
     Ok(Problem { count: factors.below, chain, demand: *demand })
 }
@@ -227,7 +221,7 @@ pub(super) fn count_below(
     request: &RadialRequest,
     energy_hartree: f64,
 ) -> Result<usize, RadialError> {
-    let finer = problem(potential, request, 0.71, !potential.breakpoints_bohr().is_empty())?;
+    let finer = problem(potential, request, 0.71)?;
     Ok(finer.map_or(0, |problem| {
         let mut factors = Factors::default();
         factors.factorise(&problem.chain, energy_hartree.min(problem.demand.top_hartree));
@@ -249,11 +243,10 @@ pub(super) fn levels(problem: &Problem) -> Vec<Found> {
 
 /// See [`super::solve`].
 pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Result<Solution, RadialError> {
-    let align = !potential.breakpoints_bohr().is_empty();
     let mut factor = 1.0;
     let mut round = 0;
     loop {
-        let Some(problem) = problem(potential, request, factor, align)? else {
+        let Some(problem) = problem(potential, request, factor)? else {
             return Ok(Solution { states: Vec::new(), inner: None });
         };
         let found = levels(&problem);
@@ -270,26 +263,53 @@ pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Resul
     }
 }
 
-/// Difference to the same mesh with polynomials one degree lower, plus rounding.
+/// Twice the difference to the same mesh with polynomials one degree lower, plus rounding.
 fn estimated_errors(
     potential: &dyn Potential,
     problem: &Problem,
     found: &[Found],
 ) -> Result<Vec<f64>, RadialError> {
     let demand = &problem.demand;
-    let coarse = Chain::new(
-        potential,
-        demand.two_mu,
-        demand.rotation_x,
-        problem.chain.boundaries.clone(),
-        demand.degree - 1,
-    )?;
+    let degree = demand.degree - 1;
+    let boundaries = problem.chain.boundaries.clone();
+    let values = node_values(potential, demand, &boundaries, ReferenceElement::of_degree(degree))?;
+    let coarse = Chain::new(demand.two_mu, boundaries, values, degree)?;
     let depth = demand.top_hartree - demand.bottom_hartree;
     let rounding = ROUNDING * depth;
     Ok(found
         .iter()
-        .map(|level| (problem.chain.energy_on(&coarse, level) - level.energy).abs() + rounding)
+        .map(|level| 2.0 * (problem.chain.energy_on(&coarse, level) - level.energy).abs() + rounding)
         .collect())
+}
+
+/// Effective potential at the nodes of every element.
+fn node_values(
+    potential: &dyn Potential,
+    demand: &MeshDemand,
+    boundaries: &[f64],
+    reference: &ReferenceElement,
+) -> Result<Vec<f64>, RadialError> {
+    let p = reference.degree;
+    let mut values = Vec::with_capacity((boundaries.len() - 1) * (p + 1));
+    for (e, pair) in boundaries.windows(2).enumerate() {
+        let half = 0.5 * (pair[1] - pair[0]);
+        for (i, &x) in reference.nodes.iter().enumerate() {
+            let r = if i == p { pair[1] } else { node(pair[0], half, x) };
+            // Interfaces belong to two elements; one evaluation serves both.
+            let v = match values.last() {
+                Some(&last) if i == 0 => last,
+                _ => effective(potential, demand.two_mu, demand.rotation_x, r),
+            };
+            let wall = (e == 0 && i == 0) || (e + 2 == boundaries.len() && i == p);
+            // ψ = 0 at the walls: an infinite value does no harm.
+            match (v.is_finite(), wall && !v.is_nan()) {
+                (true, _) => values.push(v),
+                (false, true) => values.push(demand.top_hartree),
+                (false, false) => return Err(RadialError::NotFinite { r_bohr: r }),
+            }
+        }
+    }
+    Ok(values)
 }
 
 fn states(problem: &Problem, found: &[Found], errors: &[f64]) -> Vec<BoundState> {
