@@ -74,9 +74,9 @@ fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
     let zero = &level.vector;
     rotate(chain, zero, &work.rotation, &mut work.nodes, &mut work.image);
     let b = dot(zero, &work.image);
-    // The right-hand side −(W − B) ψ₀ is orthogonal to ψ₀ by construction. At the level's own energy a solve leaves
-    // some ψ₀ in the result, which is taken out, and a rounding error that the second round removes.
-    work.factors.factorise(chain, level.energy);
+    // The right-hand side −(W − B) ψ₀ is orthogonal to ψ₀ by construction. The shift stands a little beside the level,
+    // so that rounding does not fill the result with ψ₀; the second round removes what that costs.
+    work.factors.factorise(chain, level.energy + 1e-6 * level.gap);
     work.first.fill(0.0);
     for round in 0..2 {
         if round == 0 {

@@ -17,7 +17,7 @@ pub(super) struct Found {
     /// Normalised vector.
     pub vector: Vec<f64>,
     /// Distance to the nearest other level assumed while the vector was refined.
-    gap: f64,
+    pub gap: f64,
 }
 
 /// Brackets of the levels below `top`: `low[v]` has at most v levels below it, `high[v]` more than v.
