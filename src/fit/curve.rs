@@ -94,7 +94,7 @@ pub fn build_curve(
         (OuterForm::Wall, false)
     } else {
         let outside = Outside {
-            asymptote: asymptote_hartree.map(|e| e - data.zero),
+            asymptote: asymptote_hartree.map(|e| e - data.zero).filter(|e| e.is_finite()),
             power: settings.tail_power,
             base_limit: interpolant.recipe().base.map(|b| b.e_min_hartree + b.well_depth_hartree),
         };
@@ -105,8 +105,7 @@ pub fn build_curve(
 
     let noise = noise_hartree(&data.r, &data.e);
     let alternatives = minimum::alternatives(&data, interpolant.recipe(), &local);
-    let noise_variants =
-        noise.map_or_else(Vec::new, |n| minimum::noise_variants(&data, &interpolant, &local, n));
+    let noise_variants = noise.map_or_else(Vec::new, |n| minimum::noise_variants(&data, &interpolant, n));
     let recipe = interpolant.recipe();
     let polynomial = data.r.len() < POINTS_FOR_BASE && recipe.degree == data.r.len() - 1;
     let kind = match (recipe.base, recipe.degree) {
@@ -286,7 +285,7 @@ fn ends(
     let (first, last) = (data.r[0], data.r[data.r.len() - 1]);
     let maxima = || stationary.iter().filter(|s| s.maximum).map(|s| s.r);
     let outer = maxima().find(|&r| r > local.r_e_bohr);
-    let inner = maxima().filter(|&r| r < local.r_e_bohr).last();
+    let inner = maxima().filter(|&r| r < local.r_e_bohr).next_back();
     if let Some(r) = outer {
         let text = format!(
             "The curve turns over at {:.4} angstrom and falls beyond. It is used up to there; levels end at that \

@@ -118,13 +118,14 @@ impl SplineFactors {
             }
         }
         for i in 0..n {
-            let pivot = band[i];
-            for below in i + 1..n.min(i + degree + 1) {
-                let place = i + degree - below;
-                let factor = band[below][place] / pivot[degree];
-                band[below][place] = factor;
+            let (above, below) = band.split_at_mut(i + 1);
+            let pivot = above[i];
+            for (step, row) in below.iter_mut().take(degree).enumerate() {
+                let place = degree - 1 - step;
+                let factor = row[place] / pivot[degree];
+                row[place] = factor;
                 for k in 1..=degree {
-                    band[below][place + k] -= factor * pivot[degree + k];
+                    row[place + k] -= factor * pivot[degree + k];
                 }
             }
         }

@@ -99,7 +99,7 @@ impl OuterForm {
         match *self {
             Self::Power { n, gap, scale } => {
                 let n_scaled = inverse_power(joint.r, r, n);
-                let n_plus_2 = inverse_power(joint.r, r, n + 2);
+                let n_plus_2 = inverse_power(joint.r, r, n.saturating_add(2));
                 let mut d = [0.0; 5];
                 for k in 0..5 {
                     d[k] = -gap * (scale * n_scaled[k] - (scale - 1.0) * n_plus_2[k]);

@@ -10,6 +10,8 @@ use crate::units::{to_angstrom, to_per_cm};
 const OFF_ORDER: usize = 5;
 /// A point is off when the differences around it fall by more than this factor without it.
 const OFF_RATIO: f64 = 5.0;
+/// Most points that are called off; with more of them the scan as a whole is not smooth.
+const MOST_OFF: usize = 20;
 /// Orders of the differences that the noise is read from.
 const NOISE_ORDERS: std::ops::RangeInclusive<usize> = 4..=10;
 /// Levels of successive orders that agree within this factor are a plateau: noise.
@@ -74,10 +76,11 @@ pub fn inspect(points: &[InspectedPoint], kept: &[usize]) -> Inspection {
     found.left_out.sort_by_key(|l| l.0);
     for point in off {
         let text = format!(
-            "The point at {:.4} angstrom lies about {:.3} cm-1 off the smooth curve through its neighbours. It is \
+            "The point at {:.4} angstrom lies about {:.2} cm-1 {} the smooth curve through its neighbours. It is \
              used; set it aside or compute it again.",
             to_angstrom(r[point.index]),
-            to_per_cm(point.deviation_hartree)
+            to_per_cm(point.deviation_hartree.abs()),
+            if point.deviation_hartree < 0.0 { "below" } else { "above" }
         );
         found.notices.push(Notice::caution(Code::OffCurve, text).at([r[point.index]]));
     }
@@ -148,7 +151,7 @@ struct OffPoint {
     deviation_hartree: f64,
 }
 
-/// Points far off the smooth curve, ascending; at most one in five.
+/// Points far off the smooth curve, ascending; at most one in five and no more than [`MOST_OFF`].
 ///
 /// For each point the root mean square of the normalised differences of fifth order that contain it is
 /// compared with that of those that bridge its place without it. On a smooth curve leaving a point out
@@ -156,11 +159,11 @@ struct OffPoint {
 fn off_curve(r: &[f64], e: &[f64]) -> Vec<OffPoint> {
     let mut index: Vec<usize> = (0..r.len()).collect();
     let mut found = Vec::new();
-    while found.len() < r.len() / 5 {
+    while found.len() < (r.len() / 5).min(MOST_OFF) {
         let (x, y): (Vec<f64>, Vec<f64>) = index.iter().map(|&i| (r[i], e[i])).unzip();
         let ratios = (1..x.len().saturating_sub(1)).map(|i| (off_ratio(&x, &y, i), i));
         let Some((ratio, worst)) = ratios.max_by(|a, b| a.0.total_cmp(&b.0)) else { break };
-        if ratio <= OFF_RATIO {
+        if ratio.is_nan() || ratio <= OFF_RATIO {
             break;
         }
         found.push(OffPoint { index: index[worst], deviation_hartree: deviation(&x, &y, worst) });
@@ -172,16 +175,17 @@ fn off_curve(r: &[f64], e: &[f64]) -> Vec<OffPoint> {
 
 /// Quotient of the differences around point i with it and without it; 0 where there are too few points.
 fn off_ratio(r: &[f64], e: &[f64], i: usize) -> f64 {
-    let n = r.len();
     let width = OFF_ORDER + 1;
-    let with = mean_square(r, e, i.saturating_sub(OFF_ORDER), i.min(n - width.min(n)));
-    let without = |v: &[f64]| [&v[..i], &v[i + 1..]].concat();
-    let (r, e) = (without(r), without(e));
-    if n < width + 3 {
+    if r.len() < width + 3 {
         return 0.0;
     }
-    // Windows that hold both neighbours, i − 1 and (now) i.
-    let bridging = mean_square(&r, &e, i.saturating_sub(OFF_ORDER), (i - 1).min(n - 1 - width));
+    // All windows that hold the point, or both its neighbours when it is gone, lie in here.
+    let (from, to) = (i.saturating_sub(width), (i + width + 1).min(r.len()));
+    let (r, e, i) = (&r[from..to], &e[from..to], i - from);
+    let with = mean_square(r, e, i.saturating_sub(OFF_ORDER), i);
+    let without = |v: &[f64]| [&v[..i], &v[i + 1..]].concat();
+    // Windows that hold i − 1 and (now) i.
+    let bridging = mean_square(&without(r), &without(e), i.saturating_sub(OFF_ORDER), i - 1);
     // Differences at the level of rounding say nothing.
     let floor = (f64::EPSILON * e.iter().fold(1.0, |m: f64, x| m.max(x.abs()))).powi(2);
     (with / bridging.max(floor)).sqrt()
@@ -224,4 +228,77 @@ pub fn noise_hartree(r_bohr: &[f64], energy_hartree: &[f64]) -> Option<f64> {
         let (low, high) = plateau.iter().fold((f64::INFINITY, 0.0_f64), |(l, h), &x| (l.min(x), h.max(x)));
         (high > 0.0 && high <= PLATEAU * low).then(|| plateau.iter().sum::<f64>() / plateau.len() as f64)
     })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Invented: a Morse-like curve on an uneven grid.
+    fn smooth(n: usize) -> Vec<InspectedPoint> {
+        let point = |row: usize| {
+            let r_bohr = 1.5 + 0.05 * row as f64 + 0.01 * (row as f64 * 2.3).sin();
+            let y = 1.0 - (-1.1 * (r_bohr - 2.2)).exp();
+            InspectedPoint { row, r_bohr, energy_hartree: 0.2 * y * y - 100.0 }
+        };
+        (0..n).map(point).collect()
+    }
+
+    /// Any single inner point that is off by 2e-5 hartree is found, alone, with its deviation; so are two.
+    #[test]
+    fn single_points_that_are_off_are_found() {
+        assert_eq!(inspect(&smooth(40), &[]), Inspection::default());
+        for bad in 2..38 {
+            let mut points = smooth(40);
+            points[bad].energy_hartree -= 2e-5;
+            let (r, e) = columns(&points);
+            let off = off_curve(&r, &e);
+            assert_eq!(off.iter().map(|o| o.index).collect::<Vec<_>>(), [bad]);
+            assert!((off[0].deviation_hartree / -2e-5 - 1.0).abs() < 0.1, "{off:?}");
+            let notices = inspect(&points, &[]).notices;
+            assert_eq!(notices[0].at_bohr, [points[bad].r_bohr]);
+        }
+        let mut points = smooth(40);
+        points[10].energy_hartree += 3e-5;
+        points[24].energy_hartree -= 1e-4;
+        let (r, e) = columns(&points);
+        assert_eq!(off_curve(&r, &e).iter().map(|o| o.index).collect::<Vec<_>>(), [10, 24]);
+    }
+
+    /// Of a repeated bond length the first row counts, or the one that is kept; agreement is told from
+    /// disagreement.
+    #[test]
+    fn repeated_bond_lengths() {
+        let mut points = smooth(20);
+        points.insert(8, InspectedPoint { row: 33, ..points[7] });
+        let found = inspect(&points, &[]);
+        assert_eq!(found.left_out, [(33, "same bond length as row 8".to_string())]);
+        assert_eq!(found.notices[0].severity, crate::notice::Severity::Info);
+        points[8].energy_hartree += 1e-6;
+        let found = inspect(&points, &[33]);
+        assert_eq!(found.left_out, [(7, "same bond length as row 34".to_string())]);
+        assert_eq!(found.notices[0].severity, crate::notice::Severity::Caution);
+        assert_eq!(found.notices[0].code, Code::RepeatedGeometry);
+        // Three times the same, and nothing else.
+        let three: Vec<InspectedPoint> = (0..3).map(|row| InspectedPoint { row, ..points[0] }).collect();
+        assert_eq!(inspect(&three, &[]).left_out.len(), 2);
+        assert_eq!(inspect(&[], &[]), Inspection::default());
+    }
+
+    /// Noise of a known size (fixed pattern, invented) is measured within a factor of two; a smooth curve has none.
+    #[test]
+    fn noise_is_told_from_curvature() {
+        let (r, mut e) = columns(&smooth(60));
+        assert_eq!(noise_hartree(&r, &e), None);
+        for sigma in [1e-8, 1e-6] {
+            let (_, clean) = columns(&smooth(60));
+            for (i, (e, clean)) in e.iter_mut().zip(clean).enumerate() {
+                let spread = ((i * i) as f64 * 0.618_033_988_75 + 0.3 * i as f64).fract();
+                *e = clean + sigma * 3.0_f64.sqrt() * (2.0 * spread - 1.0);
+            }
+            let found = noise_hartree(&r, &e).unwrap();
+            assert!((0.5..2.0).contains(&(found / sigma)), "{found} {sigma}");
+        }
+        assert_eq!(noise_hartree(&r[..8], &e[..8]), None);
+    }
 }

@@ -11,12 +11,11 @@ use crate::units::{omega_e_per_cm, rotational_constant_per_cm};
 /// leading terms of Y_02 to Y_04. Standard errors: half the spread over the curve's admissible
 /// interpolations, and the noise of the energies propagated.
 pub fn from_derivatives(curve: &ScanCurve, reduced_mass_me: f64) -> DerivativeConstants {
-    let estimate =
-        |f: fn(&Dunham) -> f64| curve.estimate(|local| Some(f(&Dunham::new(local, reduced_mass_me))));
-    let coefficients: [(u32, u32, fn(&Dunham) -> f64); 4] =
+    let estimate = |f: Quantity| curve.estimate(|local| Some(f(&Dunham::new(local, reduced_mass_me))));
+    let coefficients: [(u32, u32, Quantity); 4] =
         [(0, 2, Dunham::y_02), (1, 2, Dunham::y_12), (0, 3, Dunham::y_03), (0, 4, Dunham::y_04)];
     // A curve has a minimum with positive curvature, so these three are always finite.
-    let sure = |f: fn(&Dunham) -> f64| {
+    let sure = |f: Quantity| {
         estimate(f)
             .unwrap_or(crate::estimate::Estimate::exact(f(&Dunham::new(&curve.local, reduced_mass_me))))
     };
@@ -33,6 +32,9 @@ pub fn from_derivatives(curve: &ScanCurve, reduced_mass_me: f64) -> DerivativeCo
             .collect(),
     }
 }
+
+/// A constant by its formula.
+type Quantity = fn(&Dunham) -> f64;
 
 /// What Dunham's formulas are written in; cm⁻¹.
 #[derive(Clone, Copy, Debug)]

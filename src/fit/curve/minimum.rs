@@ -11,8 +11,9 @@ const PARTS: usize = 8;
 const LOCAL_WINDOW: f64 = 0.2;
 /// Degrees of the local polynomials.
 const LOCAL_DEGREES: [usize; 2] = [6, 8];
-/// Changing an energy further from r_e than this, relative to r_e, does not move the minimum noticeably.
-const NOISE_WINDOW: f64 = 0.5;
+/// Changing an energy further from the lowest point than this many points does not move the minimum
+/// noticeably: the influence of a point on a quintic spline falls by more than half a knot.
+const NOISE_POINTS: usize = 25;
 
 /// A root of V′.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -123,16 +124,10 @@ fn by_polynomial(data: &Data, r_e: f64, degree: usize) -> Option<LocalDerivative
 }
 
 /// The minimum after each energy near it was raised by the noise, one after the other.
-pub(super) fn noise_variants(
-    data: &Data,
-    interpolant: &Interpolant,
-    local: &LocalDerivatives,
-    noise: f64,
-) -> Vec<LocalDerivatives> {
+pub(super) fn noise_variants(data: &Data, interpolant: &Interpolant, noise: f64) -> Vec<LocalDerivatives> {
     let recipe = interpolant.recipe();
     let factors = recipe.factors(&data.r);
     let (from, to) = data.bracket();
-    let near = |&i: &usize| (data.r[i] - local.r_e_bohr).abs() <= NOISE_WINDOW * local.r_e_bohr;
     let mut changed = data.e.clone();
     let variant = |i: usize| {
         changed[i] = data.e[i] + noise;
@@ -140,5 +135,6 @@ pub(super) fn noise_variants(
         changed[i] = data.e[i];
         minimum_between(|r| curve.derivatives(r), from, to)
     };
-    (0..data.r.len()).filter(near).filter_map(variant).collect()
+    let end = data.r.len().min(data.lowest + NOISE_POINTS + 1);
+    (data.lowest.saturating_sub(NOISE_POINTS)..end).filter_map(variant).collect()
 }
