@@ -26,6 +26,7 @@ pub mod digits;
 pub mod estimate;
 pub mod export;
 pub mod figure;
+pub mod files;
 pub mod findings;
 pub mod fit;
 #[cfg(feature = "gui")]

@@ -61,6 +61,7 @@ pub enum Code {
     SetAside,
     NoBase,
     NotFinite,
+    ManyLevels,
 }
 
 impl Code {
@@ -99,6 +100,7 @@ impl Code {
             Self::SetAside => "set-aside",
             Self::NoBase => "no-base",
             Self::NotFinite => "not-finite",
+            Self::ManyLevels => "many-levels",
         }
     }
 }

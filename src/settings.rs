@@ -24,6 +24,8 @@ pub struct SetAside {
 pub struct LevelSettings {
     /// Accuracy of level energies relative to the well depth.
     pub relative_accuracy: f64,
+    /// No level beyond this v is computed (a tail that hardly falls off can hold thousands).
+    pub highest_v: usize,
     /// A level leans when its probability outside the scan exceeds this,
     pub lean_probability: f64,
     /// or when changing C_n by this fraction,
@@ -42,6 +44,7 @@ impl Default for LevelSettings {
     fn default() -> Self {
         Self {
             relative_accuracy: 1e-10,
+            highest_v: 399,
             lean_probability: 1e-4,
             lean_c_n_fraction: 0.2,
             lean_asymptote_fraction: 0.01,

@@ -343,6 +343,12 @@ fn constants(constants: &Constants) -> Value {
             "alpha_e": per_cm(c.alpha_e_per_cm),
             "centrifugal_d_e": per_cm(Some(c.centrifugal_d_e_per_cm)),
             "y_00": per_cm(c.y_00_per_cm),
+            "y_kl": c.dunham_per_cm.iter().map(|y| {
+                let mut value = estimated(y.value_per_cm, 1.0, "cm-1");
+                value["k"] = y.k.into();
+                value["l"] = y.l.into();
+                value
+            }).collect::<Vec<_>>(),
         })
     });
     let from_levels = constants.from_levels.as_ref().map(|c| {

@@ -96,7 +96,7 @@ pub fn build_curve(
         let outside = Outside {
             asymptote: asymptote_hartree.map(|e| e - data.zero).filter(|e| e.is_finite()),
             power: settings.tail_power,
-            base_limit: interpolant.recipe().base.map(|b| b.e_min_hartree + b.well_depth_hartree),
+            base: interpolant.recipe().base.map(|b| (b.e_min_hartree + b.well_depth_hartree, b.a_per_bohr)),
         };
         let (form, assumed, more) = outer_tail(outer_joint, outside);
         notices.extend(more);
@@ -104,7 +104,7 @@ pub fn build_curve(
     };
 
     let noise = noise_hartree(&data.r, &data.e);
-    let alternatives = minimum::alternatives(&data, interpolant.recipe(), &local);
+    let (alternatives, other) = minimum::alternatives(&data, interpolant.recipe(), &local);
     let noise_variants = noise.map_or_else(Vec::new, |n| minimum::noise_variants(&data, &interpolant, n));
     let recipe = interpolant.recipe();
     let polynomial = data.r.len() < POINTS_FOR_BASE && recipe.degree == data.r.len() - 1;
@@ -126,6 +126,8 @@ pub fn build_curve(
         outer_joint,
         outer_assumed,
         alternatives,
+        other: Arc::new(other),
+        points: data.r.as_slice().into(),
         noise_variants,
         noise_hartree: noise,
         zero: data.zero,

@@ -107,6 +107,8 @@ pub struct ScanCurve {
     pub noise_variants: Vec<LocalDerivatives>,
     /// Estimated noise of the energies in hartree, where it can be told from curvature.
     pub noise_hartree: Option<f64>,
+    /// The bond lengths the curve runs through, ascending, in bohr.
+    pub points_bohr: Arc<[f64]>,
     body: Body,
 }
 
@@ -114,6 +116,8 @@ pub struct ScanCurve {
 #[derive(Clone, Debug)]
 struct Body {
     interpolant: Arc<Interpolant>,
+    /// The interpolation in the other variable.
+    other: Arc<Interpolant>,
     zero: f64,
     v_e: f64,
     inner: InnerTail,
@@ -138,6 +142,8 @@ pub(crate) struct CurveParts {
     pub outer_joint: Joint,
     pub outer_assumed: bool,
     pub alternatives: Vec<LocalDerivatives>,
+    pub other: Arc<Interpolant>,
+    pub points: Arc<[f64]>,
     pub noise_variants: Vec<LocalDerivatives>,
     pub noise_hartree: Option<f64>,
 }
@@ -163,8 +169,10 @@ impl ScanCurve {
             alternatives: parts.alternatives,
             noise_variants: parts.noise_variants,
             noise_hartree: parts.noise_hartree,
+            points_bohr: parts.points,
             body: Body {
                 interpolant: parts.interpolant,
+                other: parts.other,
                 zero: parts.zero,
                 v_e: parts.local.v_e_hartree,
                 inner: parts.inner,
@@ -207,6 +215,19 @@ impl ScanCurve {
         let variance: f64 = shifts.filter(|s| s.is_finite()).map(|s| s * s).sum();
         let noise = (!self.noise_variants.is_empty()).then(|| variance.sqrt());
         Some(Estimate::from_spread_and_noise(value, known.then_some(0.5 * (high - low)), noise))
+    }
+
+    /// By how much the interpolation in the other variable departs from this curve at `r_bohr`, in hartree,
+    /// each counted from its own minimum; zero outside the scan. Half of it, averaged over a level, is the
+    /// interpolation error of the level.
+    pub fn other_interpolation_hartree(&self, r_bohr: f64) -> f64 {
+        let (from, to) = self.scan_range_bohr;
+        let Some(minimum) = self.alternatives.first() else { return 0.0 };
+        if !(from..=to).contains(&r_bohr) {
+            return 0.0;
+        }
+        let difference = self.body.other.energy(r_bohr) - self.body.interpolant.energy(r_bohr);
+        difference - (minimum.v_e_hartree - self.body.v_e)
     }
 
     /// The same curve with energies counted from V_e, free of the rounding of large total energies.

@@ -108,6 +108,12 @@ macro_rules! registry {
                 match self { $(Self::$name(model) => model,)* }
             }
 
+            /// Puts parameters in place of the function's own, in the order of [`Parametric::values`].
+            pub fn set_values(&mut self, values: &[f64]) {
+                let model: &mut dyn Parametric = match self { $(Self::$name(model) => model,)* };
+                model.set_values(values);
+            }
+
             /// Adds `energy_hartree` to the energy of the minimum, which is every family's first parameter.
             pub fn shift_energy_hartree(&mut self, energy_hartree: f64) {
                 let model: &mut dyn Parametric = match self { $(Self::$name(model) => model,)* };

@@ -170,15 +170,23 @@ pub(crate) struct Outside {
     pub asymptote: Option<f64>,
     /// n given by the user.
     pub power: Option<u32>,
-    /// V_inf of the base function.
-    pub base_limit: Option<f64>,
+    /// V_inf and range parameter a (1/bohr) of the base function.
+    pub base: Option<(f64, f64)>,
 }
+
+/// An assumed exponential may fall off this much slower than its base function, and no more.
+const SLOWEST_ASSUMED_FALL: f64 = 0.25;
 
 /// The outer tail by the rule of the curve, and whether its V_inf is an assumption.
 ///
 /// V_inf and n given: V_inf − C_n/rⁿ through the last value. n alone: V_inf and C_n from value and
 /// slope. V_inf alone: exponential in value and slope. Nothing: exponential to the base's limit,
 /// assumed. Where that is impossible: a hard wall and a caution.
+///
+/// A scan that has all but reached its limit ends flat, often well below the limit of its base; the
+/// exponential between the two would then stretch over hundreds of bohr and hold levels that no molecule
+/// has. Where it would fall off slower than a quarter of the base's range parameter a, V_inf follows from the
+/// slope instead, V_last + V′/a: also assumed, and said so.
 pub(crate) fn outer_tail(joint: Joint, outside: Outside) -> (OuterForm, bool, Vec<Notice>) {
     let at = to_angstrom(joint.r);
     let wall = |why: String| {
@@ -192,7 +200,7 @@ pub(crate) fn outer_tail(joint: Joint, outside: Outside) -> (OuterForm, bool, Ve
     if joint.slope <= 0.0 {
         return wall("The curve does not rise at its last point, so no tail can be joined to it.".into());
     }
-    match (outside.asymptote, outside.power, outside.base_limit) {
+    match (outside.asymptote, outside.power, outside.base) {
         (Some(asymptote), _, _) if asymptote <= joint.energy => wall(format!(
             "The energy given for the separated atoms lies {:.1} cm-1 below the last point.",
             to_per_cm(joint.energy - asymptote)
@@ -211,8 +219,20 @@ pub(crate) fn outer_tail(joint: Joint, outside: Outside) -> (OuterForm, bool, Ve
             let notice = Notice::info(Code::AssumedTail, text).at([joint.r]);
             (OuterForm::Power { n, gap, scale: 1.0 }, false, vec![notice])
         }
-        (None, _, Some(limit)) if limit > joint.energy => {
+        (None, _, Some((limit, a))) if limit > joint.energy => {
             let gap = limit - joint.energy;
+            if joint.slope < SLOWEST_ASSUMED_FALL * a * gap {
+                let near = joint.slope / a;
+                let text = format!(
+                    "Beyond the last point ({at:.4} angstrom) the curve is assumed to level off {:.1} cm-1 higher, \
+                     as its slope there suggests (the limit of its Morse base, {:.0} cm-1 higher, is out of reach of \
+                     that slope). Give the energy of the separated atoms to have d_e and d_0.",
+                    to_per_cm(near),
+                    to_per_cm(gap)
+                );
+                let notice = Notice::info(Code::AssumedTail, text).at([joint.r]);
+                return (exponential(near), true, vec![notice]);
+            }
             let text = format!(
                 "Beyond the last point ({at:.4} angstrom) the curve goes on to the limit of its Morse base, \
                  {:.0} cm-1 higher: an assumption. Give the energy of the separated atoms to have d_e and d_0.",
@@ -220,7 +240,7 @@ pub(crate) fn outer_tail(joint: Joint, outside: Outside) -> (OuterForm, bool, Ve
             );
             (exponential(gap), true, vec![Notice::info(Code::AssumedTail, text).at([joint.r])])
         }
-        (None, _, Some(limit)) => wall(format!(
+        (None, _, Some((limit, _))) => wall(format!(
             "The Morse base would end {:.1} cm-1 below the last point.",
             to_per_cm(joint.energy - limit)
         )),
@@ -253,10 +273,10 @@ mod tests {
         check_slopes(|r| inner.derivatives(joint, 0.01, r), 0.7);
 
         let cases = [
-            (Outside { asymptote: Some(0.13), power: None, base_limit: Some(0.2) }, true),
-            (Outside { asymptote: None, power: Some(6), base_limit: Some(0.2) }, true),
-            (Outside { asymptote: None, power: None, base_limit: Some(0.2) }, true),
-            (Outside { asymptote: Some(0.13), power: Some(6), base_limit: None }, false),
+            (Outside { asymptote: Some(0.13), power: None, base: Some((0.2, 0.4)) }, true),
+            (Outside { asymptote: None, power: Some(6), base: Some((0.2, 0.4)) }, true),
+            (Outside { asymptote: None, power: None, base: Some((0.2, 0.4)) }, true),
+            (Outside { asymptote: Some(0.13), power: Some(6), base: None }, false),
         ];
         for (outside, slope_too) in cases {
             let (form, assumed, _) = outer_tail(JOINT, outside);
@@ -276,7 +296,7 @@ mod tests {
     /// V_inf − C_n/rⁿ with C_n from the last value, and a scaled C_n far out without a jump at the joint.
     #[test]
     fn inverse_power_has_the_coefficient_it_says() {
-        let outside = Outside { asymptote: Some(0.13), power: Some(6), base_limit: None };
+        let outside = Outside { asymptote: Some(0.13), power: Some(6), base: None };
         let (form, assumed, _) = outer_tail(JOINT, outside);
         let OuterTail::InversePower { n, c_n_hartree_bohr_n: c, asymptote_hartree: v, .. } =
             form.shown(JOINT, 0.0, assumed)
@@ -297,9 +317,9 @@ mod tests {
     #[test]
     fn impossible_tails_become_walls_with_a_caution() {
         let falling = Joint { slope: -0.01, ..JOINT };
-        let given = Outside { asymptote: Some(0.2), power: None, base_limit: None };
-        let below = Outside { asymptote: Some(0.1), power: Some(6), base_limit: Some(0.3) };
-        let low_base = Outside { asymptote: None, power: None, base_limit: Some(0.05) };
+        let given = Outside { asymptote: Some(0.2), power: None, base: None };
+        let below = Outside { asymptote: Some(0.1), power: Some(6), base: Some((0.3, 0.4)) };
+        let low_base = Outside { asymptote: None, power: None, base: Some((0.05, 0.4)) };
         for (joint, outside) in
             [(falling, given), (JOINT, below), (JOINT, low_base), (JOINT, Outside::default())]
         {
@@ -310,5 +330,16 @@ mod tests {
         let (inner, notice) = inner_tail(Joint { r: 1.0, energy: 0.3, slope: 0.2 }, 0.0);
         assert_eq!(inner, InnerTail::HardWall);
         assert_eq!(notice.map(|n| n.code), Some(Code::HardWall));
+    }
+
+    /// A flat end far below the base's limit: V_inf from the slope, not an exponential over hundreds of bohr.
+    #[test]
+    fn an_assumed_tail_falls_off_no_slower_than_a_quarter_of_its_base() {
+        let joint = Joint { r: 19.0, energy: 0.091, slope: 1e-7 };
+        let outside = Outside { asymptote: None, power: None, base: Some((0.0925, 0.6)) };
+        let (form, assumed, notices) = outer_tail(joint, outside);
+        let OuterForm::Exponential { b, gap } = form else { panic!("{form:?}") };
+        assert!(assumed && notices.len() == 1);
+        assert!((b - 0.6).abs() < 1e-12 && (gap - 1e-7 / 0.6).abs() < 1e-18);
     }
 }

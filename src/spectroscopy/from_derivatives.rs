@@ -36,6 +36,30 @@ pub fn from_derivatives(curve: &ScanCurve, reduced_mass_me: f64) -> DerivativeCo
 /// A constant by its formula.
 type Quantity = fn(&Dunham) -> f64;
 
+/// Dunham's leading constants of any function with a minimum; cm⁻¹.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct DunhamConstants {
+    /// ω_e.
+    pub omega_e_per_cm: f64,
+    /// ω_e x_e; NaN without V⁗.
+    pub omega_e_x_e_per_cm: f64,
+    /// B_e.
+    pub b_e_per_cm: f64,
+    /// α_e.
+    pub alpha_e_per_cm: f64,
+}
+
+/// The constants of [`from_derivatives`] for one minimum, without errors.
+pub fn dunham(local: &LocalDerivatives, reduced_mass_me: f64) -> DunhamConstants {
+    let d = Dunham::new(local, reduced_mass_me);
+    DunhamConstants {
+        omega_e_per_cm: d.omega,
+        omega_e_x_e_per_cm: d.omega_x(),
+        b_e_per_cm: d.b,
+        alpha_e_per_cm: d.alpha(),
+    }
+}
+
 /// What Dunham's formulas are written in; cm⁻¹.
 #[derive(Clone, Copy, Debug)]
 struct Dunham {

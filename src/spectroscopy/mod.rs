@@ -3,7 +3,7 @@
 mod from_derivatives;
 mod from_levels;
 
-pub use from_derivatives::from_derivatives;
+pub use from_derivatives::{DunhamConstants, dunham, from_derivatives};
 pub use from_levels::from_levels;
 
 use crate::estimate::{ErrorSource, Estimate};

@@ -82,7 +82,12 @@ pub(super) fn minimum_between(f: impl Fn(f64) -> [f64; 5], from: f64, to: f64) -
 }
 
 /// The minimum by the spline in the other variable and by local polynomials, where the scan allows.
-pub(super) fn alternatives(data: &Data, recipe: &Recipe, local: &LocalDerivatives) -> Vec<LocalDerivatives> {
+/// The spline in the other variable comes along, for the spread of the levels.
+pub(super) fn alternatives(
+    data: &Data,
+    recipe: &Recipe,
+    local: &LocalDerivatives,
+) -> (Vec<LocalDerivatives>, Interpolant) {
     let other = match recipe.variable {
         SplineVariable::R => SplineVariable::Y,
         SplineVariable::Y => SplineVariable::R,
@@ -92,7 +97,7 @@ pub(super) fn alternatives(data: &Data, recipe: &Recipe, local: &LocalDerivative
     let mut found = Vec::new();
     found.extend(minimum_between(|r| spline.derivatives(r), from, to));
     found.extend(LOCAL_DEGREES.iter().filter_map(|&degree| by_polynomial(data, local.r_e_bohr, degree)));
-    found
+    (found, spline)
 }
 
 /// The minimum of the least-squares polynomial of `degree` over |x| ≤ 0.2 r_e; none unless there are more

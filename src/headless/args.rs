@@ -1,0 +1,370 @@
+//! Command-line arguments to values.
+
+use crate::export::table::Table;
+use crate::fit::Window;
+use crate::settings::Settings;
+use crate::species::parse_atoms;
+use crate::units::{EnergyUnit, LengthUnit};
+use lexopt::{Arg, Parser, ValueExt as _};
+use std::ffi::OsString;
+use std::path::PathBuf;
+use thiserror::Error;
+
+/// What the user wants.
+#[derive(Clone, Debug)]
+pub enum Command {
+    /// The help text.
+    Help,
+    /// The version.
+    Version,
+    /// The window, or a picture of it.
+    Window(WindowArgs),
+    /// Headless studies.
+    Study(Box<StudyArgs>),
+}
+
+/// Choices about the study itself, shared by window and headless command; none leaves a setting alone.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct StudyChoices {
+    /// Settings file.
+    pub settings_file: Option<PathBuf>,
+    /// Energy column.
+    pub curve: Option<String>,
+    /// Bond-length column.
+    pub length_column: Option<String>,
+    /// Unit of the bond lengths.
+    pub length_unit: Option<LengthUnit>,
+    /// Unit of the energies.
+    pub energy_unit: Option<EnergyUnit>,
+    /// The two atoms.
+    pub atoms: Option<[crate::species::AtomChoice; 2]>,
+    /// Charge.
+    pub charge: Option<i32>,
+    /// Reduced mass in u.
+    pub reduced_mass_u: Option<f64>,
+    /// Fit window.
+    pub window: Option<Window>,
+    /// Energy of the separated atoms in the file's unit and scale.
+    pub asymptote: Option<f64>,
+}
+
+impl StudyChoices {
+    /// The settings with these choices laid over them.
+    pub fn apply(&self, settings: &mut Settings) {
+        fn set<T: Clone>(target: &mut Option<T>, choice: &Option<T>) {
+            if choice.is_some() {
+                target.clone_from(choice);
+            }
+        }
+        set(&mut settings.curve, &self.curve);
+        set(&mut settings.read.length_column, &self.length_column);
+        set(&mut settings.read.length_unit, &self.length_unit);
+        set(&mut settings.read.energy_unit, &self.energy_unit);
+        set(&mut settings.fits.window, &self.window);
+        set(&mut settings.interpolation.asymptote, &self.asymptote);
+        if self.atoms.is_some() {
+            settings.masses.atoms.clone_from(&self.atoms);
+            settings.masses.reduced_mass_u = None;
+        }
+        set(&mut settings.masses.reduced_mass_u, &self.reduced_mass_u);
+        if let Some(charge) = self.charge {
+            settings.masses.charge = charge;
+        }
+    }
+}
+
+/// Arguments of the window.
+#[derive(Clone, Debug, Default)]
+pub struct WindowArgs {
+    /// Files to open.
+    pub files: Vec<PathBuf>,
+    /// `auto`, `gl` or `cpu`.
+    pub renderer: Option<String>,
+    /// `light` or `dark`.
+    pub theme: Option<String>,
+    /// Page at the right.
+    pub page: Option<String>,
+    /// Where to paint a picture instead of opening a window.
+    pub picture: Option<PathBuf>,
+    /// Replace an existing picture.
+    pub overwrite: bool,
+    /// Size of the picture in points.
+    pub size: Option<(u32, u32)>,
+    /// Pixels per point of the picture.
+    pub scale: Option<f32>,
+    /// Choices about the study.
+    pub choices: StudyChoices,
+}
+
+/// Arguments of the headless study.
+#[derive(Clone, Debug, Default)]
+pub struct StudyArgs {
+    /// Files to study.
+    pub files: Vec<PathBuf>,
+    /// Choices about the study.
+    pub choices: StudyChoices,
+    /// Findings file; `-` is standard output.
+    pub out: Option<PathBuf>,
+    /// Folder for one findings file per study.
+    pub out_dir: Option<PathBuf>,
+    /// Tables to write.
+    pub tables: Vec<(Table, PathBuf)>,
+    /// Replace existing files.
+    pub overwrite: bool,
+    /// Print timings.
+    pub timings: bool,
+    /// Repeat each study for the timings.
+    pub repeat: usize,
+}
+
+/// Wrong usage.
+#[derive(Debug, Error)]
+pub enum UsageError {
+    /// An option's value is missing, malformed or unexpected.
+    #[error("{0}")]
+    Argument(#[from] lexopt::Error),
+    /// An option has a value that it cannot have.
+    #[error("--{option}: {found:?} is not understood; accepted: {accepted}")]
+    Value {
+        /// The option.
+        option: &'static str,
+        /// The value given.
+        found: String,
+        /// What is accepted.
+        accepted: String,
+    },
+    /// Nothing to study.
+    #[error("study: name at least one file")]
+    NoFile,
+    /// An option that belongs to the other command.
+    #[error("--{option} belongs to {command}")]
+    Elsewhere {
+        /// The option.
+        option: &'static str,
+        /// The command it belongs to.
+        command: &'static str,
+    },
+}
+
+/// Reads the arguments after the program's name.
+///
+/// # Errors
+/// [`UsageError`] for unknown options and values that are not understood.
+pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, UsageError> {
+    let arguments: Vec<OsString> = arguments.into_iter().collect();
+    let is_study = arguments.first().is_some_and(|a| a == "study");
+    let mut parser = Parser::from_args(arguments.into_iter().skip(usize::from(is_study)));
+    let mut study = StudyArgs { repeat: 1, ..StudyArgs::default() };
+    let mut window = WindowArgs::default();
+    while let Some(argument) = parser.next()? {
+        match argument {
+            Arg::Short('h') | Arg::Long("help") => return Ok(Command::Help),
+            Arg::Short('V') | Arg::Long("version") => return Ok(Command::Version),
+            Arg::Value(file) => study.files.push(file.into()),
+            Arg::Long("overwrite") => study.overwrite = true,
+            Arg::Long(name) => {
+                let name = name.to_owned();
+                let known = study_choice(&name, &mut parser, &mut study.choices)?
+                    || if is_study {
+                        study_option(&name, &mut parser, &mut study)?
+                    } else {
+                        window_option(&name, &mut parser, &mut window)?
+                    };
+                if !known {
+                    return Err(unknown_option(&name, is_study));
+                }
+            }
+            other => return Err(other.unexpected().into()),
+        }
+    }
+    if is_study {
+        return if study.files.is_empty() {
+            Err(UsageError::NoFile)
+        } else {
+            Ok(Command::Study(Box::new(study)))
+        };
+    }
+    window.files = study.files;
+    window.choices = study.choices;
+    window.overwrite = study.overwrite;
+    Ok(Command::Window(window))
+}
+
+/// An option that neither command has, or that the other one has.
+fn unknown_option(name: &str, is_study: bool) -> UsageError {
+    const STUDY: [&str; 5] = ["out", "out-dir", "table", "timings", "repeat"];
+    const WINDOW: [&str; 6] = ["renderer", "theme", "page", "picture", "size", "scale"];
+    let (others, command) = if is_study {
+        (&WINDOW[..], "the window: parabound FILE...")
+    } else {
+        (&STUDY[..], "parabound study")
+    };
+    match others.iter().find(|o| **o == name) {
+        Some(option) => UsageError::Elsewhere { option, command },
+        None => lexopt::Error::UnexpectedOption(format!("--{name}")).into(),
+    }
+}
+
+fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> Result<bool, UsageError> {
+    match name {
+        "settings" => choices.settings_file = Some(parser.value()?.into()),
+        "curve" => choices.curve = Some(parser.value()?.string()?),
+        "length-column" => choices.length_column = Some(parser.value()?.string()?),
+        "length-unit" => {
+            let names = LengthUnit::ALL.map(LengthUnit::name).join(", ");
+            let find = |text: &str| LengthUnit::ALL.into_iter().find(|u| u.name().eq_ignore_ascii_case(text));
+            choices.length_unit = Some(value(parser, "length-unit", &names, find)?);
+        }
+        "energy-unit" => {
+            let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
+            let find = |text: &str| EnergyUnit::ALL.into_iter().find(|u| u.name().eq_ignore_ascii_case(text));
+            choices.energy_unit = Some(value(parser, "energy-unit", &names, find)?);
+        }
+        "atoms" => {
+            let text = parser.value()?.string()?;
+            choices.atoms = Some(parse_atoms(&text).map_err(|error| UsageError::Value {
+                option: "atoms",
+                found: text.clone(),
+                accepted: error.to_string(),
+            })?);
+        }
+        "charge" => {
+            let accepted = "a whole number, e.g. 1 or -1";
+            choices.charge = Some(value(parser, "charge", accepted, |t| t.parse().ok())?);
+        }
+        "reduced-mass" => {
+            let mass = |t: &str| t.parse().ok().filter(|m: &f64| m.is_finite() && *m > 0.0);
+            choices.reduced_mass_u = Some(value(parser, "reduced-mass", "a positive number in u", mass)?);
+        }
+        "asymptote" => {
+            let accepted = "a number in the unit and on the scale of the energy column";
+            choices.asymptote = Some(value(parser, "asymptote", accepted, finite)?);
+        }
+        "window" => {
+            let accepted = "two bond lengths in angstrom, the smaller first: 0.8,1.2";
+            choices.window = Some(value(parser, "window", accepted, window_range)?);
+        }
+        _ => return Ok(false),
+    }
+    Ok(true)
+}
+
+fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Result<bool, UsageError> {
+    match name {
+        "out" => study.out = Some(parser.value()?.into()),
+        "out-dir" => study.out_dir = Some(parser.value()?.into()),
+        "timings" => study.timings = true,
+        "repeat" => {
+            let count = |t: &str| t.parse().ok().filter(|k| (1..=100_000).contains(k));
+            study.repeat = value(parser, "repeat", "a whole number from 1 to 100000", count)?;
+        }
+        "table" => {
+            let text = parser.value()?;
+            let names = Table::ALL.map(|(name, _)| name);
+            let entry = text.to_str().and_then(|t| t.split_once('=')).filter(|(_, file)| !file.is_empty());
+            let table = entry.and_then(|(what, file)| {
+                let (_, table) = Table::ALL.into_iter().find(|(name, _)| *name == what)?;
+                Some((table, PathBuf::from(file)))
+            });
+            study.tables.push(table.ok_or_else(|| UsageError::Value {
+                option: "table",
+                found: text.to_string_lossy().into_owned(),
+                accepted: format!("WHAT=FILE.csv with WHAT one of {}", names.join(", ")),
+            })?);
+        }
+        _ => return Ok(false),
+    }
+    Ok(true)
+}
+
+fn window_option(name: &str, parser: &mut Parser, window: &mut WindowArgs) -> Result<bool, UsageError> {
+    let one_of = |option: &'static str, names: &'static [&'static str], parser: &mut Parser| {
+        value(parser, option, &names.join(", "), |t| names.contains(&t).then(|| t.to_owned()))
+    };
+    match name {
+        "renderer" => window.renderer = Some(one_of("renderer", &["auto", "gl", "cpu"], parser)?),
+        "theme" => window.theme = Some(one_of("theme", &["light", "dark"], parser)?),
+        "page" => window.page = Some(parser.value()?.string()?),
+        "picture" => window.picture = Some(parser.value()?.into()),
+        "size" => {
+            let size = |t: &str| {
+                let (width, height) = t.split_once('x')?;
+                let side = |s: &str| s.parse().ok().filter(|n| (200..=10_000).contains(n));
+                Some((side(width)?, side(height)?))
+            };
+            window.size = Some(value(parser, "size", "WIDTHxHEIGHT in points, 200 to 10000 each", size)?);
+        }
+        "scale" => {
+            let scale = |t: &str| t.parse().ok().filter(|s: &f32| (0.5..=4.0).contains(s));
+            window.scale = Some(value(parser, "scale", "a number from 0.5 to 4", scale)?);
+        }
+        _ => return Ok(false),
+    }
+    Ok(true)
+}
+
+/// The option's value through `read`, or an error that says what is accepted.
+fn value<T>(
+    parser: &mut Parser,
+    option: &'static str,
+    accepted: &str,
+    read: impl Fn(&str) -> Option<T>,
+) -> Result<T, UsageError> {
+    let found = parser.value()?.string()?;
+    read(found.trim()).ok_or(UsageError::Value { option, found, accepted: accepted.to_owned() })
+}
+
+fn finite(text: &str) -> Option<f64> {
+    text.parse().ok().filter(|v: &f64| v.is_finite())
+}
+
+fn window_range(text: &str) -> Option<Window> {
+    let (from, to) = text.split_once(',')?;
+    let (from, to) = (finite(from.trim())?, finite(to.trim())?);
+    (0.0 < from && from < to).then_some(Window { from, to, unit: LengthUnit::Angstrom })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn parsed(text: &str) -> Result<Command, UsageError> {
+        parse(text.split_whitespace().map(OsString::from))
+    }
+
+    #[test]
+    fn a_study_with_everything() {
+        let Ok(Command::Study(study)) = parsed(
+            "study a.csv b.dat --atoms 2H,35Cl --charge -1 --length-unit BOHR --energy-unit kj/mol \
+             --window 0.8,1.4 --asymptote -1.5 --table levels=l.csv --table constants=c.csv \
+             --out f.json --timings --repeat 3 --curve E_X --overwrite",
+        ) else {
+            panic!("not understood")
+        };
+        assert_eq!(study.files.len(), 2);
+        assert_eq!(study.tables.len(), 2);
+        let mut settings = Settings::default();
+        study.choices.apply(&mut settings);
+        assert_eq!(settings.read.length_unit, Some(LengthUnit::Bohr));
+        assert_eq!(settings.read.energy_unit, Some(EnergyUnit::KilojoulePerMole));
+        assert_eq!(settings.masses.charge, -1);
+        assert_eq!(settings.interpolation.asymptote, Some(-1.5));
+    }
+
+    #[test]
+    fn wrong_values_name_what_is_accepted() {
+        for (text, needle) in [
+            ("study a --length-unit feet", "angstrom, bohr, pm, nm"),
+            ("study a --window 2,1", "smaller first"),
+            ("study a --reduced-mass -3", "positive"),
+            ("study a --table residue=x.csv", "levels, constants"),
+            ("study", "at least one file"),
+            ("study a --theme dark", "belongs to the window"),
+            ("a --timings", "belongs to parabound study"),
+            ("study a --wibble", "wibble"),
+        ] {
+            let error = parsed(text).expect_err(text).to_string();
+            assert!(error.contains(needle), "{text}: {error}");
+        }
+    }
+}

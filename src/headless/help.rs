@@ -1,0 +1,59 @@
+//! The text of `--help`.
+
+/// What `parabound --help` prints.
+pub const HELP: &str = "\
+parabound: from a bond scan to constants, levels and the reach of the parabola
+
+USAGE
+  parabound [FILE...]                  the window, with these scans or the bundled sample
+  parabound study FILE... [OPTIONS]    a summary on standard output, findings as JSON and tables
+
+WINDOW OPTIONS
+  --renderer auto|gl|cpu     how it is painted; auto (the default) needs no GPU
+  --theme light|dark         colours; the default follows the desktop
+  --page NAME                page at the right: constants, levels, fits, reach
+  --picture F.png            paint the window once, without any display, and end
+  --size 1400x900            size of that picture in points
+  --scale 2                  pixels per point of that picture
+  The study's options for reading, masses, window and asymptote work here too.
+
+READING
+  --curve NAME               energy column: its header name with or without the unit, any part of it
+                             that fits only one, or its number counted from 1; 'all' for each
+                             (default: the first)
+  --length-column NAME       likewise, where the first column is not the bond length
+  --length-unit UNIT         angstrom, bohr, pm, nm: where the file does not say, or says it wrong
+  --energy-unit UNIT         hartree, eV, meV, kJ/mol, kcal/mol, cm-1
+
+MASSES
+  --atoms A,B                the two atoms, with mass numbers where wanted: H,F or 2H,35Cl
+  --charge Q                 charge of the molecule in units of e (default 0)
+  --reduced-mass U           reduced mass in u, instead of atoms
+  Without atoms or a mass there are fits, derivatives and reach, but no levels.
+
+STUDY
+  --window FROM,TO           fit window in angstrom (default: 15 % of r_e to each side)
+  --asymptote E              energy of the separated atoms, in the file's unit and scale
+  --settings F               all settings at once, as a findings file carries them; other options
+                             given beside it win
+
+RESULTS
+  --out F                    findings (JSON); '-' for standard output. Replaces a findings file,
+                             refuses any other file unless --overwrite is given
+  --out-dir D                one findings file per study in this folder
+  --table WHAT=F.csv         levels or constants (one row a curve) of all studies; may be repeated
+  --overwrite                replace existing files
+  --timings                  seconds per stage as one JSON line on standard error
+  --repeat K                 run each study K times for the timings (their median is given)
+
+EXIT STATUS
+  0 done; 2 wrong usage; 3 a file could not be read, understood or written; 4 understood, but a study
+  is impossible (no minimum inside the scan, too few points). Of several files each is done; the
+  status is the highest.
+
+EXAMPLES
+  parabound                                   look at the bundled sample
+  parabound study lih.csv --atoms 7Li,H       summary
+  parabound study scan.dat --length-unit bohr --energy-unit hartree --atoms C,O --out co.json
+  parabound study *.csv --curve all --atoms H,F --table constants=hf.csv
+";

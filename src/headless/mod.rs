@@ -1,0 +1,48 @@
+//! The command line: arguments, files, studies, exports, exit status.
+//!
+//! Exit status: 0 done; 2 wrong usage; 3 a file could not be read or understood (a missing unit
+//! counts), or a result could not be written; 4 understood, but a study is impossible. Of several
+//! files each is done, and the status is the highest.
+
+mod args;
+mod help;
+mod run_study;
+mod summary;
+
+pub use args::{Command, StudyArgs, UsageError, WindowArgs, parse};
+pub use summary::summary;
+
+use std::process::ExitCode;
+
+/// Entry point of the program.
+pub fn main() -> ExitCode {
+    let status = match parse(std::env::args_os().skip(1)) {
+        Ok(Command::Help) => print(help::HELP),
+        Ok(Command::Version) => print(concat!("parabound ", env!("CARGO_PKG_VERSION"), "\n")),
+        Ok(Command::Study(arguments)) => run_study::run(&arguments),
+        Ok(Command::Window(arguments)) => window(arguments),
+        Err(error) => {
+            eprintln!("parabound: {error}\nparabound --help lists the commands and options.");
+            2
+        }
+    };
+    ExitCode::from(status)
+}
+
+/// Writes to standard output; a reader that has gone away is no error.
+fn print(text: &str) -> u8 {
+    use std::io::Write as _;
+    let _ = std::io::stdout().write_all(text.as_bytes());
+    0
+}
+
+#[cfg(feature = "gui")]
+fn window(arguments: WindowArgs) -> u8 {
+    crate::gui::run(arguments)
+}
+
+#[cfg(not(feature = "gui"))]
+fn window(_arguments: WindowArgs) -> u8 {
+    eprintln!("parabound: this build has no window; use 'parabound study FILE...' (see --help)");
+    2
+}

@@ -1,0 +1,222 @@
+//! `parabound study`: files in, summary, findings and tables out.
+
+use super::args::StudyArgs;
+use super::summary;
+use crate::export::json::all_to_string;
+use crate::files::{self, Replace};
+use crate::findings::Findings;
+use crate::scan::Scan;
+use crate::scan::read::read_scan;
+use crate::settings::Settings;
+use crate::study::{Stage, study_observed};
+use std::collections::BTreeMap;
+use std::path::{Path, PathBuf};
+use std::time::Instant;
+
+const DONE: u8 = 0;
+const NOT_READ: u8 = 3;
+const IMPOSSIBLE: u8 = 4;
+
+/// Runs the command; returns the exit status.
+pub fn run(arguments: &StudyArgs) -> u8 {
+    let settings = match starting_settings(arguments) {
+        Ok(settings) => settings,
+        Err(message) => {
+            eprintln!("parabound: {message}");
+            return NOT_READ;
+        }
+    };
+    let mut status = DONE;
+    let mut studies: Vec<(PathBuf, Findings)> = Vec::new();
+    let mut seconds = Timings::default();
+    for path in &arguments.files {
+        match study_file(path, &settings, arguments, &mut seconds) {
+            Ok(findings) => studies.extend(findings.into_iter().map(|f| (path.clone(), f))),
+            Err(message) => {
+                eprintln!("parabound: {}: {message}", path.display());
+                status = status.max(NOT_READ);
+            }
+        }
+    }
+    if studies.iter().any(|(_, f)| f.impossible()) {
+        status = status.max(IMPOSSIBLE);
+    }
+    if let Err(message) = write_results(arguments, &studies) {
+        eprintln!("parabound: {message}");
+        status = status.max(NOT_READ);
+    }
+    if arguments.timings {
+        eprintln!("{}", seconds.to_json());
+    }
+    status
+}
+
+/// The settings file, if there is one, with the options laid over it.
+fn starting_settings(arguments: &StudyArgs) -> Result<Settings, String> {
+    let mut settings = match &arguments.choices.settings_file {
+        Some(path) => read_settings(path)?,
+        None => Settings::default(),
+    };
+    arguments.choices.apply(&mut settings);
+    Ok(settings)
+}
+
+/// Settings from a findings file of one study, or from a file that holds settings alone.
+///
+/// # Errors
+/// A sentence with the file, what is wrong and what is accepted.
+pub fn read_settings(path: &Path) -> Result<Settings, String> {
+    let bytes = std::fs::read(path).map_err(|e| format!("{}: could not be read ({e})", path.display()))?;
+    let value: serde_json::Value = serde_json::from_slice(&bytes)
+        .map_err(|e| format!("{}: not JSON ({e}); give a findings file or its settings", path.display()))?;
+    let value = match value {
+        serde_json::Value::Array(mut list) if list.len() == 1 => list.remove(0),
+        serde_json::Value::Array(list) => {
+            return Err(format!("{}: holds {} studies; give a file with one", path.display(), list.len()));
+        }
+        other => other,
+    };
+    let settings = value.get("settings").cloned().unwrap_or(value);
+    serde_json::from_value(settings)
+        .map_err(|e| format!("{}: these settings do not fit: {e}", path.display()))
+}
+
+/// All studies of one file.
+fn study_file(
+    path: &Path,
+    settings: &Settings,
+    arguments: &StudyArgs,
+    seconds: &mut Timings,
+) -> Result<Vec<Findings>, String> {
+    let bytes = std::fs::read(path).map_err(|e| format!("could not be read ({e})"))?;
+    let name = path.file_name().map_or_else(String::new, |n| n.to_string_lossy().into_owned());
+    let mut findings = Vec::new();
+    for pass in 0..arguments.repeat.max(1) {
+        let start = Instant::now();
+        let scan = read_scan(&name, &bytes, &settings.read).map_err(|e| e.to_string())?;
+        seconds.add("read", start.elapsed().as_secs_f64());
+        let curves = chosen_curves(&scan, settings);
+        for curve in &curves {
+            let settings = Settings { curve: curve.clone(), ..settings.clone() };
+            let found = timed_study(&scan, &settings, seconds)?;
+            if pass == 0 {
+                findings.push(found);
+            }
+        }
+        seconds.end_pass();
+    }
+    Ok(findings)
+}
+
+fn timed_study(scan: &Scan, settings: &Settings, seconds: &mut Timings) -> Result<Findings, String> {
+    let start = Instant::now();
+    let mut last = start;
+    let findings = study_observed(scan, settings, &mut |stage: Stage| {
+        let now = Instant::now();
+        seconds.add(stage.name(), (now - last).as_secs_f64());
+        last = now;
+    });
+    seconds.add("total", start.elapsed().as_secs_f64());
+    findings.map_err(|e| e.to_string())
+}
+
+/// The columns that `--curve` means: one choice, or each column for `all`.
+fn chosen_curves(scan: &Scan, settings: &Settings) -> Vec<Option<String>> {
+    match settings.curve.as_deref() {
+        Some("all") => scan.energies.iter().map(|e| Some(e.name.clone())).collect(),
+        other => vec![other.map(str::to_owned)],
+    }
+}
+
+fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Result<(), String> {
+    let replace = if arguments.overwrite { Replace::Anything } else { Replace::Findings };
+    let all: Vec<&Findings> = studies.iter().map(|(_, f)| f).collect();
+    let to_standard_output = arguments.out.as_deref() == Some(Path::new("-"));
+    if to_standard_output {
+        super::print(&all_to_string(&all));
+    } else {
+        let texts: Vec<String> = all.iter().map(|f| summary(f)).collect();
+        super::print(&texts.join("\n"));
+    }
+    if all.is_empty() {
+        return Ok(());
+    }
+    let mut failures = Vec::new();
+    let mut keep = |result: Result<(), files::WriteError>| {
+        if let Err(error) = result {
+            failures.push(error.to_string());
+        }
+    };
+    if let Some(path) = arguments.out.as_deref().filter(|_| !to_standard_output) {
+        keep(files::write(path, all_to_string(&all).as_bytes(), replace));
+    }
+    if let Some(folder) = &arguments.out_dir {
+        if let Err(error) = std::fs::create_dir_all(folder) {
+            return Err(format!("{}: could not be made ({error})", folder.display()));
+        }
+        let mut taken = BTreeMap::new();
+        for (path, findings) in studies {
+            let file = folder.join(findings_file_name(path, findings, &mut taken));
+            keep(files::write(&file, all_to_string(&[findings]).as_bytes(), replace));
+        }
+    }
+    let table_replace = if arguments.overwrite { Replace::Anything } else { Replace::Nothing };
+    for (table, path) in &arguments.tables {
+        let mut bytes = Vec::new();
+        table.write(&all, &mut bytes).map_err(|e| format!("{}: {e}", path.display()))?;
+        keep(files::write(path, &bytes, table_replace));
+    }
+    if failures.is_empty() { Ok(()) } else { Err(failures.join("\nparabound: ")) }
+}
+
+/// `lih_X_A.E_X.json`; characters that file systems refuse become `_`, a name used twice gets a number.
+fn findings_file_name(path: &Path, findings: &Findings, taken: &mut BTreeMap<String, usize>) -> String {
+    let stem = path.file_stem().map_or_else(|| "scan".into(), |s| s.to_string_lossy());
+    let name: String = format!("{stem}.{}", findings.source.curve_label)
+        .chars()
+        .map(|c| if c.is_alphanumeric() || "._+-=()".contains(c) { c } else { '_' })
+        .collect();
+    let count = taken.entry(name.clone()).or_insert(0);
+    *count += 1;
+    if *count == 1 { format!("{name}.json") } else { format!("{name}.{count}.json") }
+}
+
+/// Seconds per stage and pass; the median over passes is printed.
+#[derive(Default)]
+struct Timings {
+    stages: BTreeMap<&'static str, Vec<f64>>,
+    pass: BTreeMap<&'static str, f64>,
+}
+
+impl Timings {
+    fn add(&mut self, stage: &'static str, seconds: f64) {
+        *self.pass.entry(stage).or_insert(0.0) += seconds;
+    }
+
+    fn end_pass(&mut self) {
+        for (stage, seconds) in std::mem::take(&mut self.pass) {
+            self.stages.entry(stage).or_default().push(seconds);
+        }
+    }
+
+    fn to_json(&self) -> serde_json::Value {
+        let order = ["read", "points", "curve", "fits", "levels", "constants", "reach", "total"];
+        let mut seconds = serde_json::Map::new();
+        for stage in order {
+            if let Some(values) = self.stages.get(stage) {
+                seconds.insert(stage.to_owned(), median(values).into());
+            }
+        }
+        serde_json::json!({ "seconds": seconds })
+    }
+}
+
+fn median(values: &[f64]) -> f64 {
+    let mut sorted = values.to_vec();
+    sorted.sort_by(f64::total_cmp);
+    match sorted.len() {
+        0 => 0.0,
+        n if n % 2 == 1 => sorted[n / 2],
+        n => 0.5 * (sorted[n / 2 - 1] + sorted[n / 2]),
+    }
+}

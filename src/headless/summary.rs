@@ -1,0 +1,223 @@
+//! The readable summary of a study on standard output.
+
+use crate::digits::{fixed, rounded, signed, with_uncertainty};
+use crate::estimate::Estimate;
+use crate::export::json::parameter_unit;
+use crate::findings::{Findings, FitFindings};
+use crate::potential::curve::OuterTail;
+use crate::reach::Interval;
+use crate::units::{
+    ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom, to_per_cm,
+};
+use crate::verdict::sentence;
+use std::fmt::Write as _;
+
+/// The summary, several lines, ending with a line feed.
+pub fn summary(findings: &Findings) -> String {
+    let mut text = String::new();
+    head(&mut text, findings);
+    let _ = writeln!(text, "\n{}\n", sentence(findings));
+    if findings.curve.is_some() {
+        constants(&mut text, findings);
+        fits(&mut text, findings);
+        levels(&mut text, findings);
+        reach(&mut text, findings);
+    }
+    notices(&mut text, findings);
+    text
+}
+
+fn head(text: &mut String, findings: &Findings) {
+    let source = &findings.source;
+    let used = source.points.iter().filter(|p| p.used).count();
+    let _ = write!(text, "{}  {}", source.file_name, source.curve);
+    if let Some(masses) = &findings.masses {
+        if let Some(atoms) = &masses.atoms {
+            let names: Vec<String> = atoms.iter().map(|a| format!("{}{}", a.mass_number, a.symbol)).collect();
+            let _ = write!(text, "  {}", names.join(" "));
+        }
+        let _ = write!(text, "  reduced mass {} u", rounded(masses.reduced_mass_u.value, 9));
+    }
+    let _ = write!(text, "\n{used} of {} points in use", source.points.len());
+    if let Some(curve) = &findings.curve {
+        let (from, to) = curve.scan_range_bohr;
+        let _ =
+            write!(text, ", {} to {} angstrom", rounded(to_angstrom(from), 5), rounded(to_angstrom(to), 5));
+        let _ = write!(text, "; curve: {}", curve.kind);
+        match curve.outer {
+            OuterTail::HardWall { .. } => {}
+            OuterTail::InversePower { asymptote_hartree, assumed, .. }
+            | OuterTail::Exponential { asymptote_hartree, assumed, .. } => {
+                let depth = to_per_cm(asymptote_hartree - curve.v_e_hartree.value);
+                let word = if assumed { "assumed" } else { "given" };
+                let _ = write!(text, "; asymptote {} cm-1 above the minimum ({word})", fixed(depth, 0));
+            }
+        }
+    }
+    text.push('\n');
+}
+
+fn row(text: &mut String, name: &str, estimate: Option<Estimate>, unit: &str, note: &str) {
+    if let Some(e) = estimate {
+        let number = with_uncertainty(e.value, e.std_error, 8);
+        let line = format!("  {name:<22}{number:>22}  {unit:<10}{note}");
+        let _ = writeln!(text, "{}", line.trim_end());
+    }
+}
+
+fn constants(text: &mut String, findings: &Findings) {
+    let Some(curve) = &findings.curve else { return };
+    text.push_str("Constants of the curve\n");
+    row(text, "r_e", Some(curve.r_e_bohr.scaled(ANGSTROM_PER_BOHR)), "angstrom", "");
+    row(text, "energy at r_e", Some(curve.v_e_hartree), "hartree", "");
+    let k = curve.derivatives_hartree[0].map(|k| k.scaled(NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2));
+    row(text, "k (V = 1/2 k x^2)", k, "N/m", "");
+    let constants = &findings.constants;
+    let levels = constants.from_levels.as_ref();
+    let beside = |e: Option<Estimate>| {
+        e.map_or_else(String::new, |e| {
+            format!("from levels: {}", with_uncertainty(e.value, e.std_error.filter(|s| *s > 0.0), 7))
+        })
+    };
+    if let Some(d) = &constants.from_derivatives {
+        let omega = beside(levels.map(|l| l.omega_e_per_cm));
+        row(text, "omega_e", Some(d.omega_e_per_cm), "cm-1", &omega);
+        let anharmonic = beside(levels.and_then(|l| l.omega_e_x_e_per_cm));
+        row(text, "omega_e x_e", d.omega_e_x_e_per_cm, "cm-1", &anharmonic);
+        row(text, "B_e", Some(d.b_e_per_cm), "cm-1", &beside(levels.and_then(|l| l.b_e_per_cm)));
+        row(text, "alpha_e", d.alpha_e_per_cm, "cm-1", &beside(levels.and_then(|l| l.alpha_e_per_cm)));
+        row(text, "centrifugal D_e", Some(d.centrifugal_d_e_per_cm), "cm-1", "");
+    }
+    row(text, "zero-point energy", constants.zero_point_energy_per_cm, "cm-1", "");
+    row(text, "fundamental 1 <- 0", constants.fundamental_per_cm, "cm-1", "");
+    row(text, "well depth D_e", constants.well_depth_per_cm, "cm-1", "");
+    row(text, "D_0", constants.d_0_per_cm, "cm-1", "");
+    text.push('\n');
+}
+
+fn fits(text: &mut String, findings: &Findings) {
+    let first = findings.fits.iter().find_map(|f| f.result.as_ref().ok());
+    let Some(first) = first else {
+        text.push_str("Fits\n");
+        findings.fits.iter().for_each(|f| fit(text, f));
+        text.push('\n');
+        return;
+    };
+    let edge = |value: f64| rounded(first.window.unit.convert(value, LengthUnit::Angstrom), 5);
+    let _ = writeln!(
+        text,
+        "Fits in the window {} to {} angstrom ({} points)",
+        edge(first.window.from),
+        edge(first.window.to),
+        first.points
+    );
+    findings.fits.iter().for_each(|f| fit(text, f));
+    text.push('\n');
+}
+
+fn fit(text: &mut String, findings: &FitFindings) {
+    let family = findings.request.family.word();
+    match &findings.result {
+        Err(error) => {
+            let _ = writeln!(text, "  {family}: {error}");
+        }
+        Ok(fit) => {
+            let degree = fit.degree.map_or_else(String::new, |d| format!(" of degree {d}"));
+            let _ = writeln!(
+                text,
+                "  {family}{degree}: rms residual {} cm-1, largest {} cm-1",
+                rounded(to_per_cm(fit.rms_residual_hartree), 3),
+                rounded(to_per_cm(fit.largest_residual_hartree), 3)
+            );
+            for p in &fit.parameters {
+                let (unit, factor) = parameter_unit(p.unit);
+                row(text, &format!("  {}", p.name), Some(p.estimate.scaled(factor)), &unit, "");
+            }
+        }
+    }
+}
+
+/// How many levels the summary lists; the findings file has all.
+const LISTED: usize = 12;
+
+fn levels(text: &mut String, findings: &Findings) {
+    if findings.levels.is_empty() {
+        return;
+    }
+    let supported = findings.levels.iter().filter(|l| !l.leans_on_tail).count();
+    let _ = writeln!(
+        text,
+        "Levels: {} below the limit, {supported} of them supported by the scan\n     v        E/cm-1       B_v/cm-1   - harmonic   - Morse   beyond turning points",
+        findings.levels.len()
+    );
+    for level in findings.levels.iter().take(LISTED) {
+        let morse = level.minus_morse_per_cm.map_or_else(|| "–".to_owned(), |d| signed(d, 2));
+        let _ = writeln!(
+            text,
+            "  {:>4}  {:>12}  {:>13}  {:>11}  {:>8}   {:>6} %{}",
+            level.v,
+            fixed(level.energy_per_cm, 3),
+            rounded(level.b_v_per_cm, 7),
+            signed(level.minus_harmonic_per_cm, 2),
+            morse,
+            fixed(100.0 * level.forbidden_probability, 2),
+            if level.leans_on_tail { "   leans on the tail" } else { "" }
+        );
+    }
+    if findings.levels.len() > LISTED {
+        let _ = writeln!(text, "  ... {} more in the findings file", findings.levels.len() - LISTED);
+    }
+    text.push('\n');
+}
+
+fn reach(text: &mut String, findings: &Findings) {
+    let Some(reach) = &findings.reach else { return };
+    let _ = writeln!(
+        text,
+        "Reach of the parabola at a tolerance of {}",
+        crate::verdict::percent(reach.tolerance)
+    );
+    let side = |x: Option<f64>| x.map_or_else(|| "end of scan".to_owned(), |x| signed(to_angstrom(x), 4));
+    let line = |interval: &Interval| {
+        format!("{} ... {} angstrom", side(interval.x_minus_bohr), side(interval.x_plus_bohr))
+    };
+    let _ = writeln!(text, "  energy                {}", line(&reach.energy));
+    let _ = writeln!(text, "  force                 {}", line(&reach.force));
+    let highest = |v: Option<usize>| v.map_or_else(|| "none".to_owned(), |v| format!("v <= {v}"));
+    if let Some(levels) = reach.levels {
+        let tolerance = rounded(levels.tolerance_per_cm, 4);
+        let _ =
+            writeln!(text, "  levels                {} (within {tolerance} cm-1)", highest(levels.highest_v));
+    }
+    if let Some(spacing) = reach.spacing {
+        let tolerance = rounded(spacing.tolerance_per_cm, 4);
+        let _ = writeln!(
+            text,
+            "  spacings              {} (within {tolerance} cm-1)",
+            highest(spacing.highest_v)
+        );
+    }
+    if let Some(kelvin) = reach.temperature_kelvin.partition_function {
+        let _ = writeln!(text, "  partition function    up to {} K (within 1 %)", fixed(kelvin, 0));
+    }
+    if let Some(amplitude) = reach.zero_point_amplitude_bohr {
+        let _ = writeln!(text, "  zero-point amplitude  {} angstrom", fixed(to_angstrom(amplitude), 4));
+    }
+    text.push('\n');
+}
+
+fn notices(text: &mut String, findings: &Findings) {
+    for notice in &findings.notices {
+        let at = notice.at_angstrom();
+        let place = match at.as_slice() {
+            [] => String::new(),
+            [one] => format!(" (at {} angstrom)", rounded(*one, 5)),
+            many => {
+                let list: Vec<String> = many.iter().take(6).map(|r| rounded(*r, 5)).collect();
+                let more = if many.len() > 6 { ", ..." } else { "" };
+                format!(" (at {}{more} angstrom)", list.join(", "))
+            }
+        };
+        let _ = writeln!(text, "{}: {}{place}", notice.severity.word(), notice.text);
+    }
+}

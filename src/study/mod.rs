@@ -1,0 +1,162 @@
+//! The study: one pure function from scan and settings to findings. This file is only the order of the
+//! steps; each step has a file of its own or belongs to an area of its own.
+
+mod fits;
+mod levels;
+mod points;
+
+use crate::findings::{Findings, Source};
+use crate::fit::curve::build_curve;
+use crate::notice::{Code, Notice};
+use crate::reach;
+use crate::scan::Scan;
+use crate::scan::error::ScanError;
+use crate::settings::Settings;
+use crate::species::{self, SpeciesError};
+use crate::spectroscopy::{self, Constants, LevelSet};
+use std::sync::Arc;
+use thiserror::Error;
+
+/// Why settings and scan do not fit together (a wrong name, not a bad curve).
+#[derive(Clone, Debug, PartialEq, Error)]
+pub enum StudyError {
+    /// No energy column answers to the name.
+    #[error(transparent)]
+    Curve(#[from] ScanError),
+    /// The atoms or the mass do not exist.
+    #[error(transparent)]
+    Species(#[from] SpeciesError),
+    /// A row is set aside that the scan does not have.
+    #[error("row {row} is set aside, but the scan has {rows} rows; counted from 0")]
+    Row {
+        /// The row.
+        row: usize,
+        /// How many rows there are.
+        rows: usize,
+    },
+}
+
+/// A finished stage of a study, for progress and timings.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Stage {
+    /// Points in use and their inspection.
+    Points,
+    /// The curve through them.
+    Curve,
+    /// The fits.
+    Fits,
+    /// The levels.
+    Levels,
+    /// The constants.
+    Constants,
+    /// The reach.
+    Reach,
+}
+
+impl Stage {
+    /// Its name in timings.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Points => "points",
+            Self::Curve => "curve",
+            Self::Fits => "fits",
+            Self::Levels => "levels",
+            Self::Constants => "constants",
+            Self::Reach => "reach",
+        }
+    }
+}
+
+/// Studies one curve of a scan.
+///
+/// Pure: reads no file, no clock, no environment; the same scan and settings give the same findings.
+///
+/// # Errors
+/// [`StudyError`] when the settings name something that the scan does not have. A curve that cannot
+/// be studied is no error here: its findings say why in a `stop` notice.
+pub fn study(scan: &Scan, settings: &Settings) -> Result<Findings, StudyError> {
+    study_observed(scan, settings, &mut |_| {})
+}
+
+/// The same, calling `after` at the end of each stage.
+///
+/// # Errors
+/// As [`study`].
+pub fn study_observed(
+    scan: &Scan,
+    settings: &Settings,
+    after: &mut dyn FnMut(Stage),
+) -> Result<Findings, StudyError> {
+    let column = &scan.energies[scan.curve_index(settings.curve.as_deref())?];
+    let masses = species::masses(&settings.masses, scan.atoms.as_ref(), scan.charge)?;
+    let (points, mut notices) = points::points(scan, column, settings)?;
+    after(Stage::Points);
+
+    let mut findings = Findings {
+        source: Source {
+            file_name: scan.file_name.clone(),
+            sha256: scan.sha256.clone(),
+            layout: scan.layout,
+            curve: column.name.clone(),
+            curve_label: column.label.clone(),
+            length_unit: scan.length_unit,
+            energy_unit: column.unit,
+            length_column: scan.length_column.clone(),
+            points,
+        },
+        masses,
+        settings: settings.clone(),
+        curve: None,
+        fits: Vec::new(),
+        levels: Vec::new(),
+        constants: Constants::default(),
+        reach: None,
+        notices: scan.notices.clone(),
+    };
+    findings.notices.append(&mut notices);
+
+    let used = points::in_use(&findings.source.points);
+    let asymptote_hartree = settings.interpolation.asymptote.map(|e| column.unit.to_hartree(e));
+    match build_curve(&used, asymptote_hartree, &settings.interpolation) {
+        Ok((curve, mut remarks)) => {
+            findings.curve = Some(Arc::new(curve));
+            findings.notices.append(&mut remarks);
+        }
+        Err(error) => findings.notices.push(error.notice()),
+    }
+    after(Stage::Curve);
+    if findings.curve.is_some() {
+        study_curve(&mut findings, after);
+    }
+    // The gravest first; within one severity the order of the steps is kept.
+    findings.notices.sort_by_key(|n| std::cmp::Reverse(n.severity));
+    Ok(findings)
+}
+
+/// Everything that needs a curve.
+fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
+    let Some(curve) = findings.curve.clone() else { return };
+    fits::fit_all(findings, &curve);
+    after(Stage::Fits);
+
+    let mass_me = findings.masses.as_ref().map(|m| m.reduced_mass_me);
+    if let Some(mass_me) = mass_me {
+        let reach = reach::energy_and_force_reach(&curve, &findings.settings.reach).map(|(energy, _)| energy);
+        levels::solve(findings, &curve, mass_me, reach.as_ref());
+    } else {
+        let text =
+            "No levels without a mass: name the two atoms (--atoms) or a reduced mass (--reduced-mass).";
+        findings.notices.push(Notice::info(Code::NoMass, text));
+    }
+    after(Stage::Levels);
+
+    let set = LevelSet {
+        highest_v: findings.settings.levels.constants_highest_v,
+        degree: findings.settings.levels.constants_degree,
+    };
+    findings.constants = spectroscopy::constants(&curve, mass_me, &findings.levels, set);
+    after(Stage::Constants);
+
+    findings.reach = reach::reach(&curve, mass_me, &findings.levels, &findings.settings.reach);
+    after(Stage::Reach);
+}

@@ -1,0 +1,81 @@
+//! Which points of a scan a study uses.
+
+use super::StudyError;
+use crate::findings::Point;
+use crate::fit::FitPoint;
+use crate::notice::{Code, Notice};
+use crate::scan::inspect::{InspectedPoint, inspect};
+use crate::scan::{EnergyColumn, Scan};
+use crate::settings::Settings;
+
+/// The points of a curve, ascending in r (equal bond lengths in file order), with what was remarked.
+///
+/// Rows whose energy cell is empty are no points of this curve.
+pub fn points(
+    scan: &Scan,
+    column: &EnergyColumn,
+    settings: &Settings,
+) -> Result<(Vec<Point>, Vec<Notice>), StudyError> {
+    let rows = scan.bond_lengths.len();
+    if let Some(wrong) = settings.set_aside.iter().find(|s| s.row >= rows) {
+        return Err(StudyError::Row { row: wrong.row, rows });
+    }
+    let mut points: Vec<Point> = (0..rows)
+        .filter_map(|row| {
+            let energy = column.values[row]?;
+            let r_as_read = scan.bond_lengths[row];
+            let why_not = settings.set_aside.iter().find(|s| s.row == row).map(|s| s.reason.clone());
+            Some(Point {
+                row,
+                r_as_read,
+                r_bohr: scan.length_unit.to_bohr(r_as_read),
+                energy_hartree: column.unit.to_hartree(energy),
+                used: why_not.is_none(),
+                weight: 1.0,
+                why_not,
+            })
+        })
+        .collect();
+    let mut notices = Vec::new();
+    let out_of_order = points.windows(2).filter(|w| w[1].r_as_read < w[0].r_as_read).count();
+    if out_of_order > 0 {
+        let falling = out_of_order + 1 == points.len();
+        let how = if falling { "fall along the file" } else { "are not in order in the file" };
+        notices.push(Notice::info(Code::Resorted, format!("The bond lengths {how}; they were sorted.")));
+        points.sort_by(|a, b| a.r_as_read.total_cmp(&b.r_as_read));
+    }
+    let set_aside: Vec<f64> = points.iter().filter(|p| !p.used).map(|p| p.r_bohr).collect();
+    if !set_aside.is_empty() {
+        let count = set_aside.len();
+        let text = format!("{count} point{} set aside by choice.", if count == 1 { "" } else { "s" });
+        notices.push(Notice::info(Code::SetAside, text).at(set_aside));
+    }
+    inspect_points(&mut points, &settings.kept, &mut notices);
+    Ok((points, notices))
+}
+
+fn inspect_points(points: &mut [Point], kept: &[usize], notices: &mut Vec<Notice>) {
+    let inspected: Vec<InspectedPoint> = points
+        .iter()
+        .filter(|p| p.used)
+        .map(|p| InspectedPoint { row: p.row, r_bohr: p.r_bohr, energy_hartree: p.energy_hartree })
+        .collect();
+    let mut found = inspect(&inspected, kept);
+    for (row, reason) in found.left_out {
+        if let Some(point) = points.iter_mut().find(|p| p.row == row) {
+            point.used = false;
+            point.why_not = Some(reason);
+        }
+    }
+    notices.append(&mut found.notices);
+}
+
+/// The points in use, as fits and curve take them.
+pub fn in_use(points: &[Point]) -> Vec<FitPoint> {
+    points.iter().filter(|p| p.used).map(fit_point).collect()
+}
+
+/// One point as a fit takes it.
+pub fn fit_point(point: &Point) -> FitPoint {
+    FitPoint { r_bohr: point.r_bohr, energy_hartree: point.energy_hartree, weight: point.weight }
+}

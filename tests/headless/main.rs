@@ -1,0 +1,33 @@
+//! The built program, run on real scans: exit status, findings against the schema, tables, refusals.
+
+mod findings;
+mod options;
+
+use std::path::{Path, PathBuf};
+use std::process::{Command, Output};
+
+/// A scan of the project, by file name.
+fn scan(name: &str) -> PathBuf {
+    let root = Path::new(env!("CARGO_MANIFEST_DIR"));
+    let places = [root.join("sample-scans").join(name), root.join("tests/scans").join(name)];
+    places.iter().find(|p| p.exists()).unwrap_or_else(|| panic!("no scan {name}")).clone()
+}
+
+/// Runs `parabound study` with the arguments given.
+fn study(arguments: &[&str]) -> Output {
+    Command::new(env!("CARGO_BIN_EXE_parabound"))
+        .arg("study")
+        .args(arguments)
+        .output()
+        .expect("the program starts")
+}
+
+/// Runs a study of one scan with findings on standard output, and reads them.
+fn findings(name: &str, options: &[&str]) -> serde_json::Value {
+    let path = scan(name);
+    let mut arguments = vec![path.to_str().expect("UTF-8"), "--out", "-"];
+    arguments.extend_from_slice(options);
+    let output = study(&arguments);
+    assert_eq!(output.status.code(), Some(0), "{name}: {}", String::from_utf8_lossy(&output.stderr));
+    serde_json::from_slice(&output.stdout).expect("JSON on standard output")
+}

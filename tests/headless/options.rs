@@ -1,0 +1,140 @@
+//! Options, files written and not written, exit statuses.
+
+use super::{findings, scan, study};
+use std::fs;
+
+fn text(bytes: &[u8]) -> String {
+    String::from_utf8_lossy(bytes).into_owned()
+}
+
+#[test]
+fn the_summary_is_readable_and_carries_units() {
+    let path = scan("lih_X_A.csv");
+    let output = study(&[path.to_str().expect("UTF-8"), "--atoms", "7Li,1H"]);
+    assert_eq!(output.status.code(), Some(0));
+    let summary = text(&output.stdout);
+    for needle in ["Within 5 %", "omega_e", "cm-1", "angstrom", "N/m", "zero-point energy", "70 of 70 points"]
+    {
+        assert!(summary.contains(needle), "no {needle:?} in\n{summary}");
+    }
+}
+
+#[test]
+fn files_are_replaced_only_when_they_are_findings_or_when_asked() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let out = folder.path().join("f.json");
+    let path = scan("hcl_clean.csv");
+    let arguments = |more: &[&'static str]| {
+        let mut list = vec![path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--out"];
+        let out = out.to_str().expect("UTF-8").to_owned();
+        let mut list: Vec<String> = list.drain(..).map(str::to_owned).collect();
+        list.push(out);
+        list.extend(more.iter().map(|s| (*s).to_owned()));
+        list
+    };
+    let run = |more: &[&'static str]| {
+        let list = arguments(more);
+        study(&list.iter().map(String::as_str).collect::<Vec<_>>()).status.code()
+    };
+    assert_eq!(run(&[]), Some(0));
+    assert_eq!(run(&[]), Some(0), "a findings file is replaced");
+    fs::write(&out, "precious").expect("written");
+    assert_eq!(run(&[]), Some(3));
+    assert_eq!(fs::read_to_string(&out).expect("read"), "precious");
+    assert_eq!(run(&["--overwrite"]), Some(0));
+    assert!(fs::read_to_string(&out).expect("read").contains("parabound.findings"));
+}
+
+#[test]
+fn tables_and_a_folder_of_findings() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let at = |name: &str| folder.path().join(name).to_str().expect("UTF-8").to_owned();
+    let path = scan("lih_X_A.csv");
+    let output = study(&[
+        path.to_str().expect("UTF-8"),
+        "--atoms",
+        "Li,H",
+        "--curve",
+        "all",
+        "--out-dir",
+        &at("out"),
+        "--table",
+        &format!("levels={}", at("levels.csv")),
+        "--table",
+        &format!("constants={}", at("constants.csv")),
+        "--timings",
+        "--repeat",
+        "2",
+    ]);
+    assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+    let names: Vec<String> = fs::read_dir(at("out"))
+        .expect("folder")
+        .map(|e| e.expect("entry").file_name().to_string_lossy().into_owned())
+        .collect();
+    assert_eq!(names.len(), 2, "{names:?}");
+    let constants = fs::read_to_string(at("constants.csv")).expect("table");
+    assert_eq!(constants.lines().count(), 3, "{constants}");
+    assert!(constants.lines().next().is_some_and(|h| h.contains("omega_e_cm-1,omega_e_cm-1_std_error")));
+    let levels = fs::read_to_string(at("levels.csv")).expect("table");
+    assert!(levels.lines().count() > 20, "{levels}");
+    let timings: serde_json::Value =
+        serde_json::from_str(text(&output.stderr).trim()).expect("one JSON line on standard error");
+    for stage in ["read", "fits", "curve", "levels", "total"] {
+        assert!(timings["seconds"][stage].as_f64().is_some_and(|s| s >= 0.0), "{timings}");
+    }
+}
+
+#[test]
+fn wrong_usage_wrong_files_and_impossible_curves_have_their_statuses() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let write = |name: &str, content: &str| {
+        let path = folder.path().join(name);
+        fs::write(&path, content).expect("written");
+        path.to_str().expect("UTF-8").to_owned()
+    };
+    assert_eq!(study(&["--wibble"]).status.code(), Some(2));
+    assert_eq!(study(&[]).status.code(), Some(2));
+    assert_eq!(study(&["no-such-file.csv"]).status.code(), Some(3));
+
+    // A unit that is not stated is never guessed; the message names the option that settles it.
+    let bare = write("bare.csv", "1.0,2.0\n1.1,1.0\n1.2,0.5\n1.3,0.4\n1.4,0.6\n1.5,1.0\n1.6,1.6\n");
+    let output = study(&[&bare]);
+    assert_eq!(output.status.code(), Some(3), "{}", text(&output.stdout));
+    assert!(text(&output.stderr).contains("--length-unit"), "{}", text(&output.stderr));
+    let settled = study(&[&bare, "--length-unit", "angstrom", "--energy-unit", "eV", "--atoms", "H,F"]);
+    assert_eq!(settled.status.code(), Some(0), "{}", text(&settled.stderr));
+
+    // A curve without a minimum (invented numbers): explained, status 4, findings written all the same.
+    let falling = write(
+        "falling.csv",
+        "R_angstrom,E_eV\n1.0,5.0\n1.1,4.0\n1.2,3.2\n1.3,2.6\n1.4,2.2\n1.5,1.9\n1.6,1.7\n1.7,1.6\n",
+    );
+    let output = study(&[&falling, "--atoms", "H,F", "--out", "-"]);
+    assert_eq!(output.status.code(), Some(4), "{}", text(&output.stderr));
+    let value: serde_json::Value = serde_json::from_slice(&output.stdout).expect("findings");
+    assert_eq!(value["notices"][0]["severity"], "stop");
+    assert!(value["curve"].is_null());
+
+    // Of several files each is done; the status is the highest.
+    let good = scan("hcl_clean.csv");
+    let output = study(&["no-such-file.csv", good.to_str().expect("UTF-8"), "--atoms", "H,Cl"]);
+    assert_eq!(output.status.code(), Some(3));
+    assert!(text(&output.stdout).contains("omega_e"));
+    let few = write("few.csv", "R_angstrom,E_eV\n1.0,5.0\n1.1,4.0\n1.2,5.2\n");
+    assert_eq!(study(&[&few, good.to_str().expect("UTF-8"), "--atoms", "H,Cl"]).status.code(), Some(4));
+}
+
+#[test]
+fn isotopes_charge_and_reduced_mass_change_the_levels_as_they_must() {
+    let first = |options: &[&str]| {
+        let value = findings("hcl_clean.csv", options);
+        value["levels"][0]["energy"]["value"].as_f64().expect("a level")
+    };
+    let hcl = first(&["--atoms", "H,Cl"]);
+    let dcl = first(&["--atoms", "2H,35Cl"]);
+    assert!((hcl / dcl - 1.39).abs() < 0.02, "isotope ratio {}", hcl / dcl);
+    let mass = findings("hcl_clean.csv", &["--atoms", "H,Cl"])["masses"]["reduced_mass"]["value"].to_string();
+    assert_eq!(hcl.to_bits(), first(&["--reduced-mass", &mass]).to_bits());
+    let ion = first(&["--atoms", "H,Cl", "--charge", "1"]);
+    assert!(ion < hcl && hcl - ion < 0.1, "an electron less is a heavier reduced mass by m_e only");
+}
