@@ -77,7 +77,7 @@ mod tests {
     #[test]
     fn concise_notation() {
         assert_eq!(with_uncertainty(1.609_430_06, Some(0.000_002), 6), "1.609430(2)");
-        assert_eq!(with_uncertainty(22.755, Some(0.12), 6), "22.76(12)");
+        assert_eq!(with_uncertainty(22.757, Some(0.12), 6), "22.76(12)");
         assert_eq!(with_uncertainty(103.627, Some(0.031), 6), "103.63(3)");
         assert_eq!(with_uncertainty(1243.0, Some(34.0), 6), "1240(30)");
         assert_eq!(with_uncertainty(-0.000_117, Some(0.000_002), 6), "−0.000117(2)");
