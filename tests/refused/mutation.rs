@@ -50,16 +50,15 @@ fn mutate(bytes: &mut Vec<u8>, random: &mut Xorshift) {
 
 #[test]
 fn mutated_files_never_panic() {
-    let mut seeds: Vec<Vec<u8>> =
-        cases("scans").into_iter().chain(cases("accepted")).map(|case| case.bytes).collect();
+    let bytes = |folder: &str| cases(folder).into_iter().map(|case| case.bytes).collect::<Vec<_>>();
+    let (bad, mut good) = (bytes("scans"), bytes("accepted"));
     for folder in ["sample-scans", "tests/scans"] {
         let folder = Path::new(env!("CARGO_MANIFEST_DIR")).join(folder);
         let mut paths: Vec<_> =
             std::fs::read_dir(folder).expect("the folder").map(|e| e.expect("an entry").path()).collect();
         paths.sort();
-        seeds.extend(paths.iter().map(|p| std::fs::read(p).expect("readable")));
+        good.extend(paths.iter().map(|p| std::fs::read(p).expect("readable")));
     }
-    seeds.retain(|s| s.len() < 40_000);
     let stated = ReadSettings {
         length_unit: Some(LengthUnit::Angstrom),
         energy_unit: Some(EnergyUnit::Hartree),
@@ -69,6 +68,8 @@ fn mutated_files_never_panic() {
     let mut random = Xorshift(SEED);
     let (mut read, mut refused) = (0, 0);
     for _ in 0..INPUTS {
+        // Good files mostly: a bad one is refused whatever else is done to it.
+        let seeds = if random.below(4) == 0 { &bad } else { &good };
         let mut bytes = seeds[random.below(seeds.len())].clone();
         for _ in 0..=random.below(5) {
             mutate(&mut bytes, &mut random);

@@ -1,6 +1,7 @@
 //! Delimited text: from lines to a table of named columns of numbers.
 
 use super::columns::ColumnName;
+use super::fixed::Places;
 use super::header::{self, Header, TextLine};
 use super::number::{Cell, DecimalSign, parse_cell};
 use super::table::{Delimiter, Format, LIMIT_COLUMNS, Row, choose_format};
@@ -47,6 +48,7 @@ pub(crate) fn parse(text: &str) -> Result<Table<'_>, ScanError> {
     check_commas(&sample, format)?;
     let used = used_columns(&contents, format);
     let mut reader = Reader::new(format, used);
+    reader.places = Places::of(&contents, format);
     let mut row = Row::default();
     for line in lines(text) {
         reader.line(line, &mut row)?;
@@ -170,6 +172,7 @@ fn used_columns(sample: &[&str], format: Format) -> usize {
 struct Reader<'a> {
     format: Format,
     used: usize,
+    places: Option<Places>,
     before: Vec<TextLine<'a>>,
     header: Option<Header>,
     header_text: Option<&'a str>,
@@ -185,7 +188,7 @@ impl<'a> Reader<'a> {
             row_remarks: Vec::new(),
             prose: Vec::new(),
         };
-        Self { format, used, before: Vec::new(), header: None, header_text: None, table }
+        Self { format, used, places: None, before: Vec::new(), header: None, header_text: None, table }
     }
 
     fn begun(&self) -> bool {
@@ -289,7 +292,12 @@ impl<'a> Reader<'a> {
         Err(ScanError::SecondTable { line: text.number, header: shortened(text.text) })
     }
 
-    fn row(&mut self, line: Line<'a>, row: &Row<'a>) -> Result<(), ScanError> {
+    fn row(&mut self, line: Line<'a>, row: &mut Row<'a>) -> Result<(), ScanError> {
+        if row.cells.len() < self.format.columns
+            && let Some(cells) = self.places.as_ref().and_then(|p| p.cells(line.content))
+        {
+            row.set(cells, self.format.sign);
+        }
         if row.cells.len() != self.format.columns {
             // A row that begins with a word is a remark: that explains more than the count does.
             if row.cells.first() == Some(&Cell::Text)

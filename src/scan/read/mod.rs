@@ -3,6 +3,7 @@
 mod assemble;
 mod columns;
 mod delimited;
+mod fixed;
 mod frames;
 mod header;
 mod number;

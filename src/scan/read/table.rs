@@ -109,6 +109,12 @@ impl<'a> Row<'a> {
         }
     }
 
+    /// Replaces the cells by those found in another way.
+    pub(crate) fn set(&mut self, written: Vec<&'a str>, sign: DecimalSign) {
+        self.cells = written.iter().map(|cell| parse_cell(cell, sign)).collect();
+        self.written = written;
+    }
+
     /// Whether the line is a row of a table: two or more cells, no text, at least one number.
     pub(crate) fn is_data(&self) -> bool {
         self.cells.len() > 1
