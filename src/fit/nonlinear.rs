@@ -229,7 +229,8 @@ fn damped(
                 continue;
             };
             let mut step: Vec<f64> = s.iter().zip(&factors).map(|(s, d)| s / d).collect();
-            if step.iter().zip(&place.values).all(|(s, v)| s.abs() <= 1e-14 * v.abs()) {
+            let small = step.iter().zip(&place.values).all(|(s, v)| s.abs() <= 1e-14 * v.abs());
+            if small || length(&s) <= rounding(&place.values, &factors) {
                 return Ok(FitEnd::SmallStep);
             }
             if settings.accelerated {
@@ -294,6 +295,12 @@ fn acceleration(
     (size(&bend) <= 0.375 * size(step)).then_some(bend)
 }
 
+/// What rounding does to the largest term of the model: a step that changes the prediction by less is no step,
+/// however large it is beside a parameter that is zero.
+fn rounding(values: &[f64], lengths: &[f64]) -> f64 {
+    0.5 * f64::EPSILON * values.iter().zip(lengths).map(|(v, d)| (v * d).abs()).fold(0.0, f64::max)
+}
+
 /// R (column-major p × p) and the first p entries of Qᵀ r for the Jacobian with columns divided by `factors`.
 fn reduce(place: &Place, factors: &[f64]) -> (Vec<f64>, Vec<f64>) {
     let (n, p) = (place.residuals.len(), factors.len());
@@ -314,6 +321,31 @@ fn reduce(place: &Place, factors: &[f64]) -> (Vec<f64>, Vec<f64>) {
     }
     c.truncate(p);
     (r, c)
+}
+
+/// Undamped Gauss-Newton alone, from a start close to the solution: the parameters when the steps shrink
+/// below 1e-9 of the first one or to rounding, else none.
+pub(crate) fn follow(problem: &mut dyn Problem, start: Vec<f64>) -> Option<Vec<f64>> {
+    let (n, p) = (problem.observations(), problem.parameters());
+    let mut place = Place::new(problem, start)?;
+    let (mut first, mut last) = (0.0_f64, f64::INFINITY);
+    for _ in 0..25 {
+        let qr = Qr::new(&place.jacobian, n, p)?;
+        let mut step: Vec<f64> = place.residuals.iter().map(|r| -r).collect();
+        qr.transpose_times(&mut step);
+        step.truncate(p);
+        let size = length(&step);
+        qr.back_substitute(&mut step);
+        if size <= (1e-9 * first).max(2.0 * rounding(&place.values, &qr.lengths)) {
+            return Some(place.moved(&step));
+        }
+        if size.is_nan() || size > 0.7 * last {
+            return None;
+        }
+        place = Place::new(problem, place.moved(&step))?;
+        (first, last) = (if first == 0.0 { size } else { first }, size);
+    }
+    None
 }
 
 /// Gauss-Newton steps as long as they shrink; the place before a step that does not is kept.
@@ -338,7 +370,8 @@ fn undamped(problem: &mut dyn Problem, place: &mut Place, evaluations: &mut usiz
         }
         *place = new;
         last = size;
-        if step.iter().zip(&place.values).all(|(s, v)| s.abs() <= f64::EPSILON * v.abs()) {
+        let small = step.iter().zip(&place.values).all(|(s, v)| s.abs() <= f64::EPSILON * v.abs());
+        if small || size <= rounding(&place.values, &qr.lengths) {
             return;
         }
     }

@@ -4,6 +4,7 @@ use super::jet::Jet;
 use super::roots::{derivative, real_roots, root_bound, value};
 use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential};
 use serde::{Deserialize, Serialize};
+use std::sync::OnceLock;
 
 /// The expansion variable of a polynomial.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
@@ -87,15 +88,28 @@ impl Variable {
 ///
 /// As a potential it reaches from its nearest stationary point below r_e to the nearest one above
 /// (r = 0 and r = ∞ where there is none); levels count below the lower of the two barriers.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug)]
 pub struct Polynomial {
     variable: Variable,
     e_min_hartree: f64,
     r_e_bohr: f64,
     /// Coefficients of u⁰, u¹, u², ...; the first two are zero.
     series: Vec<f64>,
+    /// Found when first asked for: a fit that moves the parameters needs none.
+    ends: OnceLock<Ends>,
+}
+
+/// Where the well ends.
+#[derive(Clone, Copy, Debug)]
+struct Ends {
     range_bohr: (f64, f64),
     limit_hartree: f64,
+}
+
+impl PartialEq for Polynomial {
+    fn eq(&self, other: &Self) -> bool {
+        self.variable == other.variable && self.values() == other.values()
+    }
 }
 
 impl Polynomial {
@@ -103,16 +117,7 @@ impl Polynomial {
     pub fn new(variable: Variable, e_min_hartree: f64, r_e_bohr: f64, from_c2: &[f64]) -> Self {
         let mut series = vec![0.0, 0.0];
         series.extend_from_slice(from_c2);
-        let mut new = Self {
-            variable,
-            e_min_hartree,
-            r_e_bohr,
-            series,
-            range_bohr: (0.0, f64::INFINITY),
-            limit_hartree: 0.0,
-        };
-        new.find_barriers();
-        new
+        Self { variable, e_min_hartree, r_e_bohr, series, ends: OnceLock::new() }
     }
 
     /// The variable.
@@ -130,7 +135,11 @@ impl Polynomial {
         &self.series[2..]
     }
 
-    fn find_barriers(&mut self) {
+    fn ends(&self) -> Ends {
+        *self.ends.get_or_init(|| self.find_ends())
+    }
+
+    fn find_ends(&self) -> Ends {
         let (left_end, right_end) = self.variable.ends(self.r_e_bohr);
         // V′ = u (2 c2 + 3 c3 u + ...): the stationary points besides u = 0 are the roots of the bracket.
         let bracket = &derivative(&self.series)[1..];
@@ -144,9 +153,11 @@ impl Polynomial {
             let u = u.unwrap_or(end);
             if u.is_finite() { value(&self.series, u) } else { f64::INFINITY }
         };
-        self.limit_hartree = self.e_min_hartree + barrier(below, left_end).min(barrier(above, right_end));
         let place = |u: f64| self.variable.bond_length_bohr(u, self.r_e_bohr);
-        self.range_bohr = (below.map_or(0.0, place), above.map_or(f64::INFINITY, place));
+        Ends {
+            range_bohr: (below.map_or(0.0, place), above.map_or(f64::INFINITY, place)),
+            limit_hartree: self.e_min_hartree + barrier(below, left_end).min(barrier(above, right_end)),
+        }
     }
 }
 
@@ -169,10 +180,10 @@ impl Potential for Polynomial {
         self.e_min_hartree + value(&self.series, self.variable.at(r_bohr, self.r_e_bohr))
     }
     fn range_bohr(&self) -> (f64, f64) {
-        self.range_bohr
+        self.ends().range_bohr
     }
     fn limit_hartree(&self) -> f64 {
-        self.limit_hartree
+        self.ends().limit_hartree
     }
     fn minimum_bohr(&self) -> f64 {
         self.r_e_bohr
@@ -198,7 +209,9 @@ impl Parametric for Polynomial {
         values
     }
     fn set_values(&mut self, values: &[f64]) {
-        *self = Self::new(self.variable, values[0], values[1], &values[2..]);
+        [self.e_min_hartree, self.r_e_bohr] = [values[0], values[1]];
+        self.series[2..].copy_from_slice(&values[2..]);
+        self.ends = OnceLock::new();
     }
     fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
         let u = self.variable.at(r_bohr, self.r_e_bohr);
