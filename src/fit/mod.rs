@@ -16,11 +16,13 @@ mod precise;
 mod qr;
 mod run;
 mod statistics;
+mod weights;
 mod window;
 
 pub use crate::potential::{Family, ModelFault, ParameterUnit, Variable};
 pub use precise::Precise;
 pub use run::{fit, morse_for_base};
+pub use weights::EnergyWeights;
 pub use window::{DEFAULT_HALF_WIDTH_OF_R_E, DEFAULT_LEAST_POINTS, Window, default_window};
 
 use crate::estimate::{ErrorSource, Estimate};
