@@ -28,6 +28,8 @@ const POINTS_NEEDED: usize = 5;
 const BASE_HEIGHT: f64 = 1.5;
 /// Leave-one-out is judged on at most about this many points.
 const LEAVE_ONE_OUT_POINTS: usize = 200;
+/// Neighbours on either side that the curve without a point is built from.
+const LEAVE_ONE_OUT_NEIGHBOURS: usize = 12;
 /// Spread of ω_e x_e over the interpolations, relative, above which there is a caution.
 const SPREAD_CAUTION: f64 = 0.05;
 
@@ -263,13 +265,16 @@ fn best(data: &Data, recipes: &[Recipe]) -> Option<(Interpolant, usize)> {
 }
 
 /// Root mean square error at each point of the curve built without it; two points at either end are
-/// left in, as without them the curve would be an extrapolation. The base is kept.
+/// left in, as without them the curve would be an extrapolation. The base is kept, and the spline runs
+/// through the nearest points only: the influence of a point falls by more than half from knot to knot.
 fn leave_one_out_hartree(data: &Data, recipe: &Recipe) -> f64 {
     let n = data.r.len();
     let step = n.div_ceil(LEAVE_ONE_OUT_POINTS);
     let (mut sum, mut count) = (0.0, 0);
     for i in (2..n - 2).step_by(step) {
-        let without = |v: &[f64]| -> Vec<f64> { [&v[..i], &v[i + 1..]].concat() };
+        let (from, to) =
+            (i.saturating_sub(LEAVE_ONE_OUT_NEIGHBOURS), n.min(i + LEAVE_ONE_OUT_NEIGHBOURS + 1));
+        let without = |v: &[f64]| -> Vec<f64> { [&v[from..i], &v[i + 1..to]].concat() };
         let error = recipe.through(&without(&data.r), &without(&data.e)).energy(data.r[i]) - data.e[i];
         sum += error * error;
         count += 1;

@@ -18,6 +18,8 @@ const NOISE_ORDERS: std::ops::RangeInclusive<usize> = 4..=10;
 const PLATEAU: f64 = 2.0;
 /// How many successive orders a plateau needs.
 const PLATEAU_ORDERS: usize = 4;
+/// Noise below this (hartree) is the rounding of the energies themselves and not worth a remark.
+const ROUNDING_HARTREE: f64 = 1e-11;
 /// Repeated energies that differ by less than this (hartree) agree: tight convergence thresholds.
 const SAME_ENERGY_HARTREE: f64 = 1e-9;
 
@@ -84,7 +86,7 @@ pub fn inspect(points: &[InspectedPoint], kept: &[usize]) -> Inspection {
         );
         found.notices.push(Notice::caution(Code::OffCurve, text).at([r[point.index]]));
     }
-    if let Some(noise) = found.noise_hartree {
+    if let Some(noise) = found.noise_hartree.filter(|n| *n > ROUNDING_HARTREE) {
         let text = format!(
             "The energies carry a noise of about {:.1e} cm-1 ({noise:.1e} hartree); it enters the standard errors.",
             to_per_cm(noise)
