@@ -2,6 +2,7 @@
 
 use crate::export::table::Table;
 use crate::fit::Window;
+use crate::scan::read::{parse_energy_unit, parse_length_unit};
 use crate::settings::Settings;
 use crate::species::parse_atoms;
 use crate::units::{EnergyUnit, LengthUnit};
@@ -46,6 +47,8 @@ pub struct StudyChoices {
     pub window: Option<Window>,
     /// Energy of the separated atoms in the file's unit and scale.
     pub asymptote: Option<f64>,
+    /// The two atoms whose distance is the bond length, numbered from 1.
+    pub bond: Option<[usize; 2]>,
 }
 
 impl StudyChoices {
@@ -60,6 +63,7 @@ impl StudyChoices {
         set(&mut settings.read.length_column, &self.length_column);
         set(&mut settings.read.length_unit, &self.length_unit);
         set(&mut settings.read.energy_unit, &self.energy_unit);
+        set(&mut settings.read.bond, &self.bond);
         set(&mut settings.fits.window, &self.window);
         set(&mut settings.interpolation.asymptote, &self.asymptote);
         if self.atoms.is_some() {
@@ -212,13 +216,20 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
         "length-column" => choices.length_column = Some(parser.value()?.string()?),
         "length-unit" => {
             let names = LengthUnit::ALL.map(LengthUnit::name).join(", ");
-            let find = |text: &str| LengthUnit::ALL.into_iter().find(|u| u.name().eq_ignore_ascii_case(text));
-            choices.length_unit = Some(value(parser, "length-unit", &names, find)?);
+            choices.length_unit = Some(value(parser, "length-unit", &names, parse_length_unit)?);
         }
         "energy-unit" => {
             let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
-            let find = |text: &str| EnergyUnit::ALL.into_iter().find(|u| u.name().eq_ignore_ascii_case(text));
-            choices.energy_unit = Some(value(parser, "energy-unit", &names, find)?);
+            choices.energy_unit = Some(value(parser, "energy-unit", &names, parse_energy_unit)?);
+        }
+        "bond" => {
+            let pair = |t: &str| {
+                let (a, b) = t.split_once(',')?;
+                let number = |s: &str| s.trim().parse().ok().filter(|n: &usize| *n > 0);
+                let (a, b) = (number(a)?, number(b)?);
+                (a != b).then_some([a, b])
+            };
+            choices.bond = Some(value(parser, "bond", "two different atom numbers from 1, e.g. 1,2", pair)?);
         }
         "atoms" => {
             let text = parser.value()?.string()?;

@@ -24,6 +24,8 @@ READING
   --length-column NAME       likewise, where the first column is not the bond length
   --length-unit UNIT         angstrom, bohr, pm, nm: where the file does not say, or says it wrong
   --energy-unit UNIT         hartree, eV, meV, kJ/mol, kcal/mol, cm-1
+  --bond A,B                 the atoms whose distance is the bond length, numbered from 1, in files of
+                             Cartesian coordinates with more than two atoms
 
 MASSES
   --atoms A,B                the two atoms, with mass numbers where wanted: H,F or 2H,35Cl

@@ -10,10 +10,9 @@ use crate::radial::{RadialRequest, bound_states};
 use crate::spectroscopy::{DunhamConstants, dunham};
 use crate::units::to_per_cm;
 
-/// The harmonic ladder is endless; this many rungs are listed at least.
-const HARMONIC_RUNGS: usize = 12;
-/// No ladder of a fitted function is listed beyond this v.
-const HIGHEST_V: usize = 400;
+/// Ladders without an end (harmonic, rising polynomials) are listed up to this many rungs: far beyond what a
+/// fit near the minimum can say.
+const RUNGS: usize = 40;
 
 /// Does every fit that the settings ask for.
 pub fn fit_all(findings: &mut Findings, curve: &ScanCurve) {
@@ -115,7 +114,7 @@ fn local(model: &Model) -> Option<LocalDerivatives> {
 
 /// The function's own levels in cm⁻¹ above its own minimum: closed form where there is one.
 fn levels(model: &Model, mass_me: f64) -> Vec<f64> {
-    let hartree = model.closed_form_levels_hartree(mass_me, HARMONIC_RUNGS).unwrap_or_else(|| {
+    let hartree = model.closed_form_levels_hartree(mass_me, RUNGS).unwrap_or_else(|| {
         let mut above = model.clone();
         let e_min = model.energy_hartree(model.minimum_bohr());
         above.shift_energy_hartree(-e_min);
@@ -123,7 +122,7 @@ fn levels(model: &Model, mass_me: f64) -> Vec<f64> {
             reduced_mass_me: mass_me,
             rotation_x: 0.0,
             relative_accuracy: 1e-10,
-            highest_v: Some(HIGHEST_V),
+            highest_v: Some(RUNGS - 1),
         };
         bound_states(&above, &request)
             .map(|states| states.iter().map(|s| s.energy_hartree).collect())

@@ -1,6 +1,6 @@
 //! Every delimited scan with an energy column: status 0, findings that satisfy the schema.
 
-use super::{findings, scan, study};
+use super::{findings, findings_with_status, scan, study};
 use serde_json::Value;
 
 /// Scan, options it needs, and the number of energy columns.
@@ -42,7 +42,9 @@ fn every_scan_gives_findings_that_satisfy_the_schema() {
         let fits = value["fits"].as_array().expect("fits");
         assert!(fits.len() == 3 && fits.iter().all(|f| f["converged"] == true), "{name}: {fits:#?}");
         if columns > 1 {
-            let all = findings(name, &[options, &["--curve", "all"]].concat());
+            // Correlation energies alone have no minimum: explained, and the others are done.
+            let status = if name == "hf_basis_family.csv" { 4 } else { 0 };
+            let all = findings_with_status(name, &[options, &["--curve", "all"]].concat(), status);
             assert_valid(&validator, &all, name);
             assert_eq!(all.as_array().map(Vec::len), Some(columns), "{name}");
         }

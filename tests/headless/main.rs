@@ -22,12 +22,16 @@ fn study(arguments: &[&str]) -> Output {
         .expect("the program starts")
 }
 
-/// Runs a study of one scan with findings on standard output, and reads them.
+/// Runs a study of one scan with findings on standard output, and reads them; status 0 is expected.
 fn findings(name: &str, options: &[&str]) -> serde_json::Value {
+    findings_with_status(name, options, 0)
+}
+
+fn findings_with_status(name: &str, options: &[&str], status: i32) -> serde_json::Value {
     let path = scan(name);
     let mut arguments = vec![path.to_str().expect("UTF-8"), "--out", "-"];
     arguments.extend_from_slice(options);
     let output = study(&arguments);
-    assert_eq!(output.status.code(), Some(0), "{name}: {}", String::from_utf8_lossy(&output.stderr));
+    assert_eq!(output.status.code(), Some(status), "{name}: {}", String::from_utf8_lossy(&output.stderr));
     serde_json::from_slice(&output.stdout).expect("JSON on standard output")
 }

@@ -15,7 +15,8 @@ fn rust_files(folder: &Path) -> Vec<PathBuf> {
     for path in entries {
         if path.is_dir() {
             found.extend(rust_files(&path));
-        } else if path.extension().is_some_and(|e| e == "rs") {
+        } else if path.extension().is_some_and(|e| e == "rs") && !path.ends_with("tests.rs") {
+            // `tests.rs` beside the code is a test and may use what it needs.
             found.push(path);
         }
     }
