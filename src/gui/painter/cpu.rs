@@ -45,6 +45,11 @@ impl CpuPainter {
         Self { textures: TextureStore::default(), unused: Vec::new(), threads: threads.max(1) }
     }
 
+    /// Changes the number of threads (at least one); the picture stays the same.
+    pub const fn set_threads(&mut self, threads: usize) {
+        self.threads = if threads == 0 { 1 } else { threads };
+    }
+
     /// Takes over new and changed textures. Call before [`Self::paint`].
     pub fn apply_textures(&mut self, delta: &mut TexturesDelta) {
         for id in self.unused.drain(..) {

@@ -90,6 +90,11 @@ impl<P: Program> Offscreen<P> {
         &self.picture
     }
 
+    /// How many threads paint; all there are unless told otherwise.
+    pub const fn set_painter_threads(&mut self, threads: usize) {
+        self.painter.set_threads(threads);
+    }
+
     /// Runs passes until no work is left (or `patience` is over) and everything has settled, then paints.
     pub fn settle(&mut self, patience: Duration) -> &Picture {
         let end = Instant::now() + patience;
