@@ -56,7 +56,11 @@ impl Scene {
                 painter.add(Shape::mesh(mesh));
                 painter.add(Shape::line(tops, Stroke::new(1.0, Color32::from_rgb(0x3f, 0xb6, 0xa8))));
             }
-            painter.hline(PLOT.x_range(), at(0.0, level).y, Stroke::new(1.0, Color32::from_rgb(0x85, 0x93, 0xa5)));
+            painter.hline(
+                PLOT.x_range(),
+                at(0.0, level).y,
+                Stroke::new(1.0, Color32::from_rgb(0x85, 0x93, 0xa5)),
+            );
         }
         for k in 0..20 {
             let points = (0..500).map(|i| i as f32 / 499.0).map(|x| at(x, well(x, 1.2 + 0.02 * k as f32)));
@@ -90,7 +94,11 @@ impl Program for Scene {
             );
             let clipped = ui.painter().with_clip_rect(PLOT);
             self.plot(&clipped);
-            clipped.rect_filled(Rect::from_min_size(at(0.3, 1.0), vec2(40.0, 740.0)), 0.0, Color32::from_white_alpha(30));
+            clipped.rect_filled(
+                Rect::from_min_size(at(0.3, 1.0), vec2(40.0, 740.0)),
+                0.0,
+                Color32::from_white_alpha(30),
+            );
         });
     }
 }
@@ -115,7 +123,8 @@ fn measure(name: &str, densities: bool) {
         start.elapsed().as_secs_f64() * 1e3
     };
     let mut primitives = Vec::new();
-    let layout = median_ms((0..FRAMES / 3).map(|_| timed(&mut || primitives = window.pass(Vec::new()))).collect());
+    let layout =
+        median_ms((0..FRAMES / 3).map(|_| timed(&mut || primitives = window.pass(Vec::new()))).collect());
     let triangles: usize = primitives
         .iter()
         .map(|p| match &p.primitive {
@@ -128,7 +137,9 @@ fn measure(name: &str, densities: bool) {
         median_ms((0..FRAMES).map(|_| timed(&mut || _ = window.paint(&primitives).size_px())).collect())
     };
     let (one, all) = (paint(1), paint(std::thread::available_parallelism().map_or(1, usize::from)));
-    println!("{name}: {triangles} triangles, layout {layout:.2} ms, paint {one:.2} ms on one thread, {all:.2} ms on all");
+    println!(
+        "{name}: {triangles} triangles, layout {layout:.2} ms, paint {one:.2} ms on one thread, {all:.2} ms on all"
+    );
 }
 
 fn main() {
