@@ -2,7 +2,7 @@
 
 use super::picture::Picture;
 use super::texture::{self, Texture, TextureStore};
-use super::triangle::{self, Band, Corner, ONE, PixelRect, first_centre, flat_span};
+use super::triangle::{self, Band, Corner, Fabric, ONE, PixelRect, first_centre, flat_span};
 use super::{far, pixel};
 use eframe::egui::epaint::{ClippedPrimitive, Mesh, Primitive, Vertex};
 use eframe::egui::{Rect, TextureId, TexturesDelta};
@@ -128,7 +128,7 @@ fn clip_px(clip: Rect, pixels_per_point: f32, whole: &PixelRect) -> PixelRect {
 /// A mesh ready for painting: corners on the grid, and the rows its triangles reach, group by group.
 struct Prepared<'a> {
     mesh: &'a Mesh,
-    texture: &'a Texture,
+    fabric: Fabric<'a>,
     clip: PixelRect,
     pixels_per_point: f32,
     /// Grid positions; [`OUTSIDE`] for corners that need the long way.
@@ -161,7 +161,7 @@ impl<'a> Prepared<'a> {
                 (first_centre(rows.0), first_centre(rows.1))
             })
             .collect();
-        Some(Self { mesh, texture, clip, pixels_per_point, corners, rows })
+        Some(Self { mesh, fabric: Fabric::new(texture), clip, pixels_per_point, corners, rows })
     }
 
     fn paint(&self, band: &mut Band<'_>) {
@@ -195,17 +195,29 @@ impl<'a> Prepared<'a> {
     }
 
     fn paint_triangle(&self, band: &mut Band<'_>, clip: &PixelRect, indices: [u32; 3]) {
-        let [Some(a), Some(b), Some(c)] = indices.map(|i| self.corner(i)) else { return };
-        if [a, b, c].iter().any(|corner| corner.at == OUTSIDE) {
-            let [Some(a), Some(b), Some(c)] = indices.map(|i| self.mesh.vertices.get(i as usize)) else {
-                return;
-            };
-            for corners in far::cut([a, b, c], self.pixels_per_point) {
-                triangle::paint(band, clip, self.texture, corners);
-            }
+        let [Some(&a), Some(&b), Some(&c)] = indices.map(|i| self.corners.get(i as usize)) else { return };
+        if a == OUTSIDE || b == OUTSIDE || c == OUTSIDE {
+            self.paint_far_triangle(band, clip, indices);
             return;
         }
-        triangle::paint(band, clip, self.texture, [a, b, c]);
+        let bounds = triangle::bounds(&[a, b, c], clip);
+        if bounds.is_empty() {
+            return;
+        }
+        if let [Some(a), Some(b), Some(c)] = indices.map(|i| self.corner(i)) {
+            triangle::paint(band, &bounds, &self.fabric, [a, b, c]);
+        }
+    }
+
+    #[cold]
+    fn paint_far_triangle(&self, band: &mut Band<'_>, clip: &PixelRect, indices: [u32; 3]) {
+        let [Some(a), Some(b), Some(c)] = indices.map(|i| self.mesh.vertices.get(i as usize)) else { return };
+        for corners in far::cut([a, b, c], self.pixels_per_point) {
+            let bounds = triangle::bounds(&corners.map(|c| c.at), clip);
+            if !bounds.is_empty() {
+                triangle::paint(band, &bounds, &self.fabric, corners);
+            }
+        }
     }
 
     fn corner(&self, index: u32) -> Option<Corner> {
@@ -230,7 +242,7 @@ impl<'a> Prepared<'a> {
             return false;
         }
         if [b, c, d].iter().all(|corner| corner.uv == a.uv) {
-            let colour = texture::tinted(a.colour, self.texture.sample_flat(a.uv));
+            let colour = texture::tinted(a.colour, self.fabric.at(a.uv));
             let area = covered(a.at, d.at, clip);
             for y in area.y0..area.y1 {
                 flat_span(band.span(area.x0, y, (area.x1 - area.x0).max(0) as usize), colour);
@@ -240,7 +252,7 @@ impl<'a> Prepared<'a> {
         if a.uv.y != b.uv.y || a.uv.x != c.uv.x || d.uv.x != b.uv.x || d.uv.y != c.uv.y {
             return false;
         }
-        let [width, height] = self.texture.size();
+        let [width, height] = self.fabric.texture.size();
         let (Some(dx), Some(dy)) = (
             shift([a.at[0], d.at[0]], [a.uv.x, d.uv.x], width),
             shift([a.at[1], d.at[1]], [a.uv.y, d.uv.y], height),
@@ -256,7 +268,7 @@ impl<'a> Prepared<'a> {
             let (Ok(u), Ok(v)) = (usize::try_from(area.x0 + dx), usize::try_from(y + dy)) else {
                 return true;
             };
-            let Some(texels) = self.texture.row(u, v, count) else { return true };
+            let Some(texels) = self.fabric.texture.row(u, v, count) else { return true };
             for (p, texel) in band.span(area.x0, y, count).iter_mut().zip(texels) {
                 if *texel != [0; 4] {
                     *p = pixel::over(texture::tinted(a.colour, *texel), *p);

@@ -81,6 +81,12 @@ impl Edge {
         Self { value: value - bias, per_column: -dy * i64::from(ONE), per_row: dx * i64::from(ONE), bias }
     }
 
+    /// The weight of the corner opposite, at a column of this row, times the triangle's area.
+    #[inline]
+    fn weight(&self, column: i64) -> f64 {
+        (self.value + self.bias + self.per_column * column) as f64
+    }
+
     /// The columns (counted from the first of the box) of this row that are inside, cut to `columns`.
     #[inline]
     fn cut(&self, reciprocal: f64, columns: (i64, i64)) -> (i64, i64) {
@@ -124,26 +130,44 @@ impl Edge {
     }
 }
 
+/// A texture, with the colour at its origin looked up: egui's untextured shapes all point there.
+pub(super) struct Fabric<'a> {
+    pub(super) texture: &'a Texture,
+    origin: [u8; 4],
+}
+
+impl<'a> Fabric<'a> {
+    pub(super) fn new(texture: &'a Texture) -> Self {
+        Self { texture, origin: texture.sample_flat(Pos2::ZERO) }
+    }
+
+    #[inline]
+    pub(super) fn at(&self, uv: Pos2) -> [u8; 4] {
+        if uv == Pos2::ZERO { self.origin } else { self.texture.sample_flat(uv) }
+    }
+}
+
 /// What fills a triangle.
 enum Fill {
     Flat(u32),
-    /// Colours run between the corners; the texture is one colour, already multiplied in.
-    Gradient([[u8; 4]; 3]),
-    Textured,
+    Gradient(Gradient),
+    Textured(Interpolation),
 }
 
-/// Paints the triangle where it meets both `clip` and the band (`clip` must lie within the band).
-pub(super) fn paint(band: &mut Band<'_>, clip: &PixelRect, texture: &Texture, mut corners: [Corner; 3]) {
-    let [a, b, c] = corners.map(|corner| corner.at);
-    let bounds = PixelRect {
+/// The pixels that may belong to the triangle with these corners, within `clip`.
+#[inline]
+pub(super) fn bounds(at: &[[i32; 2]; 3], clip: &PixelRect) -> PixelRect {
+    let [a, b, c] = at;
+    PixelRect {
         x0: first_centre(a[0].min(b[0]).min(c[0])).max(clip.x0),
         y0: first_centre(a[1].min(b[1]).min(c[1])).max(clip.y0),
-        x1: (first_centre(a[0].max(b[0]).max(c[0]) + 1)).min(clip.x1),
-        y1: (first_centre(a[1].max(b[1]).max(c[1]) + 1)).min(clip.y1),
-    };
-    if bounds.is_empty() {
-        return;
+        x1: first_centre(a[0].max(b[0]).max(c[0]) + 1).min(clip.x1),
+        y1: first_centre(a[1].max(b[1]).max(c[1]) + 1).min(clip.y1),
     }
+}
+
+/// Paints the triangle within its [`bounds`], which must lie in the band and must not be empty.
+pub(super) fn paint(band: &mut Band<'_>, bounds: &PixelRect, fabric: &Fabric<'_>, mut corners: [Corner; 3]) {
     let side = |i: usize, j: usize, axis: usize| i64::from(corners[j].at[axis] - corners[i].at[axis]);
     let mut area = side(0, 1, 0) * side(0, 2, 1) - side(0, 1, 1) * side(0, 2, 0);
     if area == 0 {
@@ -153,27 +177,22 @@ pub(super) fn paint(band: &mut Band<'_>, clip: &PixelRect, texture: &Texture, mu
         corners.swap(1, 2);
         area = -area;
     }
-    let Some(fill) = choose_fill(texture, &corners) else { return };
     // Edge k lies opposite corner k, so its value is that corner's weight.
     let edge = |k: usize| Edge::new(corners[(k + 1) % 3].at, corners[(k + 2) % 3].at, bounds.x0, bounds.y0);
     let mut edges = [edge(0), edge(1), edge(2)];
-    let reciprocals = edges.map(|e| 1.0 / e.per_column as f64);
-    let gradient = Interpolation::new(&edges, area);
-    let all = (0, i64::from(bounds.x1 - bounds.x0));
+    let Some(fill) = choose_fill(fabric, &corners, &edges, area) else { return };
+    let width = i64::from(bounds.x1 - bounds.x0);
+    // A narrow triangle is searched pixel by pixel, which costs less than three divisions.
+    let reciprocals = if width > NARROW { edges.map(|e| 1.0 / e.per_column as f64) } else { [0.0; 3] };
     for y in bounds.y0..bounds.y1 {
-        let mut columns = all;
-        for (e, r) in edges.iter().zip(reciprocals) {
-            columns = e.cut(r, columns);
-            if columns.0 >= columns.1 {
-                break;
-            }
-        }
-        if columns.0 < columns.1 {
-            let span = band.span(bounds.x0 + columns.0 as i32, y, (columns.1 - columns.0) as usize);
+        let (first, end) =
+            if width > NARROW { cut(&edges, reciprocals, width) } else { search(&edges, width) };
+        if first < end {
+            let span = band.span(bounds.x0 + first as i32, y, (end - first) as usize);
             match &fill {
                 Fill::Flat(colour) => flat_span(span, *colour),
-                Fill::Gradient(colours) => gradient_span(span, &gradient, &edges, columns.0, colours),
-                Fill::Textured => textured_span(span, &gradient, &edges, columns.0, texture, &corners),
+                Fill::Gradient(gradient) => gradient.paint(span, &edges, first),
+                Fill::Textured(way) => textured_span(span, way, &edges, first, fabric.texture, &corners),
             }
         }
         for e in &mut edges {
@@ -182,14 +201,51 @@ pub(super) fn paint(band: &mut Band<'_>, clip: &PixelRect, texture: &Texture, mu
     }
 }
 
-/// The cheapest way to fill; `None` if nothing would be seen.
-fn choose_fill(texture: &Texture, corners: &[Corner; 3]) -> Option<Fill> {
-    let [a, b, c] = corners;
-    let one_place = a.uv == b.uv && b.uv == c.uv;
-    if !one_place {
-        return Some(Fill::Textured);
+/// Up to this many columns are searched one by one.
+const NARROW: i64 = 6;
+
+/// The columns inside all three edges in this row, for a wide triangle.
+#[inline]
+fn cut(edges: &[Edge; 3], reciprocals: [f64; 3], width: i64) -> (i64, i64) {
+    let mut columns = (0, width);
+    for (e, r) in edges.iter().zip(reciprocals) {
+        columns = e.cut(r, columns);
+        if columns.0 >= columns.1 {
+            break;
+        }
     }
-    let texel = texture.sample_flat(a.uv);
+    columns
+}
+
+/// The same for a narrow one.
+#[inline]
+fn search(edges: &[Edge; 3], width: i64) -> (i64, i64) {
+    let [mut a, mut b, mut c] = edges.map(|e| e.value);
+    let mut columns = (width, width);
+    for t in 0..width {
+        // The sign of a number is its highest digit: negative if any of the three is.
+        let inside = (a | b | c) >= 0;
+        if inside && columns.0 == width {
+            columns.0 = t;
+        } else if !inside && columns.0 < width {
+            columns.1 = t;
+            break;
+        }
+        a += edges[0].per_column;
+        b += edges[1].per_column;
+        c += edges[2].per_column;
+    }
+    columns
+}
+
+/// The cheapest way to fill; `None` if nothing would be seen.
+#[inline]
+fn choose_fill(fabric: &Fabric<'_>, corners: &[Corner; 3], edges: &[Edge; 3], area: i64) -> Option<Fill> {
+    let [a, b, c] = corners;
+    if a.uv != b.uv || b.uv != c.uv {
+        return Some(Fill::Textured(Interpolation::new(edges, area)));
+    }
+    let texel = fabric.at(a.uv);
     let colours = if texel == [255; 4] {
         [a.colour, b.colour, c.colour]
     } else {
@@ -199,7 +255,7 @@ fn choose_fill(texture: &Texture, corners: &[Corner; 3]) -> Option<Fill> {
         let colour = pixel::pack(colours[0]);
         return (colour != 0).then_some(Fill::Flat(colour));
     }
-    Some(Fill::Gradient(colours))
+    Some(Fill::Gradient(Gradient::new(edges, area, &colours)))
 }
 
 /// One colour over a span.
@@ -230,7 +286,7 @@ impl Interpolation {
     /// The three weights at a column of the row the edges stand at; they add up to one.
     #[inline]
     fn weights(&self, edges: &[Edge; 3], column: i64) -> [f64; 3] {
-        edges.map(|e| (e.value + e.bias + e.per_column * column) as f64 * self.per_area)
+        edges.map(|e| e.weight(column) * self.per_area)
     }
 }
 
@@ -239,32 +295,41 @@ fn mix(weights: &[f64; 3], values: [f64; 3]) -> f64 {
     weights[0] * values[0] + weights[1] * values[1] + weights[2] * values[2]
 }
 
-/// Colours running linearly along a span.
+/// Colours running linearly between the corners; the texture is one colour, already multiplied in.
 ///
-/// 16 binary digits after the point: over the widest picture the rounding of the step adds up to less
-/// than the half that is left at either end, so a channel can never leave 0 to 255.
-#[inline]
-fn gradient_span(
-    span: &mut [u32],
-    gradient: &Interpolation,
-    edges: &[Edge; 3],
-    column: i64,
-    colours: &[[u8; 4]; 3],
-) {
-    const SCALE: f64 = 65_536.0;
-    let weights = gradient.weights(edges, column);
-    let channel = |i: usize| [0, 1, 2].map(|k: usize| f64::from(colours[k][i]));
-    let mut now: [i32; 4] = std::array::from_fn(|i| (mix(&weights, channel(i)) * SCALE) as i32 + 32_768);
-    let step: [i32; 4] = if span.len() > 1 {
-        std::array::from_fn(|i| (mix(&gradient.step, channel(i)) * SCALE) as i32)
-    } else {
-        [0; 4]
-    };
-    for p in span {
-        let source = pixel::pack(now.map(|c| (c >> 16) as u8));
-        *p = pixel::over(source, *p);
-        for (c, s) in now.iter_mut().zip(step) {
-            *c = c.wrapping_add(s);
+/// Channels are kept with 16 binary digits after the point: over the widest picture the rounding of the
+/// step adds up to less than the half that is left at either end, so none can leave 0 to 255.
+struct Gradient {
+    /// Channels of each corner, divided by the triangle's area.
+    corners: [[f64; 4]; 3],
+    /// Change of the channels from one column to the next.
+    step: [i32; 4],
+}
+
+impl Gradient {
+    #[inline]
+    fn new(edges: &[Edge; 3], area: i64, colours: &[[u8; 4]; 3]) -> Self {
+        let scale = 65_536.0 / area as f64;
+        let corners = colours.map(|colour| colour.map(|c| f64::from(c) * scale));
+        let slope = edges.map(|e| e.per_column as f64);
+        let step = std::array::from_fn(|i| {
+            (slope[0] * corners[0][i] + slope[1] * corners[1][i] + slope[2] * corners[2][i]) as i32
+        });
+        Self { corners, step }
+    }
+
+    #[inline]
+    fn paint(&self, span: &mut [u32], edges: &[Edge; 3], column: i64) {
+        let w = edges.map(|e| e.weight(column));
+        let [a, b, c] = &self.corners;
+        let mut now: [i32; 4] =
+            std::array::from_fn(|i| (w[0] * a[i] + w[1] * b[i] + w[2] * c[i]) as i32 + 32_768);
+        for p in span {
+            let source = pixel::pack(now.map(|c| (c >> 16) as u8));
+            *p = pixel::over(source, *p);
+            for (c, s) in now.iter_mut().zip(self.step) {
+                *c = c.wrapping_add(s);
+            }
         }
     }
 }
@@ -272,21 +337,21 @@ fn gradient_span(
 /// A texture, tinted by colours that may run as well.
 fn textured_span(
     span: &mut [u32],
-    gradient: &Interpolation,
+    way: &Interpolation,
     edges: &[Edge; 3],
     column: i64,
     texture: &Texture,
     corners: &[Corner; 3],
 ) {
     let [width, height] = texture.size().map(|side| side as f64);
-    let weights = gradient.weights(edges, column);
+    let weights = way.weights(edges, column);
     let us = corners.map(|c| f64::from(c.uv.x) * width);
     let vs = corners.map(|c| f64::from(c.uv.y) * height);
     let (u0, v0) = (mix(&weights, us) as f32, mix(&weights, vs) as f32);
-    let (du, dv) = (mix(&gradient.step, us) as f32, mix(&gradient.step, vs) as f32);
+    let (du, dv) = (mix(&way.step, us) as f32, mix(&way.step, vs) as f32);
     let tint = |i: usize| corners.map(|c| f64::from(c.colour[i]) / 255.0);
     let tint0: [f32; 4] = std::array::from_fn(|i| mix(&weights, tint(i)) as f32);
-    let tint_step: [f32; 4] = std::array::from_fn(|i| mix(&gradient.step, tint(i)) as f32);
+    let tint_step: [f32; 4] = std::array::from_fn(|i| mix(&way.step, tint(i)) as f32);
     for (i, p) in span.iter_mut().enumerate() {
         let t = i as f32;
         let texel = texture.sample(u0 + du * t, v0 + dv * t);

@@ -20,6 +20,8 @@ use winit::window::{Window, WindowId};
 const FRAME: Duration = Duration::from_millis(8);
 /// Least time between two looks at a hidden window's program.
 const HIDDEN_FRAME: Duration = Duration::from_millis(100);
+/// A frame not granted after this time means that the window is covered, even if nobody said so.
+const MISSED: Duration = Duration::from_millis(500);
 /// Largest side of a texture, in pixels; the font atlas must fit.
 const MAX_TEXTURE_SIDE: usize = 8192;
 
@@ -69,6 +71,8 @@ struct CpuWindow {
     occluded: bool,
     /// When to paint next, if ever.
     due: Option<Instant>,
+    /// Since when a frame is asked for and not yet granted.
+    asked: Option<Instant>,
     last_frame: Instant,
 }
 
@@ -109,14 +113,48 @@ impl Handler<'_> {
             info,
             occluded: false,
             due: Some(Instant::now()),
+            asked: None,
             last_frame: Instant::now(),
         })
     }
 
     /// Asks for a frame if one is due, and lets the loop sleep until the next.
+    ///
+    /// A hidden window may never be told to draw, so its program gets its turn from here.
     fn schedule(&mut self, event_loop: &ActiveEventLoop) {
-        let due = self.window.as_mut().and_then(CpuWindow::ask_if_due);
-        event_loop.set_control_flow(due.map_or(ControlFlow::Wait, ControlFlow::WaitUntil));
+        let Some(w) = &mut self.window else { return };
+        let now = Instant::now();
+        if w.due_at().is_some_and(|at| at <= now) {
+            w.due = None;
+            if w.is_hidden() {
+                self.turn(event_loop);
+            } else {
+                w.window.request_redraw();
+                w.asked.get_or_insert(now);
+            }
+        } else if w.asked.is_some_and(|at| at + MISSED <= now) {
+            w.asked = None;
+            let ctx = w.state.egui_ctx().clone();
+            w.logic_only(event_loop, &ctx);
+        }
+        let next = self.window.as_ref().and_then(|w| {
+            let missed = w.asked.map(|at| at + MISSED);
+            w.due_at().into_iter().chain(missed).min()
+        });
+        event_loop.set_control_flow(next.map_or(ControlFlow::Wait, ControlFlow::WaitUntil));
+    }
+
+    /// One frame, and the end if the window closes or is lost.
+    fn turn(&mut self, event_loop: &ActiveEventLoop) {
+        let Some(w) = &mut self.window else { return };
+        match w.frame(event_loop) {
+            Ok(false) => {}
+            Ok(true) => event_loop.exit(),
+            Err(reason) => {
+                self.failure = Some(reason);
+                event_loop.exit();
+            }
+        }
     }
 }
 
@@ -124,9 +162,11 @@ impl Handler<'_> {
 fn wake_on_request(ctx: &egui::Context, proxy: EventLoopProxy<UserEvent>) {
     let proxy = Mutex::new(proxy);
     ctx.set_request_repaint_callback(move |request| {
+        // A delay beyond the end of time is no request.
+        let Some(when) = Instant::now().checked_add(request.delay) else { return };
         let event = UserEvent::RequestRepaint {
             viewport_id: request.viewport_id,
-            when: Instant::now() + request.delay,
+            when,
             cumulative_pass_nr: request.current_cumulative_pass_nr,
         };
         if let Ok(proxy) = proxy.lock() {
@@ -142,15 +182,10 @@ impl CpuWindow {
         self.due = Some(self.due.map_or(when, |due| due.min(when)));
     }
 
-    /// If a frame is due, asks the window system for it; otherwise says when it will be.
-    fn ask_if_due(&mut self) -> Option<Instant> {
-        let due = self.due?.max(self.last_frame + if self.is_hidden() { HIDDEN_FRAME } else { FRAME });
-        if due <= Instant::now() {
-            self.due = None;
-            self.window.request_redraw();
-            return None;
-        }
-        Some(due)
+    /// When the next frame is due, if any is wanted: not too soon after the last.
+    fn due_at(&self) -> Option<Instant> {
+        let due = self.due?;
+        Some(due.max(self.last_frame + if self.is_hidden() { HIDDEN_FRAME } else { FRAME }))
     }
 
     fn is_hidden(&self) -> bool {
@@ -320,14 +355,8 @@ impl ApplicationHandler<UserEvent> for Handler<'_> {
     fn window_event(&mut self, event_loop: &ActiveEventLoop, _id: WindowId, event: WindowEvent) {
         if let Some(w) = &mut self.window {
             if event == WindowEvent::RedrawRequested {
-                match w.frame(event_loop) {
-                    Ok(false) => {}
-                    Ok(true) => event_loop.exit(),
-                    Err(reason) => {
-                        self.failure = Some(reason);
-                        event_loop.exit();
-                    }
-                }
+                w.asked = None;
+                self.turn(event_loop);
             } else {
                 w.on_window_event(&event);
             }
