@@ -47,7 +47,8 @@ fingerprint() { import -silent -window "$window" rgba:- | md5sum; }
 settled() {
     local now before=''
     for _ in $(seq 100); do
-        now=$(fingerprint)
+        # A window that is just coming up cannot be read yet.
+        now=$(fingerprint 2>/dev/null) || now=unread-$SECONDS-$RANDOM
         [[ $now == "$before" ]] && return
         before=$now; sleep 0.15
     done

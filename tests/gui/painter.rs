@@ -7,7 +7,7 @@ use egui_kittest::{Harness, SnapshotOptions, image_snapshot_options};
 use parabound::gui::Program;
 use parabound::gui::fonts::{install_fonts, semibold};
 use parabound::gui::painter::{Canvas, Picture, render_offscreen};
-use parabound_gui_tests::{CpuRenderer, to_image};
+use parabound_gui_tests::{CpuRenderer, Shown, to_image};
 
 /// Text in each face, lines, fills, rings, a dashed curve, a scaled texture, widgets.
 struct Sheet {
@@ -78,8 +78,8 @@ impl Program for Sheet {
     fn ui(&mut self, ui: &mut egui::Ui) {
         egui::CentralPanel::default().show(ui, |ui| {
             ui.label(egui::RichText::new("The parabola holds").family(semibold()).size(14.5));
-            ui.label("ωₑxₑ = 22.76 cm⁻¹, rₑ → 1.609 Å");
-            ui.monospace("1387.90(9) cm⁻¹ ±½ ⟨ψ|µ⟩");
+            ui.label("ωₑxₑ → 22.76 cm⁻¹ Å");
+            ui.monospace("1387.90(9) ±½ ⟨µ⟩");
             ui.horizontal(|ui| {
                 let name = ui.label("Tolerance").id;
                 ui.add(egui::DragValue::new(&mut self.value)).labelled_by(name);
@@ -121,14 +121,12 @@ fn the_same_sheet_is_the_same_bits() {
 /// The harness of the window tests and the offscreen window show the same.
 #[test]
 fn harness_and_offscreen_agree() {
-    let mut sheet = None;
     let mut harness = Harness::builder()
         .with_size(Vec2::from(SIZE.map(|side| side as f32)))
         .with_theme(egui::Theme::Dark)
         .with_render_cursor(false)
         .renderer(CpuRenderer::default())
-        .with_context_setup(install_fonts)
-        .build_ui(move |ui| sheet.get_or_insert_with(|| Sheet { texture: None, value: 0.044 }).ui(ui));
+        .build_eframe(|cc| Shown(Sheet::new(&cc.egui_ctx)));
     harness.run();
     let image = harness.render().expect("a picture");
     image_snapshot_options(&image, "sheet_dark", &options());
