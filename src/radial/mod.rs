@@ -24,6 +24,10 @@ use thiserror::Error;
 /// Highest v searched in a potential that rises without limit when the request names none.
 pub const HIGHEST_V_WITHOUT_LIMIT: usize = 99;
 
+/// No more levels than this are listed unless `highest_v` asks for them: a tail that rises for thousands of bohr
+/// can hold thousands of levels that no scan supports. A list of this length is cut there.
+pub const MOST_LEVELS: usize = 400;
+
 /// What the solver is asked for.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct RadialRequest {
@@ -89,7 +93,7 @@ pub enum RadialError {
 }
 
 /// All bound states of `potential`, v ascending: every level below [`Potential::limit_hartree`] or up to
-/// `highest_v`; without either bound, up to [`HIGHEST_V_WITHOUT_LIMIT`].
+/// `highest_v`; without either bound, up to [`HIGHEST_V_WITHOUT_LIMIT`], and no more than [`MOST_LEVELS`] unasked.
 ///
 /// Spectral elements with lumped mass (Rescigno and McCurdy 2000) on a mesh laid by the local wavelength;
 /// v is the index by an inertia count, which does not rest on the nodes.

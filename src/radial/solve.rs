@@ -4,7 +4,10 @@ use super::chain::{Chain, Factors, node};
 use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
 use super::reference_element::ReferenceElement;
 use super::search::{Found, lowest_levels};
-use super::{BoundState, HIGHEST_V_WITHOUT_LIMIT, Inner, RadialError, RadialRequest, Solution, Wavefunction};
+use super::{
+    BoundState, HIGHEST_V_WITHOUT_LIMIT, Inner, MOST_LEVELS, RadialError, RadialRequest, Solution,
+    Wavefunction,
+};
 use crate::potential::Potential;
 use std::sync::Arc;
 
@@ -100,7 +103,19 @@ pub(super) fn problem(
         None => usize::MAX,
     };
     if wanted == usize::MAX {
-        return below_limit(potential, &demand, &survey).map(Some);
+        let all = below_limit(potential, &demand, &survey)?;
+        if all.count <= MOST_LEVELS {
+            return Ok(Some(all));
+        }
+        // A tail without end: the lowest levels on a mesh of their own.
+        depth_at(energy_of_count(&all, MOST_LEVELS), &mut demand);
+        let mut walks = Walks::start(potential);
+        walks.advance(Ground { potential, demand: &demand, survey: &survey }, 0.0)?;
+        let chain = walks.chain(&demand)?;
+        let mut factors = Factors::default();
+        factors.factorise(&chain, demand.top_hartree);
+        let count = factors.below.min(MOST_LEVELS);
+        return Ok(Some(Problem { chain, demand, count }));
     }
     // Raise the top until enough levels lie below it, starting from the harmonic estimate.
     let minimum = potential.minimum_bohr();
@@ -134,6 +149,21 @@ pub(super) fn problem(
         depth_at(limit, &mut demand);
     }
     Ok(None)
+}
+
+/// An energy below which at least `count` levels lie, and few more.
+fn energy_of_count(problem: &Problem, count: usize) -> f64 {
+    let (mut low, mut high) = (problem.demand.bottom_hartree, problem.demand.top_hartree);
+    let mut factors = Factors::default();
+    for _ in 0..60 {
+        let middle = 0.5 * (low + high);
+        factors.factorise(&problem.chain, middle);
+        if factors.below == count {
+            return middle;
+        }
+        if factors.below < count { low = middle } else { high = middle }
+    }
+    high
 }
 
 struct Walks {

@@ -185,6 +185,20 @@ fn rotation_lifts_the_levels_out_of_the_well() {
 }
 
 #[test]
+fn an_endless_tail_is_cut_at_a_stated_number_of_levels() {
+    let slow = Function {
+        value: |r: f64| (1.0 - (-2.0 * (r - 2.0)).exp()).powi(2) + 1e-2 * (1.0 - (-1e-3 * (r - 2.0)).exp()),
+        range: ANY_R,
+        limit: 1.01,
+        minimum: 2.0,
+    };
+    let states = bound_states(&slow, &request(4000.0)).expect("levels");
+    assert_eq!(states.len(), MOST_LEVELS);
+    assert!(states.windows(2).all(|pair| pair[0].energy_hartree < pair[1].energy_hartree));
+    assert!(states.iter().all(|state| state.nodes == state.v));
+}
+
+#[test]
 fn bad_input_is_refused() {
     for mass in [0.0, -1.0, f64::NAN, f64::INFINITY] {
         let request = RadialRequest { reduced_mass_me: mass, ..request(1.0) };
