@@ -1,0 +1,192 @@
+//! The main plot: curve, tails, parabola, fits and reach over the bond length.
+
+use super::{Axis, BOND_LENGTH, Figure, PlotPoint, Role, Series, Shape, number};
+use crate::findings::{Findings, FitFindings};
+use crate::fit::Family;
+use crate::potential::Potential;
+use crate::potential::curve::ScanCurve;
+use crate::units::{ANGSTROM_PER_BOHR, LengthUnit, PER_CM_PER_HARTREE, to_angstrom, to_per_cm};
+
+/// Points along a curve around the minimum, and outside that region.
+const FINE_POINTS: usize = 480;
+const COARSE_POINTS: usize = 320;
+/// Tails are drawn this far beyond the scan, as a fraction of the scanned range.
+const TAIL_FRACTION: f64 = 0.12;
+
+/// The main plot of a study: energies in cm⁻¹ above the minimum over bond lengths in angstrom.
+pub fn main_plot(findings: &Findings) -> Figure {
+    let mut series = Vec::new();
+    if let Some(curve) = findings.curve.as_deref() {
+        series.extend(reach_band(findings, curve));
+        series.extend(fits(findings, curve));
+        series.extend(parabola(curve));
+        series.extend(scanned(curve));
+    }
+    Figure { x: BOND_LENGTH, y: Axis { title: "energy above the minimum", unit: "cm⁻¹" }, series }
+}
+
+/// The zero of the plot's energy axis in hartree: V_e, or the lowest point where there is no minimum.
+pub(super) fn zero_hartree(findings: &Findings) -> f64 {
+    let lowest = || findings.source.points.iter().map(|p| p.energy_hartree).fold(f64::INFINITY, f64::min);
+    findings.curve.as_ref().map_or_else(lowest, |c| c.v_e_hartree.value)
+}
+
+/// The window in use, in angstrom.
+pub(super) fn window_angstrom(findings: &Findings) -> Option<(f64, f64)> {
+    let fitted = findings.fits.iter().find_map(|f| f.result.as_ref().ok()).map(|f| f.window_bohr);
+    let asked = findings.settings.fits.window.map(|w| (w.unit.to_bohr(w.from), w.unit.to_bohr(w.to)));
+    // The default window of the fits, for curves on which every fit failed.
+    let default = findings.curve.as_ref().map(|c| (0.85 * c.r_e_bohr.value, 1.15 * c.r_e_bohr.value));
+    asked.or(fitted).or(default).map(|(a, b)| (to_angstrom(a), to_angstrom(b)))
+}
+
+/// The scan's points.
+pub(super) fn points(findings: &Findings, window: Option<(f64, f64)>) -> Vec<PlotPoint> {
+    let zero = zero_hartree(findings);
+    let unit = findings.source.length_unit;
+    // Edges are inclusive: the window is compared in the unit as read, as the fits do.
+    let edges =
+        findings.settings.fits.window.filter(|w| w.unit == unit).map(|w| (w.from, w.to)).or_else(|| {
+            window
+                .map(|(a, b)| (LengthUnit::Angstrom.convert(a, unit), LengthUnit::Angstrom.convert(b, unit)))
+        });
+    let slack = 1e-9;
+    let point = |p: &crate::findings::Point| PlotPoint {
+        row: p.row,
+        r_as_read: p.r_as_read,
+        at: [to_angstrom(p.r_bohr), to_per_cm(p.energy_hartree - zero)],
+        energy_hartree: p.energy_hartree,
+        in_window: p.used && edges.is_none_or(|(a, b)| p.r_as_read >= a - slack && p.r_as_read <= b + slack),
+        set_aside: (!p.used).then(|| p.why_not.clone().unwrap_or_else(|| "not used".to_owned())),
+    };
+    findings.source.points.iter().map(point).filter(|p| p.at.iter().all(|c| c.is_finite())).collect()
+}
+
+/// Bond lengths (bohr) at which a function is drawn between two ends: dense where the well is.
+fn mesh(from: f64, to: f64, r_e: f64) -> Vec<f64> {
+    if !(from.is_finite() && to.is_finite() && to > from) {
+        return Vec::new();
+    }
+    let (fine_from, fine_to) = ((0.6 * r_e).max(from), (1.8 * r_e).min(to));
+    let spread = |a: f64, b: f64, n: usize| (0..=n).map(move |i| a + (b - a) * i as f64 / n as f64);
+    let mut r: Vec<f64> = spread(from, to, COARSE_POINTS).collect();
+    if fine_to > fine_from {
+        r.extend(spread(fine_from, fine_to, FINE_POINTS));
+    }
+    r.sort_by(f64::total_cmp);
+    r.dedup_by(|a, b| (*a - *b).abs() < 1e-9 * r_e);
+    r
+}
+
+fn line(function: &dyn Fn(f64) -> f64, from: f64, to: f64, curve: &ScanCurve) -> Vec<[f64; 2]> {
+    let (r_e, v_e) = (curve.r_e_bohr.value, curve.v_e_hartree.value);
+    mesh(from, to, r_e)
+        .into_iter()
+        .map(|r| [to_angstrom(r), to_per_cm(function(r) - v_e)])
+        .filter(|p| p.iter().all(|c| c.is_finite()))
+        .collect()
+}
+
+fn scanned(curve: &ScanCurve) -> Vec<Series> {
+    let (first, last) = curve.scan_range_bohr;
+    let (from, to) = curve.range_bohr();
+    let energy = |r: f64| curve.energy_hartree(r);
+    let extra = TAIL_FRACTION * (last - first);
+    let (inner, outer) = ((first - extra).max(from).max(0.3 * first), (last + extra).min(to));
+    let end = last.min(to);
+    let tail = |a: f64, b: f64, side: &str| Series {
+        role: Role::Tail,
+        label: format!("{side} tail"),
+        about: format!("The curve beyond its {side} scanned point: a continuation, not data."),
+        strong: None,
+        shape: Shape::Line(line(&energy, a, b, curve)),
+    };
+    let mut series = Vec::new();
+    if inner < first {
+        series.push(tail(inner, first, "inner"));
+    }
+    if outer > end {
+        series.push(tail(end, outer, "outer"));
+    }
+    series.push(Series {
+        role: Role::Scanned,
+        label: "scan".to_owned(),
+        about: format!("The curve through the points in use ({}).", curve.kind),
+        strong: None,
+        shape: Shape::Line(line(&energy, first, end, curve)),
+    });
+    series
+}
+
+fn parabola(curve: &ScanCurve) -> Option<Series> {
+    let k = curve.derivatives_hartree[0]?.value;
+    let (r_e, v_e) = (curve.r_e_bohr.value, curve.v_e_hartree.value);
+    let harmonic = |r: f64| v_e + 0.5 * k * (r - r_e).powi(2);
+    let (first, last) = curve.scan_range_bohr;
+    Some(Series {
+        role: Role::Parabola,
+        label: "parabola".to_owned(),
+        about: "½ k x² with k = V″(rₑ): the small-displacement approximation itself, not a fit.".to_owned(),
+        strong: None,
+        shape: Shape::Line(line(&harmonic, 0.5 * first, last.min(3.0 * r_e), curve)),
+    })
+}
+
+/// Name of a fit with its degree, e.g. `Polynomial 6`.
+pub fn fit_label(fit: &FitFindings) -> String {
+    match fit.request.family {
+        Family::Harmonic => "Harmonic".to_owned(),
+        Family::Morse => "Morse".to_owned(),
+        Family::Polynomial => {
+            let used = fit.result.as_ref().ok().and_then(|f| f.degree).or(fit.request.degree);
+            used.map_or_else(|| "Polynomial".to_owned(), |d| format!("Polynomial {d}"))
+        }
+        #[allow(unreachable_patterns, reason = "later families draw as polynomials until they have a role")]
+        _ => "Fit".to_owned(),
+    }
+}
+
+/// The role a fit is drawn in.
+pub fn fit_role(family: Family) -> Role {
+    match family {
+        Family::Harmonic => Role::Harmonic,
+        Family::Morse => Role::Morse,
+        #[allow(unreachable_patterns, reason = "later families draw as polynomials until they have a role")]
+        _ => Role::Polynomial,
+    }
+}
+
+fn fits(findings: &Findings, curve: &ScanCurve) -> Vec<Series> {
+    let (first, last) = curve.scan_range_bohr;
+    let draw = |fit: &FitFindings| {
+        let result = fit.result.as_ref().ok()?;
+        let (from, to) = result.model.range_bohr();
+        let function = |r: f64| result.model.energy_hartree(r);
+        let (a, b) = result.window_bohr;
+        let rms = number::fixed(result.rms_residual_hartree * PER_CM_PER_HARTREE, 1);
+        Some(Series {
+            role: fit_role(fit.request.family),
+            label: fit_label(fit),
+            about: format!(
+                "Least-squares fit to {} points in the window; rms residual {rms} cm⁻¹.",
+                result.points
+            ),
+            strong: Some((to_angstrom(a), to_angstrom(b))),
+            shape: Shape::Line(line(&function, from.max(0.8 * first), to.min(last), curve)),
+        })
+    };
+    findings.fits.iter().filter_map(draw).collect()
+}
+
+fn reach_band(findings: &Findings, curve: &ScanCurve) -> Option<Series> {
+    let reach = findings.reach.as_ref()?;
+    let end = |x: Option<f64>| x.map(|x| (curve.r_e_bohr.value + x) * ANGSTROM_PER_BOHR);
+    let tolerance = crate::verdict::percent(reach.tolerance);
+    Some(Series {
+        role: Role::Reach,
+        label: "reach".to_owned(),
+        about: format!("Where V differs from the parabola by at most {tolerance} of the parabola's energy."),
+        strong: None,
+        shape: Shape::Band(end(reach.energy.x_minus_bohr), end(reach.energy.x_plus_bohr)),
+    })
+}
