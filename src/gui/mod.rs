@@ -1,8 +1,26 @@
 //! The desktop window.
+//!
+//! `app` holds the parts; `state` says what there is; `command` and `apply` are the only way to change
+//! it; `panels` and `plot` read it, draw, and collect commands.
 
+pub mod app;
+pub mod apply;
+pub mod command;
+pub mod compute;
+mod dialogs;
+pub mod files;
 pub mod fonts;
+mod history;
+pub mod look;
 pub mod painter;
+mod panels;
+mod plot;
 pub mod program;
+mod run;
+pub mod samples;
 pub mod shell;
+mod show;
+pub mod state;
 
 pub use program::Program;
+pub use run::run;

@@ -10,6 +10,8 @@ mod run_study;
 mod summary;
 
 pub use args::{Command, StudyArgs, UsageError, WindowArgs, parse};
+#[cfg(feature = "gui")]
+pub(crate) use run_study::read_settings;
 pub use summary::summary;
 
 use std::process::ExitCode;

@@ -1,0 +1,199 @@
+//! The program in the window: takes results and commands, then draws. Holds the parts and nothing more.
+
+use super::apply::{self, Effect, apply};
+use super::command::Command;
+use super::compute::Worker;
+use super::files::{Done, Files};
+use super::state::{CurveKey, Page, PathPurpose, State, Study};
+use super::{Program, look, panels};
+use crate::figure::Pictures;
+use crate::scan::Scan;
+use crate::settings::Settings;
+use eframe::egui;
+use egui::Key;
+use std::path::PathBuf;
+use std::sync::Arc;
+
+/// What the window starts with.
+#[derive(Clone, Debug, Default)]
+pub struct Start {
+    /// Files to open; none: the bundled sample.
+    pub files: Vec<PathBuf>,
+    /// The settings that studies of these files start from.
+    pub settings: Settings,
+    /// The page shown first.
+    pub page: Page,
+    /// Opens nothing, for the empty state.
+    pub empty: bool,
+    /// Works on the thread that draws, for pictures and tests.
+    pub inline: bool,
+}
+
+type StudyRequest = (CurveKey, Arc<Scan>, Settings);
+
+/// The program.
+pub struct App {
+    state: State,
+    worker: Worker<StudyRequest, Result<Study, String>>,
+    files: Files,
+    asked: Option<(CurveKey, Settings)>,
+}
+
+/// The study with everything drawn of it; what the worker does.
+fn compute((_, scan, settings): &StudyRequest) -> Result<Study, String> {
+    let findings = crate::study::study(scan, settings).map_err(|e| e.to_string())?;
+    let pictures = Arc::new(Pictures::of(&findings));
+    Ok(Study { findings: Arc::new(findings), pictures })
+}
+
+impl App {
+    /// The program, about to open what it starts with.
+    pub fn new(ctx: &egui::Context, start: Start) -> Self {
+        super::fonts::install_fonts(ctx);
+        look::install(ctx);
+        let (wake, wake_files) = (ctx.clone(), ctx.clone());
+        let worker = if start.inline {
+            Worker::inline(compute)
+        } else {
+            Worker::spawn(move || wake.request_repaint(), compute)
+        };
+        let files = Files::new(move || wake_files.request_repaint(), start.inline);
+        let mut app = Self { state: State::default(), worker, files, asked: None };
+        app.state.view.page = start.page;
+        if start.files.is_empty() && !start.empty {
+            app.files.read_sample(0, start.settings.clone());
+        }
+        for path in start.files {
+            app.files.read(path, start.settings.clone());
+        }
+        app
+    }
+
+    /// What the window knows.
+    pub fn state(&self) -> &State {
+        &self.state
+    }
+
+    /// Carries out a command, with what follows from it.
+    pub fn give(&mut self, command: Command, ctx: &egui::Context) {
+        for effect in apply(command, &mut self.state) {
+            self.carry_out(effect, ctx);
+        }
+    }
+
+    fn carry_out(&mut self, effect: Effect, ctx: &egui::Context) {
+        match effect {
+            Effect::AskOpen => self.files.ask_open(),
+            Effect::AskSave(name) => self.files.ask_save(name),
+            Effect::Read(path) => self.files.read(path, Settings::default()),
+            Effect::ReadSample(index) => self.files.read_sample(index, Settings::default()),
+            Effect::ReadBytes(problem) => self.files.read_again(problem),
+            Effect::Write { path, overwrite } => {
+                if let Some(study) = self.state.study() {
+                    self.files.write(path, Arc::clone(&study.findings), overwrite);
+                }
+            }
+            Effect::Copy(text) => ctx.copy_text(text),
+            Effect::Theme(dark) => ctx.set_theme(if dark { egui::Theme::Dark } else { egui::Theme::Light }),
+            Effect::ListFolder(text) => self.files.list(text),
+        }
+    }
+
+    fn take_done(&mut self, done: Done, ctx: &egui::Context) {
+        match done {
+            Done::Scan(loaded) => apply::take_scan(loaded, &mut self.state),
+            Done::Problem(problem) => apply::take_problem(problem, &mut self.state),
+            Done::Chosen(PathPurpose::Open, paths) => {
+                for path in paths {
+                    self.give(Command::OpenPath(path), ctx);
+                }
+            }
+            // A save dialog has asked about replacing already.
+            Done::Chosen(PathPurpose::SaveFindings, paths) => {
+                for path in paths {
+                    self.give(Command::ExportTo { path, overwrite: true }, ctx);
+                }
+            }
+            Done::NoDialog(purpose, text, entries) => {
+                apply::take_no_dialog(purpose, text, entries, &mut self.state);
+            }
+            Done::Entries(entries) => apply::take_entries(entries, &mut self.state),
+            Done::Written(result) => apply::take_written(result, &mut self.state),
+        }
+    }
+
+    /// Asks for the study that the state needs, once, and takes the answers that have come.
+    fn exchange_studies(&mut self) {
+        // Inline answers are there at once, so ask before looking.
+        if let Some((key, scan, settings)) = apply::wanted(&self.state) {
+            let ask = (key, settings);
+            if self.asked.as_ref() != Some(&ask) {
+                self.asked = Some(ask.clone());
+                self.worker.send((key, scan, ask.1));
+            }
+        } else {
+            self.asked = None;
+        }
+        if let Some(answer) = self.worker.poll() {
+            let (key, _, settings) = answer.input;
+            let result = match answer.result {
+                Ok(result) => result,
+                Err(panic) => Err(format!(
+                    "The computation broke off: {panic}. This is a fault of the program; your scan and settings are unharmed."
+                )),
+            };
+            apply::take_outcome(key, settings, result, &mut self.state);
+        }
+    }
+
+    fn shortcuts(&mut self, ctx: &egui::Context) {
+        for command in Command::with_shortcut() {
+            let Some(keys) = command.shortcut() else { continue };
+            if ctx.input_mut(|i| i.consume_shortcut(&keys)) {
+                self.give(command, ctx);
+            }
+        }
+        if ctx.memory(|m| m.focused().is_none()) {
+            let count = |key| ctx.input(|i| i.num_presses(key)) as i32;
+            let step = count(Key::ArrowUp) - count(Key::ArrowDown);
+            if step != 0 {
+                self.give(Command::StepLevel(step), ctx);
+            }
+            if ctx.input(|i| i.key_pressed(Key::Escape)) {
+                self.give(Command::PinLevel(None), ctx);
+            }
+        }
+        for file in ctx.input(|i| i.raw.dropped_files.clone()) {
+            self.give(Command::OpenPath(file.path().to_owned()), ctx);
+        }
+    }
+}
+
+impl Program for App {
+    fn logic(&mut self, ctx: &egui::Context) {
+        while let Some(done) = self.files.poll() {
+            self.take_done(done, ctx);
+        }
+        self.shortcuts(ctx);
+        self.exchange_studies();
+    }
+
+    fn ui(&mut self, ui: &mut egui::Ui) {
+        let mut commands = Vec::new();
+        panels::window_ui(ui, &self.state, &mut commands);
+        if commands.is_empty() {
+            return;
+        }
+        let ctx = ui.ctx().clone();
+        for command in commands {
+            self.give(command, &ctx);
+        }
+        self.exchange_studies();
+        // What was just changed is to be seen without waiting for the next movement of the hand.
+        ctx.request_repaint();
+    }
+
+    fn is_working(&self) -> bool {
+        self.worker.is_waiting() || self.files.is_busy()
+    }
+}

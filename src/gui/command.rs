@@ -1,0 +1,230 @@
+//! Everything the user can do, in one enum. Menu, buttons, shortcuts, drags and tests all speak it.
+
+use super::state::{CurveKey, Page, Preset, State, Strip};
+use crate::figure::geometry::Bounds;
+use crate::fit::Window;
+use crate::scan::read::ReadSettings;
+use crate::species::AtomChoice;
+use eframe::egui;
+use egui::{Key, KeyboardShortcut, Modifiers};
+use std::path::PathBuf;
+
+/// Something the user does.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Command {
+    /// Choose files to open.
+    Open,
+    /// Open this file.
+    OpenPath(PathBuf),
+    /// Open a bundled sample by its number.
+    OpenSample(usize),
+    /// Read the refused file again with these units.
+    ReadAgain(ReadSettings),
+    /// Put the refused file away.
+    DropProblem,
+    /// Take the focused curve's scan out of the window.
+    CloseScan,
+    /// Look at another curve.
+    Focus(CurveKey),
+    /// Set the fit window; `resting` is false while an edge is being dragged.
+    SetWindow {
+        /// The window.
+        window: Window,
+        /// Whether the hand has let go.
+        resting: bool,
+    },
+    /// Take the default window again.
+    ResetWindow,
+    /// Set the tolerance of the reach (a fraction).
+    SetTolerance {
+        /// The tolerance.
+        tolerance: f64,
+        /// Whether the hand has let go.
+        resting: bool,
+    },
+    /// Name the two atoms.
+    SetAtoms([AtomChoice; 2]),
+    /// Set the molecule's charge.
+    SetCharge(i32),
+    /// Give the reduced mass directly (u), or take the atoms again.
+    SetReducedMass(Option<f64>),
+    /// Degree of the polynomial fits.
+    SetDegree(u32),
+    /// Leave a row out.
+    SetAside(usize),
+    /// Use a row again.
+    Restore(usize),
+    /// A gesture has ended.
+    Settle,
+    /// Show a named region.
+    Zoom(Preset),
+    /// Show this region.
+    SetBounds(Bounds),
+    /// The pointer is over a level, or over none.
+    HoverLevel(Option<usize>),
+    /// Keep a level shown, or none.
+    PinLevel(Option<usize>),
+    /// Walk up (+1) or down (-1) the levels.
+    StepLevel(i32),
+    /// Point at a bond length (angstrom) on the plot.
+    PointAt(f64),
+    /// Show a page of results.
+    ShowPage(Page),
+    /// Show a strip.
+    ShowStrip(Strip),
+    /// Show or hide the reasons of the sentence.
+    ToggleWhy,
+    /// Open or fold the left panel.
+    ShowLeft(bool),
+    /// Open or fold the right panel.
+    ShowRight(bool),
+    /// Change to the dark or light theme.
+    SetDark(bool),
+    /// Take the latest change back.
+    Undo,
+    /// Do it again.
+    Redo,
+    /// Write the findings to a file that is asked for.
+    Export,
+    /// Write the findings to this file.
+    ExportTo {
+        /// Where.
+        path: PathBuf,
+        /// Whether a file there may be replaced.
+        overwrite: bool,
+    },
+    /// Copy the constants as text.
+    CopyConstants,
+    /// Change the text of the path window.
+    TypePath(String),
+    /// Close the path window.
+    ClosePathWindow,
+    /// Put the message away.
+    DismissMessage,
+}
+
+/// Control on most systems, Command on a Mac.
+const fn with_command(key: Key) -> KeyboardShortcut {
+    KeyboardShortcut::new(Modifiers::COMMAND, key)
+}
+
+impl Command {
+    /// The commands that have a shortcut.
+    pub fn with_shortcut() -> Vec<Self> {
+        let mut commands = vec![Self::Open, Self::Export, Self::Redo, Self::Undo];
+        commands.extend(Preset::ALL.map(Self::Zoom));
+        commands.extend(Page::ALL.map(Self::ShowPage));
+        commands
+    }
+
+    /// What a button or menu entry says.
+    pub fn label(&self) -> String {
+        match self {
+            Self::Open => "Open …".into(),
+            Self::Export => "Export …".into(),
+            Self::Undo => "Undo".into(),
+            Self::Redo => "Redo".into(),
+            Self::OpenSample(i) => {
+                super::samples::SAMPLES.get(*i).map_or_else(String::new, |s| s.title.into())
+            }
+            Self::Zoom(preset) => preset.name().into(),
+            Self::ShowPage(page) => page.name().into(),
+            Self::ShowStrip(strip) => strip.name().into(),
+            Self::CopyConstants => "Copy as text".into(),
+            Self::CloseScan => "Close scan".into(),
+            Self::ResetWindow => "default".into(),
+            Self::SetDark(true) => "Dark".into(),
+            Self::SetDark(false) => "Light".into(),
+            Self::ToggleWhy => "why?".into(),
+            Self::SetAside(_) => "Set aside".into(),
+            Self::Restore(_) => "Use again".into(),
+            Self::PointAt(_) => "Show on plot".into(),
+            _ => String::new(),
+        }
+    }
+
+    /// What it does, for a tooltip.
+    pub fn tooltip(&self) -> &'static str {
+        match self {
+            Self::Open => "Read a scan from a file. Files can also be dropped on the window.",
+            Self::Export => "Write all findings of this curve as JSON; the headless command writes the same.",
+            Self::Zoom(Preset::NearMinimum) => "The lowest six levels.",
+            Self::Zoom(Preset::WholeWell) => "Everything up to the limit of the bound levels.",
+            Self::Zoom(Preset::FitWindow) => "The window of the fits.",
+            Self::Zoom(Preset::AllPoints) => "Every point of the scan.",
+            Self::ShowPage(Page::Constants) => "Spectroscopic constants and energies.",
+            Self::ShowPage(Page::Levels) => "Every level with its rotational constant and densities.",
+            Self::ShowPage(Page::Fits) => "Parameters of the fits with their errors.",
+            Self::ShowPage(Page::Reach) => "Where the parabola may be used, by every criterion.",
+            Self::ShowStrip(Strip::Gauge) => "How far the curve departs from its parabola.",
+            Self::ShowStrip(Strip::Residuals) => "Fitted minus scanned energies.",
+            Self::CopyConstants => "Copy constants, energies and masses to the clipboard.",
+            Self::CloseScan => "Take this scan out of the window; the file stays.",
+            Self::ResetWindow => "Take the default window again: within 15 % of rₑ, at least seven points.",
+            Self::ToggleWhy => "What each part of the sentence rests on.",
+            Self::SetAside(_) => "Leave this point out of curve and fits.",
+            Self::Restore(_) => "Use this point again.",
+            _ => "",
+        }
+    }
+
+    /// The keys that give it.
+    pub fn shortcut(&self) -> Option<KeyboardShortcut> {
+        Some(match self {
+            Self::Open => with_command(Key::O),
+            Self::Export => with_command(Key::E),
+            Self::Undo => with_command(Key::Z),
+            Self::Redo => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::Z),
+            Self::Zoom(preset) => {
+                let key = match preset {
+                    Preset::NearMinimum => Key::Num1,
+                    Preset::WholeWell => Key::Num2,
+                    Preset::FitWindow => Key::Num3,
+                    Preset::AllPoints => Key::Num4,
+                };
+                with_command(key)
+            }
+            Self::ShowPage(page) => {
+                let key = match page {
+                    Page::Constants => Key::Num1,
+                    Page::Levels => Key::Num2,
+                    Page::Fits => Key::Num3,
+                    Page::Reach => Key::Num4,
+                };
+                KeyboardShortcut::new(Modifiers::ALT, key)
+            }
+            _ => return None,
+        })
+    }
+
+    /// Whether it can be given now.
+    ///
+    /// # Errors
+    /// Why not, as the disabled button says on hover.
+    pub fn is_enabled(&self, state: &State) -> Result<(), &'static str> {
+        let need = |there: bool, reason: &'static str| if there { Ok(()) } else { Err(reason) };
+        let study = state.study();
+        match self {
+            Self::Undo => need(state.history.undo_name().is_some(), "Nothing to take back."),
+            Self::Redo => need(state.history.redo_name().is_some(), "Nothing was taken back."),
+            Self::Export | Self::ExportTo { .. } => {
+                need(study.is_some(), "No findings yet.")?;
+                need(!state.is_stale(), "The findings are being computed.")
+            }
+            Self::CopyConstants => need(study.is_some(), "No constants yet."),
+            Self::Zoom(preset) => need(
+                study.is_some_and(|s| preset.bounds(&s.pictures).is_some()),
+                "This study has no such region.",
+            ),
+            Self::CloseScan => need(state.document.focus.is_some(), "No scan is open."),
+            Self::ResetWindow => need(
+                state.document.focused().is_some_and(|(_, _, s)| s.fits.window.is_some()),
+                "This is the default window.",
+            ),
+            Self::StepLevel(_) => {
+                need(study.is_some_and(|s| !s.findings.levels.is_empty()), "There are no levels.")
+            }
+            _ => Ok(()),
+        }
+    }
+}

@@ -1,0 +1,5 @@
+//! Small windows over the window.
+
+mod path;
+
+pub use path::path_window_ui;

@@ -1,0 +1,231 @@
+//! Files and dialogs, kept off the frame: every read, write and dialog runs on a thread of its own.
+
+use super::samples::SAMPLES;
+use super::state::{LoadedScan, PathPurpose, Problem};
+use crate::files::{Replace, WriteError};
+use crate::findings::Findings;
+use crate::scan::error::ScanError;
+use crate::scan::read::read_scan;
+use crate::settings::Settings;
+use std::path::{Path, PathBuf};
+use std::sync::{Arc, mpsc};
+use std::time::{Duration, Instant};
+
+/// A dialog that comes back without a choice sooner than this was never shown.
+const NO_DIALOG: Duration = Duration::from_millis(300);
+/// Larger files are refused before they are read.
+const MOST_BYTES: u64 = 64 << 20;
+
+/// Something that was finished beside the window.
+#[derive(Debug)]
+pub enum Done {
+    /// A scan was read.
+    Scan(LoadedScan),
+    /// A file was refused.
+    Problem(Problem),
+    /// Files were chosen in a dialog.
+    Chosen(PathPurpose, Vec<PathBuf>),
+    /// The desktop offers no dialog.
+    NoDialog(PathPurpose, String, Vec<String>),
+    /// A folder was listed.
+    Entries(Vec<String>),
+    /// A file was written, or why not.
+    Written(Result<String, String>),
+}
+
+/// Does file work beside the window.
+pub struct Files {
+    sender: mpsc::Sender<Done>,
+    receiver: mpsc::Receiver<Done>,
+    wake: Arc<dyn Fn() + Send + Sync>,
+    inline: bool,
+    under_way: usize,
+}
+
+impl Files {
+    /// `inline` does the work at once, for tests and pictures.
+    pub fn new(wake: impl Fn() + Send + Sync + 'static, inline: bool) -> Self {
+        let (sender, receiver) = mpsc::channel();
+        Self { sender, receiver, wake: Arc::new(wake), inline, under_way: 0 }
+    }
+
+    /// The next thing finished.
+    pub fn poll(&mut self) -> Option<Done> {
+        let done = self.receiver.try_recv().ok()?;
+        self.under_way = self.under_way.saturating_sub(1);
+        Some(done)
+    }
+
+    /// Whether something is under way.
+    pub fn is_busy(&self) -> bool {
+        self.under_way > 0
+    }
+
+    fn run(&mut self, work: impl FnOnce() -> Done + Send + 'static) {
+        self.under_way += 1;
+        let (sender, wake) = (self.sender.clone(), Arc::clone(&self.wake));
+        let all = move || {
+            let done = work();
+            if sender.send(done).is_ok() {
+                wake();
+            }
+        };
+        if self.inline {
+            all();
+        } else if std::thread::Builder::new().name("files".into()).spawn(all).is_err() {
+            self.under_way -= 1;
+        }
+    }
+
+    /// Reads a scan from a file; its studies start from these settings.
+    pub fn read(&mut self, path: PathBuf, start: Settings) {
+        self.run(move || read_file(&path, start));
+    }
+
+    /// Reads a bundled sample.
+    pub fn read_sample(&mut self, index: usize, start: Settings) {
+        if let Some(sample) = SAMPLES.get(index) {
+            self.run(move || understand(sample.file_name, Arc::from(sample.bytes), None, start));
+        }
+    }
+
+    /// Reads the bytes of a refused file with other settings.
+    pub fn read_again(&mut self, problem: Problem) {
+        let Problem { file_name, path, bytes: Some(bytes), start, .. } = problem else { return };
+        self.run(move || understand(&file_name, bytes, path, start));
+    }
+
+    /// Writes findings; refuses to replace a file unless told to.
+    pub fn write(&mut self, path: PathBuf, findings: Arc<Findings>, overwrite: bool) {
+        self.run(move || Done::Written(write_findings(&path, &findings, overwrite)));
+    }
+
+    /// Lists the folder that a typed path names.
+    pub fn list(&mut self, text: String) {
+        self.run(move || Done::Entries(entries_of(&text)));
+    }
+
+    /// Asks for files to open.
+    pub fn ask_open(&mut self) {
+        if self.inline {
+            self.run(|| no_dialog(PathPurpose::Open, String::new()));
+            return;
+        }
+        self.run(|| {
+            let start = Instant::now();
+            let dialog = rfd::FileDialog::new().set_title("Open a bond scan");
+            match dialog.pick_files() {
+                Some(paths) => Done::Chosen(PathPurpose::Open, paths),
+                None if start.elapsed() < NO_DIALOG => no_dialog(PathPurpose::Open, String::new()),
+                None => Done::Chosen(PathPurpose::Open, Vec::new()),
+            }
+        });
+    }
+
+    /// Asks where to write findings.
+    pub fn ask_save(&mut self, name: String) {
+        if self.inline {
+            self.run(move || no_dialog(PathPurpose::SaveFindings, name));
+            return;
+        }
+        self.run(move || {
+            let start = Instant::now();
+            let dialog = rfd::FileDialog::new().set_title("Write findings").set_file_name(&name);
+            match dialog.save_file() {
+                Some(path) => Done::Chosen(PathPurpose::SaveFindings, vec![path]),
+                None if start.elapsed() < NO_DIALOG => no_dialog(PathPurpose::SaveFindings, name),
+                None => Done::Chosen(PathPurpose::SaveFindings, Vec::new()),
+            }
+        });
+    }
+}
+
+fn no_dialog(purpose: PathPurpose, name: String) -> Done {
+    let folder = std::env::current_dir().unwrap_or_else(|_| PathBuf::from("/"));
+    let text = folder.join(name).display().to_string();
+    let entries = entries_of(&text);
+    Done::NoDialog(purpose, text, entries)
+}
+
+/// Entries of the folder that a text names (itself, or the folder of the file it names): folders
+/// first, each with a slash at the end.
+fn entries_of(text: &str) -> Vec<String> {
+    let path = Path::new(text);
+    let folder = if path.is_dir() { Some(path) } else { path.parent() };
+    let Some(Ok(read)) = folder.map(std::fs::read_dir) else { return Vec::new() };
+    let name = |entry: std::fs::DirEntry| {
+        let name = entry.file_name().to_string_lossy().into_owned();
+        let hidden = name.starts_with('.');
+        let folder = entry.path().is_dir();
+        (!hidden).then(|| if folder { format!("{name}/") } else { name })
+    };
+    let mut names: Vec<String> = read.filter_map(Result::ok).filter_map(name).take(2000).collect();
+    names.sort_by_key(|n| (!n.ends_with('/'), n.to_lowercase()));
+    names
+}
+
+fn file_name_of(path: &Path) -> String {
+    path.file_name().map_or_else(|| path.display().to_string(), |n| n.to_string_lossy().into_owned())
+}
+
+fn read_file(path: &Path, start: Settings) -> Done {
+    let file_name = file_name_of(path);
+    let refuse = |text: String| {
+        Done::Problem(Problem {
+            file_name: file_name_of(path),
+            path: Some(path.to_owned()),
+            bytes: None,
+            text,
+            start: Settings::default(),
+            ask_units: false,
+        })
+    };
+    match std::fs::metadata(path) {
+        Err(error) => return refuse(format!("{}: {error}. Check the path.", path.display())),
+        Ok(data) if data.is_dir() => {
+            return refuse(format!("{} is a folder. Choose a file in it.", path.display()));
+        }
+        Ok(data) if data.len() > MOST_BYTES => {
+            return refuse(format!("{} has {} bytes: too large for a scan.", path.display(), data.len()));
+        }
+        Ok(_) => {}
+    }
+    match std::fs::read(path) {
+        Ok(bytes) => understand(&file_name, Arc::from(bytes), Some(path.to_owned()), start),
+        Err(error) => refuse(format!("{} could not be read: {error}.", path.display())),
+    }
+}
+
+/// Reads bytes as a scan, or keeps them for another try.
+pub fn understand(file_name: &str, bytes: Arc<[u8]>, path: Option<PathBuf>, start: Settings) -> Done {
+    let read = read_scan(file_name, &bytes, &start.read)
+        .and_then(|scan| scan.curve_index(start.curve.as_deref()).map(|_| scan));
+    match read {
+        Ok(scan) => Done::Scan(LoadedScan { key: 0, scan: Arc::new(scan), path, start }),
+        Err(error) => Done::Problem(Problem {
+            file_name: file_name.to_owned(),
+            path,
+            ask_units: asks_for_units(&error),
+            text: error.to_string(),
+            bytes: Some(bytes),
+            start,
+        }),
+    }
+}
+
+/// Whether naming units would settle the refusal.
+fn asks_for_units(error: &ScanError) -> bool {
+    matches!(error, ScanError::LengthUnitMissing { .. } | ScanError::EnergyUnitMissing { .. })
+}
+
+fn write_findings(path: &Path, findings: &Findings, overwrite: bool) -> Result<String, String> {
+    let text = crate::export::json::findings_to_string(findings);
+    let replace = if overwrite { Replace::Anything } else { Replace::Nothing };
+    match crate::files::write(path, text.as_bytes(), replace) {
+        Ok(()) => Ok(format!("Findings written to {}.", path.display())),
+        Err(WriteError::Exists { path }) => {
+            Err(format!("{} exists and was left as it is. Choose another name.", path.display()))
+        }
+        Err(error) => Err(format!("{error}.")),
+    }
+}

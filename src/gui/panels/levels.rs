@@ -1,0 +1,126 @@
+//! The page of levels: one row each, hovering shows the level on the plot.
+
+use crate::figure::number;
+use crate::findings::Findings;
+use crate::gui::command::Command;
+use crate::gui::look::{self, Look};
+use crate::gui::show;
+use crate::gui::state::State;
+use crate::radial::Level;
+use eframe::egui;
+use egui::{Align2, Rect, ScrollArea, Sense, Ui, WidgetInfo, pos2, vec2};
+
+/// Height of a row of the table.
+const ROW: f32 = 22.0;
+
+/// Right edges of the columns as fractions of the width, with their headings.
+const COLUMNS: [(f32, &str, &str); 5] = [
+    (0.07, "v", "Vibrational quantum number."),
+    (0.34, "E", "Energy above the minimum in cm⁻¹."),
+    (0.58, "− harmonic", "E − ωₑ(v + ½) in cm⁻¹."),
+    (0.78, "Bᵥ", "Rotational constant ℏ²⟨r⁻²⟩/(2μ) in cm⁻¹."),
+    (1.0, "in reach", "Share of the density inside the energy reach."),
+];
+
+pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Command>) {
+    if findings.levels.is_empty() {
+        let text = if findings.masses.is_none() {
+            "Levels need a mass: name the atoms or give a reduced mass on the left."
+        } else {
+            "This curve holds no level; see the notices below the plot."
+        };
+        show::note(ui, text);
+        return;
+    }
+    ui.spacing_mut().item_spacing.y = 0.0;
+    let width = ui.available_width() - 10.0;
+    header_ui(ui, width);
+    let leaning = findings.levels.iter().any(|l| l.leans_on_tail);
+    let mut hovered = None;
+    let foot = if leaning { 46.0 } else { 0.0 };
+    ScrollArea::vertical()
+        .id_salt("levels")
+        .auto_shrink(false)
+        .max_height((ui.available_height() - foot).max(3.0 * ROW))
+        .show_rows(ui, ROW, findings.levels.len(), |ui, rows| {
+            for level in &findings.levels[rows] {
+                let response = level_ui(ui, state, level, width);
+                if response.hovered() {
+                    hovered = Some(level.v);
+                }
+                if response.clicked() {
+                    let again = state.view.pinned_level == Some(level.v);
+                    out.push(Command::PinLevel((!again).then_some(level.v)));
+                }
+            }
+        });
+    if hovered.is_some() {
+        out.push(Command::HoverLevel(hovered));
+    }
+    if leaning {
+        ui.add_space(6.0);
+        show::note(ui, "○ leans on the tail: would change if the curve beyond the scan did.");
+    }
+}
+
+fn header_ui(ui: &mut Ui, width: f32) {
+    let look = Look::of(ui);
+    let (rect, _) = ui.allocate_exact_size(vec2(width, 26.0), Sense::hover());
+    let mut left = rect.left();
+    for (edge, name, about) in COLUMNS {
+        let right = rect.left() + edge * width;
+        show::text_in(
+            ui,
+            pos2(right, rect.center().y),
+            Align2::RIGHT_CENTER,
+            name,
+            &look::plain(look::SMALL),
+            look.dim,
+        );
+        let cell = Rect::from_min_max(pos2(left, rect.top()), pos2(right, rect.bottom()));
+        ui.interact(cell, ui.scope_id().with(name), Sense::hover()).on_hover_text(about);
+        left = right;
+    }
+    ui.painter().hline(rect.x_range(), rect.bottom(), egui::Stroke::new(1.0, look.rule));
+}
+
+fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Response {
+    let look = Look::of(ui);
+    let (rect, response) = ui.allocate_exact_size(vec2(width, ROW), Sense::click());
+    let shown = state.shown_level() == Some(level.v);
+    if shown || response.hovered() || response.has_focus() {
+        ui.painter().rect_filled(rect.expand2(vec2(4.0, 0.0)), 4.0, look.raised);
+    }
+    let energy = number::with_error(level.energy_per_cm, level.energy_error_per_cm, 2);
+    let cells = [
+        level.v.to_string(),
+        energy.clone(),
+        number::signed(level.minus_harmonic_per_cm, 2),
+        number::fixed(level.b_v_per_cm, 4),
+        level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1)),
+    ];
+    for (i, (cell, (edge, _, _))) in cells.iter().zip(COLUMNS).enumerate() {
+        let color = match i {
+            0 if shown => look.accent,
+            2 => look.harmonic,
+            4 => look.dim,
+            _ => look.text,
+        };
+        let at = pos2(rect.left() + edge * width, rect.center().y);
+        show::text_in(ui, at, Align2::RIGHT_CENTER, cell, &look::figures(look::SECONDARY), color);
+    }
+    if level.leans_on_tail {
+        let at = pos2(rect.left() + COLUMNS[0].0 * width + 8.0, rect.center().y);
+        ui.painter().circle_stroke(at, 3.0, egui::Stroke::new(1.2, look.accent));
+    }
+    let lean = if level.leans_on_tail { ", leans on the tail" } else { "" };
+    response.widget_info(|| {
+        WidgetInfo::selected(
+            egui::Role::Button,
+            true,
+            shown,
+            format!("Level v = {}: {energy} cm⁻¹{lean}", level.v),
+        )
+    });
+    response
+}

@@ -1,0 +1,115 @@
+//! The page of the reach: by energy, by force, by level, by temperature.
+
+use crate::figure::number;
+use crate::findings::Findings;
+use crate::gui::show::{self, Row};
+use crate::reach::{Interval, LevelReach};
+use crate::units::to_angstrom;
+use crate::verdict::percent;
+use eframe::egui::Ui;
+
+pub(super) fn reach_ui(ui: &mut Ui, findings: &Findings) {
+    let Some(reach) = &findings.reach else {
+        show::note(ui, "No minimum with a positive force constant: there is no parabola to compare with.");
+        return;
+    };
+    let tolerance = percent(reach.tolerance);
+    show::heading(ui, "By displacement", &format!("tolerance {tolerance}"));
+    for (name, interval, about) in [
+        ("energy", &reach.energy, "|V − Vₑ − ½ k x²| ≤ τ · ½ k x²; leading order 3 τ k/|V‴|."),
+        ("force", &reach.force, "|V′ − k x| ≤ τ |k x|; leading order 2 τ k/|V‴|."),
+    ] {
+        Row::new(name, interval_text(interval), "Å").about(about).ui(ui);
+        let leading = interval
+            .leading_order_bohr
+            .map_or_else(|| number::NONE.to_owned(), |x| format!("±{}", number::fixed(to_angstrom(x), 4)));
+        Row::new("leading order", leading, "Å").about(about).ui(ui);
+        if let Some(text) = open_end(interval) {
+            show::note(ui, text);
+        }
+    }
+    if let Some(amplitude) = reach.zero_point_amplitude_bohr {
+        Row::new("zero-point amplitude", number::fixed(to_angstrom(amplitude), 4), "Å")
+            .about("√(ℏ/(μω)), ω = 2πc ωₑ: the yardstick for a displacement.")
+            .ui(ui);
+    }
+    levels_ui(ui, findings);
+    temperature_ui(ui, findings);
+}
+
+fn levels_ui(ui: &mut Ui, findings: &Findings) {
+    let Some(reach) = &findings.reach else { return };
+    if reach.levels.is_none() && reach.spacing.is_none() {
+        return;
+    }
+    show::rule(ui);
+    show::heading(ui, "By level", "tolerance in cm⁻¹");
+    for (name, of) in [("levels", &reach.levels), ("spacings", &reach.spacing)] {
+        if let Some(of) = of {
+            Row::new(name, level_value(of), "")
+                .beside(number::fixed(of.tolerance_per_cm, 1))
+                .about(
+                    "The highest v up to which the harmonic one stays within the tolerance, with all below.",
+                )
+                .ui(ui);
+        }
+    }
+    show::rule(ui);
+    show::heading(ui, "Density inside the energy reach", "beyond the turning points");
+    for level in findings.levels.iter().take(8) {
+        let inside = level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1));
+        Row::new(format!("v = {}", level.v), inside, "")
+            .beside(number::percent(level.forbidden_probability, 1))
+            .about("∫|ψ|² dr inside the energy reach; at the right, outside the classical turning points.")
+            .ui(ui);
+    }
+}
+
+fn temperature_ui(ui: &mut Ui, findings: &Findings) {
+    let Some(reach) = &findings.reach else { return };
+    let t = reach.temperature_kelvin;
+    let rows = [
+        ("partition function within 1 %", t.partition_function),
+        ("mean energy within 1 % of kT", t.mean_energy),
+        ("mean-square displacement within 5 %", t.mean_square_x),
+    ];
+    if rows.iter().all(|r| r.1.is_none()) {
+        return;
+    }
+    show::rule(ui);
+    show::heading(ui, "By temperature", "");
+    for (name, limit) in rows {
+        let value =
+            limit.map_or_else(|| number::NONE.to_owned(), |k| format!("up to {}", number::fixed(k, 0)));
+        Row::new(name, value, "K").ui(ui);
+    }
+}
+
+/// Both ends in angstrom.
+pub(super) fn interval_text(interval: &Interval) -> String {
+    let end = |x: Option<f64>| x.map_or_else(|| "scan end".to_owned(), |x| number::signed(to_angstrom(x), 4));
+    format!("{} … {}", end(interval.x_minus_bohr), end(interval.x_plus_bohr))
+}
+
+fn open_end(interval: &Interval) -> Option<&'static str> {
+    match (interval.x_minus_bohr, interval.x_plus_bohr) {
+        (Some(_), Some(_)) => None,
+        (None, None) => Some("Neither side is left before the scan ends."),
+        (None, _) => Some("Not left on the inner side before the scan ends."),
+        (_, None) => Some("Not left on the outer side before the scan ends."),
+    }
+}
+
+pub(super) fn level_label(reach: &LevelReach, findings: &Findings) -> String {
+    let omega = findings.constants.from_derivatives.as_ref().map(|d| d.omega_e_per_cm.value);
+    match omega {
+        Some(omega) if findings.settings.reach.level_tolerance_per_cm.is_none() && omega > 0.0 => {
+            format!("levels within {} of ωₑ", percent(reach.tolerance_per_cm / omega))
+        }
+        _ => format!("levels within {} cm⁻¹", number::fixed(reach.tolerance_per_cm, 1)),
+    }
+}
+
+pub(super) fn level_value(reach: &LevelReach) -> String {
+    reach.highest_v.map_or_else(|| "none".to_owned(), |v| format!("v ≤ {v}"))
+}

@@ -1,0 +1,127 @@
+//! The read-out of the level shown, in whichever corner of the plot hides least.
+
+use super::map::Map;
+use crate::figure::geometry::{Bounds, clip_line};
+use crate::figure::{Role, Shape, number};
+use crate::gui::look::{self, Look};
+use crate::gui::show::text_in;
+use crate::gui::state::{State, Study};
+use crate::radial::Level;
+use eframe::egui;
+use egui::{Align2, Color32, Rect, Stroke, StrokeKind, Ui, pos2, vec2};
+
+const WIDTH: f32 = 222.0;
+const ROW: f32 = 19.0;
+const PAD: f32 = 12.0;
+
+pub(super) fn card_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
+    let look = Look::of(ui);
+    let Some(level) = state.shown_level().and_then(|v| study.findings.levels.iter().find(|l| l.v == v))
+    else {
+        return;
+    };
+    let rows = rows(level, look);
+    let size = vec2(WIDTH, ROW * (rows.len() as f32 + 1.0) + 2.0 * PAD - 2.0);
+    if size.x + 40.0 > map.rect.width() || size.y + 40.0 > map.rect.height() {
+        return;
+    }
+    let rect = place(study, map, size);
+    ui.painter().rect(
+        rect,
+        f32::from(look::CORNER) + 2.0,
+        look.raised.gamma_multiply(0.97),
+        Stroke::new(1.0, look.rule),
+        StrokeKind::Middle,
+    );
+    let mut y = rect.top() + PAD + ROW / 2.0 - 2.0;
+    let (left, right) = (rect.left() + PAD, rect.right() - PAD);
+    let figures = look::figures(look::SECONDARY);
+    text_in(
+        ui,
+        pos2(left, y),
+        Align2::LEFT_CENTER,
+        &format!("v = {}", level.v),
+        &look::semibold(look::BODY),
+        look.accent,
+    );
+    let energy = number::with_error(level.energy_per_cm, level.energy_error_per_cm, 2);
+    text_in(ui, pos2(right, y), Align2::RIGHT_CENTER, &format!("{energy} cm⁻¹"), &figures, look.text);
+    for (label, value, color) in rows {
+        y += ROW;
+        text_in(ui, pos2(left, y), Align2::LEFT_CENTER, label, &look::plain(look::SECONDARY), look.dim);
+        text_in(ui, pos2(right, y), Align2::RIGHT_CENTER, &value, &figures, color);
+    }
+}
+
+fn rows(level: &Level, look: &Look) -> Vec<(&'static str, String, Color32)> {
+    let mut rows = vec![(
+        "harmonic",
+        format!("{} cm⁻¹", number::signed(-level.minus_harmonic_per_cm, 2)),
+        look.harmonic,
+    )];
+    if let Some(d) = level.minus_morse_per_cm {
+        rows.push(("Morse fit", format!("{} cm⁻¹", number::signed(-d, 2)), look.morse));
+    }
+    rows.push(("beyond turning points", number::percent(level.forbidden_probability, 1), look.text));
+    if let Some(p) = level.inside_reach {
+        rows.push(("inside the reach", number::percent(p, 1), look.reach));
+    }
+    rows.push(("Bᵥ", format!("{} cm⁻¹", number::fixed(level.b_v_per_cm, 4)), look.text));
+    if level.leans_on_tail {
+        rows.push(("leans on the tail", number::percent(level.outside_scan, 2), look.accent));
+    }
+    rows
+}
+
+/// The corner in which the card covers the least of curve and fits.
+fn place(study: &Study, map: &Map, size: egui::Vec2) -> Rect {
+    let inner = map.rect.shrink(12.0);
+    // Above the grips of the window edges, below the word at the top.
+    let (top, bottom) = (inner.top() + 14.0, inner.bottom() - 8.0);
+    let corners = [
+        pos2(inner.right() - size.x, bottom - size.y),
+        pos2(inner.right() - size.x, (top + bottom - size.y) / 2.0),
+        pos2(inner.left(), bottom - size.y),
+        pos2(inner.right() - size.x, top),
+        pos2(inner.left(), top),
+    ];
+    let cost = |min: &egui::Pos2| covered(study, map, Rect::from_min_size(*min, size));
+    let best = corners.into_iter().min_by(|a, b| cost(a).total_cmp(&cost(b))).unwrap_or(corners[0]);
+    Rect::from_min_size(best, size)
+}
+
+/// Length of line under a rectangle, the scanned curve counting most.
+fn covered(study: &Study, map: &Map, rect: Rect) -> f32 {
+    let bounds = Bounds {
+        x: (map.x_value(rect.left()), map.x_value(rect.right())),
+        y: (map.y_value(rect.bottom()), map.y_value(rect.top())),
+    };
+    let length =
+        |line: &[[f64; 2]]| line.windows(2).map(|p| map.at(p[0]).distance(map.at(p[1]))).sum::<f32>();
+    let lines: f32 = study
+        .pictures
+        .main
+        .series
+        .iter()
+        .filter_map(|s| match &s.shape {
+            Shape::Line(points) => Some((s.role, points)),
+            _ => None,
+        })
+        .map(|(role, points)| {
+            let weight = if matches!(role, Role::Scanned | Role::Tail) { 4.0 } else { 1.0 };
+            weight * clip_line(points, &bounds).iter().map(|l| length(l)).sum::<f32>()
+        })
+        .sum();
+    let levels: f32 = study
+        .pictures
+        .levels
+        .iter()
+        .filter(|l| map.sees_y(l.energy_per_cm) && rect.y_range().contains(map.y(l.energy_per_cm)))
+        .map(|l| {
+            let (a, b) =
+                (map.x(l.turning_points.0).max(rect.left()), map.x(l.turning_points.1).min(rect.right()));
+            (b - a).max(0.0) * 0.6
+        })
+        .sum();
+    lines + levels
+}

@@ -1,0 +1,116 @@
+//! The picture: main plot, strip and ladders on shared axes, and the hand that works on them.
+
+mod axes;
+mod card;
+mod cursor;
+mod handles;
+mod hits;
+mod items;
+mod ladders;
+mod levels;
+mod main_plot;
+mod map;
+mod points;
+mod strip;
+
+pub use points::in_window;
+
+use super::command::Command;
+use super::look::{self, Look};
+use super::state::{State, Study};
+use crate::figure::{Role, Shape};
+use eframe::egui;
+use egui::{Rect, Ui, pos2};
+use map::Map;
+
+/// Room for the vertical axis at the left of the plot.
+pub const GUTTER: f32 = 64.0;
+/// Room for the ladders at its right.
+const LADDERS: f32 = 92.0;
+/// Room between plot and strip, for the read-out.
+const GAP: f32 = 20.0;
+/// Room for the horizontal axis.
+const BELOW: f32 = 42.0;
+
+/// Where everything of the picture stands.
+#[derive(Clone, Copy, Debug)]
+struct Stage {
+    plot: Rect,
+    strip: Rect,
+    ladders: Rect,
+    whole: Rect,
+}
+
+impl Stage {
+    fn within(whole: Rect, ladders: bool) -> Self {
+        let right = if ladders { LADDERS } else { 8.0 };
+        let x = whole.left() + GUTTER..=(whole.right() - right).round();
+        let height = whole.height() - BELOW - GAP;
+        let strip = (0.22 * height).clamp(64.0, 150.0).min(0.4 * height).round();
+        let top = whole.top() + 4.0;
+        let plot_bottom = (whole.bottom() - BELOW - GAP - strip).round();
+        let rect = |top: f32, bottom: f32| {
+            Rect::from_min_max(pos2(x.start().round(), top.round()), pos2(*x.end(), bottom.max(top + 1.0)))
+        };
+        let plot = rect(top, plot_bottom);
+        let strip = rect(plot_bottom + GAP, whole.bottom() - BELOW);
+        let ladders = Rect::from_min_max(pos2(plot.right(), plot.top()), pos2(whole.right(), plot.bottom()));
+        Self { plot, strip, ladders, whole }
+    }
+}
+
+/// Draws the picture and collects what the hand does on it.
+pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command>) {
+    let whole = ui.available_rect_before_wrap();
+    let has_ladders = !study.pictures.ladders.columns.is_empty() && whole.width() > 420.0;
+    let stage = Stage::within(whole, has_ladders);
+    let Some(bounds) = state.bounds().filter(|b| b.is_valid()) else { return };
+    if stage.plot.width() < 40.0 || stage.plot.height() < 40.0 {
+        return;
+    }
+    let look = Look::of(ui);
+    for rect in [stage.plot, stage.strip] {
+        ui.painter().rect_filled(rect, 2.0, look.panel);
+    }
+    let map = main_plot::main_plot_ui(ui, state, study, &stage, bounds, out);
+    let strip = strip::strip_ui(ui, state, study, &stage, &map, out);
+    axes::x_axis_ui(ui, &stage, &map);
+    if has_ladders {
+        ladders::ladders_ui(ui, state, &study.pictures.ladders, &stage, &map, out);
+    }
+    handles::window_edges_ui(ui, state, study, &stage, &map, out);
+    cursor::cursor_ui(ui, &stage, &map, &strip);
+    ui.allocate_rect(whole, egui::Sense::hover());
+}
+
+/// The ends of the reach on the bond-length axis, open ends at the border of the view.
+fn reach_ends(study: &Study, map: &Map) -> Option<(f64, f64)> {
+    let band = study.pictures.main.series.iter().find(|s| s.role == Role::Reach)?;
+    let Shape::Band(from, to) = band.shape else { return None };
+    let (left, right) = map.bounds.x;
+    let ends = (from.unwrap_or(left).max(left), to.unwrap_or(right).min(right));
+    (ends.1 > ends.0).then_some(ends)
+}
+
+/// The reach as one band through plot and strip.
+fn reach_band_ui(ui: &Ui, study: &Study, stage: &Stage, map: &Map) {
+    let Some((from, to)) = reach_ends(study, map) else { return };
+    let look = Look::of(ui);
+    let (left, right) = (map.x(from), map.x(to));
+    let band = Rect::from_min_max(pos2(left, stage.plot.top()), pos2(right, stage.strip.bottom()));
+    ui.painter().rect_filled(band, 0.0, look.reach.gamma_multiply(0.20));
+    for (x, r) in [(left, from), (right, to)] {
+        // An open end has no edge to draw.
+        if r > map.bounds.x.0 && r < map.bounds.x.1 {
+            ui.painter().vline(x, band.y_range(), egui::Stroke::new(1.0, look.reach.gamma_multiply(0.75)));
+        }
+    }
+    let font = look::plain(look::SMALL);
+    let galley = ui.painter().layout_no_wrap("reach".to_owned(), font, look.reach);
+    let size = galley.size();
+    let inside = right - left > size.x + 12.0;
+    let x = if inside { left + 6.0 } else { left - 6.0 - size.x };
+    if x > stage.plot.left() {
+        ui.painter().galley(pos2(x, stage.plot.top() + 6.0), galley, look.reach);
+    }
+}

@@ -1,0 +1,117 @@
+//! From the command line to the window, or to a picture of it.
+
+use super::app::{App, Start};
+use super::painter::{Canvas, render_offscreen};
+use super::shell::{Renderer, ShellOptions, run as open_window};
+use super::state::Page;
+use crate::headless::{WindowArgs, read_settings};
+use crate::settings::Settings;
+use eframe::egui;
+use std::path::Path;
+
+const DONE: u8 = 0;
+const WRONG_USAGE: u8 = 2;
+const NOT_READ: u8 = 3;
+
+/// Opens the window, or paints it into a picture; gives the exit status.
+pub fn run(arguments: WindowArgs) -> u8 {
+    match start_of(&arguments) {
+        Ok((start, theme)) => match &arguments.picture {
+            Some(path) => paint(path, start, theme, &arguments),
+            None => window(start, theme, &arguments),
+        },
+        Err((status, message)) => fail(status, &message),
+    }
+}
+
+fn fail(status: u8, message: &str) -> u8 {
+    eprintln!("parabound: {message}");
+    status
+}
+
+/// What the window starts with, and the theme asked for.
+fn start_of(arguments: &WindowArgs) -> Result<(Start, Option<egui::Theme>), (u8, String)> {
+    let mut settings = match &arguments.choices.settings_file {
+        Some(path) => read_settings(path).map_err(|message| (NOT_READ, message))?,
+        None => Settings::default(),
+    };
+    arguments.choices.apply(&mut settings);
+    let usage = |message: String| (WRONG_USAGE, message);
+    let page = arguments.page.as_deref().map_or(Ok(Page::default()), page_of).map_err(usage)?;
+    let theme = arguments.theme.as_deref().map(theme_of).transpose().map_err(usage)?;
+    let start = Start { files: arguments.files.clone(), settings, page, ..Start::default() };
+    Ok((start, theme))
+}
+
+fn page_of(word: &str) -> Result<Page, String> {
+    let found = Page::ALL.into_iter().find(|p| p.name().eq_ignore_ascii_case(word.trim()));
+    found.ok_or_else(|| {
+        let known = Page::ALL.map(|p| p.name().to_lowercase()).join(", ");
+        format!("page {word:?} is not known: choose {known}")
+    })
+}
+
+fn theme_of(word: &str) -> Result<egui::Theme, String> {
+    match word.trim().to_ascii_lowercase().as_str() {
+        "light" => Ok(egui::Theme::Light),
+        "dark" => Ok(egui::Theme::Dark),
+        _ => Err(format!("theme {word:?} is not known: choose light or dark")),
+    }
+}
+
+fn window(start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u8 {
+    let wanted = arguments.renderer.as_deref().map(str::parse::<Renderer>).transpose();
+    let renderer = match wanted.and_then(Renderer::choose) {
+        Ok(renderer) => renderer,
+        Err(error) => return fail(WRONG_USAGE, &error.to_string()),
+    };
+    let mut options = ShellOptions { renderer, ..ShellOptions::default() };
+    if let Some((width, height)) = arguments.size {
+        options.size_points = [width as f32, height as f32];
+    }
+    let make = |ctx: &egui::Context| -> Box<dyn super::Program> {
+        if let Some(theme) = theme {
+            ctx.set_theme(theme);
+        }
+        Box::new(App::new(ctx, start))
+    };
+    match open_window(make, &options) {
+        Ok(()) => DONE,
+        Err(error) => fail(error.exit_status(), &error.to_string()),
+    }
+}
+
+fn paint(path: &Path, start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u8 {
+    if path.exists() && !arguments.overwrite {
+        let message = format!("{}: this file exists and is not replaced; give --overwrite", path.display());
+        return fail(NOT_READ, &message);
+    }
+    let scale = arguments.scale.unwrap_or(1.0);
+    let (width, height) = arguments.size.unwrap_or((1400, 900));
+    let pixels = |points: u32| (points as f32 * scale).round() as usize;
+    let canvas = Canvas {
+        size_px: [pixels(width), pixels(height)],
+        pixels_per_point: scale,
+        theme: theme.unwrap_or(egui::Theme::Dark),
+        ..Canvas::default()
+    };
+    let start = Start { inline: true, ..start };
+    let picture = render_offscreen(|ctx| App::new(ctx, start), canvas);
+    match picture.save_png(path) {
+        Ok(()) => DONE,
+        Err(error) => fail(NOT_READ, &format!("{}: could not be written ({error})", path.display())),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn words_of_the_command_line() {
+        assert_eq!(page_of("Levels"), Ok(Page::Levels));
+        assert!(page_of("colour").is_err_and(|e| e.contains("constants, levels")));
+        assert_eq!(theme_of("light"), Ok(egui::Theme::Light));
+        assert!(theme_of("blue").is_err());
+    }
+}

@@ -1,0 +1,227 @@
+//! Rows, headings and buttons: the few forms in which everything in the panels is shown.
+
+use super::command::Command;
+use super::look::{self, Look};
+use super::state::State;
+use crate::figure::{LineStyle, Role};
+use eframe::egui;
+use egui::{Align2, Color32, FontId, Rect, Response, Sense, Stroke, Ui, WidgetInfo, pos2, vec2};
+
+/// One row of figures: label, one or two values, unit.
+#[derive(Clone, Debug, Default)]
+pub struct Row {
+    /// Symbol or words.
+    pub label: String,
+    /// The value, already with its digits.
+    pub value: String,
+    /// A second value beside it, dimmer; rows of one block agree on having it.
+    pub second: Option<String>,
+    /// The unit.
+    pub unit: &'static str,
+    /// What it is: formula, source, where the error comes from.
+    pub about: String,
+}
+
+impl Row {
+    /// A row with one value.
+    pub fn new(label: impl Into<String>, value: impl Into<String>, unit: &'static str) -> Self {
+        Self { label: label.into(), value: value.into(), unit, ..Self::default() }
+    }
+
+    /// With a second value.
+    pub fn beside(mut self, second: impl Into<String>) -> Self {
+        self.second = Some(second.into());
+        self
+    }
+
+    /// With words about it.
+    pub fn about(mut self, about: impl Into<String>) -> Self {
+        self.about = about.into();
+        self
+    }
+
+    /// The row as one line of text, as copied and as read aloud.
+    pub fn text(&self) -> String {
+        let mut text = format!("{} {}", self.label, self.value);
+        if let Some(second) = &self.second {
+            text.push_str(&format!(" ({second})"));
+        }
+        if !self.unit.is_empty() {
+            text.push_str(&format!(" {}", self.unit));
+        }
+        text
+    }
+
+    /// Draws the row.
+    pub fn ui(&self, ui: &mut Ui) -> Response {
+        let look = Look::of(ui);
+        let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), look::ROW), Sense::hover());
+        response.widget_info(|| WidgetInfo::labeled(egui::Role::Label, true, self.text()));
+        let at = |fraction: f32| rect.left() + fraction * rect.width();
+        let value_right = at(if self.second.is_some() { 0.53 } else { 0.82 });
+        let painter = ui.painter();
+        let value = painter.layout_no_wrap(self.value.clone(), look::figures(look::SECONDARY), look.text);
+        let value_left = value_right - value.size().x;
+        painter.galley(pos2(value_left, rect.center().y - value.size().y / 2.0), value, look.text);
+        if let Some(second) = &self.second {
+            text_in(
+                ui,
+                pos2(at(0.82), rect.center().y),
+                Align2::RIGHT_CENTER,
+                second,
+                &look::figures(look::SECONDARY),
+                look.dim,
+            );
+        }
+        text_in(
+            ui,
+            rect.right_center(),
+            Align2::RIGHT_CENTER,
+            self.unit,
+            &look::plain(look::SECONDARY),
+            look.dim,
+        );
+        let room = value_left - rect.left() - look::STEP;
+        elided(ui, rect.left_center(), room, &self.label, look::plain(look::BODY), look.text);
+        if self.about.is_empty() { response } else { response.on_hover_text(&self.about) }
+    }
+}
+
+/// Text at a place; gives its rectangle.
+pub fn text_in(ui: &Ui, at: egui::Pos2, anchor: Align2, text: &str, font: &FontId, color: Color32) -> Rect {
+    ui.painter().text(at, anchor, text, font.clone(), color)
+}
+
+/// Text that begins at the left centre and is cut with an ellipsis where there is no more room.
+pub fn elided(ui: &Ui, left_center: egui::Pos2, room: f32, text: &str, font: FontId, color: Color32) -> Rect {
+    let mut job =
+        egui::text::LayoutJob::single_section(text.to_owned(), egui::TextFormat::simple(font, color));
+    job.wrap = egui::text::TextWrapping::truncate_at_width(room.max(8.0));
+    let galley = ui.painter().layout_job(job);
+    let min = pos2(left_center.x, left_center.y - galley.size().y / 2.0);
+    let rect = Rect::from_min_size(min, galley.size());
+    ui.painter().galley(min, galley, color);
+    rect
+}
+
+/// A heading of a block, with dim words at the right.
+pub fn heading(ui: &mut Ui, text: &str, right: &str) {
+    let look = Look::of(ui);
+    let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 26.0), Sense::hover());
+    response.widget_info(|| WidgetInfo::labeled(egui::Role::Label, true, text));
+    let done = text_in(
+        ui,
+        rect.left_center(),
+        Align2::LEFT_CENTER,
+        text,
+        &look::semibold(look::SECONDARY),
+        look.dim,
+    );
+    if !right.is_empty() && rect.right() - done.right() > 40.0 {
+        text_in(ui, rect.right_center(), Align2::RIGHT_CENTER, right, &look::plain(look::SMALL), look.dim);
+    }
+}
+
+/// A hairline between blocks.
+pub fn rule(ui: &mut Ui) {
+    let look = Look::of(ui);
+    let (rect, _) = ui.allocate_exact_size(vec2(ui.available_width(), 17.0), Sense::hover());
+    ui.painter().hline(rect.x_range(), rect.center().y.round() + 0.5, Stroke::new(1.0, look.rule));
+}
+
+/// Dim small print, wrapped.
+pub fn note(ui: &mut Ui, text: &str) {
+    let look = Look::of(ui);
+    ui.add(egui::Label::new(egui::RichText::new(text).font(look::plain(look::SMALL)).color(look.dim)).wrap());
+}
+
+/// How a command is offered.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum ButtonForm {
+    /// With a frame.
+    Framed,
+    /// Words only, dim.
+    Quiet,
+    /// Words only, in the colour of links.
+    Link,
+}
+
+/// A button that gives a command; it says what it does, its shortcut, and why it cannot be pressed.
+pub fn command_button(
+    ui: &mut Ui,
+    state: &State,
+    command: Command,
+    form: ButtonForm,
+    out: &mut Vec<Command>,
+) -> Response {
+    command_button_as(ui, state, &command.label(), command, form, out)
+}
+
+/// The same with other words on it.
+pub fn command_button_as(
+    ui: &mut Ui,
+    state: &State,
+    label: &str,
+    command: Command,
+    form: ButtonForm,
+    out: &mut Vec<Command>,
+) -> Response {
+    let look = Look::of(ui);
+    let enabled = state.can(&command);
+    let text = egui::RichText::new(label);
+    let button = match form {
+        ButtonForm::Framed => egui::Button::new(text),
+        ButtonForm::Quiet => {
+            egui::Button::new(text.color(look.dim).font(look::plain(look::SECONDARY))).frame(false)
+        }
+        ButtonForm::Link => {
+            egui::Button::new(text.color(look.accent).font(look::plain(look::SECONDARY))).frame(false)
+        }
+    };
+    let mut response =
+        ui.add_enabled(enabled.is_ok(), button).on_hover_cursor(egui::CursorIcon::PointingHand);
+    let mut words = match &command {
+        Command::Undo => state.history.undo_name().map_or_else(String::new, |n| format!("Take back: {n}.")),
+        Command::Redo => state.history.redo_name().map_or_else(String::new, |n| format!("Do again: {n}.")),
+        other => other.tooltip().to_owned(),
+    };
+    if let Some(keys) = command.shortcut() {
+        words = format!("{words} ({})", ui.ctx().format_shortcut(&keys)).trim_start().to_owned();
+    }
+    if !words.is_empty() {
+        response = response.on_hover_text(words);
+    }
+    if let Err(reason) = enabled {
+        response = response.on_disabled_hover_text(reason);
+    }
+    if response.clicked() {
+        out.push(command);
+    }
+    response
+}
+
+/// Draws a sample of a line in the style of a role.
+pub fn line_sample(ui: &Ui, rect: Rect, role: Role, color: Color32) {
+    let [a, b] = [rect.left_center(), rect.right_center()];
+    let stroke = Stroke::new(2.0, color);
+    styled_line(ui.painter(), &[a, b], role.line_style(), stroke);
+}
+
+/// A line through screen points in a style.
+pub fn styled_line(painter: &egui::Painter, points: &[egui::Pos2], style: LineStyle, stroke: Stroke) {
+    if points.len() < 2 {
+        return;
+    }
+    let dashes = |dash: f32, gap: f32| {
+        painter.extend(egui::Shape::dashed_line(points, stroke, dash, gap));
+    };
+    match style {
+        LineStyle::Solid => {
+            painter.add(egui::Shape::line(points.to_vec(), stroke));
+        }
+        LineStyle::Dashed => dashes(7.0, 4.0),
+        LineStyle::LongDashed => dashes(14.0, 5.0),
+        LineStyle::ShortDashed => dashes(3.0, 3.0),
+        LineStyle::Dotted => dashes(2.0, 3.0),
+    }
+}

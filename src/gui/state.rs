@@ -1,0 +1,335 @@
+//! What the window knows: the document (undoable), the view (not), and results (derived).
+
+use super::command::Command;
+use super::history::History;
+use crate::figure::Pictures;
+use crate::figure::geometry::Bounds;
+use crate::findings::Findings;
+use crate::fit::Window;
+use crate::scan::Scan;
+use crate::settings::Settings;
+use crate::units::LengthUnit;
+use std::collections::BTreeMap;
+use std::path::PathBuf;
+use std::sync::Arc;
+
+/// One curve: a scan by its serial number and an energy column of it.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub struct CurveKey {
+    /// Serial number of the scan in this window.
+    pub scan: u64,
+    /// Index of the energy column.
+    pub column: usize,
+}
+
+/// A file that was read.
+#[derive(Clone, Debug)]
+pub struct LoadedScan {
+    /// Serial number in this window.
+    pub key: u64,
+    /// The scan.
+    pub scan: Arc<Scan>,
+    /// Where it came from; none for samples.
+    pub path: Option<PathBuf>,
+    /// The settings that its studies start from; how it was read is among them.
+    pub start: Settings,
+}
+
+/// What is undone and redone: the scans, the curve in focus, the settings of every curve.
+#[derive(Clone, Debug, Default)]
+pub struct Document {
+    /// The scans, in order of loading.
+    pub scans: Vec<LoadedScan>,
+    /// The curve in focus.
+    pub focus: Option<CurveKey>,
+    /// Settings of every curve.
+    pub settings: BTreeMap<CurveKey, Settings>,
+}
+
+impl Document {
+    /// The scan with this serial number.
+    pub fn scan(&self, key: u64) -> Option<&LoadedScan> {
+        self.scans.iter().find(|s| s.key == key)
+    }
+
+    /// The scan, settings and key of the curve in focus.
+    pub fn focused(&self) -> Option<(CurveKey, &LoadedScan, &Settings)> {
+        let key = self.focus?;
+        Some((key, self.scan(key.scan)?, self.settings.get(&key)?))
+    }
+}
+
+/// A page of results.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Page {
+    /// Constants and energies.
+    #[default]
+    Constants,
+    /// The levels as a table.
+    Levels,
+    /// Parameters of the fits.
+    Fits,
+    /// The reach by every criterion.
+    Reach,
+}
+
+impl Page {
+    /// All pages in order.
+    pub const ALL: [Self; 4] = [Self::Constants, Self::Levels, Self::Fits, Self::Reach];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Constants => "Constants",
+            Self::Levels => "Levels",
+            Self::Fits => "Fits",
+            Self::Reach => "Reach",
+        }
+    }
+}
+
+/// What the strip shows.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Strip {
+    /// Deviation from the parabola.
+    #[default]
+    Gauge,
+    /// Residuals of the fits.
+    Residuals,
+}
+
+impl Strip {
+    /// All kinds in order.
+    pub const ALL: [Self; 2] = [Self::Gauge, Self::Residuals];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Gauge => "Gauge",
+            Self::Residuals => "Residuals",
+        }
+    }
+}
+
+/// A named region of the plot.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Preset {
+    /// The lowest levels.
+    #[default]
+    NearMinimum,
+    /// The whole well.
+    WholeWell,
+    /// The fit window.
+    FitWindow,
+    /// All points.
+    AllPoints,
+}
+
+impl Preset {
+    /// All regions in order.
+    pub const ALL: [Self; 4] = [Self::NearMinimum, Self::WholeWell, Self::FitWindow, Self::AllPoints];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::NearMinimum => "near the minimum",
+            Self::WholeWell => "whole well",
+            Self::FitWindow => "fit window",
+            Self::AllPoints => "all points",
+        }
+    }
+
+    /// Its bounds among a study's views.
+    pub fn bounds(self, pictures: &Pictures) -> Option<Bounds> {
+        let views = &pictures.views;
+        match self {
+            Self::NearMinimum => views.near_minimum,
+            Self::WholeWell => views.whole_well,
+            Self::FitWindow => views.fit_window,
+            Self::AllPoints => views.all_points,
+        }
+    }
+}
+
+/// What part of the plot is seen.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Zoom {
+    /// A named region; it follows the results.
+    Preset(Preset),
+    /// As the user left it.
+    Free(Bounds),
+}
+
+/// A short message to the user.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Message {
+    /// The text.
+    pub text: String,
+    /// Whether it tells of a failure.
+    pub failure: bool,
+}
+
+/// A file that was refused, with all that is needed to try again.
+#[derive(Clone, Debug)]
+pub struct Problem {
+    /// File name without folder.
+    pub file_name: String,
+    /// Where it is, where known.
+    pub path: Option<PathBuf>,
+    /// Its bytes, where they could be read.
+    pub bytes: Option<Arc<[u8]>>,
+    /// What is wrong and what to do.
+    pub text: String,
+    /// The settings it was read with, the units chosen so far among them.
+    pub start: Settings,
+    /// Whether naming units would settle it.
+    pub ask_units: bool,
+}
+
+/// Which side panels are open; none: by the room there is.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub struct SidePanels {
+    /// The left panel.
+    pub left: Option<bool>,
+    /// The right panel.
+    pub right: Option<bool>,
+}
+
+/// What is seen, not undoable.
+#[derive(Clone, Debug, Default)]
+pub struct ViewState {
+    /// The page on the right.
+    pub page: Page,
+    /// The strip under the plot.
+    pub strip: Strip,
+    /// Zoom of every curve looked at.
+    pub zoom: BTreeMap<CurveKey, Zoom>,
+    /// The level under the pointer.
+    pub hovered_level: Option<usize>,
+    /// The level kept by a click.
+    pub pinned_level: Option<usize>,
+    /// A bond length pointed at, in angstrom.
+    pub pointed_angstrom: Option<f64>,
+    /// The panels.
+    pub panels: SidePanels,
+    /// Whether the reasons of the sentence are shown.
+    pub why_open: bool,
+    /// The latest message.
+    pub message: Option<Message>,
+    /// A file that was refused.
+    pub problem: Option<Problem>,
+    /// The path window, where the desktop offers no dialog.
+    pub path_window: Option<PathWindow>,
+}
+
+/// What a path is asked for.
+#[derive(Clone, Debug, PartialEq)]
+pub enum PathPurpose {
+    /// A file to open.
+    Open,
+    /// Where findings go.
+    SaveFindings,
+}
+
+/// The built-in path window.
+#[derive(Clone, Debug, PartialEq)]
+pub struct PathWindow {
+    /// What for.
+    pub purpose: PathPurpose,
+    /// The text typed so far.
+    pub text: String,
+    /// Entries of the folder named by the text, folders with a trailing slash.
+    pub entries: Vec<String>,
+}
+
+/// A finished study with its pictures.
+#[derive(Clone, Debug)]
+pub struct Study {
+    /// The findings.
+    pub findings: Arc<Findings>,
+    /// What is drawn of them.
+    pub pictures: Arc<Pictures>,
+}
+
+/// What came of a curve's latest computation.
+#[derive(Clone, Debug)]
+pub struct Outcome {
+    /// The settings it was computed with.
+    pub settings: Settings,
+    /// The latest study that succeeded.
+    pub study: Option<Study>,
+    /// Why the latest one failed.
+    pub failure: Option<String>,
+}
+
+/// All that the window knows.
+#[derive(Debug, Default)]
+pub struct State {
+    /// The document.
+    pub document: Document,
+    /// Its past and future.
+    pub history: History,
+    /// What is seen.
+    pub view: ViewState,
+    /// Results by curve.
+    pub results: BTreeMap<CurveKey, Outcome>,
+    /// The next serial number of a scan.
+    pub next_scan: u64,
+}
+
+impl State {
+    /// The study shown: of the curve in focus, maybe computed with older settings.
+    pub fn study(&self) -> Option<&Study> {
+        self.results.get(&self.document.focus?)?.study.as_ref()
+    }
+
+    /// Whether what is shown was computed with other settings than those in force.
+    pub fn is_stale(&self) -> bool {
+        let Some((key, _, settings)) = self.document.focused() else { return false };
+        self.results.get(&key).is_none_or(|o| o.settings != *settings)
+    }
+
+    /// Why the latest computation of the focused curve failed, where it did.
+    pub fn failure(&self) -> Option<&str> {
+        self.results.get(&self.document.focus?)?.failure.as_deref()
+    }
+
+    /// The window in force in the unit of the scan.
+    pub fn window(&self) -> Option<Window> {
+        let (_, loaded, settings) = self.document.focused()?;
+        let unit = loaded.scan.length_unit;
+        settings.fits.window.or_else(|| {
+            let (from, to) = self.study()?.pictures.window_angstrom?;
+            let convert = |a: f64| LengthUnit::Angstrom.convert(a, unit);
+            Some(Window { from: convert(from), to: convert(to), unit })
+        })
+    }
+
+    /// The level that the plot brings forward.
+    pub fn shown_level(&self) -> Option<usize> {
+        self.view.hovered_level.or(self.view.pinned_level)
+    }
+
+    /// What part of the plot is seen.
+    pub fn zoom(&self) -> Zoom {
+        let key = self.document.focus;
+        key.and_then(|k| self.view.zoom.get(&k)).copied().unwrap_or(Zoom::Preset(Preset::NearMinimum))
+    }
+
+    /// The bounds of the plot.
+    pub fn bounds(&self) -> Option<Bounds> {
+        let pictures = &self.study()?.pictures;
+        match self.zoom() {
+            Zoom::Free(bounds) => Some(bounds),
+            Zoom::Preset(preset) => preset.bounds(pictures).or_else(|| pictures.views.first()),
+        }
+    }
+
+    /// Whether a command can be given now; if not, why not.
+    ///
+    /// # Errors
+    /// The reason, as shown on the disabled button.
+    pub fn can(&self, command: &Command) -> Result<(), &'static str> {
+        command.is_enabled(self)
+    }
+}
