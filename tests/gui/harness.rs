@@ -1,0 +1,70 @@
+//! The real program in a window that exists only for the test.
+
+use eframe::egui;
+use egui_kittest::Harness;
+use egui_kittest::kittest::Queryable as _;
+use parabound::gui::Program as _;
+use parabound::gui::app::{App, Start};
+use parabound::gui::state::State;
+
+/// The program as the test harness wants it.
+pub struct Windowed(pub App);
+
+impl eframe::App for Windowed {
+    fn ui(&mut self, ui: &mut egui::Ui, _frame: &mut eframe::Frame) {
+        self.0.logic(ui.ctx());
+        self.0.ui(ui);
+    }
+}
+
+/// A window of the program.
+pub type Window = Harness<'static, Windowed>;
+
+/// Opens the program, computing on the thread that draws.
+pub fn open(size: [f32; 2], theme: egui::Theme, start: Start) -> Window {
+    let start = Start { inline: true, ..start };
+    let mut window = Harness::builder()
+        .with_size(egui::Vec2::from(size))
+        .with_theme(theme)
+        .with_max_steps(24)
+        .build_eframe(|cc| Windowed(App::new(&cc.egui_ctx, start)));
+    window.run();
+    window
+}
+
+/// Opens the program on the bundled sample.
+pub fn open_sample() -> Window {
+    open([1400.0, 900.0], egui::Theme::Dark, Start::default())
+}
+
+/// What the window knows.
+pub fn state(window: &Window) -> &State {
+    window.state().0.state()
+}
+
+/// Presses a button by what it says.
+pub fn press(window: &mut Window, label: &str) {
+    window.get_by_role_and_label(egui::accesskit::Role::Button, label).click();
+    window.run();
+}
+
+/// Press, move in small steps, release; one event a pass, as a hand would.
+pub fn drag(window: &mut Window, from: egui::Pos2, to: egui::Pos2) {
+    window.hover_at(from);
+    window.run();
+    window.drag_at(from);
+    window.run();
+    for step in 1..=4 {
+        window.hover_at(from + (to - from) * (step as f32 / 4.0));
+        window.run();
+    }
+    window.drop_at(to);
+    window.run();
+}
+
+/// The force constant of the harmonic fit in atomic units.
+pub fn harmonic_force_constant(window: &Window) -> f64 {
+    let study = state(window).study().expect("a study");
+    let fit = study.findings.fit_of(parabound::fit::Family::Harmonic).expect("a harmonic fit");
+    fit.parameters.iter().find(|p| p.name == "k").expect("its force constant").estimate.value
+}
