@@ -89,7 +89,7 @@ pub fn turning_points_bohr(potential: &dyn Potential, energy_hartree: f64) -> Op
     let minimum = potential.minimum_bohr();
     let f = |r: f64| potential.energy_hartree(r) - energy_hartree;
     let at_minimum = f(minimum);
-    if !(at_minimum <= 0.0) {
+    if at_minimum.is_nan() || at_minimum > 0.0 {
         return None;
     }
     let (from, to) = potential.range_bohr();

@@ -97,14 +97,14 @@ fn solve(potential: &dyn Potential, request: &RadialRequest) -> Vec<BoundState> 
 
 #[test]
 fn lennard_jones_levels_agree_to_1e_10_of_the_depth() {
-    let file: Value = serde_json::from_str(include_str!("reference/lj-levels.json")).unwrap();
-    for case in file["cases"].as_array().unwrap() {
+    let file: Value = serde_json::from_str(include_str!("reference/lj-levels.json")).expect("JSON");
+    for case in file["cases"].as_array().expect("a list") {
         let strength = number(&case["well_strength"]);
         let states = solve(&lennard_jones(), &request(1.0 / strength));
-        assert_eq!(states.len() as u64, case["n_bound"].as_u64().unwrap());
+        assert_eq!(states.len() as u64, case["n_bound"].as_u64().expect("a count"));
         let mut worst: f64 = 0.0;
-        for level in case["levels"].as_array().unwrap() {
-            let v = level["v"].as_u64().unwrap() as usize;
+        for level in case["levels"].as_array().expect("a list") {
+            let v = level["v"].as_u64().expect("a count") as usize;
             let error = (states[v].energy_hartree - number(&level["E_over_eps"])).abs();
             worst = worst.max(error);
             assert!(states[v].error_hartree >= error, "stated error of v = {v}");
@@ -152,14 +152,14 @@ fn compare(case: &Value, potential: &dyn Potential, depth: f64, energy_key: &str
     let request = request(number(&case["hbar2_over_2mu_per_cm_angstrom2"]));
     let solution = parabound::radial::solve(potential, &request).expect("levels");
     let states = &solution.states;
-    assert_eq!(states.len() as u64, case["n_bound_J0"].as_u64().unwrap(), "number of levels");
+    assert_eq!(states.len() as u64, case["n_bound_J0"].as_u64().expect("a count"), "number of levels");
     assert!(states.iter().enumerate().all(|(v, s)| (s.v, s.nodes) == (v, v)));
     let observables = solution.observables(potential, potential.minimum_bohr(), 0.0);
     let distortion = solution.distortion(usize::MAX);
     let mut worst = Worst::default();
     let per_cm = parabound::units::to_per_cm(1.0);
-    for level in case["levels"].as_array().unwrap() {
-        let v = level["v"].as_u64().unwrap() as usize;
+    for level in case["levels"].as_array().expect("a list") {
+        let v = level["v"].as_u64().expect("a count") as usize;
         let (state, of, bent) = (&states[v], &observables[v], &distortion[v]);
         let error = (state.energy_hartree - number(&level[energy_key])).abs();
         // The table's own float64 column is good to 7e-10 cm-1 (its ABOUT: 6.4e-10 at worst).
@@ -181,8 +181,8 @@ fn compare(case: &Value, potential: &dyn Potential, depth: f64, energy_key: &str
             worst.note("turning points", relative(value, number(&level[key])));
         }
     }
-    for level in case["rotational_levels"].as_array().unwrap() {
-        let (v, j) = (level["v"].as_u64().unwrap() as usize, number(&level["J"]));
+    for level in case["rotational_levels"].as_array().expect("a list") {
+        let (v, j) = (level["v"].as_u64().expect("a count") as usize, number(&level["J"]));
         let request = RadialRequest { rotation_x: j * (j + 1.0), highest_v: Some(v), ..request };
         let states = bound_states(potential, &request).expect("levels");
         worst.note("E(v, J)/depth", (states[v].energy_hartree - number(&level["E_per_cm"])).abs() / depth);
@@ -211,8 +211,8 @@ fn compare(case: &Value, potential: &dyn Potential, depth: f64, energy_key: &str
 
 #[test]
 fn morse_levels_and_observables() {
-    let file: Value = serde_json::from_str(include_str!("reference/morse-levels.json")).unwrap();
-    for case in file["cases"].as_array().unwrap() {
+    let file: Value = serde_json::from_str(include_str!("reference/morse-levels.json")).expect("JSON");
+    for case in file["cases"].as_array().expect("a list") {
         let p = &case["parameters"];
         let depth = number(&p["De_per_cm"]);
         let potential = morse(depth, number(&p["a_per_angstrom"]), number(&p["re_angstrom"]));
@@ -237,13 +237,13 @@ fn from_value(
 
 #[test]
 fn other_potentials_levels_and_observables() {
-    let file: Value = serde_json::from_str(include_str!("reference/other-potentials.json")).unwrap();
-    for case in file["cases"].as_array().unwrap() {
+    let file: Value = serde_json::from_str(include_str!("reference/other-potentials.json")).expect("JSON");
+    for case in file["cases"].as_array().expect("a list") {
         let p = &case["parameters"];
         let of = |key: &str| number(&p[key]);
         let (depth, r_e) = (of("De"), of("re"));
         let range = (0.0, f64::INFINITY);
-        match case["name"].as_str().unwrap() {
+        match case["name"].as_str().expect("a name") {
             "rydberg" => {
                 let a = of("a");
                 let v = move |r: f64| {
@@ -267,7 +267,7 @@ fn other_potentials_levels_and_observables() {
             }
             "emo" => {
                 let q = of("q") as i32;
-                let betas: Vec<f64> = p["betas"].as_array().unwrap().iter().map(number).collect();
+                let betas: Vec<f64> = p["betas"].as_array().expect("a list").iter().map(number).collect();
                 let v = move |r: f64| {
                     let y = (r.powi(q) - r_e.powi(q)) / (r.powi(q) + r_e.powi(q));
                     let beta = betas.iter().rev().fold(0.0, |sum, b| sum * y + b);
@@ -299,7 +299,7 @@ fn other_potentials_levels_and_observables() {
 
 #[test]
 fn harmonic_levels_are_evenly_spaced_and_stray_as_known() {
-    let file: Value = serde_json::from_str(include_str!("reference/harmonic-facts.json")).unwrap();
+    let file: Value = serde_json::from_str(include_str!("reference/harmonic-facts.json")).expect("JSON");
     // ω = μ = 1, far from r = 0: the file's own reduced units.
     let r_e = 20.0;
     let potential = Function {
@@ -316,8 +316,8 @@ fn harmonic_levels_are_evenly_spaced_and_stray_as_known() {
     for state in &solution.states {
         worst.note("spacing", (state.energy_hartree - (state.v as f64 + 0.5)).abs());
     }
-    for level in file["levels"].as_array().unwrap() {
-        let n = level["n"].as_u64().unwrap() as usize;
+    for level in file["levels"].as_array().expect("a list") {
+        let n = level["n"].as_u64().expect("a count") as usize;
         let Some(of) = observables.get(n) else { continue };
         worst.note("P", (of.forbidden_probability - number(&level["P_forbidden"])).abs());
         worst.note("<y2>", relative(of.mean_square_x_bohr2, number(&level["y2_mean"])));
