@@ -37,6 +37,7 @@ const fn key(id: TextureId) -> Key {
 impl TextureStore {
     /// Takes all new and changed textures out of `delta`. Call before painting.
     pub(super) fn apply(&mut self, delta: &mut TexturesDelta) {
+        #[expect(clippy::iter_over_hash_type, reason = "textures do not depend on each other")]
         for (id, images) in delta.set.drain() {
             for image in images {
                 self.set(id, &image);
