@@ -16,7 +16,7 @@ pub fn with_uncertainty(value: f64, std_error: Option<f64>, significant: usize) 
     let exponent = error.log10().floor();
     let leading = error / 10f64.powf(exponent);
     // 0.95 and above rounds up to the next power of ten and then shows as 1.0.
-    let digits = if leading < 1.95 || leading >= 9.5 { 2 } else { 1 };
+    let digits = if !(1.95..9.5).contains(&leading) { 2 } else { 1 };
     let place = if leading >= 9.5 { exponent + 1.0 } else { exponent } as i32 - (digits - 1);
     // An error below the rounding of a double is shown at the last digit that the value has.
     let last_digit = if value == 0.0 { place } else { value.abs().log10().floor() as i32 - 15 };
@@ -90,7 +90,7 @@ mod tests {
 
     #[test]
     fn significant_digits() {
-        assert_eq!(rounded(2164.410_4, 6), "2164.41");
+        assert_eq!(rounded(2_164.410_4, 6), "2164.41");
         assert_eq!(rounded(0.000_006_117_6, 3), "6.12e−6");
         assert_eq!(rounded(19_983.2, 3), "20000");
         assert_eq!(fixed(-0.000_1, 2), "0.00");

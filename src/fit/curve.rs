@@ -292,7 +292,7 @@ fn ends(
     let (first, last) = (data.r[0], data.r[data.r.len() - 1]);
     let maxima = || stationary.iter().filter(|s| s.maximum).map(|s| s.r);
     let outer = maxima().find(|&r| r > local.r_e_bohr);
-    let inner = maxima().filter(|&r| r < local.r_e_bohr).next_back();
+    let inner = maxima().rfind(|&r| r < local.r_e_bohr);
     if let Some(r) = outer {
         let text = format!(
             "The curve turns over at {:.4} angstrom and falls beyond. It is used up to there; levels end at that \

@@ -19,7 +19,7 @@ pub enum Command {
     /// The version.
     Version,
     /// The window, or a picture of it.
-    Window(WindowArgs),
+    Window(Box<WindowArgs>),
     /// Headless studies.
     Study(Box<StudyArgs>),
 }
@@ -191,7 +191,7 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
     window.files = study.files;
     window.choices = study.choices;
     window.overwrite = study.overwrite;
-    Ok(Command::Window(window))
+    Ok(Command::Window(Box::new(window)))
 }
 
 /// An option that neither command has, or that the other one has.

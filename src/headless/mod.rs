@@ -22,7 +22,7 @@ pub fn main() -> ExitCode {
         Ok(Command::Help) => print(help::HELP),
         Ok(Command::Version) => print(concat!("parabound ", env!("CARGO_PKG_VERSION"), "\n")),
         Ok(Command::Study(arguments)) => run_study::run(&arguments),
-        Ok(Command::Window(arguments)) => window(arguments),
+        Ok(Command::Window(arguments)) => window(*arguments),
         Err(error) => {
             eprintln!("parabound: {error}\nparabound --help lists the commands and options.");
             2
