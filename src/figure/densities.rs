@@ -147,10 +147,10 @@ mod tests {
 
     /// Invented: a Gaussian of unit norm.
     fn gaussian() -> Wavefunction {
-        let r_bohr: Vec<f64> = (0..60).map(|i| 0.1 * f64::from(i)).collect();
+        let r_bohr: std::sync::Arc<[f64]> = (0..60).map(|i| 0.1 * f64::from(i)).collect();
         let norm = std::f64::consts::PI.powf(-0.25);
         let psi = r_bohr.iter().map(|r| norm * (-0.5 * (r - 3.0).powi(2)).exp()).collect();
-        Wavefunction { weight_bohr: vec![0.1; 60], r_bohr, psi }
+        Wavefunction { degree: 1, weight_bohr: vec![0.1; 60].into(), r_bohr, psi }
     }
 
     #[test]

@@ -1,5 +1,7 @@
 //! The window, driven by command and by label; no display, no GPU.
 
+#![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
+
 mod by_label;
 mod commands;
 mod frames;

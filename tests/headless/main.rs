@@ -1,5 +1,7 @@
 //! The built program, run on real scans: exit status, findings against the schema, tables, refusals.
 
+#![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
+
 mod findings;
 mod options;
 

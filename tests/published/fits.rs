@@ -7,6 +7,7 @@
 use parabound::fit::{Family, FitPoint, FitRequest, Window, fit};
 use parabound::units::LengthUnit;
 
+#[expect(clippy::excessive_precision, reason = "digits as the reference computation printed them")]
 /// e_min above the lowest point (hartree), r_e (bohr), d_e (hartree), a (1/bohr), each with its standard error.
 const REFERENCE: [(f64, f64); 4] = [
     (-0.000_320_991_213_852_967_3, 3.941_629_825_136_203_8e-5),

@@ -1,5 +1,7 @@
 //! The program against published and independently computed values; one module per publication or file.
 
+#![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
+
 mod experiment;
 mod fits;
 mod levels;

@@ -6,6 +6,8 @@
 //! `length-column`, `bond`: options. `#> columns`, `rows`, `first`, `notices`, `atoms`, `charge`, `properties`:
 //! what is understood. All numbers in these files are invented.
 
+#![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
+
 mod mutation;
 
 use parabound::scan::Scan;

@@ -1,5 +1,7 @@
 //! The layout keeps its promises: layers, documents, sample scans.
 
+#![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
+
 use std::fs;
 use std::path::{Path, PathBuf};
 

@@ -71,6 +71,7 @@ impl<T: Into<Self>> Sub<T> for Dual {
     }
 }
 
+#[expect(clippy::suspicious_arithmetic_impl, reason = "the product rule adds")]
 impl<T: Into<Self>> Mul<T> for Dual {
     type Output = Self;
     fn mul(self, other: T) -> Self {
@@ -80,6 +81,7 @@ impl<T: Into<Self>> Mul<T> for Dual {
     }
 }
 
+#[expect(clippy::suspicious_arithmetic_impl, reason = "the quotient rule subtracts and multiplies")]
 impl<T: Into<Self>> Div<T> for Dual {
     type Output = Self;
     fn div(self, other: T) -> Self {
