@@ -59,6 +59,12 @@ pub fn with_error(value: f64, std_error: Option<f64>, decimals: usize) -> String
     }
 }
 
+/// The same with no more than `most` decimals: an error below them is left out.
+pub fn with_error_capped(value: f64, std_error: Option<f64>, most: usize) -> String {
+    let last = 10_f64.powi(-i32::try_from(most).unwrap_or(i32::MAX));
+    with_error(value, std_error.filter(|e| *e >= 0.95 * last), most)
+}
+
 /// An estimate, see [`with_error`].
 pub fn estimate(estimate: &Estimate, decimals: usize) -> String {
     with_error(estimate.value, estimate.std_error, decimals)
@@ -90,6 +96,8 @@ mod tests {
     fn the_error_rules_the_digits() {
         assert_eq!(with_error(1387.904, Some(0.0304), 2), "1\u{2009}387.90(3)");
         assert_eq!(with_error(12345.0, Some(2345.0), 0), "12\u{2009}000(2\u{2009}000)");
+        assert_eq!(with_error_capped(2032.015, Some(2e-6), 2), "2\u{2009}032.02");
+        assert_eq!(with_error_capped(2032.015, Some(0.3), 2), "2\u{2009}032.0(3)");
         assert_eq!(with_error(2.0, None, 3), "2.000");
         assert_eq!(with_error(2.0, Some(1e-14), 3), "2.000");
         assert_eq!(with_error(-1.0, Some(f64::NAN), 1), "−1.0");

@@ -206,10 +206,31 @@ pub fn understand(file_name: &str, bytes: Arc<[u8]>, path: Option<PathBuf>, star
             file_name: file_name.to_owned(),
             path,
             ask_units: asks_for_units(&error),
-            text: error.to_string(),
+            text: words(&error),
             bytes: Some(bytes),
             start,
         }),
+    }
+}
+
+/// The refusal in words of the window, where the reader's own words name options of the command line.
+fn words(error: &ScanError) -> String {
+    let remedy = "Choose it here, or write it into the header of the file";
+    match error {
+        ScanError::LengthUnitMissing { column, .. } => {
+            format!(
+                "The unit of the bond lengths (column {column}) is not stated. {remedy}, as in R_angstrom."
+            )
+        }
+        ScanError::EnergyUnitMissing { column, .. } => {
+            format!("The unit of the energies (column {column}) is not stated. {remedy}, as in E_hartree.")
+        }
+        other => {
+            let text = other.to_string();
+            let mut letters = text.chars();
+            let first = letters.next().map(|c| c.to_uppercase().to_string()).unwrap_or_default();
+            format!("{first}{}.", letters.as_str())
+        }
     }
 }
 

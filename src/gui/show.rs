@@ -104,6 +104,11 @@ pub fn elided(ui: &Ui, left_center: egui::Pos2, room: f32, text: &str, font: Fon
     rect
 }
 
+/// Text of the numerics, which is plain enough for any terminal, as the window writes units.
+pub fn typographic(text: &str) -> String {
+    text.replace("cm-1", "cm⁻¹").replace(" angstrom", " Å")
+}
+
 /// A heading of a block, with dim words at the right.
 pub fn heading(ui: &mut Ui, text: &str, right: &str) {
     let look = Look::of(ui);
@@ -220,7 +225,7 @@ pub fn styled_line(painter: &egui::Painter, points: &[egui::Pos2], style: LineSt
             painter.add(egui::Shape::line(points.to_vec(), stroke));
         }
         LineStyle::Dashed => dashes(7.0, 4.0),
-        LineStyle::LongDashed => dashes(14.0, 5.0),
+        LineStyle::LongDashed => dashes(11.0, 4.0),
         LineStyle::ShortDashed => dashes(3.0, 3.0),
         LineStyle::Dotted => dashes(2.0, 3.0),
     }

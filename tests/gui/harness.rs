@@ -3,22 +3,12 @@
 use eframe::egui;
 use egui_kittest::Harness;
 use egui_kittest::kittest::Queryable as _;
-use parabound::gui::Program as _;
 use parabound::gui::app::{App, Start};
 use parabound::gui::state::State;
-
-/// The program as the test harness wants it.
-pub struct Windowed(pub App);
-
-impl eframe::App for Windowed {
-    fn ui(&mut self, ui: &mut egui::Ui, _frame: &mut eframe::Frame) {
-        self.0.logic(ui.ctx());
-        self.0.ui(ui);
-    }
-}
+use parabound_gui_tests::{CpuRenderer, Shown};
 
 /// A window of the program.
-pub type Window = Harness<'static, Windowed>;
+pub type Window = Harness<'static, Shown<App>>;
 
 /// Opens the program, computing on the thread that draws.
 pub fn open(size: [f32; 2], theme: egui::Theme, start: Start) -> Window {
@@ -27,7 +17,9 @@ pub fn open(size: [f32; 2], theme: egui::Theme, start: Start) -> Window {
         .with_size(egui::Vec2::from(size))
         .with_theme(theme)
         .with_max_steps(24)
-        .build_eframe(|cc| Windowed(App::new(&cc.egui_ctx, start)));
+        .with_render_cursor(false)
+        .renderer(CpuRenderer::default())
+        .build_eframe(|cc| Shown(App::new(&cc.egui_ctx, start)));
     window.run();
     window
 }

@@ -57,7 +57,8 @@ fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         vec2(ui.available_width(), height),
         Layout::right_to_left(Align::Center),
         |ui| {
-            ui.spacing_mut().item_spacing.x = 2.0;
+            ui.spacing_mut().item_spacing.x = 14.0;
+            ui.spacing_mut().button_padding.x = 0.0;
             for preset in Preset::ALL.into_iter().rev() {
                 let front = state.zoom() == Zoom::Preset(preset);
                 let form = if front { ButtonForm::Link } else { ButtonForm::Quiet };
@@ -75,14 +76,14 @@ fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
                 for (role, name) in entries {
                     let font = look::plain(look::SMALL);
                     let galley = ui.painter().layout_no_wrap(name.to_owned(), font, look.dim);
-                    let width = 24.0 + galley.size().x + 10.0;
+                    let width = 31.0 + galley.size().x;
                     if ui.available_width() < width + 6.0 {
                         break;
                     }
                     let (rect, _) = ui.allocate_exact_size(vec2(width, height), Sense::hover());
-                    let sample = Rect::from_min_size(rect.min, vec2(19.0, height));
+                    let sample = Rect::from_min_size(rect.min, vec2(26.0, height));
                     show::line_sample(ui, sample, role, look.role(role));
-                    let at = egui::pos2(rect.left() + 24.0, rect.center().y - galley.size().y / 2.0);
+                    let at = egui::pos2(rect.left() + 31.0, rect.center().y - galley.size().y / 2.0);
                     ui.painter().galley(at, galley, look.dim);
                 }
             });

@@ -53,9 +53,9 @@ fn title_ui(ui: &mut Ui, fit: &FitFindings) {
     let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 28.0), Sense::hover());
     response.widget_info(|| WidgetInfo::labeled(egui::Role::Label, true, &label));
     let role = fit_role(fit.request.family);
-    let sample = Rect::from_min_size(pos2(rect.left(), rect.top()), vec2(22.0, rect.height()));
+    let sample = Rect::from_min_size(pos2(rect.left(), rect.top()), vec2(26.0, rect.height()));
     line_sample(ui, sample, role, look.role(role));
-    let at = pos2(rect.left() + 32.0, rect.center().y);
+    let at = pos2(rect.left() + 34.0, rect.center().y);
     show::text_in(ui, at, Align2::LEFT_CENTER, &label, &look::semibold(look::BODY), look.text);
     if let Ok(result) = &fit.result {
         let edge = |r: f64| number::fixed(result.window.unit.convert(r, LengthUnit::Angstrom), 3);

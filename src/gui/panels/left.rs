@@ -1,6 +1,7 @@
 //! The panel on the left: curves, masses, fit window, fits, tolerance.
 
 use super::right::fold_ui;
+use crate::digits;
 use crate::figure::{fit_label, fit_role, number};
 use crate::fit::Window;
 use crate::gui::command::Command;
@@ -311,36 +312,26 @@ fn points_text(state: &State, window: &Window) -> String {
 }
 
 fn fits_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &mut Vec<Command>) {
-    show::heading(ui, "Fits", "rms in the window");
+    show::heading(ui, "Fits", "rms in the window / cm⁻¹");
     let look = Look::of(ui);
     let Some(study) = state.study() else { return };
     for fit in &study.findings.fits {
         let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 23.0), Sense::hover());
         let role = fit_role(fit.request.family);
-        let sample = Rect::from_min_size(rect.min, vec2(22.0, rect.height()));
+        let sample = Rect::from_min_size(rect.min, vec2(26.0, rect.height()));
         line_sample(ui, sample, role, look.role(role));
         let (value, about) = match &fit.result {
             Ok(f) => {
-                let rms = to_per_cm(f.rms_residual_hartree);
-                let decimals = if rms < 10.0 {
-                    2
-                } else if rms < 100.0 {
-                    1
-                } else {
-                    0
-                };
-                (
-                    format!("{} cm⁻¹", number::fixed(rms, decimals)),
-                    "rms residual at the points in the window".to_owned(),
-                )
+                let rms = digits::rounded(to_per_cm(f.rms_residual_hartree), 2);
+                (rms, "Root mean square of the residuals at the points in the window, in cm⁻¹.".to_owned())
             }
             Err(error) => ("no fit".to_owned(), error.to_string()),
         };
         let label = fit_label(fit);
         response.widget_info(|| {
-            WidgetInfo::labeled(egui::Role::Label, true, format!("{label} fit, rms {value}"))
+            WidgetInfo::labeled(egui::Role::Label, true, format!("{label} fit, rms {value} cm⁻¹"))
         });
-        let start = pos2(rect.left() + 32.0, rect.center().y);
+        let start = pos2(rect.left() + 34.0, rect.center().y);
         show::text_in(ui, start, Align2::LEFT_CENTER, &label, &look::plain(look::BODY), look.text);
         show::text_in(
             ui,
@@ -354,9 +345,9 @@ fn fits_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &mut Vec<Comman
     }
     degree_ui(ui, settings, out);
     let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 23.0), Sense::hover());
-    let sample = Rect::from_min_size(rect.min, vec2(22.0, rect.height()));
+    let sample = Rect::from_min_size(rect.min, vec2(26.0, rect.height()));
     line_sample(ui, sample, crate::figure::Role::Parabola, look.harmonic);
-    let start = pos2(rect.left() + 32.0, rect.center().y);
+    let start = pos2(rect.left() + 34.0, rect.center().y);
     show::text_in(ui, start, Align2::LEFT_CENTER, "Parabola at rₑ", &look::plain(look::BODY), look.text);
     response.on_hover_text("½ k x² with k = V″(rₑ): what the reach is about. No fit, so no residual.");
 }
@@ -365,7 +356,7 @@ fn degree_ui(ui: &mut Ui, settings: &Settings, out: &mut Vec<Command>) {
     let Some(degree) = settings.fits.requests.iter().find_map(|r| r.degree) else { return };
     let look = Look::of(ui);
     ui.horizontal(|ui| {
-        ui.add_space(32.0 - ui.spacing().item_spacing.x);
+        ui.add_space(34.0 - ui.spacing().item_spacing.x);
         let label = ui.label(RichText::new("degree").font(look::plain(look::SECONDARY)).color(look.dim));
         let mut value = degree;
         let response = ui.add(DragValue::new(&mut value).range(2..=8).speed(0.03)).labelled_by(label.id);

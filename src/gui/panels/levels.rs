@@ -15,10 +15,10 @@ const ROW: f32 = 22.0;
 
 /// Right edges of the columns as fractions of the width, with their headings.
 const COLUMNS: [(f32, &str, &str); 5] = [
-    (0.07, "v", "Vibrational quantum number."),
-    (0.34, "E", "Energy above the minimum in cm⁻¹."),
-    (0.58, "− harmonic", "E − ωₑ(v + ½) in cm⁻¹."),
-    (0.78, "Bᵥ", "Rotational constant ℏ²⟨r⁻²⟩/(2μ) in cm⁻¹."),
+    (0.06, "v", "Vibrational quantum number."),
+    (0.33, "E", "Energy above the minimum in cm⁻¹."),
+    (0.57, "− harmonic", "E − ωₑ(v + ½) in cm⁻¹."),
+    (0.77, "Bᵥ", "Rotational constant ℏ²⟨r⁻²⟩/(2μ) in cm⁻¹."),
     (1.0, "in reach", "Share of the density inside the energy reach."),
 ];
 
@@ -91,7 +91,7 @@ fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Resp
     if shown || response.hovered() || response.has_focus() {
         ui.painter().rect_filled(rect.expand2(vec2(4.0, 0.0)), 4.0, look.raised);
     }
-    let energy = number::with_error(level.energy_per_cm, level.energy_error_per_cm, 2);
+    let energy = number::with_error_capped(level.energy_per_cm, level.energy_error_per_cm, 2);
     let cells = [
         level.v.to_string(),
         energy.clone(),

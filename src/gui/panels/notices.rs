@@ -22,34 +22,38 @@ pub(super) fn notices_panel_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command
     if rows == 0 {
         return;
     }
-    let short = ui.available_height() < 640.0;
+    let short = ui.available_height() < 700.0;
     let shown = rows.min(if short { 2 } else { MOST_ROWS });
-    Panel::bottom("notices")
+    // The size of a panel is remembered by its name: another number of rows is another panel.
+    Panel::bottom(("notices", shown))
         .exact_size(ROW * shown as f32 + 14.0)
         .resizable(false)
         .frame(Frame::new().fill(look.panel).inner_margin(Margin::symmetric(16, 6)))
         .show(ui, |ui| {
-            ScrollArea::vertical().id_salt("notices").auto_shrink(false).show(ui, |ui| {
-                ui.spacing_mut().item_spacing.y = 0.0;
-                if let Some(message) = message {
-                    let mark = if message.failure { look.stop } else { look.reach };
-                    row_ui(ui, &message.text, Mark::Round(mark), |ui| {
-                        command_button_as(
-                            ui,
-                            state,
-                            "Dismiss",
-                            Command::DismissMessage,
-                            ButtonForm::Link,
-                            out,
-                        );
-                    });
-                }
-                if let Some(study) = state.study() {
-                    for notice in notices {
-                        notice_ui(ui, state, &study.findings, notice, out);
+            ScrollArea::vertical()
+                .id_salt(("notices", state.document.focus.map(|f| (f.scan, f.column))))
+                .auto_shrink(false)
+                .show(ui, |ui| {
+                    ui.spacing_mut().item_spacing.y = 0.0;
+                    if let Some(message) = message {
+                        let mark = if message.failure { look.stop } else { look.reach };
+                        row_ui(ui, &message.text, Mark::Round(mark), |ui| {
+                            command_button_as(
+                                ui,
+                                state,
+                                "Dismiss",
+                                Command::DismissMessage,
+                                ButtonForm::Link,
+                                out,
+                            );
+                        });
                     }
-                }
-            });
+                    if let Some(study) = state.study() {
+                        for notice in notices {
+                            notice_ui(ui, state, &study.findings, notice, out);
+                        }
+                    }
+                });
         });
 }
 
@@ -67,8 +71,8 @@ fn notice_ui(ui: &mut Ui, state: &State, findings: &Findings, notice: &Notice, o
         Severity::Caution => Mark::Round(look.accent),
         Severity::Stop => Mark::Square(look.stop),
     };
-    row_ui(ui, &notice.text, mark, |ui| {
-        for (label, command) in actions(findings, notice) {
+    row_ui(ui, &show::typographic(&notice.text), mark, |ui| {
+        for (label, command) in actions(findings, notice).into_iter().take(2) {
             command_button_as(ui, state, &label, command, ButtonForm::Link, out);
         }
     });
@@ -134,7 +138,9 @@ fn actions(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
         }
         _ => {}
     }
-    if let Some(&r) = notice.at_angstrom().first() {
+    // A place to look at, where there is no better thing to do; a point is looked at before it is left out.
+    let also = actions.is_empty() || matches!(notice.code, Code::OffCurve | Code::Kink | Code::Jump);
+    if let Some(&r) = notice.at_angstrom().first().filter(|_| also) {
         actions.push((Command::PointAt(r).label(), Command::PointAt(r)));
     }
     actions

@@ -17,7 +17,11 @@ pub(super) fn empty_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         ui.add_space((0.5 * height - 190.0).max(8.0));
         ui.set_max_width(520.0);
         if let Some(problem) = &state.view.problem {
-            problem_frame(look).show(ui, |ui| refused_ui(ui, state, problem, out));
+            problem_frame(look).show(ui, |ui| {
+                ui.with_layout(egui::Layout::top_down(egui::Align::Min), |ui| {
+                    refused_ui(ui, state, problem, out)
+                });
+            });
             return;
         }
         let hovering = ui.input(|i| !i.raw.hovered_files.is_empty());
@@ -101,7 +105,7 @@ fn units_ui(ui: &mut Ui, problem: &Problem, out: &mut Vec<Command>) {
     let mut read = problem.start.read.clone();
     egui::Grid::new("units").num_columns(2).spacing([12.0, 6.0]).show(ui, |ui| {
         let label = ui.label(RichText::new("bond lengths in").color(look.dim));
-        let text = read.length_unit.map_or("as the file says", LengthUnit::name);
+        let text = read.length_unit.map_or("not chosen", LengthUnit::name);
         let response = ComboBox::from_id_salt("length unit").selected_text(text).show_ui(ui, |ui| {
             for unit in LengthUnit::ALL {
                 ui.selectable_value(&mut read.length_unit, Some(unit), unit.name());
@@ -110,7 +114,7 @@ fn units_ui(ui: &mut Ui, problem: &Problem, out: &mut Vec<Command>) {
         response.response.labelled_by(label.id);
         ui.end_row();
         let label = ui.label(RichText::new("energies in").color(look.dim));
-        let text = read.energy_unit.map_or("as the file says", EnergyUnit::name);
+        let text = read.energy_unit.map_or("not chosen", EnergyUnit::name);
         let response = ComboBox::from_id_salt("energy unit").selected_text(text).show_ui(ui, |ui| {
             for unit in EnergyUnit::ALL {
                 ui.selectable_value(&mut read.energy_unit, Some(unit), unit.name());

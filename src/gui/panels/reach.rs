@@ -71,7 +71,7 @@ fn temperature_ui(ui: &mut Ui, findings: &Findings) {
     let rows = [
         ("partition function within 1 %", t.partition_function),
         ("mean energy within 1 % of kT", t.mean_energy),
-        ("mean-square displacement within 5 %", t.mean_square_x),
+        ("⟨x²⟩ within 5 %", t.mean_square_x),
     ];
     if rows.iter().all(|r| r.1.is_none()) {
         return;
@@ -79,8 +79,11 @@ fn temperature_ui(ui: &mut Ui, findings: &Findings) {
     show::rule(ui);
     show::heading(ui, "By temperature", "");
     for (name, limit) in rows {
-        let value =
-            limit.map_or_else(|| number::NONE.to_owned(), |k| format!("up to {}", number::fixed(k, 0)));
+        let value = match limit {
+            None => number::NONE.to_owned(),
+            Some(k) if k < 0.5 => "not even at 0".to_owned(),
+            Some(k) => format!("up to {}", number::fixed(k, 0)),
+        };
         Row::new(name, value, "K").ui(ui);
     }
 }

@@ -1,20 +1,23 @@
 //! The read-out of the level shown, in whichever corner of the plot hides least.
 
+use super::Stage;
 use super::map::Map;
 use crate::figure::geometry::{Bounds, clip_line};
 use crate::figure::{Role, Shape, number};
 use crate::gui::look::{self, Look};
-use crate::gui::show::text_in;
+use crate::gui::show::{elided, text_in};
 use crate::gui::state::{State, Study};
 use crate::radial::Level;
 use eframe::egui;
 use egui::{Align2, Color32, Rect, Stroke, StrokeKind, Ui, pos2, vec2};
 
-const WIDTH: f32 = 222.0;
-const ROW: f32 = 19.0;
-const PAD: f32 = 12.0;
+const WIDTH: f32 = 204.0;
+const ROW: f32 = 18.0;
+const PAD: f32 = 10.0;
+/// More line than this under the card, and one line of text below the plot takes its place.
+const MOST_COVERED: f32 = 150.0;
 
-pub(super) fn card_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
+pub(super) fn card_ui(ui: &Ui, state: &State, study: &Study, stage: &Stage, map: &Map) {
     let look = Look::of(ui);
     let Some(level) = state.shown_level().and_then(|v| study.findings.levels.iter().find(|l| l.v == v))
     else {
@@ -22,10 +25,11 @@ pub(super) fn card_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
     };
     let rows = rows(level, look);
     let size = vec2(WIDTH, ROW * (rows.len() as f32 + 1.0) + 2.0 * PAD - 2.0);
-    if size.x + 40.0 > map.rect.width() || size.y + 40.0 > map.rect.height() {
+    let roomy = size.x + 40.0 < map.rect.width() && size.y + 40.0 < map.rect.height();
+    let Some(rect) = roomy.then(|| place(study, map, size)).flatten() else {
+        line_ui(ui, level, stage);
         return;
-    }
-    let rect = place(study, map, size);
+    };
     ui.painter().rect(
         rect,
         f32::from(look::CORNER) + 2.0,
@@ -44,7 +48,7 @@ pub(super) fn card_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
         &look::semibold(look::BODY),
         look.accent,
     );
-    let energy = number::with_error(level.energy_per_cm, level.energy_error_per_cm, 2);
+    let energy = number::with_error_capped(level.energy_per_cm, level.energy_error_per_cm, 2);
     text_in(ui, pos2(right, y), Align2::RIGHT_CENTER, &format!("{energy} cm⁻¹"), &figures, look.text);
     for (label, value, color) in rows {
         y += ROW;
@@ -73,11 +77,24 @@ fn rows(level: &Level, look: &Look) -> Vec<(&'static str, String, Color32)> {
     rows
 }
 
-/// The corner in which the card covers the least of curve and fits.
-fn place(study: &Study, map: &Map, size: egui::Vec2) -> Rect {
+/// The same in one line between plot and strip, as far as there is room.
+fn line_ui(ui: &Ui, level: &Level, stage: &Stage) {
+    let look = Look::of(ui);
+    let energy = number::fixed(level.energy_per_cm, 2);
+    let harmonic = number::signed(-level.minus_harmonic_per_cm, 2);
+    let beyond = number::percent(level.forbidden_probability, 1);
+    let text = format!("v = {}: {energy} cm⁻¹, harmonic {harmonic}, beyond turning points {beyond}", level.v);
+    let at = pos2(stage.plot.left() + 2.0, (stage.plot.bottom() + stage.strip.top()) / 2.0);
+    let over = ui.input(|i| i.pointer.hover_pos()).is_some_and(|p| stage.plot.union(stage.strip).contains(p));
+    let room = stage.plot.width() - if over { 190.0 } else { 4.0 };
+    elided(ui, at, room, &text, look::plain(look::SMALL), look.accent);
+}
+
+/// The corner in which the card covers the least of curve and fits; none when that is too much.
+fn place(study: &Study, map: &Map, size: egui::Vec2) -> Option<Rect> {
     let inner = map.rect.shrink(12.0);
-    // Above the grips of the window edges, below the word at the top.
-    let (top, bottom) = (inner.top() + 14.0, inner.bottom() - 8.0);
+    // Above the read-outs of the window edges, below the word at the top.
+    let (top, bottom) = (inner.top() + 14.0, inner.bottom() - 26.0);
     let corners = [
         pos2(inner.right() - size.x, bottom - size.y),
         pos2(inner.right() - size.x, (top + bottom - size.y) / 2.0),
@@ -85,9 +102,13 @@ fn place(study: &Study, map: &Map, size: egui::Vec2) -> Rect {
         pos2(inner.right() - size.x, top),
         pos2(inner.left(), top),
     ];
-    let cost = |min: &egui::Pos2| covered(study, map, Rect::from_min_size(*min, size));
-    let best = corners.into_iter().min_by(|a, b| cost(a).total_cmp(&cost(b))).unwrap_or(corners[0]);
-    Rect::from_min_size(best, size)
+    corners
+        .into_iter()
+        .map(|min| Rect::from_min_size(min, size))
+        .map(|rect| (rect, covered(study, map, rect)))
+        .min_by(|a, b| a.1.total_cmp(&b.1))
+        .filter(|(_, covered)| *covered <= MOST_COVERED)
+        .map(|(rect, _)| rect)
 }
 
 /// Length of line under a rectangle, the scanned curve counting most.

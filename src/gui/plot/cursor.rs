@@ -28,6 +28,6 @@ pub(super) fn cursor_ui(ui: &Ui, stage: &Stage, map: &Map, strip: &Map) {
     } else if strip.bounds.y.1 > 0.0 {
         text.push_str("   ");
     }
-    let at = pos2(stage.plot.left() + 2.0, (stage.plot.bottom() + stage.strip.top()) / 2.0);
-    text_in(ui, at, Align2::LEFT_CENTER, text.trim_end(), &look::figures(look::SMALL), look.dim);
+    let at = pos2(stage.plot.right() - 2.0, (stage.plot.bottom() + stage.strip.top()) / 2.0);
+    text_in(ui, at, Align2::RIGHT_CENTER, text.trim_end(), &look::figures(look::SMALL), look.dim);
 }

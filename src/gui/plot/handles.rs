@@ -24,7 +24,7 @@ const SNAP: f32 = 7.0;
 /// One step of the arrow keys in angstrom.
 const STEP: f64 = 0.01;
 /// Height of the middle of a grip above the bottom of the plot.
-const GRIP_ABOVE: f32 = 44.0;
+const GRIP_ABOVE: f32 = 19.0;
 
 pub(super) fn window_edges_ui(
     ui: &mut Ui,
@@ -56,7 +56,7 @@ fn edge_ui(
     let grip = pos2(x, stage.plot.bottom() - GRIP_ABOVE);
     let hit = if seen {
         Rect::from_center_size(pos2(x, stage.plot.center().y), vec2(8.0, stage.plot.height()))
-            .union(Rect::from_center_size(grip, vec2(look::GRAB, 34.0)))
+            .union(Rect::from_center_size(grip, vec2(look::GRAB, 30.0)))
     } else {
         Rect::from_center_size(grip, vec2(look::GRAB + 6.0, 34.0))
     };
@@ -186,7 +186,7 @@ fn draw(
     } else {
         let width = if lively { 2.0 } else { 1.4 };
         ui.painter().vline(grip.x, stage.plot.y_range(), Stroke::new(width, color));
-        let size = if lively { vec2(9.0, 34.0) } else { vec2(7.0, 30.0) };
+        let size = if lively { vec2(9.0, 28.0) } else { vec2(7.0, 26.0) };
         ui.painter().rect_filled(Rect::from_center_size(grip, size), 3.0, color);
         for offset in [-4.0, 0.0, 4.0] {
             let line = [pos2(grip.x - 1.5, grip.y + offset), pos2(grip.x + 1.5, grip.y + offset)];

@@ -42,6 +42,8 @@ pub fn add_lines(plot: &mut PlotUi<'_>, series: &Series, index: usize, bounds: &
                 .color(color.gamma_multiply(strength))
                 .width(width(style))
                 .style(plot_style(style))
+                // Bands are measured upwards, which makes steep lines thin.
+                .allow_band(false)
                 .allow_hover(false);
             plot.line(item);
         }

@@ -75,7 +75,7 @@ fn ties_ui(ui: &Ui, ladders: &Ladders, stage: &Stage, map: &Map) {
         let (from, to) = (column(stage, index, count).max, column(stage, index + 1, count).min);
         let rungs = pair[0].energies_per_cm.iter().zip(&pair[1].energies_per_cm).enumerate();
         for (v, (&a, &b)) in rungs {
-            let seen = map.sees_y(a) || map.sees_y(b);
+            let seen = map.sees_y(a) && map.sees_y(b);
             if a.is_finite() && b.is_finite() && seen && roomy(&pair[1].energies_per_cm, v, map) {
                 painter
                     .line_segment([pos2(from, map.y(a)), pos2(to, map.y(b))], Stroke::new(1.0, look.faint));

@@ -2,11 +2,10 @@
 
 use super::map::Map;
 use crate::figure::LevelPicture;
-use crate::gui::look::{self, Look};
-use crate::gui::show::text_in;
+use crate::gui::look::Look;
 use crate::gui::state::{State, Study};
 use eframe::egui;
-use egui::{Align2, Color32, Stroke, Ui, pos2};
+use egui::{Color32, Stroke, Ui, pos2};
 use egui_plot::{FilledArea, Line, PlotPoints, PlotUi};
 
 /// Densities are drawn where levels are at least this far apart on the screen.
@@ -109,10 +108,5 @@ pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
     painter.line_segment([pos2(left, y), pos2(right, y)], Stroke::new(2.0, look.accent));
     for x in [left, right] {
         painter.line_segment([pos2(x, y - 5.0), pos2(x, y + 5.0)], Stroke::new(2.0, look.accent));
-    }
-    let name = format!("v = {}", level.v);
-    let at = pos2(right + 9.0, y);
-    if at.x + 34.0 < map.rect.right() {
-        text_in(ui, at, Align2::LEFT_CENTER, &name, &look::semibold(look::SMALL), look.accent);
     }
 }

@@ -33,7 +33,7 @@ pub(super) fn main_plot_ui(
     points::points_ui(ui, state, &study.pictures.points, &map, hit.point);
     levels::shown_level_ui(ui, state, study, &map);
     axes::frame_ui(ui, &map);
-    card::card_ui(ui, state, study, &map);
+    card::card_ui(ui, state, study, stage, &map);
     name_ui(&response, study);
     work_ui(ui, state, study, &response, &hit, &map, out);
     map

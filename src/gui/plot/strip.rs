@@ -77,7 +77,7 @@ fn gauge_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
     });
     let half = (6.0 * tolerance.unwrap_or(5.0)).clamp(1.0, 120.0);
     let map = Map { rect: stage.strip, bounds: Bounds { x: main.bounds.x, y: (-half, half) } };
-    let y = axes::ticks(map.bounds.y, map.rect.height(), 34.0);
+    let y = axes::ticks(map.bounds.y, map.rect.height(), 22.0);
     axes::grid_ui(ui, &map, &axes::x_ticks(&map), &y);
     let painter = ui.painter().with_clip_rect(map.rect);
     if let Some(t) = tolerance {
@@ -137,7 +137,8 @@ fn residuals_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
         .collect();
     let smallest = sizes.iter().copied().fold(f64::INFINITY, f64::min);
     let largest = sizes.iter().copied().fold(0.0, f64::max);
-    let unit = if smallest.is_finite() { (0.5 * smallest).max(1e-6) } else { 1.0 };
+    // A fit a thousand times better than another one is a flat line beside it, as it should be.
+    let unit = if smallest.is_finite() { (0.5 * smallest).max(largest / 300.0).max(1e-9) } else { 1.0 };
     let bend = |d: f64| (d / unit).asinh();
     for series in &mut figure.series {
         if let Shape::Line(points) | Shape::Points(points) = &mut series.shape {
