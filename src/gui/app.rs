@@ -81,6 +81,11 @@ impl App {
         }
     }
 
+    /// Asks for the study that the state needs and takes the answers that have come, as every frame does.
+    pub fn compute_now(&mut self) {
+        self.exchange_studies();
+    }
+
     fn carry_out(&mut self, effect: Effect, ctx: &egui::Context) {
         match effect {
             Effect::AskOpen => self.files.ask_open(),

@@ -106,7 +106,13 @@ pub fn elided(ui: &Ui, left_center: egui::Pos2, room: f32, text: &str, font: Fon
 
 /// Text of the numerics, which is plain enough for any terminal, as the window writes units.
 pub fn typographic(text: &str) -> String {
-    text.replace("cm-1", "cm⁻¹").replace(" angstrom", " Å")
+    let mut text = text.replace("cm-1", "cm⁻¹").replace(" angstrom", " Å");
+    // Options of the command line mean nothing here.
+    while let Some(start) = text.find(" (--") {
+        let Some(length) = text[start..].find(')') else { break };
+        text.replace_range(start..=start + length, "");
+    }
+    text
 }
 
 /// A heading of a block, with dim words at the right.
@@ -228,5 +234,20 @@ pub fn styled_line(painter: &egui::Painter, points: &[egui::Pos2], style: LineSt
         LineStyle::LongDashed => dashes(11.0, 4.0),
         LineStyle::ShortDashed => dashes(3.0, 3.0),
         LineStyle::Dotted => dashes(2.0, 3.0),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn units_are_set_and_options_left_out() {
+        assert_eq!(typographic("11 cm-1 at 1.44 angstrom"), "11 cm⁻¹ at 1.44 Å");
+        assert_eq!(
+            typographic("name the atoms (--atoms) or a mass (--reduced-mass)."),
+            "name the atoms or a mass."
+        );
+        assert_eq!(typographic("left open (--"), "left open (--");
     }
 }

@@ -6,3 +6,4 @@ mod by_label;
 mod commands;
 mod frames;
 mod harness;
+mod pictures;

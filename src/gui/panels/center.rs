@@ -10,6 +10,9 @@ use crate::gui::state::{Preset, State, Zoom};
 use eframe::egui;
 use egui::{Align, Layout, Rect, RichText, Sense, Ui, vec2};
 
+/// Width that the names of the regions take.
+const ROOM_FOR_REGIONS: f32 = 360.0;
+
 pub(super) fn center_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     // A window of no size has no room for anything.
     if ui.available_width() < 120.0 || ui.available_height() < 120.0 {
@@ -49,6 +52,21 @@ fn sentence_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     }
 }
 
+/// The regions as a menu, where there is no room for their names.
+fn regions_menu_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    let shown = match state.zoom() {
+        Zoom::Preset(preset) => preset.name(),
+        Zoom::Free(_) => "view",
+    };
+    ui.menu_button(shown, |ui| {
+        for preset in Preset::ALL {
+            if command_button(ui, state, Command::Zoom(preset), ButtonForm::Quiet, out).clicked() {
+                ui.close();
+            }
+        }
+    });
+}
+
 /// Legend at the left as far as there is room, regions at the right.
 fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let look = Look::of(ui);
@@ -59,6 +77,10 @@ fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         |ui| {
             ui.spacing_mut().item_spacing.x = 14.0;
             ui.spacing_mut().button_padding.x = 0.0;
+            if ui.available_width() < ROOM_FOR_REGIONS {
+                regions_menu_ui(ui, state, out);
+                return;
+            }
             for preset in Preset::ALL.into_iter().rev() {
                 let front = state.zoom() == Zoom::Preset(preset);
                 let form = if front { ButtonForm::Link } else { ButtonForm::Quiet };

@@ -65,7 +65,9 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         return;
     }
     let left_open = state.view.panels.left.unwrap_or(width >= ROOM_FOR_LEFT);
-    let right_open = state.view.panels.right.unwrap_or(width >= ROOM_FOR_RIGHT);
+    // A left panel opened by hand in a narrow window takes the room of the right one.
+    let crowded = left_open && width < ROOM_FOR_LEFT;
+    let right_open = state.view.panels.right.unwrap_or(width >= ROOM_FOR_RIGHT && !crowded);
     if left_open {
         Panel::left("left")
             .exact_size(212.0)

@@ -32,6 +32,7 @@ pub(super) fn notices_panel_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command
         .show(ui, |ui| {
             ScrollArea::vertical()
                 .id_salt(("notices", state.document.focus.map(|f| (f.scan, f.column))))
+                .min_scrolled_height(0.0)
                 .auto_shrink(false)
                 .show(ui, |ui| {
                     ui.spacing_mut().item_spacing.y = 0.0;

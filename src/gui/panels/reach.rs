@@ -55,7 +55,7 @@ fn levels_ui(ui: &mut Ui, findings: &Findings) {
         }
     }
     show::rule(ui);
-    show::heading(ui, "Density inside the energy reach", "beyond the turning points");
+    show::heading(ui, "Density in the reach", "beyond turning points");
     for level in findings.levels.iter().take(8) {
         let inside = level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1));
         Row::new(format!("v = {}", level.v), inside, "")

@@ -87,12 +87,15 @@ fn ties_ui(ui: &Ui, ladders: &Ladders, stage: &Stage, map: &Map) {
 /// Quantum numbers at the numerical levels, and the mark of the first one out of tolerance.
 fn numbers_ui(ui: &Ui, state: &State, ladders: &Ladders, stage: &Stage, map: &Map) {
     let look = Look::of(ui);
-    let first = &ladders.columns[0].energies_per_cm;
+    let (first, next) =
+        (&ladders.columns[0].energies_per_cm, ladders.columns.get(1).map(|c| &c.energies_per_cm));
     let mut last_y = f32::INFINITY;
     for (v, &energy) in first.iter().enumerate() {
-        if !map.sees_y(energy) {
+        // Where the harmonic rung has left the view, the number stands at the numerical one.
+        let beside = next.and_then(|n| n.get(v).copied());
+        let Some(energy) = [Some(energy), beside].into_iter().flatten().find(|e| map.sees_y(*e)) else {
             continue;
-        }
+        };
         let y = map.y(energy);
         let marked = ladders.first_outside == Some(v);
         let shown = state.shown_level() == Some(v);

@@ -105,12 +105,20 @@ fn reach_band_ui(ui: &Ui, study: &Study, stage: &Stage, map: &Map) {
             ui.painter().vline(x, band.y_range(), egui::Stroke::new(1.0, look.reach.gamma_multiply(0.75)));
         }
     }
-    let font = look::plain(look::SMALL);
-    let galley = ui.painter().layout_no_wrap("reach".to_owned(), font, look.reach);
+}
+
+/// The name of the band, over what is drawn there.
+fn reach_label_ui(ui: &Ui, study: &Study, stage: &Stage, map: &Map) {
+    let Some((from, to)) = reach_ends(study, map) else { return };
+    let look = Look::of(ui);
+    let (left, right) = (map.x(from), map.x(to));
+    let galley = ui.painter().layout_no_wrap("reach".to_owned(), look::plain(look::SMALL), look.reach);
     let size = galley.size();
     let inside = right - left > size.x + 12.0;
     let x = if inside { left + 6.0 } else { left - 6.0 - size.x };
     if x > stage.plot.left() {
-        ui.painter().galley(pos2(x, stage.plot.top() + 6.0), galley, look.reach);
+        let rect = Rect::from_min_size(pos2(x, stage.plot.top() + 6.0), size);
+        ui.painter().rect_filled(rect.expand2(egui::vec2(3.0, 1.0)), 3.0, look.panel.gamma_multiply(0.8));
+        ui.painter().galley(rect.min, galley, look.reach);
     }
 }
