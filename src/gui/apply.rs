@@ -2,7 +2,8 @@
 
 use super::command::Command;
 use super::state::{
-    CurveKey, Document, LoadedScan, Message, Outcome, PathPurpose, PathWindow, Problem, State, Study, Zoom,
+    CurveKey, Document, LoadedScan, Message, Outcome, PathPurpose, PathWindow, Preset, Problem, State, Study,
+    Zoom,
 };
 use crate::figure::geometry::Bounds;
 use crate::settings::{SetAside, Settings};
@@ -99,6 +100,7 @@ fn change_document(command: &Command, state: &mut State) -> bool {
         Command::CloseScan => close_scan(state),
         Command::SetWindow { window, resting } => {
             if window.from.is_finite() && window.to.is_finite() && window.from < window.to {
+                hold_view(state);
                 edit(state, "move the fit window", !resting, |s| s.fits.window = Some(*window));
             }
         }
@@ -140,6 +142,15 @@ fn change_document(command: &Command, state: &mut State) -> bool {
         _ => return false,
     }
     true
+}
+
+/// The view of the fit window follows the window, but not while its edges move under the hand.
+fn hold_view(state: &mut State) {
+    if state.zoom() == Zoom::Preset(Preset::FitWindow)
+        && let (Some(key), Some(bounds)) = (state.document.focus, state.bounds())
+    {
+        state.view.zoom.insert(key, Zoom::Free(bounds));
+    }
 }
 
 /// Changes the settings of the focused curve, noted in the history when they did change.
@@ -251,7 +262,10 @@ fn findings_name(state: &State) -> String {
 
 /// Takes a scan that was read into the document and looks at its first curve.
 pub fn take_scan(mut loaded: LoadedScan, state: &mut State) {
-    state.history.note("open a scan", &state.document, false);
+    // What the window starts with is not a step that could be taken back.
+    if state.next_scan > 0 {
+        state.history.note("open a scan", &state.document, false);
+    }
     loaded.key = state.next_scan;
     state.next_scan += 1;
     let document: &mut Document = &mut state.document;

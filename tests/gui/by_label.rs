@@ -66,6 +66,23 @@ fn edges_move_by_keyboard_and_by_assistive_technology() {
 }
 
 #[test]
+fn dragging_the_tolerance_line_widens_the_reach() {
+    let mut window = open_sample();
+    let reach = |window: &Window| {
+        let study = state(window).study().expect("a study");
+        study.findings.reach.as_ref().and_then(|r| r.energy.x_plus_bohr).expect("an outer end")
+    };
+    let before = reach(&window);
+    let name = "Tolerance of the reach in percent";
+    assert!((edge_value(&window, name) - 5.0).abs() < 1e-9);
+    let grip = window.get_by_role_and_label(Role::Slider, name).rect().right_center() - vec2(26.0, 0.0);
+    drag(&mut window, grip, grip - vec2(0.0, 12.0));
+    assert!(edge_value(&window, name) > 6.0);
+    assert!(reach(&window) > 1.2 * before);
+    assert_eq!(state(&window).history.undo_name(), Some("change the tolerance"));
+}
+
+#[test]
 fn findings_are_exported_and_nothing_is_replaced_unasked() {
     let folder = tempfile::tempdir().expect("a folder");
     let path = folder.path().join("lih.findings.json");

@@ -60,6 +60,32 @@ fn two_gestures_are_two_steps() {
 }
 
 #[test]
+fn the_view_of_the_fit_window_holds_still_while_an_edge_is_dragged() {
+    let mut state = with_sample();
+    compute(&mut state);
+    apply(Command::Zoom(Preset::FitWindow), &mut state);
+    let before = state.bounds();
+    for to in [1.9, 2.0, 2.1] {
+        apply(Command::SetWindow { window: window(1.3, to), resting: false }, &mut state);
+        compute(&mut state);
+        assert_eq!(state.bounds(), before);
+    }
+}
+
+#[test]
+fn what_the_window_starts_with_is_no_step_to_take_back() {
+    let mut state = with_sample();
+    assert_eq!(state.history.undo_name(), None);
+    let sample = &SAMPLES[1];
+    let read = understand(sample.file_name, Arc::from(sample.bytes), None, Settings::default());
+    let Done::Scan(loaded) = read else { panic!("a scan: {read:?}") };
+    take_scan(loaded, &mut state);
+    assert_eq!(state.history.undo_name(), Some("open a scan"));
+    apply(Command::Undo, &mut state);
+    assert_eq!(state.document.scans.len(), 1);
+}
+
+#[test]
 fn values_that_make_no_sense_change_nothing() {
     let mut state = with_sample();
     let before = state.document.settings.clone();

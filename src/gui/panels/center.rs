@@ -1,6 +1,5 @@
 //! The middle: sentence, regions, plot, strip and ladders.
 
-use super::notices::stale_mark_ui;
 use crate::figure::Role;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
@@ -43,7 +42,6 @@ fn sentence_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         if !sentence.why.is_empty() {
             command_button(ui, state, Command::ToggleWhy, ButtonForm::Link, out);
         }
-        stale_mark_ui(ui, state);
     });
     if state.view.why_open {
         for reason in &sentence.why {

@@ -49,6 +49,11 @@ pub(super) fn constants_ui(ui: &mut Ui, state: &State, findings: &Findings, out:
         command_button(ui, state, Command::CopyConstants, ButtonForm::Framed, out);
         show::command_button_as(ui, state, "Findings as JSON …", Command::Export, ButtonForm::Framed, out);
     });
+    ui.add_space(12.0);
+    show::note(
+        ui,
+        "V = ½ k x² with k = V″(rₑ). Constants at the left from derivatives [Dunham 1932], at the right from the numerical levels. Hover a row for its formula and for where its error comes from.",
+    );
 }
 
 /// How the error of an estimate was obtained, in words.

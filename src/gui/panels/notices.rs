@@ -146,15 +146,3 @@ fn actions(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
     }
     actions
 }
-
-/// A short line that says that what is seen is not up to date, or why it will not be.
-pub(super) fn stale_mark_ui(ui: &mut Ui, state: &State) {
-    let look = Look::of(ui);
-    if let Some(failure) = state.failure() {
-        let text =
-            egui::RichText::new("failed; older result shown").font(look::plain(look::SMALL)).color(look.stop);
-        ui.label(text).on_hover_text(failure);
-    } else if state.is_stale() {
-        show::note(ui, "computing …");
-    }
-}

@@ -12,6 +12,7 @@ mod main_plot;
 mod map;
 mod points;
 mod strip;
+mod tolerance;
 
 pub use points::in_window;
 
@@ -80,7 +81,23 @@ pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command
     }
     handles::window_edges_ui(ui, state, study, &stage, &map, out);
     cursor::cursor_ui(ui, &stage, &map, &strip);
+    stale_mark_ui(ui, state, &stage);
     ui.allocate_rect(whole, egui::Sense::hover());
+}
+
+/// Says that what is seen is older than the settings, in a corner, so that nothing moves when it comes and goes.
+fn stale_mark_ui(ui: &Ui, state: &State, stage: &Stage) {
+    let look = Look::of(ui);
+    let (text, color) = match state.failure() {
+        Some(_) => ("failed: older result shown", look.stop),
+        None if state.is_stale() => ("computing …", look.dim),
+        None => return,
+    };
+    let galley = ui.painter().layout_no_wrap(text.to_owned(), look::plain(look::SMALL), color);
+    let size = galley.size();
+    let rect = Rect::from_min_size(pos2(stage.plot.right() - size.x - 8.0, stage.plot.top() + 7.0), size);
+    ui.painter().rect_filled(rect.expand2(egui::vec2(4.0, 2.0)), 3.0, look.panel);
+    ui.painter().galley(rect.min, galley, color);
 }
 
 /// The ends of the reach on the bond-length axis, open ends at the border of the view.

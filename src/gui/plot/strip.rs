@@ -1,6 +1,7 @@
 //! The strip under the plot: gauge or residuals on the plot's bond-length axis.
 
 use super::map::Map;
+use super::tolerance::tolerance_ui;
 use super::{Stage, axes, items};
 use crate::figure::geometry::Bounds;
 use crate::figure::{Figure, Role, Shape, number};
@@ -26,6 +27,9 @@ pub(super) fn strip_ui(
         Strip::Residuals => residuals_ui(ui, study, stage, main),
     };
     axes::frame_ui(ui, &map);
+    if state.view.strip == Strip::Gauge {
+        tolerance_ui(ui, state, &map, out);
+    }
     tabs_ui(ui, state, stage, out);
     map
 }
@@ -75,7 +79,7 @@ fn gauge_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
         (Role::Tolerance, Shape::Level(t)) => Some(t.abs()),
         _ => None,
     });
-    let half = (6.0 * tolerance.unwrap_or(5.0)).clamp(1.0, 120.0);
+    let half = half_range(tolerance.unwrap_or(5.0));
     let map = Map { rect: stage.strip, bounds: Bounds { x: main.bounds.x, y: (-half, half) } };
     let y = axes::ticks(map.bounds.y, map.rect.height(), 22.0);
     axes::grid_ui(ui, &map, &axes::x_ticks(&map), &y);
@@ -93,6 +97,12 @@ fn gauge_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
     let decimals = y.decimals;
     axes::y_labels_ui(ui, &map, &y, |v| format!("{} %", number::signed(v, decimals)));
     map
+}
+
+/// Half the range of the gauge in percent, about six tolerances, in coarse steps: the axis must not run away
+/// from a tolerance line that is being dragged.
+fn half_range(tolerance_percent: f64) -> f64 {
+    [3.0, 12.0, 30.0, 60.0, 120.0, 300.0].into_iter().find(|h| *h >= 3.0 * tolerance_percent).unwrap_or(300.0)
 }
 
 /// The zero-point amplitude as a bar near the bottom, with its name where there is room.
