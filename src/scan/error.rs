@@ -148,7 +148,7 @@ pub enum ScanError {
         found: String,
     },
     /// The unit of the bond lengths is not stated.
-    #[error("the unit of the bond lengths (column {column}) is not stated{}; give it with --length-unit (angstrom, bohr, pm, nm) or in the header, as in R_angstrom", unknown_unit(found_unit.as_deref()))]
+    #[error("the unit of the bond lengths ({}) is not stated{}; give it with --length-unit (angstrom, bohr, pm, nm) or in the header, as in R_angstrom", named(column), unknown_unit(found_unit.as_deref()))]
     LengthUnitMissing {
         /// Name of the length column.
         column: String,
@@ -156,7 +156,7 @@ pub enum ScanError {
         found_unit: Option<String>,
     },
     /// The unit of an energy column is not stated.
-    #[error("the unit of the energies (column {column}) is not stated{}; give it with --energy-unit (hartree, eV, meV, kJ/mol, kcal/mol, cm-1) or in the header, as in E_hartree", unknown_unit(found_unit.as_deref()))]
+    #[error("the unit of the energies ({}) is not stated{}; give it with --energy-unit (hartree, eV, meV, kJ/mol, kcal/mol, cm-1) or in the header, as in E_hartree", named(column), unknown_unit(found_unit.as_deref()))]
     EnergyUnitMissing {
         /// Name of the energy column.
         column: String,
@@ -391,6 +391,11 @@ fn no_bond(chosen: &Option<[usize; 2]>) -> String {
         None => "no bond is chosen".to_owned(),
         Some([a, b]) => format!("{a},{b} is no bond"),
     }
+}
+
+/// A column in a sentence; one without a header is called by its number already.
+fn named(column: &str) -> String {
+    if column.starts_with("column ") { column.to_owned() } else { format!("column {column}") }
 }
 
 fn unknown_unit(found: Option<&str>) -> String {
