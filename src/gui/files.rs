@@ -216,13 +216,17 @@ pub fn understand(file_name: &str, bytes: Arc<[u8]>, path: Option<PathBuf>, star
 /// The refusal in words of the window, where the reader's own words name options of the command line.
 fn words(error: &ScanError) -> String {
     let remedy = "Choose it here, or write it into the header of the file";
+    // A column without a header is called by its number already: `column 1`.
+    let plain = |column: &str| column.strip_prefix("column ").unwrap_or(column).to_owned();
     match error {
         ScanError::LengthUnitMissing { column, .. } => {
+            let column = plain(column);
             format!(
                 "The unit of the bond lengths (column {column}) is not stated. {remedy}, as in R_angstrom."
             )
         }
         ScanError::EnergyUnitMissing { column, .. } => {
+            let column = plain(column);
             format!("The unit of the energies (column {column}) is not stated. {remedy}, as in E_hartree.")
         }
         other => {

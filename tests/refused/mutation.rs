@@ -11,8 +11,30 @@ const INPUTS: usize = 5_000;
 
 /// Pieces that mean something to the reader.
 const PIECES: [&[u8]; 24] = [
-    b"\n", b"\r", b"\r\n", b",", b";", b"\t", b"  ", b"#", b"!", b"\"", b"-", b"e", b"D+999", b"NaN", b"(", b"]", b"/",
-    b"_A", b"E_hartree", b"\xff\xfe", b"\xef\xbb\xbf", b"\xc3", b"\xe2\x88\x92", b"0,5",
+    b"\n",
+    b"\r",
+    b"\r\n",
+    b",",
+    b";",
+    b"\t",
+    b"  ",
+    b"#",
+    b"!",
+    b"\"",
+    b"-",
+    b"e",
+    b"D+999",
+    b"NaN",
+    b"(",
+    b"]",
+    b"/",
+    b"_A",
+    b"E_hartree",
+    b"\xff\xfe",
+    b"\xef\xbb\xbf",
+    b"\xc3",
+    b"\xe2\x88\x92",
+    b"0,5",
 ];
 
 /// Generator of pseudo-random numbers (G. Marsaglia, Xorshift RNGs, J. Stat. Softw. 8 (14), 2003).
