@@ -34,6 +34,11 @@ pub struct LevelSettings {
     pub lean_asymptote_fraction: f64,
     /// moves it by more than this, in cm⁻¹.
     pub lean_shift_per_cm: f64,
+    /// Rotational quantum numbers whose levels are listed beside those without rotation; also those of the
+    /// quasi-bound levels.
+    pub rotation: Vec<u32>,
+    /// Λ of the electronic state: X = J(J + 1) − Λ² for the levels with rotation, and no J below Λ.
+    pub lambda: u32,
     /// Highest v that enters the constants from levels.
     pub constants_highest_v: usize,
     /// Degree in (v + ½) of the constants from levels.
@@ -49,9 +54,28 @@ impl Default for LevelSettings {
             lean_c_n_fraction: 0.2,
             lean_asymptote_fraction: 0.01,
             lean_shift_per_cm: 0.1,
+            rotation: Vec::new(),
+            lambda: 0,
             constants_highest_v: 4,
             constants_degree: 3,
         }
+    }
+}
+
+impl LevelSettings {
+    /// X = J(J + 1) − Λ²; 0 for the levels without rotation.
+    pub fn rotation_x(&self, j: u32) -> f64 {
+        let (j, lambda) = (f64::from(j), f64::from(self.lambda));
+        if j == 0.0 { 0.0 } else { (j * (j + 1.0) - lambda * lambda).max(0.0) }
+    }
+
+    /// The J with rotation asked for: ascending, each once, none below Λ.
+    pub fn rotating(&self) -> Vec<u32> {
+        let mut all: Vec<u32> =
+            self.rotation.iter().copied().filter(|&j| j > 0 && j >= self.lambda).collect();
+        all.sort_unstable();
+        all.dedup();
+        all
     }
 }
 

@@ -270,12 +270,13 @@ fn best(data: &Data, recipes: &[Recipe]) -> Option<(Interpolant, usize)> {
 fn leave_one_out_hartree(data: &Data, recipe: &Recipe) -> f64 {
     let n = data.r.len();
     let step = n.div_ceil(LEAVE_ONE_OUT_POINTS);
+    let rest = recipe.rest(&data.r, &data.e);
     let (mut sum, mut count) = (0.0, 0);
     for i in (2..n - 2).step_by(step) {
         let (from, to) =
             (i.saturating_sub(LEAVE_ONE_OUT_NEIGHBOURS), n.min(i + LEAVE_ONE_OUT_NEIGHBOURS + 1));
         let without = |v: &[f64]| -> Vec<f64> { [&v[from..i], &v[i + 1..to]].concat() };
-        let error = recipe.through(&without(&data.r), &without(&data.e)).energy(data.r[i]) - data.e[i];
+        let error = recipe.miss(&without(&data.r), &without(&rest), (data.r[i], rest[i]));
         sum += error * error;
         count += 1;
     }

@@ -34,14 +34,37 @@ impl Recipe {
 
     /// The interpolant through `energies` (one a bond length, on the base's zero).
     pub(crate) fn solve(&self, factors: &SplineFactors, r_bohr: &[f64], energies: &[f64]) -> Interpolant {
-        let rest: Vec<f64> = r_bohr
-            .iter()
-            .zip(energies)
-            .map(|(&r, &e)| e - self.base.map_or(0.0, |b| b.energy_hartree(r)))
-            .collect();
+        let rest = self.rest(r_bohr, energies);
         let pieces = factors.solve(&rest);
         let values = (self.degree == 3).then(|| stroke_bezier(&pieces, &rest, |i| self.abscissa(r_bohr[i])));
         Interpolant { recipe: *self, pieces, values }
+    }
+
+    /// As [`Recipe::solve`], made only for bond lengths in [`from`, `to`]; a cubic is made whole.
+    pub(crate) fn solve_between(
+        &self,
+        factors: &SplineFactors,
+        (r_bohr, energies): (&[f64], &[f64]),
+        (from, to): (f64, f64),
+    ) -> Interpolant {
+        if self.degree == 3 {
+            return self.solve(factors, r_bohr, energies);
+        }
+        let rest = self.rest(r_bohr, energies);
+        let pieces = factors.solve_between(&rest, self.abscissa(from), self.abscissa(to));
+        Interpolant { recipe: *self, pieces, values: None }
+    }
+
+    /// What the base leaves of the energies.
+    pub(crate) fn rest(&self, r_bohr: &[f64], energies: &[f64]) -> Vec<f64> {
+        let base = |r: f64| self.base.map_or(0.0, |b| b.energy_hartree(r));
+        r_bohr.iter().zip(energies).map(|(&r, &e)| e - base(r)).collect()
+    }
+
+    /// By how much the interpolant through the points given misses the energy `rest` + base at another bond length:
+    /// both counted from the base, which therefore drops out.
+    pub(crate) fn miss(&self, r_bohr: &[f64], rest: &[f64], (at_bohr, rest_there): (f64, f64)) -> f64 {
+        self.factors(r_bohr).value_at(rest, self.abscissa(at_bohr)) - rest_there
     }
 
     /// Both steps at once.

@@ -134,6 +134,25 @@ impl SplineFactors {
 
     /// The spline through `values` (one an abscissa).
     pub(crate) fn solve(&self, values: &[f64]) -> PiecewisePolynomial {
+        self.to_pieces(&self.coefficients(values), f64::NEG_INFINITY, f64::INFINITY)
+    }
+
+    /// The same spline, kept only on the pieces that meet [`from`, `to`]; outside them its end pieces go on.
+    pub(crate) fn solve_between(&self, values: &[f64], from: f64, to: f64) -> PiecewisePolynomial {
+        self.to_pieces(&self.coefficients(values), from, to)
+    }
+
+    /// The value at `x` alone of the spline through `values`: no piece is made.
+    pub(crate) fn value_at(&self, values: &[f64], x: f64) -> f64 {
+        let (n, p) = (self.band.len(), self.degree);
+        let c = self.coefficients(values);
+        let interval = find_interval(&self.knots, p, n, x);
+        let weights = basis(&self.knots, interval, p, x);
+        (0..=p).map(|k| weights[k] * c[interval - p + k]).sum()
+    }
+
+    /// Coefficients of the B-splines.
+    fn coefficients(&self, values: &[f64]) -> Vec<f64> {
         let (n, p) = (self.band.len(), self.degree);
         let mut c = values.to_vec();
         for i in 0..n {
@@ -147,14 +166,16 @@ impl SplineFactors {
             }
             c[i] /= self.band[i][p];
         }
-        self.to_pieces(&c)
+        c
     }
 
-    /// Taylor coefficients of each piece from the B-spline coefficients.
-    fn to_pieces(&self, c: &[f64]) -> PiecewisePolynomial {
+    /// Taylor coefficients of each piece that meets [`from`, `to`] from the B-spline coefficients.
+    fn to_pieces(&self, c: &[f64], from: f64, to: f64) -> PiecewisePolynomial {
         let (p, t) = (self.degree, &self.knots);
-        let mut pieces = Vec::with_capacity(c.len() - p);
-        for l in p..c.len() {
+        let first = find_interval(t, p, c.len(), from);
+        let last = find_interval(t, p, c.len(), to);
+        let mut pieces = Vec::with_capacity(last + 1 - first);
+        for l in first..=last {
             let mut local = [0.0; ORDER];
             local[..=p].copy_from_slice(&c[l - p..=l]);
             let mut taylor = [0.0; ORDER];
@@ -172,7 +193,7 @@ impl SplineFactors {
             }
             pieces.push(taylor);
         }
-        PiecewisePolynomial::new(t[p..=c.len()].to_vec(), pieces)
+        PiecewisePolynomial::new(t[first..=last + 1].to_vec(), pieces)
     }
 }
 

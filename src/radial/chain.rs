@@ -50,6 +50,20 @@ impl Chain {
         values: Vec<f64>,
         degree: usize,
     ) -> Result<Self, RadialError> {
+        Self::extended(two_mu, boundaries, values, degree, None)
+    }
+
+    /// The same, taking over the modes of elements that `earlier` (of the same potential, mass and degree) has too.
+    ///
+    /// # Errors
+    /// [`RadialError::NoConvergence`]
+    pub fn extended(
+        two_mu: f64,
+        boundaries: Vec<f64>,
+        values: Vec<f64>,
+        degree: usize,
+        earlier: Option<&Self>,
+    ) -> Result<Self, RadialError> {
         let reference = ReferenceElement::of_degree(degree);
         let (p, elements) = (reference.degree, boundaries.len() - 1);
         let modes = p - 1;
@@ -71,7 +85,7 @@ impl Chain {
             chain.mass[e] += reference.weights[0] * half;
             chain.mass[e + 1] += reference.weights[p] * half;
         }
-        chain.build_modes(two_mu)?;
+        chain.build_modes(two_mu, earlier)?;
         Ok(chain)
     }
 
@@ -85,7 +99,14 @@ impl Chain {
         self.beta.len()
     }
 
-    fn build_modes(&mut self, two_mu: f64) -> Result<(), RadialError> {
+    /// The element of `self` that lies between the same boundaries as element `e` of `other`.
+    fn same_element(&self, other: &Self, e: usize) -> Option<usize> {
+        let own = self.boundaries.partition_point(|&b| b < other.boundaries[e]);
+        let pair = self.boundaries.get(own..own + 2)?;
+        (self.modes == other.modes && pair == &other.boundaries[e..e + 2]).then_some(own)
+    }
+
+    fn build_modes(&mut self, two_mu: f64, earlier: Option<&Self>) -> Result<(), RadialError> {
         let reference = self.reference;
         let (p, modes) = (reference.degree, self.modes);
         let n = p + 1;
@@ -101,17 +122,23 @@ impl Chain {
         for e in 0..self.elements() {
             let (_, half) = self.element(e);
             let kinetic = 1.0 / (two_mu * half * half);
+            let known = earlier.and_then(|chain| Some((chain, chain.same_element(self, e)?)));
             let block = &mut self.vectors[e * modes * modes..(e + 1) * modes * modes];
-            for (x, u) in block.iter_mut().zip(&unit) {
-                *x = kinetic * u;
-            }
-            let v = &self.potential[e * n..(e + 1) * n];
-            for i in 0..modes {
-                block[i * modes + i] += v[i + 1];
-            }
             let range = e * modes..(e + 1) * modes;
-            if !diagonalise(block, &mut self.lambda[range.clone()], &mut scratch, modes) {
-                return Err(RadialError::NoConvergence { r_bohr: self.boundaries[e] });
+            if let Some((chain, k)) = known {
+                block.copy_from_slice(&chain.vectors[k * modes * modes..(k + 1) * modes * modes]);
+                self.lambda[range].copy_from_slice(&chain.lambda[k * modes..(k + 1) * modes]);
+            } else {
+                for (x, u) in block.iter_mut().zip(&unit) {
+                    *x = kinetic * u;
+                }
+                let v = &self.potential[e * n..(e + 1) * n];
+                for i in 0..modes {
+                    block[i * modes + i] += v[i + 1];
+                }
+                if !diagonalise(block, &mut self.lambda[range], &mut scratch, modes) {
+                    return Err(RadialError::NoConvergence { r_bohr: self.boundaries[e] });
+                }
             }
             // Coupling of the unscaled interface value to an orthonormal interior node:
             // K_0i/(2μ half)/√(w_i half); the interface's own √mass follows.
@@ -152,8 +179,9 @@ impl Chain {
                     *x += amount * q;
                 }
             }
-            for (x, w) in inside.iter_mut().zip(&self.reference.weights[1..p]) {
-                *x /= (w * half).sqrt();
+            let scale = 1.0 / half.sqrt();
+            for (x, w) in inside.iter_mut().zip(&self.reference.inverse_root_weights[1..p]) {
+                *x *= w * scale;
             }
         }
         let end = self.elements();
@@ -165,18 +193,17 @@ impl Chain {
         let (p, modes) = (self.reference.degree, self.modes);
         let faces = self.alpha.len();
         let (face, mode) = vector.split_at_mut(faces);
+        let mut inside = vec![0.0; modes];
         for e in 0..self.elements() {
-            let half = self.element(e).1;
+            let scale = self.element(e).1.sqrt();
             face[e] = psi[e * p] * self.mass[e].sqrt();
-            let inside = &psi[e * p + 1..(e + 1) * p];
+            let values = psi[e * p + 1..(e + 1) * p].iter().zip(&self.reference.root_weights[1..p]);
+            for (x, (value, root)) in inside.iter_mut().zip(values) {
+                *x = value * root * scale;
+            }
             let rows = self.vectors[e * modes * modes..(e + 1) * modes * modes].chunks_exact(modes);
             for (row, amount) in rows.zip(&mut mode[e * modes..(e + 1) * modes]) {
-                *amount = row
-                    .iter()
-                    .zip(inside)
-                    .zip(&self.reference.weights[1..p])
-                    .map(|((q, x), w)| q * x * (w * half).sqrt())
-                    .sum();
+                *amount = dot(row, &inside);
             }
         }
         face[0] = 0.0;
@@ -235,6 +262,19 @@ impl Chain {
     pub fn len(&self) -> usize {
         self.alpha.len() + self.lambda.len()
     }
+}
+
+/// Σ a b in four independent sums, in an order that does not depend on the machine.
+pub(super) fn dot(a: &[f64], b: &[f64]) -> f64 {
+    let mut sums = [0.0; 4];
+    let (a4, b4) = (a.chunks_exact(4), b.chunks_exact(4));
+    let rest: f64 = a4.remainder().iter().zip(b4.remainder()).map(|(x, y)| x * y).sum();
+    for (x, y) in a4.zip(b4) {
+        for ((sum, x), y) in sums.iter_mut().zip(x).zip(y) {
+            *sum += x * y;
+        }
+    }
+    (sums[0] + sums[1]) + (sums[2] + sums[3]) + rest
 }
 
 /// A node of an element.

@@ -5,8 +5,10 @@
 //! the elements of the level itself).
 
 use super::Solution;
-use super::chain::{Chain, Factors};
+use super::chain::{Chain, Factors, dot};
+use super::parallel::in_halves;
 use super::search::Found;
+use super::solve::mesh_points;
 
 /// Centrifugal constants of one level.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -20,9 +22,9 @@ pub struct Distortion {
 }
 
 /// Numbers reused from level to level.
-struct Work {
+struct Work<'a> {
     /// 1/(2μr²) at the mesh points.
-    rotation: Vec<f64>,
+    rotation: &'a [f64],
     nodes: Vec<f64>,
     image: Vec<f64>,
     first: Vec<f64>,
@@ -39,21 +41,22 @@ impl Solution {
             return Vec::new();
         };
         let chain = &inner.problem.chain;
-        let Some(state) = self.states.first() else {
-            return Vec::new();
-        };
         let two_mu = inner.problem.demand.two_mu;
-        let r = &state.wavefunction.r_bohr;
-        let mut work = Work {
-            // At the walls ψ = 0; r = 0 may be one of them.
-            rotation: r.iter().map(|r| if *r == 0.0 { 0.0 } else { 1.0 / (two_mu * r * r) }).collect(),
-            nodes: vec![0.0; r.len()],
-            image: vec![0.0; chain.len()],
-            first: vec![0.0; chain.len()],
-            rest: vec![0.0; chain.len()],
-            factors: Factors::default(),
-        };
-        inner.found.iter().take(levels).map(|level| distortion(chain, level, &mut work)).collect()
+        let (r, _) = mesh_points(chain);
+        // At the walls ψ = 0; r = 0 may be one of them.
+        let rotation: Vec<f64> =
+            r.iter().map(|r| if *r == 0.0 { 0.0 } else { 1.0 / (two_mu * r * r) }).collect();
+        in_halves(&inner.found[..levels.min(inner.found.len())], |part| {
+            let mut work = Work {
+                rotation: &rotation,
+                nodes: vec![0.0; r.len()],
+                image: vec![0.0; chain.len()],
+                first: vec![0.0; chain.len()],
+                rest: vec![0.0; chain.len()],
+                factors: Factors::default(),
+            };
+            part.iter().map(|level| distortion(chain, level, &mut work)).collect()
+        })
     }
 }
 
@@ -66,13 +69,9 @@ fn rotate(chain: &Chain, vector: &[f64], rotation: &[f64], nodes: &mut [f64], im
     chain.to_basis(nodes, image);
 }
 
-fn dot(a: &[f64], b: &[f64]) -> f64 {
-    a.iter().zip(b).map(|(x, y)| x * y).sum()
-}
-
 fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
     let zero = &level.vector;
-    rotate(chain, zero, &work.rotation, &mut work.nodes, &mut work.image);
+    rotate(chain, zero, work.rotation, &mut work.nodes, &mut work.image);
     let b = dot(zero, &work.image);
     // The right-hand side −(W − B) ψ₀ is orthogonal to ψ₀ by construction. The shift stands a little beside the level,
     // so that rounding does not fill the result with ψ₀; the second round removes what that costs.
@@ -102,7 +101,7 @@ fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
         d -= *y * (w - b * x);
     }
     let norm2 = dot(&work.first, &work.first);
-    rotate(chain, &work.first, &work.rotation, &mut work.nodes, &mut work.image);
+    rotate(chain, &work.first, work.rotation, &mut work.nodes, &mut work.image);
     let h = dot(&work.first, &work.image) - b * norm2;
     Distortion { b_v_hartree: b, d_v_hartree: d, h_v_hartree: h }
 }

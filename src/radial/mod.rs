@@ -6,6 +6,7 @@ mod chain;
 mod distortion;
 mod mesh;
 mod observables;
+mod parallel;
 mod reference_element;
 mod search;
 mod small_eigen;
@@ -122,6 +123,13 @@ pub struct Solution {
 struct Inner {
     problem: solve::Problem,
     found: Vec<search::Found>,
+}
+
+impl Solution {
+    /// The states, moved out; the discretised problem stays for [`Solution::distortion`].
+    pub fn take_states(&mut self) -> Vec<BoundState> {
+        std::mem::take(&mut self.states)
+    }
 }
 
 /// As [`bound_states`], keeping the discretised problem.

@@ -1,5 +1,6 @@
 //! What is reported of one level: turning points, probabilities, averages, B_v.
 
+use super::parallel::in_halves;
 use super::{Inner, Solution};
 use crate::potential::Potential;
 use crate::units::to_per_cm;
@@ -131,9 +132,10 @@ impl Solution {
         let Some(inner) = &self.inner else {
             return Vec::new();
         };
-        (0..self.states.len())
-            .map(|v| self.observables_of(inner, potential, v, (r_e_bohr, v_e_hartree)))
-            .collect()
+        let all: Vec<usize> = (0..self.states.len()).collect();
+        in_halves(&all, |part| {
+            part.iter().map(|&v| self.observables_of(inner, potential, v, (r_e_bohr, v_e_hartree))).collect()
+        })
     }
 
     fn observables_of(
@@ -168,19 +170,19 @@ impl Solution {
             turning.iter().copied().filter(|r| *r > inner_end && *r < outer_end).collect();
         let barriers: f64 = between.chunks_exact(2).map(|pair| psi.probability(pair[0], pair[1])).sum();
         let limit = potential.limit_hartree();
-        let mean_r = psi.expectation(|r| r);
-        let mean_square_r = psi.expectation(|r| r * r);
+        let [inverse_square, mean_r, mean_square_r, mean_square_x] =
+            psi.expectations(|r| [1.0 / (two_mu * r * r), r, r * r, (r - r_e) * (r - r_e)]);
         Observables {
             v: state.v,
             energy_per_cm: to_per_cm(energy - v_e),
             numerical_error_per_cm: to_per_cm(state.error_hartree),
             below_limit_per_cm: limit.is_finite().then(|| to_per_cm(limit - energy)),
-            b_v_per_cm: to_per_cm(psi.expectation(|r| 1.0 / (two_mu * r * r))),
+            b_v_per_cm: to_per_cm(inverse_square),
             inner_turning_point_bohr: inner_end,
             outer_turning_point_bohr: outer_end,
             mean_r_bohr: mean_r,
             mean_square_r_bohr2: mean_square_r,
-            mean_square_x_bohr2: psi.expectation(|r| (r - r_e) * (r - r_e)),
+            mean_square_x_bohr2: mean_square_x,
             forbidden_inner,
             forbidden_outer,
             forbidden_probability: forbidden_inner + forbidden_outer + barriers,

@@ -17,6 +17,10 @@ pub(super) struct ReferenceElement {
     pub nodes: Vec<f64>,
     /// Their quadrature weights (exact for degree 2p − 1).
     pub weights: Vec<f64>,
+    /// Square roots of the weights.
+    pub root_weights: Vec<f64>,
+    /// Their inverses.
+    pub inverse_root_weights: Vec<f64>,
     /// Barycentric interpolation weights of the nodes.
     pub barycentric: Vec<f64>,
     /// Stiffness ∫ l_i′ l_j′, row-major (p + 1)².
@@ -110,7 +114,20 @@ impl ReferenceElement {
         };
         let highest = [row(false), row(true)];
         let (gauss_nodes, gauss_weights) = gauss_legendre(n);
-        Self { degree: p, nodes, weights, barycentric, stiffness, highest, gauss_nodes, gauss_weights }
+        let root_weights: Vec<f64> = weights.iter().map(|w| w.sqrt()).collect();
+        let inverse_root_weights = root_weights.iter().map(|w| 1.0 / w).collect();
+        Self {
+            degree: p,
+            nodes,
+            weights,
+            root_weights,
+            inverse_root_weights,
+            barycentric,
+            stiffness,
+            highest,
+            gauss_nodes,
+            gauss_weights,
+        }
     }
 
     /// Value at `x` in [−1, 1] of the polynomial through `values` at the nodes.

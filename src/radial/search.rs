@@ -1,11 +1,14 @@
 //! Finding the levels of a chain: brackets from counts, Rayleigh-quotient iteration inside them.
 
-use super::chain::{Chain, Factors};
+use super::chain::{Chain, Factors, dot};
+use super::parallel::side_by_side;
 
 /// Relative size of the unwanted part of a vector at which it is finished.
 const FINISHED: f64 = 1e-13;
 /// Levels closer than this share of the depth are kept orthogonal explicitly.
 const DEGENERATE: f64 = 1e-6;
+/// From this number of levels on two threads share the search.
+const WORTH_A_THREAD: usize = 24;
 /// Rounds for one level before the bracket's middle is taken as it is.
 const MOST_ROUNDS: usize = 400;
 
@@ -46,38 +49,82 @@ pub(super) fn lowest_levels(
     top: f64,
     wanted: usize,
 ) -> Vec<Found> {
-    let mut brackets = Brackets { low: vec![bottom; wanted], high: vec![top; wanted] };
-    let mut found: Vec<Option<Found>> = vec![None; wanted];
-    let mut work = Work { y: vec![0.0; chain.len()], scale: top - bottom };
-    for v in 0..wanted {
-        if found[v].is_none() {
-            find(chain, factors, &mut brackets, &mut found, v, &mut work);
+    let scale = top - bottom;
+    let start = start_vector(chain);
+    let search = |from: usize, to: usize| {
+        let mut factors = Factors::default();
+        let mut brackets = Brackets { low: vec![bottom; to], high: vec![top; to] };
+        let mut found: Vec<Option<Found>> = vec![None; to];
+        let mut work = Work { y: vec![0.0; chain.len()], start: &start, scale };
+        for v in from..to {
+            if found[v].is_none() {
+                find(chain, &mut factors, &mut brackets, &mut found, v, &mut work);
+            }
         }
-    }
-    let mut levels: Vec<Found> = found.into_iter().flatten().collect();
-    polish_clusters(chain, factors, &mut levels, work.scale);
+        found.into_iter().flatten().collect::<Vec<Found>>()
+    };
+    let mut levels = if wanted < WORTH_A_THREAD {
+        search(0, wanted)
+    } else {
+        let middle = wanted / 2;
+        let (mut low, mut high) = side_by_side(|| search(0, middle), || search(middle, wanted));
+        let apart =
+            low.last().zip(high.first()).is_some_and(|(a, b)| b.energy - a.energy > 2.0 * DEGENERATE * scale);
+        if apart {
+            low.append(&mut high);
+            low
+        } else {
+            // A pair on the seam: its members must know of each other.
+            search(0, wanted)
+        }
+    };
+    polish_clusters(chain, factors, &mut levels, scale);
     // Pairs closer than rounding may have come out in either order.
     levels.sort_by(|a, b| a.energy.total_cmp(&b.energy));
-    orthogonalise(&mut levels, DEGENERATE * work.scale);
+    orthogonalise(&mut levels, DEGENERATE * scale);
     levels
 }
 
-struct Work {
+struct Work<'a> {
     y: Vec<f64>,
+    /// Where every iteration begins.
+    start: &'a [f64],
     scale: f64,
 }
 
-/// Extrapolates the ladder found so far.
+/// Most levels from which the next one is extrapolated.
+const LOOK_BACK: usize = 8;
+
+/// Extrapolates the ladder found so far by the polynomial through its last levels; of the degrees offered the one
+/// that changes the result of the degree below it least.
 fn guess(found: &[Option<Found>], v: usize, low: f64, high: f64) -> f64 {
-    let at = |i: usize| found.get(i).and_then(|f| f.as_ref()).map(|f| f.energy);
-    let back = |n: usize| v.checked_sub(n).and_then(at);
-    let guess = match (back(1), back(2), back(3), back(4)) {
-        (Some(a), Some(b), Some(c), Some(d)) => Some(4.0 * a - 6.0 * b + 4.0 * c - d),
-        (Some(a), Some(b), Some(c), None) => Some(3.0 * a - 3.0 * b + c),
-        (Some(a), Some(b), None, _) => Some(2.0 * a - b),
-        _ => None,
-    };
-    guess.filter(|g| *g > low && *g < high).unwrap_or(0.5 * (low + high))
+    let middle = 0.5 * (low + high);
+    let back = |n: usize| v.checked_sub(n).and_then(|i| found[i].as_ref()).map(|f| f.energy);
+    // Backward differences of the levels v − 1, v − 2, ...; their sum up to order k is the extrapolation of degree k.
+    let mut differences = [0.0; LOOK_BACK];
+    let mut count = 0;
+    while let Some(energy) = back(count + 1).filter(|_| count < LOOK_BACK) {
+        differences[count] = energy;
+        count += 1;
+    }
+    for order in 1..count {
+        for i in (order..count).rev() {
+            differences[i] = differences[i - 1] - differences[i];
+        }
+    }
+    if count < 2 {
+        return middle;
+    }
+    let mut sum = differences[0] + differences[1];
+    let mut least = f64::INFINITY;
+    let mut best = sum;
+    for difference in &differences[2..count] {
+        sum += difference;
+        if difference.abs() < least {
+            (least, best) = (difference.abs(), sum);
+        }
+    }
+    if best > low && best < high { best } else { middle }
 }
 
 fn find(
@@ -86,7 +133,7 @@ fn find(
     brackets: &mut Brackets,
     found: &mut [Option<Found>],
     v: usize,
-    work: &mut Work,
+    work: &mut Work<'_>,
 ) {
     let rounding = 4.0 * f64::EPSILON * work.scale;
     let mut shift = guess(found, v, brackets.low[v], brackets.high[v]);
@@ -122,12 +169,12 @@ fn refine(
     found: &[Option<Found>],
     (v, forced): (usize, bool),
     start: f64,
-    work: &mut Work,
+    work: &mut Work<'_>,
 ) -> Option<Found> {
     let rounding = 4.0 * f64::EPSILON * work.scale;
     let previous = v.checked_sub(1).and_then(|i| found[i].as_ref());
     let mut shift = start;
-    let mut vector = start_vector(chain);
+    let mut vector = work.start.to_vec();
     let mut unwanted = 1e2;
     let mut still = 0;
     for round in 0..12 {
@@ -147,15 +194,16 @@ fn refine(
         work.y.copy_from_slice(&vector);
         factors.solve(chain, &mut work.y);
         deflate(&mut work.y, found, v, shift, DEGENERATE * work.scale);
-        let norm2: f64 = work.y.iter().map(|y| y * y).sum();
-        let overlap: f64 = work.y.iter().zip(&vector).map(|(y, x)| y * x).sum();
+        let norm2 = dot(&work.y, &work.y);
+        let overlap = dot(&work.y, &vector);
         if !norm2.is_finite() || norm2 == 0.0 {
             return None;
         }
         let norm = norm2.sqrt();
         let energy = shift + overlap / norm2;
+        let scale = 1.0 / norm;
         for (x, y) in vector.iter_mut().zip(&work.y) {
-            *x = y / norm;
+            *x = y * scale;
         }
         let distance = (energy - shift).abs().max(rounding * 0.25);
         unwanted *= (distance / gap).min(10.0);
@@ -171,7 +219,8 @@ fn refine(
             return Some(Found { energy, vector, gap });
         }
         let outside = energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding;
-        if outside && !forced {
+        // The first estimate comes from a vector that knows nothing yet.
+        if outside && !forced && round > 0 {
             return None;
         }
         shift = if outside { 0.5 * (brackets.low[v] + brackets.high[v]) } else { energy };
@@ -192,15 +241,15 @@ fn deflate(y: &mut [f64], found: &[Option<Found>], v: usize, energy: f64, width:
 
 /// Removes from `y` its part along the unit vector `other`.
 fn take_out(y: &mut [f64], other: &[f64]) {
-    let part: f64 = y.iter().zip(other).map(|(a, b)| a * b).sum();
+    let part = dot(y, other);
     for (a, b) in y.iter_mut().zip(other) {
         *a -= part * b;
     }
 }
 
 fn normalise(y: &mut [f64]) {
-    let norm = y.iter().map(|x| x * x).sum::<f64>().sqrt();
-    y.iter_mut().for_each(|x| *x /= norm);
+    let scale = 1.0 / dot(y, y).sqrt();
+    y.iter_mut().for_each(|x| *x *= scale);
 }
 
 /// Makes the vectors of levels closer than `width` orthogonal, each to those below it.

@@ -2,6 +2,7 @@
 
 use super::chain::{Chain, Factors, node};
 use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
+use super::parallel::side_by_side;
 use super::reference_element::ReferenceElement;
 use super::search::{Found, lowest_levels};
 use super::{
@@ -111,7 +112,7 @@ pub(super) fn problem(
         depth_at(energy_of_count(&all, MOST_LEVELS), &mut demand);
         let mut walks = Walks::start(potential);
         walks.advance(Ground { potential, demand: &demand, survey: &survey }, 0.0)?;
-        let chain = walks.chain(&demand)?;
+        let chain = walks.chain(&demand, None)?;
         let mut factors = Factors::default();
         factors.factorise(&chain, demand.top_hartree);
         let count = factors.below.min(MOST_LEVELS);
@@ -139,7 +140,7 @@ pub(super) fn problem(
         depth_at(top, &mut demand);
         let mut walks = Walks::start(potential);
         walks.advance(Ground { potential, demand: &demand, survey: &survey }, 0.0)?;
-        let chain = walks.chain(&demand)?;
+        let chain = walks.chain(&demand, None)?;
         let mut factors = Factors::default();
         factors.factorise(&chain, top);
         if factors.below >= wanted {
@@ -190,11 +191,11 @@ impl Walks {
         self.outward.advance(ground, share, last)
     }
 
-    fn chain(&self, demand: &MeshDemand) -> Result<Chain, RadialError> {
+    fn chain(&self, demand: &MeshDemand, earlier: Option<&Chain>) -> Result<Chain, RadialError> {
         let inward = self.inward.boundaries.iter().skip(1).rev();
         let boundaries: Vec<f64> = inward.chain(&self.outward.boundaries).copied().collect();
         let values = self.inward.values.iter().rev().chain(&self.outward.values).copied().collect();
-        Chain::new(demand.two_mu, boundaries, values, demand.degree)
+        Chain::extended(demand.two_mu, boundaries, values, demand.degree, earlier)
     }
 }
 
@@ -209,9 +210,10 @@ fn below_limit(
     let mut walks = Walks::start(potential);
     let mut factors = Factors::default();
     let mut share = 1e-4;
+    let mut earlier: Option<Chain> = None;
     for _ in 0..60 {
         walks.advance(Ground { potential, demand, survey }, share)?;
-        let chain = walks.chain(demand)?;
+        let chain = walks.chain(demand, earlier.as_ref())?;
         factors.factorise(&chain, limit);
         let count = factors.below;
         let may_hold_more = !walks.outward.at_end
@@ -232,8 +234,9 @@ fn below_limit(
             return Ok(Problem { chain, demand: *demand, count });
         }
         share = if decayed { share / 16.0 } else { binding.min(share / 2.0) }.max(LEAST_BINDING);
+        earlier = Some(chain);
     }
-    let chain = walks.chain(demand)?;
+    let chain = walks.chain(demand, earlier.as_ref())?;
     factors.factorise(&chain, limit);
     Ok(Problem { count: factors.below, chain, demand: *demand })
 }
@@ -279,8 +282,8 @@ pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Resul
         let Some(problem) = problem(potential, request, factor)? else {
             return Ok(Solution { states: Vec::new(), inner: None });
         };
-        let found = levels(&problem);
-        let errors = estimated_errors(potential, &problem, &found)?;
+        let (found, coarse) = side_by_side(|| levels(&problem), || coarser(potential, &problem));
+        let errors = estimated_errors(&problem, &coarse?, &found);
         let depth = problem.demand.top_hartree - problem.demand.bottom_hartree;
         let worst = errors.iter().fold(0.0_f64, |a, &b| a.max(b));
         let enough = worst <= request.relative_accuracy.max(LEAST_ACCURACY) * depth;
@@ -293,23 +296,21 @@ pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Resul
     }
 }
 
-/// Twice the difference to the same mesh with polynomials one degree lower, plus rounding.
-fn estimated_errors(
-    potential: &dyn Potential,
-    problem: &Problem,
-    found: &[Found],
-) -> Result<Vec<f64>, RadialError> {
+/// The same mesh with polynomials one degree lower.
+fn coarser(potential: &dyn Potential, problem: &Problem) -> Result<Chain, RadialError> {
     let demand = &problem.demand;
     let degree = demand.degree - 1;
     let boundaries = problem.chain.boundaries.clone();
     let values = node_values(potential, demand, &boundaries, ReferenceElement::of_degree(degree))?;
-    let coarse = Chain::new(demand.two_mu, boundaries, values, degree)?;
-    let depth = demand.top_hartree - demand.bottom_hartree;
-    let rounding = ROUNDING * depth;
-    Ok(found
-        .iter()
-        .map(|level| 2.0 * (problem.chain.energy_on(&coarse, level) - level.energy).abs() + rounding)
-        .collect())
+    Chain::new(demand.two_mu, boundaries, values, degree)
+}
+
+/// Twice the difference to the coarser problem, plus rounding.
+fn estimated_errors(problem: &Problem, coarse: &Chain, found: &[Found]) -> Vec<f64> {
+    let rounding = ROUNDING * (problem.demand.top_hartree - problem.demand.bottom_hartree);
+    let error =
+        |level: &Found| 2.0 * (problem.chain.energy_on(coarse, level) - level.energy).abs() + rounding;
+    found.iter().map(error).collect()
 }
 
 /// Effective potential at the nodes of every element.
@@ -374,7 +375,7 @@ fn states(problem: &Problem, found: &[Found], errors: &[f64]) -> Vec<BoundState>
 }
 
 /// Mesh points and their lumped weights, in bohr.
-fn mesh_points(chain: &Chain) -> (Arc<[f64]>, Arc<[f64]>) {
+pub(super) fn mesh_points(chain: &Chain) -> (Arc<[f64]>, Arc<[f64]>) {
     let (p, elements) = (chain.reference.degree, chain.elements());
     let mut r = Vec::with_capacity(elements * p + 1);
     let mut weight = Vec::with_capacity(elements * p + 1);

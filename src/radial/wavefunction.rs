@@ -27,6 +27,21 @@ impl Wavefunction {
             .sum()
     }
 
+    /// Several expectation values at once.
+    pub fn expectations<const N: usize>(&self, f: impl Fn(f64) -> [f64; N]) -> [f64; N] {
+        let mut sums = [0.0; N];
+        for ((&r, w), psi) in self.r_bohr.iter().zip(self.weight_bohr.iter()).zip(&self.psi) {
+            // ψ = 0 at the walls, where f need not be finite.
+            if *psi != 0.0 {
+                let density = w * psi * psi;
+                for (sum, value) in sums.iter_mut().zip(f(r)) {
+                    *sum += density * value;
+                }
+            }
+        }
+        sums
+    }
+
     /// Probability between two bond lengths, ∫ψ² over the part of the mesh between them.
     ///
     /// The polynomials are integrated, not the nodes summed: parts of elements count exactly.

@@ -1,84 +1,139 @@
 //! The levels of a study: the solver's states with all that needs scan, reach and fits.
 
-use crate::findings::Findings;
+use crate::findings::{Findings, FitFindings};
 use crate::notice::{Code, Notice};
 use crate::potential::curve::ScanCurve;
 use crate::potential::{Family, Potential as _};
-use crate::radial::{self, Level, RadialRequest, Wavefunction};
+use crate::radial::{self, Level, RadialRequest, Solution, Wavefunction};
 use crate::reach::Interval;
-use crate::units::{omega_e_per_cm, to_per_cm};
+use crate::settings::LevelSettings;
+use crate::units::{omega_e_per_cm, rotational_constant_per_cm, to_per_cm};
 
-/// Solves for all levels of the curve and fills `findings.levels`.
-pub fn solve(findings: &mut Findings, curve: &ScanCurve, mass_me: f64, reach: Option<&Interval>) {
-    let request = RadialRequest {
-        reduced_mass_me: mass_me,
-        rotation_x: 0.0,
-        relative_accuracy: findings.settings.levels.relative_accuracy,
-        highest_v: Some(findings.settings.levels.highest_v),
-    };
+/// What is asked of the levels beside the curve.
+pub struct Question<'a> {
+    /// The settings.
+    pub settings: &'a LevelSettings,
+    /// Reduced mass in electron masses.
+    pub mass_me: f64,
+    /// Energy reach, where there is one.
+    pub reach: Option<&'a Interval>,
+    /// Rotational quantum number.
+    pub j: u32,
+}
+
+impl Question<'_> {
+    /// The request to the solver.
+    pub fn request(&self) -> RadialRequest {
+        RadialRequest {
+            reduced_mass_me: self.mass_me,
+            rotation_x: self.settings.rotation_x(self.j),
+            relative_accuracy: self.settings.relative_accuracy,
+            highest_v: Some(self.settings.highest_v),
+        }
+    }
+}
+
+/// The levels of one J, their remarks, and the solution that the centrifugal constants come from.
+#[derive(Default)]
+pub struct Solved {
+    /// The levels, v ascending; D_v and H_v not yet filled in.
+    pub levels: Vec<Level>,
+    /// What was remarked.
+    pub notices: Vec<Notice>,
+    solution: Option<Solution>,
+}
+
+impl Solved {
+    fn nothing(notice: Option<Notice>) -> Self {
+        Self { notices: notice.into_iter().collect(), ..Self::default() }
+    }
+
+    /// Fills in D_v and H_v.
+    pub fn distort(&mut self) {
+        let Some(solution) = &self.solution else { return };
+        let distortions = solution.distortion(self.levels.len());
+        for (level, distortion) in self.levels.iter_mut().zip(distortions) {
+            level.d_v_per_cm = to_per_cm(distortion.d_v_hartree);
+            level.h_v_per_cm = Some(to_per_cm(distortion.h_v_hartree)).filter(|h| h.is_finite());
+        }
+    }
+}
+
+/// Solves for all levels of the curve at one J.
+pub fn solve(curve: &ScanCurve, question: &Question) -> Solved {
+    let settings = question.settings;
     let above = curve.above_minimum();
-    let solution = match radial::solve(&above, &request) {
+    let mut solution = match radial::solve(&above, &question.request()) {
         Ok(solution) => solution,
         Err(error) => {
-            let text = format!("There are no levels: {error}.");
-            findings.notices.push(Notice::caution(Code::NotConverged, text));
-            return;
+            let text = format!("There are no levels with J = {}: {error}.", question.j);
+            return Solved::nothing(Some(Notice::caution(Code::NotConverged, text)));
         }
-    };
-    let Some(first) = solution.states.first() else {
-        let text = "The well holds no level below its limit; the mass may be wrong, or the scan too short.";
-        findings.notices.push(Notice::caution(Code::ImplausibleMass, text));
-        return;
     };
     let r_e = curve.local.r_e_bohr;
     let observed = solution.observables(&above, r_e, 0.0);
-    let distorted = solution.distortion(solution.states.len());
-    let tails = TailShifts::new(curve, &first.wavefunction, findings);
+    let states = solution.take_states();
+    let Some(first) = states.first() else {
+        let text = "The well holds no level below its limit; the mass may be wrong, or the scan too short.";
+        let notice = (question.j == 0).then(|| Notice::caution(Code::ImplausibleMass, text));
+        return Solved::nothing(notice);
+    };
+    let tails = TailShifts::new(curve, &first.wavefunction, settings);
     let errors = Errors::new(curve, &first.wavefunction);
-    let omega_e = omega_e_per_cm(curve.local.second_hartree, mass_me);
+    let omega_e = omega_e_per_cm(curve.local.second_hartree, question.mass_me);
+    let rigid = rotational_constant_per_cm(r_e, question.mass_me) * question.request().rotation_x;
     let asymptote_per_cm = curve.asymptote_hartree().and_then(|_| curve.tail_depth_hartree()).map(to_per_cm);
-    let morse: &[f64] = findings
-        .fits
-        .iter()
-        .find(|f| f.request.family == Family::Morse && f.result.is_ok())
-        .map_or(&[], |f| &f.levels_per_cm);
-    let levels = observed.iter().zip(&distorted).zip(&solution.states).map(|((seen, distortion), state)| {
-        let psi = &state.wavefunction;
-        let outside_scan = outside(psi, curve.scan_range_bohr);
-        let harmonic = omega_e * (state.v as f64 + 0.5);
+    let levels = observed.iter().zip(states).map(|(seen, state)| {
+        let psi = state.wavefunction;
+        let outside_scan = outside(&psi, curve.scan_range_bohr);
+        let harmonic = omega_e * (state.v as f64 + 0.5) + rigid;
+        let leans_on_tail = outside_scan > settings.lean_probability
+            || tails.largest_per_cm(&psi) > settings.lean_shift_per_cm;
         Level {
             v: state.v,
-            j: 0,
+            j: question.j,
             energy_per_cm: seen.energy_per_cm,
-            energy_error_per_cm: errors.of(psi).map(|e| e.hypot(seen.numerical_error_per_cm)),
+            energy_error_per_cm: errors.of(&psi).map(|e| e.hypot(seen.numerical_error_per_cm)),
             below_asymptote_per_cm: asymptote_per_cm.map(|limit| limit - seen.energy_per_cm),
             b_v_per_cm: seen.b_v_per_cm,
-            d_v_per_cm: to_per_cm(distortion.d_v_hartree),
-            h_v_per_cm: Some(to_per_cm(distortion.h_v_hartree)).filter(|h| h.is_finite()),
+            d_v_per_cm: f64::NAN,
+            h_v_per_cm: None,
             inner_turning_point_bohr: seen.inner_turning_point_bohr,
             outer_turning_point_bohr: seen.outer_turning_point_bohr,
             mean_r_bohr: seen.mean_r_bohr,
             mean_square_x_bohr2: seen.mean_square_x_bohr2,
             forbidden_probability: seen.forbidden_probability,
-            inside_reach: reach.map(|i| inside(psi, i, curve)),
+            inside_reach: question.reach.map(|i| inside(&psi, i, curve)),
             outside_scan,
-            leans_on_tail: outside_scan > findings.settings.levels.lean_probability
-                || tails.largest_per_cm(psi) > findings.settings.levels.lean_shift_per_cm,
+            leans_on_tail,
             minus_harmonic_per_cm: seen.energy_per_cm - harmonic,
-            minus_morse_per_cm: morse.get(state.v).map(|m| seen.energy_per_cm - m),
-            wavefunction: psi.clone(),
+            minus_morse_per_cm: None,
+            wavefunction: psi,
         }
     });
-    findings.levels = levels.collect();
-    if findings.levels.len() > findings.settings.levels.highest_v {
-        let text = format!(
-            "Only the levels up to v = {} were computed; there may be more. So many levels point to a tail that \
-             hardly falls off: check the energy of the separated atoms.",
-            findings.settings.levels.highest_v
-        );
-        findings.notices.push(Notice::caution(Code::ManyLevels, text));
+    let levels: Vec<Level> = levels.collect();
+    let mut notices = Vec::new();
+    if question.j == 0 {
+        if levels.len() > settings.highest_v {
+            let text = format!(
+                "Only the levels up to v = {} were computed; there may be more. So many levels point to a tail that \
+                 hardly falls off: check the energy of the separated atoms.",
+                settings.highest_v
+            );
+            notices.push(Notice::caution(Code::ManyLevels, text));
+        }
+        notices.extend(remark_on_leaning(&levels));
     }
-    remark_on_leaning(findings);
+    Solved { levels, notices, solution: Some(solution) }
+}
+
+/// Fills in E − E_Morse(v) from the Morse fit, where there is one.
+pub fn beside_morse(findings: &mut Findings) {
+    let is_morse = |f: &&FitFindings| f.request.family == Family::Morse && f.result.is_ok();
+    let Some(morse) = findings.fits.iter().find(is_morse) else { return };
+    for (level, energy) in findings.levels.iter_mut().zip(&morse.levels_per_cm) {
+        level.minus_morse_per_cm = Some(level.energy_per_cm - energy);
+    }
 }
 
 fn outside(psi: &Wavefunction, (from, to): (f64, f64)) -> f64 {
@@ -96,10 +151,10 @@ fn inside(psi: &Wavefunction, reach: &Interval, curve: &ScanCurve) -> f64 {
     psi.probability(from, to)
 }
 
-fn remark_on_leaning(findings: &mut Findings) {
-    let leaning = findings.levels.iter().filter(|l| l.leans_on_tail).count();
-    let Some(lowest) = findings.levels.iter().find(|l| l.leans_on_tail) else { return };
-    let all = findings.levels.len();
+fn remark_on_leaning(levels: &[Level]) -> Option<Notice> {
+    let leaning = levels.iter().filter(|l| l.leans_on_tail).count();
+    let lowest = levels.iter().find(|l| l.leans_on_tail)?;
+    let all = levels.len();
     let text = format!(
         "{} of {all} levels, from v = {} ({:.0} cm-1) on, lean on a tail that was never scanned; points further \
          out or the energy of the separated atoms would settle them.",
@@ -108,7 +163,7 @@ fn remark_on_leaning(findings: &mut Findings) {
     let place = lowest.outer_turning_point_bohr;
     // A level that leans low in the well is a caution; the last few below the limit are to be expected.
     let notice = if lowest.v <= 2 { Notice::caution } else { Notice::info };
-    findings.notices.push(notice(Code::LeansOnTail, text).at([place]));
+    Some(notice(Code::LeansOnTail, text).at([place]))
 }
 
 /// Changes of the potential, at the mesh points, when the tail is moved.
@@ -120,8 +175,7 @@ struct TailShifts {
 }
 
 impl TailShifts {
-    fn new(curve: &ScanCurve, mesh: &Wavefunction, findings: &Findings) -> Self {
-        let settings = &findings.settings.levels;
+    fn new(curve: &ScanCurve, mesh: &Wavefunction, settings: &LevelSettings) -> Self {
         let depth = curve.tail_depth_hartree().unwrap_or(0.0);
         let shift = settings.lean_asymptote_fraction * depth;
         let variants = [
@@ -165,8 +219,9 @@ struct Errors {
     other: Vec<f64>,
     known: bool,
     noise_hartree: Option<f64>,
-    r_e_bohr: f64,
-    knots_bohr: Vec<f64>,
+    /// Index of the upper hat and its share, per mesh point and last for r_e; empty where no noise is known.
+    hats: Vec<(usize, f64)>,
+    knots: usize,
 }
 
 impl Errors {
@@ -175,9 +230,21 @@ impl Errors {
             other: mesh.r_bohr.iter().map(|&r| curve.other_interpolation_hartree(r)).collect(),
             known: !curve.alternatives.is_empty(),
             noise_hartree: curve.noise_hartree,
-            r_e_bohr: curve.local.r_e_bohr,
-            knots_bohr: curve.points_bohr.to_vec(),
+            hats: Self::hats(curve, mesh),
+            knots: curve.points_bohr.len(),
         }
+    }
+
+    fn hats(curve: &ScanCurve, mesh: &Wavefunction) -> Vec<(usize, f64)> {
+        let knots = &curve.points_bohr;
+        if knots.len() < 2 || curve.noise_hartree.is_none() {
+            return Vec::new();
+        }
+        let hat = |&r: &f64| {
+            let i = knots.partition_point(|k| *k <= r).clamp(1, knots.len() - 1);
+            (i, ((r - knots[i - 1]) / (knots[i] - knots[i - 1])).clamp(0.0, 1.0))
+        };
+        mesh.r_bohr.iter().chain([&curve.local.r_e_bohr]).map(hat).collect()
     }
 
     /// sqrt(interpolation² + noise²) in cm⁻¹; none where neither is known.
@@ -194,21 +261,16 @@ impl Errors {
     /// V_e follows the points. Hats stand for the spline's own cardinal functions, which differ by oscillations that
     /// average out.
     fn noise_weight(&self, psi: &Wavefunction) -> f64 {
-        let knots = &self.knots_bohr;
-        if knots.len() < 2 {
-            return 0.0;
-        }
-        let mut g = vec![0.0; knots.len()];
-        let mut add = |r: f64, amount: f64| {
-            let i = knots.partition_point(|k| *k <= r).clamp(1, knots.len() - 1);
-            let t = ((r - knots[i - 1]) / (knots[i] - knots[i - 1])).clamp(0.0, 1.0);
+        let Some((at_minimum, on_mesh)) = self.hats.split_last() else { return 0.0 };
+        let mut g = vec![0.0; self.knots];
+        let mut add = |&(i, t): &(usize, f64), amount: f64| {
             g[i - 1] += (1.0 - t) * amount;
             g[i] += t * amount;
         };
-        for ((&r, &w), &p) in psi.r_bohr.iter().zip(psi.weight_bohr.iter()).zip(&psi.psi) {
-            add(r, w * p * p);
+        for ((hat, &w), &p) in on_mesh.iter().zip(psi.weight_bohr.iter()).zip(&psi.psi) {
+            add(hat, w * p * p);
         }
-        add(self.r_e_bohr, -1.0);
+        add(at_minimum, -1.0);
         g.iter().map(|g| g * g).sum::<f64>().sqrt()
     }
 }

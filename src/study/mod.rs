@@ -45,8 +45,10 @@ pub enum Stage {
     Curve,
     /// The fits.
     Fits,
-    /// The levels.
+    /// The levels, with all but their centrifugal constants.
     Levels,
+    /// The centrifugal constants D_v and H_v.
+    Distortion,
     /// The constants.
     Constants,
     /// The reach.
@@ -61,6 +63,7 @@ impl Stage {
             Self::Curve => "curve",
             Self::Fits => "fits",
             Self::Levels => "levels",
+            Self::Distortion => "distortion",
             Self::Constants => "constants",
             Self::Reach => "reach",
         }
@@ -136,19 +139,35 @@ pub fn study_observed(
 /// Everything that needs a curve.
 fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
     let Some(curve) = findings.curve.clone() else { return };
-    fits::fit_all(findings, &curve);
-    after(Stage::Fits);
-
     let mass_me = findings.masses.as_ref().map(|m| m.reduced_mass_me);
-    if let Some(mass_me) = mass_me {
-        let reach = reach::energy_and_force_reach(&curve, &findings.settings.reach).map(|(energy, _)| energy);
-        levels::solve(findings, &curve, mass_me, reach.as_ref());
+    let reach = reach::energy_and_force_reach(&curve, &findings.settings.reach).map(|(energy, _)| energy);
+    let settings = findings.settings.levels.clone();
+    let question =
+        mass_me.map(|mass_me| levels::Question { settings: &settings, mass_me, reach: reach.as_ref(), j: 0 });
+    // The fits and the levels know nothing of each other: a thread each.
+    let solved = std::thread::scope(|scope| {
+        let fitting = scope.spawn(|| fits::fit_all(findings, &curve));
+        let mut solved = question.as_ref().map(|q| levels::solve(&curve, q));
+        after(Stage::Levels);
+        if let Some(solved) = &mut solved {
+            solved.distort();
+        }
+        after(Stage::Distortion);
+        if let Err(panic) = fitting.join() {
+            std::panic::resume_unwind(panic);
+        }
+        after(Stage::Fits);
+        solved
+    });
+    if let Some(mut solved) = solved {
+        findings.levels = solved.levels;
+        findings.notices.append(&mut solved.notices);
+        levels::beside_morse(findings);
     } else {
         let text =
             "No levels without a mass: name the two atoms (--atoms) or a reduced mass (--reduced-mass).";
         findings.notices.push(Notice::info(Code::NoMass, text));
     }
-    after(Stage::Levels);
 
     let set = LevelSet {
         highest_v: findings.settings.levels.constants_highest_v,

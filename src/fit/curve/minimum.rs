@@ -136,7 +136,7 @@ pub(super) fn noise_variants(data: &Data, interpolant: &Interpolant, noise: f64)
     let mut changed = data.e.clone();
     let variant = |i: usize| {
         changed[i] = data.e[i] + noise;
-        let curve = recipe.solve(&factors, &data.r, &changed);
+        let curve = recipe.solve_between(&factors, (&data.r, &changed), (from, to));
         changed[i] = data.e[i];
         minimum_between(|r| curve.derivatives(r), from, to)
     };
