@@ -449,6 +449,11 @@ impl Factors {
     }
 }
 
+/// The mode so close to `shift` that it must not be eliminated first.
+pub(super) fn close_to_mode(lambda: &[f64], shift: f64) -> Option<usize> {
+    nearest_mode(lambda, lambda.partition_point(|&value| value < shift), shift)
+}
+
 /// The mode so close to the shift that eliminating it first would cost digits.
 fn nearest_mode(lambda: &[f64], under: usize, shift: f64) -> Option<usize> {
     let spacing = if lambda.len() > 1 { lambda[1] - lambda[0] } else { lambda[0].abs() };

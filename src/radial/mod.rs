@@ -6,7 +6,10 @@ mod chain;
 mod distortion;
 mod mesh;
 mod observables;
+mod outgoing;
 mod parallel;
+mod quasibound;
+mod real_axis;
 mod reference_element;
 mod search;
 mod small_eigen;
@@ -17,6 +20,7 @@ mod wavefunction;
 
 pub use distortion::Distortion;
 pub use observables::{Observables, turning_points_bohr};
+pub use quasibound::{QuasiBound, quasi_bound};
 
 use crate::potential::Potential;
 use std::sync::Arc;

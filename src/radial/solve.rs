@@ -21,7 +21,7 @@ const LEAST_ACCURACY: f64 = 3e-12;
 /// Rounding of an energy, relative to the depth searched (measured: up to 1e-12 on random functions).
 const ROUNDING: f64 = 1e-12;
 /// Accuracy of the potential's polynomials in units of the accuracy of the energies.
-const POTENTIAL_SHARE: f64 = 30.0;
+pub(super) const POTENTIAL_SHARE: f64 = 30.0;
 /// Rounds of refinement when the estimated error exceeds the accuracy asked for.
 const MOST_REFINEMENTS: usize = 4;
 
@@ -74,7 +74,7 @@ fn demand(
 }
 
 /// Phase of one element for an accuracy relative to the depth (measured on Morse functions, see benches).
-fn phase_for(relative_accuracy: f64) -> f64 {
+pub(super) fn phase_for(relative_accuracy: f64) -> f64 {
     let digits = -relative_accuracy.clamp(1e-13, 1e-2).log10();
     (8.2 - 0.28 * digits).clamp(3.5, 8.0)
 }

@@ -8,7 +8,7 @@
 //! prints it), so that no rounded conversion factor enters the comparison: the equation has no other units.
 
 use parabound::potential::Potential;
-use parabound::radial::{BoundState, RadialRequest, bound_states};
+use parabound::radial::{BoundState, QuasiBound, RadialRequest, bound_states, quasi_bound};
 use serde_json::Value;
 
 /// A number written as a JSON number or as a decimal string.
@@ -342,4 +342,52 @@ fn harmonic_levels_are_evenly_spaced_and_stray_as_known() {
             ("density at the turning point", exact),
         ],
     );
+}
+
+/// Source: `reference/resonances.json` (poles by exterior complex scaling with 110 bits, two contours; a fit of phase
+/// shifts agrees). Widths to 1e-3, to 1 % where the width exceeds a thousandth of the energy.
+#[test]
+fn quasi_bound_levels_and_their_widths() {
+    let file: Value = serde_json::from_str(include_str!("reference/resonances.json")).expect("JSON");
+    let cases = file["cases"].as_array().expect("a list");
+    assert_eq!(cases.len(), 6);
+    for case in cases {
+        let p = &case["parameters"];
+        let j = number(&case["J"]);
+        let is_lennard_jones = p.get("well_strength").is_some();
+        let (h2_over_2mu, depth, energy, width) = if is_lennard_jones {
+            (1.0 / number(&p["well_strength"]), 1.0, number(&case["E_res_eps"]), number(&case["width_eps"]))
+        } else {
+            let of = |key: &str| number(&p[key]);
+            let (energy, width) = (number(&case["E_res_per_cm"]), number(&case["width_per_cm"]));
+            (of("hbar2_over_2mu_per_cm_angstrom2"), of("De_per_cm"), energy, width)
+        };
+        let request = RadialRequest { rotation_x: j * (j + 1.0), ..request(h2_over_2mu) };
+        let found = if is_lennard_jones {
+            quasi_bound(&lennard_jones(), &request)
+        } else {
+            quasi_bound(&morse(depth, number(&p["a_per_angstrom"]), number(&p["re_angstrom"])), &request)
+        }
+        .expect("levels");
+        // The Morse table counts from dissociation, the function here from its minimum.
+        let zero = if is_lennard_jones { 0.0 } else { depth };
+        let nearest = found
+            .iter()
+            .min_by(|a, b| {
+                let distance = |q: &QuasiBound| (q.energy_hartree - zero - energy).abs();
+                distance(a).total_cmp(&distance(b))
+            })
+            .expect("a level");
+        let off = (nearest.energy_hartree - zero - energy).abs() / depth;
+        let width_off = relative(nearest.width_hartree, width);
+        let (e, w) = nearest.by_phase_hartree.expect("a check");
+        let check = ((e - nearest.energy_hartree).abs() / depth, relative(w, nearest.width_hartree));
+        println!(
+            "{} J = {j}: E off by {off:.1e} of the depth, width by {width_off:.1e}; real energies differ by {:.1e}, {:.1e}",
+            case["name"], check.0, check.1
+        );
+        let allowed = if width > 1e-3 * energy { 1e-2 } else { 1e-3 };
+        assert!(off < 1e-10 && width_off < allowed);
+        assert!(check.0 < 1e-8 && check.1 < allowed);
+    }
 }
