@@ -13,6 +13,8 @@ pub enum ErrorSource {
     Noise,
     /// Published uncertainty (masses, constants).
     Published,
+    /// Spread over repeats of a fit with resampled residuals.
+    Bootstrap,
 }
 
 impl ErrorSource {
@@ -24,6 +26,7 @@ impl ErrorSource {
             Self::Interpolation => "interpolation",
             Self::Noise => "noise",
             Self::Published => "published",
+            Self::Bootstrap => "bootstrap",
         }
     }
 }

@@ -1,7 +1,7 @@
 //! All results of a study: per step a value or that step's failure, and the notices.
 
 use crate::estimate::Estimate;
-use crate::fit::{Fit, FitError, FitRequest};
+use crate::fit::{BootstrapSettings, Comparison, Fit, FitError, FitRequest};
 use crate::notice::{Notice, Severity};
 use crate::potential::curve::ScanCurve;
 use crate::radial::Level;
@@ -66,6 +66,25 @@ pub struct FitFindings {
     pub constants_per_cm: Vec<(&'static str, Option<Estimate>)>,
     /// The fitted function's own levels in cm⁻¹ above its own minimum, v ascending.
     pub levels_per_cm: Vec<f64>,
+    /// Their standard errors in cm⁻¹, same order, where known.
+    pub level_errors_per_cm: Vec<Option<f64>>,
+    /// Standard errors by resampled residuals; none unless asked for.
+    pub bootstrap: Option<FitBootstrap>,
+}
+
+/// Standard errors of one fit and of what follows from it, by resampled residuals.
+#[derive(Clone, Debug, PartialEq)]
+pub struct FitBootstrap {
+    /// What was asked.
+    pub settings: BootstrapSettings,
+    /// Repeats that did not converge.
+    pub failed: usize,
+    /// Of the parameters, in atomic units, in the order of the fit.
+    pub parameter_errors: Vec<Option<f64>>,
+    /// Of the constants in cm⁻¹, in the order of [`FitFindings::constants_per_cm`].
+    pub constant_errors_per_cm: Vec<Option<f64>>,
+    /// Of the levels in cm⁻¹.
+    pub level_errors_per_cm: Vec<Option<f64>>,
 }
 
 /// All results of a study.
@@ -81,6 +100,8 @@ pub struct Findings {
     pub curve: Option<Arc<ScanCurve>>,
     /// The fits, in the order of the settings.
     pub fits: Vec<FitFindings>,
+    /// The fits side by side.
+    pub comparison: Comparison,
     /// The levels, v ascending.
     pub levels: Vec<Level>,
     /// The constants.

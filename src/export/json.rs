@@ -4,9 +4,11 @@
 //! The sections are written as literal JSON values and not as mirror structs: the code then reads like
 //! the format page, and a key cannot differ between the two without being seen.
 
+mod fits;
+
 use crate::estimate::Estimate;
-use crate::findings::{Findings, FitFindings, Point};
-use crate::fit::{Parameter, ParameterUnit, Window};
+use crate::findings::{Findings, Point};
+use crate::fit::ParameterUnit;
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{InnerTail, OuterTail, ScanCurve};
 use crate::radial::Level;
@@ -14,9 +16,10 @@ use crate::reach::{EndedBy, Interval, LevelReach, Reach};
 use crate::species::Masses;
 use crate::spectroscopy::Constants;
 use crate::units::{
-    ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_angstrom, to_per_cm,
+    ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_angstrom,
 };
-use serde_json::{Map, Value, json};
+use fits::fit;
+use serde_json::{Value, json};
 
 /// The value of the key `format`.
 pub const FORMAT: &str = "parabound.findings";
@@ -61,6 +64,7 @@ pub fn findings_to_value(findings: &Findings) -> Value {
         "settings": findings.settings,
         "curve": findings.curve.as_deref().map(curve),
         "fits": findings.fits.iter().map(fit).collect::<Vec<_>>(),
+        "comparison": fits::comparison(&findings.comparison),
         "levels": findings.levels.iter().map(level).collect::<Vec<_>>(),
         "constants": constants(&findings.constants),
         "reach": findings.reach.as_ref().map(reach),
@@ -241,69 +245,6 @@ pub fn parameter_unit(unit: ParameterUnit) -> (String, f64) {
         }
         ParameterUnit::Dimensionless => ("1".to_owned(), 1.0),
     }
-}
-
-fn window_json(window: Window, points: usize) -> Value {
-    let edge =
-        |value: f64| quantity(window.unit.convert(value, crate::units::LengthUnit::Angstrom), "angstrom");
-    json!({"from": edge(window.from), "to": edge(window.to), "points": points})
-}
-
-fn fit(findings: &FitFindings) -> Value {
-    let request = &findings.request;
-    let constants: Map<String, Value> =
-        findings.constants_per_cm.iter().map(|(name, e)| ((*name).to_owned(), per_cm(*e))).collect();
-    let head = |degree: Option<u32>| json!({"model": request.family, "variable": request.variable, "degree": degree});
-    let (mut value, rest) = match &findings.result {
-        Ok(fit) => {
-            let factors: Vec<f64> = fit.parameters.iter().map(|p| parameter_unit(p.unit).1).collect();
-            let covariance: Vec<Vec<f64>> = fit
-                .covariance
-                .iter()
-                .zip(&factors)
-                .map(|(row, fi)| row.iter().zip(&factors).map(|(c, fj)| c * fi * fj).collect())
-                .collect();
-            let rest = json!({
-                "window": window_json(fit.window, fit.points),
-                "converged": true,
-                "failure": null,
-                "parameters": fit.parameters.iter().map(parameter).collect::<Vec<_>>(),
-                "covariance": covariance,
-                "rms_residual": quantity(to_per_cm(fit.rms_residual_hartree), "cm-1"),
-                "largest_residual": quantity(to_per_cm(fit.largest_residual_hartree), "cm-1"),
-                "aicc": fit.aicc,
-                "leave_one_out_rms":
-                    fit.leave_one_out_rms_hartree.map(|e| quantity(to_per_cm(e), "cm-1")),
-                "constants": constants,
-                "levels": findings.levels_per_cm.iter().enumerate()
-                    .map(|(v, e)| json!({"v": v, "energy": quantity(*e, "cm-1")})).collect::<Vec<_>>(),
-            });
-            (head(fit.degree), rest)
-        }
-        Err(error) => (
-            head(request.degree),
-            json!({
-                "window": null, "converged": false, "failure": error.to_string(), "parameters": [],
-                "covariance": [], "rms_residual": null, "largest_residual": null, "aicc": null,
-                "leave_one_out_rms": null, "constants": constants, "levels": [],
-            }),
-        ),
-    };
-    if let (Value::Object(value), Value::Object(rest)) = (&mut value, rest) {
-        value.extend(rest);
-    }
-    value
-}
-
-fn parameter(parameter: &Parameter) -> Value {
-    let (unit, factor) = parameter_unit(parameter.unit);
-    let mut value = json!({"name": parameter.name});
-    if let (Value::Object(head), Value::Object(rest)) =
-        (&mut value, estimated(parameter.estimate, factor, &unit))
-    {
-        head.extend(rest);
-    }
-    value
 }
 
 fn level(level: &Level) -> Value {

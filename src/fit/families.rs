@@ -1,7 +1,7 @@
 //! The families as nonlinear least-squares problems.
 
 use super::data::Data;
-use super::nonlinear::{self, IterationSettings, NonlinearSolution, Problem};
+use super::nonlinear::{self, IterationSettings, NonlinearError, NonlinearSolution, Problem};
 use super::{FitError, guess};
 use crate::potential::{LocalShape, ModelFault, Morse, Parametric};
 
@@ -11,12 +11,14 @@ pub(crate) struct ModelProblem<'a, P> {
     data: &'a Data,
     roots: Vec<f64>,
     gradient: Vec<f64>,
+    /// The bound that the last refused step went beyond.
+    refused: Option<ModelFault>,
 }
 
 impl<'a, P: Parametric> ModelProblem<'a, P> {
     pub fn new(model: P, data: &'a Data) -> Self {
         let gradient = vec![0.0; model.values().len()];
-        Self { model, data, roots: data.weight.iter().map(|w| w.sqrt()).collect(), gradient }
+        Self { model, data, roots: data.weight.iter().map(|w| w.sqrt()).collect(), gradient, refused: None }
     }
 }
 
@@ -30,7 +32,8 @@ impl<P: Parametric> Problem for ModelProblem<'_, P> {
     fn evaluate(&mut self, values: &[f64], residuals: &mut [f64], jacobian: &mut [f64]) -> bool {
         self.model.set_values(values);
         // The bounds that physics sets are kept by taking back every step beyond them.
-        if self.model.fault().is_some() {
+        if let Some(fault) = self.model.fault() {
+            self.refused = Some(fault);
             return false;
         }
         let n = self.data.len();
@@ -61,7 +64,12 @@ pub(crate) fn fit<P: Parametric + Clone>(
     }
     let mut problem = ModelProblem::new(first.clone(), data);
     let values: Vec<Vec<f64>> = starts.iter().map(Parametric::values).collect();
-    let solution = nonlinear::solve_from_all(&mut problem, &values, settings)?;
+    let solution = nonlinear::solve_from_all(&mut problem, &values, settings).map_err(|e| {
+        match (e, problem.refused) {
+            (NonlinearError::Blocked, Some(what)) => FitError::AtBound { what },
+            _ => e.into(),
+        }
+    })?;
     let mut model = first.clone();
     model.set_values(&solution.values);
     let (from, to) = (data.r_bohr[0], data.r_bohr[data.len() - 1]);
@@ -71,9 +79,96 @@ pub(crate) fn fit<P: Parametric + Clone>(
     Ok((model, solution))
 }
 
+/// Residuals below this share of the span of energies are those of exact data.
+const EXACT: f64 = 1e-10;
+/// Data good to this share of their span
+const PROFILE_RESIDUAL: f64 = 1e-9;
+/// must fix a parameter to this share of itself.
+const PROFILE_STEP: f64 = 1e-3;
+
+/// Whether exact data tell the parameters apart: the least certain one is moved by a thousandth, the others are
+/// fitted anew, and the residuals must show it. Where the columns of the Jacobian become parallel only at the
+/// solution itself, an iteration comes to rest beside it with a condition number that does not give it away.
+///
+/// Data with noise or misfit need no such test: their standard errors say it.
+///
+/// # Errors
+/// [`FitError::IllConditioned`].
+pub(crate) fn told_apart<P: Parametric + Clone>(
+    data: &Data,
+    model: &P,
+    solution: &NonlinearSolution,
+) -> Result<(), FitError> {
+    let span = data.energy_hartree.iter().fold(0.0, |m: f64, e| m.max(e.abs()));
+    let share = |square_sum: f64| {
+        let weights: f64 = data.weight.iter().sum();
+        (square_sum / weights).sqrt() / span
+    };
+    if share(solution.weighted_square_sum) > EXACT {
+        return Ok(());
+    }
+    let relative = |j: usize| solution.unit_covariance[j][j].sqrt() / solution.values[j].abs();
+    let least_certain = (2..solution.values.len()).max_by(|&i, &j| relative(i).total_cmp(&relative(j)));
+    let Some(fixed) = least_certain.filter(|&j| solution.values[j] != 0.0) else { return Ok(()) };
+    let mut values = solution.values.clone();
+    values[fixed] *= 1.0 + PROFILE_STEP;
+    let mut problem = WithOneFixed { inner: ModelProblem::new(model.clone(), data), fixed, values };
+    let mut start = problem.values.clone();
+    start.remove(fixed);
+    match nonlinear::solve(&mut problem, &start, IterationSettings::QUICK) {
+        Ok(other) if share(other.weighted_square_sum) < PROFILE_RESIDUAL => {
+            Err(FitError::IllConditioned { reciprocal_condition: solution.reciprocal_condition })
+        }
+        _ => Ok(()),
+    }
+}
+
+/// A family with one of its parameters held.
+struct WithOneFixed<'a, P> {
+    inner: ModelProblem<'a, P>,
+    fixed: usize,
+    values: Vec<f64>,
+}
+
+impl<P: Parametric> Problem for WithOneFixed<'_, P> {
+    fn parameters(&self) -> usize {
+        self.values.len() - 1
+    }
+    fn observations(&self) -> usize {
+        self.inner.observations()
+    }
+    fn evaluate(&mut self, values: &[f64], residuals: &mut [f64], jacobian: &mut [f64]) -> bool {
+        let (before, after) = values.split_at(self.fixed);
+        self.values[..self.fixed].copy_from_slice(before);
+        self.values[self.fixed + 1..].copy_from_slice(after);
+        let n = residuals.len();
+        let mut whole = vec![0.0; n * self.values.len()];
+        let defined = self.inner.evaluate(&self.values, residuals, &mut whole);
+        let (before, after) = jacobian.split_at_mut(n * self.fixed);
+        before.copy_from_slice(&whole[..n * self.fixed]);
+        after.copy_from_slice(&whole[n * (self.fixed + 1)..]);
+        defined
+    }
+}
+
 /// The starts of the Morse function: by variable projection, else those of the local shape.
 pub(crate) fn morse_starts(data: &Data, shape: &LocalShape) -> Vec<Morse> {
     guess::morse_start(data, shape).map_or_else(|| Morse::starts(shape), |start| vec![start])
+}
+
+/// The family fitted to other data, from a model that was fitted to nearly the same.
+pub(crate) fn refit<P: Parametric + Clone>(data: &Data, model: &P) -> Option<P> {
+    let settings = IterationSettings { dampings: &[1e-6], ..IterationSettings::QUICK };
+    let start = model.values();
+    let mut problem = ModelProblem::new(model.clone(), data);
+    // The solution moves little; where plain steps do not settle, the damped iteration does.
+    let values = match nonlinear::follow(&mut problem, start.clone()) {
+        Some(values) => values,
+        None => nonlinear::solve(&mut problem, &start, settings).ok()?.values,
+    };
+    let mut other = model.clone();
+    other.set_values(&values);
+    Some(other)
 }
 
 /// Squared errors Σ of predicting each point from the others, by refits that start at the solution.
@@ -84,26 +179,12 @@ pub(crate) fn leave_one_out_rms<P: Parametric + Clone>(data: &Data, model: &P) -
     if data.len() <= start.len() {
         return None;
     }
-    let settings = IterationSettings { dampings: &[1e-6], ..IterationSettings::QUICK };
     let mut sum = 0.0;
     for i in 0..data.len() {
         let rest = data.without(i);
-        let mut problem = ModelProblem::new(model.clone(), &rest);
-        // One point less moves the solution little; where plain steps do not settle, the damped iteration does.
-        let values = match nonlinear::follow(&mut problem, start.clone()) {
-            Some(values) => values,
-            None => nonlinear::solve(&mut problem, &start, settings).ok()?.values,
-        };
-        let mut other = model.clone();
-        other.set_values(&values);
+        let other = refit(&rest, model)?;
         let error = other.energy_hartree(data.r_bohr[i]) - data.energy_hartree[i];
         sum += error * error;
     }
     Some((sum / data.len() as f64).sqrt())
-}
-
-impl From<ModelFault> for FitError {
-    fn from(fault: ModelFault) -> Self {
-        Self::NoWell { what: fault }
-    }
 }

@@ -3,8 +3,10 @@
 //! [`linear`] and [`nonlinear`] are the core: they know no potentials and serve any problem. [`fit`]
 //! puts the families of [`crate::potential`] to them and reads statistics off the residuals.
 
+mod bootstrap;
 #[cfg(test)]
 mod checks;
+pub mod comparison;
 pub mod curve;
 mod data;
 mod families;
@@ -16,17 +18,23 @@ mod precise;
 mod qr;
 mod run;
 mod statistics;
+#[cfg(test)]
+mod tests;
 mod weights;
 mod window;
 
 pub use crate::potential::{Family, ModelFault, ParameterUnit, Variable};
+pub use bootstrap::{Bootstrap, BootstrapError, BootstrapSettings, bootstrap};
+pub use comparison::{Compared, Comparison};
 pub use precise::Precise;
-pub use run::{fit, morse_for_base};
-pub use weights::EnergyWeights;
+pub use run::{fit, fit_with, morse_for_base};
+pub use weights::{
+    EnergyWeights, RowWeight, Variance, WeightedPoint, Weighting, declared_weight_per_hartree2,
+};
 pub use window::{DEFAULT_HALF_WIDTH_OF_R_E, DEFAULT_LEAST_POINTS, Window, default_window};
 
 use crate::estimate::{ErrorSource, Estimate};
-use crate::notice::Notice;
+use crate::notice::{Code, Notice};
 use crate::potential::Model;
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
@@ -68,12 +76,19 @@ pub struct FitSettings {
     pub window: Option<Window>,
     /// The fits, in the order in which they are listed.
     pub requests: Vec<FitRequest>,
+    /// Weights of the points.
+    pub weights: Weighting,
+    /// Standard errors by resampled residuals too; none: only by linear propagation.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub bootstrap: Option<BootstrapSettings>,
 }
 
 impl Default for FitSettings {
     fn default() -> Self {
         Self {
             window: None,
+            weights: Weighting::default(),
+            bootstrap: None,
             requests: vec![
                 FitRequest::plain(Family::Harmonic),
                 FitRequest::plain(Family::Morse),
@@ -139,8 +154,54 @@ pub struct Fit {
     pub leave_one_out_rms_hartree: Option<f64>,
     /// (r in bohr, model − energy in hartree) of the points in the window, ascending in r.
     pub residuals: Vec<(f64, f64)>,
+    /// Smallest over largest diagonal entry of R of the scaled Jacobian at the solution, for iterated fits: near
+    /// the rounding unit the parameters cannot be told apart. None for fits solved directly.
+    pub reciprocal_condition: Option<f64>,
     /// Remarks (degree lowered, misfit, ...).
     pub notices: Vec<Notice>,
+}
+
+impl Fit {
+    /// Correlations c_ij/sqrt(c_ii c_jj) of the parameters, same order; empty when no error is known. A parameter
+    /// without an error (an exact fit) correlates with nothing but itself.
+    pub fn correlations(&self) -> Vec<Vec<f64>> {
+        let c = &self.covariance;
+        let entry = |i: usize, j: usize| {
+            if i == j {
+                return 1.0;
+            }
+            let size = (c[i][i] * c[j][j]).sqrt();
+            if size > 0.0 { (c[i][j] / size).clamp(-1.0, 1.0) } else { 0.0 }
+        };
+        (0..c.len()).map(|i| (0..c.len()).map(|j| entry(i.max(j), i.min(j))).collect()).collect()
+    }
+
+    /// Standard error of the fitted curve at `r_bohr` in hartree, sqrt(gᵀ C g) with g = ∂V/∂p: the half width of
+    /// its confidence band at one standard error. None when no error is known.
+    pub fn band_hartree(&self, r_bohr: f64) -> Option<f64> {
+        if self.covariance.is_empty() {
+            return None;
+        }
+        let mut gradient = vec![0.0; self.parameters.len()];
+        self.model.as_parametric().gradient(r_bohr, &mut gradient);
+        self.propagated(&gradient)
+    }
+
+    /// sqrt(gᵀ C g) for the gradient of a quantity by the parameters; none when no error is known or the result
+    /// is not finite.
+    pub fn propagated(&self, gradient: &[f64]) -> Option<f64> {
+        if self.covariance.is_empty() {
+            return None;
+        }
+        let row = |c: &Vec<f64>| c.iter().zip(gradient).map(|(c, g)| c * g).sum::<f64>();
+        let variance: f64 = self.covariance.iter().zip(gradient).map(|(c, g)| g * row(c)).sum();
+        variance.is_finite().then(|| variance.max(0.0).sqrt())
+    }
+
+    /// Where the standard errors come from.
+    pub fn error_source(&self) -> ErrorSource {
+        self.parameters.iter().find_map(|p| p.estimate.source).unwrap_or(ErrorSource::Fit)
+    }
 }
 
 /// Why there is no fit.
@@ -185,9 +246,9 @@ pub enum FitError {
         "the points in the window give this family no starting values; widen the window beyond the minimum on both sides"
     )]
     NoStart,
-    /// The best parameters make no well.
-    #[error("the fit makes no well ({what:?} not positive); widen the window towards larger bond lengths")]
-    NoWell {
+    /// The points drive a parameter to the edge of what makes a well.
+    #[error("the points drive {what} to its bound, zero; widen the window or take another family")]
+    AtBound {
         /// Which parameter.
         what: ModelFault,
     },
@@ -201,6 +262,20 @@ pub enum FitError {
         /// Highest offered.
         highest: u32,
     },
+}
+
+impl FitError {
+    /// The kind of notice that tells of it.
+    pub const fn code(&self) -> Code {
+        match self {
+            Self::TooFewPoints { .. } => Code::FewPoints,
+            Self::NotConverged { .. } | Self::NoStart | Self::Degree { .. } => Code::NotConverged,
+            Self::NoMinimum => Code::NoMinimum,
+            Self::IllConditioned { .. } => Code::IllConditioned,
+            Self::NotFinite { .. } => Code::NotFinite,
+            Self::AtBound { .. } => Code::AtBound,
+        }
+    }
 }
 
 impl From<linear::LinearError> for FitError {
@@ -220,7 +295,9 @@ impl From<linear::LinearError> for FitError {
 impl From<nonlinear::NonlinearError> for FitError {
     fn from(error: nonlinear::NonlinearError) -> Self {
         match error {
-            nonlinear::NonlinearError::NotFinite | nonlinear::NonlinearError::TooFewRows => Self::NoStart,
+            nonlinear::NonlinearError::NotFinite
+            | nonlinear::NonlinearError::TooFewRows
+            | nonlinear::NonlinearError::Blocked => Self::NoStart,
             nonlinear::NonlinearError::NotConverged { evaluations } => {
                 Self::NotConverged { iterations: evaluations }
             }

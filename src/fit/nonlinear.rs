@@ -52,6 +52,8 @@ pub enum NonlinearError {
         /// Evaluations done.
         evaluations: usize,
     },
+    /// Every further step leads where the model is not defined: the solution would lie beyond a bound.
+    Blocked,
     /// At the solution the columns of the Jacobian depend on each other to rounding.
     IllConditioned {
         /// Smallest over largest diagonal entry of R.
@@ -70,6 +72,8 @@ pub struct NonlinearSolution {
     pub weighted_square_sum: f64,
     /// (Jᵀ W J)⁻¹.
     pub unit_covariance: Vec<Vec<f64>>,
+    /// Smallest over largest diagonal entry of R of the scaled Jacobian at the solution.
+    pub reciprocal_condition: f64,
     /// Which rule ended the damped iteration.
     pub end: FitEnd,
     /// Evaluations of model and Jacobian.
@@ -136,6 +140,9 @@ fn better(
     }
 }
 
+/// An iteration that has not ended and stands where the scaled Jacobian is worse conditioned than this never will.
+const ENDLESS_VALLEY: f64 = 1e-7;
+
 fn run(
     problem: &mut dyn Problem,
     start: &[f64],
@@ -148,7 +155,20 @@ fn run(
     }
     let mut place = Place::new(problem, start.to_vec()).ok_or(NonlinearError::NotFinite)?;
     let mut evaluations = 1;
-    let end = damped(problem, &mut place, settings, damping, &mut evaluations)?;
+    let end = match damped(problem, &mut place, settings, damping, &mut evaluations) {
+        Ok(end) => end,
+        Err(error @ NonlinearError::NotConverged { .. }) => {
+            // An endless valley is better named by what makes it endless.
+            let condition = Qr::new(&place.jacobian, n, p).map_or(0.0, |qr| qr.reciprocal_condition());
+            let flat = condition < ENDLESS_VALLEY;
+            return Err(if flat {
+                NonlinearError::IllConditioned { reciprocal_condition: condition }
+            } else {
+                error
+            });
+        }
+        Err(error) => return Err(error),
+    };
     undamped(problem, &mut place, &mut evaluations);
     let qr =
         Qr::new(&place.jacobian, n, p).ok_or(NonlinearError::IllConditioned { reciprocal_condition: 0.0 })?;
@@ -158,6 +178,7 @@ fn run(
     }
     Ok(NonlinearSolution {
         unit_covariance: qr.inverse_gram(),
+        reciprocal_condition,
         values: place.values,
         residuals: place.residuals,
         weighted_square_sum: place.square_sum,
@@ -208,6 +229,7 @@ fn damped(
     let (n, p) = (problem.observations(), problem.parameters());
     let mut scale = vec![0.0_f64; p];
     let (mut mu, mut growth) = (damping, 2.0);
+    let mut blocked = false;
     loop {
         for (s, column) in scale.iter_mut().zip(place.jacobian.chunks_exact(n)) {
             *s = s.max(length(column));
@@ -231,7 +253,8 @@ fn damped(
             let mut step: Vec<f64> = s.iter().zip(&factors).map(|(s, d)| s / d).collect();
             let small = step.iter().zip(&place.values).all(|(s, v)| s.abs() <= 1e-14 * v.abs());
             if small || length(&s) <= rounding(&place.values, &factors) {
-                return Ok(FitEnd::SmallStep);
+                // Steps that shrank only because the model is undefined beyond them end at a bound, not at a minimum.
+                return if blocked { Err(NonlinearError::Blocked) } else { Ok(FitEnd::SmallStep) };
             }
             if settings.accelerated {
                 *evaluations += 1;
@@ -243,6 +266,7 @@ fn damped(
             let predicted: f64 = along.iter().zip(&c).map(|(t, c)| -t * (2.0 * c + t)).sum();
             *evaluations += 1;
             let new = Place::new(problem, place.moved(&step));
+            blocked = new.is_none();
             let found = new.as_ref().map_or(f64::NEG_INFINITY, |new| place.square_sum - new.square_sum);
             let negligible = 1e-13 * place.square_sum;
             let settled = predicted.abs() <= negligible && found.abs() <= negligible;

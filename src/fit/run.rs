@@ -3,8 +3,8 @@
 use super::data::Data;
 use super::nonlinear::IterationSettings;
 use super::{
-    Family, Fit, FitEnd, FitError, FitPoint, FitRequest, Parameter, Variable, Window, families, guess,
-    polynomial, statistics,
+    Family, Fit, FitEnd, FitError, FitPoint, FitRequest, Parameter, Variable, Variance, Window, families,
+    guess, polynomial, statistics,
 };
 use crate::estimate::{ErrorSource, Estimate};
 use crate::notice::{Code, Notice};
@@ -37,6 +37,7 @@ struct Solved {
     /// (Jᵀ W J)⁻¹ of the parameters.
     unit_covariance: Vec<Vec<f64>>,
     leave_one_out_rms_hartree: Option<f64>,
+    reciprocal_condition: Option<f64>,
     end: FitEnd,
     notices: Vec<Notice>,
 }
@@ -50,6 +51,19 @@ struct Solved {
 /// [`FitError`] when there are too few points, no convergence, no minimum, dependent parameters, or
 /// numbers that are not finite.
 pub fn fit(request: FitRequest, points: &[FitPoint], window: Window) -> Result<Fit, FitError> {
+    fit_with(request, points, window, Variance::FromResiduals)
+}
+
+/// The same, with what is known of the variance: [`Variance::Declared`] sets s² = 1.
+///
+/// # Errors
+/// As [`fit`].
+pub fn fit_with(
+    request: FitRequest,
+    points: &[FitPoint],
+    window: Window,
+    variance: Variance,
+) -> Result<Fit, FitError> {
     let data = Data::new(points, 3)?;
     let solved = match request.family {
         Family::Harmonic => harmonic(&data)?,
@@ -69,7 +83,7 @@ pub fn fit(request: FitRequest, points: &[FitPoint], window: Window) -> Result<F
             iterated(&data, &HulburtHirschfelder::starts(&guess::well_shape(&data)?))?
         }
     };
-    Ok(finish(&data, solved, window))
+    Ok(finish(&data, solved, window, variance))
 }
 
 /// The Morse function through the points given, equal weights, for the base of the curve.
@@ -104,7 +118,8 @@ fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, F
     if !(lowest..=highest).contains(&asked) {
         return Err(FitError::Degree { asked, lowest, highest });
     }
-    let degree = asked.min(data.len() as u32 - 1);
+    // Two points more than coefficients, so that there is an error to speak of; a parabola needs only its three.
+    let degree = asked.min((data.len() as u32).saturating_sub(3).max(lowest));
     // The Ogilvie variable is not affine in anything fixed; the fit in z is its start.
     let linear_variable = if variable == Variable::Ogilvie { Variable::Z } else { variable };
     let fit = polynomial::fit(data, linear_variable, degree as usize)?;
@@ -121,8 +136,9 @@ fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, F
     solved.degree = Some(degree);
     if degree < asked {
         let text = format!(
-            "The polynomial of degree {asked} needs {} points and the window holds {}; degree {degree} was fitted.",
-            asked + 1,
+            "The polynomial of degree {asked} needs {} points to have standard errors and the window holds {}; \
+             degree {degree} was fitted.",
+            asked + 3,
             data.len()
         );
         solved.notices.push(Notice::info(Code::FewPoints, text));
@@ -180,6 +196,7 @@ fn linear_solved(
         degree,
         unit_covariance: statistics::propagate(jacobian, &linear.unit_covariance),
         leave_one_out_rms_hartree: (n > linear.coefficients.len()).then(|| (sum / n as f64).sqrt()),
+        reciprocal_condition: None,
         end: FitEnd::Direct,
         notices: Vec::new(),
     }
@@ -187,27 +204,37 @@ fn linear_solved(
 
 fn iterated<P: Parametric + Clone + Into<Model>>(data: &Data, starts: &[P]) -> Result<Solved, FitError> {
     let (model, solution) = families::fit(data, starts, SETTINGS)?;
+    families::told_apart(data, &model, &solution)?;
     Ok(Solved {
         leave_one_out_rms_hartree: families::leave_one_out_rms(data, &model),
         model: model.into(),
         degree: None,
         unit_covariance: solution.unit_covariance,
+        reciprocal_condition: Some(solution.reciprocal_condition),
         end: solution.end,
         notices: Vec::new(),
     })
 }
 
 /// Statistics from the residuals of the model as it will be evaluated by others.
-fn finish(data: &Data, solved: Solved, window: Window) -> Fit {
-    let Solved { mut model, degree, unit_covariance, leave_one_out_rms_hartree, end, mut notices } = solved;
+fn finish(data: &Data, solved: Solved, window: Window, variance: Variance) -> Fit {
+    let Solved {
+        mut model,
+        degree,
+        unit_covariance,
+        leave_one_out_rms_hartree,
+        reciprocal_condition,
+        end,
+        mut notices,
+    } = solved;
     let residuals: Vec<f64> =
         data.r_bohr.iter().zip(&data.energy_hartree).map(|(&r, e)| model.energy_hartree(r) - e).collect();
     let (n, p) = (data.len(), unit_covariance.len());
     let weighted_square_sum: f64 = residuals.iter().zip(&data.weight).map(|(d, w)| w * d * d).sum();
     let (rms_residual_hartree, largest_residual_hartree) = statistics::rms_and_largest(&residuals);
-    let covariance = statistics::covariance(&unit_covariance, weighted_square_sum, n)
+    let covariance = statistics::covariance(&unit_covariance, weighted_square_sum, n, variance)
         .filter(|c| c.iter().flatten().all(|x| x.is_finite()));
-    let source = error_source(&residuals, &covariance, &mut notices, n, model.family());
+    let source = error_source(&residuals, &covariance, &mut notices, n, model.family(), variance);
     model.shift_energy_hartree(data.zero_hartree);
     let parametric = model.as_parametric();
     let parameters = parametric
@@ -234,6 +261,7 @@ fn finish(data: &Data, solved: Solved, window: Window) -> Fit {
         largest_residual_hartree,
         aicc: statistics::aicc(weighted_square_sum, n, p),
         leave_one_out_rms_hartree: leave_one_out_rms_hartree.filter(|x| x.is_finite()),
+        reciprocal_condition,
         residuals: data.r_bohr.iter().copied().zip(residuals).collect(),
         notices,
         model,
@@ -247,6 +275,7 @@ fn error_source(
     notices: &mut Vec<Notice>,
     n: usize,
     family: Family,
+    variance: Variance,
 ) -> ErrorSource {
     if covariance.is_none() {
         let text = format!(
@@ -266,6 +295,7 @@ fn error_source(
             notices.push(Notice::info(Code::Misfit, text));
             ErrorSource::Misfit
         }
+        _ if variance == Variance::Declared => ErrorSource::Noise,
         _ => ErrorSource::Fit,
     }
 }

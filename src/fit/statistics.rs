@@ -1,9 +1,19 @@
 //! What the residuals of a fit say: spread, information criterion, smoothness.
 
-/// Covariance s² (Jᵀ W J)⁻¹ with s² = S/(n − p); none when n = p.
-pub(crate) fn covariance(unit: &[Vec<f64>], weighted_square_sum: f64, n: usize) -> Option<Vec<Vec<f64>>> {
+use super::Variance;
+
+/// Covariance s² (Jᵀ W J)⁻¹ with s² = S/(n − p), or s² = 1 where the weights are declared as 1/σ²; none when n = p.
+pub(crate) fn covariance(
+    unit: &[Vec<f64>],
+    weighted_square_sum: f64,
+    n: usize,
+    variance: Variance,
+) -> Option<Vec<Vec<f64>>> {
     let freedom = n.checked_sub(unit.len()).filter(|&f| f > 0)?;
-    let variance = weighted_square_sum / freedom as f64;
+    let variance = match variance {
+        Variance::FromResiduals => weighted_square_sum / freedom as f64,
+        Variance::Declared => 1.0,
+    };
     Some(unit.iter().map(|row| row.iter().map(|u| u * variance).collect()).collect())
 }
 

@@ -168,6 +168,28 @@ registry! {
     HulburtHirschfelder as "hulburt_hirschfelder", "Hulburt-Hirschfelder",
 }
 
+impl Parametric for Model {
+    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
+        self.as_parametric().parameter_names()
+    }
+    fn values(&self) -> Vec<f64> {
+        self.as_parametric().values()
+    }
+    fn set_values(&mut self, values: &[f64]) {
+        Self::set_values(self, values);
+    }
+    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
+        self.as_parametric().gradient(r_bohr, gradient)
+    }
+    fn fault(&self) -> Option<ModelFault> {
+        self.as_parametric().fault()
+    }
+    /// The start of the simplest family: what family to take is not the shape's to say.
+    fn starts(shape: &LocalShape) -> Vec<Self> {
+        Harmonic::starts(shape).into_iter().map(Self::from).collect()
+    }
+}
+
 impl Model {
     /// Closed-form levels in hartree above the model's own minimum, v ascending, for a reduced mass in
     /// electron masses; none where the family has no closed form. At most `count` for a harmonic function.

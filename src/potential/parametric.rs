@@ -36,6 +36,17 @@ pub enum ModelFault {
     BondLength,
 }
 
+impl std::fmt::Display for ModelFault {
+    fn fmt(&self, f: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
+        f.write_str(match self {
+            Self::ForceConstant => "the force constant",
+            Self::WellDepth => "the well depth",
+            Self::RangeParameter => "the range parameter",
+            Self::BondLength => "the bond length of the minimum",
+        })
+    }
+}
+
 impl ModelFault {
     /// `fault` when `value` is not above zero (NaN included).
     pub(crate) fn unless_positive(fault: Self, value: f64) -> Option<Self> {

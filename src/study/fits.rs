@@ -1,132 +1,205 @@
-//! The fits of a study: the points in the window, each model, and what follows from the fitted function.
+//! The fits of a study: the points in the window with their weights, each model, and what follows from the
+//! fitted function.
 
+use super::derived;
 use super::points::fit_point;
-use crate::estimate::{ErrorSource, Estimate};
-use crate::findings::{Findings, FitFindings};
-use crate::fit::{Fit, FitPoint, FitRequest, Window, default_window, fit};
-use crate::potential::curve::{LocalDerivatives, ScanCurve};
+use crate::estimate::Estimate;
+use crate::findings::{Findings, FitBootstrap, FitFindings};
+use crate::fit::comparison::{compare, label};
+use crate::fit::{
+    BootstrapError, BootstrapSettings, Fit, FitError, FitPoint, FitRequest, Variance, WeightedPoint,
+    Weighting, Window, bootstrap, declared_weight_per_hartree2, default_window, fit_with,
+};
+use crate::notice::{Code, Notice};
+use crate::potential::curve::ScanCurve;
 use crate::potential::{Family, Model, Potential as _};
-use crate::radial::{RadialRequest, bound_states};
-use crate::spectroscopy::{DunhamConstants, dunham};
 use crate::units::to_per_cm;
-
-/// Ladders without an end (harmonic, rising polynomials) are listed up to this many rungs: far beyond what a
-/// fit near the minimum can say.
-const RUNGS: usize = 40;
 
 /// Does every fit that the settings ask for.
 pub fn fit_all(findings: &mut Findings, curve: &ScanCurve) {
-    let source = &findings.source;
-    let window = findings.settings.fits.window.unwrap_or_else(|| {
-        let r: Vec<f64> = source.points.iter().filter(|p| p.used).map(|p| p.r_as_read).collect();
-        default_window(curve.local.r_e_bohr, &r, source.length_unit)
-    });
-    let points: Vec<FitPoint> = source
-        .points
-        .iter()
-        .filter(|p| p.used && window.contains(p.r_as_read, source.length_unit))
-        .map(fit_point)
-        .collect();
-    let mass_me = findings.masses.as_ref().map(|m| m.reduced_mass_me);
-    for &request in &findings.settings.fits.requests {
-        let found = one_fit(request, &points, window, mass_me);
-        if let Ok(fit) = &found.result {
-            findings.notices.extend(fit.notices.iter().cloned());
+    weigh(findings, curve);
+    let window = window(findings, curve);
+    let (inside, outside) = split(findings, curve, window);
+    let variance = findings.settings.fits.weights.variance(curve.noise_hartree);
+    let mass_me = mass_me(findings);
+    for request in findings.settings.fits.requests.clone() {
+        let found = one_fit(request, &inside, window, variance, mass_me);
+        match &found.result {
+            Ok(fit) => {
+                findings.notices.extend(fit.notices.iter().cloned());
+                findings.notices.extend(remarks(fit, curve));
+            }
+            Err(error) => findings.notices.push(failure(request, error)),
         }
         findings.fits.push(found);
     }
-}
-
-fn one_fit(request: FitRequest, points: &[FitPoint], window: Window, mass_me: Option<f64>) -> FitFindings {
-    let result = fit(request, points, window);
-    let (mut constants_per_cm, mut levels_per_cm) = (Vec::new(), Vec::new());
-    if let (Ok(fit), Some(mass_me)) = (&result, mass_me) {
-        constants_per_cm = constants(fit, mass_me);
-        levels_per_cm = levels(&fit.model, mass_me);
-    }
-    FitFindings { request, result, constants_per_cm, levels_per_cm }
-}
-
-/// Dunham's constants of the fitted function, with the covariance of its parameters propagated
-/// linearly: σ² = gᵀ C g, g by central differences of one thousandth of a standard error.
-fn constants(fit: &Fit, mass_me: f64) -> Vec<(&'static str, Option<Estimate>)> {
-    let harmonic = fit.model.family() == Family::Harmonic;
-    let named = |c: &DunhamConstants| {
-        let anharmonic = |value: f64| (!harmonic).then_some(value);
-        [
-            ("omega_e", Some(c.omega_e_per_cm)),
-            ("omega_e_x_e", anharmonic(c.omega_e_x_e_per_cm)),
-            ("b_e", Some(c.b_e_per_cm)),
-            ("alpha_e", anharmonic(c.alpha_e_per_cm)),
-        ]
-    };
-    let Some(centre) = local(&fit.model).map(|l| named(&dunham(&l, mass_me))) else { return Vec::new() };
-    let gradient: Option<Vec<[f64; 4]>> = (0..fit.covariance.len())
-        .map(|i| {
-            let step = 1e-3 * fit.covariance[i][i].sqrt();
-            if step == 0.0 {
-                return Some([0.0; 4]);
+    let pairs: Vec<(FitRequest, &Result<Fit, FitError>)> =
+        findings.fits.iter().map(|f| (f.request, &f.result)).collect();
+    findings.comparison = compare(&pairs, &outside);
+    if let Some(settings) = findings.settings.fits.bootstrap {
+        for index in 0..findings.fits.len() {
+            match bootstrap_fit(findings, index, settings, &mut |_, _| true) {
+                Ok(found) => findings.fits[index].bootstrap = found,
+                Err(error) => {
+                    let family = findings.fits[index].request.family.title();
+                    let text = format!("No resampled errors of the {family} fit: {error}.");
+                    findings.notices.push(Notice::caution(Code::NotConverged, text));
+                }
             }
-            let moved = |sign: f64| {
-                let mut model = fit.model.clone();
-                let mut values = model.as_parametric().values();
-                values[i] += sign * step;
-                model.set_values(&values);
-                local(&model).map(|l| named(&dunham(&l, mass_me)).map(|(_, v)| v.unwrap_or(0.0)))
-            };
-            let (up, down) = (moved(1.0)?, moved(-1.0)?);
-            Some(std::array::from_fn(|c| (up[c] - down[c]) / (2.0 * step)))
-        })
-        .collect();
-    let source = fit.parameters.iter().find_map(|p| p.estimate.source).unwrap_or(ErrorSource::Fit);
-    centre
-        .iter()
-        .enumerate()
-        .map(|(c, (name, value))| {
-            let error = gradient.as_ref().filter(|g| !g.is_empty()).map(|g| {
-                let variance: f64 = (0..g.len())
-                    .flat_map(|i| (0..g.len()).map(move |j| (i, j)))
-                    .map(|(i, j)| g[i][c] * fit.covariance[i][j] * g[j][c])
-                    .sum();
-                variance.max(0.0).sqrt()
-            });
-            let estimate = value.filter(|v| v.is_finite()).map(|v| match error {
-                Some(error) => Estimate::with_error(v, error, source),
-                None => Estimate::exact(v),
-            });
-            (*name, estimate)
-        })
-        .collect()
+        }
+    }
 }
 
-/// The fitted function at its own minimum.
-fn local(model: &Model) -> Option<LocalDerivatives> {
-    let r_e = model.minimum_bohr();
-    let [v_e, _, second, third, fourth] = model.derivatives_hartree(r_e);
-    (second > 0.0 && second.is_finite()).then_some(LocalDerivatives {
-        r_e_bohr: r_e,
-        v_e_hartree: v_e,
-        second_hartree: second,
-        third_hartree: third,
-        fourth_hartree: fourth,
+fn mass_me(findings: &Findings) -> Option<f64> {
+    findings.masses.as_ref().map(|m| m.reduced_mass_me)
+}
+
+fn window(findings: &Findings, curve: &ScanCurve) -> Window {
+    let source = &findings.source;
+    findings.settings.fits.window.unwrap_or_else(|| {
+        let r: Vec<f64> = source.points.iter().filter(|p| p.used).map(|p| p.r_as_read).collect();
+        default_window(curve.local.r_e_bohr, &r, source.length_unit)
     })
 }
 
-/// The function's own levels in cm⁻¹ above its own minimum: closed form where there is one.
-fn levels(model: &Model, mass_me: f64) -> Vec<f64> {
-    let hartree = model.closed_form_levels_hartree(mass_me, RUNGS).unwrap_or_else(|| {
-        let mut above = model.clone();
-        let e_min = model.energy_hartree(model.minimum_bohr());
-        above.shift_energy_hartree(-e_min);
-        let request = RadialRequest {
-            reduced_mass_me: mass_me,
-            rotation_x: 0.0,
-            relative_accuracy: 1e-10,
-            highest_v: Some(RUNGS - 1),
+/// Gives the points their weights; declared ones in cm² (1/σ², σ in cm⁻¹).
+fn weigh(findings: &mut Findings, curve: &ScanCurve) {
+    let weights = &findings.settings.fits.weights;
+    if matches!(weights, Weighting::Noise { sigma_per_cm: None }) && curve.noise_hartree.is_none() {
+        let text = "No noise can be told from these points, so the fits weight them alike; state it to weight by it.";
+        findings.notices.push(Notice::info(Code::Noise, text));
+    }
+    for point in &mut findings.source.points {
+        point.weight = weights.weight(WeightedPoint {
+            row: point.row,
+            above_minimum_hartree: point.energy_hartree - curve.v_e_hartree.value,
+            noise_hartree: curve.noise_hartree,
+        });
+    }
+}
+
+/// The points in use inside and outside the window, as fits take them.
+fn split(findings: &Findings, curve: &ScanCurve, window: Window) -> (Vec<FitPoint>, Vec<FitPoint>) {
+    let declared = findings.settings.fits.weights.variance(curve.noise_hartree) == Variance::Declared;
+    let (mut inside, mut outside) = (Vec::new(), Vec::new());
+    for point in findings.source.points.iter().filter(|p| p.used) {
+        let mut taken = fit_point(point);
+        if declared {
+            taken.weight = declared_weight_per_hartree2(taken.weight);
+        }
+        let part = if window.contains(point.r_as_read, findings.source.length_unit) {
+            &mut inside
+        } else {
+            &mut outside
         };
-        bound_states(&above, &request)
-            .map(|states| states.iter().map(|s| s.energy_hartree).collect())
-            .unwrap_or_default()
-    });
-    hartree.into_iter().map(to_per_cm).collect()
+        part.push(taken);
+    }
+    (inside, outside)
+}
+
+fn one_fit(
+    request: FitRequest,
+    points: &[FitPoint],
+    window: Window,
+    variance: Variance,
+    mass_me: Option<f64>,
+) -> FitFindings {
+    let result = fit_with(request, points, window, variance);
+    let (mut constants_per_cm, mut levels) = (Vec::new(), Vec::<Estimate>::new());
+    if let (Ok(fit), Some(mass_me)) = (&result, mass_me) {
+        (constants_per_cm, levels) = derived::derived(fit, mass_me);
+    }
+    FitFindings {
+        request,
+        result,
+        constants_per_cm,
+        levels_per_cm: levels.iter().map(|e| e.value).collect(),
+        level_errors_per_cm: levels.iter().map(|e| e.std_error).collect(),
+        bootstrap: None,
+    }
+}
+
+/// Standard errors of the fit at `index` and of its constants and levels, by resampled residuals. None where
+/// there is no such fit.
+///
+/// Takes the points and weights of the findings as they are; `progress` gets (done, all) after each repeat and stops
+/// the work by returning false.
+///
+/// # Errors
+/// [`BootstrapError`].
+pub fn bootstrap_fit(
+    findings: &Findings,
+    index: usize,
+    settings: BootstrapSettings,
+    progress: &mut dyn FnMut(usize, usize) -> bool,
+) -> Result<Option<FitBootstrap>, BootstrapError> {
+    let Some(found) = findings.fits.get(index) else { return Ok(None) };
+    let (Ok(fit), Some(curve)) = (&found.result, findings.curve.as_deref()) else { return Ok(None) };
+    let (points, _) = split(findings, curve, fit.window);
+    let mass_me = mass_me(findings);
+    let quantities = |model: &Model| mass_me.map_or_else(Vec::new, |mass| derived::values(model, mass));
+    let spread = bootstrap(fit, &points, settings, &quantities, progress)?;
+    let constants = derived::NAMES.len().min(spread.quantity_errors.len());
+    let (constant_errors, level_errors) = spread.quantity_errors.split_at(constants);
+    Ok(Some(FitBootstrap {
+        settings,
+        failed: spread.failed,
+        parameter_errors: spread.parameter_errors,
+        constant_errors_per_cm: constant_errors.to_vec(),
+        level_errors_per_cm: level_errors.to_vec(),
+    }))
+}
+
+fn failure(request: FitRequest, error: &FitError) -> Notice {
+    let text = format!("There is no {} fit: {error}.", request.family.title());
+    Notice::caution(error.code(), text)
+}
+
+/// Iterated fits below this condition have lost half of their digits.
+const ILL_CONDITIONED: f64 = 1e-8;
+/// A window is narrow for a model when the parameter that needs it most has a standard error above this share of it,
+const NARROW: f64 = 0.5;
+/// and wide when the curvature at the minimum of the fit misses that of the curve by more than this share.
+const WIDE: f64 = 0.01;
+
+/// What a fit that succeeded leaves doubtful.
+fn remarks(fit: &Fit, curve: &ScanCurve) -> Vec<Notice> {
+    let name = label(fit);
+    let mut notices = Vec::new();
+    if let Some(condition) = fit.reciprocal_condition.filter(|c| *c < ILL_CONDITIONED) {
+        let text = format!(
+            "The points hardly tell the parameters of the {name} fit apart (reciprocal condition number {condition:.1e}); \
+             widen the window or take fewer parameters."
+        );
+        notices.push(Notice::caution(Code::IllConditioned, text));
+    }
+    // The last parameter of a series, the depth of a well.
+    let depth = fit.parameters.iter().find(|p| p.name == "d_e");
+    let last = fit.parameters.last().filter(|_| fit.model.family() == Family::Polynomial).or(depth);
+    if let Some(parameter) = last
+        && let Some(error) = parameter.estimate.std_error
+        && error > NARROW * parameter.estimate.value.abs()
+    {
+        let text = format!(
+            "The window is narrow for the {name} fit: the standard error of {} is {:.0} % of its value. Widen the window \
+             or take fewer parameters.",
+            parameter.name,
+            100.0 * error / parameter.estimate.value.abs()
+        );
+        notices.push(Notice::info(Code::NarrowWindow, text));
+    }
+    let second = fit.model.derivatives_hartree(fit.model.minimum_bohr())[2];
+    let bias = second / curve.local.second_hartree - 1.0;
+    let misfit = fit.notices.iter().any(|n| n.code == Code::Misfit);
+    if misfit && bias.abs() > WIDE && curve.local.second_hartree > 0.0 {
+        let text = format!(
+            "The window is wide for the {name} fit: its residuals ({} cm-1 rms) are misfit, and its force constant is \
+             {:.1} % {} than that of the curve at its minimum. Narrow the window or take another family.",
+            crate::digits::rounded(to_per_cm(fit.rms_residual_hartree), 2),
+            100.0 * bias.abs(),
+            if bias > 0.0 { "larger" } else { "smaller" }
+        );
+        notices.push(Notice::info(Code::WideWindow, text));
+    }
+    notices
 }

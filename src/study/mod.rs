@@ -1,11 +1,13 @@
 //! The study: one pure function from scan and settings to findings. This file is only the order of the
 //! steps; each step has a file of its own or belongs to an area of its own.
 
+mod derived;
 mod fits;
 mod levels;
 mod points;
 
 use crate::findings::{Findings, Source};
+use crate::fit::Comparison;
 use crate::fit::curve::build_curve;
 use crate::notice::{Code, Notice};
 use crate::reach;
@@ -16,6 +18,8 @@ use crate::species::{self, SpeciesError};
 use crate::spectroscopy::{self, Constants, LevelSet};
 use std::sync::Arc;
 use thiserror::Error;
+
+pub use fits::bootstrap_fit;
 
 /// Why settings and scan do not fit together (a wrong name, not a bad curve).
 #[derive(Clone, Debug, PartialEq, Error)]
@@ -111,6 +115,7 @@ pub fn study_observed(
         settings: settings.clone(),
         curve: None,
         fits: Vec::new(),
+        comparison: Comparison::default(),
         levels: Vec::new(),
         constants: Constants::default(),
         reach: None,

@@ -34,7 +34,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
     ("species", &["units", "estimate"]),
     ("scan", &["units", "estimate", "notice", "species"]),
     ("potential", &["units", "estimate", "notice"]),
-    ("fit", &["units", "estimate", "notice", "potential", "scan"]),
+    ("fit", &["units", "estimate", "digits", "notice", "potential", "scan"]),
     ("radial", &["units", "estimate", "notice", "potential"]),
     ("spectroscopy", &["units", "estimate", "notice", "potential", "radial", "settings", "fit"]),
     ("thermal", &["units", "radial"]),
@@ -61,6 +61,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
         "study",
         &[
             "units",
+            "digits",
             "estimate",
             "notice",
             "species",

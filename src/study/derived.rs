@@ -1,0 +1,173 @@
+//! What follows from a fitted function: constants and levels, with the covariance of its parameters
+//! carried to each of them, σ² = gᵀ C g.
+
+use crate::estimate::Estimate;
+use crate::fit::Fit;
+use crate::potential::curve::LocalDerivatives;
+use crate::potential::{Family, Model, Parametric as _, Potential as _};
+use crate::radial::{RadialRequest, bound_states};
+use crate::spectroscopy::dunham;
+use crate::units::to_per_cm;
+
+/// Ladders without an end (harmonic, rising polynomials) are listed up to this many rungs: far beyond what a
+/// fit near the minimum can say.
+const RUNGS: usize = 40;
+
+/// Names of the constants, in the order in which they are listed.
+pub const NAMES: [&str; 6] = ["omega_e", "omega_e_x_e", "b_e", "alpha_e", "d_e", "zero_point_energy"];
+
+/// How many of them follow from the derivatives at the minimum.
+const FROM_DERIVATIVES: usize = 4;
+
+/// A constant by its name; none where the function has none.
+pub type Named = (&'static str, Option<Estimate>);
+
+/// The constants of a fitted function in cm⁻¹ and its levels in cm⁻¹ above its own minimum.
+pub fn derived(fit: &Fit, mass_me: f64) -> (Vec<Named>, Vec<Estimate>) {
+    let levels = levels(fit, mass_me);
+    let mut constants = from_derivatives(fit, mass_me);
+    if constants.is_empty() {
+        return (constants, levels);
+    }
+    let depth = fit.parameters.iter().find(|p| p.name == "d_e");
+    constants.push((NAMES[FROM_DERIVATIVES], depth.map(|p| p.estimate.scaled(to_per_cm(1.0)))));
+    constants.push((NAMES[FROM_DERIVATIVES + 1], levels.first().copied()));
+    (constants, levels)
+}
+
+/// The same numbers without errors, for a model whose parameters were resampled: the constants in the order of
+/// [`NAMES`] (NaN where there is none), then the levels.
+pub fn values(model: &Model, mass_me: f64) -> Vec<f64> {
+    let levels = solve(model, mass_me, &mut |_, _| ());
+    let names = model.parameter_names();
+    let depth = names.iter().position(|(name, _)| name == "d_e").map(|i| to_per_cm(model.values()[i]));
+    let mut values = named(model, mass_me).unwrap_or([f64::NAN; FROM_DERIVATIVES]).to_vec();
+    values.push(depth.unwrap_or(f64::NAN));
+    values.push(levels.first().copied().unwrap_or(f64::NAN));
+    values.extend(levels);
+    values
+}
+
+/// ω_e, ω_e x_e, B_e, α_e from the derivatives at the minimum; NaN for what a parabola does not have.
+fn named(model: &Model, mass_me: f64) -> Option<[f64; FROM_DERIVATIVES]> {
+    let local = LocalDerivatives::new(model.minimum_bohr(), model.derivatives_hartree(model.minimum_bohr()));
+    if !(local.second_hartree > 0.0 && local.second_hartree.is_finite()) {
+        return None;
+    }
+    let c = dunham(&local, mass_me);
+    let anharmonic = |value: f64| if model.family() == Family::Harmonic { f64::NAN } else { value };
+    Some([c.omega_e_per_cm, anharmonic(c.omega_e_x_e_per_cm), c.b_e_per_cm, anharmonic(c.alpha_e_per_cm)])
+}
+
+fn from_derivatives(fit: &Fit, mass_me: f64) -> Vec<Named> {
+    let Some(centre) = named(&fit.model, mass_me) else { return Vec::new() };
+    let gradient = gradient(fit, |model| named(model, mass_me).map(|v| v.to_vec()));
+    (0..FROM_DERIVATIVES)
+        .map(|c| {
+            let value = Some(centre[c]).filter(|v| v.is_finite());
+            let along = gradient.as_ref().map(|g| g.iter().map(|row| row[c]).collect::<Vec<f64>>());
+            (NAMES[c], value.map(|v| with_error(fit, v, along.as_deref())))
+        })
+        .collect()
+}
+
+fn with_error(fit: &Fit, value: f64, gradient: Option<&[f64]>) -> Estimate {
+    match gradient.and_then(|g| fit.propagated(g)) {
+        Some(error) => Estimate::with_error(value, error, fit.error_source()),
+        None => Estimate::exact(value),
+    }
+}
+
+/// ∂quantities/∂p by central differences, one row a parameter; none when no error is known or a quantity is
+/// missing beside the solution.
+///
+/// The step is 6e-6 of the parameter (the cube root of the rounding unit balances rounding and curvature) or a
+/// thousandth of its standard error, whichever is larger.
+fn gradient(fit: &Fit, quantities: impl Fn(&Model) -> Option<Vec<f64>>) -> Option<Vec<Vec<f64>>> {
+    if fit.covariance.is_empty() {
+        return None;
+    }
+    let centre = fit.model.values();
+    (0..centre.len())
+        .map(|i| {
+            let step = (6e-6 * centre[i].abs()).max(1e-3 * fit.covariance[i][i].sqrt());
+            let moved = |sign: f64| {
+                let mut values = centre.clone();
+                values[i] += sign * step;
+                let mut model = fit.model.clone();
+                model.set_values(&values);
+                quantities(&model)
+            };
+            let (up, down) = (moved(1.0)?, moved(-1.0)?);
+            let slope = |(u, d): (&f64, &f64)| if step > 0.0 { (u - d) / (2.0 * step) } else { 0.0 };
+            Some(up.iter().zip(&down).map(slope).collect())
+        })
+        .collect()
+}
+
+/// The function's own levels in cm⁻¹ above its own minimum.
+///
+/// Errors: closed forms by differences; solved levels by ∂E/∂p = ⟨ψ|∂V/∂p|ψ⟩ [Hellmann 1937, Feynman 1939], which
+/// needs no second solution.
+fn levels(fit: &Fit, mass_me: f64) -> Vec<Estimate> {
+    if fit.model.closed_form_levels_hartree(mass_me, RUNGS).is_some() {
+        let closed = |m: &Model| {
+            m.closed_form_levels_hartree(mass_me, RUNGS).map(|l| l.into_iter().map(to_per_cm).collect())
+        };
+        let gradient = gradient(fit, closed);
+        let levels: Vec<f64> = closed(&fit.model).unwrap_or_default();
+        let along =
+            |v: usize| gradient.as_ref()?.iter().map(|row| row.get(v).copied()).collect::<Option<Vec<f64>>>();
+        return levels.iter().enumerate().map(|(v, &e)| with_error(fit, e, along(v).as_deref())).collect();
+    }
+    let mut gradients = Vec::new();
+    let levels = solve(&fit.model, mass_me, &mut |r_bohr: &[f64], densities: &[Vec<f64>]| {
+        if !fit.covariance.is_empty() {
+            gradients = expectation_gradients(&fit.model, r_bohr, densities);
+        }
+    });
+    levels.iter().enumerate().map(|(v, &e)| with_error(fit, e, gradients.get(v).map(Vec::as_slice))).collect()
+}
+
+/// ⟨ψ|∂V/∂p|ψ⟩ of each level in cm⁻¹ per atomic unit; zero for e_min, from which the levels count.
+fn expectation_gradients(model: &Model, r_bohr: &[f64], densities: &[Vec<f64>]) -> Vec<Vec<f64>> {
+    let mut gradient = vec![0.0; model.values().len()];
+    let mut sums = vec![vec![0.0; gradient.len()]; densities.len()];
+    for (i, &r) in r_bohr.iter().enumerate() {
+        if densities.iter().all(|d| d[i] == 0.0) {
+            continue;
+        }
+        model.gradient(r, &mut gradient);
+        for (sum, density) in sums.iter_mut().zip(densities) {
+            sum.iter_mut().zip(&gradient).skip(1).for_each(|(s, g)| *s += to_per_cm(density[i] * g));
+        }
+    }
+    sums
+}
+
+/// Levels in cm⁻¹; closed form where there is one, else solved, and then `seen` gets the mesh and w ψ² of each level.
+fn solve(model: &Model, mass_me: f64, seen: &mut dyn FnMut(&[f64], &[Vec<f64>])) -> Vec<f64> {
+    if let Some(levels) = model.closed_form_levels_hartree(mass_me, RUNGS) {
+        return levels.into_iter().map(to_per_cm).collect();
+    }
+    let mut above = model.clone();
+    above.shift_energy_hartree(-model.energy_hartree(model.minimum_bohr()));
+    let request = RadialRequest {
+        reduced_mass_me: mass_me,
+        rotation_x: 0.0,
+        relative_accuracy: 1e-10,
+        highest_v: Some(RUNGS - 1),
+    };
+    let Ok(states) = bound_states(&above, &request) else { return Vec::new() };
+    if let Some(first) = states.first() {
+        let densities: Vec<Vec<f64>> = states
+            .iter()
+            .map(|s| {
+                let psi = &s.wavefunction;
+                psi.psi.iter().zip(psi.weight_bohr.iter()).map(|(p, w)| w * p * p).collect()
+            })
+            .collect();
+        seen(&first.wavefunction.r_bohr, &densities);
+    }
+    states.iter().map(|s| to_per_cm(s.energy_hartree)).collect()
+}
