@@ -1,7 +1,7 @@
 //! All results of a study: per step a value or that step's failure, and the notices.
 
 use crate::estimate::Estimate;
-use crate::fit::{BootstrapSettings, Comparison, Fit, FitError, FitRequest};
+use crate::fit::{BootstrapSettings, Comparison, Fit, FitError, FitRequest, WindowStudy};
 use crate::notice::{Notice, Severity};
 use crate::potential::curve::ScanCurve;
 use crate::radial::Level;
@@ -102,6 +102,8 @@ pub struct Findings {
     pub fits: Vec<FitFindings>,
     /// The fits side by side.
     pub comparison: Comparison,
+    /// The fits over many windows; none unless asked for.
+    pub window_study: Option<WindowStudy>,
     /// The levels, v ascending.
     pub levels: Vec<Level>,
     /// The constants.

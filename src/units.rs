@@ -164,6 +164,100 @@ impl LengthUnit {
     }
 }
 
+/// Unit of a force constant.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]
+pub enum ForceConstantUnit {
+    /// Newton per metre.
+    #[default]
+    #[serde(rename = "N/m")]
+    NewtonPerMetre,
+    /// Millidyne per angstrom, 100 N/m.
+    #[serde(rename = "mdyn/angstrom")]
+    MillidynePerAngstrom,
+    /// The atomic unit.
+    #[serde(rename = "hartree/bohr^2")]
+    HartreePerBohr2,
+    /// As molecular mechanics in SI-like units has it.
+    #[serde(rename = "kJ/(mol nm^2)")]
+    KilojoulePerMoleNanometre2,
+    /// As molecular mechanics in calories has it.
+    #[serde(rename = "kcal/(mol angstrom^2)")]
+    KilocaloriePerMoleAngstrom2,
+}
+
+impl ForceConstantUnit {
+    /// All of them, in the order in which they are offered.
+    pub const ALL: [Self; 5] = [
+        Self::NewtonPerMetre,
+        Self::MillidynePerAngstrom,
+        Self::HartreePerBohr2,
+        Self::KilojoulePerMoleNanometre2,
+        Self::KilocaloriePerMoleAngstrom2,
+    ];
+
+    /// The name used in files and options.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::NewtonPerMetre => "N/m",
+            Self::MillidynePerAngstrom => "mdyn/angstrom",
+            Self::HartreePerBohr2 => "hartree/bohr^2",
+            Self::KilojoulePerMoleNanometre2 => "kJ/(mol nm^2)",
+            Self::KilocaloriePerMoleAngstrom2 => "kcal/(mol angstrom^2)",
+        }
+    }
+
+    /// How many of this unit make one hartree/bohr².
+    pub const fn per_hartree_per_bohr2(self) -> f64 {
+        const BOHR_NM: f64 = ANGSTROM_PER_BOHR * 0.1;
+        match self {
+            Self::NewtonPerMetre => NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2,
+            Self::MillidynePerAngstrom => NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2 * 0.01,
+            Self::HartreePerBohr2 => 1.0,
+            Self::KilojoulePerMoleNanometre2 => KILOJOULE_PER_MOLE_PER_HARTREE / (BOHR_NM * BOHR_NM),
+            Self::KilocaloriePerMoleAngstrom2 => {
+                KILOJOULE_PER_MOLE_PER_HARTREE / JOULE_PER_CALORIE / (ANGSTROM_PER_BOHR * ANGSTROM_PER_BOHR)
+            }
+        }
+    }
+}
+
+/// What a force constant k stands for.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "snake_case")]
+pub enum ForceConstantConvention {
+    /// V = ½ k x²: k is the curvature.
+    #[default]
+    Half,
+    /// V = k x²: k is half the curvature, as in many force fields.
+    Full,
+}
+
+impl ForceConstantConvention {
+    /// The word used in options.
+    pub const fn word(self) -> &'static str {
+        match self {
+            Self::Half => "half",
+            Self::Full => "full",
+        }
+    }
+
+    /// The formula in plain text.
+    pub const fn formula(self) -> &'static str {
+        match self {
+            Self::Half => "V = 1/2 k x^2",
+            Self::Full => "V = k x^2",
+        }
+    }
+
+    /// k of this convention over the curvature.
+    pub const fn of_curvature(self) -> f64 {
+        match self {
+            Self::Half => 1.0,
+            Self::Full => 0.5,
+        }
+    }
+}
+
 /// Mass in u to electron masses.
 pub const fn u_to_electron_masses(mass_u: f64) -> f64 {
     mass_u / U_PER_ELECTRON_MASS
@@ -220,6 +314,28 @@ mod tests {
         let ours = rotational_constant_per_cm(LengthUnit::Angstrom.to_bohr(1.0), u_to_electron_masses(1.0));
         close(ours, si, 5e-12);
         close(BOLTZMANN_PER_CM_PER_KELVIN, 0.695_034_800_486_127_4, 1e-15);
+    }
+
+    #[test]
+    fn force_constants_agree_with_published_factors() {
+        let per = |unit: ForceConstantUnit| unit.per_hartree_per_bohr2();
+        // The atomic unit of force, 8.2387235038e-8 N (CODATA 2022), over the Bohr radius.
+        close(per(ForceConstantUnit::NewtonPerMetre), 8.238_723_503_8e-8 / 5.291_772_105_44e-11, 1e-10);
+        // 15.569141 mdyn/angstrom a hartree/bohr² (common in force-field work; from memory, older constants).
+        close(per(ForceConstantUnit::MillidynePerAngstrom), 15.569_141, 2e-5);
+        // 143.9325 kcal/(mol angstrom²) a mdyn/angstrom (from memory): 1e-18 J times N_A over 4184 J.
+        let ratio = per(ForceConstantUnit::KilocaloriePerMoleAngstrom2)
+            / per(ForceConstantUnit::MillidynePerAngstrom);
+        close(ratio, 6.022_140_76e23 * 1e-18 / 4184.0, 1e-14);
+        close(ratio, 143.932_5, 1e-5);
+        // 418.4 by definition of the calorie.
+        let ratio = per(ForceConstantUnit::KilojoulePerMoleNanometre2)
+            / per(ForceConstantUnit::KilocaloriePerMoleAngstrom2);
+        close(ratio, 418.4, 1e-14);
+        assert_eq!(per(ForceConstantUnit::HartreePerBohr2), 1.0);
+        for unit in ForceConstantUnit::ALL {
+            assert_eq!(serde_json::to_value(unit).unwrap(), unit.name());
+        }
     }
 
     #[test]

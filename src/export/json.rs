@@ -5,6 +5,7 @@
 //! the format page, and a key cannot differ between the two without being seen.
 
 mod fits;
+mod windows;
 
 use crate::estimate::Estimate;
 use crate::findings::{Findings, Point};
@@ -65,6 +66,7 @@ pub fn findings_to_value(findings: &Findings) -> Value {
         "curve": findings.curve.as_deref().map(curve),
         "fits": findings.fits.iter().map(fit).collect::<Vec<_>>(),
         "comparison": fits::comparison(&findings.comparison),
+        "window_study": findings.window_study.as_ref().map(windows::window_study),
         "levels": findings.levels.iter().map(level).collect::<Vec<_>>(),
         "constants": constants(&findings.constants),
         "reach": findings.reach.as_ref().map(reach),

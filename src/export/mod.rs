@@ -2,4 +2,5 @@
 //! opens a file.
 
 pub mod json;
+pub mod parameters;
 pub mod table;

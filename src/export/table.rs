@@ -1,9 +1,12 @@
-//! Tables as comma-separated text: levels of one or several studies, constants with one row a curve.
+//! Tables as comma-separated text: levels of one or several studies, constants with one row a curve, the fits of
+//! window studies.
 //! Units stand in the header; an empty cell means that the study has no such value.
 
 use crate::estimate::Estimate;
 use crate::findings::Findings;
-use crate::units::{ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom};
+use crate::units::{
+    ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom, to_per_cm,
+};
 use std::io::Write;
 
 /// Which table.
@@ -13,11 +16,14 @@ pub enum Table {
     Levels,
     /// One row a curve.
     Constants,
+    /// One row a fit of the window study.
+    WindowStudy,
 }
 
 impl Table {
     /// The tables by their names on the command line.
-    pub const ALL: [(&'static str, Self); 2] = [("levels", Self::Levels), ("constants", Self::Constants)];
+    pub const ALL: [(&'static str, Self); 3] =
+        [("levels", Self::Levels), ("constants", Self::Constants), ("window-study", Self::WindowStudy)];
 
     /// Writes the table of all studies given.
     ///
@@ -27,6 +33,7 @@ impl Table {
         match self {
             Self::Levels => write_levels(studies, out),
             Self::Constants => write_constants(studies, out),
+            Self::WindowStudy => write_window_studies(studies, out),
         }
     }
 }
@@ -83,6 +90,72 @@ fn write_levels(studies: &[&Findings], out: impl Write) -> Result<(), csv::Error
                 cell(Some(level.minus_harmonic_per_cm)),
                 cell(level.minus_morse_per_cm),
             ])?;
+        }
+    }
+    writer.flush()?;
+    Ok(())
+}
+
+const WINDOW_COLUMNS: [&str; 21] = [
+    "file",
+    "curve",
+    "model",
+    "degree",
+    "from_angstrom",
+    "to_angstrom",
+    "points",
+    "half_width_angstrom",
+    "symmetric",
+    "converged",
+    "r_e_angstrom",
+    "r_e_std_error_angstrom",
+    "k_N/m",
+    "k_std_error_N/m",
+    "omega_e_cm-1",
+    "omega_e_std_error_cm-1",
+    "omega_e_x_e_cm-1",
+    "omega_e_x_e_std_error_cm-1",
+    "rms_residual_cm-1",
+    "aicc",
+    "proposed",
+];
+
+fn write_window_studies(studies: &[&Findings], out: impl Write) -> Result<(), csv::Error> {
+    let mut writer = csv::Writer::from_writer(out);
+    writer.write_record(WINDOW_COLUMNS)?;
+    for study in studies {
+        let Some(windows) = &study.window_study else { continue };
+        let proposal = windows.proposed.and_then(|p| windows.plateaus.get(p)).map(|p| p.middle);
+        for (i, fit) in windows.fits.iter().enumerate() {
+            let model = windows.models[fit.model];
+            let numbers = fit.numbers.as_ref().ok();
+            let edge = |value: f64| fit.window.unit.convert(value, LengthUnit::Angstrom).to_string();
+            let mut row = vec![
+                study.source.file_name.clone(),
+                study.source.curve.clone(),
+                model.family.word().to_owned(),
+                model.degree.map_or_else(String::new, |d| d.to_string()),
+                edge(fit.window.from),
+                edge(fit.window.to),
+                fit.points.to_string(),
+                to_angstrom(fit.half_width_bohr()).to_string(),
+                fit.symmetric.to_string(),
+                numbers.is_some().to_string(),
+            ];
+            let k_factor = NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2;
+            for estimate in [
+                numbers.map(|n| n.r_e_bohr.scaled(ANGSTROM_PER_BOHR)),
+                numbers.map(|n| n.force_constant_hartree_per_bohr2.scaled(k_factor)),
+                numbers.and_then(|n| n.omega_e_per_cm),
+                numbers.and_then(|n| n.omega_e_x_e_per_cm),
+            ] {
+                row.push(cell(estimate.map(|e| e.value)));
+                row.push(cell(estimate.and_then(|e| e.std_error)));
+            }
+            row.push(cell(numbers.map(|n| to_per_cm(n.rms_residual_hartree))));
+            row.push(cell(numbers.and_then(|n| n.aicc)));
+            row.push((proposal == Some(i)).to_string());
+            writer.write_record(&row)?;
         }
     }
     writer.flush()?;

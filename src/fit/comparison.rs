@@ -66,9 +66,15 @@ pub fn compare(fits: &[(FitRequest, &Result<Fit, FitError>)], outside: &[FitPoin
     Comparison { fits: compared, sentence }
 }
 
-/// `polynomial of degree 6`, `extended Morse of order 4`, `Morse`.
+/// `polynomial of degree 6`, `extended Morse of order 4`, `Morse`: names of people keep their capital.
 pub fn label(fit: &Fit) -> String {
-    let title = fit.model.family().title();
+    let title = match fit.model.family() {
+        Family::Harmonic => "harmonic",
+        Family::Polynomial => "polynomial",
+        Family::ExtendedMorse => "extended Morse",
+        Family::ExtendedRydberg => "extended Rydberg",
+        named => named.title(),
+    };
     match (fit.model.family(), fit.degree) {
         (Family::Polynomial, Some(degree)) => format!("{title} of degree {degree}"),
         (_, Some(order)) => format!("{title} of order {order}"),
@@ -137,7 +143,7 @@ fn sentence(compared: &[Compared]) -> Option<String> {
         group(&|d| d > SUPPORTED && d <= NO_SUPPORT),
         group(&|d| d > NO_SUPPORT),
     );
-    let mut text = format!("Of these fits the points in the window support the {}", best.label);
+    let mut text = format!("Of these fits the points in the window support the {} fit", best.label);
     if !equal.is_empty() {
         text.push_str(&format!(" and, about as well, the {}", list(&equal)));
     }
@@ -145,6 +151,7 @@ fn sentence(compared: &[Compared]) -> Option<String> {
         text.push_str(&format!("; less well the {}", list(&weak)));
     }
     if !none.is_empty() {
+        // The one of them that comes closest.
         let smallest = none.iter().filter_map(|c| c.aicc_difference).fold(f64::INFINITY, f64::min);
         text.push_str(&format!("; not the {} (AICc higher by {smallest:.0} or more)", list(&none)));
     }
@@ -159,7 +166,7 @@ fn sentence(compared: &[Compared]) -> Option<String> {
     let outside = ranked.iter().filter_map(|c| c.outside_rms_hartree.map(|rms| (rms, *c)));
     if let Some((rms, far)) = outside.min_by(|a, b| a.0.total_cmp(&b.0)) {
         text.push_str(&format!(
-            " Outside the window the {} predicts best ({} cm-1 rms over {} points).",
+            " Outside the window the {} fit predicts best ({} cm-1 rms over {} points).",
             far.label,
             crate::digits::rounded(to_per_cm(rms), 2),
             far.outside_points
@@ -210,7 +217,8 @@ mod tests {
         let outside = |k: usize| found.fits[k].outside_rms_hartree.unwrap();
         assert!(outside(1) < 1e-5 && outside(0) > 0.1 && outside(2) > 100.0 * outside(1));
         let sentence = found.sentence.unwrap();
-        for needle in ["support the Morse", "not the Harmonic", "Outside the window the Morse predicts best"]
+        for needle in
+            ["support the Morse fit", "not the harmonic", "Outside the window the Morse fit predicts best"]
         {
             assert!(sentence.contains(needle), "{sentence}");
         }

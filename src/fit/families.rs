@@ -171,6 +171,22 @@ pub(crate) fn refit<P: Parametric + Clone>(data: &Data, model: &P) -> Option<P> 
     Some(other)
 }
 
+/// The same with the covariance there; none too where the minimum leaves the points, the parameters make no
+/// well, or they cannot be told apart.
+pub(crate) fn refit_with_covariance<P: Parametric + Clone>(
+    data: &Data,
+    model: &P,
+) -> Option<(P, NonlinearSolution)> {
+    if data.len() < model.values().len() {
+        return None;
+    }
+    let found = refit(data, model)?;
+    let mut problem = ModelProblem::new(found.clone(), data);
+    let solution = nonlinear::at(&mut problem, found.values()).ok()?;
+    let (from, to) = (data.r_bohr[0], data.r_bohr[data.len() - 1]);
+    (from..=to).contains(&found.minimum_bohr()).then_some((found, solution))
+}
+
 /// Squared errors Σ of predicting each point from the others, by refits that start at the solution.
 ///
 /// None when one of the refits fails.

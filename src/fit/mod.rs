@@ -15,6 +15,7 @@ pub mod linear;
 pub mod nonlinear;
 mod polynomial;
 mod precise;
+mod propagation;
 mod qr;
 mod run;
 mod statistics;
@@ -22,6 +23,7 @@ mod statistics;
 mod tests;
 mod weights;
 mod window;
+pub mod window_study;
 
 pub use crate::potential::{Family, ModelFault, ParameterUnit, Variable};
 pub use bootstrap::{Bootstrap, BootstrapError, BootstrapSettings, bootstrap};
@@ -32,6 +34,7 @@ pub use weights::{
     EnergyWeights, RowWeight, Variance, WeightedPoint, Weighting, declared_weight_per_hartree2,
 };
 pub use window::{DEFAULT_HALF_WIDTH_OF_R_E, DEFAULT_LEAST_POINTS, Window, default_window};
+pub use window_study::{WindowStudy, WindowStudySettings};
 
 use crate::estimate::{ErrorSource, Estimate};
 use crate::notice::{Code, Notice};
@@ -81,6 +84,9 @@ pub struct FitSettings {
     /// Standard errors by resampled residuals too; none: only by linear propagation.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub bootstrap: Option<BootstrapSettings>,
+    /// The fit repeated over windows and degrees; none: not done.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub window_study: Option<WindowStudySettings>,
 }
 
 impl Default for FitSettings {
@@ -89,6 +95,7 @@ impl Default for FitSettings {
             window: None,
             weights: Weighting::default(),
             bootstrap: None,
+            window_study: None,
             requests: vec![
                 FitRequest::plain(Family::Harmonic),
                 FitRequest::plain(Family::Morse),

@@ -170,6 +170,29 @@ fn run(
         Err(error) => return Err(error),
     };
     undamped(problem, &mut place, &mut evaluations);
+    described(place, p, end, evaluations)
+}
+
+/// The solution that `values` are, without a further step.
+///
+/// # Errors
+/// Not defined there, fewer residuals than parameters, dependent parameters.
+pub(crate) fn at(problem: &mut dyn Problem, values: Vec<f64>) -> Result<NonlinearSolution, NonlinearError> {
+    let p = problem.parameters();
+    if problem.observations() < p || p == 0 {
+        return Err(NonlinearError::TooFewRows);
+    }
+    let place = Place::new(problem, values).ok_or(NonlinearError::NotFinite)?;
+    described(place, p, FitEnd::SmallStep, 1)
+}
+
+fn described(
+    place: Place,
+    p: usize,
+    end: FitEnd,
+    evaluations: usize,
+) -> Result<NonlinearSolution, NonlinearError> {
+    let n = place.residuals.len();
     let qr =
         Qr::new(&place.jacobian, n, p).ok_or(NonlinearError::IllConditioned { reciprocal_condition: 0.0 })?;
     let reciprocal_condition = qr.reciprocal_condition();

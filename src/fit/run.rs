@@ -14,11 +14,11 @@ use crate::potential::{
 };
 
 /// Degree of a polynomial when none is asked for.
-const DEFAULT_DEGREE: u32 = 6;
+pub(crate) const DEFAULT_DEGREE: u32 = 6;
 /// Degrees offered.
 const DEGREES: (u32, u32) = (2, 12);
 /// Order of an extended Morse exponent when none is asked for.
-const DEFAULT_ORDER: u32 = 4;
+pub(crate) const DEFAULT_ORDER: u32 = 4;
 /// Orders offered.
 const ORDERS: (u32, u32) = (0, 12);
 /// Power p of its variable when none is asked for.
@@ -65,25 +65,69 @@ pub fn fit_with(
     variance: Variance,
 ) -> Result<Fit, FitError> {
     let data = Data::new(points, 3)?;
-    let solved = match request.family {
-        Family::Harmonic => harmonic(&data)?,
-        Family::Polynomial => {
-            let variable = request.variable.unwrap_or(Variable::X);
-            power_series(&data, variable, request.degree.unwrap_or(DEFAULT_DEGREE))?
-        }
-        Family::Morse => {
-            let shape = guess::local_shape(&data)?;
-            iterated(&data, &families::morse_starts(&data, &shape))?
-        }
-        Family::ExtendedMorse => extended_morse(&data, request)?,
-        Family::Varshni => iterated(&data, &Varshni::starts(&guess::well_shape(&data)?))?,
-        Family::Rydberg => iterated(&data, &Rydberg::starts(&guess::well_shape(&data)?))?,
-        Family::ExtendedRydberg => iterated(&data, &ExtendedRydberg::starts(&guess::well_shape(&data)?))?,
-        Family::HulburtHirschfelder => {
-            iterated(&data, &HulburtHirschfelder::starts(&guess::well_shape(&data)?))?
-        }
+    Ok(finish(&data, solve(&data, request, LeaveOneOut::Yes)?, window, variance))
+}
+
+/// The same without leave-one-out errors, and for iterated families from a fit to nearly the same points where that
+/// leads somewhere: for many fits in a row.
+///
+/// # Errors
+/// As [`fit`].
+pub(crate) fn fit_for_study(
+    request: FitRequest,
+    points: &[FitPoint],
+    window: Window,
+    variance: Variance,
+    near: Option<&Model>,
+) -> Result<Fit, FitError> {
+    let data = Data::new(points, 3)?;
+    let direct = matches!(request.family, Family::Harmonic | Family::Polynomial);
+    let warm = near.filter(|_| !direct).and_then(|near| {
+        let mut start = near.clone();
+        start.shift_energy_hartree(-data.zero_hartree);
+        families::refit_with_covariance(&data, &start)
+    });
+    let solved = match warm {
+        Some((model, solution)) => Solved {
+            degree: request.degree.filter(|_| request.family == Family::ExtendedMorse),
+            unit_covariance: solution.unit_covariance,
+            reciprocal_condition: Some(solution.reciprocal_condition),
+            leave_one_out_rms_hartree: None,
+            end: solution.end,
+            notices: Vec::new(),
+            model,
+        },
+        None => solve(&data, request, LeaveOneOut::No)?,
     };
     Ok(finish(&data, solved, window, variance))
+}
+
+/// Whether the leave-one-out errors of iterated families, a refit a point, are wanted.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum LeaveOneOut {
+    Yes,
+    No,
+}
+
+fn solve(data: &Data, request: FitRequest, loo: LeaveOneOut) -> Result<Solved, FitError> {
+    match request.family {
+        Family::Harmonic => harmonic(data),
+        Family::Polynomial => {
+            let variable = request.variable.unwrap_or(Variable::X);
+            power_series(data, variable, request.degree.unwrap_or(DEFAULT_DEGREE), loo)
+        }
+        Family::Morse => {
+            let shape = guess::local_shape(data)?;
+            iterated(data, &families::morse_starts(data, &shape), loo)
+        }
+        Family::ExtendedMorse => extended_morse(data, request, loo),
+        Family::Varshni => iterated(data, &Varshni::starts(&guess::well_shape(data)?), loo),
+        Family::Rydberg => iterated(data, &Rydberg::starts(&guess::well_shape(data)?), loo),
+        Family::ExtendedRydberg => iterated(data, &ExtendedRydberg::starts(&guess::well_shape(data)?), loo),
+        Family::HulburtHirschfelder => {
+            iterated(data, &HulburtHirschfelder::starts(&guess::well_shape(data)?), loo)
+        }
+    }
 }
 
 /// The Morse function through the points given, equal weights, for the base of the curve.
@@ -113,7 +157,7 @@ fn harmonic(data: &Data) -> Result<Solved, FitError> {
     Ok(linear_solved(data, model.into(), None, &jacobian, &fit))
 }
 
-fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, FitError> {
+fn power_series(data: &Data, variable: Variable, asked: u32, loo: LeaveOneOut) -> Result<Solved, FitError> {
     let (lowest, highest) = DEGREES;
     if !(lowest..=highest).contains(&asked) {
         return Err(FitError::Degree { asked, lowest, highest });
@@ -129,7 +173,7 @@ fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, F
         let mut from_c2 = vec![0.0; degree as usize - 1];
         from_c2[0] = fit.values[2];
         let start = Polynomial::new(Variable::Ogilvie, fit.values[0], fit.values[1], &from_c2);
-        iterated(data, &[start])?
+        iterated(data, &[start], loo)?
     } else {
         linear_solved(data, model.into(), Some(degree), &fit.jacobian, &fit)
     };
@@ -147,7 +191,7 @@ fn power_series(data: &Data, variable: Variable, asked: u32) -> Result<Solved, F
 }
 
 /// Order by order, each started at the one before: a high order far from its minimum has many false ones.
-fn extended_morse(data: &Data, request: FitRequest) -> Result<Solved, FitError> {
+fn extended_morse(data: &Data, request: FitRequest, loo: LeaveOneOut) -> Result<Solved, FitError> {
     let (asked, power) = (request.degree.unwrap_or(DEFAULT_ORDER), request.power.unwrap_or(DEFAULT_POWER));
     for (asked, (lowest, highest)) in [(asked, ORDERS), (power, POWERS)] {
         if !(lowest..=highest).contains(&asked) {
@@ -167,7 +211,7 @@ fn extended_morse(data: &Data, request: FitRequest) -> Result<Solved, FitError> 
         }
         starts.iter_mut().for_each(|start| start.beta_per_bohr.push(0.0));
     }
-    let mut solved = iterated(data, &starts)?;
+    let mut solved = iterated(data, &starts, loo)?;
     solved.degree = Some(order as u32);
     if order < asked as usize {
         let text = format!(
@@ -202,11 +246,18 @@ fn linear_solved(
     }
 }
 
-fn iterated<P: Parametric + Clone + Into<Model>>(data: &Data, starts: &[P]) -> Result<Solved, FitError> {
+fn iterated<P: Parametric + Clone + Into<Model>>(
+    data: &Data,
+    starts: &[P],
+    loo: LeaveOneOut,
+) -> Result<Solved, FitError> {
     let (model, solution) = families::fit(data, starts, SETTINGS)?;
     families::told_apart(data, &model, &solution)?;
     Ok(Solved {
-        leave_one_out_rms_hartree: families::leave_one_out_rms(data, &model),
+        leave_one_out_rms_hartree: match loo {
+            LeaveOneOut::Yes => families::leave_one_out_rms(data, &model),
+            LeaveOneOut::No => None,
+        },
         model: model.into(),
         degree: None,
         unit_covariance: solution.unit_covariance,

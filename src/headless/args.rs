@@ -1,11 +1,12 @@
 //! Command-line arguments to values.
 
+use crate::export::parameters::ParameterUnits;
 use crate::export::table::Table;
-use crate::fit::Window;
+use crate::fit::{BootstrapSettings, EnergyWeights, Weighting, Window};
 use crate::scan::read::{parse_energy_unit, parse_length_unit};
 use crate::settings::Settings;
 use crate::species::parse_atoms;
-use crate::units::{EnergyUnit, LengthUnit};
+use crate::units::{EnergyUnit, ForceConstantConvention, ForceConstantUnit, LengthUnit};
 use lexopt::{Arg, Parser, ValueExt as _};
 use std::ffi::OsString;
 use std::path::PathBuf;
@@ -49,6 +50,14 @@ pub struct StudyChoices {
     pub asymptote: Option<f64>,
     /// The two atoms whose distance is the bond length, numbered from 1.
     pub bond: Option<[usize; 2]>,
+    /// Weights of the points in fits.
+    pub weights: Option<Weighting>,
+    /// Resampled residuals: how often.
+    pub bootstrap_repeats: Option<usize>,
+    /// Seed of the resampling.
+    pub seed: Option<u64>,
+    /// The fits over all windows.
+    pub window_study: bool,
 }
 
 impl StudyChoices {
@@ -71,6 +80,18 @@ impl StudyChoices {
             settings.masses.reduced_mass_u = None;
         }
         set(&mut settings.masses.reduced_mass_u, &self.reduced_mass_u);
+        if let Some(weights) = &self.weights {
+            settings.fits.weights.clone_from(weights);
+        }
+        if let Some(repeats) = self.bootstrap_repeats {
+            settings.fits.bootstrap.get_or_insert_default().repeats = repeats;
+        }
+        if let Some((seed, bootstrap)) = self.seed.zip(settings.fits.bootstrap.as_mut()) {
+            bootstrap.seed = seed;
+        }
+        if self.window_study {
+            settings.fits.window_study.get_or_insert_default();
+        }
         if let Some(charge) = self.charge {
             settings.masses.charge = charge;
         }
@@ -113,6 +134,10 @@ pub struct StudyArgs {
     pub out_dir: Option<PathBuf>,
     /// Tables to write.
     pub tables: Vec<(Table, PathBuf)>,
+    /// Files for the parameters of the fits, as text or, where the name ends in `.tex`, LaTeX.
+    pub parameters: Option<PathBuf>,
+    /// Units of parameters and force constants, in the summary and in that file.
+    pub units: ParameterUnits,
     /// Replace existing files.
     pub overwrite: bool,
     /// Print timings.
@@ -196,7 +221,18 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
 
 /// An option that neither command has, or that the other one has.
 fn unknown_option(name: &str, is_study: bool) -> UsageError {
-    const STUDY: [&str; 5] = ["out", "out-dir", "table", "timings", "repeat"];
+    const STUDY: [&str; 10] = [
+        "out",
+        "out-dir",
+        "table",
+        "timings",
+        "repeat",
+        "parameters",
+        "parameter-energy-unit",
+        "parameter-length-unit",
+        "force-constant-unit",
+        "convention",
+    ];
     const WINDOW: [&str; 6] = ["renderer", "theme", "page", "picture", "size", "scale"];
     let (others, command) = if is_study {
         (&WINDOW[..], "the window: parabound FILE...")
@@ -255,9 +291,41 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
             let accepted = "two bond lengths in angstrom, the smaller first: 0.8,1.2";
             choices.window = Some(value(parser, "window", accepted, window_range)?);
         }
+        "weights" => {
+            let accepted = "equal, noise, noise=SIGMA (cm-1), energy or energy=STEP (cm-1)";
+            choices.weights = Some(value(parser, "weights", accepted, weighting)?);
+        }
+        "bootstrap" => {
+            let most = BootstrapSettings::MOST_REPEATS;
+            let repeats = |t: &str| t.parse().ok().filter(|k| (2..=most).contains(k));
+            let accepted = format!("a number of repeats from 2 to {most}");
+            choices.bootstrap_repeats = Some(value(parser, "bootstrap", &accepted, repeats)?);
+        }
+        "seed" => {
+            let accepted = "a whole number, not negative";
+            choices.seed = Some(value(parser, "seed", accepted, |t| t.parse().ok())?);
+        }
+        "window-study" => choices.window_study = true,
         _ => return Ok(false),
     }
     Ok(true)
+}
+
+fn weighting(text: &str) -> Option<Weighting> {
+    let (by, number) = match text.split_once('=') {
+        Some((by, number)) => (by, Some(finite(number).filter(|n| *n > 0.0)?)),
+        None => (text, None),
+    };
+    match (by, number) {
+        ("equal", None) => Some(Weighting::Equal {}),
+        ("noise", sigma_per_cm) => Some(Weighting::Noise { sigma_per_cm }),
+        ("energy", step) => {
+            let default = EnergyWeights::default();
+            let step_per_cm = step.unwrap_or(default.step_per_cm);
+            Some(Weighting::Energy(EnergyWeights { step_per_cm, ..default }))
+        }
+        _ => None,
+    }
 }
 
 fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Result<bool, UsageError> {
@@ -265,6 +333,26 @@ fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Resul
         "out" => study.out = Some(parser.value()?.into()),
         "out-dir" => study.out_dir = Some(parser.value()?.into()),
         "timings" => study.timings = true,
+        "parameters" => study.parameters = Some(parser.value()?.into()),
+        "parameter-energy-unit" => {
+            let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
+            study.units.energy = value(parser, "parameter-energy-unit", &names, parse_energy_unit)?;
+        }
+        "parameter-length-unit" => {
+            let names = LengthUnit::ALL.map(LengthUnit::name).join(", ");
+            study.units.length = value(parser, "parameter-length-unit", &names, parse_length_unit)?;
+        }
+        "force-constant-unit" => {
+            let names = ForceConstantUnit::ALL.map(ForceConstantUnit::name).join(", ");
+            let unit = |t: &str| ForceConstantUnit::ALL.into_iter().find(|u| u.name() == t);
+            study.units.force_constant = value(parser, "force-constant-unit", &names, unit)?;
+        }
+        "convention" => {
+            let all = [ForceConstantConvention::Half, ForceConstantConvention::Full];
+            let accepted = "half (V = 1/2 k x^2) or full (V = k x^2)";
+            let convention = |t: &str| all.into_iter().find(|c| c.word() == t);
+            study.units.convention = value(parser, "convention", accepted, convention)?;
+        }
         "repeat" => {
             let count = |t: &str| t.parse().ok().filter(|k| (1..=100_000).contains(k));
             study.repeat = value(parser, "repeat", "a whole number from 1 to 100000", count)?;
@@ -277,11 +365,13 @@ fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Resul
                 let (_, table) = Table::ALL.into_iter().find(|(name, _)| *name == what)?;
                 Some((table, PathBuf::from(file)))
             });
-            study.tables.push(table.ok_or_else(|| UsageError::Value {
+            let (table, file) = table.ok_or_else(|| UsageError::Value {
                 option: "table",
                 found: text.to_string_lossy().into_owned(),
                 accepted: format!("WHAT=FILE.csv with WHAT one of {}", names.join(", ")),
-            })?);
+            })?;
+            study.choices.window_study |= table == Table::WindowStudy;
+            study.tables.push((table, file));
         }
         _ => return Ok(false),
     }
@@ -363,6 +453,25 @@ mod tests {
     }
 
     #[test]
+    fn options_of_the_fits() {
+        let Ok(Command::Study(study)) = parsed(
+            "study a.csv --weights energy=5000 --bootstrap 50 --seed 9 --table window-study=w.csv \
+             --force-constant-unit mdyn/angstrom --convention full --parameters p.tex",
+        ) else {
+            panic!("not understood")
+        };
+        let mut settings = Settings::default();
+        study.choices.apply(&mut settings);
+        assert!(matches!(settings.fits.weights, Weighting::Energy(w) if w.step_per_cm == 5000.0));
+        assert_eq!(settings.fits.bootstrap, Some(BootstrapSettings { repeats: 50, seed: 9 }));
+        assert!(settings.fits.window_study.is_some());
+        assert_eq!(study.units.convention, ForceConstantConvention::Full);
+        assert_eq!(study.units.force_constant, ForceConstantUnit::MillidynePerAngstrom);
+        assert_eq!(weighting("noise=0.5"), Some(Weighting::Noise { sigma_per_cm: Some(0.5) }));
+        assert!(weighting("noise=-1").is_none() && weighting("equal=1").is_none());
+    }
+
+    #[test]
     fn wrong_values_name_what_is_accepted() {
         for (text, needle) in [
             ("study a --length-unit feet", "angstrom, bohr, pm, nm"),
@@ -370,6 +479,11 @@ mod tests {
             ("study a --reduced-mass -3", "positive"),
             ("study a --table residue=x.csv", "levels, constants"),
             ("study", "at least one file"),
+            ("study a --weights=heavy", "noise=SIGMA"),
+            ("study a --force-constant-unit N", "kcal/(mol angstrom^2)"),
+            ("study a --convention quarter", "half (V = 1/2 k x^2)"),
+            ("study a --bootstrap 1", "from 2 to 20000"),
+            ("a --convention full", "belongs to parabound study"),
             ("study a --theme dark", "belongs to the window"),
             ("a --timings", "belongs to parabound study"),
             ("study a --wibble", "wibble"),

@@ -36,6 +36,14 @@ MASSES
 STUDY
   --window FROM,TO           fit window in angstrom (default: 15 % of r_e to each side)
   --asymptote E              energy of the separated atoms, in the file's unit and scale
+  --weights W                weights of the points in fits: equal (default); energy or energy=STEP, a smooth
+                             step down at STEP cm-1 above the minimum; noise or noise=SIGMA, 1/sigma^2
+                             with the estimated noise or SIGMA cm-1, which fixes s^2 = 1. Single
+                             weights stand in the settings.
+  --bootstrap K              standard errors of fits by K resamplings of their residuals too
+  --seed N                   seed of the resampling (default 1)
+  --window-study             repeat the fits over all sensible windows and degrees, find the plateau
+                             of omega_e and propose a window on it
   --settings F               all settings at once, as a findings file carries them; other options
                              given beside it win
 
@@ -43,7 +51,15 @@ RESULTS
   --out F                    findings (JSON); '-' for standard output. Replaces a findings file,
                              refuses any other file unless --overwrite is given
   --out-dir D                one findings file per study in this folder
-  --table WHAT=F.csv         levels or constants (one row a curve) of all studies; may be repeated
+  --table WHAT=F.csv         levels, constants (one row a curve) or window-study (one row a fit, and asks
+                             for that study) of all studies; may be repeated
+  --parameters F             parameters of the fits with value(uncertainty); LaTeX where F ends in .tex,
+                             else text
+  --force-constant-unit U    N/m (default), mdyn/angstrom, hartree/bohr^2, 'kJ/(mol nm^2)',
+                             'kcal/(mol angstrom^2)': in the summary and with --parameters
+  --convention half|full     half (default): V = 1/2 k x^2; full: V = k x^2; likewise
+  --parameter-energy-unit U  unit of well depths and coefficients with --parameters (default cm-1)
+  --parameter-length-unit U  unit of lengths and ranges with --parameters (default angstrom)
   --overwrite                replace existing files
   --timings                  seconds per stage as one JSON line on standard error
   --repeat K                 run each study K times for the timings (their median is given)

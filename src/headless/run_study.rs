@@ -3,6 +3,7 @@
 use super::args::StudyArgs;
 use super::summary;
 use crate::export::json::all_to_string;
+use crate::export::parameters::{self, ParameterUnits};
 use crate::files::{self, Replace};
 use crate::findings::Findings;
 use crate::scan::Scan;
@@ -135,7 +136,7 @@ fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Resu
     if to_standard_output {
         super::print(&all_to_string(&all));
     } else {
-        let texts: Vec<String> = all.iter().map(|f| summary(f)).collect();
+        let texts: Vec<String> = all.iter().map(|f| summary(f, &arguments.units)).collect();
         super::print(&texts.join("\n"));
     }
     if all.is_empty() {
@@ -166,7 +167,23 @@ fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Resu
         table.write(&all, &mut bytes).map_err(|e| format!("{}: {e}", path.display()))?;
         keep(files::write(path, &bytes, table_replace));
     }
+    if let Some(path) = &arguments.parameters {
+        keep(files::write(path, all_parameters(&all, path, &arguments.units).as_bytes(), table_replace));
+    }
     if failures.is_empty() { Ok(()) } else { Err(failures.join("\nparabound: ")) }
+}
+
+/// The parameters of every fit of every study, as LaTeX where the file's name says so.
+fn all_parameters(studies: &[&Findings], path: &Path, units: &ParameterUnits) -> String {
+    let is_latex = path.extension().is_some_and(|e| e.eq_ignore_ascii_case("tex"));
+    let mut texts = Vec::new();
+    for study in studies {
+        let mark = if is_latex { "% " } else { "" };
+        texts.push(format!("{mark}{}  {}\n", study.source.file_name, study.source.curve));
+        let write = if is_latex { parameters::latex } else { parameters::text };
+        texts.extend(study.fits.iter().filter_map(|f| f.result.as_ref().ok()).map(|fit| write(fit, units)));
+    }
+    texts.join("\n")
 }
 
 /// `lih_X_A.E_X.json`; characters that file systems refuse become `_`, a name used twice gets a number.

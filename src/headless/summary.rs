@@ -2,24 +2,25 @@
 
 use crate::digits::{fixed, rounded, signed, with_uncertainty};
 use crate::estimate::Estimate;
-use crate::export::json::parameter_unit;
+use crate::export::parameters::ParameterUnits;
 use crate::findings::{Findings, FitFindings};
+use crate::fit::{ParameterUnit, WindowStudy};
 use crate::potential::curve::OuterTail;
 use crate::reach::Interval;
-use crate::units::{
-    ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom, to_per_cm,
-};
+use crate::units::{ANGSTROM_PER_BOHR, LengthUnit, to_angstrom, to_per_cm};
 use crate::verdict::sentence;
 use std::fmt::Write as _;
 
 /// The summary, several lines, ending with a line feed.
-pub fn summary(findings: &Findings) -> String {
+///
+/// `units`: of the force constants.
+pub fn summary(findings: &Findings, units: &ParameterUnits) -> String {
     let mut text = String::new();
     head(&mut text, findings);
     let _ = writeln!(text, "\n{}\n", sentence(findings));
     if findings.curve.is_some() {
-        constants(&mut text, findings);
-        fits(&mut text, findings);
+        constants(&mut text, findings, units);
+        fits(&mut text, findings, units);
         levels(&mut text, findings);
         reach(&mut text, findings);
     }
@@ -65,13 +66,14 @@ fn row(text: &mut String, name: &str, estimate: Option<Estimate>, unit: &str, no
     }
 }
 
-fn constants(text: &mut String, findings: &Findings) {
+fn constants(text: &mut String, findings: &Findings, units: &ParameterUnits) {
     let Some(curve) = &findings.curve else { return };
     text.push_str("Constants of the curve\n");
     row(text, "r_e", Some(curve.r_e_bohr.scaled(ANGSTROM_PER_BOHR)), "angstrom", "");
     row(text, "energy at r_e", Some(curve.v_e_hartree), "hartree", "");
-    let k = curve.derivatives_hartree[0].map(|k| k.scaled(NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2));
-    row(text, "k (V = 1/2 k x^2)", k, "N/m", "");
+    let (unit, factor) = units.of(ParameterUnit::ForceConstant);
+    let k = curve.derivatives_hartree[0].map(|k| k.scaled(factor));
+    row(text, &format!("k ({})", units.convention.formula()), k, &unit, "");
     let constants = &findings.constants;
     let levels = constants.from_levels.as_ref();
     let beside = |e: Option<Estimate>| {
@@ -95,11 +97,11 @@ fn constants(text: &mut String, findings: &Findings) {
     text.push('\n');
 }
 
-fn fits(text: &mut String, findings: &Findings) {
+fn fits(text: &mut String, findings: &Findings, units: &ParameterUnits) {
     let first = findings.fits.iter().find_map(|f| f.result.as_ref().ok());
     let Some(first) = first else {
         text.push_str("Fits\n");
-        findings.fits.iter().for_each(|f| fit(text, f));
+        findings.fits.iter().for_each(|f| fit(text, f, units));
         text.push('\n');
         return;
     };
@@ -111,11 +113,39 @@ fn fits(text: &mut String, findings: &Findings) {
         edge(first.window.to),
         first.points
     );
-    findings.fits.iter().for_each(|f| fit(text, f));
+    findings.fits.iter().for_each(|f| fit(text, f, units));
+    if let Some(sentence) = &findings.comparison.sentence {
+        let _ = writeln!(text, "  {sentence}");
+    }
+    if let Some(study) = &findings.window_study {
+        let _ = writeln!(text, "  {}", window_study(study));
+    }
     text.push('\n');
 }
 
-fn fit(text: &mut String, findings: &FitFindings) {
+/// What a window study proposes, in a sentence.
+fn window_study(study: &WindowStudy) -> String {
+    let done = study.fits.len();
+    let plateau = study.proposed.and_then(|p| study.plateaus.get(p));
+    let (Some(plateau), Some(proposal)) = (plateau, study.proposal()) else {
+        return format!("Window study: {done} fits, no window width over which omega_e settles.");
+    };
+    let model = study.models[plateau.model];
+    let degree = model.degree.map_or_else(String::new, |d| format!(" of degree {d}"));
+    let edge = |value: f64| rounded(proposal.window.unit.convert(value, LengthUnit::Angstrom), 5);
+    format!(
+        "Window study: {done} fits; omega_e is flat to {} % over half widths of {} to {} angstrom for the {}{degree}: take \
+         the window {} to {} angstrom.",
+        rounded(100.0 * plateau.spread, 2),
+        fixed(to_angstrom(plateau.from_half_width_bohr), 3),
+        fixed(to_angstrom(plateau.to_half_width_bohr), 3),
+        model.family.word(),
+        edge(proposal.window.from),
+        edge(proposal.window.to)
+    )
+}
+
+fn fit(text: &mut String, findings: &FitFindings, units: &ParameterUnits) {
     let family = findings.request.family.word();
     match &findings.result {
         Err(error) => {
@@ -130,7 +160,7 @@ fn fit(text: &mut String, findings: &FitFindings) {
                 rounded(to_per_cm(fit.largest_residual_hartree), 3)
             );
             for p in &fit.parameters {
-                let (unit, factor) = parameter_unit(p.unit);
+                let (unit, factor) = units.of(p.unit);
                 row(text, &format!("  {}", p.name), Some(p.estimate.scaled(factor)), &unit, "");
             }
         }

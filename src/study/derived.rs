@@ -60,49 +60,10 @@ fn named(model: &Model, mass_me: f64) -> Option<[f64; FROM_DERIVATIVES]> {
 }
 
 fn from_derivatives(fit: &Fit, mass_me: f64) -> Vec<Named> {
-    let Some(centre) = named(&fit.model, mass_me) else { return Vec::new() };
-    let gradient = gradient(fit, |model| named(model, mass_me).map(|v| v.to_vec()));
-    (0..FROM_DERIVATIVES)
-        .map(|c| {
-            let value = Some(centre[c]).filter(|v| v.is_finite());
-            let along = gradient.as_ref().map(|g| g.iter().map(|row| row[c]).collect::<Vec<f64>>());
-            (NAMES[c], value.map(|v| with_error(fit, v, along.as_deref())))
-        })
-        .collect()
-}
-
-fn with_error(fit: &Fit, value: f64, gradient: Option<&[f64]>) -> Estimate {
-    match gradient.and_then(|g| fit.propagated(g)) {
-        Some(error) => Estimate::with_error(value, error, fit.error_source()),
-        None => Estimate::exact(value),
-    }
-}
-
-/// ∂quantities/∂p by central differences, one row a parameter; none when no error is known or a quantity is
-/// missing beside the solution.
-///
-/// The step is 6e-6 of the parameter (the cube root of the rounding unit balances rounding and curvature) or a
-/// thousandth of its standard error, whichever is larger.
-fn gradient(fit: &Fit, quantities: impl Fn(&Model) -> Option<Vec<f64>>) -> Option<Vec<Vec<f64>>> {
-    if fit.covariance.is_empty() {
-        return None;
-    }
-    let centre = fit.model.values();
-    (0..centre.len())
-        .map(|i| {
-            let step = (6e-6 * centre[i].abs()).max(1e-3 * fit.covariance[i][i].sqrt());
-            let moved = |sign: f64| {
-                let mut values = centre.clone();
-                values[i] += sign * step;
-                let mut model = fit.model.clone();
-                model.set_values(&values);
-                quantities(&model)
-            };
-            let (up, down) = (moved(1.0)?, moved(-1.0)?);
-            let slope = |(u, d): (&f64, &f64)| if step > 0.0 { (u - d) / (2.0 * step) } else { 0.0 };
-            Some(up.iter().zip(&down).map(slope).collect())
-        })
-        .collect()
+    let of = |model: &Model| named(model, mass_me).map(|v| v.to_vec());
+    let Some(estimates) = fit.estimates_of(&of) else { return Vec::new() };
+    let names = NAMES.iter().copied();
+    names.zip(estimates).map(|(name, e)| (name, Some(e).filter(|e| e.value.is_finite()))).collect()
 }
 
 /// The function's own levels in cm⁻¹ above its own minimum.
@@ -114,11 +75,11 @@ fn levels(fit: &Fit, mass_me: f64) -> Vec<Estimate> {
         let closed = |m: &Model| {
             m.closed_form_levels_hartree(mass_me, RUNGS).map(|l| l.into_iter().map(to_per_cm).collect())
         };
-        let gradient = gradient(fit, closed);
+        let gradient = fit.gradient_of(&closed);
         let levels: Vec<f64> = closed(&fit.model).unwrap_or_default();
         let along =
             |v: usize| gradient.as_ref()?.iter().map(|row| row.get(v).copied()).collect::<Option<Vec<f64>>>();
-        return levels.iter().enumerate().map(|(v, &e)| with_error(fit, e, along(v).as_deref())).collect();
+        return levels.iter().enumerate().map(|(v, &e)| fit.estimate(e, along(v).as_deref())).collect();
     }
     let mut gradients = Vec::new();
     let levels = solve(&fit.model, mass_me, &mut |r_bohr: &[f64], densities: &[Vec<f64>]| {
@@ -126,7 +87,7 @@ fn levels(fit: &Fit, mass_me: f64) -> Vec<Estimate> {
             gradients = expectation_gradients(&fit.model, r_bohr, densities);
         }
     });
-    levels.iter().enumerate().map(|(v, &e)| with_error(fit, e, gradients.get(v).map(Vec::as_slice))).collect()
+    levels.iter().enumerate().map(|(v, &e)| fit.estimate(e, gradients.get(v).map(Vec::as_slice))).collect()
 }
 
 /// ⟨ψ|∂V/∂p|ψ⟩ of each level in cm⁻¹ per atomic unit; zero for e_min, from which the levels count.

@@ -6,13 +6,15 @@ use super::points::fit_point;
 use crate::estimate::Estimate;
 use crate::findings::{Findings, FitBootstrap, FitFindings};
 use crate::fit::comparison::{compare, label};
+use crate::fit::window_study::{Stopped, WindowStudy, WindowStudyInput, WindowStudySettings, window_study};
 use crate::fit::{
     BootstrapError, BootstrapSettings, Fit, FitError, FitPoint, FitRequest, Variance, WeightedPoint,
     Weighting, Window, bootstrap, declared_weight_per_hartree2, default_window, fit_with,
 };
 use crate::notice::{Code, Notice};
-use crate::potential::curve::ScanCurve;
+use crate::potential::curve::{LocalDerivatives, ScanCurve};
 use crate::potential::{Family, Model, Potential as _};
+use crate::spectroscopy::dunham;
 use crate::units::to_per_cm;
 
 /// Does every fit that the settings ask for.
@@ -48,6 +50,42 @@ pub fn fit_all(findings: &mut Findings, curve: &ScanCurve) {
             }
         }
     }
+    if let Some(settings) = &findings.settings.fits.window_study {
+        findings.window_study = study_windows(findings, settings, &mut |_, _| true).ok().flatten();
+    }
+}
+
+/// The fits over all sensible windows. None without a curve.
+///
+/// Takes the points and weights of the findings as they are; `progress` gets (done, all) after each fit and stops the
+/// work by returning false.
+///
+/// # Errors
+/// [`Stopped`].
+pub fn study_windows(
+    findings: &Findings,
+    settings: &WindowStudySettings,
+    progress: &mut dyn FnMut(usize, usize) -> bool,
+) -> Result<Option<WindowStudy>, Stopped> {
+    let Some(curve) = findings.curve.as_deref() else { return Ok(None) };
+    let unit = findings.source.length_unit;
+    let used = findings.source.points.iter().filter(|p| p.used);
+    let r_as_read: Vec<f64> = used.map(|p| p.r_as_read).collect();
+    let (Some(&from), Some(&to)) = (r_as_read.first(), r_as_read.last()) else { return Ok(None) };
+    let (points, _) = split(findings, curve, Window { from, to, unit });
+    let input = WindowStudyInput {
+        points: &points,
+        r_as_read: &r_as_read,
+        unit,
+        r_e_bohr: curve.local.r_e_bohr,
+        variance: findings.settings.fits.weights.variance(curve.noise_hartree),
+    };
+    let mass_me = mass_me(findings);
+    let constants = |local: &LocalDerivatives| {
+        let c = dunham(local, mass_me?);
+        Some([c.omega_e_per_cm, c.omega_e_x_e_per_cm])
+    };
+    window_study(input, settings, &constants, progress).map(Some)
 }
 
 fn mass_me(findings: &Findings) -> Option<f64> {

@@ -19,7 +19,7 @@ use crate::spectroscopy::{self, Constants, LevelSet};
 use std::sync::Arc;
 use thiserror::Error;
 
-pub use fits::bootstrap_fit;
+pub use fits::{bootstrap_fit, study_windows};
 
 /// Why settings and scan do not fit together (a wrong name, not a bad curve).
 #[derive(Clone, Debug, PartialEq, Error)]
@@ -116,6 +116,7 @@ pub fn study_observed(
         curve: None,
         fits: Vec::new(),
         comparison: Comparison::default(),
+        window_study: None,
         levels: Vec::new(),
         constants: Constants::default(),
         reach: None,

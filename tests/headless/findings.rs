@@ -19,13 +19,13 @@ const SCANS: [(&str, &[&str], usize); 12] = [
     ("water_oh_rigid.dat", &["--reduced-mass", "0.9484"], 1),
 ];
 
-fn schema() -> jsonschema::Validator {
+pub(crate) fn schema() -> jsonschema::Validator {
     let text = include_str!("../../assets/findings.schema.json");
     let schema: Value = serde_json::from_str(text).expect("the schema is JSON");
     jsonschema::validator_for(&schema).expect("the schema is one")
 }
 
-fn assert_valid(validator: &jsonschema::Validator, value: &Value, what: &str) {
+pub(crate) fn assert_valid(validator: &jsonschema::Validator, value: &Value, what: &str) {
     let errors: Vec<String> =
         validator.iter_errors(value).map(|e| format!("{}: {e}", e.instance_path)).take(5).collect();
     assert!(errors.is_empty(), "{what}: {}", errors.join("\n"));

@@ -3,6 +3,7 @@
 #![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
 
 mod findings;
+mod fits;
 mod options;
 
 use std::path::{Path, PathBuf};

@@ -1,0 +1,478 @@
+//! The fit repeated over all sensible windows and degrees, and the window that its results propose.
+
+use super::run::fit_for_study;
+use super::{Family, Fit, FitError, FitPoint, FitRequest, Variable, Variance, Window};
+use crate::estimate::Estimate;
+use crate::potential::curve::LocalDerivatives;
+use crate::potential::{Model, Potential as _};
+use crate::units::LengthUnit;
+use serde::{Deserialize, Serialize};
+use std::ops::Range;
+
+/// Which fits are repeated, and over which windows.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(default, deny_unknown_fields)]
+pub struct WindowStudySettings {
+    /// The models.
+    pub models: Vec<FitRequest>,
+    /// Whether windows that reach further on one side are tried too.
+    pub asymmetric: bool,
+    /// Of the asymmetric windows so many are tried that no more fits than this are made in all.
+    pub most_fits: usize,
+}
+
+impl Default for WindowStudySettings {
+    fn default() -> Self {
+        let mut models = vec![FitRequest::plain(Family::Harmonic)];
+        models.extend((3..=8).map(|degree| FitRequest::polynomial(degree, Variable::X)));
+        models.push(FitRequest::plain(Family::Morse));
+        Self { models, asymmetric: true, most_fits: 2_000 }
+    }
+}
+
+/// What a window study starts from.
+#[derive(Clone, Copy, Debug)]
+pub struct WindowStudyInput<'a> {
+    /// The points in use, ascending in r.
+    pub points: &'a [FitPoint],
+    /// Their bond lengths as read, same order: the edges of windows.
+    pub r_as_read: &'a [f64],
+    /// Unit of those.
+    pub unit: LengthUnit,
+    /// The centre of symmetric windows: r_e of the curve in bohr.
+    pub r_e_bohr: f64,
+    /// What is known of the variance.
+    pub variance: Variance,
+}
+
+/// ω_e and ω_e x_e in cm⁻¹ from the derivatives at a minimum; none without a mass.
+pub type ConstantsOf<'a> = &'a dyn Fn(&LocalDerivatives) -> Option<[f64; 2]>;
+
+/// What one fit of the study says. Atomic units where the name does not say otherwise.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct WindowNumbers {
+    /// Position of the minimum.
+    pub r_e_bohr: Estimate,
+    /// Curvature at the minimum.
+    pub force_constant_hartree_per_bohr2: Estimate,
+    /// ω_e; none without a mass.
+    pub omega_e_per_cm: Option<Estimate>,
+    /// ω_e x_e; none without a mass and for a parabola.
+    pub omega_e_x_e_per_cm: Option<Estimate>,
+    /// sqrt(Σ d²/n).
+    pub rms_residual_hartree: f64,
+    /// The criterion; compares models in the same window only.
+    pub aicc: Option<f64>,
+}
+
+/// One fit of the study.
+#[derive(Clone, Debug, PartialEq)]
+pub struct WindowFit {
+    /// Index of the model in the settings.
+    pub model: usize,
+    /// The window: its edges are bond lengths of points.
+    pub window: Window,
+    /// Points in it.
+    pub points: usize,
+    /// Distance of its first point below r_e, in bohr.
+    pub below_bohr: f64,
+    /// Distance of its last point above r_e, in bohr.
+    pub above_bohr: f64,
+    /// Whether it is one of the symmetric windows, in which plateaus are looked for.
+    pub symmetric: bool,
+    /// Its numbers, or why there are none.
+    pub numbers: Result<WindowNumbers, FitError>,
+}
+
+impl WindowFit {
+    /// Distance of the point farthest from r_e, in bohr.
+    pub fn half_width_bohr(&self) -> f64 {
+        self.below_bohr.max(self.above_bohr)
+    }
+}
+
+/// A stretch of symmetric windows over which a model gives nearly the same ω_e.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Plateau {
+    /// Index of the model in the settings.
+    pub model: usize,
+    /// Half width of its narrowest window in bohr.
+    pub from_half_width_bohr: f64,
+    /// Half width of its widest window in bohr.
+    pub to_half_width_bohr: f64,
+    /// Windows on it.
+    pub windows: usize,
+    /// Largest less smallest sqrt(k) over their middle is at most this: the relative spread of ω_e.
+    pub spread: f64,
+    /// Index, in the list of fits, of the window in its geometric middle: as far as can be from both ends.
+    pub middle: usize,
+}
+
+/// All fits of a window study.
+#[derive(Clone, Debug, PartialEq)]
+pub struct WindowStudy {
+    /// The models, as in the settings.
+    pub models: Vec<FitRequest>,
+    /// The fits, model by model; symmetric windows first, the narrowest first.
+    pub fits: Vec<WindowFit>,
+    /// The plateau of each model that has one.
+    pub plateaus: Vec<Plateau>,
+    /// Index, in the list of plateaus, of the one that is proposed; its middle is the proposed window.
+    pub proposed: Option<usize>,
+}
+
+impl WindowStudy {
+    /// The fit that is proposed.
+    pub fn proposal(&self) -> Option<&WindowFit> {
+        self.fits.get(self.plateaus.get(self.proposed?)?.middle)
+    }
+}
+
+/// The work was stopped from outside.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Stopped {
+    /// Fits done.
+    pub done: usize,
+}
+
+/// A window holds at least so many points on either side of r_e,
+const POINTS_A_SIDE: usize = 2;
+/// and so many more than the model has parameters.
+const SPARE_POINTS: usize = 2;
+/// Neither side of an asymmetric window is wider than this many times the other.
+const LARGEST_ASYMMETRY: f64 = 3.0;
+/// A plateau has at least so many windows,
+const PLATEAU_WINDOWS: usize = 4;
+/// the widest at least so many times as wide as the narrowest,
+const PLATEAU_RATIO: f64 = 1.3;
+/// and a spread that is the first of these, doubled each time, at which there is such a stretch.
+const SMALLEST_SPREAD: f64 = 1e-5;
+/// A larger spread is no plateau.
+const LARGEST_SPREAD: f64 = 0.02;
+
+/// Repeats the fits over all sensible windows.
+///
+/// Symmetric windows hold the m nearest points to r_e, for every m, as far as the scan reaches on both sides;
+/// asymmetric ones run from any point to any other as long as neither side is more than three times the other. Each
+/// has at least two points on either side of r_e and two points more than the model has parameters.
+///
+/// A plateau of a model is the longest stretch (largest ratio of half widths) of consecutive symmetric windows,
+/// at least four and at least 1.3 in ratio, whose ω_e ∝ sqrt(k) agree within a relative spread; the spread is
+/// 1e-5 doubled until there is such a stretch, up to 2 %. Proposed is the plateau of the smallest spread, of equal ones
+/// the longest, of equal ones the model named first; and on it the window in the geometric middle. (The rule
+/// is this program's own.)
+///
+/// `progress` gets (done, all) after each fit and stops the work by returning false.
+///
+/// # Errors
+/// [`Stopped`].
+pub fn window_study(
+    input: WindowStudyInput<'_>,
+    settings: &WindowStudySettings,
+    constants: ConstantsOf<'_>,
+    progress: &mut dyn FnMut(usize, usize) -> bool,
+) -> Result<WindowStudy, Stopped> {
+    let windows = windows(input, settings);
+    let all = windows.len() * settings.models.len();
+    let mut fits = Vec::with_capacity(all);
+    let mut done = 0;
+    for (model, request) in settings.models.iter().enumerate() {
+        let mut near: Option<Model> = None;
+        for (range, symmetric) in &windows {
+            done += 1;
+            if let Some(parameters) = sensible(*request, range.len()) {
+                let found = one(input, range.clone(), *request, parameters, near.as_ref());
+                if let Ok(fit) = &found {
+                    near = Some(fit.model.clone());
+                }
+                let at = |i: usize| input.points[i].r_bohr;
+                fits.push(WindowFit {
+                    model,
+                    window: edges(input, range),
+                    points: range.len(),
+                    below_bohr: input.r_e_bohr - at(range.start),
+                    above_bohr: at(range.end - 1) - input.r_e_bohr,
+                    symmetric: *symmetric,
+                    numbers: found.map(|fit| numbers(&fit, constants)),
+                });
+            }
+            if !progress(done, all) {
+                return Err(Stopped { done });
+            }
+        }
+    }
+    let plateaus: Vec<Plateau> =
+        (0..settings.models.len()).filter_map(|model| plateau(model, &fits)).collect();
+    let length = |p: &Plateau| p.to_half_width_bohr / p.from_half_width_bohr;
+    let proposed = (0..plateaus.len()).min_by(|&a, &b| {
+        let (a, b) = (&plateaus[a], &plateaus[b]);
+        a.spread.total_cmp(&b.spread).then(length(b).total_cmp(&length(a))).then(a.model.cmp(&b.model))
+    });
+    Ok(WindowStudy { models: settings.models.clone(), fits, plateaus, proposed })
+}
+
+/// The windows as index ranges; symmetric ones first, the narrowest first.
+fn windows(input: WindowStudyInput<'_>, settings: &WindowStudySettings) -> Vec<(Range<usize>, bool)> {
+    let r: Vec<f64> = input.points.iter().map(|p| p.r_bohr).collect();
+    let n = r.len();
+    // Points below r_e: indices under `centre`.
+    let centre = r.partition_point(|&x| x < input.r_e_bohr);
+    if centre < POINTS_A_SIDE || n - centre < POINTS_A_SIDE {
+        return Vec::new();
+    }
+    let (below, above) = (|i: usize| input.r_e_bohr - r[i], |i: usize| r[i] - input.r_e_bohr);
+    let mut found: Vec<(Range<usize>, bool)> = Vec::new();
+    let (mut from, mut to) = (centre, centre);
+    while from > 0 && to < n {
+        if below(from - 1) <= above(to) {
+            from -= 1
+        } else {
+            to += 1
+        }
+        if centre - from >= POINTS_A_SIDE && to - centre >= POINTS_A_SIDE {
+            found.push((from..to, true));
+        }
+    }
+    let symmetric = found.len();
+    if !settings.asymmetric || settings.models.is_empty() {
+        return found;
+    }
+    let mut others = Vec::new();
+    for from in (0..=centre - POINTS_A_SIDE).rev() {
+        for to in centre + POINTS_A_SIDE..=n {
+            let (left, right) = (below(from), above(to - 1));
+            let near = left.max(right) <= LARGEST_ASYMMETRY * left.min(right);
+            if near && !found[..symmetric].iter().any(|(range, _)| *range == (from..to)) {
+                others.push((from..to, false));
+            }
+        }
+    }
+    let allowed = (settings.most_fits / settings.models.len()).saturating_sub(symmetric);
+    if allowed > 0 {
+        let step = others.len().div_ceil(allowed).max(1);
+        found.extend(others.into_iter().step_by(step));
+    }
+    found
+}
+
+/// The number of parameters, where the window has points enough for the model.
+fn sensible(request: FitRequest, points: usize) -> Option<usize> {
+    let degree = |otherwise: u32| request.degree.unwrap_or(otherwise) as usize;
+    let parameters = match request.family {
+        Family::Harmonic => 3,
+        Family::Polynomial => degree(super::run::DEFAULT_DEGREE) + 1,
+        Family::ExtendedMorse => degree(super::run::DEFAULT_ORDER) + 4,
+        Family::Morse | Family::Varshni | Family::Rydberg => 4,
+        Family::ExtendedRydberg | Family::HulburtHirschfelder => 6,
+    };
+    (points >= parameters + SPARE_POINTS).then_some(parameters)
+}
+
+fn edges(input: WindowStudyInput<'_>, range: &Range<usize>) -> Window {
+    Window { from: input.r_as_read[range.start], to: input.r_as_read[range.end - 1], unit: input.unit }
+}
+
+fn one(
+    input: WindowStudyInput<'_>,
+    range: Range<usize>,
+    request: FitRequest,
+    parameters: usize,
+    near: Option<&Model>,
+) -> Result<Fit, FitError> {
+    let window = edges(input, &range);
+    let fit = fit_for_study(request, &input.points[range], window, input.variance, near)?;
+    // A lowered degree would be another model's row.
+    if fit.parameters.len() == parameters {
+        Ok(fit)
+    } else {
+        Err(FitError::TooFewPoints { points: fit.points, needed: parameters })
+    }
+}
+
+/// k, r_e and constants of one fit, errors by the covariance of its parameters.
+fn numbers(fit: &Fit, constants: ConstantsOf<'_>) -> WindowNumbers {
+    let of = |model: &Model| {
+        let r_e = model.minimum_bohr();
+        let local = LocalDerivatives::new(r_e, model.derivatives_hartree(r_e));
+        let [omega, omega_x] = constants(&local).unwrap_or([f64::NAN; 2]);
+        [r_e, local.second_hartree, omega, omega_x]
+    };
+    let estimates = fit.estimates_of(&|model| Some(of(model).to_vec())).unwrap_or_default();
+    let estimate = |c: usize| estimates.get(c).copied().unwrap_or(Estimate::exact(f64::NAN));
+    let optional = |c: usize| Some(estimate(c)).filter(|e| e.value.is_finite());
+    WindowNumbers {
+        r_e_bohr: estimate(0),
+        force_constant_hartree_per_bohr2: estimate(1),
+        omega_e_per_cm: optional(2),
+        omega_e_x_e_per_cm: optional(3).filter(|_| fit.model.family() != Family::Harmonic),
+        rms_residual_hartree: fit.rms_residual_hartree,
+        aicc: fit.aicc,
+    }
+}
+
+/// The plateau of one model among its symmetric windows.
+fn plateau(model: usize, fits: &[WindowFit]) -> Option<Plateau> {
+    // (index of the fit, half width, sqrt(k)); a window without a fit ends a stretch.
+    let chain: Vec<(usize, f64, Option<f64>)> = fits
+        .iter()
+        .enumerate()
+        .filter(|(_, f)| f.model == model && f.symmetric)
+        .map(|(i, f)| {
+            let k = f.numbers.as_ref().ok().map(|n| n.force_constant_hartree_per_bohr2.value);
+            (i, f.half_width_bohr(), k.filter(|k| *k > 0.0).map(f64::sqrt))
+        })
+        .collect();
+    let mut spread = SMALLEST_SPREAD;
+    while spread <= LARGEST_SPREAD {
+        if let Some(range) = longest_stretch(&chain, spread) {
+            let (from, to) = (chain[range.start].1, chain[range.end - 1].1);
+            let middle = 0.5 * (from.ln() + to.ln());
+            let distance = |i: &usize| (chain[*i].1.ln() - middle).abs();
+            let best = range.clone().min_by(|a, b| distance(a).total_cmp(&distance(b)))?;
+            return Some(Plateau {
+                model,
+                from_half_width_bohr: from,
+                to_half_width_bohr: to,
+                windows: range.len(),
+                spread,
+                middle: chain[best].0,
+            });
+        }
+        spread *= 2.0;
+    }
+    None
+}
+
+/// The stretch of the largest width ratio whose values agree within `spread`.
+fn longest_stretch(chain: &[(usize, f64, Option<f64>)], spread: f64) -> Option<Range<usize>> {
+    let mut best: Option<(f64, Range<usize>)> = None;
+    for start in 0..chain.len() {
+        let (mut low, mut high) = (f64::INFINITY, f64::NEG_INFINITY);
+        for (end, (_, width, value)) in chain.iter().enumerate().skip(start) {
+            let Some(value) = *value else { break };
+            (low, high) = (low.min(value), high.max(value));
+            if high - low > spread * 0.5 * (high + low) {
+                break;
+            }
+            let (range, ratio) = (start..end + 1, width / chain[start].1);
+            let longer = best.as_ref().is_none_or(|(r, _)| ratio > *r);
+            if longer && range.len() >= PLATEAU_WINDOWS && ratio >= PLATEAU_RATIO {
+                best = Some((ratio, range));
+            }
+        }
+    }
+    best.map(|(_, range)| range)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::fit::fit;
+    use crate::potential::Morse;
+    use crate::units::omega_e_per_cm;
+
+    const MASS: f64 = 918.0;
+
+    fn morse() -> Morse {
+        Morse { e_min_hartree: -1.0, r_e_bohr: 1.4, well_depth_hartree: 0.17, a_per_bohr: 1.03 }
+    }
+
+    /// Invented: a Morse curve with repeatable errors of `noise` hartree.
+    fn scan(noise: f64) -> Vec<FitPoint> {
+        (0..50)
+            .map(|k| {
+                let r_bohr = 0.86 + 0.025 * f64::from(k);
+                let error = noise * (f64::from(k * k % 97) * 1.7).sin();
+                FitPoint { r_bohr, energy_hartree: morse().energy_hartree(r_bohr) + error, weight: 1.0 }
+            })
+            .collect()
+    }
+
+    fn run(points: &[FitPoint], settings: &WindowStudySettings) -> WindowStudy {
+        let r_as_read: Vec<f64> = points.iter().map(|p| p.r_bohr).collect();
+        let input = WindowStudyInput {
+            points,
+            r_as_read: &r_as_read,
+            unit: LengthUnit::Bohr,
+            r_e_bohr: 1.4,
+            variance: Variance::FromResiduals,
+        };
+        let constants = |l: &LocalDerivatives| Some([omega_e_per_cm(l.second_hartree, MASS), f64::NAN]);
+        let (mut last, mut all) = (0, 0);
+        let found = window_study(input, settings, &constants, &mut |done, total| {
+            assert!(done == last + 1 && done <= total);
+            (last, all) = (done, total);
+            true
+        })
+        .unwrap();
+        assert_eq!(last, all);
+        found
+    }
+
+    #[test]
+    fn every_fit_is_the_fit_of_its_window() {
+        let points = scan(1e-6);
+        let found = run(&points, &WindowStudySettings { most_fits: 600, ..WindowStudySettings::default() });
+        assert!(found.fits.len() > 300 && found.fits.len() <= 600, "{}", found.fits.len());
+        assert!(found.fits.iter().any(|f| !f.symmetric));
+        for one in found.fits.iter().step_by(7) {
+            let inside: Vec<FitPoint> =
+                points.iter().filter(|p| one.window.contains(p.r_bohr, LengthUnit::Bohr)).copied().collect();
+            assert_eq!(inside.len(), one.points);
+            let plain = fit(found.models[one.model], &inside, one.window);
+            let (Ok(plain), Ok(numbers)) = (&plain, &one.numbers) else {
+                assert_eq!(plain.is_err(), one.numbers.is_err(), "{plain:?} {one:?}");
+                continue;
+            };
+            let r_e = plain.parameters[1].estimate;
+            assert!((numbers.r_e_bohr.value - r_e.value).abs() < 1e-9, "{one:?}");
+            let (ours, theirs) = (numbers.r_e_bohr.std_error.unwrap(), r_e.std_error.unwrap());
+            assert!((ours / theirs - 1.0).abs() < 1e-3, "{ours} {theirs}");
+            assert!((numbers.rms_residual_hartree / plain.rms_residual_hartree - 1.0).abs() < 1e-6);
+        }
+    }
+
+    /// The proposal on clean data gives k to 1e-4; harmonic windows drift with W² and have their plateau at a larger
+    /// spread than higher degrees.
+    #[test]
+    fn the_plateau_gives_the_curvature() {
+        let k = morse().force_constant_hartree_per_bohr2();
+        for (noise, tolerance) in [(0.0, 1e-4), (1e-6, 3e-3)] {
+            let found = run(&scan(noise), &WindowStudySettings::default());
+            let proposal = found.proposal().unwrap();
+            let numbers = proposal.numbers.as_ref().unwrap();
+            let error = numbers.force_constant_hartree_per_bohr2.value / k - 1.0;
+            println!(
+                "noise {noise}: model {} W {:.3} k off by {error:.1e}",
+                proposal.model,
+                proposal.half_width_bohr()
+            );
+            assert!(error.abs() < tolerance, "{noise}: {error}");
+            let spread = |model: usize| found.plateaus.iter().find(|p| p.model == model).map(|p| p.spread);
+            assert!(spread(0).is_none_or(|harmonic| harmonic > spread(3).unwrap()));
+            assert!(proposal.symmetric);
+            assert!(numbers.omega_e_per_cm.unwrap().std_error.is_some());
+        }
+    }
+
+    #[test]
+    fn few_points_and_a_stop_end_early() {
+        let points = scan(0.0);
+        let few = run(&points[20..24], &WindowStudySettings::default());
+        assert!(few.fits.is_empty() && few.proposed.is_none());
+        let one_sided = run(&points[30..], &WindowStudySettings::default());
+        assert!(one_sided.fits.is_empty());
+        let none = run(&points, &WindowStudySettings { models: Vec::new(), ..Default::default() });
+        assert!(none.fits.is_empty());
+        let r_as_read: Vec<f64> = points.iter().map(|p| p.r_bohr).collect();
+        let input = WindowStudyInput {
+            points: &points,
+            r_as_read: &r_as_read,
+            unit: LengthUnit::Bohr,
+            r_e_bohr: 1.4,
+            variance: Variance::FromResiduals,
+        };
+        let stopped = window_study(input, &Default::default(), &|_| None, &mut |done, _| done < 9);
+        assert_eq!(stopped, Err(Stopped { done: 9 }));
+    }
+}
