@@ -23,7 +23,10 @@ fn weights_change_the_fits_and_nothing_else() {
         let value = findings("hf_rhf_mp2_ccsdt.csv", &[&options[..], &["--weights", weights]].concat());
         assert_valid(&validator, &value, weights);
         assert_eq!(value["levels"].as_array().map(Vec::len), plain["levels"].as_array().map(Vec::len));
-        assert_eq!(value["curve"]["minimum"], plain["curve"]["minimum"], "{weights}: the curve has no weights");
+        assert_eq!(
+            value["curve"]["minimum"], plain["curve"]["minimum"],
+            "{weights}: the curve has no weights"
+        );
         let (ours, equal) = (&morse(&value)["parameters"][2], &morse(&plain)["parameters"][2]);
         match weights {
             "energy=5000" => assert_ne!(ours["value"], equal["value"]),
@@ -83,7 +86,13 @@ fn the_window_study_proposes_a_window_that_gives_the_curvature() {
         // The proposed window as the fit window gives the same numbers.
         let edge = |side: &str| number(&fits[middle]["window"][side]["value"]).to_string();
         let model = &windows["models"][fits[middle]["model"].as_u64().expect("index") as usize];
-        println!("{name}: {} {} {} to {}, omega_e {ours}, curve {curve}", model["model"], model["degree"], edge("from"), edge("to"));
+        println!(
+            "{name}: {} {} {} to {}, omega_e {ours}, curve {curve}",
+            model["model"],
+            model["degree"],
+            edge("from"),
+            edge("to")
+        );
     }
     assert!(findings("hcl_clean.csv", &["--atoms", "H,Cl"])["window_study"].is_null());
 }
@@ -138,7 +147,11 @@ fn parameters_in_the_unit_and_convention_of_a_force_field() {
         number.split('(').next().and_then(|n| n.trim().parse().ok()).expect("a number")
     };
     assert!((k(&half) / k(&full) - 2.0).abs() < 1e-4, "{half} {full}");
-    assert!(half.contains("V = 1/2 k x^2") && full.contains("V = k x^2") && full.contains("kcal/(mol angstrom^2)"));
+    assert!(
+        half.contains("V = 1/2 k x^2")
+            && full.contains("V = k x^2")
+            && full.contains("kcal/(mol angstrom^2)")
+    );
     assert!(text.contains("Morse fit") && text.contains("kcal/mol"), "{text}");
     assert!(latex.contains("\\begin{tabular}") && latex.contains("D_\\mathrm{e}"), "{latex}");
 }
