@@ -66,6 +66,7 @@ fn error_words(estimate: &Estimate) -> String {
         Source::Interpolation => "spread between admissible interpolations",
         Source::Noise => "estimated noise of the energies",
         Source::Published => "published uncertainty",
+        Source::Bootstrap => "spread over resampled residuals",
     };
     format!(" Error: {words}.")
 }
