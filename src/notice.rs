@@ -62,6 +62,11 @@ pub enum Code {
     NoBase,
     NotFinite,
     ManyLevels,
+    Wiggles,
+    RoundedEnergies,
+    ShortRange,
+    TextColumn,
+    UnitContradicted,
 }
 
 impl Code {
@@ -101,6 +106,11 @@ impl Code {
             Self::NoBase => "no-base",
             Self::NotFinite => "not-finite",
             Self::ManyLevels => "many-levels",
+            Self::Wiggles => "wiggles",
+            Self::RoundedEnergies => "rounded-energies",
+            Self::ShortRange => "short-range",
+            Self::TextColumn => "text-column",
+            Self::UnitContradicted => "unit-contradicted",
         }
     }
 }

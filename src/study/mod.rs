@@ -5,6 +5,7 @@ mod derived;
 mod fits;
 mod levels;
 mod points;
+mod remarks;
 
 use crate::findings::{Findings, Source};
 use crate::fit::Comparison;
@@ -136,6 +137,9 @@ pub fn study_observed(
     after(Stage::Curve);
     if findings.curve.is_some() {
         study_curve(&mut findings, after);
+    }
+    if let Some(curve) = findings.curve.clone() {
+        remarks::remark(&mut findings, &curve, column);
     }
     // The gravest first; within one severity the order of the steps is kept.
     findings.notices.sort_by_key(|n| std::cmp::Reverse(n.severity));
