@@ -22,6 +22,8 @@ pub struct Point {
     pub r_as_read: f64,
     /// Bond length in bohr.
     pub r_bohr: f64,
+    /// Energy as read, in the column's unit.
+    pub energy_as_read: f64,
     /// Energy in hartree.
     pub energy_hartree: f64,
     /// Whether the study uses it.
@@ -45,6 +47,8 @@ pub struct Source {
     pub curve: String,
     /// The same without the unit, for display.
     pub curve_label: String,
+    /// The recipe, where the curve was made from columns.
+    pub made: Option<String>,
     /// Unit of the bond lengths as read.
     pub length_unit: LengthUnit,
     /// Unit of the energies as read.

@@ -56,6 +56,7 @@ pub fn findings_to_value(findings: &Findings) -> Value {
             "sha256": source.sha256,
             "layout": source.layout.word(),
             "curve": source.curve,
+            "made": source.made,
             "length_unit": source.length_unit.name(),
             "energy_unit": source.energy_unit.name(),
             "length_column": source.length_column,

@@ -18,12 +18,18 @@ pub enum Table {
     Constants,
     /// One row a fit of the window study.
     WindowStudy,
+    /// One row a point of a curve, bond length and energy as read.
+    Curve,
 }
 
 impl Table {
     /// The tables by their names on the command line.
-    pub const ALL: [(&'static str, Self); 3] =
-        [("levels", Self::Levels), ("constants", Self::Constants), ("window-study", Self::WindowStudy)];
+    pub const ALL: [(&'static str, Self); 4] = [
+        ("levels", Self::Levels),
+        ("constants", Self::Constants),
+        ("window-study", Self::WindowStudy),
+        ("curve", Self::Curve),
+    ];
 
     /// Writes the table of all studies given.
     ///
@@ -34,6 +40,7 @@ impl Table {
             Self::Levels => write_levels(studies, out),
             Self::Constants => write_constants(studies, out),
             Self::WindowStudy => write_window_studies(studies, out),
+            Self::Curve => write_curves(studies, out),
         }
     }
 }
@@ -205,4 +212,51 @@ fn write_constants(studies: &[&Findings], out: impl Write) -> Result<(), csv::Er
     }
     writer.flush()?;
     Ok(())
+}
+
+/// Bond length and energy of every point of the curves, as read: the same digits, the units in the header.
+///
+/// A table of one curve is a scan that reads back the same to the last digit. Of several curves those that
+/// share their bond lengths stand side by side; any other begins a table of its own below a blank line.
+fn write_curves(studies: &[&Findings], mut out: impl Write) -> Result<(), csv::Error> {
+    let mut rest: Vec<&Findings> = studies.to_vec();
+    let mut first = true;
+    while !rest.is_empty() {
+        let lead = rest[0];
+        let lengths =
+            |f: &Findings| -> Vec<u64> { f.source.points.iter().map(|p| p.r_as_read.to_bits()).collect() };
+        let own = lengths(lead);
+        let unit = lead.source.length_unit;
+        let (together, others): (Vec<&Findings>, Vec<&Findings>) =
+            rest.into_iter().partition(|f| f.source.length_unit == unit && lengths(f) == own);
+        rest = others;
+        if !std::mem::take(&mut first) {
+            writeln!(out)?;
+        }
+        write_table_of_curves(&together, &mut out)?;
+    }
+    Ok(())
+}
+
+fn write_table_of_curves(together: &[&Findings], out: &mut impl Write) -> Result<(), csv::Error> {
+    let lead = &together[0].source;
+    let mut writer = csv::Writer::from_writer(out);
+    let mut header = vec![format!("r [{}]", lead.length_unit.name())];
+    header.extend(
+        together.iter().map(|f| format!("{} [{}]", energy_name(&f.source), f.source.energy_unit.name())),
+    );
+    writer.write_record(&header)?;
+    for (row, point) in lead.points.iter().enumerate() {
+        let mut cells = vec![point.r_as_read.to_string()];
+        cells.extend(together.iter().map(|f| f.source.points[row].energy_as_read.to_string()));
+        writer.write_record(&cells)?;
+    }
+    writer.flush()?;
+    Ok(())
+}
+
+/// A name that is known as that of an energy when the table is read again.
+fn energy_name(source: &crate::findings::Source) -> String {
+    let label = source.curve_label.replace(['[', ']', '"'], " ");
+    if label.starts_with("E") { label } else { format!("E {label}") }
 }

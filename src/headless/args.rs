@@ -3,6 +3,7 @@
 use crate::export::parameters::ParameterUnits;
 use crate::export::table::Table;
 use crate::fit::{BootstrapSettings, EnergyWeights, Weighting, Window};
+use crate::scan::combine::Recipe;
 use crate::scan::read::{parse_energy_unit, parse_length_unit};
 use crate::settings::Settings;
 use crate::species::parse_atoms;
@@ -58,6 +59,8 @@ pub struct StudyChoices {
     pub seed: Option<u64>,
     /// The fits over all windows.
     pub window_study: bool,
+    /// Curves to make from columns.
+    pub made: Vec<Recipe>,
 }
 
 impl StudyChoices {
@@ -67,6 +70,11 @@ impl StudyChoices {
             if choice.is_some() {
                 target.clone_from(choice);
             }
+        }
+        settings.read.made.extend(self.made.iter().cloned());
+        // Who has a curve made wants to see it.
+        if let Some(last) = self.made.last() {
+            settings.curve = Some(last.name.clone());
         }
         set(&mut settings.curve, &self.curve);
         set(&mut settings.read.length_column, &self.length_column);
@@ -142,6 +150,8 @@ pub struct StudyArgs {
     pub overwrite: bool,
     /// Print timings.
     pub timings: bool,
+    /// Only say what was understood.
+    pub dry_run: bool,
     /// Repeat each study for the timings.
     pub repeat: usize,
 }
@@ -221,12 +231,13 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
 
 /// An option that neither command has, or that the other one has.
 fn unknown_option(name: &str, is_study: bool) -> UsageError {
-    const STUDY: [&str; 10] = [
+    const STUDY: [&str; 11] = [
         "out",
         "out-dir",
         "table",
         "timings",
         "repeat",
+        "dry-run",
         "parameters",
         "parameter-energy-unit",
         "parameter-length-unit",
@@ -257,6 +268,14 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
         "energy-unit" => {
             let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
             choices.energy_unit = Some(value(parser, "energy-unit", &names, parse_energy_unit)?);
+        }
+        "make" => {
+            let text = parser.value()?.string()?;
+            choices.made.push(Recipe::parse(&text).map_err(|error| UsageError::Value {
+                option: "make",
+                found: text.clone(),
+                accepted: error.to_string(),
+            })?);
         }
         "bond" => {
             let pair = |t: &str| {
@@ -353,6 +372,7 @@ fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Resul
             let convention = |t: &str| all.into_iter().find(|c| c.word() == t);
             study.units.convention = value(parser, "convention", accepted, convention)?;
         }
+        "dry-run" => study.dry_run = true,
         "repeat" => {
             let count = |t: &str| t.parse().ok().filter(|k| (1..=100_000).contains(k));
             study.repeat = value(parser, "repeat", "a whole number from 1 to 100000", count)?;

@@ -27,6 +27,15 @@ READING
   --bond A,B                 the atoms whose distance is the bond length, numbered from 1, in files of
                              Cartesian coordinates with more than two atoms
 
+  --make 'NAME = RECIPE'     a curve made from energy columns; may be repeated. A recipe is a sum of columns,
+                             with factors, and of constants with their unit: 'D = A - 0.5*B + 0.1 eV'; also
+                             hf3(A,B,C; 2,3,4)     exponential limit of three cardinal numbers
+                             hf2(A,B; 3,4; 1.63)   the same from two, with the exponent
+                             corr2(A,B; 3,4)       inverse cube from two; a third part gives another power
+                             Names with signs other than letters, digits, _ and . stand in quotes; '#2' is
+                             the second column. The last one made is the default of --curve.
+  --dry-run                  say what was understood of each file and compute nothing
+
 MASSES
   --atoms A,B                the two atoms, with mass numbers where wanted: H,F or 2H,35Cl
   --charge Q                 charge of the molecule in units of e (default 0)
@@ -51,8 +60,9 @@ RESULTS
   --out F                    findings (JSON); '-' for standard output. Replaces a findings file,
                              refuses any other file unless --overwrite is given
   --out-dir D                one findings file per study in this folder
-  --table WHAT=F.csv         levels, constants (one row a curve) or window-study (one row a fit, and asks
-                             for that study) of all studies; may be repeated
+  --table WHAT=F.csv         levels, constants (one row a curve), curve (the points as read) or
+                             window-study (one row a fit, and asks for that study) of all studies; may be
+                             repeated
   --parameters F             parameters of the fits with value(uncertainty); LaTeX where F ends in .tex,
                              else text
   --force-constant-unit U    N/m (default), mdyn/angstrom, hartree/bohr^2, 'kJ/(mol nm^2)',

@@ -5,6 +5,7 @@
 //! files each is done, and the status is the highest.
 
 mod args;
+mod dry_run;
 mod help;
 mod run_study;
 mod summary;

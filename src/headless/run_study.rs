@@ -1,6 +1,7 @@
 //! `parabound study`: files in, summary, findings and tables out.
 
 use super::args::StudyArgs;
+use super::dry_run;
 use super::summary;
 use crate::export::json::all_to_string;
 use crate::export::parameters::{self, ParameterUnits};
@@ -14,8 +15,8 @@ use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 use std::time::Instant;
 
-const DONE: u8 = 0;
-const NOT_READ: u8 = 3;
+pub(super) const DONE: u8 = 0;
+pub(super) const NOT_READ: u8 = 3;
 const IMPOSSIBLE: u8 = 4;
 
 /// Runs the command; returns the exit status.
@@ -27,6 +28,9 @@ pub fn run(arguments: &StudyArgs) -> u8 {
             return NOT_READ;
         }
     };
+    if arguments.dry_run {
+        return dry_run::run(&arguments.files, &settings);
+    }
     let mut status = DONE;
     let mut studies: Vec<(PathBuf, Findings)> = Vec::new();
     let mut seconds = Timings::default();
@@ -50,6 +54,13 @@ pub fn run(arguments: &StudyArgs) -> u8 {
         eprintln!("{}", seconds.to_json());
     }
     status
+}
+
+/// File name without folder, and content.
+pub(super) fn read_bytes(path: &Path) -> Result<(String, Vec<u8>), String> {
+    let bytes = std::fs::read(path).map_err(|e| format!("could not be read ({e})"))?;
+    let name = path.file_name().map_or_else(String::new, |n| n.to_string_lossy().into_owned());
+    Ok((name, bytes))
 }
 
 /// The settings file, if there is one, with the options laid over it.
@@ -89,8 +100,7 @@ fn study_file(
     arguments: &StudyArgs,
     seconds: &mut Timings,
 ) -> Result<Vec<Findings>, String> {
-    let bytes = std::fs::read(path).map_err(|e| format!("could not be read ({e})"))?;
-    let name = path.file_name().map_or_else(String::new, |n| n.to_string_lossy().into_owned());
+    let (name, bytes) = read_bytes(path)?;
     let mut findings = Vec::new();
     for pass in 0..arguments.repeat.max(1) {
         let start = Instant::now();

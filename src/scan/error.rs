@@ -340,6 +340,9 @@ pub enum ScanError {
         /// What is missing.
         key: &'static str,
     },
+    /// A curve cannot be made from the columns.
+    #[error(transparent)]
+    Combine(#[from] super::combine::CombineError),
     /// Columns of different length (only from data made in a program).
     #[error(
         "column {column} has {found} values for {expected} bond lengths; give one for each, none where it is unknown"

@@ -1,6 +1,7 @@
 //! A scan: the table as imported. It keeps every row and every digit as read; what a study uses of it
 //! is decided by the settings.
 
+pub mod combine;
 pub mod error;
 pub mod inspect;
 mod names;
@@ -36,6 +37,20 @@ impl Layout {
     }
 }
 
+/// Who says a unit.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum UnitOrigin {
+    /// The header, or the program that made the numbers.
+    #[default]
+    Stated,
+    /// The words of a comment.
+    Comment,
+    /// The file format.
+    Format,
+    /// The user.
+    Chosen,
+}
+
 /// One energy column, as read.
 #[derive(Clone, Debug, PartialEq)]
 pub struct EnergyColumn {
@@ -47,6 +62,8 @@ pub struct EnergyColumn {
     pub unit: EnergyUnit,
     /// One value a row, in `unit`; none where the cell is empty.
     pub values: Vec<Option<f64>>,
+    /// The recipe, where the column was made from others.
+    pub made: Option<String>,
 }
 
 /// A column that is neither bond length nor energy, kept for averages over levels.
@@ -74,6 +91,12 @@ pub struct Scan {
     pub length_column: String,
     /// Unit of the bond lengths as read.
     pub length_unit: LengthUnit,
+    /// Who says the unit of the bond lengths.
+    pub length_unit_origin: UnitOrigin,
+    /// Who says the unit of each energy column that was read; those made have none of their own.
+    pub energy_unit_origins: Vec<UnitOrigin>,
+    /// What separates the columns and what stands for decimals, in words, where the file is a table.
+    pub separators: Option<[&'static str; 2]>,
     /// Bond lengths as read, one a row, in `length_unit`.
     pub bond_lengths: Vec<f64>,
     /// The energy columns, in file order.
@@ -108,12 +131,16 @@ impl Scan {
             layout: Layout::Delimited,
             length_column: "r".to_owned(),
             length_unit,
+            length_unit_origin: UnitOrigin::Stated,
+            energy_unit_origins: vec![UnitOrigin::Stated],
+            separators: None,
             bond_lengths,
             energies: vec![EnergyColumn {
                 name: "E".to_owned(),
                 label: "E".to_owned(),
                 unit: energy_unit,
                 values: energies.into_iter().map(Some).collect(),
+                made: None,
             }],
             properties: Vec::new(),
             row_lines: Vec::new(),
@@ -173,6 +200,13 @@ impl Scan {
     /// The name of the bond-length column without its unit, for display.
     pub fn length_label(&self) -> String {
         read::label_of(&self.length_column)
+    }
+
+    /// `, columns separated by ..., decimal ...`; nothing where the file is no table.
+    pub fn format_words(&self) -> String {
+        self.separators.map_or_else(String::new, |[columns, decimals]| {
+            format!(", columns separated by {columns}, decimal {decimals}")
+        })
     }
 
     /// Line of the file a row stands on, from 1; the row's number from 1 when it comes from no text.

@@ -107,6 +107,7 @@ pub fn study_observed(
             layout: scan.layout,
             curve: column.name.clone(),
             curve_label: column.label.clone(),
+            made: column.made.clone(),
             length_unit: scan.length_unit,
             energy_unit: column.unit,
             length_column: scan.length_column.clone(),

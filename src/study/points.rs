@@ -29,6 +29,7 @@ pub fn points(
                 row,
                 r_as_read,
                 r_bohr: scan.length_unit.to_bohr(r_as_read),
+                energy_as_read: energy,
                 energy_hartree: column.unit.to_hartree(energy),
                 used: why_not.is_none(),
                 weight: 1.0,

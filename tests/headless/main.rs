@@ -5,6 +5,7 @@
 mod findings;
 mod fits;
 mod options;
+mod reading;
 
 use std::path::{Path, PathBuf};
 use std::process::{Command, Output};

@@ -52,6 +52,7 @@ impl Case {
                 let (a, b) = b.split_once(',').expect("two numbers");
                 [a, b].map(|n| n.parse().expect("a number"))
             }),
+            made: Vec::new(),
             energy_unit: one("energy-unit").map(|u| parse_energy_unit(u).expect("an energy unit")),
         }
     }

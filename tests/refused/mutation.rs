@@ -86,6 +86,7 @@ fn mutated_files_never_panic() {
         energy_unit: Some(EnergyUnit::Hartree),
         length_column: None,
         bond: Some([1, 2]),
+        made: Vec::new(),
     };
     let mut random = Xorshift(SEED);
     let (mut read, mut refused) = (0, 0);

@@ -32,7 +32,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
     ("digits", &[]),
     ("notice", &["units"]),
     ("species", &["units", "estimate"]),
-    ("scan", &["units", "estimate", "notice", "species"]),
+    ("scan", &["units", "digits", "estimate", "notice", "species"]),
     ("potential", &["units", "estimate", "notice"]),
     ("fit", &["units", "estimate", "digits", "notice", "potential", "scan"]),
     ("radial", &["units", "estimate", "notice", "potential"]),

@@ -7,7 +7,7 @@ use super::prose;
 use super::words::UnitWord;
 use crate::notice::{Code, Notice};
 use crate::scan::error::ScanError;
-use crate::scan::{EnergyColumn, Layout, PropertyColumn, Scan, names};
+use crate::scan::{EnergyColumn, Layout, PropertyColumn, Scan, UnitOrigin, names};
 use crate::units::{EnergyUnit, LengthUnit};
 
 type Column = (ColumnName, Vec<Option<f64>>);
@@ -21,25 +21,33 @@ pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -
     let length = columns.remove(length_index(&columns, settings, has_header)?);
     let (lengths_stated, energies_stated) = prose::units(&table.prose);
     let mut notices = Vec::new();
-    let length_unit = length_unit(&length.0, settings, lengths_stated, &mut notices)?;
+    let (length_unit, length_unit_origin) = length_unit(&length.0, settings, lengths_stated, &mut notices)?;
     let bond_lengths = required(&length, &table.row_lines)?;
     let is_energy = energy_columns(&columns, has_header);
     if !is_energy.contains(&true) {
         return Err(ScanError::NoEnergyColumn { columns: all });
     }
     let (mut energies, mut properties, mut from_comment) = (Vec::new(), Vec::new(), false);
+    let (mut energy_unit_origins, mut contradicted) = (Vec::new(), None);
     for ((name, values), energy) in columns.into_iter().zip(is_energy) {
         note_empty(&name.full, &values, &mut notices);
         if energy {
-            let (unit, by_comment) = energy_unit(&name, settings, energies_stated)?;
-            from_comment |= by_comment;
-            energies.push(EnergyColumn { name: name.full, label: name.label, unit, values });
+            let (unit, origin) = energy_unit(&name, settings, energies_stated)?;
+            from_comment |= origin == UnitOrigin::Comment;
+            if origin == UnitOrigin::Stated {
+                contradicted = contradicted.or(energies_stated.filter(|s| s.0 != unit).map(|s| (s, unit)));
+            }
+            energy_unit_origins.push(origin);
+            energies.push(EnergyColumn { name: name.full, label: name.label, unit, values, made: None });
         } else {
             properties.push(PropertyColumn { name: name.full, unit: name.unit_text, values });
         }
     }
     if let Some((unit, line)) = energies_stated.filter(|_| from_comment) {
         notices.push(stated("energies", unit.name(), line));
+    }
+    if let Some(((comment, line), header)) = contradicted {
+        notices.push(contradiction("energies", header.name(), comment.name(), line));
     }
     let (atoms, charge) = prose::atoms(&table.prose).unzip();
     Ok(Scan {
@@ -48,6 +56,9 @@ pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -
         layout: Layout::Delimited,
         length_column: length.0.full,
         length_unit,
+        length_unit_origin,
+        energy_unit_origins,
+        separators: Some([table.format.delimiter.words(), table.format.sign.word()]),
         bond_lengths,
         energies,
         properties,
@@ -94,9 +105,15 @@ fn length_unit(
     settings: &ReadSettings,
     comment: prose::Stated<LengthUnit>,
     notices: &mut Vec<Notice>,
-) -> Result<LengthUnit, ScanError> {
-    if let Some(unit) = settings.length_unit.or_else(|| name.length_unit()) {
-        return Ok(unit);
+) -> Result<(LengthUnit, UnitOrigin), ScanError> {
+    if let Some(unit) = settings.length_unit {
+        return Ok((unit, UnitOrigin::Chosen));
+    }
+    if let Some(unit) = name.length_unit() {
+        if let Some((other, line)) = comment.filter(|c| c.0 != unit) {
+            notices.push(contradiction("bond lengths", unit.name(), other.name(), line));
+        }
+        return Ok((unit, UnitOrigin::Stated));
     }
     if let Some(UnitWord::Energy(unit)) = name.unit {
         return Err(wrong_kind(name, unit.name(), "length"));
@@ -104,7 +121,7 @@ fn length_unit(
     match comment.filter(|_| name.unit_text.is_none()) {
         Some((unit, line)) => {
             notices.push(stated("bond lengths", unit.name(), line));
-            Ok(unit)
+            Ok((unit, UnitOrigin::Comment))
         }
         None => Err(ScanError::LengthUnitMissing {
             column: name.full.clone(),
@@ -113,20 +130,23 @@ fn length_unit(
     }
 }
 
-/// The unit of an energy column, and whether only a comment states it.
+/// The unit of an energy column, and who says it.
 fn energy_unit(
     name: &ColumnName,
     settings: &ReadSettings,
     comment: prose::Stated<EnergyUnit>,
-) -> Result<(EnergyUnit, bool), ScanError> {
-    if let Some(unit) = settings.energy_unit.or_else(|| name.energy_unit()) {
-        return Ok((unit, false));
+) -> Result<(EnergyUnit, UnitOrigin), ScanError> {
+    if let Some(unit) = settings.energy_unit {
+        return Ok((unit, UnitOrigin::Chosen));
+    }
+    if let Some(unit) = name.energy_unit() {
+        return Ok((unit, UnitOrigin::Stated));
     }
     if let Some(UnitWord::Length(unit)) = name.unit {
         return Err(wrong_kind(name, unit.name(), "energy"));
     }
     match comment.filter(|_| name.unit_text.is_none()) {
-        Some((unit, _)) => Ok((unit, true)),
+        Some((unit, _)) => Ok((unit, UnitOrigin::Comment)),
         None => Err(ScanError::EnergyUnitMissing {
             column: name.full.clone(),
             found_unit: name.unit_text.clone(),
@@ -145,6 +165,14 @@ fn stated(what: &str, unit: &str, line: usize) -> Notice {
             "The unit of the {what}, {unit}, is stated only in words, in line {line}; the header does not repeat it."
         ),
     )
+}
+
+fn contradiction(what: &str, header: &str, comment: &str, line: usize) -> Notice {
+    let text = format!(
+        "The header gives the {what} in {header}, the words in line {line} say {comment}. The header is followed; if \
+         the words are right, give the unit yourself."
+    );
+    Notice::caution(Code::UnitContradicted, text)
 }
 
 fn required(length: &Column, row_lines: &[usize]) -> Result<Vec<f64>, ScanError> {

@@ -25,6 +25,8 @@ pub(crate) struct Table<'a> {
     pub header: Option<Header>,
     /// The values, column by column.
     pub columns: Vec<Vec<Option<f64>>>,
+    /// What separates columns and decimals.
+    pub format: Format,
     /// Line of each row, from 1.
     pub row_lines: Vec<usize>,
     /// Remarks behind rows, with the row from 0.
@@ -184,6 +186,7 @@ impl<'a> Reader<'a> {
         let table = Table {
             header: None,
             columns: vec![Vec::new(); format.columns],
+            format,
             row_lines: Vec::new(),
             row_remarks: Vec::new(),
             prose: Vec::new(),

@@ -3,7 +3,7 @@
 use super::ReadSettings;
 use crate::notice::{Code, Notice};
 use crate::scan::error::ScanError;
-use crate::scan::{EnergyColumn, Layout, Scan};
+use crate::scan::{EnergyColumn, Layout, Scan, UnitOrigin};
 use crate::species::AtomChoice;
 use crate::units::LengthUnit;
 
@@ -51,6 +51,9 @@ impl Frames {
             layout: self.layout,
             length_column: format!("r({}{}-{}{})", first.symbols[a], a + 1, first.symbols[b], b + 1),
             length_unit: settings.length_unit.unwrap_or(self.length_unit),
+            length_unit_origin: origin(settings.length_unit.is_some()),
+            energy_unit_origins: vec![origin(settings.energy_unit.is_some()); self.energies.len()],
+            separators: None,
             bond_lengths,
             row_lines: self.frames.iter().map(|f| f.place).collect(),
             energies: self.energies,
@@ -61,6 +64,10 @@ impl Frames {
             notices,
         })
     }
+}
+
+const fn origin(chosen: bool) -> UnitOrigin {
+    if chosen { UnitOrigin::Chosen } else { UnitOrigin::Format }
 }
 
 fn without_values(column: &EnergyColumn) -> Option<Notice> {

@@ -17,6 +17,7 @@ mod words;
 mod xyz;
 
 use super::Scan;
+use super::combine::Recipe;
 use super::error::ScanError;
 use crate::units::{EnergyUnit, LengthUnit};
 use serde::{Deserialize, Serialize};
@@ -40,6 +41,8 @@ pub struct ReadSettings {
     /// In a file of Cartesian coordinates, the two atoms of the bond by their numbers from 1; none: the
     /// only two there are.
     pub bond: Option<[usize; 2]>,
+    /// Curves made from the energy columns, in this order; a later one may use an earlier one.
+    pub made: Vec<Recipe>,
 }
 
 /// Reads a scan from the bytes of a file: QCSchema JSON, frames of Cartesian coordinates, or delimited text,
@@ -61,7 +64,8 @@ pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Resu
     };
     scan.sha256 = sha256_hex(bytes);
     scan.notices.splice(0..0, encoding);
-    scan.checked()
+    let scan = scan.checked()?;
+    settings.made.iter().try_fold(scan, |scan, recipe| Ok(scan.with_made(recipe)?))
 }
 
 /// SHA-256 in hexadecimal.

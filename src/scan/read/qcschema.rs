@@ -44,13 +44,14 @@ pub(crate) fn parse(text: &str, settings: &ReadSettings) -> Result<Frames, ScanE
         label: model(first).unwrap_or_else(|| "return_energy".to_owned()),
         unit,
         values: returned,
+        made: None,
     }];
     let listed = first["properties"].as_object().into_iter().flatten().map(|(key, _)| key);
     for key in listed.filter(|key| key.ends_with("_total_energy")) {
         let values: Vec<Option<f64>> = results.iter().map(|r| r["properties"][key].as_f64()).collect();
         if values.iter().any(Option::is_some) {
             let label = key.trim_end_matches("_total_energy").to_owned();
-            energies.push(EnergyColumn { name: key.clone(), label, unit, values });
+            energies.push(EnergyColumn { name: key.clone(), label, unit, values, made: None });
         }
     }
     let charge = first["molecule"]["molecular_charge"].as_f64().filter(|q| *q != 0.0 && q.abs() < 100.0);

@@ -32,6 +32,16 @@ impl Delimiter {
         }
     }
 
+    /// The words used for it.
+    pub(crate) const fn words(self) -> &'static str {
+        match self {
+            Self::Semicolon => "semicolons",
+            Self::Tab => "tabs",
+            Self::Comma => "commas",
+            Self::Blanks => "blanks",
+        }
+    }
+
     /// The cells of a line, trimmed, quotes taken off; one more than are read at most.
     pub(crate) fn split<'a>(self, content: &'a str, cells: &mut Vec<&'a str>) {
         cells.clear();

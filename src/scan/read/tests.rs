@@ -178,6 +178,7 @@ fn options_go_before_the_header() {
         energy_unit: Some(EnergyUnit::PerCm),
         length_column: Some("r_OH2".to_owned()),
         bond: None,
+        made: Vec::new(),
     };
     let file = "water_oh_relaxed.csv";
     let scan = read_scan(file, &bytes("sample-scans", file), &settings).expect("read");

@@ -137,6 +137,7 @@ fn energy_column(
         label: stated.name.clone(),
         unit,
         values: energies.iter().map(|e| e.as_ref().map(|e| e.value)).collect(),
+        made: None,
     })
 }
 
