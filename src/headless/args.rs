@@ -4,7 +4,7 @@ use crate::export::parameters::ParameterUnits;
 use crate::export::table::Table;
 use crate::fit::{BootstrapSettings, EnergyWeights, Weighting, Window};
 use crate::scan::combine::Recipe;
-use crate::scan::read::{parse_energy_unit, parse_length_unit};
+use crate::scan::read::{Match, parse_energy_unit, parse_length_unit};
 use crate::settings::Settings;
 use crate::species::parse_atoms;
 use crate::units::{EnergyUnit, ForceConstantConvention, ForceConstantUnit, LengthUnit};
@@ -61,6 +61,12 @@ pub struct StudyChoices {
     pub window_study: bool,
     /// Curves to make from columns.
     pub made: Vec<Recipe>,
+    /// Pattern of the bond length in text logs.
+    pub length_pattern: Option<String>,
+    /// Pattern of the energy in text logs.
+    pub energy_pattern: Option<String>,
+    /// Which match of the patterns counts.
+    pub which_match: Option<Match>,
 }
 
 impl StudyChoices {
@@ -70,6 +76,13 @@ impl StudyChoices {
             if choice.is_some() {
                 target.clone_from(choice);
             }
+        }
+        let patterns = self.length_pattern.is_some() || self.energy_pattern.is_some();
+        if patterns || self.which_match.is_some() {
+            let lines = settings.read.lines.get_or_insert_default();
+            lines.length = self.length_pattern.clone().unwrap_or_else(|| std::mem::take(&mut lines.length));
+            lines.energy = self.energy_pattern.clone().unwrap_or_else(|| std::mem::take(&mut lines.energy));
+            lines.which = self.which_match.unwrap_or(lines.which);
         }
         settings.read.made.extend(self.made.iter().cloned());
         // Who has a curve made wants to see it.
@@ -268,6 +281,16 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
         "energy-unit" => {
             let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
             choices.energy_unit = Some(value(parser, "energy-unit", &names, parse_energy_unit)?);
+        }
+        "length-pattern" => choices.length_pattern = Some(parser.value()?.string()?),
+        "energy-pattern" => choices.energy_pattern = Some(parser.value()?.string()?),
+        "match" => {
+            let which = |t: &str| match t {
+                "first" => Some(Match::First),
+                "last" => Some(Match::Last),
+                _ => None,
+            };
+            choices.which_match = Some(value(parser, "match", "first or last", which)?);
         }
         "make" => {
             let text = parser.value()?.string()?;

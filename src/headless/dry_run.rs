@@ -1,7 +1,7 @@
 //! `--dry-run`: what was understood of each file, and nothing computed.
 
-use super::run_study::{DONE, NOT_READ, read_bytes};
-use crate::scan::read::read_scan;
+use super::input::Input;
+use super::run_study::{DONE, NOT_READ};
 use crate::scan::{Scan, UnitOrigin};
 use crate::settings::Settings;
 use std::fmt::Write as _;
@@ -10,9 +10,10 @@ use std::path::PathBuf;
 /// Prints what each file holds; the status is that of reading.
 pub fn run(files: &[PathBuf], settings: &Settings) -> u8 {
     let mut status = DONE;
-    for path in files {
-        let read = read_bytes(path)
-            .and_then(|(name, bytes)| read_scan(&name, &bytes, &settings.read).map_err(|e| e.to_string()))
+    for group in Input::groups(files, &settings.read) {
+        let path = &group[0];
+        let read = Input::read(&group, &settings.read)
+            .and_then(|input| input.scan(&settings.read))
             .and_then(|scan| understood(&scan, settings));
         match read {
             Ok(text) => {

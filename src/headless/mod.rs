@@ -7,6 +7,7 @@
 mod args;
 mod dry_run;
 mod help;
+mod input;
 mod run_study;
 mod summary;
 

@@ -2,13 +2,13 @@
 
 use super::args::StudyArgs;
 use super::dry_run;
+use super::input::Input;
 use super::summary;
 use crate::export::json::all_to_string;
 use crate::export::parameters::{self, ParameterUnits};
 use crate::files::{self, Replace};
 use crate::findings::Findings;
 use crate::scan::Scan;
-use crate::scan::read::read_scan;
 use crate::settings::Settings;
 use crate::study::{Stage, study_observed};
 use std::collections::BTreeMap;
@@ -34,8 +34,9 @@ pub fn run(arguments: &StudyArgs) -> u8 {
     let mut status = DONE;
     let mut studies: Vec<(PathBuf, Findings)> = Vec::new();
     let mut seconds = Timings::default();
-    for path in &arguments.files {
-        match study_file(path, &settings, arguments, &mut seconds) {
+    for group in Input::groups(&arguments.files, &settings.read) {
+        let path = &group[0];
+        match study_file(&group, &settings, arguments, &mut seconds) {
             Ok(findings) => studies.extend(findings.into_iter().map(|f| (path.clone(), f))),
             Err(message) => {
                 eprintln!("parabound: {}: {message}", path.display());
@@ -54,13 +55,6 @@ pub fn run(arguments: &StudyArgs) -> u8 {
         eprintln!("{}", seconds.to_json());
     }
     status
-}
-
-/// File name without folder, and content.
-pub(super) fn read_bytes(path: &Path) -> Result<(String, Vec<u8>), String> {
-    let bytes = std::fs::read(path).map_err(|e| format!("could not be read ({e})"))?;
-    let name = path.file_name().map_or_else(String::new, |n| n.to_string_lossy().into_owned());
-    Ok((name, bytes))
 }
 
 /// The settings file, if there is one, with the options laid over it.
@@ -93,18 +87,18 @@ pub fn read_settings(path: &Path) -> Result<Settings, String> {
         .map_err(|e| format!("{}: these settings do not fit: {e}", path.display()))
 }
 
-/// All studies of one file.
+/// All studies of one scan.
 fn study_file(
-    path: &Path,
+    group: &[PathBuf],
     settings: &Settings,
     arguments: &StudyArgs,
     seconds: &mut Timings,
 ) -> Result<Vec<Findings>, String> {
-    let (name, bytes) = read_bytes(path)?;
+    let input = Input::read(group, &settings.read)?;
     let mut findings = Vec::new();
     for pass in 0..arguments.repeat.max(1) {
         let start = Instant::now();
-        let scan = read_scan(&name, &bytes, &settings.read).map_err(|e| e.to_string())?;
+        let scan = input.scan(&settings.read)?;
         seconds.add("read", start.elapsed().as_secs_f64());
         let curves = chosen_curves(&scan, settings);
         for curve in &curves {

@@ -340,6 +340,9 @@ pub enum ScanError {
         /// What is missing.
         key: &'static str,
     },
+    /// Logs or the patterns on them are refused.
+    #[error(transparent)]
+    Lines(#[from] super::read::LinesError),
     /// A curve cannot be made from the columns.
     #[error(transparent)]
     Combine(#[from] super::combine::CombineError),

@@ -88,3 +88,41 @@ fn a_curve_written_as_a_table_reads_back_the_same() {
         assert_eq!(before, after, "{file}");
     }
 }
+
+/// Invented logs of a Morse function like that of HCl; the energy is printed twice, the last one counts.
+#[test]
+fn logs_are_read_by_patterns_that_are_kept() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let logs = folder.path().join("logs");
+    fs::create_dir(&logs).expect("a folder");
+    for i in 0..20 {
+        let r = 1.0 + 0.05 * f64::from(i);
+        let e = 4.6 * (1.0 - (-1.87 * (r - 1.27)).exp()).powi(2);
+        let log = format!("distance = {r:.3} A\ncycle 1  E = {:.9}\ncycle 2  E = {e:.9} eV\n", e + 1.0);
+        fs::write(logs.join(format!("p{i:02}.log")), log).expect("written");
+    }
+    let (logs, out) = (logs.to_str().expect("UTF-8").to_owned(), folder.path().join("f.json"));
+    let out = out.to_str().expect("UTF-8");
+    let patterns =
+        ["--length-pattern", r"distance = (\S+)", "--energy-pattern", r"E = (\S+)", "--atoms", "H,Cl"];
+    let units = ["--length-unit", "angstrom", "--energy-unit", "eV"];
+    let output = study(&[&[logs.as_str(), "--out", out], &patterns[..], &units[..]].concat());
+    assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+    let value: serde_json::Value = serde_json::from_slice(&fs::read(out).expect("read")).expect("JSON");
+    assert_eq!(
+        (&value["source"]["layout"], &value["source"]["file_name"]),
+        (&"lines".into(), &"logs".into())
+    );
+    let r_e = value["curve"]["minimum"]["r_e"]["value"].as_f64().expect("a number");
+    assert!((r_e - 1.27).abs() < 1e-4, "{r_e}");
+    // The findings file carries the patterns; the same study from it.
+    let again = study(&[logs.as_str(), "--settings", out, "--out", "-"]);
+    assert_eq!(text(&again.stdout), fs::read_to_string(out).expect("read"));
+    let first = study(&[logs.as_str(), "--settings", out, "--match", "first", "--dry-run"]);
+    assert!(text(&first.stdout).contains("layout         lines"), "{}", text(&first.stdout));
+    let missing = study(&[&[logs.as_str()], &patterns[..]].concat());
+    assert_eq!(missing.status.code(), Some(3));
+    assert!(text(&missing.stderr).contains("--length-unit"), "{}", text(&missing.stderr));
+    let wrong = study(&[logs.as_str(), "--settings", out, "--energy-pattern", "energy (.*)"]);
+    assert!(text(&wrong.stderr).contains("p00.log: no line matches"), "{}", text(&wrong.stderr));
+}

@@ -53,6 +53,7 @@ impl Case {
                 [a, b].map(|n| n.parse().expect("a number"))
             }),
             made: Vec::new(),
+            lines: None,
             energy_unit: one("energy-unit").map(|u| parse_energy_unit(u).expect("an energy unit")),
         }
     }

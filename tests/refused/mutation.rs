@@ -7,7 +7,7 @@ use std::path::Path;
 
 /// The same inputs on every run.
 const SEED: u64 = 0x9e37_79b9_7f4a_7c15;
-const INPUTS: usize = 5_000;
+const INPUTS: usize = 20_000;
 
 /// Pieces that mean something to the reader.
 const PIECES: [&[u8]; 24] = [
@@ -87,6 +87,7 @@ fn mutated_files_never_panic() {
         length_column: None,
         bond: Some([1, 2]),
         made: Vec::new(),
+        lines: None,
     };
     let mut random = Xorshift(SEED);
     let (mut read, mut refused) = (0, 0);

@@ -6,6 +6,7 @@ mod delimited;
 mod fixed;
 mod frames;
 mod header;
+mod lines;
 mod number;
 mod prose;
 mod qcschema;
@@ -24,6 +25,7 @@ use serde::{Deserialize, Serialize};
 use sha2::{Digest, Sha256};
 
 pub use delimited::LIMIT_ROWS;
+pub use lines::{Caught, LIMIT_LOGS, LinePatterns, LinesError, Match, Patterns};
 pub use text::LIMIT_BYTES;
 pub use words::{parse_energy_unit, parse_length_unit};
 
@@ -43,6 +45,8 @@ pub struct ReadSettings {
     pub bond: Option<[usize; 2]>,
     /// Curves made from the energy columns, in this order; a later one may use an earlier one.
     pub made: Vec<Recipe>,
+    /// Patterns that find bond length and energy in text logs; with them the files are logs, each a point.
+    pub lines: Option<LinePatterns>,
 }
 
 /// Reads a scan from the bytes of a file: QCSchema JSON, frames of Cartesian coordinates, or delimited text,
@@ -65,6 +69,21 @@ pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Resu
     scan.sha256 = sha256_hex(bytes);
     scan.notices.splice(0..0, encoding);
     let scan = scan.checked()?;
+    settings.made.iter().try_fold(scan, |scan, recipe| Ok(scan.with_made(recipe)?))
+}
+
+/// Reads one scan from text logs, each given by name and bytes, by the patterns in the settings.
+///
+/// # Errors
+/// [`ScanError`]; without patterns there is nothing to find.
+pub fn read_logs<'b>(
+    name: &str,
+    logs: impl IntoIterator<Item = (&'b str, &'b [u8])>,
+    settings: &ReadSettings,
+) -> Result<Scan, ScanError> {
+    let nothing = LinePatterns::default();
+    let patterns = settings.lines.as_ref().unwrap_or(&nothing);
+    let scan = lines::read_lines(name, logs, patterns, (settings.length_unit, settings.energy_unit))?;
     settings.made.iter().try_fold(scan, |scan, recipe| Ok(scan.with_made(recipe)?))
 }
 

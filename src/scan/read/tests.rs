@@ -179,6 +179,7 @@ fn options_go_before_the_header() {
         length_column: Some("r_OH2".to_owned()),
         bond: None,
         made: Vec::new(),
+        lines: None,
     };
     let file = "water_oh_relaxed.csv";
     let scan = read_scan(file, &bytes("sample-scans", file), &settings).expect("read");
