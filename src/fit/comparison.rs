@@ -155,6 +155,10 @@ fn sentence(compared: &[Compared]) -> Option<String> {
         let smallest = none.iter().filter_map(|c| c.aicc_difference).fold(f64::INFINITY, f64::min);
         text.push_str(&format!("; not the {} (AICc higher by {smallest:.0} or more)", list(&none)));
     }
+    let unranked: Vec<&Compared> = compared.iter().filter(|c| c.aicc.is_none()).collect();
+    if !unranked.is_empty() {
+        text.push_str(&format!("; for the {} the points are too few to say", list(&unranked)));
+    }
     text.push('.');
     if best.misfit {
         text.push_str(&format!(

@@ -67,6 +67,12 @@ pub(crate) fn fit<P: Parametric + Clone>(
     let solution = nonlinear::solve_from_all(&mut problem, &values, settings).map_err(|e| {
         match (e, problem.refused) {
             (NonlinearError::Blocked, Some(what)) => FitError::AtBound { what },
+            // A well that has grown far beyond the points is on its way to the parabola, where the range vanishes.
+            (NonlinearError::NotConverged { .. } | NonlinearError::IllConditioned { .. }, _)
+                if depth_over_span(&problem.model, data).is_some_and(|ratio| ratio > ENDLESS_DEPTH) =>
+            {
+                FitError::AtBound { what: ModelFault::RangeParameter }
+            }
             _ => e.into(),
         }
     })?;
@@ -149,6 +155,15 @@ impl<P: Parametric> Problem for WithOneFixed<'_, P> {
         after.copy_from_slice(&whole[n * (self.fixed + 1)..]);
         defined
     }
+}
+
+/// Depth over the span of energies beyond which a well that does not settle counts as endless.
+const ENDLESS_DEPTH: f64 = 100.0;
+
+fn depth_over_span<P: Parametric>(model: &P, data: &Data) -> Option<f64> {
+    let depth = model.parameter_names().iter().position(|(name, _)| name == "d_e")?;
+    let span = data.energy_hartree.iter().fold(0.0, |m: f64, e| m.max(e.abs()));
+    Some(model.values()[depth] / span)
 }
 
 /// The starts of the Morse function: by variable projection, else those of the local shape.

@@ -17,6 +17,7 @@ mod polynomial;
 mod precise;
 mod propagation;
 mod qr;
+mod quick;
 mod run;
 mod statistics;
 #[cfg(test)]

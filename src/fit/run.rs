@@ -14,11 +14,11 @@ use crate::potential::{
 };
 
 /// Degree of a polynomial when none is asked for.
-pub(crate) const DEFAULT_DEGREE: u32 = 6;
+const DEFAULT_DEGREE: u32 = 6;
 /// Degrees offered.
 const DEGREES: (u32, u32) = (2, 12);
 /// Order of an extended Morse exponent when none is asked for.
-pub(crate) const DEFAULT_ORDER: u32 = 4;
+const DEFAULT_ORDER: u32 = 4;
 /// Orders offered.
 const ORDERS: (u32, u32) = (0, 12);
 /// Power p of its variable when none is asked for.

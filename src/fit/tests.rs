@@ -87,18 +87,25 @@ fn parameters_that_cannot_be_told_apart_are_called_so() {
     assert_eq!(found.unwrap_err().code(), Code::IllConditioned);
 }
 
-/// A parabola has neither depth nor range: whatever the end, it is no silent success.
+/// A parabola, and a curve that is steeper outside than inside, have neither depth nor range: no silent success,
+/// and a Morse function says where it is driven.
 #[test]
 fn a_parabola_gives_no_depth() {
     let parabola = Harmonic { e_min_hartree: -1.0, r_e_bohr: 1.4, force_constant_hartree_per_bohr2: 0.37 };
     let points = sampled(&parabola, 30, 1.0, 1.8);
+    let mut reverse = points.clone();
+    reverse.iter_mut().for_each(|p| p.energy_hartree += 0.05 * (p.r_bohr - 1.4).powi(3));
     for family in [Family::Morse, Family::Varshni, Family::Rydberg, Family::HulburtHirschfelder] {
-        match fit(FitRequest::plain(family), &points, WINDOW) {
-            Err(error) => println!("{}: {error}", family.word()),
-            Ok(found) => {
-                println!("{}: {:?} {:?}", family.word(), found.reciprocal_condition, found.parameters);
-                assert!(found.rms_residual_hartree > 1e-6, "{family:?} cannot equal a parabola");
+        for points in [&points, &reverse] {
+            match fit(FitRequest::plain(family), points, WINDOW) {
+                Err(error) => println!("{}: {error}", family.word()),
+                Ok(found) => {
+                    println!("{}: {:?} {:?}", family.word(), found.reciprocal_condition, found.parameters);
+                    assert!(found.rms_residual_hartree > 1e-6, "{family:?} cannot equal a parabola");
+                }
             }
         }
     }
+    let morse = fit(FitRequest::plain(Family::Morse), &reverse, WINDOW);
+    assert_eq!(morse.unwrap_err(), FitError::AtBound { what: ModelFault::RangeParameter });
 }

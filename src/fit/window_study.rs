@@ -1,12 +1,15 @@
 //! The fit repeated over all sensible windows and degrees, and the window that its results propose.
 
+use super::quick::polynomial_numbers;
 use super::run::fit_for_study;
 use super::{Family, Fit, FitError, FitPoint, FitRequest, Variable, Variance, Window};
 use crate::estimate::Estimate;
+use crate::notice::Code;
 use crate::potential::curve::LocalDerivatives;
 use crate::potential::{Model, Potential as _};
 use crate::units::LengthUnit;
 use serde::{Deserialize, Serialize};
+use std::collections::BTreeSet;
 use std::ops::Range;
 
 /// Which fits are repeated, and over which windows.
@@ -17,7 +20,8 @@ pub struct WindowStudySettings {
     pub models: Vec<FitRequest>,
     /// Whether windows that reach further on one side are tried too.
     pub asymmetric: bool,
-    /// Of the asymmetric windows so many are tried that no more fits than this are made in all.
+    /// No more fits than this are made in all: of too many windows only an even choice is tried, and at most half
+    /// of them are symmetric where asymmetric ones are tried too.
     pub most_fits: usize,
 }
 
@@ -180,11 +184,7 @@ pub fn window_study(
         let mut near: Option<Model> = None;
         for (range, symmetric) in &windows {
             done += 1;
-            if let Some(parameters) = sensible(*request, range.len()) {
-                let found = one(input, range.clone(), *request, parameters, near.as_ref());
-                if let Ok(fit) = &found {
-                    near = Some(fit.model.clone());
-                }
+            if let Some(numbers) = one(input, range, *request, &mut near, constants) {
                 let at = |i: usize| input.points[i].r_bohr;
                 fits.push(WindowFit {
                     model,
@@ -193,7 +193,7 @@ pub fn window_study(
                     below_bohr: input.r_e_bohr - at(range.start),
                     above_bohr: at(range.end - 1) - input.r_e_bohr,
                     symmetric: *symmetric,
-                    numbers: found.map(|fit| numbers(&fit, constants)),
+                    numbers,
                 });
             }
             if !progress(done, all) {
@@ -233,60 +233,88 @@ fn windows(input: WindowStudyInput<'_>, settings: &WindowStudySettings) -> Vec<(
             found.push((from..to, true));
         }
     }
-    let symmetric = found.len();
-    if !settings.asymmetric || settings.models.is_empty() {
+    let allowed = (settings.most_fits / settings.models.len().max(1)).max(2);
+    found = thinned(found, allowed.div_ceil(if settings.asymmetric { 2 } else { 1 }));
+    if !settings.asymmetric {
         return found;
     }
+    let symmetric: BTreeSet<(usize, usize)> = found.iter().map(|(w, _)| (w.start, w.end)).collect();
+    // Edges enough to choose from, and no more than that of a scan of thousands of points.
+    let step = |count: usize| count.div_ceil(4 * allowed).max(1);
     let mut others = Vec::new();
-    for from in (0..=centre - POINTS_A_SIDE).rev() {
-        for to in centre + POINTS_A_SIDE..=n {
+    for from in (0..=centre - POINTS_A_SIDE).rev().step_by(step(centre)) {
+        for to in (centre + POINTS_A_SIDE..=n).step_by(step(n - centre)) {
             let (left, right) = (below(from), above(to - 1));
             let near = left.max(right) <= LARGEST_ASYMMETRY * left.min(right);
-            if near && !found[..symmetric].iter().any(|(range, _)| *range == (from..to)) {
+            if near && !symmetric.contains(&(from, to)) {
                 others.push((from..to, false));
             }
         }
     }
-    let allowed = (settings.most_fits / settings.models.len()).saturating_sub(symmetric);
-    if allowed > 0 {
-        let step = others.len().div_ceil(allowed).max(1);
-        found.extend(others.into_iter().step_by(step));
+    let left = allowed.saturating_sub(found.len());
+    if left > 0 {
+        found.extend(thinned(others, left));
     }
     found
 }
 
-/// The number of parameters, where the window has points enough for the model.
-fn sensible(request: FitRequest, points: usize) -> Option<usize> {
-    let degree = |otherwise: u32| request.degree.unwrap_or(otherwise) as usize;
-    let parameters = match request.family {
-        Family::Harmonic => 3,
-        Family::Polynomial => degree(super::run::DEFAULT_DEGREE) + 1,
-        Family::ExtendedMorse => degree(super::run::DEFAULT_ORDER) + 4,
-        Family::Morse | Family::Varshni | Family::Rydberg => 4,
-        Family::ExtendedRydberg | Family::HulburtHirschfelder => 6,
-    };
-    (points >= parameters + SPARE_POINTS).then_some(parameters)
+/// At most `most` of them, evenly chosen.
+fn thinned<T>(list: Vec<T>, most: usize) -> Vec<T> {
+    let step = list.len().div_ceil(most.max(1)).max(1);
+    list.into_iter().step_by(step).collect()
 }
 
 fn edges(input: WindowStudyInput<'_>, range: &Range<usize>) -> Window {
     Window { from: input.r_as_read[range.start], to: input.r_as_read[range.end - 1], unit: input.unit }
 }
 
+/// The degree of a polynomial in x, which has a quick way.
+const fn quick_degree(request: FitRequest) -> Option<usize> {
+    match (request.family, request.variable, request.degree) {
+        (Family::Harmonic, ..) => Some(2),
+        // Other degrees are refused, by the careful fit.
+        (Family::Polynomial, None | Some(Variable::X), Some(degree @ 2..=12)) => Some(degree as usize),
+        _ => None,
+    }
+}
+
+/// The numbers of one fit; none where the window has too few points for the model as it was asked for. `near` is the
+/// last fit of the same model.
 fn one(
     input: WindowStudyInput<'_>,
-    range: Range<usize>,
+    range: &Range<usize>,
     request: FitRequest,
-    parameters: usize,
-    near: Option<&Model>,
-) -> Result<Fit, FitError> {
-    let window = edges(input, &range);
-    let fit = fit_for_study(request, &input.points[range], window, input.variance, near)?;
-    // A lowered degree would be another model's row.
-    if fit.parameters.len() == parameters {
-        Ok(fit)
-    } else {
-        Err(FitError::TooFewPoints { points: fit.points, needed: parameters })
+    near: &mut Option<Model>,
+    constants: ConstantsOf<'_>,
+) -> Option<Result<WindowNumbers, FitError>> {
+    // No family has fewer parameters than the harmonic one.
+    let fewest = quick_degree(request).map_or(3, |degree| degree + 1) + SPARE_POINTS;
+    if range.len() < fewest {
+        return None;
     }
+    let points = &input.points[range.clone()];
+    let quick = quick_degree(request)
+        .and_then(|degree| polynomial_numbers(points, input.r_e_bohr, degree, input.variance, constants));
+    if let Some(numbers) = quick {
+        return Some(Ok(numbers));
+    }
+    let window = edges(input, range);
+    let found = fit_for_study(request, points, window, input.variance, near.as_ref());
+    let enough = match &found {
+        Ok(fit) => {
+            // A lowered degree would be another model's row.
+            let lowered = fit.notices.iter().any(|n| n.code == Code::FewPoints);
+            !lowered && fit.points >= fit.parameters.len() + SPARE_POINTS
+        }
+        Err(FitError::TooFewPoints { .. }) => false,
+        Err(_) => true,
+    };
+    enough.then(|| {
+        found.map(|fit| {
+            *near = Some(fit.model.clone());
+            numbers(&fit, constants)
+        })
+    })
 }
 
 /// k, r_e and constants of one fit, errors by the covariance of its parameters.
@@ -453,6 +481,20 @@ mod tests {
             assert!(proposal.symmetric);
             assert!(numbers.omega_e_per_cm.unwrap().std_error.is_some());
         }
+    }
+
+    /// A scan of thousands of points stays within the limit; invented.
+    #[test]
+    fn long_scans_keep_to_the_limit() {
+        let points: Vec<FitPoint> = (0..4_000)
+            .map(|k| {
+                let r_bohr = 0.8 + 3e-4 * f64::from(k);
+                FitPoint { r_bohr, energy_hartree: morse().energy_hartree(r_bohr), weight: 1.0 }
+            })
+            .collect();
+        let models = vec![FitRequest::plain(Family::Harmonic)];
+        let found = run(&points, &WindowStudySettings { models, most_fits: 60, ..Default::default() });
+        assert!((40..=60).contains(&found.fits.len()), "{}", found.fits.len());
     }
 
     #[test]

@@ -54,3 +54,49 @@ fn morse_fit_of_the_co_scan() {
     let square_sum = found.rms_residual_hartree.powi(2) * 24.0;
     assert!((square_sum / REFERENCE_SQUARE_SUM - 1.0).abs() <= RELATIVE);
 }
+
+/// `tests/published/reference/morse-fit.json`, made by the script beside it with SciPy's `curve_fit`.
+#[test]
+fn morse_fits_agree_with_scipy_to_seven_digits() {
+    let text = include_str!("reference/morse-fit.json");
+    let reference: serde_json::Value = serde_json::from_str(text).unwrap();
+    let scans = [
+        ("co_ccsdt_bohr.dat", include_str!("../../sample-scans/co_ccsdt_bohr.dat"), LengthUnit::Bohr),
+        ("h2_fci.csv", include_str!("../../sample-scans/h2_fci.csv"), LengthUnit::Angstrom),
+        ("lih_X_A.csv", include_str!("../../sample-scans/lih_X_A.csv"), LengthUnit::Angstrom),
+    ];
+    let fits = reference["fits"].as_array().unwrap();
+    assert_eq!(fits.len(), scans.len());
+    for (entry, (name, text, unit)) in fits.iter().zip(scans) {
+        assert_eq!(entry["scan"], name);
+        let starts_with_number = |line: &&str| line.trim_start().starts_with(|c: char| c.is_ascii_digit());
+        let points: Vec<FitPoint> = text
+            .lines()
+            .filter(starts_with_number)
+            .map(|line| {
+                let words = line.split([',', ' ']).filter(|word| !word.is_empty());
+                let numbers: Vec<f64> = words.take(2).map(|word| word.parse().unwrap()).collect();
+                FitPoint { r_bohr: unit.to_bohr(numbers[0]), energy_hartree: numbers[1], weight: 1.0 }
+            })
+            .collect();
+        assert_eq!(points.len() as u64, entry["points"].as_u64().unwrap());
+        let lowest = points.iter().map(|p| p.energy_hartree).fold(f64::INFINITY, f64::min);
+        let window = Window { from: 0.1, to: 50.0, unit: LengthUnit::Bohr };
+        let found = fit(FitRequest::plain(Family::Morse), &points, window).unwrap();
+        for (key, ours) in [
+            ("e_min_above_lowest_hartree", "e_min"),
+            ("r_e_bohr", "r_e"),
+            ("d_e_hartree", "d_e"),
+            ("a_per_bohr", "a"),
+        ] {
+            let parameter = found.parameters.iter().find(|p| p.name == ours).unwrap();
+            let value = parameter.estimate.value - if ours == "e_min" { lowest } else { 0.0 };
+            for (ours, theirs) in [
+                (value, entry[key]["value"].as_f64().unwrap()),
+                (parameter.estimate.std_error.unwrap(), entry[key]["std_error"].as_f64().unwrap()),
+            ] {
+                assert!((ours / theirs - 1.0).abs() < 1e-7, "{name} {key}: {ours} against {theirs}");
+            }
+        }
+    }
+}
