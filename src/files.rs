@@ -42,6 +42,14 @@ pub enum Replace {
 /// [`WriteError::Exists`] when a file is there that `replace` does not cover, else what the system says.
 pub fn write(path: &Path, bytes: &[u8], replace: Replace) -> Result<(), WriteError> {
     let io = |reason: std::io::Error| WriteError::Io { path: path.to_owned(), reason: reason.to_string() };
+    if std::fs::metadata(path).is_ok_and(|m| !m.is_file() && !m.is_dir()) {
+        // A device or a pipe holds nothing that could be lost: it is written to, not replaced.
+        let mut device = std::fs::OpenOptions::new().write(true).open(path).map_err(io)?;
+        return device.write_all(bytes).map_err(io);
+    }
+    // A symbolic link stays one: what it points to is replaced.
+    let target = std::fs::canonicalize(path).unwrap_or_else(|_| path.to_owned());
+    let path = target.as_path();
     let may_replace = match replace {
         Replace::Nothing => false,
         Replace::Findings => is_findings_file(path),
@@ -72,8 +80,15 @@ pub fn write(path: &Path, bytes: &[u8], replace: Replace) -> Result<(), WriteErr
     }
 }
 
+/// No findings file is larger than this; more is not even read.
+const LARGEST_FINDINGS_BYTES: u64 = 1 << 30;
+
 /// Whether the file is a findings file (one study or an array of them).
 pub fn is_findings_file(path: &Path) -> bool {
+    let readable = |m: std::fs::Metadata| m.is_file() && m.len() <= LARGEST_FINDINGS_BYTES;
+    if !std::fs::metadata(path).is_ok_and(readable) {
+        return false;
+    }
     let Ok(bytes) = std::fs::read(path) else { return false };
     let Ok(value) = serde_json::from_slice::<serde_json::Value>(&bytes) else { return false };
     let is_one = |v: &serde_json::Value| v.get("format").and_then(|f| f.as_str()) == Some(FORMAT);
@@ -107,5 +122,19 @@ mod tests {
         let error =
             write(Path::new("/no-such-folder-of-ours/a.json"), b"x", Replace::Nothing).expect_err("refused");
         assert!(error.to_string().contains("no-such-folder-of-ours"), "{error}");
+    }
+
+    #[cfg(unix)]
+    #[test]
+    fn devices_are_written_to_and_links_stay_links() {
+        write(Path::new("/dev/null"), b"x", Replace::Findings).expect("written");
+        assert!(!is_findings_file(Path::new("/dev/zero")), "and not read without end");
+        let folder = tempfile::tempdir().expect("a folder");
+        let (real, link) = (folder.path().join("real"), folder.path().join("link"));
+        std::fs::write(&real, "old").expect("written");
+        std::os::unix::fs::symlink(&real, &link).expect("linked");
+        write(&link, b"new", Replace::Anything).expect("asked");
+        assert!(std::fs::symlink_metadata(&link).expect("there").is_symlink());
+        assert_eq!(std::fs::read(&real).expect("read"), b"new");
     }
 }

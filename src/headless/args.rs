@@ -161,6 +161,8 @@ pub struct StudyArgs {
     pub units: ParameterUnits,
     /// Replace existing files.
     pub overwrite: bool,
+    /// Bond lengths, in the scan's unit, whose points are set aside.
+    pub set_aside: Vec<f64>,
     /// Print timings.
     pub timings: bool,
     /// Only say what was understood.
@@ -188,6 +190,9 @@ pub enum UsageError {
     /// Nothing to study.
     #[error("study: name at least one file")]
     NoFile,
+    /// Two ways to say the mass.
+    #[error("--atoms and --reduced-mass both give the mass; keep one")]
+    TwoMasses,
     /// An option that belongs to the other command.
     #[error("--{option} belongs to {command}")]
     Elsewhere {
@@ -229,6 +234,9 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
             other => return Err(other.unexpected().into()),
         }
     }
+    if study.choices.atoms.is_some() && study.choices.reduced_mass_u.is_some() {
+        return Err(UsageError::TwoMasses);
+    }
     if is_study {
         return if study.files.is_empty() {
             Err(UsageError::NoFile)
@@ -244,7 +252,8 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
 
 /// An option that neither command has, or that the other one has.
 fn unknown_option(name: &str, is_study: bool) -> UsageError {
-    const STUDY: [&str; 11] = [
+    const STUDY: [&str; 12] = [
+        "set-aside",
         "out",
         "out-dir",
         "table",
@@ -375,6 +384,11 @@ fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Resul
         "out" => study.out = Some(parser.value()?.into()),
         "out-dir" => study.out_dir = Some(parser.value()?.into()),
         "timings" => study.timings = true,
+        "set-aside" => {
+            let list = |t: &str| t.split(',').map(|r| finite(r.trim()).filter(|r| *r > 0.0)).collect();
+            let accepted = "bond lengths in the unit of the file, e.g. 1.44,1.48";
+            study.set_aside = value(parser, "set-aside", accepted, list)?;
+        }
         "parameters" => study.parameters = Some(parser.value()?.into()),
         "parameter-energy-unit" => {
             let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
@@ -429,7 +443,10 @@ fn window_option(name: &str, parser: &mut Parser, window: &mut WindowArgs) -> Re
         "renderer" => window.renderer = Some(one_of("renderer", &["auto", "gl", "cpu"], parser)?),
         "theme" => window.theme = Some(one_of("theme", &["light", "dark"], parser)?),
         "page" => window.page = Some(parser.value()?.string()?),
-        "picture" => window.picture = Some(parser.value()?.into()),
+        "picture" => {
+            let png = |t: &str| t.to_lowercase().ends_with(".png").then(|| PathBuf::from(t));
+            window.picture = Some(value(parser, "picture", "a file name that ends in .png", png)?);
+        }
         "size" => {
             let size = |t: &str| {
                 let (width, height) = t.split_once('x')?;

@@ -48,6 +48,7 @@ MASSES
   Without atoms or a mass there are fits, derivatives and reach, but no levels.
 
 STUDY
+  --set-aside R,R,...        leave out the points at these bond lengths (unit of the file)
   --window FROM,TO           fit window in angstrom (default: 15 % of r_e to each side)
   --asymptote E              energy of the separated atoms, in the file's unit and scale
   --weights W                weights of the points in fits: equal (default); energy or energy=STEP, a smooth

@@ -33,11 +33,17 @@ pub fn main() -> ExitCode {
     ExitCode::from(status)
 }
 
-/// Writes to standard output; a reader that has gone away is no error.
+/// Writes to standard output; gives the exit status. A reader that has gone away is no error.
 fn print(text: &str) -> u8 {
     use std::io::Write as _;
-    let _ = std::io::stdout().write_all(text.as_bytes());
-    0
+    let mut out = std::io::stdout().lock();
+    match out.write_all(text.as_bytes()).and_then(|()| out.flush()) {
+        Err(error) if error.kind() != std::io::ErrorKind::BrokenPipe => {
+            eprintln!("parabound: standard output could not be written ({error})");
+            3
+        }
+        _ => 0,
+    }
 }
 
 #[cfg(feature = "gui")]

@@ -9,7 +9,7 @@ use crate::export::parameters::{self, ParameterUnits};
 use crate::files::{self, Replace};
 use crate::findings::Findings;
 use crate::scan::Scan;
-use crate::settings::Settings;
+use crate::settings::{SetAside, Settings};
 use crate::study::{Stage, study_observed};
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
@@ -36,20 +36,25 @@ pub fn run(arguments: &StudyArgs) -> u8 {
     let mut seconds = Timings::default();
     for group in Input::groups(&arguments.files, &settings.read) {
         let path = &group[0];
-        match study_file(&group, &settings, arguments, &mut seconds) {
-            Ok(findings) => studies.extend(findings.into_iter().map(|f| (path.clone(), f))),
-            Err(message) => {
-                eprintln!("parabound: {}: {message}", path.display());
-                status = status.max(NOT_READ);
+        for result in study_file(&group, &settings, arguments, &mut seconds) {
+            match result {
+                Ok(findings) => studies.push((path.clone(), findings)),
+                Err(message) => {
+                    eprintln!("parabound: {}: {message}", path.display());
+                    status = status.max(NOT_READ);
+                }
             }
         }
     }
     if studies.iter().any(|(_, f)| f.impossible()) {
         status = status.max(IMPOSSIBLE);
     }
-    if let Err(message) = write_results(arguments, &studies) {
-        eprintln!("parabound: {message}");
-        status = status.max(NOT_READ);
+    match write_results(arguments, &studies) {
+        Ok(written) => status = status.max(written),
+        Err(message) => {
+            eprintln!("parabound: {message}");
+            status = status.max(NOT_READ);
+        }
     }
     if arguments.timings {
         eprintln!("{}", seconds.to_json());
@@ -87,30 +92,69 @@ pub fn read_settings(path: &Path) -> Result<Settings, String> {
         .map_err(|e| format!("{}: these settings do not fit: {e}", path.display()))
 }
 
-/// All studies of one scan.
+/// All studies of one scan: one result a curve, or the one reason why there is none.
 fn study_file(
     group: &[PathBuf],
     settings: &Settings,
     arguments: &StudyArgs,
     seconds: &mut Timings,
-) -> Result<Vec<Findings>, String> {
-    let input = Input::read(group, &settings.read)?;
-    let mut findings = Vec::new();
+) -> Vec<Result<Findings, String>> {
+    let input = match Input::read(group, &settings.read) {
+        Ok(input) => input,
+        Err(message) => return vec![Err(message)],
+    };
+    let mut results = Vec::new();
     for pass in 0..arguments.repeat.max(1) {
         let start = Instant::now();
-        let scan = input.scan(&settings.read)?;
+        let scan = match input.scan(&settings.read) {
+            Ok(scan) => scan,
+            Err(message) => return vec![Err(message)],
+        };
         seconds.add("read", start.elapsed().as_secs_f64());
-        let curves = chosen_curves(&scan, settings);
-        for curve in &curves {
-            let settings = Settings { curve: curve.clone(), ..settings.clone() };
-            let found = timed_study(&scan, &settings, seconds)?;
+        let set_aside = match rows_set_aside(&scan, &arguments.set_aside) {
+            Ok(rows) => rows,
+            Err(message) => return vec![Err(message)],
+        };
+        for curve in chosen_curves(&scan, settings) {
+            let mut settings = Settings { curve, ..settings.clone() };
+            settings.set_aside.extend(set_aside.iter().cloned());
+            let found = guarded_study(&scan, &settings, seconds);
             if pass == 0 {
-                findings.push(found);
+                results.push(found);
             }
         }
         seconds.end_pass();
     }
-    Ok(findings)
+    results
+}
+
+/// The rows at the bond lengths that `--set-aside` names, in the scan's unit.
+fn rows_set_aside(scan: &Scan, bond_lengths: &[f64]) -> Result<Vec<SetAside>, String> {
+    let mut rows = Vec::new();
+    for &wanted in bond_lengths {
+        let before = rows.len();
+        let same = |r: f64| (r - wanted).abs() <= 1e-9 * wanted.abs();
+        rows.extend(
+            (0..scan.bond_lengths.len())
+                .filter(|&row| same(scan.bond_lengths[row]))
+                .map(|row| SetAside { row, reason: "set aside on the command line".to_owned() }),
+        );
+        if rows.len() == before {
+            let unit = scan.length_unit.name();
+            return Err(format!(
+                "--set-aside: no point at {wanted} {unit}; give bond lengths as the file has them"
+            ));
+        }
+    }
+    Ok(rows)
+}
+
+/// A panic is a fault of ours; it must not take the other files with it.
+fn guarded_study(scan: &Scan, settings: &Settings, seconds: &mut Timings) -> Result<Findings, String> {
+    let call = std::panic::AssertUnwindSafe(|| timed_study(scan, settings, seconds));
+    std::panic::catch_unwind(call).unwrap_or_else(|_| {
+        Err("the study stopped because of a fault in the program; please report it with this file".to_owned())
+    })
 }
 
 fn timed_study(scan: &Scan, settings: &Settings, seconds: &mut Timings) -> Result<Findings, String> {
@@ -125,26 +169,36 @@ fn timed_study(scan: &Scan, settings: &Settings, seconds: &mut Timings) -> Resul
     findings.map_err(|e| e.to_string())
 }
 
-/// The columns that `--curve` means: one choice, or each column for `all`.
+/// The columns that `--curve` means: one choice, or each column for `all`. A name that does not lead
+/// back to its column (headers may repeat) gives way to the number.
 fn chosen_curves(scan: &Scan, settings: &Settings) -> Vec<Option<String>> {
     match settings.curve.as_deref() {
-        Some("all") => scan.energies.iter().map(|e| Some(e.name.clone())).collect(),
+        Some("all") => scan
+            .energies
+            .iter()
+            .enumerate()
+            .map(|(i, column)| match scan.curve_index(Some(&column.name)) {
+                Ok(found) if found == i => Some(column.name.clone()),
+                _ => Some((i + 1).to_string()),
+            })
+            .collect(),
         other => vec![other.map(str::to_owned)],
     }
 }
 
-fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Result<(), String> {
+fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Result<u8, String> {
+    let mut status = DONE;
     let replace = if arguments.overwrite { Replace::Anything } else { Replace::Findings };
     let all: Vec<&Findings> = studies.iter().map(|(_, f)| f).collect();
     let to_standard_output = arguments.out.as_deref() == Some(Path::new("-"));
     if to_standard_output {
-        super::print(&all_to_string(&all));
+        status = status.max(super::print(&all_to_string(&all)));
     } else {
         let texts: Vec<String> = all.iter().map(|f| summary(f, &arguments.units)).collect();
-        super::print(&texts.join("\n"));
+        status = status.max(super::print(&texts.join("\n")));
     }
     if all.is_empty() {
-        return Ok(());
+        return Ok(status);
     }
     let mut failures = Vec::new();
     let mut keep = |result: Result<(), files::WriteError>| {
@@ -169,12 +223,16 @@ fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Resu
     for (table, path) in &arguments.tables {
         let mut bytes = Vec::new();
         table.write(&all, &mut bytes).map_err(|e| format!("{}: {e}", path.display()))?;
+        if path == Path::new("-") {
+            status = status.max(super::print(&String::from_utf8_lossy(&bytes)));
+            continue;
+        }
         keep(files::write(path, &bytes, table_replace));
     }
     if let Some(path) = &arguments.parameters {
         keep(files::write(path, all_parameters(&all, path, &arguments.units).as_bytes(), table_replace));
     }
-    if failures.is_empty() { Ok(()) } else { Err(failures.join("\nparabound: ")) }
+    if failures.is_empty() { Ok(status) } else { Err(failures.join("\nparabound: ")) }
 }
 
 /// The parameters of every fit of every study, as LaTeX where the file's name says so.

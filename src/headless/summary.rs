@@ -25,7 +25,12 @@ pub fn summary(findings: &Findings, units: &ParameterUnits) -> String {
         reach(&mut text, findings);
     }
     notices(&mut text, findings);
-    text
+    in_ascii(&text)
+}
+
+/// The summary goes through pipes and old terminals: signs of the window's typography become ASCII.
+fn in_ascii(text: &str) -> String {
+    text.replace("cm⁻¹", "cm-1").replace('Å', "angstrom").replace(['−', '–'], "-").replace('…', "...")
 }
 
 fn head(text: &mut String, findings: &Findings) {
@@ -50,7 +55,12 @@ fn head(text: &mut String, findings: &Findings) {
             OuterTail::InversePower { asymptote_hartree, assumed, .. }
             | OuterTail::Exponential { asymptote_hartree, assumed, .. } => {
                 let depth = to_per_cm(asymptote_hartree - curve.v_e_hartree.value);
-                let word = if assumed { "assumed" } else { "given" };
+                let given = findings.settings.interpolation.asymptote.is_some();
+                let word = match (assumed, given) {
+                    (true, _) => "assumed",
+                    (false, true) => "given",
+                    (false, false) => "from the tail",
+                };
                 let _ = write!(text, "; asymptote {} cm-1 above the minimum ({word})", fixed(depth, 0));
             }
         }
@@ -162,6 +172,9 @@ fn fit(text: &mut String, findings: &FitFindings, units: &ParameterUnits) {
             for p in &fit.parameters {
                 let (unit, factor) = units.of(p.unit);
                 row(text, &format!("  {}", p.name), Some(p.estimate.scaled(factor)), &unit, "");
+            }
+            for (name, estimate) in &findings.constants_per_cm {
+                row(text, &format!("  {name}"), *estimate, "cm-1", "");
             }
         }
     }

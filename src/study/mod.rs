@@ -14,7 +14,7 @@ use crate::notice::{Code, Notice};
 use crate::reach;
 use crate::scan::Scan;
 use crate::scan::error::ScanError;
-use crate::settings::Settings;
+use crate::settings::{Settings, SettingsError};
 use crate::species::{self, SpeciesError};
 use crate::spectroscopy::{self, Constants, LevelSet};
 use std::sync::Arc;
@@ -31,6 +31,9 @@ pub enum StudyError {
     /// The atoms or the mass do not exist.
     #[error(transparent)]
     Species(#[from] SpeciesError),
+    /// A setting makes no sense.
+    #[error(transparent)]
+    Settings(#[from] SettingsError),
     /// A row is set aside that the scan does not have.
     #[error("row {row} is set aside, but the scan has {rows} rows; counted from 0")]
     Row {
@@ -95,6 +98,7 @@ pub fn study_observed(
     settings: &Settings,
     after: &mut dyn FnMut(Stage),
 ) -> Result<Findings, StudyError> {
+    settings.checked()?;
     let column = &scan.energies[scan.curve_index(settings.curve.as_deref())?];
     let masses = species::masses(&settings.masses, scan.atoms.as_ref(), scan.charge)?;
     let (points, mut notices) = points::points(scan, column, settings)?;

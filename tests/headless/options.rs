@@ -138,3 +138,47 @@ fn isotopes_charge_and_reduced_mass_change_the_levels_as_they_must() {
     let ion = first(&["--atoms", "H,Cl", "--charge", "1"]);
     assert!(ion < hcl && hcl - ion < 0.1, "an electron less is a heavier reduced mass by m_e only");
 }
+
+/// Found by a first user: a lost write reported success, and repeated headers lost every curve.
+#[cfg(target_os = "linux")]
+#[test]
+fn a_lost_write_is_no_success() {
+    let path = scan("hcl_clean.csv");
+    let full = std::fs::OpenOptions::new().write(true).open("/dev/full").expect("there is one");
+    let status = std::process::Command::new(env!("CARGO_BIN_EXE_parabound"))
+        .args(["study", path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--out", "-"])
+        .stdout(full)
+        .stderr(std::process::Stdio::null())
+        .status()
+        .expect("the program starts");
+    assert_eq!(status.code(), Some(3));
+    let out = study(&[path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--out", "/dev/null"]);
+    assert_eq!(out.status.code(), Some(0), "a device is written to: {}", text(&out.stderr));
+}
+
+#[test]
+fn the_summary_is_ascii_and_gives_the_constants_of_each_fit() {
+    let path = scan("hcl_messy.txt");
+    let output = study(&[path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--set-aside", "1.44"]);
+    assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+    let summary = text(&output.stdout);
+    assert!(summary.is_ascii(), "{summary}");
+    assert!(summary.matches("omega_e ").count() >= 4, "curve and three fits\n{summary}");
+    assert!(!summary.contains("off the curve"), "the loose point is set aside\n{summary}");
+    let nowhere = study(&[path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--set-aside", "9.9"]);
+    assert_eq!(nowhere.status.code(), Some(3));
+}
+
+#[test]
+fn two_masses_and_settings_without_sense_are_refused() {
+    let path = scan("hcl_clean.csv");
+    let path = path.to_str().expect("UTF-8");
+    let both = study(&[path, "--atoms", "H,Cl", "--reduced-mass", "1"]);
+    assert_eq!(both.status.code(), Some(2));
+    let folder = tempfile::tempdir().expect("a folder");
+    let file = folder.path().join("s.json");
+    fs::write(&file, r#"{"reach": {"tolerance": -1}}"#).expect("written");
+    let refused = study(&[path, "--settings", file.to_str().expect("UTF-8")]);
+    assert_eq!(refused.status.code(), Some(3));
+    assert!(text(&refused.stderr).contains("reach.tolerance"), "{}", text(&refused.stderr));
+}
