@@ -3,7 +3,7 @@
 //!
 //! The damping follows the gain ratio of H. B. Nielsen (Damping parameter in Marquardt's method,
 //! IMM-REP-1999-05, Technical University of Denmark); scale factors are the largest column lengths met
-//! so far [J. J. Moré, Lecture Notes in Mathematics 630, 105 (1978)]. Both steps come from a QR of the
+//! so far [J. J. Moré, in: G. A. Watson (ed.), Numerical Analysis, Springer (1978), p. 105]. Both steps come from a QR of the
 //! scaled Jacobian, never from normal equations. (Sources from memory.)
 
 use super::FitEnd;

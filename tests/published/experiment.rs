@@ -1,7 +1,7 @@
 //! Constants of computed scans beside experiment.
 //!
 //! Source: `reference/diatomic-constants.json`, K. P. Huber and G. Herzberg, Constants of Diatomic Molecules (1979);
-//! the file says of each value whether a public transcription confirms it or it is from memory.
+//! the file says of each value whether a public data set confirms it or it is from memory.
 //!
 //! A scan is one Born-Oppenheimer curve of an approximate method, so the tolerances are those of the method,
 //! not of the program (common practice, no source): full CI with a quadruple-zeta basis within 0.1 % (what is

@@ -150,6 +150,23 @@ fn only_the_window_names_the_gui_packages_and_only_the_doors_open_files() {
     }
 }
 
+/// Pictures and links of the documents exist.
+#[test]
+fn the_documents_link_to_what_exists() {
+    let mut links = 0;
+    for document in ["README.md", "DEVELOPERS.md", "sample-scans/README.md"] {
+        let text = fs::read_to_string(root().join(document)).expect(document);
+        for rest in text.split("](").skip(1) {
+            let target = rest.split(')').next().unwrap_or("");
+            if !target.contains("://") && !target.starts_with('#') {
+                links += 1;
+                assert!(root().join(target).exists(), "{document} links to {target}, which does not exist");
+            }
+        }
+    }
+    assert!(links > 0, "the README shows a picture");
+}
+
 /// Paths in back quotes in the two documents exist.
 #[test]
 fn the_documents_name_what_exists() {
