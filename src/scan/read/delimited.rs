@@ -179,6 +179,8 @@ struct Reader<'a> {
     header: Option<Header>,
     header_text: Option<&'a str>,
     table: Table<'a>,
+    /// Numbers of the row at hand.
+    plain: Vec<f64>,
 }
 
 impl<'a> Reader<'a> {
@@ -191,7 +193,16 @@ impl<'a> Reader<'a> {
             row_remarks: Vec::new(),
             prose: Vec::new(),
         };
-        Self { format, used, places: None, before: Vec::new(), header: None, header_text: None, table }
+        Self {
+            format,
+            used,
+            places: None,
+            before: Vec::new(),
+            header: None,
+            header_text: None,
+            table,
+            plain: Vec::new(),
+        }
     }
 
     fn begun(&self) -> bool {
@@ -203,6 +214,9 @@ impl<'a> Reader<'a> {
             return self.text(TextLine { number: line.number, text, is_comment: true });
         }
         if !line.has_content() {
+            return Ok(());
+        }
+        if self.begun() && self.plain_row(&line) {
             return Ok(());
         }
         row.read(line.content, self.format.delimiter, self.format.sign);
@@ -217,6 +231,36 @@ impl<'a> Reader<'a> {
             return Ok(());
         }
         self.row(line, row)
+    }
+
+    /// Takes a row of nothing but plain numbers, the usual one of a long table; false for any other, which is
+    /// then read with all care. What it takes, the careful way reads as the same numbers.
+    fn plain_row(&mut self, line: &Line<'a>) -> bool {
+        let Some(sign) = self.format.delimiter.sign() else { return false };
+        let columns = self.format.columns;
+        let room = self.table.row_lines.len() < LIMIT_ROWS;
+        if line.comment.is_some() || self.format.sign != DecimalSign::Point || !room {
+            return false;
+        }
+        self.plain.clear();
+        for cell in line.content.split(sign) {
+            let cell = cell.trim();
+            let ends_in_digit = cell.as_bytes().last().is_some_and(u8::is_ascii_digit);
+            match cell.parse::<f64>() {
+                Ok(value) if ends_in_digit && value.is_finite() && self.plain.len() < columns => {
+                    self.plain.push(value);
+                }
+                _ => return false,
+            }
+        }
+        if self.plain.len() != columns {
+            return false;
+        }
+        self.table.row_lines.push(line.number);
+        for (column, value) in self.table.columns.iter_mut().zip(&self.plain) {
+            column.push(Some(*value));
+        }
+        true
     }
 
     /// A comment or a title.
