@@ -10,6 +10,7 @@ use crate::scan::Layout;
 use crate::settings::Settings;
 use crate::species::Masses;
 use crate::spectroscopy::Constants;
+use crate::thermal::ThermalPoint;
 use crate::units::{EnergyUnit, LengthUnit};
 use std::sync::Arc;
 
@@ -114,6 +115,8 @@ pub struct Findings {
     pub constants: Constants,
     /// The reach; none without a minimum.
     pub reach: Option<Reach>,
+    /// Thermal averages by temperature; empty without levels.
+    pub thermal: Vec<ThermalPoint>,
     /// All remarks, the gravest first.
     pub notices: Vec<Notice>,
 }
@@ -122,6 +125,19 @@ impl Findings {
     /// Whether the study was impossible (a notice says why).
     pub fn impossible(&self) -> bool {
         self.notices.iter().any(|n| n.severity == Severity::Stop)
+    }
+
+    /// What thermal averages are made from; none without levels.
+    pub fn thermal_input(&self) -> Option<crate::thermal::ThermalInput<'_>> {
+        let (curve, masses) = (self.curve.as_ref()?, self.masses.as_ref()?);
+        let morse =
+            self.fits.iter().find(|f| f.request.family == crate::fit::Family::Morse && f.result.is_ok());
+        (!self.levels.is_empty()).then_some(crate::thermal::ThermalInput {
+            levels: &self.levels,
+            force_constant_hartree_per_bohr2: curve.local.second_hartree,
+            reduced_mass_me: masses.reduced_mass_me,
+            morse_per_cm: morse.map_or(&[], |f| &f.levels_per_cm),
+        })
     }
 
     /// The fit of a family that succeeded, where there is one.

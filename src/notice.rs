@@ -67,6 +67,8 @@ pub enum Code {
     ShortRange,
     TextColumn,
     UnitContradicted,
+    TemperatureRange,
+    ThermalLevels,
 }
 
 impl Code {
@@ -111,6 +113,8 @@ impl Code {
             Self::ShortRange => "short-range",
             Self::TextColumn => "text-column",
             Self::UnitContradicted => "unit-contradicted",
+            Self::TemperatureRange => "temperature-range",
+            Self::ThermalLevels => "thermal-levels",
         }
     }
 }

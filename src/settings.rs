@@ -6,6 +6,7 @@ use crate::potential::curve::CurveSettings;
 use crate::reach::ReachSettings;
 use crate::scan::read::ReadSettings;
 use crate::species::MassSettings;
+use crate::thermal::ThermalSettings;
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
 
@@ -102,6 +103,8 @@ pub struct Settings {
     pub levels: LevelSettings,
     /// The reach.
     pub reach: ReachSettings,
+    /// The thermal averages.
+    pub thermal: ThermalSettings,
 }
 
 /// A setting that makes no sense.

@@ -8,7 +8,7 @@ use serde::{Deserialize, Serialize};
 use std::fmt;
 use thiserror::Error;
 
-pub use nuclides::{element_symbols, isotopes_of};
+pub use nuclides::{element_symbols, isotopes_of, mean_atomic_mass_u};
 
 /// An atom as the user names it: a symbol and, where a certain isotope is wanted, a mass number.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]

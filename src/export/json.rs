@@ -16,6 +16,7 @@ use crate::radial::Level;
 use crate::reach::{EndedBy, Interval, LevelReach, Reach};
 use crate::species::Masses;
 use crate::spectroscopy::Constants;
+use crate::thermal::{Averages, ThermalPoint};
 use crate::units::{
     ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_angstrom,
 };
@@ -71,7 +72,7 @@ pub fn findings_to_value(findings: &Findings) -> Value {
         "levels": findings.levels.iter().map(level).collect::<Vec<_>>(),
         "constants": constants(&findings.constants),
         "reach": findings.reach.as_ref().map(reach),
-        "thermal": [],
+        "thermal": findings.thermal.iter().map(thermal_point).collect::<Vec<_>>(),
         "next_points": [],
         "notices": findings.notices.iter().map(notice).collect::<Vec<_>>(),
     });
@@ -349,6 +350,49 @@ fn reach(reach: &Reach) -> Value {
             "mean_square_x": kelvin(reach.temperature_kelvin.mean_square_x),
         },
         "zero_point_amplitude": reach.zero_point_amplitude_bohr.map(angstrom),
+    })
+}
+
+fn averages(averages: &Averages) -> Value {
+    json!({
+        "partition_function": averages.partition_function,
+        "mean_energy": quantity(averages.mean_energy_kilojoule_per_mole(), "kJ/mol"),
+        "heat_capacity": quantity(averages.heat_capacity_joule_per_mole_kelvin(), "J/(mol K)"),
+        "entropy": quantity(averages.entropy_joule_per_mole_kelvin(), "J/(mol K)"),
+    })
+}
+
+fn thermal_point(point: &ThermalPoint) -> Value {
+    let square = |x2: f64| quantity(x2 * ANGSTROM_PER_BOHR * ANGSTROM_PER_BOHR, "angstrom^2");
+    let harmonic = point.harmonic.as_ref().map(|h| {
+        let mut value = averages(h);
+        value["mean_square_x"] = point.harmonic_mean_square_x_bohr2.map_or(Value::Null, square);
+        value
+    });
+    let rovibrational = point.rotating.map(|r| {
+        let mut value = averages(&r.rovibrational);
+        value["mean_r"] = angstrom(r.mean_r_bohr);
+        value["mean_square_x"] = square(r.mean_square_x_bohr2);
+        value
+    });
+    let ideal_gas = point.rotating.and_then(|r| r.ideal_gas).map(|gas| {
+        json!({
+            "heat_capacity": quantity(gas.heat_capacity_joule_per_mole_kelvin, "J/(mol K)"),
+            "entropy": quantity(gas.entropy_joule_per_mole_kelvin, "J/(mol K)"),
+            "enthalpy": quantity(gas.enthalpy_kilojoule_per_mole, "kJ/mol"),
+        })
+    });
+    json!({
+        "temperature": quantity(point.kelvin, "K"),
+        "vibrational": averages(&point.vibrational),
+        "mean_r": angstrom(point.mean_r_bohr),
+        "mean_square_x": square(point.mean_square_x_bohr2),
+        "harmonic": harmonic,
+        "morse": point.morse.as_ref().map(averages),
+        "populations": point.populations,
+        "rovibrational": rovibrational,
+        "ideal_gas": ideal_gas,
+        "converged": point.converged,
     })
 }
 

@@ -3,4 +3,5 @@
 
 pub mod json;
 pub mod parameters;
+pub mod recheck;
 pub mod table;

@@ -2,6 +2,8 @@
 //! window studies.
 //! Units stand in the header; an empty cell means that the study has no such value.
 
+mod thermal;
+
 use crate::estimate::Estimate;
 use crate::findings::Findings;
 use crate::units::{
@@ -20,15 +22,18 @@ pub enum Table {
     WindowStudy,
     /// One row a point of a curve, bond length and energy as read.
     Curve,
+    /// One row a temperature.
+    Thermal,
 }
 
 impl Table {
     /// The tables by their names on the command line.
-    pub const ALL: [(&'static str, Self); 4] = [
+    pub const ALL: [(&'static str, Self); 5] = [
         ("levels", Self::Levels),
         ("constants", Self::Constants),
         ("window-study", Self::WindowStudy),
         ("curve", Self::Curve),
+        ("thermal", Self::Thermal),
     ];
 
     /// Writes the table of all studies given.
@@ -41,6 +46,7 @@ impl Table {
             Self::Constants => write_constants(studies, out),
             Self::WindowStudy => write_window_studies(studies, out),
             Self::Curve => write_curves(studies, out),
+            Self::Thermal => thermal::write(studies, out),
         }
     }
 }

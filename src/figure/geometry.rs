@@ -77,6 +77,30 @@ fn clip_segment(a: [f64; 2], b: [f64; 2], bounds: &Bounds) -> Option<([f64; 2], 
     (t0 <= t1).then(|| (if t0 == 0.0 { a } else { at(t0) }, if t1 == 1.0 { b } else { at(t1) }))
 }
 
+/// A closed polygon cut to `bounds` (Sutherland and Hodgman 1974); empty where nothing is left.
+pub fn clip_area(points: &[[f64; 2]], bounds: &Bounds) -> Vec<[f64; 2]> {
+    let sides = [(0, bounds.x.0, 1.0), (0, bounds.x.1, -1.0), (1, bounds.y.0, 1.0), (1, bounds.y.1, -1.0)];
+    let mut polygon: Vec<[f64; 2]> =
+        points.iter().copied().filter(|p| p.iter().all(|c| c.is_finite())).collect();
+    for (axis, edge, sign) in sides {
+        let depth = |p: &[f64; 2]| sign * (p[axis] - edge);
+        let mut kept = Vec::with_capacity(polygon.len() + 4);
+        for (i, p) in polygon.iter().enumerate() {
+            let before = polygon[(i + polygon.len() - 1) % polygon.len()];
+            let (a, b) = (depth(&before), depth(p));
+            if (a >= 0.0) != (b >= 0.0) {
+                let t = a / (a - b);
+                kept.push([before[0] + t * (p[0] - before[0]), before[1] + t * (p[1] - before[1])]);
+            }
+            if b >= 0.0 {
+                kept.push(*p);
+            }
+        }
+        polygon = kept;
+    }
+    polygon
+}
+
 /// The ordinate of a polyline with ascending abscissas at `x`; none outside it.
 pub fn read_line(points: &[[f64; 2]], x: f64) -> Option<f64> {
     let after = points.partition_point(|p| p[0] < x);
@@ -111,6 +135,17 @@ mod tests {
     fn a_line_outside_leaves_nothing() {
         assert!(clip_line(&[[2.0, 2.0], [3.0, 3.0]], &UNIT).is_empty());
         assert!(clip_line(&[], &UNIT).is_empty());
+    }
+
+    #[test]
+    fn an_area_is_cut_to_its_corner() {
+        let cut = clip_area(&[[0.5, 0.5], [2.0, 0.5], [2.0, 2.0], [0.5, 2.0]], &UNIT);
+        let area: f64 = (0..cut.len())
+            .map(|i| (cut[i], cut[(i + 1) % cut.len()]))
+            .map(|(a, b)| 0.5 * (a[0] * b[1] - b[0] * a[1]))
+            .sum();
+        assert!((area - 0.25).abs() < 1e-12, "{cut:?}");
+        assert!(clip_area(&[[2.0, 2.0], [3.0, 2.0], [3.0, 3.0]], &UNIT).is_empty());
     }
 
     #[test]

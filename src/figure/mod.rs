@@ -6,12 +6,16 @@
 
 mod curve;
 mod densities;
+pub mod drawing;
 mod gauge;
 pub mod geometry;
 mod ladders;
 pub mod number;
+pub mod pdf;
 mod residuals;
 mod sentence;
+pub mod svg;
+mod thermal;
 mod views;
 
 pub use curve::{fit_label, fit_role, main_plot};
@@ -20,6 +24,7 @@ pub use gauge::gauge;
 pub use ladders::{Ladder, Ladders, ladders};
 pub use residuals::residuals;
 pub use sentence::{Sentence, sentence};
+pub use thermal::thermal_figure;
 pub use views::{Views, views};
 
 use crate::findings::Findings;

@@ -2,6 +2,7 @@
 
 use crate::export::parameters::ParameterUnits;
 use crate::export::table::Table;
+use crate::figure::drawing::{Paper, Subject, View};
 use crate::fit::{BootstrapSettings, EnergyWeights, Weighting, Window};
 use crate::scan::combine::Recipe;
 use crate::scan::read::{Match, parse_energy_unit, parse_length_unit};
@@ -24,6 +25,10 @@ pub enum Command {
     Window(Box<WindowArgs>),
     /// Headless studies.
     Study(Box<StudyArgs>),
+    /// A picture of a study.
+    Figure(Box<FigureArgs>),
+    /// A findings file computed again.
+    Recheck(Box<RecheckArgs>),
 }
 
 /// Choices about the study itself, shared by window and headless command; none leaves a setting alone.
@@ -67,6 +72,10 @@ pub struct StudyChoices {
     pub energy_pattern: Option<String>,
     /// Which match of the patterns counts.
     pub which_match: Option<Match>,
+    /// Temperatures of the thermal averages in K.
+    pub temperatures_kelvin: Option<Vec<f64>>,
+    /// Thermal averages with rotation.
+    pub rotation: bool,
 }
 
 impl StudyChoices {
@@ -113,6 +122,10 @@ impl StudyChoices {
         if self.window_study {
             settings.fits.window_study.get_or_insert_default();
         }
+        if let Some(temperatures) = &self.temperatures_kelvin {
+            settings.thermal.temperatures_kelvin.clone_from(temperatures);
+        }
+        settings.thermal.rotation |= self.rotation;
         if let Some(charge) = self.charge {
             settings.masses.charge = charge;
         }
@@ -171,6 +184,32 @@ pub struct StudyArgs {
     pub repeat: usize,
 }
 
+/// Arguments of a picture.
+#[derive(Clone, Debug)]
+pub struct FigureArgs {
+    /// The scan.
+    pub file: PathBuf,
+    /// Choices about the study.
+    pub choices: StudyChoices,
+    /// The picture: its ending says the format.
+    pub out: PathBuf,
+    /// Which picture.
+    pub subject: Subject,
+    /// The paper.
+    pub paper: Paper,
+    /// Replace an existing file.
+    pub overwrite: bool,
+}
+
+/// Arguments of a recheck.
+#[derive(Clone, Debug, PartialEq)]
+pub struct RecheckArgs {
+    /// The findings file.
+    pub findings: PathBuf,
+    /// The scan, where it is not beside the findings.
+    pub source: Option<PathBuf>,
+}
+
 /// Wrong usage.
 #[derive(Debug, Error)]
 pub enum UsageError {
@@ -193,6 +232,17 @@ pub enum UsageError {
     /// Two ways to say the mass.
     #[error("--atoms and --reduced-mass both give the mass; keep one")]
     TwoMasses,
+    /// A command that takes one file has none or several.
+    #[error("{command}: name one file, not {count}")]
+    OneFile {
+        /// The command.
+        command: &'static str,
+        /// How many files were named.
+        count: usize,
+    },
+    /// A picture without a place to go.
+    #[error("figure: say where to with --out F.svg or F.pdf")]
+    NoOut,
     /// An option that belongs to the other command.
     #[error("--{option} belongs to {command}")]
     Elsewhere {
@@ -208,74 +258,172 @@ pub enum UsageError {
 /// # Errors
 /// [`UsageError`] for unknown options and values that are not understood.
 pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, UsageError> {
-    let arguments: Vec<OsString> = arguments.into_iter().collect();
-    let is_study = arguments.first().is_some_and(|a| a == "study");
-    let mut parser = Parser::from_args(arguments.into_iter().skip(usize::from(is_study)));
+    let mut arguments: Vec<OsString> = arguments.into_iter().collect();
+    let verb = arguments.first().and_then(|a| Verb::named(a.to_str()?)).unwrap_or(Verb::Window);
+    if verb != Verb::Window {
+        arguments.remove(0);
+    }
+    let mut parser = Parser::from_args(arguments);
+    let mut choices = StudyChoices::default();
+    let mut files = Vec::new();
+    let mut overwrite = false;
     let mut study = StudyArgs { repeat: 1, ..StudyArgs::default() };
     let mut window = WindowArgs::default();
+    let mut figure = FigureOptions::default();
+    let mut source = None;
     while let Some(argument) = parser.next()? {
         match argument {
             Arg::Short('h') | Arg::Long("help") => return Ok(Command::Help),
             Arg::Short('V') | Arg::Long("version") => return Ok(Command::Version),
-            Arg::Value(file) => study.files.push(file.into()),
-            Arg::Long("overwrite") => study.overwrite = true,
+            Arg::Value(file) => files.push(file.into()),
+            Arg::Long("overwrite") if verb != Verb::Recheck => overwrite = true,
             Arg::Long(name) => {
                 let name = name.to_owned();
-                let known = study_choice(&name, &mut parser, &mut study.choices)?
-                    || if is_study {
-                        study_option(&name, &mut parser, &mut study)?
-                    } else {
-                        window_option(&name, &mut parser, &mut window)?
+                let known = verb != Verb::Recheck && study_choice(&name, &mut parser, &mut choices)?
+                    || match verb {
+                        Verb::Study => study_option(&name, &mut parser, &mut study)?,
+                        Verb::Window => window_option(&name, &mut parser, &mut window)?,
+                        Verb::Figure => figure_option(&name, &mut parser, &mut figure)?,
+                        Verb::Recheck if name == "source" => {
+                            source = Some(parser.value()?.into());
+                            true
+                        }
+                        Verb::Recheck => false,
                     };
                 if !known {
-                    return Err(unknown_option(&name, is_study));
+                    return Err(unknown_option(&name, verb));
                 }
             }
             other => return Err(other.unexpected().into()),
         }
     }
-    if study.choices.atoms.is_some() && study.choices.reduced_mass_u.is_some() {
+    if choices.atoms.is_some() && choices.reduced_mass_u.is_some() {
         return Err(UsageError::TwoMasses);
     }
-    if is_study {
-        return if study.files.is_empty() {
-            Err(UsageError::NoFile)
-        } else {
-            Ok(Command::Study(Box::new(study)))
-        };
-    }
-    window.files = study.files;
-    window.choices = study.choices;
-    window.overwrite = study.overwrite;
-    Ok(Command::Window(Box::new(window)))
+    let one = |command, files: Vec<PathBuf>| match <[PathBuf; 1]>::try_from(files) {
+        Ok([file]) => Ok(file),
+        Err(files) => Err(UsageError::OneFile { command, count: files.len() }),
+    };
+    Ok(match verb {
+        Verb::Window => Command::Window(Box::new(WindowArgs { files, choices, overwrite, ..window })),
+        Verb::Study if files.is_empty() => return Err(UsageError::NoFile),
+        Verb::Study => {
+            // A table of the window study asks for that study.
+            choices.window_study |= study.tables.iter().any(|(table, _)| *table == Table::WindowStudy);
+            Command::Study(Box::new(StudyArgs { files, choices, overwrite, ..study }))
+        }
+        Verb::Figure => Command::Figure(Box::new(FigureArgs {
+            file: one("figure", files)?,
+            choices,
+            out: figure.out.ok_or(UsageError::NoOut)?,
+            subject: figure.subject.unwrap_or(Subject::Curve),
+            paper: figure.paper,
+            overwrite,
+        })),
+        Verb::Recheck => Command::Recheck(Box::new(RecheckArgs { findings: one("recheck", files)?, source })),
+    })
 }
 
-/// An option that neither command has, or that the other one has.
-fn unknown_option(name: &str, is_study: bool) -> UsageError {
-    const STUDY: [&str; 12] = [
-        "set-aside",
-        "out",
-        "out-dir",
-        "table",
-        "timings",
-        "repeat",
-        "dry-run",
-        "parameters",
-        "parameter-energy-unit",
-        "parameter-length-unit",
-        "force-constant-unit",
-        "convention",
-    ];
-    const WINDOW: [&str; 6] = ["renderer", "theme", "page", "picture", "size", "scale"];
-    let (others, command) = if is_study {
-        (&WINDOW[..], "the window: parabound FILE...")
-    } else {
-        (&STUDY[..], "parabound study")
-    };
-    match others.iter().find(|o| **o == name) {
-        Some(option) => UsageError::Elsewhere { option, command },
-        None => lexopt::Error::UnexpectedOption(format!("--{name}")).into(),
+/// The commands.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Verb {
+    Window,
+    Study,
+    Figure,
+    Recheck,
+}
+
+impl Verb {
+    fn named(word: &str) -> Option<Self> {
+        match word {
+            "study" => Some(Self::Study),
+            "figure" => Some(Self::Figure),
+            "recheck" => Some(Self::Recheck),
+            _ => None,
+        }
     }
+
+    /// Its own options.
+    const fn options(self) -> &'static [&'static str] {
+        match self {
+            Self::Window => &["renderer", "theme", "page", "picture", "size", "scale"],
+            Self::Study => &[
+                "set-aside",
+                "out",
+                "out-dir",
+                "table",
+                "timings",
+                "repeat",
+                "dry-run",
+                "parameters",
+                "parameter-energy-unit",
+                "parameter-length-unit",
+                "force-constant-unit",
+                "convention",
+            ],
+            Self::Figure => &["out", "what", "view", "width-mm", "font-pt", "theme"],
+            Self::Recheck => &["source"],
+        }
+    }
+
+    const fn call(self) -> &'static str {
+        match self {
+            Self::Window => "the window: parabound FILE...",
+            Self::Study => "parabound study",
+            Self::Figure => "parabound figure",
+            Self::Recheck => "parabound recheck",
+        }
+    }
+}
+
+/// Options of a picture as far as they are given.
+#[derive(Default)]
+struct FigureOptions {
+    out: Option<PathBuf>,
+    subject: Option<Subject>,
+    paper: Paper,
+}
+
+/// An option that no command has, or that another one has.
+fn unknown_option(name: &str, verb: Verb) -> UsageError {
+    let others = [Verb::Window, Verb::Study, Verb::Figure, Verb::Recheck].into_iter().filter(|v| *v != verb);
+    for other in others {
+        if let Some(option) = other.options().iter().find(|o| **o == name) {
+            return UsageError::Elsewhere { option, command: other.call() };
+        }
+    }
+    lexopt::Error::UnexpectedOption(format!("--{name}")).into()
+}
+
+fn figure_option(name: &str, parser: &mut Parser, figure: &mut FigureOptions) -> Result<bool, UsageError> {
+    fn named<T: Copy>(list: &[(&str, T)], text: &str) -> Option<T> {
+        list.iter().find(|(name, _)| *name == text).map(|(_, value)| *value)
+    }
+    fn names<T>(list: &[(&str, T)]) -> String {
+        list.iter().map(|(name, _)| *name).collect::<Vec<_>>().join(", ")
+    }
+    let range = |from: f64, to: f64| move |t: &str| finite(t).filter(|v| (from..=to).contains(v));
+    match name {
+        "out" => figure.out = Some(parser.value()?.into()),
+        "what" => {
+            let subject = |t: &str| named(&Subject::ALL, t);
+            figure.subject = Some(value(parser, "what", &names(&Subject::ALL), subject)?);
+        }
+        "view" => figure.paper.view = value(parser, "view", &names(&View::ALL), |t| named(&View::ALL, t))?,
+        "width-mm" => {
+            figure.paper.width_mm =
+                value(parser, "width-mm", "a number from 40 to 1000", range(40.0, 1000.0))?;
+        }
+        "font-pt" => {
+            figure.paper.font_pt = value(parser, "font-pt", "a number from 4 to 40", range(4.0, 40.0))?;
+        }
+        "theme" => {
+            figure.paper.dark =
+                value(parser, "theme", "light, dark", |t| named(&[("light", false), ("dark", true)], t))?;
+        }
+        _ => return Ok(false),
+    }
+    Ok(true)
 }
 
 fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> Result<bool, UsageError> {
@@ -357,6 +505,16 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
             choices.seed = Some(value(parser, "seed", accepted, |t| t.parse().ok())?);
         }
         "window-study" => choices.window_study = true,
+        "temperatures" => {
+            let (low, high) = crate::thermal::TEMPERATURES_KELVIN;
+            let accepted = format!("temperatures in K, {low} to {high}, with commas: 100,298.15,1000");
+            let list = |t: &str| {
+                let kelvin = |s: &str| finite(s.trim()).filter(|k| (low..=high).contains(k));
+                t.split(',').map(kelvin).collect::<Option<Vec<f64>>>()
+            };
+            choices.temperatures_kelvin = Some(value(parser, "temperatures", &accepted, list)?);
+        }
+        "rotation" => choices.rotation = true,
         _ => return Ok(false),
     }
     Ok(true)
@@ -427,7 +585,6 @@ fn study_option(name: &str, parser: &mut Parser, study: &mut StudyArgs) -> Resul
                 found: text.to_string_lossy().into_owned(),
                 accepted: format!("WHAT=FILE.csv with WHAT one of {}", names.join(", ")),
             })?;
-            study.choices.window_study |= table == Table::WindowStudy;
             study.tables.push((table, file));
         }
         _ => return Ok(false),

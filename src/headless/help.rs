@@ -7,6 +7,8 @@ parabound: from a bond scan to constants, levels and the reach of the parabola
 USAGE
   parabound [FILE...]                  the window, with these scans or the bundled sample
   parabound study FILE... [OPTIONS]    a summary on standard output, findings as JSON and tables
+  parabound figure FILE --out F.svg    a picture for paper: SVG or PDF by the ending
+  parabound recheck FINDINGS           compute a findings file again from its source and compare
 
 WINDOW OPTIONS
   --renderer auto|gl|cpu     how it is painted; auto (the default) needs no GPU
@@ -59,6 +61,9 @@ STUDY
   --seed N                   seed of the resampling (default 1)
   --window-study             repeat the fits over all sensible windows and degrees, find the plateau
                              of omega_e and propose a window on it
+  --temperatures T,T,...     of the thermal averages, in K (default: 100 to 2000 K)
+  --rotation                 thermal averages with rotation too, E(v, J) solved for each J, and the
+                             ideal gas at 1 bar
   --settings F               all settings at once, as a findings file carries them; other options
                              given beside it win
 
@@ -66,8 +71,9 @@ RESULTS
   --out F                    findings (JSON); '-' for standard output. Replaces a findings file,
                              refuses any other file unless --overwrite is given
   --out-dir D                one findings file per study in this folder
-  --table WHAT=F.csv         levels, constants (one row a curve), curve (the points as read) or
-                             window-study (one row a fit, and asks for that study) of all studies; may be
+  --table WHAT=F.csv         of all studies: levels, constants (one row a curve), curve (the points as read),
+                             window-study (one row a fit, and asks for that study) or thermal (one row a
+                             temperature); may be
                              repeated
   --parameters F             parameters of the fits with value(uncertainty); LaTeX where F ends in .tex,
                              else text
@@ -80,14 +86,27 @@ RESULTS
   --timings                  seconds per stage as one JSON line on standard error
   --repeat K                 run each study K times for the timings (their median is given)
 
+FIGURE
+  --what NAME                curve (the default), gauge, residuals, ladders, thermal
+  --view NAME                near-minimum (the default), whole-well, fit-window, all-points
+  --width-mm 140             width; the height follows
+  --font-pt 9                font size
+  --theme light|dark         colours (default: light, on white)
+  The study's options work here too.
+
+RECHECK
+  --source F                 the scan; without it, the file named in the findings is looked for beside
+                             them. The same version must give every digit, another one 1e-9.
+
 EXIT STATUS
   0 done; 2 wrong usage; 3 a file could not be read, understood or written; 4 understood, but a study
-  is impossible (no minimum inside the scan, too few points). Of several files each is done; the
-  status is the highest.
+  is impossible (no minimum inside the scan, too few points); 5 a recheck found a difference. Of several
+  files each is done; the status is the highest.
 
 EXAMPLES
   parabound                                   look at the bundled sample
   parabound study lih.csv --atoms 7Li,H       summary
   parabound study scan.dat --length-unit bohr --energy-unit hartree --atoms C,O --out co.json
   parabound study *.csv --curve all --atoms H,F --table constants=hf.csv
+  parabound figure lih.csv --atoms 7Li,H --width-mm 84 --font-pt 8 --out lih.pdf
 ";

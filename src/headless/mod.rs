@@ -1,17 +1,19 @@
 //! The command line: arguments, files, studies, exports, exit status.
 //!
 //! Exit status: 0 done; 2 wrong usage; 3 a file could not be read or understood (a missing unit
-//! counts), or a result could not be written; 4 understood, but a study is impossible. Of several
-//! files each is done, and the status is the highest.
+//! counts), or a result could not be written; 4 understood, but a study is impossible; 5 a recheck found
+//! a difference. Of several files each is done, and the status is the highest.
 
 mod args;
 mod dry_run;
+mod figure;
 mod help;
 mod input;
+mod recheck;
 mod run_study;
 mod summary;
 
-pub use args::{Command, StudyArgs, UsageError, WindowArgs, parse};
+pub use args::{Command, FigureArgs, RecheckArgs, StudyArgs, UsageError, WindowArgs, parse};
 #[cfg(feature = "gui")]
 pub(crate) use run_study::read_settings;
 pub use summary::summary;
@@ -24,6 +26,8 @@ pub fn main() -> ExitCode {
         Ok(Command::Help) => print(help::HELP),
         Ok(Command::Version) => print(concat!("parabound ", env!("CARGO_PKG_VERSION"), "\n")),
         Ok(Command::Study(arguments)) => run_study::run(&arguments),
+        Ok(Command::Figure(arguments)) => figure::run(&arguments),
+        Ok(Command::Recheck(arguments)) => recheck::run(&arguments),
         Ok(Command::Window(arguments)) => window(*arguments),
         Err(error) => {
             eprintln!("parabound: {error}\nparabound --help lists the commands and options.");

@@ -1,6 +1,6 @@
 //! `parabound study`: files in, summary, findings and tables out.
 
-use super::args::StudyArgs;
+use super::args::{StudyArgs, StudyChoices};
 use super::dry_run;
 use super::input::Input;
 use super::summary;
@@ -21,7 +21,7 @@ const IMPOSSIBLE: u8 = 4;
 
 /// Runs the command; returns the exit status.
 pub fn run(arguments: &StudyArgs) -> u8 {
-    let settings = match starting_settings(arguments) {
+    let settings = match starting_settings(&arguments.choices) {
         Ok(settings) => settings,
         Err(message) => {
             eprintln!("parabound: {message}");
@@ -63,12 +63,12 @@ pub fn run(arguments: &StudyArgs) -> u8 {
 }
 
 /// The settings file, if there is one, with the options laid over it.
-fn starting_settings(arguments: &StudyArgs) -> Result<Settings, String> {
-    let mut settings = match &arguments.choices.settings_file {
+pub(super) fn starting_settings(choices: &StudyChoices) -> Result<Settings, String> {
+    let mut settings = match &choices.settings_file {
         Some(path) => read_settings(path)?,
         None => Settings::default(),
     };
-    arguments.choices.apply(&mut settings);
+    choices.apply(&mut settings);
     Ok(settings)
 }
 
@@ -279,8 +279,18 @@ impl Timings {
     }
 
     fn to_json(&self) -> serde_json::Value {
-        let order =
-            ["read", "points", "curve", "fits", "levels", "distortion", "constants", "reach", "total"];
+        let order = [
+            "read",
+            "points",
+            "curve",
+            "fits",
+            "levels",
+            "distortion",
+            "constants",
+            "reach",
+            "thermal",
+            "total",
+        ];
         let mut seconds = serde_json::Map::new();
         for stage in order {
             if let Some(values) = self.stages.get(stage) {

@@ -23,6 +23,7 @@ pub fn summary(findings: &Findings, units: &ParameterUnits) -> String {
         fits(&mut text, findings, units);
         levels(&mut text, findings);
         reach(&mut text, findings);
+        thermal(&mut text, findings);
     }
     notices(&mut text, findings);
     in_ascii(&text)
@@ -245,6 +246,52 @@ fn reach(text: &mut String, findings: &Findings) {
     }
     if let Some(amplitude) = reach.zero_point_amplitude_bohr {
         let _ = writeln!(text, "  zero-point amplitude  {} angstrom", fixed(to_angstrom(amplitude), 4));
+    }
+    text.push('\n');
+}
+
+/// Numerical averages beside harmonic ones; the findings file and the thermal table have the rest.
+fn thermal(text: &mut String, findings: &Findings) {
+    if findings.thermal.is_empty() {
+        return;
+    }
+    text.push_str(
+        "Thermal averages of the vibration (harmonic in brackets)\n       T/K             q              U/(kJ/mol)        C_V/(J/(mol K))    rms x/angstrom\n",
+    );
+    for point in &findings.thermal {
+        let beside = |value: f64, harmonic: Option<f64>, decimals: usize| {
+            let harmonic = harmonic.map_or_else(|| "–".to_owned(), |h| fixed(h, decimals));
+            format!("{} ({harmonic})", fixed(value, decimals))
+        };
+        let (v, h) = (&point.vibrational, point.harmonic.as_ref());
+        let line = format!(
+            "  {:>8}  {:>18}  {:>18}  {:>18}  {:>18}",
+            rounded(point.kelvin, 6),
+            beside(v.partition_function, h.map(|h| h.partition_function), 5),
+            beside(v.mean_energy_kilojoule_per_mole(), h.map(|h| h.mean_energy_kilojoule_per_mole()), 4),
+            beside(
+                v.heat_capacity_joule_per_mole_kelvin(),
+                h.map(|h| h.heat_capacity_joule_per_mole_kelvin()),
+                3
+            ),
+            beside(
+                to_angstrom(point.mean_square_x_bohr2.sqrt()),
+                point.harmonic_mean_square_x_bohr2.map(|x2| to_angstrom(x2.sqrt())),
+                5
+            ),
+        );
+        let _ = writeln!(text, "{line}{}", if point.converged { "" } else { "  not converged" });
+    }
+    let gases = findings.thermal.iter().filter_map(|p| Some((p.kelvin, p.rotating?.ideal_gas?)));
+    for (kelvin, gas) in gases {
+        let _ = writeln!(
+            text,
+            "  ideal gas at 1 bar, {} K: C_p {}, S {} J/(mol K), H - H(0) {} kJ/mol",
+            rounded(kelvin, 6),
+            fixed(gas.heat_capacity_joule_per_mole_kelvin, 3),
+            fixed(gas.entropy_joule_per_mole_kelvin, 3),
+            fixed(gas.enthalpy_kilojoule_per_mole, 3)
+        );
     }
     text.push('\n');
 }

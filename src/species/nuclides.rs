@@ -74,6 +74,17 @@ pub fn default_isotope(symbol: &str) -> Option<&'static Isotope> {
         .or_else(|| known.last())
 }
 
+/// Mean mass of an element's atoms in u, over the natural abundances listed; none where the mass number
+/// is not the default one (an isotope chosen on purpose) or nothing of the element occurs in nature.
+pub fn mean_atomic_mass_u(symbol: &str, mass_number: u32) -> Option<f64> {
+    if default_isotope(symbol)?.mass_number != mass_number {
+        return None;
+    }
+    let natural = || isotopes_of(symbol).iter().filter_map(|i| Some((i.mass_u, i.abundance_percent?)));
+    let total: f64 = natural().map(|(_, share)| share).sum();
+    (total > 0.0).then(|| natural().map(|(mass, share)| mass * share / total).sum())
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -6,6 +6,7 @@ mod fits;
 mod levels;
 mod points;
 mod remarks;
+mod thermal;
 
 use crate::findings::{Findings, Source};
 use crate::fit::Comparison;
@@ -61,6 +62,8 @@ pub enum Stage {
     Constants,
     /// The reach.
     Reach,
+    /// The thermal averages.
+    Thermal,
 }
 
 impl Stage {
@@ -74,6 +77,7 @@ impl Stage {
             Self::Distortion => "distortion",
             Self::Constants => "constants",
             Self::Reach => "reach",
+            Self::Thermal => "thermal",
         }
     }
 }
@@ -126,6 +130,7 @@ pub fn study_observed(
         levels: Vec::new(),
         constants: Constants::default(),
         reach: None,
+        thermal: Vec::new(),
         notices: scan.notices.clone(),
     };
     findings.notices.append(&mut notices);
@@ -193,4 +198,7 @@ fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
 
     findings.reach = reach::reach(&curve, mass_me, &findings.levels, &findings.settings.reach);
     after(Stage::Reach);
+
+    thermal::fill(findings, &curve);
+    after(Stage::Thermal);
 }

@@ -2,10 +2,12 @@
 
 #![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
 
+mod figures;
 mod findings;
 mod fits;
 mod options;
 mod reading;
+mod recheck;
 
 use std::path::{Path, PathBuf};
 use std::process::{Command, Output};
@@ -17,13 +19,14 @@ fn scan(name: &str) -> PathBuf {
     places.iter().find(|p| p.exists()).unwrap_or_else(|| panic!("no scan {name}")).clone()
 }
 
+/// Runs the program with the arguments given.
+fn run(arguments: &[&str]) -> Output {
+    Command::new(env!("CARGO_BIN_EXE_parabound")).args(arguments).output().expect("the program starts")
+}
+
 /// Runs `parabound study` with the arguments given.
 fn study(arguments: &[&str]) -> Output {
-    Command::new(env!("CARGO_BIN_EXE_parabound"))
-        .arg("study")
-        .args(arguments)
-        .output()
-        .expect("the program starts")
+    run(&[&["study"], arguments].concat())
 }
 
 /// Runs a study of one scan with findings on standard output, and reads them; status 0 is expected.

@@ -182,3 +182,36 @@ fn two_masses_and_settings_without_sense_are_refused() {
     assert_eq!(refused.status.code(), Some(3));
     assert!(text(&refused.stderr).contains("reach.tolerance"), "{}", text(&refused.stderr));
 }
+
+#[test]
+fn thermal_averages_by_option_and_as_a_table() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let table = folder.path().join("t.csv");
+    let path = scan("hcl_clean.csv");
+    let output = study(&[
+        path.to_str().expect("UTF-8"),
+        "--atoms",
+        "H,Cl",
+        "--temperatures",
+        "150,298.15",
+        "--rotation",
+        "--table",
+        &format!("thermal={}", table.to_str().expect("UTF-8")),
+    ]);
+    assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+    let table = fs::read_to_string(table).expect("table");
+    assert_eq!(table.lines().count(), 3, "{table}");
+    let header: Vec<&str> = table.lines().next().expect("a header").split(',').collect();
+    let row: Vec<&str> = table.lines().nth(2).expect("a row").split(',').collect();
+    let cell =
+        |name: &str| row[header.iter().position(|h| *h == name).expect(name)].parse::<f64>().expect(name);
+    assert_eq!(cell("temperature_K"), 298.15);
+    // A diatomic gas at room temperature: C_p close to 7R/2.
+    assert!((cell("gas_heat_capacity_J/(mol_K)") - 29.1).abs() < 0.1);
+    assert!(text(&output.stdout).contains("Thermal averages"), "{}", text(&output.stdout));
+    for wrong in ["--temperatures 0", "--temperatures 1,x", "--temperatures 1e9"] {
+        let mut arguments = vec![path.to_str().expect("UTF-8")];
+        arguments.extend(wrong.split(' '));
+        assert_eq!(study(&arguments).status.code(), Some(2), "{wrong}");
+    }
+}

@@ -7,3 +7,4 @@ mod fits;
 mod levels;
 mod scans;
 mod strd;
+mod thermal;

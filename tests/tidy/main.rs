@@ -37,7 +37,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
     ("fit", &["units", "estimate", "digits", "notice", "potential", "scan"]),
     ("radial", &["units", "estimate", "notice", "potential"]),
     ("spectroscopy", &["units", "estimate", "notice", "potential", "radial", "settings", "fit"]),
-    ("thermal", &["units", "radial"]),
+    ("thermal", &["units", "potential", "radial"]),
     ("reach", &["units", "potential", "radial", "thermal", "settings", "estimate"]),
     (
         "findings",
@@ -79,6 +79,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
     (
         "export",
         &[
+            "study",
             "units",
             "estimate",
             "notice",

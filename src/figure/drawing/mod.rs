@@ -1,0 +1,334 @@
+//! Pictures for paper: a figure laid out at a width and a font size, as lines, areas and words. SVG and
+//! PDF are written from this one description.
+
+mod axes;
+mod ladders;
+mod legend;
+mod palette;
+mod panel;
+mod type_face;
+
+pub use palette::{Palette, Rgb};
+pub use type_face::{FACE, GlyphRun, TypeFace};
+
+use super::geometry::Bounds;
+use super::{Figure, Pictures, Role, thermal_figure};
+use crate::findings::Findings;
+use crate::units::to_angstrom;
+
+/// Which picture of a study.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Subject {
+    /// Curve, parabola, fits, levels with densities, reach.
+    Curve,
+    /// Deviation from the parabola.
+    Gauge,
+    /// Residuals of the fits.
+    Residuals,
+    /// Levels side by side.
+    Ladders,
+    /// Heat capacity over temperature.
+    Thermal,
+}
+
+impl Subject {
+    /// The pictures by their names on the command line.
+    pub const ALL: [(&'static str, Self); 5] = [
+        ("curve", Self::Curve),
+        ("gauge", Self::Gauge),
+        ("residuals", Self::Residuals),
+        ("ladders", Self::Ladders),
+        ("thermal", Self::Thermal),
+    ];
+}
+
+/// Which part of the curve is shown.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum View {
+    /// The lowest six levels.
+    #[default]
+    NearMinimum,
+    /// Up to the limit of the bound levels.
+    WholeWell,
+    /// The fit window.
+    FitWindow,
+    /// Every point.
+    AllPoints,
+}
+
+impl View {
+    /// The views by their names on the command line.
+    pub const ALL: [(&'static str, Self); 4] = [
+        ("near-minimum", Self::NearMinimum),
+        ("whole-well", Self::WholeWell),
+        ("fit-window", Self::FitWindow),
+        ("all-points", Self::AllPoints),
+    ];
+}
+
+/// The paper a picture is laid out for.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Paper {
+    /// Width in mm; the height follows.
+    pub width_mm: f64,
+    /// Font size in points.
+    pub font_pt: f64,
+    /// Dark instead of light.
+    pub dark: bool,
+    /// Part of the curve.
+    pub view: View,
+}
+
+impl Default for Paper {
+    fn default() -> Self {
+        Self { width_mm: 140.0, font_pt: 9.0, dark: false, view: View::NearMinimum }
+    }
+}
+
+/// Points (1/72 inch) in a millimetre.
+pub const PT_PER_MM: f64 = 72.0 / 25.4;
+
+/// A line's colour, width and dashes (on, off, in points; empty: solid).
+#[derive(Clone, Debug, PartialEq)]
+pub struct Stroke {
+    /// Colour.
+    pub colour: Rgb,
+    /// Width in points.
+    pub width_pt: f64,
+    /// Dashes in points.
+    pub dashes_pt: Vec<f64>,
+}
+
+/// How a text stands to its place.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Anchor {
+    /// It begins there.
+    Start,
+    /// It is centred there.
+    Middle,
+    /// It ends there.
+    End,
+}
+
+/// A part of a drawing. Coordinates in points from the upper left corner, y downwards.
+#[derive(Clone, Debug, PartialEq)]
+pub enum Item {
+    /// What follows up to [`Item::Close`] belongs to this series.
+    Open(String),
+    /// The end of a series.
+    Close,
+    /// A line or an area.
+    Path {
+        /// Its corners.
+        points: Vec<[f64; 2]>,
+        /// Whether the last is joined to the first.
+        closed: bool,
+        /// The line.
+        stroke: Option<Stroke>,
+        /// The area.
+        fill: Option<Rgb>,
+        /// 0 to 1.
+        opacity: f64,
+    },
+    /// A ring or disc.
+    Circle {
+        /// Its centre.
+        centre: [f64; 2],
+        /// Its radius in points.
+        radius_pt: f64,
+        /// The line.
+        stroke: Stroke,
+        /// The area.
+        fill: Rgb,
+        /// 0 to 1.
+        opacity: f64,
+    },
+    /// A text on its base line.
+    Text {
+        /// Where.
+        at: [f64; 2],
+        /// The text.
+        text: String,
+        /// Size in points.
+        size_pt: f64,
+        /// Colour.
+        colour: Rgb,
+        /// How it stands to its place.
+        anchor: Anchor,
+        /// Turned to read upwards.
+        upwards: bool,
+    },
+}
+
+/// A picture laid out.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Drawing {
+    /// Size in points.
+    pub size_pt: [f64; 2],
+    /// What the picture shows, in a sentence.
+    pub about: String,
+    /// Background.
+    pub ground: Rgb,
+    /// The parts, those behind first.
+    pub items: Vec<Item>,
+}
+
+/// Why there is no picture.
+#[derive(Clone, Debug, PartialEq, thiserror::Error)]
+pub enum DrawingError {
+    /// The study has nothing of this kind.
+    #[error("there is nothing to draw: {why}")]
+    Nothing {
+        /// What is missing.
+        why: &'static str,
+    },
+    /// Too little room for the words.
+    #[error("{width_mm} mm are too narrow for text of {font_pt} points; widen it or choose a smaller font")]
+    TooNarrow {
+        /// The width.
+        width_mm: f64,
+        /// The font size.
+        font_pt: f64,
+    },
+}
+
+/// What a layout is made with.
+struct Layout<'a> {
+    palette: &'static Palette,
+    face: &'a TypeFace,
+    font_pt: f64,
+    /// Line widths and gaps grow with the font.
+    unit: f64,
+    size_pt: [f64; 2],
+}
+
+/// The picture of a study.
+///
+/// # Errors
+/// [`DrawingError`]
+pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<Drawing, DrawingError> {
+    let palette = if paper.dark { &palette::DARK } else { &palette::LIGHT };
+    let width_pt = paper.width_mm * PT_PER_MM;
+    if width_pt < 22.0 * paper.font_pt {
+        return Err(DrawingError::TooNarrow { width_mm: paper.width_mm, font_pt: paper.font_pt });
+    }
+    let face = TypeFace::get();
+    let share = match subject {
+        Subject::Curve | Subject::Ladders => 0.72,
+        Subject::Gauge | Subject::Residuals => 0.45,
+        Subject::Thermal => 0.60,
+    };
+    let size_pt = [width_pt, (share * width_pt).max(16.0 * paper.font_pt)];
+    let layout = Layout { palette, face, font_pt: paper.font_pt, unit: paper.font_pt / 9.0, size_pt };
+    let pictures = Pictures::of(findings);
+    let view = match paper.view {
+        View::NearMinimum => pictures.views.near_minimum,
+        View::WholeWell => pictures.views.whole_well,
+        View::FitWindow => pictures.views.fit_window,
+        View::AllPoints => pictures.views.all_points,
+    }
+    .or_else(|| pictures.views.first());
+    let nothing = |why| DrawingError::Nothing { why };
+    let items = match subject {
+        Subject::Curve => {
+            let bounds = view.ok_or(nothing("the scan has no points"))?;
+            panel::items(&layout, &pictures.main, bounds, Some(&pictures))
+        }
+        Subject::Gauge => {
+            let bounds = gauge_bounds(findings, view).ok_or(nothing("the curve has no parabola"))?;
+            panel::items(&layout, &pictures.gauge, bounds, None)
+        }
+        Subject::Residuals => {
+            let bounds = figure_bounds(&pictures.residuals).ok_or(nothing("no fit succeeded"))?;
+            panel::items(&layout, &pictures.residuals, bounds, None)
+        }
+        Subject::Ladders => {
+            let bounds = view.filter(|_| !findings.levels.is_empty());
+            let bounds = bounds.ok_or(nothing("there are no levels (name the atoms or a reduced mass)"))?;
+            ladders::items(&layout, &pictures.ladders, bounds.y)
+        }
+        Subject::Thermal => {
+            let figure = thermal_figure(findings);
+            let bounds = figure_bounds(&figure)
+                .ok_or(nothing("there are no levels (name the atoms or a reduced mass)"))?;
+            let bounds = Bounds { x: (0.0, bounds.x.1), y: (0.0, 1.08 * bounds.y.1) };
+            panel::items(&layout, &figure, bounds, None)
+        }
+    };
+    let about =
+        format!("{}, {}: {}", findings.source.file_name, findings.source.curve, pictures.sentence.text);
+    Ok(Drawing { size_pt, about, ground: palette.ground, items })
+}
+
+fn figure_bounds(figure: &Figure) -> Option<Bounds> {
+    let bounds = super::content_bounds(figure)?;
+    // A single value still needs a range.
+    let wide = |(a, b): (f64, f64)| if b > a { (a, b) } else { (a - 1.0, b + 1.0) };
+    let bounds = Bounds { x: wide(bounds.x), y: wide(bounds.y) }.grown(0.03, 0.08);
+    Some(bounds).filter(Bounds::is_valid)
+}
+
+/// The ordinate reaches a few tolerances to either side, the abscissa as far as the deviation and the zero-point
+/// amplitude are seen within.
+fn gauge_bounds(findings: &Findings, view: Option<Bounds>) -> Option<Bounds> {
+    let (reach, curve) = (findings.reach.as_ref()?, findings.curve.as_ref()?);
+    let height = 400.0 * reach.tolerance;
+    let ends = [reach.energy.x_minus_bohr, reach.energy.x_plus_bohr].into_iter().flatten();
+    let widest = ends.fold(0.0, |w: f64, x| w.max(4.5 * x.abs()));
+    let widest = widest.max(1.25 * reach.zero_point_amplitude_bohr.unwrap_or(0.0));
+    let (first, last) = curve.scan_range_bohr;
+    let r_e = curve.r_e_bohr.value;
+    let x = if widest > 0.0 {
+        (to_angstrom((r_e - widest).max(first)), to_angstrom((r_e + widest).min(last)))
+    } else {
+        view?.x
+    };
+    Some(Bounds { x, y: (-height, height) }).filter(Bounds::is_valid)
+}
+
+impl Layout<'_> {
+    /// Width of a text in points.
+    fn width(&self, text: &str, size_pt: f64) -> f64 {
+        self.face.width_pt(text, size_pt)
+    }
+
+    fn solid(&self, colour: Rgb, width: f64) -> Stroke {
+        Stroke { colour, width_pt: width * self.unit, dashes_pt: Vec::new() }
+    }
+
+    /// The line of a role.
+    fn stroke(&self, role: Role, width: f64) -> Stroke {
+        use super::LineStyle;
+        let dashes: &[f64] = match role.line_style() {
+            LineStyle::Solid => &[],
+            LineStyle::Dashed => &[5.0, 3.0],
+            LineStyle::LongDashed => &[10.0, 3.5],
+            LineStyle::Dotted => &[1.4, 2.1],
+            LineStyle::ShortDashed => &[2.5, 2.5],
+        };
+        Stroke {
+            colour: self.palette.role(role),
+            width_pt: width * self.unit,
+            dashes_pt: dashes.iter().map(|d| d * self.unit).collect(),
+        }
+    }
+
+    fn text(&self, at: [f64; 2], text: impl Into<String>, anchor: Anchor) -> Item {
+        Item::Text {
+            at,
+            text: text.into(),
+            size_pt: self.font_pt,
+            colour: self.palette.text,
+            anchor,
+            upwards: false,
+        }
+    }
+}
+
+fn line(points: Vec<[f64; 2]>, stroke: Stroke, opacity: f64) -> Item {
+    Item::Path { points, closed: false, stroke: Some(stroke), fill: None, opacity }
+}
+
+fn area(points: Vec<[f64; 2]>, fill: Rgb, opacity: f64) -> Item {
+    Item::Path { points, closed: true, stroke: None, fill: Some(fill), opacity }
+}

@@ -1,0 +1,147 @@
+//! Thermal averages of a study: over the levels found, and over E(v, J) when rotation is asked for.
+
+use crate::findings::Findings;
+use crate::notice::{Code, Notice};
+use crate::potential::curve::ScanCurve;
+use crate::species::{Masses, mean_atomic_mass_u};
+use crate::thermal::{
+    self, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings, ideal_gas, over_levels,
+    rotating_levels,
+};
+use crate::units::BOLTZMANN_PER_CM_PER_KELVIN;
+
+/// Levels with a Boltzmann factor below e^−30 do not change a sum.
+const HIGHEST_IN_KT: f64 = 30.0;
+
+/// Fills `findings.thermal`.
+pub fn fill(findings: &mut Findings, curve: &ScanCurve) {
+    let Some(input) = findings.thermal_input() else { return };
+    let Some(masses) = &findings.masses else { return };
+    let settings = &findings.settings.thermal;
+    let mut points = thermal::thermal(&input, &settings.temperatures_kelvin);
+    let mut notices = Vec::new();
+    if settings.rotation
+        && let Some(notice) = rotate(&mut points, findings, curve, masses)
+    {
+        notices.push(notice);
+    }
+    notices.extend(left_out(settings));
+    notices.extend(unsupported(&points));
+    findings.thermal = points;
+    findings.notices.append(&mut notices);
+}
+
+fn left_out(settings: &ThermalSettings) -> Option<Notice> {
+    let (low, high) = thermal::TEMPERATURES_KELVIN;
+    let wrong: Vec<String> = settings
+        .temperatures_kelvin
+        .iter()
+        .filter(|t| !(**t >= low && **t <= high))
+        .map(f64::to_string)
+        .collect();
+    (!wrong.is_empty()).then(|| {
+        let text = format!(
+            "No thermal averages at {} K: temperatures between {low} and {high} K are accepted.",
+            wrong.join(", ")
+        );
+        Notice::caution(Code::TemperatureRange, text)
+    })
+}
+
+fn unsupported(points: &[ThermalPoint]) -> Option<Notice> {
+    let lowest = points.iter().filter(|p| !p.converged).map(|p| p.kelvin).min_by(f64::total_cmp)?;
+    let text = format!(
+        "Thermal averages from {lowest} K on are not converged: more than 0.01 % of the population is in levels \
+         that lean on a tail or lie beyond the last one."
+    );
+    Some(Notice::info(Code::ThermalLevels, text))
+}
+
+/// Adds the averages with rotation; a notice where there are none.
+fn rotate(
+    points: &mut [ThermalPoint],
+    findings: &Findings,
+    curve: &ScanCurve,
+    masses: &Masses,
+) -> Option<Notice> {
+    let highest_kelvin = points.iter().map(|p| p.kelvin).fold(0.0, f64::max);
+    let highest_v = findings.levels.len().checked_sub(1)?;
+    let levels = match rotating_levels(
+        &curve.above_minimum(),
+        masses.reduced_mass_me,
+        HIGHEST_IN_KT * BOLTZMANN_PER_CM_PER_KELVIN * highest_kelvin,
+        highest_v,
+        findings.settings.levels.relative_accuracy,
+    ) {
+        Ok(levels) => levels,
+        Err(error) => {
+            let text = format!("There are no thermal averages with rotation: {error}.");
+            return Some(Notice::caution(Code::NotConverged, text));
+        }
+    };
+    let settings = &findings.settings.thermal;
+    let weights = spin_weights(settings, masses);
+    let mass_u = molecule_mass_u(masses);
+    for point in points {
+        point.rotating =
+            Some(at(&levels, weights, mass_u, f64::from(settings.electronic_weight), point.kelvin));
+    }
+    None
+}
+
+fn at(
+    levels: &[RotatingLevel],
+    weights: SpinWeights,
+    mass_u: Option<f64>,
+    electronic_weight: f64,
+    kelvin: f64,
+) -> Rotating {
+    let mut counted: Vec<(&RotatingLevel, f64)> = levels
+        .iter()
+        .map(|l| (l, weights.of(l.j) * f64::from(2 * l.j + 1)))
+        .filter(|(_, weight)| *weight > 0.0)
+        .collect();
+    counted.sort_by(|a, b| a.0.energy_per_cm.total_cmp(&b.0.energy_per_cm));
+    let lowest = counted.first().map_or(0.0, |(l, _)| l.energy_per_cm);
+    let rovibrational = over_levels(counted.iter().map(|(l, g)| (l.energy_per_cm - lowest, *g)), kelvin);
+    let kt = BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
+    let average = |value: fn(&RotatingLevel) -> f64| {
+        let terms = counted.iter().map(|(l, g)| g * (-(l.energy_per_cm - lowest) / kt).exp() * value(l));
+        terms.sum::<f64>() / rovibrational.partition_function
+    };
+    Rotating {
+        rovibrational,
+        mean_r_bohr: average(|l| l.mean_r_bohr),
+        mean_square_x_bohr2: average(|l| l.mean_square_x_bohr2),
+        ideal_gas: mass_u.map(|mass| ideal_gas(&rovibrational, mass, electronic_weight, kelvin)),
+    }
+}
+
+/// The settings' choice, else by nuclear spin for two protons (1/4, 3/4) and two deuterons (2/3, 1/3), whose
+/// rotation is slow to become classical; else the symmetry number.
+fn spin_weights(settings: &ThermalSettings, masses: &Masses) -> SpinWeights {
+    if let Some([even, odd]) = settings.spin_weights {
+        return SpinWeights::EvenOdd(even, odd);
+    }
+    if let Some(number) = settings.symmetry_number.filter(|n| *n > 0) {
+        return SpinWeights::Symmetry(f64::from(number));
+    }
+    let equal = masses
+        .atoms
+        .as_ref()
+        .filter(|[a, b]| a.symbol == b.symbol && a.mass_number == b.mass_number)
+        .map(|[a, _]| (a.symbol.as_str(), a.mass_number));
+    match equal {
+        Some(("H", 1)) => SpinWeights::EvenOdd(0.25, 0.75),
+        Some(("H", 2)) => SpinWeights::EvenOdd(2.0 / 3.0, 1.0 / 3.0),
+        Some(_) => SpinWeights::Symmetry(2.0),
+        None => SpinWeights::Symmetry(1.0),
+    }
+}
+
+/// Mass of the molecule in u: the mean over natural isotopes where an atom is the default isotope, as tables of
+/// thermochemistry have it, else the isotope chosen. None without atoms.
+fn molecule_mass_u(masses: &Masses) -> Option<f64> {
+    let atoms = masses.atoms.as_ref()?;
+    Some(atoms.iter().map(|a| mean_atomic_mass_u(&a.symbol, a.mass_number).unwrap_or(a.mass_u.value)).sum())
+}

@@ -1,0 +1,123 @@
+//! `parabound figure`: SVG read back, PDF and refusals.
+
+use super::{run, scan};
+use std::fs;
+
+/// The picture of a scan as written.
+fn figure(name: &str, ending: &str, options: &[&str]) -> Vec<u8> {
+    let folder = tempfile::tempdir().expect("a folder");
+    let out = folder.path().join(format!("f.{ending}"));
+    let path = scan(name);
+    let mut arguments = vec!["figure", path.to_str().expect("UTF-8"), "--out", out.to_str().expect("UTF-8")];
+    arguments.extend_from_slice(options);
+    let output = run(&arguments);
+    assert_eq!(output.status.code(), Some(0), "{}", String::from_utf8_lossy(&output.stderr));
+    fs::read(out).expect("the picture")
+}
+
+/// What an SVG picture holds: texts, names of the series with the number of their parts.
+struct Read {
+    texts: Vec<String>,
+    series: Vec<(String, usize)>,
+}
+
+fn read(svg: &[u8]) -> Read {
+    let text = std::str::from_utf8(svg).expect("UTF-8");
+    let document = roxmltree::Document::parse(text).expect("XML");
+    let tag = |name: &'static str| document.descendants().filter(move |n| n.has_tag_name(name));
+    let series = tag("g").map(|group| {
+        let name = group.children().find(|c| c.has_tag_name("title")).and_then(|t| t.text());
+        let parts = group.children().filter(|c| c.has_tag_name("path") || c.has_tag_name("circle")).count();
+        (name.expect("a series has a name").to_owned(), parts)
+    });
+    Read {
+        texts: tag("text").filter_map(|t| t.text()).map(str::to_owned).collect(),
+        series: series.collect(),
+    }
+}
+
+const LIH: [&str; 2] = ["--atoms", "7Li,1H"];
+
+/// Every series is there and not empty, in the legend too; both axes have a title with a unit.
+#[test]
+fn pictures_have_every_series_axis_title_and_legend_entry() {
+    let cases: [(&str, &[&str], [&str; 2]); 4] = [
+        (
+            "curve",
+            &["points", "scan", "parabola", "Harmonic", "Morse", "Polynomial 6", "reach"],
+            ["bond length / Å", "energy above the minimum / cm⁻¹"],
+        ),
+        (
+            "gauge",
+            &["deviation from the parabola", "leading order", "tolerance", "reach", "zero-point amplitude"],
+            ["bond length / Å", "deviation / %"],
+        ),
+        ("residuals", &["Harmonic", "Morse", "Polynomial 6"], ["bond length / Å", "residual / cm⁻¹"]),
+        (
+            "thermal",
+            &["harmonic", "Morse fit", "numerical"],
+            ["temperature / K", "vibrational heat capacity / J/(mol K)"],
+        ),
+    ];
+    for (what, series, titles) in cases {
+        let found = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &["--what", what]].concat()));
+        for name in series {
+            let parts: usize = found.series.iter().filter(|s| s.0 == *name).map(|s| s.1).sum();
+            assert!(parts > 0, "{what}: nothing drawn of {name} in {:?}", found.series);
+            assert_eq!(found.texts.iter().filter(|t| t == name).count(), 1, "{what}: legend of {name}");
+        }
+        for title in titles {
+            assert!(found.texts.iter().any(|t| t == title), "{what}: no {title} in {:?}", found.texts);
+        }
+    }
+    let ladders = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &["--what", "ladders"]].concat()));
+    for name in ["harmonic", "numerical", "Morse", "Polynomial 6"] {
+        assert!(ladders.texts.iter().any(|t| t == name), "{name} in {:?}", ladders.texts);
+        let parts: usize = ladders.series.iter().filter(|s| s.0 == name).map(|s| s.1).sum();
+        assert!(parts > 3, "{name}: {:?}", ladders.series);
+    }
+    assert!(ladders.texts.iter().any(|t| t == "energy above the minimum / cm⁻¹"));
+    assert!(ladders.texts.iter().any(|t| t == "beyond tolerance"));
+}
+
+/// The size is what was asked for; levels carry their number; two runs give the same bytes.
+#[test]
+fn size_levels_and_bytes() {
+    let options = [&LIH[..], &["--width-mm", "84", "--font-pt", "7.5", "--view", "whole-well"]].concat();
+    let picture = figure("lih_X_A.csv", "svg", &options);
+    assert_eq!(picture, figure("lih_X_A.csv", "svg", &options));
+    let text = String::from_utf8(picture.clone()).expect("UTF-8");
+    assert!(text.contains("width=\"84mm\"") && text.contains("font-size=\"7.5\""));
+    assert!(read(&picture).texts.iter().any(|t| t == "v = 0"));
+    let dark = figure("lih_X_A.csv", "svg", &[&LIH[..], &["--theme", "dark"]].concat());
+    assert!(String::from_utf8(dark).expect("UTF-8").contains("#12161b"));
+}
+
+#[test]
+fn a_pdf_is_one_page_with_its_face() {
+    let pdf = figure("lih_X_A.csv", "pdf", &LIH);
+    assert!(pdf.starts_with(b"%PDF-1.6") && pdf.ends_with(b"%%EOF\n"));
+    let has = |needle: &[u8]| pdf.windows(needle.len()).any(|w| w == needle);
+    // 140 mm are 396.85 points.
+    assert!(has(b"/MediaBox [0 0 396.85") && has(b"/FontFile3") && has(b"/ToUnicode"));
+}
+
+#[test]
+fn refusals_of_pictures() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let path = scan("hcl_clean.csv");
+    let path = path.to_str().expect("UTF-8");
+    let at = |name: &str| folder.path().join(name).to_str().expect("UTF-8").to_owned();
+    let status = |more: &[&str]| run(&[&["figure"], more].concat()).status.code();
+    assert_eq!(status(&[path]), Some(2), "nowhere to go");
+    assert_eq!(status(&[path, "--out", &at("f.gif")]), Some(2));
+    assert_eq!(status(&[path, path, "--out", &at("f.svg")]), Some(2));
+    assert_eq!(status(&[path, "--out", &at("f.svg"), "--what", "cake"]), Some(2));
+    assert_eq!(status(&["none.csv", "--out", &at("f.svg")]), Some(3));
+    assert_eq!(status(&[path, "--out", &at("f.svg"), "--what", "ladders"]), Some(4), "no mass, no levels");
+    assert_eq!(status(&[path, "--out", &at("f.svg"), "--width-mm", "40", "--font-pt", "20"]), Some(4));
+    // Without levels there still is a curve; and nothing is replaced unasked.
+    assert_eq!(status(&[path, "--out", &at("f.svg")]), Some(0));
+    assert_eq!(status(&[path, "--out", &at("f.svg")]), Some(3));
+    assert_eq!(status(&[path, "--out", &at("f.svg"), "--overwrite"]), Some(0));
+}
