@@ -1,10 +1,8 @@
 //! Carries commands out: the only place where the window's state changes.
 
 use super::command::Command;
-use super::state::{
-    CurveKey, Document, LoadedScan, Message, Outcome, PathPurpose, PathWindow, Preset, Problem, State, Study,
-    Zoom,
-};
+use super::state::{CurveKey, Message, Preset, Problem, State, Zoom};
+pub use super::take::*;
 use crate::figure::geometry::Bounds;
 use crate::settings::{SetAside, Settings};
 use std::path::PathBuf;
@@ -100,7 +98,7 @@ fn change_document(command: &Command, state: &mut State) -> bool {
         Command::CloseScan => close_scan(state),
         Command::SetWindow { window, resting } => {
             if window.from.is_finite() && window.to.is_finite() && window.from < window.to {
-                hold_view(state);
+                hold_view(state, Preset::FitWindow);
                 edit(state, "move the fit window", !resting, |s| s.fits.window = Some(*window));
             }
         }
@@ -110,14 +108,25 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 edit(state, "change the tolerance", !resting, |s| s.reach.tolerance = *tolerance);
             }
         }
-        Command::SetAtoms(atoms) => edit(state, "choose atoms", false, |s| {
-            s.masses.atoms = Some(atoms.clone());
-            s.masses.reduced_mass_u = None;
-        }),
+        Command::SetAtoms(atoms) => {
+            state.view.atoms_wanted = false;
+            edit(state, "choose atoms", false, |s| {
+                s.masses.atoms = Some(atoms.clone());
+                s.masses.reduced_mass_u = None;
+            });
+        }
         Command::SetCharge(charge) => edit(state, "change the charge", true, |s| s.masses.charge = *charge),
         Command::SetReducedMass(mass) => {
             if mass.is_none_or(|m| m.is_finite() && m > 0.0) {
                 edit(state, "give the reduced mass", true, |s| s.masses.reduced_mass_u = *mass);
+            }
+        }
+        Command::SetAsymptote { energy, resting } => {
+            if energy.is_none_or(f64::is_finite) {
+                hold_view(state, Preset::WholeWell);
+                edit(state, "energy of the separated atoms", !resting, |s| {
+                    s.interpolation.asymptote = *energy
+                });
             }
         }
         Command::SetDegree(degree) => edit(state, "change the degree", false, |s| {
@@ -130,6 +139,11 @@ fn change_document(command: &Command, state: &mut State) -> bool {
             s.set_aside.retain(|a| a.row != *row);
             s.set_aside.push(SetAside { row: *row, reason: "set aside by hand".into() });
             s.set_aside.sort_by_key(|a| a.row);
+        }),
+        Command::SetReason { row, reason } => edit(state, "say why a point is set aside", true, |s| {
+            if let Some(aside) = s.set_aside.iter_mut().find(|a| a.row == *row) {
+                aside.reason.clone_from(reason);
+            }
         }),
         Command::Restore(row) => edit(state, "use a point again", false, |s| {
             let by_hand = s.set_aside.iter().any(|a| a.row == *row);
@@ -144,9 +158,9 @@ fn change_document(command: &Command, state: &mut State) -> bool {
     true
 }
 
-/// The view of the fit window follows the window, but not while its edges move under the hand.
-fn hold_view(state: &mut State) {
-    if state.zoom() == Zoom::Preset(Preset::FitWindow)
+/// A region follows the results, but not while what it follows moves under the hand.
+fn hold_view(state: &mut State, preset: Preset) {
+    if state.zoom() == Zoom::Preset(preset)
         && let (Some(key), Some(bounds)) = (state.document.focus, state.bounds())
     {
         state.view.zoom.insert(key, Zoom::Free(bounds));
@@ -179,10 +193,12 @@ fn close_scan(state: &mut State) {
     forget_level(state);
 }
 
-fn forget_level(state: &mut State) {
+pub(super) fn forget_level(state: &mut State) {
     state.view.hovered_level = None;
     state.view.pinned_level = None;
     state.view.pointed_angstrom = None;
+    state.view.selected_row = None;
+    state.view.open_notice = None;
 }
 
 fn change_view(command: Command, state: &mut State) {
@@ -203,6 +219,14 @@ fn change_view(command: Command, state: &mut State) {
         Command::PinLevel(level) => view.pinned_level = level,
         Command::StepLevel(step) => step_level(step, state),
         Command::PointAt(r) => point_at(r, state),
+        Command::SelectPoint(row) => select_point(row, state),
+        Command::NameAtoms => {
+            view.panels.left = Some(true);
+            view.atoms_wanted = true;
+            view.atoms_asked += 1;
+        }
+        Command::OpenNotice(index) => view.open_notice = index,
+        Command::ShowAllNotices(all) => view.all_notices = all,
         Command::ShowPage(page) => view.page = page,
         Command::ShowStrip(strip) => view.strip = strip,
         Command::ToggleWhy => view.why_open = !view.why_open,
@@ -223,6 +247,19 @@ fn step_level(step: i32, state: &mut State) {
     };
     state.view.pinned_level = Some(next);
     state.view.hovered_level = None;
+}
+
+/// Looks at a row of the scan, on its page and on the plot.
+fn select_point(row: Option<usize>, state: &mut State) {
+    state.view.selected_row = row;
+    state.view.pointed_angstrom = None;
+    let r = row.and_then(|row| {
+        let points = &state.study()?.pictures.points;
+        points.iter().find(|p| p.row == row).map(|p| p.at[0])
+    });
+    if let Some(r) = r {
+        point_at(r, state);
+    }
 }
 
 /// Brings a bond length into view, keeping the scale where it is seen already.
@@ -258,73 +295,6 @@ fn findings_name(state: &State) -> String {
     let label: String =
         source.curve_label.chars().map(|c| if c.is_ascii_alphanumeric() { c } else { '_' }).collect();
     format!("{stem}_{label}.findings.json")
-}
-
-/// Takes a scan that was read into the document and looks at its first curve.
-pub fn take_scan(mut loaded: LoadedScan, state: &mut State) {
-    // What the window starts with is not a step that could be taken back.
-    if state.next_scan > 0 {
-        state.history.note("open a scan", &state.document, false);
-    }
-    loaded.key = state.next_scan;
-    state.next_scan += 1;
-    let document: &mut Document = &mut state.document;
-    for (column, energy) in loaded.scan.energies.iter().enumerate() {
-        let settings = Settings { curve: Some(energy.name.clone()), ..loaded.start.clone() };
-        document.settings.insert(CurveKey { scan: loaded.key, column }, settings);
-    }
-    // A name that fits no column was refused when the file was read.
-    let column = loaded.scan.curve_index(loaded.start.curve.as_deref()).unwrap_or(0);
-    document.focus = Some(CurveKey { scan: loaded.key, column });
-    // A bundled sample opens with the point of it all in sight: the first level that the parabola misses.
-    let sample = loaded.path.is_none();
-    document.scans.push(loaded);
-    state.view.problem = None;
-    state.view.message = None;
-    forget_level(state);
-    state.view.pinned_level = sample.then_some(1);
-}
-
-/// Takes a file that was refused.
-pub fn take_problem(problem: Problem, state: &mut State) {
-    state.view.problem = Some(problem);
-}
-
-/// Takes the answer of the worker about one curve.
-pub fn take_outcome(key: CurveKey, settings: Settings, answer: Result<Study, String>, state: &mut State) {
-    let before = state.results.remove(&key).and_then(|o| o.study);
-    let outcome = match answer {
-        Ok(study) => Outcome { settings, study: Some(study), failure: None },
-        Err(text) => Outcome { settings, study: before, failure: Some(text) },
-    };
-    let levels = outcome.study.as_ref().map_or(0, |s| s.findings.levels.len());
-    state.results.insert(key, outcome);
-    if state.document.focus == Some(key) {
-        let kept = |v: &usize| *v < levels;
-        state.view.hovered_level = state.view.hovered_level.filter(kept);
-        state.view.pinned_level = state.view.pinned_level.filter(kept);
-    }
-}
-
-/// Opens the built-in path window, where the desktop has no dialog.
-pub fn take_no_dialog(purpose: PathPurpose, text: String, entries: Vec<String>, state: &mut State) {
-    state.view.path_window = Some(PathWindow { purpose, text, entries });
-}
-
-/// Takes the entries of the folder named in the path window.
-pub fn take_entries(entries: Vec<String>, state: &mut State) {
-    if let Some(window) = &mut state.view.path_window {
-        window.entries = entries;
-    }
-}
-
-/// Takes what came of writing a file.
-pub fn take_written(result: Result<String, String>, state: &mut State) {
-    let (text, failure) = match result {
-        Ok(text) => (text, false),
-        Err(text) => (text, true),
-    };
-    state.view.message = Some(Message { text, failure });
 }
 
 /// The scan and settings to be computed next, where what is shown is older than the settings.

@@ -48,12 +48,30 @@ pub enum Command {
     SetCharge(i32),
     /// Give the reduced mass directly (u), or take the atoms again.
     SetReducedMass(Option<f64>),
+    /// Look at the buttons of the atoms.
+    NameAtoms,
+    /// Energy of the separated atoms in the unit and scale of the file, or the program's assumption again.
+    SetAsymptote {
+        /// The energy.
+        energy: Option<f64>,
+        /// Whether the hand has let go.
+        resting: bool,
+    },
     /// Degree of the polynomial fits.
     SetDegree(u32),
     /// Leave a row out.
     SetAside(usize),
     /// Use a row again.
     Restore(usize),
+    /// Say why a row is left out.
+    SetReason {
+        /// The row.
+        row: usize,
+        /// Why.
+        reason: String,
+    },
+    /// Look at a row of the scan, or at none.
+    SelectPoint(Option<usize>),
     /// A gesture has ended.
     Settle,
     /// Show a named region.
@@ -74,6 +92,10 @@ pub enum Command {
     ShowStrip(Strip),
     /// Show or hide the reasons of the sentence.
     ToggleWhy,
+    /// Show a notice in full, or none.
+    OpenNotice(Option<usize>),
+    /// Show all notices, or the first few.
+    ShowAllNotices(bool),
     /// Open or fold the left panel.
     ShowLeft(bool),
     /// Open or fold the right panel.
@@ -139,6 +161,8 @@ impl Command {
             Self::SetAside(_) => "Set aside".into(),
             Self::Restore(_) => "Use again".into(),
             Self::PointAt(_) => "Show on plot".into(),
+            Self::NameAtoms => "Name the atoms".into(),
+            Self::SetAsymptote { energy: None, .. } => "assume it".into(),
             _ => String::new(),
         }
     }
@@ -153,6 +177,7 @@ impl Command {
             Self::Zoom(Preset::FitWindow) => "The window of the fits.",
             Self::Zoom(Preset::AllPoints) => "Every point of the scan.",
             Self::ShowPage(Page::Constants) => "Spectroscopic constants and energies.",
+            Self::ShowPage(Page::Scan) => "Every point of the scan, as read.",
             Self::ShowPage(Page::Levels) => "Every level with its rotational constant and densities.",
             Self::ShowPage(Page::Fits) => "Parameters of the fits with their errors.",
             Self::ShowPage(Page::Reach) => "Where the parabola may be used, by every criterion.",
@@ -164,6 +189,10 @@ impl Command {
             Self::ToggleWhy => "What each part of the sentence rests on.",
             Self::SetAside(_) => "Leave this point out of curve and fits.",
             Self::Restore(_) => "Use this point again.",
+            Self::NameAtoms => "Show where the atoms are named.",
+            Self::SetAsymptote { energy: None, .. } => {
+                "Let the program assume the energy of the separated atoms."
+            }
             _ => "",
         }
     }
@@ -186,10 +215,11 @@ impl Command {
             }
             Self::ShowPage(page) => {
                 let key = match page {
-                    Page::Constants => Key::Num1,
-                    Page::Levels => Key::Num2,
-                    Page::Fits => Key::Num3,
-                    Page::Reach => Key::Num4,
+                    Page::Scan => Key::Num1,
+                    Page::Constants => Key::Num2,
+                    Page::Levels => Key::Num3,
+                    Page::Fits => Key::Num4,
+                    Page::Reach => Key::Num5,
                 };
                 KeyboardShortcut::new(Modifiers::ALT, key)
             }

@@ -21,6 +21,8 @@ pub mod samples;
 pub mod shell;
 mod show;
 pub mod state;
+mod take;
+mod view;
 
 pub use program::Program;
 pub use run::run;

@@ -112,7 +112,37 @@ pub fn typographic(text: &str) -> String {
         let Some(length) = text[start..].find(')') else { break };
         text.replace_range(start..=start + length, "");
     }
-    text
+    set_numbers(&text)
+}
+
+/// True minus signs before numbers, thin spaces between the thousands of numbers of five digits and more.
+fn set_numbers(text: &str) -> String {
+    let mut out = String::with_capacity(text.len() + 8);
+    let chars: Vec<char> = text.chars().collect();
+    let mut at = 0;
+    while at < chars.len() {
+        let before = at.checked_sub(1).map(|i| chars[i]);
+        let free = before.is_none_or(|c| !c.is_alphanumeric() && c != '.' && c != '_' && c != '-');
+        if chars[at] == '-' && free && chars.get(at + 1).is_some_and(char::is_ascii_digit) {
+            out.push('−');
+            at += 1;
+            continue;
+        }
+        let digits = chars[at..].iter().take_while(|c| c.is_ascii_digit()).count();
+        if digits == 0 {
+            out.push(chars[at]);
+            at += 1;
+            continue;
+        }
+        for (i, digit) in chars[at..at + digits].iter().enumerate() {
+            if free && digits > 4 && i > 0 && (digits - i).is_multiple_of(3) {
+                out.push(crate::figure::number::THIN_SPACE);
+            }
+            out.push(*digit);
+        }
+        at += digits;
+    }
+    out
 }
 
 /// A heading of a block, with dim words at the right.
@@ -131,6 +161,57 @@ pub fn heading(ui: &mut Ui, text: &str, right: &str) {
     if !right.is_empty() && rect.right() - done.right() > 40.0 {
         text_in(ui, rect.right_center(), Align2::RIGHT_CENTER, right, &look::plain(look::SMALL), look.dim);
     }
+}
+
+/// One column of a table: where it ends, and what its header says.
+#[derive(Clone, Copy, Debug)]
+pub struct Column {
+    /// Right edge as a fraction of the table's width.
+    pub right: f32,
+    /// Name.
+    pub name: &'static str,
+    /// Unit, under the name.
+    pub unit: &'static str,
+    /// What it is.
+    pub about: &'static str,
+}
+
+/// The header of a table: names, and under them the units.
+pub fn columns_ui(ui: &mut Ui, width: f32, columns: &[Column]) {
+    let look = Look::of(ui);
+    let (rect, _) = ui.allocate_exact_size(vec2(width, 38.0), Sense::hover());
+    let mut left = rect.left();
+    for column in columns {
+        let right = rect.left() + column.right * width;
+        for (y, text) in [(rect.top() + 10.0, column.name), (rect.top() + 26.0, column.unit)] {
+            text_in(ui, pos2(right, y), Align2::RIGHT_CENTER, text, &look::plain(look::SMALL), look.dim);
+        }
+        let cell = Rect::from_min_max(pos2(left, rect.top()), pos2(right, rect.bottom()));
+        ui.interact(cell, ui.scope_id().with(column.name), Sense::hover()).on_hover_text(column.about);
+        left = right;
+    }
+    ui.painter().hline(rect.x_range(), rect.bottom(), Stroke::new(1.0, look.rule));
+}
+
+/// A unit of energy as it is written.
+pub const fn unit(unit: crate::units::EnergyUnit) -> &'static str {
+    match unit {
+        crate::units::EnergyUnit::PerCm => "cm⁻¹",
+        other => other.name(),
+    }
+}
+
+/// A unit of length as it is written.
+pub const fn length_unit(unit: crate::units::LengthUnit) -> &'static str {
+    match unit {
+        crate::units::LengthUnit::Angstrom => "Å",
+        other => other.name(),
+    }
+}
+
+/// A number with the digits it was read with.
+pub fn as_read(value: f64) -> String {
+    format!("{value}").replace('-', "−")
 }
 
 /// A hairline between blocks.
@@ -249,5 +330,7 @@ mod tests {
             "name the atoms or a mass."
         );
         assert_eq!(typographic("left open (--"), "left open (--");
+        assert_eq!(typographic("v = 23 (19976 cm-1), -0.5"), "v = 23 (19\u{2009}976 cm⁻¹), −0.5");
+        assert_eq!(typographic("[Watson 1980] lag-1, a 2-3, 0.12345"), "[Watson 1980] lag-1, a 2-3, 0.12345");
     }
 }

@@ -2,6 +2,7 @@
 
 use super::command::Command;
 use super::history::History;
+pub use super::view::{Page, Preset, Strip, Zoom};
 use crate::figure::Pictures;
 use crate::figure::geometry::Bounds;
 use crate::findings::Findings;
@@ -59,107 +60,6 @@ impl Document {
     }
 }
 
-/// A page of results.
-#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub enum Page {
-    /// Constants and energies.
-    #[default]
-    Constants,
-    /// The levels as a table.
-    Levels,
-    /// Parameters of the fits.
-    Fits,
-    /// The reach by every criterion.
-    Reach,
-}
-
-impl Page {
-    /// All pages in order.
-    pub const ALL: [Self; 4] = [Self::Constants, Self::Levels, Self::Fits, Self::Reach];
-
-    /// Its name.
-    pub const fn name(self) -> &'static str {
-        match self {
-            Self::Constants => "Constants",
-            Self::Levels => "Levels",
-            Self::Fits => "Fits",
-            Self::Reach => "Reach",
-        }
-    }
-}
-
-/// What the strip shows.
-#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub enum Strip {
-    /// Deviation from the parabola.
-    #[default]
-    Gauge,
-    /// Residuals of the fits.
-    Residuals,
-}
-
-impl Strip {
-    /// All kinds in order.
-    pub const ALL: [Self; 2] = [Self::Gauge, Self::Residuals];
-
-    /// Its name.
-    pub const fn name(self) -> &'static str {
-        match self {
-            Self::Gauge => "Gauge",
-            Self::Residuals => "Residuals",
-        }
-    }
-}
-
-/// A named region of the plot.
-#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub enum Preset {
-    /// The lowest levels.
-    #[default]
-    NearMinimum,
-    /// The whole well.
-    WholeWell,
-    /// The fit window.
-    FitWindow,
-    /// All points.
-    AllPoints,
-}
-
-impl Preset {
-    /// All regions in order.
-    pub const ALL: [Self; 4] = [Self::NearMinimum, Self::WholeWell, Self::FitWindow, Self::AllPoints];
-
-    /// Its name.
-    pub const fn name(self) -> &'static str {
-        match self {
-            Self::NearMinimum => "near the minimum",
-            Self::WholeWell => "whole well",
-            Self::FitWindow => "fit window",
-            Self::AllPoints => "all points",
-        }
-    }
-
-    /// Its bounds among a study's views.
-    pub fn bounds(self, pictures: &Pictures) -> Option<Bounds> {
-        let views = &pictures.views;
-        match self {
-            Self::NearMinimum => views.near_minimum,
-            Self::WholeWell => views.whole_well,
-            Self::FitWindow => views.fit_window,
-            Self::AllPoints => views.all_points,
-        }
-    }
-}
-
-/// What part of the plot is seen.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum Zoom {
-    /// A named region; it follows the results.
-    Preset(Preset),
-    /// As the user left it.
-    Free(Bounds),
-}
-
 /// A short message to the user.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Message {
@@ -212,6 +112,16 @@ pub struct ViewState {
     pub pointed_angstrom: Option<f64>,
     /// The panels.
     pub panels: SidePanels,
+    /// The row of the scan looked at.
+    pub selected_row: Option<usize>,
+    /// Whether the atoms are asked for, and how often they were.
+    pub atoms_wanted: bool,
+    /// Every request for the atoms moves the focus there once.
+    pub atoms_asked: u32,
+    /// The notice shown in full, counted from the top.
+    pub open_notice: Option<usize>,
+    /// Whether all notices are shown.
+    pub all_notices: bool,
     /// Whether the reasons of the sentence are shown.
     pub why_open: bool,
     /// The latest message.

@@ -13,7 +13,7 @@ USAGE
 WINDOW OPTIONS
   --renderer auto|gl|cpu     how it is painted; auto (the default) needs no GPU
   --theme light|dark         colours; the default follows the desktop
-  --page NAME                page at the right: constants, levels, fits, reach
+  --page NAME                page at the right: scan, constants, levels, fits, reach
   --picture F.png            paint the window once, without any display, and end
   --size 1400x900            size of that picture in points
   --scale 2                  pixels per point of that picture

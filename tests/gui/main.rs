@@ -5,5 +5,6 @@
 mod by_label;
 mod commands;
 mod frames;
+mod gallery;
 mod harness;
 mod pictures;

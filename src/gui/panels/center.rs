@@ -10,7 +10,7 @@ use eframe::egui;
 use egui::{Align, Layout, Rect, RichText, Sense, Ui, vec2};
 
 /// Width that the names of the regions take.
-const ROOM_FOR_REGIONS: f32 = 360.0;
+const ROOM_FOR_REGIONS: f32 = 330.0;
 
 pub(super) fn center_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     // A window of no size has no room for anything.
@@ -65,48 +65,62 @@ fn regions_menu_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     });
 }
 
-/// Legend at the left as far as there is room, regions at the right.
+/// What the lines of the plot are called.
+const LEGEND: [(Role, &str); 5] = [
+    (Role::Scanned, "scan"),
+    (Role::Parabola, "parabola"),
+    (Role::Harmonic, "harmonic fit"),
+    (Role::Morse, "Morse"),
+    (Role::Polynomial, "polynomial"),
+];
+/// Length of a sample of a line in the legend, and the room after it.
+const SAMPLE: f32 = 24.0;
+const AFTER_SAMPLE: f32 = 5.0;
+/// Room between names.
+const BETWEEN: f32 = 14.0;
+const ROW: f32 = 22.0;
+
+/// Legend at the left, regions at the right; where both do not fit, the legend has a row of its own.
 fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    let fits = ui.available_width() >= legend_width(ui) + ROOM_FOR_REGIONS;
+    if !fits {
+        ui.horizontal_wrapped(legend_ui);
+    }
+    ui.allocate_ui_with_layout(vec2(ui.available_width(), ROW), Layout::right_to_left(Align::Center), |ui| {
+        ui.spacing_mut().item_spacing.x = BETWEEN;
+        ui.spacing_mut().button_padding.x = 0.0;
+        if ui.available_width() < ROOM_FOR_REGIONS {
+            regions_menu_ui(ui, state, out);
+            return;
+        }
+        for preset in Preset::ALL.into_iter().rev() {
+            let front = state.zoom() == Zoom::Preset(preset);
+            let form = if front { ButtonForm::Link } else { ButtonForm::Quiet };
+            command_button(ui, state, Command::Zoom(preset), form, out);
+        }
+        if fits {
+            ui.with_layout(Layout::left_to_right(Align::Center), legend_ui);
+        }
+    });
+}
+
+fn legend_width(ui: &Ui) -> f32 {
+    let width = |name: &str| {
+        let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look::DARK.dim);
+        SAMPLE + AFTER_SAMPLE + galley.size().x + BETWEEN
+    };
+    LEGEND.iter().map(|(_, name)| width(name)).sum()
+}
+
+fn legend_ui(ui: &mut Ui) {
     let look = Look::of(ui);
-    let height = 22.0;
-    ui.allocate_ui_with_layout(
-        vec2(ui.available_width(), height),
-        Layout::right_to_left(Align::Center),
-        |ui| {
-            ui.spacing_mut().item_spacing.x = 14.0;
-            ui.spacing_mut().button_padding.x = 0.0;
-            if ui.available_width() < ROOM_FOR_REGIONS {
-                regions_menu_ui(ui, state, out);
-                return;
-            }
-            for preset in Preset::ALL.into_iter().rev() {
-                let front = state.zoom() == Zoom::Preset(preset);
-                let form = if front { ButtonForm::Link } else { ButtonForm::Quiet };
-                command_button(ui, state, Command::Zoom(preset), form, out);
-            }
-            ui.with_layout(Layout::left_to_right(Align::Center), |ui| {
-                ui.add_space(plot::GUTTER - 8.0);
-                let entries = [
-                    (Role::Scanned, "scan"),
-                    (Role::Parabola, "parabola"),
-                    (Role::Harmonic, "harmonic fit"),
-                    (Role::Morse, "Morse"),
-                    (Role::Polynomial, "polynomial"),
-                ];
-                for (role, name) in entries {
-                    let font = look::plain(look::SMALL);
-                    let galley = ui.painter().layout_no_wrap(name.to_owned(), font, look.dim);
-                    let width = 31.0 + galley.size().x;
-                    if ui.available_width() < width + 6.0 {
-                        break;
-                    }
-                    let (rect, _) = ui.allocate_exact_size(vec2(width, height), Sense::hover());
-                    let sample = Rect::from_min_size(rect.min, vec2(26.0, height));
-                    show::line_sample(ui, sample, role, look.role(role));
-                    let at = egui::pos2(rect.left() + 31.0, rect.center().y - galley.size().y / 2.0);
-                    ui.painter().galley(at, galley, look.dim);
-                }
-            });
-        },
-    );
+    ui.spacing_mut().item_spacing.x = BETWEEN;
+    for (role, name) in LEGEND {
+        let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look.dim);
+        let size = vec2(SAMPLE + AFTER_SAMPLE + galley.size().x, ROW);
+        let (rect, _) = ui.allocate_exact_size(size, Sense::hover());
+        show::line_sample(ui, Rect::from_min_size(rect.min, vec2(SAMPLE, ROW)), role, look.role(role));
+        let at = egui::pos2(rect.left() + SAMPLE + AFTER_SAMPLE, rect.center().y - galley.size().y / 2.0);
+        ui.painter().galley(at, galley, look.dim);
+    }
 }

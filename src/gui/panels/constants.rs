@@ -7,7 +7,7 @@ use crate::gui::command::Command;
 use crate::gui::show::{self, ButtonForm, Row, command_button};
 use crate::gui::state::State;
 use crate::potential::curve::OuterTail;
-use crate::units::{ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom};
+use crate::units::{ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom, to_per_cm};
 use crate::verdict::percent;
 use eframe::egui::Ui;
 
@@ -144,6 +144,18 @@ fn curve_rows(findings: &Findings) -> Vec<Row> {
         (None, _) => "Not known: the energy of the separated atoms is assumed, not given.",
     };
     rows.push(Row::new("Dₑ (depth)", shown(depth, 1), PER_CM).beside("").about(about));
+    if let (
+        None,
+        OuterTail::Exponential { asymptote_hartree, .. } | OuterTail::InversePower { asymptote_hartree, .. },
+    ) = (&depth, curve.outer)
+    {
+        let assumed = to_per_cm(asymptote_hartree - curve.v_e_hartree.value);
+        rows.push(
+            Row::new("V(∞) − Vₑ, assumed", number::fixed(assumed, 0), PER_CM)
+                .beside("")
+                .about("Where the tail beyond the last point levels off. Give the energy of the separated atoms on the left, and depth and D₀ follow."),
+        );
+    }
     rows
 }
 
@@ -190,6 +202,13 @@ fn short_reach_rows(findings: &Findings) -> Vec<Row> {
             super::reach::level_value(levels),
             "",
         ));
+    }
+    if let Some(kelvin) = reach.temperature_kelvin.partition_function {
+        rows.push(
+            Row::new("partition function within 1 %", super::reach::temperature_text(kelvin), "K").about(
+                "Vibration alone: the highest temperature up to which |ln q(harmonic) − ln q| ≤ 0.01.",
+            ),
+        );
     }
     if let Some(amplitude) = reach.zero_point_amplitude_bohr {
         rows.push(Row::new("zero-point amplitude", number::fixed(to_angstrom(amplitude), 4), "Å"));

@@ -4,22 +4,29 @@ use crate::figure::number;
 use crate::findings::Findings;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show;
+use crate::gui::show::{self, Column, columns_ui};
 use crate::gui::state::State;
 use crate::radial::Level;
 use eframe::egui;
-use egui::{Align2, Rect, ScrollArea, Sense, Ui, WidgetInfo, pos2, vec2};
+use egui::{Align2, ScrollArea, Sense, Ui, WidgetInfo, pos2, vec2};
 
 /// Height of a row of the table.
 const ROW: f32 = 22.0;
 
 /// Right edges of the columns as fractions of the width, with their headings.
-const COLUMNS: [(f32, &str, &str); 5] = [
-    (0.06, "v", "Vibrational quantum number."),
-    (0.33, "E", "Energy above the minimum in cm⁻¹."),
-    (0.57, "− harmonic", "E − ωₑ(v + ½) in cm⁻¹."),
-    (0.77, "Bᵥ", "Rotational constant ℏ²⟨r⁻²⟩/(2μ) in cm⁻¹."),
-    (1.0, "in reach", "Share of the density inside the energy reach."),
+const COLUMNS: [Column; 5] = [
+    Column { right: 0.06, name: "v", unit: "", about: "Vibrational quantum number." },
+    Column { right: 0.33, name: "E − Vₑ", unit: "cm⁻¹", about: "Energy above the minimum." },
+    Column { right: 0.57, name: "− harmonic", unit: "cm⁻¹", about: "E − Vₑ − ωₑ(v + ½)." },
+    Column {
+        right: 0.77, name: "Bᵥ", unit: "cm⁻¹", about: "Rotational constant ℏ²⟨r⁻²⟩/(2μ)."
+    },
+    Column {
+        right: 1.0,
+        name: "in reach",
+        unit: "density",
+        about: "Share of the density inside the energy reach.",
+    },
 ];
 
 pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Command>) {
@@ -34,7 +41,7 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &m
     }
     ui.spacing_mut().item_spacing.y = 0.0;
     let width = ui.available_width() - 10.0;
-    header_ui(ui, width);
+    columns_ui(ui, width, &COLUMNS);
     let leaning = findings.levels.iter().any(|l| l.leans_on_tail);
     let mut hovered = None;
     let foot = if leaning { 46.0 } else { 0.0 };
@@ -63,27 +70,6 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &m
     }
 }
 
-fn header_ui(ui: &mut Ui, width: f32) {
-    let look = Look::of(ui);
-    let (rect, _) = ui.allocate_exact_size(vec2(width, 26.0), Sense::hover());
-    let mut left = rect.left();
-    for (edge, name, about) in COLUMNS {
-        let right = rect.left() + edge * width;
-        show::text_in(
-            ui,
-            pos2(right, rect.center().y),
-            Align2::RIGHT_CENTER,
-            name,
-            &look::plain(look::SMALL),
-            look.dim,
-        );
-        let cell = Rect::from_min_max(pos2(left, rect.top()), pos2(right, rect.bottom()));
-        ui.interact(cell, ui.scope_id().with(name), Sense::hover()).on_hover_text(about);
-        left = right;
-    }
-    ui.painter().hline(rect.x_range(), rect.bottom(), egui::Stroke::new(1.0, look.rule));
-}
-
 fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Response {
     let look = Look::of(ui);
     let (rect, response) = ui.allocate_exact_size(vec2(width, ROW), Sense::click());
@@ -99,18 +85,18 @@ fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Resp
         number::fixed(level.b_v_per_cm, 4),
         level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1)),
     ];
-    for (i, (cell, (edge, _, _))) in cells.iter().zip(COLUMNS).enumerate() {
+    for (i, (cell, column)) in cells.iter().zip(&COLUMNS).enumerate() {
         let color = match i {
             0 if shown => look.accent,
             2 => look.harmonic,
             4 => look.dim,
             _ => look.text,
         };
-        let at = pos2(rect.left() + edge * width, rect.center().y);
+        let at = pos2(rect.left() + column.right * width, rect.center().y);
         show::text_in(ui, at, Align2::RIGHT_CENTER, cell, &look::figures(look::SECONDARY), color);
     }
     if level.leans_on_tail {
-        let at = pos2(rect.left() + COLUMNS[0].0 * width + 8.0, rect.center().y);
+        let at = pos2(rect.left() + COLUMNS[0].right * width + 8.0, rect.center().y);
         ui.painter().circle_stroke(at, 3.0, egui::Stroke::new(1.2, look.accent));
     }
     let lean = if level.leans_on_tail { ", leans on the tail" } else { "" };

@@ -1,14 +1,17 @@
 //! The window's parts, one file each, and how they share the room.
 
+mod asymptote;
 mod center;
 mod constants;
 mod fits;
 mod left;
 mod levels;
+mod masses;
 mod notices;
 mod problem;
 mod reach;
 mod right;
+mod scan;
 mod top;
 
 pub use constants::constants_text;

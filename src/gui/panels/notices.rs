@@ -13,6 +13,14 @@ use egui::{Align, Color32, Frame, Layout, Margin, Panel, ScrollArea, Sense, Stro
 const ROW: f32 = 24.0;
 /// Rows shown without scrolling.
 const MOST_ROWS: usize = 3;
+/// Height of the line under them.
+const FOOT: f32 = 20.0;
+/// Margin at the sides.
+const MARGIN: i8 = 16;
+/// Room for the mark.
+const TEXT_INDENT: f32 = 18.0;
+/// Room that a notice shown in full leaves for its actions.
+const ROOM_FOR_ACTIONS: f32 = 190.0;
 
 pub(super) fn notices_panel_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let look = Look::of(ui);
@@ -22,40 +30,61 @@ pub(super) fn notices_panel_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command
     if rows == 0 {
         return;
     }
-    let short = ui.available_height() < 700.0;
-    let shown = rows.min(if short { 2 } else { MOST_ROWS });
-    // The size of a panel is remembered by its name: another number of rows is another panel.
-    Panel::bottom(("notices", shown))
-        .exact_size(ROW * shown as f32 + 14.0)
+    let most = if ui.available_height() < 700.0 { 2 } else { MOST_ROWS };
+    let shown = if state.view.all_notices { rows } else { rows.min(most) };
+    let open = state.view.open_notice.and_then(|i| notices.get(i));
+    let width = ui.available_width() - 2.0 * f32::from(MARGIN);
+    let more = open.map_or(0.0, |n| open_height(ui, &show::typographic(&n.text), width) - ROW);
+    let foot = if rows > most { FOOT } else { 0.0 };
+    let height = (ROW * shown as f32 + more).min(0.45 * ui.available_height()) + 14.0 + foot;
+    // The size of a panel is remembered by its name: another height is another panel.
+    Panel::bottom(("notices", height.to_bits()))
+        .exact_size(height)
         .resizable(false)
-        .frame(Frame::new().fill(look.panel).inner_margin(Margin::symmetric(16, 6)))
+        .frame(Frame::new().fill(look.panel).inner_margin(Margin::symmetric(MARGIN, 6)))
         .show(ui, |ui| {
+            ui.spacing_mut().item_spacing.y = 0.0;
             ScrollArea::vertical()
                 .id_salt(("notices", state.document.focus.map(|f| (f.scan, f.column))))
                 .min_scrolled_height(0.0)
+                .max_height(ui.available_height() - foot)
                 .auto_shrink(false)
-                .show(ui, |ui| {
-                    ui.spacing_mut().item_spacing.y = 0.0;
-                    if let Some(message) = message {
-                        let mark = if message.failure { look.stop } else { look.reach };
-                        row_ui(ui, &message.text, Mark::Round(mark), |ui| {
-                            command_button_as(
-                                ui,
-                                state,
-                                "Dismiss",
-                                Command::DismissMessage,
-                                ButtonForm::Link,
-                                out,
-                            );
-                        });
-                    }
-                    if let Some(study) = state.study() {
-                        for notice in notices {
-                            notice_ui(ui, state, &study.findings, notice, out);
-                        }
-                    }
-                });
+                .show(ui, |ui| list_ui(ui, state, out));
+            if foot > 0.0 {
+                foot_ui(ui, state, rows, out);
+            }
         });
+}
+
+/// The latest message, then the notices.
+fn list_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    let look = Look::of(ui);
+    if let Some(message) = &state.view.message {
+        let mark = if message.failure { look.stop } else { look.reach };
+        row_ui(ui, &message.text, Mark::Round(mark), false, |ui| {
+            command_button_as(ui, state, "Dismiss", Command::DismissMessage, ButtonForm::Link, out);
+        });
+    }
+    let Some(study) = state.study() else { return };
+    for (index, notice) in study.findings.notices.iter().enumerate() {
+        notice_ui(ui, state, &study.findings, index, notice, out);
+    }
+}
+
+/// How many there are, and the way to see them all.
+fn foot_ui(ui: &mut Ui, state: &State, rows: usize, out: &mut Vec<Command>) {
+    let all = state.view.all_notices;
+    let label = if all { "show fewer".to_owned() } else { format!("show all {rows}") };
+    ui.with_layout(Layout::right_to_left(Align::Center), |ui| {
+        command_button_as(ui, state, &label, Command::ShowAllNotices(!all), ButtonForm::Quiet, out);
+    });
+}
+
+/// Height of a notice shown in full.
+fn open_height(ui: &Ui, text: &str, width: f32) -> f32 {
+    let room = (width - ROOM_FOR_ACTIONS - TEXT_INDENT).max(80.0);
+    let galley = ui.painter().layout(text.to_owned(), look::plain(look::BODY), look::DARK.text, room);
+    (galley.size().y + 8.0).max(ROW)
 }
 
 /// The mark before a notice: form and colour tell its severity.
@@ -65,28 +94,45 @@ enum Mark {
     Square(Color32),
 }
 
-fn notice_ui(ui: &mut Ui, state: &State, findings: &Findings, notice: &Notice, out: &mut Vec<Command>) {
+fn notice_ui(
+    ui: &mut Ui,
+    state: &State,
+    findings: &Findings,
+    index: usize,
+    notice: &Notice,
+    out: &mut Vec<Command>,
+) {
     let look = Look::of(ui);
     let mark = match notice.severity {
         Severity::Info => Mark::Ring(look.dim),
         Severity::Caution => Mark::Round(look.accent),
         Severity::Stop => Mark::Square(look.stop),
     };
-    row_ui(ui, &show::typographic(&notice.text), mark, |ui| {
+    let open = state.view.open_notice == Some(index);
+    let clicked = row_ui(ui, &show::typographic(&notice.text), mark, open, |ui| {
         for (label, command) in actions(findings, notice).into_iter().take(2) {
             command_button_as(ui, state, &label, command, ButtonForm::Link, out);
         }
     });
+    if clicked {
+        out.push(Command::OpenNotice((!open).then_some(index)));
+    }
 }
 
-fn row_ui(ui: &mut Ui, text: &str, mark: Mark, actions: impl FnOnce(&mut Ui)) {
+/// One notice with its actions; true when its text was clicked.
+fn row_ui(ui: &mut Ui, text: &str, mark: Mark, open: bool, actions: impl FnOnce(&mut Ui)) -> bool {
     let look = Look::of(ui);
-    let size = vec2(ui.available_width(), ROW);
-    ui.allocate_ui_with_layout(size, Layout::right_to_left(Align::Center), |ui| {
-        actions(ui);
-        let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), ROW), Sense::hover());
-        response.widget_info(|| WidgetInfo::labeled(egui::Role::Label, true, text));
-        let at = egui::pos2(rect.left() + 5.0, rect.center().y);
+    let width = ui.available_width();
+    let height = if open { open_height(ui, text, width) } else { ROW };
+    let mut clicked = false;
+    ui.allocate_ui_with_layout(vec2(width, height), Layout::right_to_left(Align::Min), |ui| {
+        ui.allocate_ui_with_layout(vec2(0.0, ROW), Layout::right_to_left(Align::Center), actions);
+        let left = if open { width - ROOM_FOR_ACTIONS } else { ui.available_width() };
+        let space = (ui.available_width() - left).max(0.0);
+        ui.add_space(space);
+        let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), height), Sense::click());
+        response.widget_info(|| WidgetInfo::selected(egui::Role::Button, true, open, text));
+        let at = egui::pos2(rect.left() + 5.0, rect.top() + ROW / 2.0);
         let painter = ui.painter();
         match mark {
             Mark::Round(color) => painter.circle_filled(at, 4.5, color),
@@ -95,10 +141,24 @@ fn row_ui(ui: &mut Ui, text: &str, mark: Mark, actions: impl FnOnce(&mut Ui)) {
                 painter.rect_filled(egui::Rect::from_center_size(at, vec2(9.0, 9.0)), 1.0, color)
             }
         };
-        let start = egui::pos2(rect.left() + 18.0, rect.center().y);
-        elided(ui, start, rect.right() - start.x - look::STEP, text, look::plain(look::BODY), look.text);
-        response.on_hover_text(text);
+        let start = egui::pos2(rect.left() + TEXT_INDENT, rect.top() + ROW / 2.0);
+        let room = rect.right() - start.x - look::STEP;
+        if response.has_focus() {
+            painter.rect_stroke(rect, 3.0, Stroke::new(1.0, look.accent), egui::StrokeKind::Inside);
+        }
+        if open {
+            let galley = painter.layout(text.to_owned(), look::plain(look::BODY), look.text, room);
+            painter.galley(egui::pos2(start.x, rect.top() + 4.0), galley, look.text);
+        } else {
+            elided(ui, start, room, text, look::plain(look::BODY), look.text);
+        }
+        let response = response.on_hover_cursor(egui::CursorIcon::PointingHand);
+        clicked = response.clicked();
+        if !open {
+            response.on_hover_text(text);
+        }
     });
+    clicked
 }
 
 /// What can be done about a notice; the last one stands first from the left.
@@ -132,7 +192,7 @@ fn actions(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
             actions.push(("Show fits".to_owned(), Command::ShowPage(Page::Fits)));
         }
         Code::NoMass | Code::ImplausibleMass => {
-            actions.push(("Name the atoms".to_owned(), Command::ShowLeft(true)));
+            actions.push((Command::NameAtoms.label(), Command::NameAtoms));
         }
         Code::NoMinimum | Code::MinimumAtEnd | Code::FewPoints => {
             actions.push(("Show all points".to_owned(), Command::Zoom(Preset::AllPoints)));

@@ -81,11 +81,15 @@ fn temperature_ui(ui: &mut Ui, findings: &Findings) {
     for (name, limit) in rows {
         let value = match limit {
             None => number::NONE.to_owned(),
-            Some(k) if k < 0.5 => "not even at 0".to_owned(),
-            Some(k) => format!("up to {}", number::fixed(k, 0)),
+            Some(kelvin) => temperature_text(kelvin),
         };
         Row::new(name, value, "K").ui(ui);
     }
+}
+
+/// A highest temperature in kelvin.
+pub(super) fn temperature_text(kelvin: f64) -> String {
+    if kelvin < 0.5 { "not even at 0".to_owned() } else { format!("up to {}", number::fixed(kelvin, 0)) }
 }
 
 /// Both ends in angstrom.

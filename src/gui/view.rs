@@ -1,0 +1,108 @@
+//! What can be looked at: pages, strips and regions of the plot.
+
+use crate::figure::Pictures;
+use crate::figure::geometry::Bounds;
+
+/// A page of results.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Page {
+    /// The points of the scan.
+    Scan,
+    /// Constants and energies.
+    #[default]
+    Constants,
+    /// The levels as a table.
+    Levels,
+    /// Parameters of the fits.
+    Fits,
+    /// The reach by every criterion.
+    Reach,
+}
+
+impl Page {
+    /// All pages in order.
+    pub const ALL: [Self; 5] = [Self::Scan, Self::Constants, Self::Levels, Self::Fits, Self::Reach];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Scan => "Scan",
+            Self::Constants => "Constants",
+            Self::Levels => "Levels",
+            Self::Fits => "Fits",
+            Self::Reach => "Reach",
+        }
+    }
+}
+
+/// What the strip shows.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Strip {
+    /// Deviation from the parabola.
+    #[default]
+    Gauge,
+    /// Residuals of the fits.
+    Residuals,
+}
+
+impl Strip {
+    /// All kinds in order.
+    pub const ALL: [Self; 2] = [Self::Gauge, Self::Residuals];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Gauge => "Gauge",
+            Self::Residuals => "Residuals",
+        }
+    }
+}
+
+/// A named region of the plot.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum Preset {
+    /// The lowest levels.
+    #[default]
+    NearMinimum,
+    /// The whole well.
+    WholeWell,
+    /// The fit window.
+    FitWindow,
+    /// All points.
+    AllPoints,
+}
+
+impl Preset {
+    /// All regions in order.
+    pub const ALL: [Self; 4] = [Self::NearMinimum, Self::WholeWell, Self::FitWindow, Self::AllPoints];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::NearMinimum => "near the minimum",
+            Self::WholeWell => "whole well",
+            Self::FitWindow => "fit window",
+            Self::AllPoints => "all points",
+        }
+    }
+
+    /// Its bounds among a study's views.
+    pub fn bounds(self, pictures: &Pictures) -> Option<Bounds> {
+        let views = &pictures.views;
+        match self {
+            Self::NearMinimum => views.near_minimum,
+            Self::WholeWell => views.whole_well,
+            Self::FitWindow => views.fit_window,
+            Self::AllPoints => views.all_points,
+        }
+    }
+}
+
+/// What part of the plot is seen.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Zoom {
+    /// A named region; it follows the results.
+    Preset(Preset),
+    /// As the user left it.
+    Free(Bounds),
+}

@@ -1,0 +1,103 @@
+//! Every page in both themes, in a wide, a narrow and a sharp window. With `PARABOUND_GALLERY=FOLDER`
+//! the pictures are written there to be looked at.
+
+use crate::harness::{Window, open, state};
+use eframe::egui::Theme;
+use parabound::gui::app::Start;
+use parabound::gui::command::Command;
+use parabound::gui::state::{Page, Preset};
+use std::path::PathBuf;
+
+fn write(window: &mut Window, name: &str) {
+    window.run();
+    let Some(folder) = std::env::var_os("PARABOUND_GALLERY") else { return };
+    let picture = window.render().expect("painted");
+    picture.save(PathBuf::from(folder).join(format!("{name}.png"))).expect("written");
+}
+
+fn give(window: &mut Window, commands: &[Command]) {
+    let ctx = window.ctx.clone();
+    for command in commands {
+        window.state_mut().0.give(command.clone(), &ctx);
+        window.run();
+    }
+}
+
+/// Theme, size, scale.
+const KINDS: [(&str, Theme, [f32; 2], f32); 4] = [
+    ("dark", Theme::Dark, [1400.0, 900.0], 1.0),
+    ("light", Theme::Light, [1400.0, 900.0], 1.0),
+    ("narrow", Theme::Light, [1000.0, 700.0], 1.0),
+    ("sharp", Theme::Dark, [1000.0, 700.0], 2.0),
+];
+
+#[test]
+fn every_page_is_shown_in_every_kind_of_window() {
+    for (kind, theme, size, scale) in KINDS {
+        let mut window = open(size, theme, Start::default());
+        window.ctx.set_pixels_per_point(scale);
+        window.run();
+        for page in Page::ALL {
+            give(&mut window, &[Command::ShowPage(page)]);
+            assert_eq!(state(&window).view.page, page);
+            write(&mut window, &format!("{kind}_{}", page.name().to_lowercase()));
+        }
+        let row = state(&window).study().expect("a study").findings.source.points[12].row;
+        give(
+            &mut window,
+            &[
+                Command::ShowPage(Page::Scan),
+                Command::SelectPoint(Some(row)),
+                Command::SetAside(row),
+                Command::OpenNotice(Some(1)),
+                Command::ShowAllNotices(true),
+                Command::Zoom(Preset::WholeWell),
+            ],
+        );
+        assert_eq!(state(&window).view.selected_row, Some(row));
+        write(&mut window, &format!("{kind}_point_aside"));
+        give(
+            &mut window,
+            &[
+                Command::ShowLeft(true),
+                Command::SetAsymptote { energy: Some(-7.98), resting: true },
+                Command::ShowPage(Page::Constants),
+            ],
+        );
+        write(&mut window, &format!("{kind}_asymptote"));
+    }
+}
+
+/// Invented numbers: a parabola with a cubic term, without atoms and, if so wanted, without units.
+fn plain_file(folder: &std::path::Path, header: &str) -> PathBuf {
+    let path = folder.join("plain.csv");
+    let rows: Vec<String> = (0..20)
+        .map(|i| {
+            let x = -0.3 + 0.03 * f64::from(i);
+            format!("{:.3},{:.8}", 1.3 + x, 0.5 * x * x - 0.3 * x.powi(3))
+        })
+        .collect();
+    std::fs::write(&path, format!("{header}\n{}\n", rows.join("\n"))).expect("written");
+    path
+}
+
+#[test]
+fn missing_atoms_and_missing_units_are_shown_in_every_kind_of_window() {
+    let folder = tempfile::tempdir().expect("a folder");
+    for (kind, theme, size, scale) in KINDS {
+        for (name, header) in [("no_units", "R,E"), ("no_atoms", "R_angstrom,E_hartree")] {
+            let files = vec![plain_file(folder.path(), header)];
+            let mut window = open(size, theme, Start { files, ..Start::default() });
+            window.ctx.set_pixels_per_point(scale);
+            window.run();
+            if name == "no_atoms" {
+                give(&mut window, &[Command::NameAtoms]);
+                assert!(state(&window).view.atoms_wanted);
+            }
+            write(&mut window, &format!("{kind}_{name}"));
+        }
+        let mut window = open(size, theme, Start { empty: true, ..Start::default() });
+        window.ctx.set_pixels_per_point(scale);
+        write(&mut window, &format!("{kind}_empty"));
+    }
+}
