@@ -28,7 +28,7 @@ const KINDS: [(&str, Theme, [f32; 2], f32); 4] = [
     ("dark", Theme::Dark, [1400.0, 900.0], 1.0),
     ("light", Theme::Light, [1400.0, 900.0], 1.0),
     ("narrow", Theme::Light, [1000.0, 700.0], 1.0),
-    ("sharp", Theme::Dark, [1000.0, 700.0], 2.0),
+    ("sharp", Theme::Dark, [2000.0, 1400.0], 2.0),
 ];
 
 #[test]

@@ -10,7 +10,9 @@ use eframe::egui;
 use egui::{Align, Layout, Rect, RichText, Sense, Ui, vec2};
 
 /// Width that the names of the regions take.
-const ROOM_FOR_REGIONS: f32 = 330.0;
+const ROOM_FOR_REGIONS: f32 = 332.0;
+/// A lower window does without the legend.
+const ROOM_FOR_LEGEND: f32 = 320.0;
 
 pub(super) fn center_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     // A window of no size has no room for anything.
@@ -74,16 +76,17 @@ const LEGEND: [(Role, &str); 5] = [
     (Role::Polynomial, "polynomial"),
 ];
 /// Length of a sample of a line in the legend, and the room after it.
-const SAMPLE: f32 = 24.0;
+const SAMPLE: f32 = 22.0;
 const AFTER_SAMPLE: f32 = 5.0;
 /// Room between names.
 const BETWEEN: f32 = 14.0;
+const BETWEEN_NAMES: f32 = 10.0;
 const ROW: f32 = 22.0;
 
 /// Legend at the left, regions at the right; where both do not fit, the legend has a row of its own.
 fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let fits = ui.available_width() >= legend_width(ui) + ROOM_FOR_REGIONS;
-    if !fits {
+    if !fits && ui.available_height() > ROOM_FOR_LEGEND {
         ui.horizontal_wrapped(legend_ui);
     }
     ui.allocate_ui_with_layout(vec2(ui.available_width(), ROW), Layout::right_to_left(Align::Center), |ui| {
@@ -107,14 +110,14 @@ fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 fn legend_width(ui: &Ui) -> f32 {
     let width = |name: &str| {
         let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look::DARK.dim);
-        SAMPLE + AFTER_SAMPLE + galley.size().x + BETWEEN
+        SAMPLE + AFTER_SAMPLE + galley.size().x + BETWEEN_NAMES
     };
     LEGEND.iter().map(|(_, name)| width(name)).sum()
 }
 
 fn legend_ui(ui: &mut Ui) {
     let look = Look::of(ui);
-    ui.spacing_mut().item_spacing.x = BETWEEN;
+    ui.spacing_mut().item_spacing = vec2(BETWEEN_NAMES, 0.0);
     for (role, name) in LEGEND {
         let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look.dim);
         let size = vec2(SAMPLE + AFTER_SAMPLE + galley.size().x, ROW);

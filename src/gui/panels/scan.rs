@@ -22,9 +22,9 @@ fn columns(study: &Study) -> [Column; 4] {
         Column { right: 0.09, name: "row", unit: "", about: "Row of the table in the file, counted from 1." },
         Column {
             right: 0.30,
-            name: "bond length",
+            name: "r",
             unit: show::length_unit(source.length_unit),
-            about: "As read.",
+            about: "Bond length as read.",
         },
         Column { right: 0.66, name: "energy", unit: show::unit(source.energy_unit), about: "As read." },
         Column {
@@ -41,6 +41,7 @@ pub(super) fn scan_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<C
     let points = &study.findings.source.points;
     let width = ui.available_width() - 10.0;
     let columns = columns(study);
+    let decimals = decimals(state, points);
     columns_ui(ui, width, &columns);
     let room = (ui.available_height() - FOOT).max(3.0 * ROW);
     ScrollArea::vertical().id_salt("points").auto_shrink(false).max_height(room).show_rows(
@@ -50,7 +51,7 @@ pub(super) fn scan_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<C
         |ui, rows| {
             for point in &points[rows] {
                 let picture = study.pictures.points.iter().find(|p| p.row == point.row);
-                if row_ui(ui, state, study, point, picture, &columns, width) {
+                if row_ui(ui, state, study, point, picture, &columns, width, decimals) {
                     let again = state.view.selected_row == Some(point.row);
                     out.push(Command::SelectPoint((!again).then_some(point.row)));
                 }
@@ -78,6 +79,7 @@ pub(super) fn scan_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<C
 }
 
 /// One row; true when it was chosen.
+#[expect(clippy::too_many_arguments, reason = "everything that a row is made of")]
 fn row_ui(
     ui: &mut Ui,
     state: &State,
@@ -86,6 +88,7 @@ fn row_ui(
     picture: Option<&PlotPoint>,
     columns: &[Column; 4],
     width: f32,
+    decimals: [usize; 2],
 ) -> bool {
     let look = Look::of(ui);
     let (rect, response) = ui.allocate_exact_size(vec2(width, ROW), Sense::click());
@@ -97,8 +100,8 @@ fn row_ui(
     let energy = as_read_energy(state, point).unwrap_or_else(|| unit.from_hartree(point.energy_hartree));
     let cells = [
         (point.row + 1).to_string(),
-        as_read(point.r_as_read),
-        as_read(energy),
+        number::fixed(point.r_as_read, decimals[0]),
+        number::fixed(energy, decimals[1]),
         picture.map_or_else(|| number::NONE.to_owned(), |p| number::fixed(p.at[1], 1)),
     ];
     let inside = picture.is_some_and(|p| p.in_window);
@@ -126,6 +129,17 @@ fn row_ui(
         None => response,
     };
     response.clicked()
+}
+
+/// So many decimals that no bond length and no energy loses a digit of the file.
+fn decimals(state: &State, points: &[Point]) -> [usize; 2] {
+    let most = |values: &mut dyn Iterator<Item = f64>| {
+        values.map(|v| format!("{v}").split_once('.').map_or(0, |(_, d)| d.len())).max().unwrap_or(0).min(14)
+    };
+    [
+        most(&mut points.iter().map(|p| p.r_as_read)),
+        most(&mut points.iter().filter_map(|p| as_read_energy(state, p))),
+    ]
 }
 
 /// The energy with the digits of the file.

@@ -29,6 +29,9 @@ pub(super) fn top_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 
 fn title_ui(ui: &mut Ui, state: &State) {
     let look = Look::of(ui);
+    if ui.available_width() < 84.0 {
+        return;
+    }
     ui.label(RichText::new("parabound").font(look::semibold(15.0)));
     let Some((_, loaded, settings)) = state.document.focused() else { return };
     ui.add_space(4.0);

@@ -1,7 +1,7 @@
 //! The main plot: curve, fits, levels with densities, points.
 
 use super::map::Map;
-use super::{Stage, axes, card, hits, items, levels, points, reach_band_ui, reach_label_ui};
+use super::{Stage, asymptote, axes, card, hits, items, levels, points, reach_band_ui, reach_label_ui};
 use crate::figure::geometry::Bounds;
 use crate::figure::number;
 use crate::gui::command::Command;
@@ -34,6 +34,7 @@ pub(super) fn main_plot_ui(
     levels::shown_level_ui(ui, state, study, &map);
     reach_label_ui(ui, study, stage, &map);
     axes::frame_ui(ui, &map);
+    asymptote::asymptote_ui(ui, state, study, stage, &map, out);
     card::card_ui(ui, state, study, stage, &map);
     name_ui(&response, study);
     work_ui(ui, state, study, &response, &hit, &map, out);

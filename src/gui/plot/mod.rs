@@ -80,7 +80,6 @@ pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command
     if has_ladders {
         ladders::ladders_ui(ui, state, &study.pictures.ladders, &stage, &map, out);
     }
-    asymptote::asymptote_ui(ui, state, study, &stage, &map, out);
     handles::window_edges_ui(ui, state, study, &stage, &map, out);
     cursor::cursor_ui(ui, &stage, &map, &strip);
     stale_mark_ui(ui, state, &stage);
