@@ -5,6 +5,7 @@ use super::command::Command;
 use super::compute::Worker;
 use super::files::{Done, Files};
 use super::state::{CurveKey, Page, PathPurpose, State, Study};
+use super::watch::{Watch, Watched};
 use super::{Program, look, panels};
 use crate::figure::Pictures;
 use crate::scan::Scan;
@@ -36,7 +37,9 @@ pub struct App {
     state: State,
     worker: Worker<StudyRequest, Result<Study, String>>,
     files: Files,
-    asked: Option<(CurveKey, Settings)>,
+    /// What was asked for last: the curve, its settings, the check sum of its file.
+    asked: Option<(CurveKey, Settings, String)>,
+    watch: Option<Watch>,
 }
 
 /// The study with everything drawn of it; what the worker does.
@@ -57,8 +60,11 @@ impl App {
         } else {
             Worker::spawn(move || wake.request_repaint(), compute)
         };
+        let wake_watch = ctx.clone();
+        // Pictures and tests are made from files that hold still.
+        let watch = (!start.inline).then(|| Watch::new(move || wake_watch.request_repaint()));
         let files = Files::new(move || wake_files.request_repaint(), start.inline);
-        let mut app = Self { state: State::default(), worker, files, asked: None };
+        let mut app = Self { state: State::default(), worker, files, asked: None, watch };
         app.state.view.page = start.page;
         if start.files.is_empty() && !start.empty {
             app.files.read_sample(0, start.settings.clone());
@@ -92,6 +98,8 @@ impl App {
             Effect::AskSave(name) => self.files.ask_save(name),
             Effect::Read(path) => self.files.read(path, Settings::default()),
             Effect::ReadSample(index) => self.files.read_sample(index, Settings::default()),
+            Effect::ReadText(text) => self.files.read_text(text, Settings::default()),
+            Effect::Reread { loaded, from_disk } => self.files.reread(loaded, from_disk),
             Effect::ReadBytes(problem) => self.files.read_again(problem),
             Effect::Write { path, overwrite } => {
                 if let Some(study) = self.state.study() {
@@ -107,6 +115,8 @@ impl App {
     fn take_done(&mut self, done: Done, ctx: &egui::Context) {
         match done {
             Done::Scan(loaded) => apply::take_scan(loaded, &mut self.state),
+            Done::Reread(loaded) => apply::take_reread(loaded, &mut self.state),
+            Done::Folder(scans, refused) => apply::take_folder(scans, refused, &mut self.state),
             Done::Problem(problem) => apply::take_problem(problem, &mut self.state),
             Done::Chosen(PathPurpose::Open, paths) => {
                 for path in paths {
@@ -131,7 +141,7 @@ impl App {
     fn exchange_studies(&mut self) {
         // Inline answers are there at once, so ask before looking.
         if let Some((key, scan, settings)) = apply::wanted(&self.state) {
-            let ask = (key, settings);
+            let ask = (key, settings, scan.sha256.clone());
             if self.asked.as_ref() != Some(&ask) {
                 self.asked = Some(ask.clone());
                 self.worker.send((key, scan, ask.1));
@@ -151,6 +161,20 @@ impl App {
         }
     }
 
+    /// Hears of files that have changed on disk, and says which ones matter.
+    fn look_at_files(&mut self, ctx: &egui::Context) {
+        let Some(watch) = &mut self.watch else { return };
+        while let Some(changed) = watch.poll() {
+            apply::take_changed(changed.key, &mut self.state);
+        }
+        let scans = self.state.document.scans.iter().filter(|s| !self.state.view.changed.contains(&s.key));
+        let watched = |s: &super::state::LoadedScan| {
+            let (path, modified) = (s.path.clone()?, s.modified?);
+            Some(Watched { key: s.key, path, modified })
+        };
+        watch.set(scans.filter_map(watched).collect(), ctx.input(|i| i.focused));
+    }
+
     fn shortcuts(&mut self, ctx: &egui::Context) {
         for command in Command::with_shortcut() {
             let Some(keys) = command.shortcut() else { continue };
@@ -168,6 +192,16 @@ impl App {
                 self.give(Command::PinLevel(None), ctx);
             }
         }
+        if !ctx.text_edit_focused() {
+            let is_paste = |event: &egui::Event| match event {
+                egui::Event::Paste(text) => Some(text.clone()),
+                _ => None,
+            };
+            let pasted: Vec<String> = ctx.input(|i| i.events.iter().filter_map(is_paste).collect());
+            for text in pasted {
+                self.give(Command::PasteTable(text), ctx);
+            }
+        }
         for file in ctx.input(|i| i.raw.dropped_files.clone()) {
             self.give(Command::OpenPath(file.path().to_owned()), ctx);
         }
@@ -180,6 +214,7 @@ impl Program for App {
             self.take_done(done, ctx);
         }
         self.shortcuts(ctx);
+        self.look_at_files(ctx);
         self.exchange_studies();
     }
 

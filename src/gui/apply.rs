@@ -1,9 +1,10 @@
 //! Carries commands out: the only place where the window's state changes.
 
 use super::command::Command;
-use super::state::{CurveKey, Message, Preset, Problem, State, Zoom};
+use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, State, Zoom};
 pub use super::take::*;
 use crate::figure::geometry::Bounds;
+use crate::fit::{RowWeight, Weighting};
 use crate::settings::{SetAside, Settings};
 use std::path::PathBuf;
 use std::sync::Arc;
@@ -19,6 +20,15 @@ pub enum Effect {
     Read(PathBuf),
     /// Read a bundled sample.
     ReadSample(usize),
+    /// Read a table from text.
+    ReadText(String),
+    /// Read a scan again: its file, or, with other settings, the same bytes.
+    Reread {
+        /// The scan as it is.
+        loaded: LoadedScan,
+        /// Whether to look at the file anew.
+        from_disk: bool,
+    },
     /// Read these bytes again.
     ReadBytes(Problem),
     /// Write the findings of the focused curve.
@@ -50,6 +60,22 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
                 problem.start.read = read;
                 return vec![Effect::ReadBytes(problem.clone())];
             }
+        }
+        Command::PasteTable(text) => return vec![Effect::ReadText(text)],
+        Command::Reload(key) => {
+            state.view.changed.remove(&key);
+            let loaded = state.document.scan(key).cloned();
+            return loaded.map(|loaded| Effect::Reread { loaded, from_disk: true }).into_iter().collect();
+        }
+        Command::ReadWith { scan, read } => {
+            let loaded = state.document.scan(scan).cloned();
+            return loaded
+                .map(|mut loaded| {
+                    loaded.start.read = read;
+                    Effect::Reread { loaded, from_disk: false }
+                })
+                .into_iter()
+                .collect();
         }
         Command::Export => return vec![Effect::AskSave(findings_name(state))],
         Command::ExportTo { path, overwrite } => return vec![Effect::Write { path, overwrite }],
@@ -145,6 +171,11 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 aside.reason.clone_from(reason);
             }
         }),
+        Command::SetWeight { row, weight } => {
+            if weight.is_finite() && *weight >= 0.0 {
+                edit(state, "change a weight", true, |s| set_weight(&mut s.fits.weights, *row, *weight));
+            }
+        }
         Command::Restore(row) => edit(state, "use a point again", false, |s| {
             let by_hand = s.set_aside.iter().any(|a| a.row == *row);
             s.set_aside.retain(|a| a.row != *row);
@@ -156,6 +187,22 @@ fn change_document(command: &Command, state: &mut State) -> bool {
         _ => return false,
     }
     true
+}
+
+/// Gives one row a weight; weights that come from a rule are left to the rule.
+fn set_weight(weights: &mut Weighting, row: usize, weight: f64) {
+    if matches!(weights, Weighting::Equal {}) {
+        *weights = Weighting::Point { rows: Vec::new(), others: 1.0, declared: false };
+    }
+    let Weighting::Point { rows, others, declared } = weights else { return };
+    rows.retain(|r| r.row != row);
+    if weight != *others {
+        rows.push(RowWeight { row, weight });
+        rows.sort_by_key(|r| r.row);
+    }
+    if rows.is_empty() && *others == 1.0 && !*declared {
+        *weights = Weighting::Equal {};
+    }
 }
 
 /// A region follows the results, but not while what it follows moves under the hand.
@@ -225,6 +272,7 @@ fn change_view(command: Command, state: &mut State) {
             view.atoms_wanted = true;
             view.atoms_asked += 1;
         }
+        Command::ShowColumns(scan) => view.columns_of = scan,
         Command::OpenNotice(index) => view.open_notice = index,
         Command::ShowAllNotices(all) => view.all_notices = all,
         Command::ShowPage(page) => view.page = page,

@@ -20,6 +20,19 @@ pub enum Command {
     OpenSample(usize),
     /// Read the refused file again with these units.
     ReadAgain(ReadSettings),
+    /// Read a table that was copied elsewhere.
+    PasteTable(String),
+    /// Read a scan's file again.
+    Reload(u64),
+    /// Look at the columns of a scan, or at none.
+    ShowColumns(Option<u64>),
+    /// Read a scan again with other columns or units.
+    ReadWith {
+        /// The scan.
+        scan: u64,
+        /// How it is read.
+        read: ReadSettings,
+    },
     /// Put the refused file away.
     DropProblem,
     /// Take the focused curve's scan out of the window.
@@ -69,6 +82,13 @@ pub enum Command {
         row: usize,
         /// Why.
         reason: String,
+    },
+    /// Give a row a weight in the fits.
+    SetWeight {
+        /// The row.
+        row: usize,
+        /// Its weight.
+        weight: f64,
     },
     /// Look at a row of the scan, or at none.
     SelectPoint(Option<usize>),
@@ -162,6 +182,8 @@ impl Command {
             Self::Restore(_) => "Use again".into(),
             Self::PointAt(_) => "Show on plot".into(),
             Self::NameAtoms => "Name the atoms".into(),
+            Self::ShowColumns(Some(_)) => "Columns …".into(),
+            Self::Reload(_) => "Read again".into(),
             Self::SetAsymptote { energy: None, .. } => "assume it".into(),
             _ => String::new(),
         }
@@ -189,6 +211,8 @@ impl Command {
             Self::ToggleWhy => "What each part of the sentence rests on.",
             Self::SetAside(_) => "Leave this point out of curve and fits.",
             Self::Restore(_) => "Use this point again.",
+            Self::ShowColumns(Some(_)) => "Which column is what, and in which unit.",
+            Self::Reload(_) => "The file has changed on disk: read it again, with all settings kept.",
             Self::NameAtoms => "Show where the atoms are named.",
             Self::SetAsymptote { energy: None, .. } => {
                 "Let the program assume the energy of the separated atoms."

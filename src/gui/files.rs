@@ -1,5 +1,6 @@
 //! Files and dialogs, kept off the frame: every read, write and dialog runs on a thread of its own.
 
+use super::meaning::meanings;
 use super::samples::SAMPLES;
 use super::state::{LoadedScan, PathPurpose, Problem};
 use crate::files::{Replace, WriteError};
@@ -13,6 +14,8 @@ use std::time::{Duration, Instant};
 
 /// A dialog that comes back without a choice sooner than this was never shown.
 const NO_DIALOG: Duration = Duration::from_millis(300);
+/// No more files of a folder are read.
+const MOST_FILES: usize = 1000;
 /// Larger files are refused before they are read.
 const MOST_BYTES: u64 = 64 << 20;
 
@@ -21,6 +24,10 @@ const MOST_BYTES: u64 = 64 << 20;
 pub enum Done {
     /// A scan was read.
     Scan(LoadedScan),
+    /// A scan was read again; its key says which.
+    Reread(LoadedScan),
+    /// The files of a folder that could be read, and the names of those that could not.
+    Folder(Vec<LoadedScan>, Vec<String>),
     /// A file was refused.
     Problem(Problem),
     /// Files were chosen in a dialog.
@@ -85,8 +92,34 @@ impl Files {
     /// Reads a bundled sample.
     pub fn read_sample(&mut self, index: usize, start: Settings) {
         if let Some(sample) = SAMPLES.get(index) {
-            self.run(move || understand(sample.file_name, Arc::from(sample.bytes), None, start));
+            self.run(move || match understand(sample.file_name, Arc::from(sample.bytes), None, start) {
+                Done::Scan(loaded) => Done::Scan(LoadedScan { is_sample: true, ..loaded }),
+                other => other,
+            });
         }
+    }
+
+    /// Reads a table that was copied elsewhere.
+    pub fn read_text(&mut self, text: String, start: Settings) {
+        self.run(move || understand("pasted table", Arc::from(text.into_bytes()), None, start));
+    }
+
+    /// Reads a scan again, from its file or from the bytes that were read before.
+    pub fn reread(&mut self, loaded: LoadedScan, from_disk: bool) {
+        self.run(move || {
+            let LoadedScan { key, scan, path, bytes, modified, is_sample, start } = loaded;
+            let read = match path.as_ref().filter(|_| from_disk) {
+                Some(path) => read_file(path, start),
+                None => understand(&scan.file_name, bytes, path, start),
+            };
+            match read {
+                Done::Scan(new) => {
+                    let modified = if from_disk { new.modified } else { modified };
+                    Done::Reread(LoadedScan { key, modified, is_sample, ..new })
+                }
+                other => other,
+            }
+        });
     }
 
     /// Reads the bytes of a refused file with other settings.
@@ -178,22 +211,46 @@ fn read_file(path: &Path, start: Settings) -> Done {
             text,
             start: Settings::default(),
             ask_units: false,
+            meanings: Vec::new(),
         })
     };
+    let mut modified = None;
     match std::fs::metadata(path) {
         Err(error) => return refuse(format!("{}: {error}. Check the path.", path.display())),
-        Ok(data) if data.is_dir() => {
-            return refuse(format!("{} is a folder. Choose a file in it.", path.display()));
-        }
+        Ok(data) if data.is_dir() => return read_folder(path, &start),
         Ok(data) if data.len() > MOST_BYTES => {
             return refuse(format!("{} has {} bytes: too large for a scan.", path.display(), data.len()));
         }
-        Ok(_) => {}
+        Ok(data) => modified = data.modified().ok(),
     }
     match std::fs::read(path) {
-        Ok(bytes) => understand(&file_name, Arc::from(bytes), Some(path.to_owned()), start),
+        Ok(bytes) => match understand(&file_name, Arc::from(bytes), Some(path.to_owned()), start) {
+            Done::Scan(loaded) => Done::Scan(LoadedScan { modified, ..loaded }),
+            other => other,
+        },
         Err(error) => refuse(format!("{} could not be read: {error}.", path.display())),
     }
+}
+
+/// Reads the files of a folder that are scans, by name; folders in it are left alone.
+fn read_folder(path: &Path, start: &Settings) -> Done {
+    let mut files: Vec<PathBuf> = match std::fs::read_dir(path) {
+        Ok(entries) => entries.filter_map(Result::ok).map(|e| e.path()).filter(|p| p.is_file()).collect(),
+        Err(error) => {
+            return Done::Written(Err(format!("{} could not be listed: {error}.", path.display())));
+        }
+    };
+    files.sort();
+    files.retain(|p| !file_name_of(p).starts_with('.'));
+    files.truncate(MOST_FILES);
+    let (mut scans, mut refused) = (Vec::new(), Vec::new());
+    for file in files {
+        match read_file(&file, start.clone()) {
+            Done::Scan(loaded) => scans.push(loaded),
+            _ => refused.push(file_name_of(&file)),
+        }
+    }
+    Done::Folder(scans, refused)
 }
 
 /// Reads bytes as a scan, or keeps them for another try.
@@ -201,11 +258,20 @@ pub fn understand(file_name: &str, bytes: Arc<[u8]>, path: Option<PathBuf>, star
     let read = read_scan(file_name, &bytes, &start.read)
         .and_then(|scan| scan.curve_index(start.curve.as_deref()).map(|_| scan));
     match read {
-        Ok(scan) => Done::Scan(LoadedScan { key: 0, scan: Arc::new(scan), path, start }),
+        Ok(scan) => Done::Scan(LoadedScan {
+            key: 0,
+            scan: Arc::new(scan),
+            path,
+            bytes,
+            modified: None,
+            is_sample: false,
+            start,
+        }),
         Err(error) => Done::Problem(Problem {
             file_name: file_name.to_owned(),
             path,
             ask_units: asks_for_units(&error),
+            meanings: if asks_for_units(&error) { meanings(file_name, &bytes, &start) } else { Vec::new() },
             text: words(&error),
             bytes: Some(bytes),
             start,

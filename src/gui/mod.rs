@@ -12,6 +12,7 @@ pub mod files;
 pub mod fonts;
 mod history;
 pub mod look;
+pub mod meaning;
 pub mod painter;
 mod panels;
 mod plot;
@@ -23,6 +24,7 @@ mod show;
 pub mod state;
 mod take;
 mod view;
+pub mod watch;
 
 pub use program::Program;
 pub use run::run;

@@ -2,6 +2,7 @@
 
 use super::command::Command;
 use super::history::History;
+use super::meaning::Meaning;
 pub use super::view::{Page, Preset, Strip, Zoom};
 use crate::figure::Pictures;
 use crate::figure::geometry::Bounds;
@@ -10,9 +11,10 @@ use crate::fit::Window;
 use crate::scan::Scan;
 use crate::settings::Settings;
 use crate::units::LengthUnit;
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::path::PathBuf;
 use std::sync::Arc;
+use std::time::SystemTime;
 
 /// One curve: a scan by its serial number and an energy column of it.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
@@ -32,6 +34,12 @@ pub struct LoadedScan {
     pub scan: Arc<Scan>,
     /// Where it came from; none for samples.
     pub path: Option<PathBuf>,
+    /// What was read.
+    pub bytes: Arc<[u8]>,
+    /// When the file was last changed as it was read.
+    pub modified: Option<SystemTime>,
+    /// Whether it came with the program.
+    pub is_sample: bool,
     /// The settings that its studies start from; how it was read is among them.
     pub start: Settings,
 }
@@ -84,6 +92,8 @@ pub struct Problem {
     pub start: Settings,
     /// Whether naming units would settle it.
     pub ask_units: bool,
+    /// What it would mean in each unit, where that is what is missing.
+    pub meanings: Vec<Meaning>,
 }
 
 /// Which side panels are open; none: by the room there is.
@@ -118,6 +128,10 @@ pub struct ViewState {
     pub atoms_wanted: bool,
     /// Every request for the atoms moves the focus there once.
     pub atoms_asked: u32,
+    /// Scans whose files have changed on disk since they were read.
+    pub changed: BTreeSet<u64>,
+    /// The scan whose columns are being looked at.
+    pub columns_of: Option<u64>,
     /// The notice shown in full, counted from the top.
     pub open_notice: Option<usize>,
     /// Whether all notices are shown.
@@ -195,8 +209,12 @@ impl State {
 
     /// Whether what is shown was computed with other settings than those in force.
     pub fn is_stale(&self) -> bool {
-        let Some((key, _, settings)) = self.document.focused() else { return false };
-        self.results.get(&key).is_none_or(|o| o.settings != *settings)
+        let Some((key, loaded, settings)) = self.document.focused() else { return false };
+        let of_this = |o: &Outcome| {
+            o.settings == *settings
+                && o.study.as_ref().is_none_or(|s| s.findings.source.sha256 == loaded.scan.sha256)
+        };
+        self.results.get(&key).is_none_or(|o| !of_this(o))
     }
 
     /// Why the latest computation of the focused curve failed, where it did.

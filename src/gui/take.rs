@@ -7,11 +7,23 @@ use super::state::{
 use crate::settings::Settings;
 
 /// Takes a scan that was read into the document and looks at its first curve.
-pub fn take_scan(mut loaded: LoadedScan, state: &mut State) {
+pub fn take_scan(loaded: LoadedScan, state: &mut State) {
+    take_scans(vec![loaded], state);
+}
+
+/// Takes scans that were read together, as one step.
+pub fn take_scans(scans: Vec<LoadedScan>, state: &mut State) {
     // What the window starts with is not a step that could be taken back.
-    if state.next_scan > 0 {
-        state.history.note("open a scan", &state.document, false);
+    if state.next_scan > 0 && !scans.is_empty() {
+        let name = if scans.len() == 1 { "open a scan" } else { "open scans" };
+        state.history.note(name, &state.document, false);
     }
+    for loaded in scans {
+        add_scan(loaded, state);
+    }
+}
+
+fn add_scan(mut loaded: LoadedScan, state: &mut State) {
     loaded.key = state.next_scan;
     state.next_scan += 1;
     let document: &mut Document = &mut state.document;
@@ -23,12 +35,68 @@ pub fn take_scan(mut loaded: LoadedScan, state: &mut State) {
     let column = loaded.scan.curve_index(loaded.start.curve.as_deref()).unwrap_or(0);
     document.focus = Some(CurveKey { scan: loaded.key, column });
     // A bundled sample opens with the point of it all in sight: the first level that the parabola misses.
-    let sample = loaded.path.is_none();
+    let sample = loaded.is_sample;
     document.scans.push(loaded);
     state.view.problem = None;
     state.view.message = None;
     forget_level(state);
     state.view.pinned_level = sample.then_some(1);
+}
+
+/// Takes a scan that was read again; everything that was set for its curves stays.
+pub fn take_reread(loaded: LoadedScan, state: &mut State) {
+    let key = loaded.key;
+    if state.document.scan(key).is_none() {
+        take_scan(loaded, state);
+        return;
+    }
+    state.history.note("read a scan again", &state.document, false);
+    let document = &mut state.document;
+    let focused = document.focused().filter(|f| f.0.scan == key).and_then(|f| f.2.curve.clone());
+    let before: Vec<Settings> =
+        document.settings.iter().filter(|(k, _)| k.scan == key).map(|(_, s)| s.clone()).collect();
+    document.settings.retain(|k, _| k.scan != key);
+    let rows = loaded.scan.bond_lengths.len();
+    for (column, energy) in loaded.scan.energies.iter().enumerate() {
+        let same = before.iter().find(|s| s.curve.as_ref() == Some(&energy.name));
+        let mut settings = same.cloned().unwrap_or_else(|| loaded.start.clone());
+        settings.curve = Some(energy.name.clone());
+        settings.read = loaded.start.read.clone();
+        settings.set_aside.retain(|s| s.row < rows);
+        settings.kept.retain(|r| *r < rows);
+        document.settings.insert(CurveKey { scan: key, column }, settings);
+    }
+    if document.focus.is_some_and(|f| f.scan == key) {
+        let column = loaded.scan.energies.iter().position(|e| Some(&e.name) == focused.as_ref()).unwrap_or(0);
+        document.focus = Some(CurveKey { scan: key, column });
+    }
+    if let Some(scan) = document.scans.iter_mut().find(|s| s.key == key) {
+        *scan = loaded;
+    }
+    state.results.retain(|k, _| k.scan != key);
+    state.view.zoom.retain(|k, _| k.scan != key);
+    state.view.changed.remove(&key);
+    state.view.problem = None;
+    forget_level(state);
+}
+
+/// Takes word of a file that has changed on disk.
+pub fn take_changed(key: u64, state: &mut State) {
+    let Some(name) = state.document.scan(key).map(|s| s.scan.file_name.clone()) else { return };
+    state.view.changed.insert(key);
+    let text = format!("{name} has changed on disk. The curves on the left offer to read it again.");
+    state.view.message = Some(Message { text, failure: false });
+}
+
+/// Takes what a folder held.
+pub fn take_folder(scans: Vec<LoadedScan>, refused: Vec<String>, state: &mut State) {
+    let read = scans.len();
+    take_scans(scans, state);
+    let mut text = format!("{read} file{} read.", if read == 1 { "" } else { "s" });
+    if !refused.is_empty() {
+        text.push_str(&format!(" Not read: {}.", refused.join(", ")));
+    }
+    state.view.message = Some(Message { text, failure: read == 0 });
 }
 
 /// Takes a file that was refused.

@@ -8,3 +8,4 @@ mod frames;
 mod gallery;
 mod harness;
 mod pictures;
+mod reading;

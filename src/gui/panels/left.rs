@@ -42,26 +42,67 @@ fn curves_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         }
     });
     let several = state.document.scans.len() > 1;
+    let lines = lines(state, several);
+    let list_ui = |ui: &mut Ui, range: std::ops::Range<usize>, out: &mut Vec<Command>| {
+        for line in &lines[range] {
+            match line {
+                Line::File(name) => file_ui(ui, name),
+                Line::Curve { key, label, points } => {
+                    if curve_ui(ui, label, *points, state.document.focus == Some(*key)) {
+                        out.push(Command::Focus(*key));
+                    }
+                }
+            }
+        }
+    };
+    if lines.len() > MOST_LINES {
+        ScrollArea::vertical()
+            .id_salt("curves")
+            .max_height(look::ROW * MOST_LINES as f32 + look::STEP * (MOST_LINES as f32 - 1.0))
+            .show_rows(ui, look::ROW, lines.len(), |ui, range| list_ui(ui, range, out));
+    } else {
+        list_ui(ui, 0..lines.len(), out);
+    }
+    let Some((key, ..)) = state.document.focused() else { return };
+    ui.horizontal_wrapped(|ui| {
+        command_button(ui, state, Command::ShowColumns(Some(key.scan)), ButtonForm::Quiet, out);
+        if several {
+            command_button(ui, state, Command::CloseScan, ButtonForm::Quiet, out);
+        }
+        if state.view.changed.contains(&key.scan) {
+            command_button(ui, state, Command::Reload(key.scan), ButtonForm::Link, out);
+        }
+    });
+}
+
+/// More lines than this scroll by themselves.
+const MOST_LINES: usize = 8;
+
+/// A line of the list of curves.
+enum Line<'a> {
+    File(&'a str),
+    Curve { key: CurveKey, label: &'a str, points: usize },
+}
+
+/// Files, where there are several, and their curves.
+fn lines(state: &State, several: bool) -> Vec<Line<'_>> {
+    let mut lines = Vec::new();
     for loaded in &state.document.scans {
         if several {
-            file_ui(ui, &loaded.scan.file_name);
+            lines.push(Line::File(&loaded.scan.file_name));
         }
         for (column, energy) in loaded.scan.energies.iter().enumerate() {
             let key = CurveKey { scan: loaded.key, column };
             let points = energy.values.iter().flatten().count();
-            if curve_ui(ui, &energy.label, points, state.document.focus == Some(key)) {
-                out.push(Command::Focus(key));
-            }
+            lines.push(Line::Curve { key, label: &energy.label, points });
         }
     }
-    if several {
-        command_button(ui, state, Command::CloseScan, ButtonForm::Quiet, out);
-    }
+    lines
 }
 
 fn file_ui(ui: &mut Ui, name: &str) {
     let look = Look::of(ui);
-    let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 20.0), Sense::hover());
+    let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), look::ROW), Sense::hover());
     elided(ui, rect.left_center(), rect.width(), name, look::plain(look::SMALL), look.dim);
     response.on_hover_text(name);
 }

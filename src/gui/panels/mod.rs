@@ -13,6 +13,7 @@ mod reach;
 mod right;
 mod scan;
 mod top;
+mod units;
 
 pub use constants::constants_text;
 
@@ -108,6 +109,7 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         }))
         .show(ui, |ui| center::center_ui(ui, state, out));
     problem::problem_ui(ui, state, out);
+    dialogs::columns_ui(ui, state, out);
     dialogs::path_window_ui(ui, state, out);
 }
 

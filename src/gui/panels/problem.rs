@@ -14,8 +14,9 @@ pub(super) fn empty_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let look = Look::of(ui);
     let height = ui.available_height();
     ui.vertical_centered(|ui| {
-        ui.add_space((0.5 * height - 190.0).max(8.0));
-        ui.set_max_width(520.0);
+        let tall = state.view.problem.as_ref().is_some_and(|p| !p.meanings.is_empty());
+        ui.add_space((0.5 * height - if tall { 270.0 } else { 190.0 }).max(8.0));
+        ui.set_max_width(540.0);
         if let Some(problem) = &state.view.problem {
             problem_frame(look).show(ui, |ui| {
                 ui.with_layout(egui::Layout::top_down(egui::Align::Min), |ui| {
@@ -68,7 +69,7 @@ pub(super) fn problem_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         .resizable(false)
         .collapsible(false)
         .anchor(egui::Align2::CENTER_CENTER, egui::Vec2::ZERO)
-        .fixed_size([460.0, 0.0])
+        .fixed_size([500.0, 0.0])
         .frame(problem_frame(look))
         .show(ui.ctx(), |ui| refused_ui(ui, state, problem, out));
 }
@@ -80,7 +81,11 @@ fn refused_ui(ui: &mut Ui, state: &State, problem: &Problem, out: &mut Vec<Comma
     ui.label(&problem.text);
     ui.add_space(12.0);
     if problem.ask_units {
-        units_ui(ui, problem, out);
+        if problem.meanings.is_empty() {
+            units_ui(ui, problem, out);
+        } else {
+            super::units::units_ui(ui, problem, out);
+        }
         ui.add_space(12.0);
     }
     ui.horizontal_wrapped(|ui| {

@@ -1,15 +1,16 @@
 //! The page of the scan: every point as read, and what can be done with the one looked at.
 
+use super::left::settle;
 use crate::figure::{PlotPoint, fit_label, fit_role, number};
 use crate::findings::{FitFindings, Point};
-use crate::fit::Fit;
+use crate::fit::{Fit, Weighting};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{self, ButtonForm, Column, Row, as_read, columns_ui, command_button};
 use crate::gui::state::{State, Study};
 use crate::units::to_per_cm;
 use eframe::egui;
-use egui::{Align2, RichText, ScrollArea, Sense, TextEdit, Ui, WidgetInfo, pos2, vec2};
+use egui::{Align2, DragValue, RichText, ScrollArea, Sense, TextEdit, Ui, WidgetInfo, pos2, vec2};
 
 /// Height of a row of the table.
 const ROW: f32 = 22.0;
@@ -165,7 +166,7 @@ fn point_ui(ui: &mut Ui, state: &State, study: &Study, point: &Point, out: &mut 
     for fit in &study.findings.fits {
         residual_ui(ui, fit, point);
     }
-    Row::new("weight in fits", as_read(point.weight), "").ui(ui);
+    weight_ui(ui, state, point, out);
     let remark = state.document.focused().and_then(|(_, loaded, _)| {
         loaded.scan.row_remarks.iter().find(|(row, _)| *row == point.row).map(|(_, text)| text.clone())
     });
@@ -195,6 +196,29 @@ fn reason_ui(ui: &mut Ui, state: &State, point: &Point, out: &mut Vec<Command>) 
         if response.lost_focus() {
             out.push(Command::Settle);
         }
+    });
+}
+
+/// The weight of the point in the fits, to be changed where no rule gives it.
+fn weight_ui(ui: &mut Ui, state: &State, point: &Point, out: &mut Vec<Command>) {
+    let Some((_, _, settings)) = state.document.focused() else { return };
+    let by_hand = matches!(settings.fits.weights, Weighting::Equal {} | Weighting::Point { .. });
+    if !by_hand {
+        Row::new("weight in fits, by rule", crate::digits::rounded(point.weight, 3), "").ui(ui);
+        return;
+    }
+    let look = Look::of(ui);
+    ui.horizontal(|ui| {
+        let label = ui.label(RichText::new("weight in fits").font(look::plain(look::BODY)).color(look.text));
+        let mut weight = point.weight;
+        let field = DragValue::new(&mut weight).range(0.0..=1e6).speed(0.02).max_decimals(6);
+        let response = ui.add(field).labelled_by(label.id).on_hover_text(
+            "0 leaves the point out of the fits, but not out of the curve. Only the ratio of weights matters.",
+        );
+        if response.changed() {
+            out.push(Command::SetWeight { row: point.row, weight });
+        }
+        settle(&response, out);
     });
 }
 

@@ -23,7 +23,10 @@ pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -
     let mut notices = Vec::new();
     let (length_unit, length_unit_origin) = length_unit(&length.0, settings, lengths_stated, &mut notices)?;
     let bond_lengths = required(&length, &table.row_lines)?;
-    let is_energy = energy_columns(&columns, has_header);
+    let is_energy = match &settings.energy_columns {
+        Some(wanted) => chosen_columns(&columns, wanted)?,
+        None => energy_columns(&columns, has_header),
+    };
     if !is_energy.contains(&true) {
         return Err(ScanError::NoEnergyColumn { columns: all });
     }
@@ -84,6 +87,16 @@ fn length_index(columns: &[Column], settings: &ReadSettings, has_header: bool) -
         return Ok(0);
     }
     Err(ScanError::NoLengthColumn { columns: columns.iter().map(|c| c.0.full.clone()).collect() })
+}
+
+/// The energy columns that the user names.
+fn chosen_columns(columns: &[Column], wanted: &[String]) -> Result<Vec<bool>, ScanError> {
+    let pairs: Vec<(&str, &str)> = columns.iter().map(|c| (c.0.full.as_str(), c.0.label.as_str())).collect();
+    let mut chosen = vec![false; columns.len()];
+    for name in wanted {
+        chosen[names::find(&pairs, name)?] = true;
+    }
+    Ok(chosen)
 }
 
 /// Which columns are energies: those whose header says so; where none does, those it says nothing about.

@@ -36,6 +36,9 @@ pub struct ReadSettings {
     /// Name of the bond-length column (full, without unit, an unambiguous part, or its number from 1); none: the
     /// first that the header calls a length, or the first of all where there is no header.
     pub length_column: Option<String>,
+    /// Names of the energy columns of a table; none: those that the header calls energies.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub energy_columns: Option<Vec<String>>,
     /// Unit of the bond lengths; it goes before what the file says.
     pub length_unit: Option<LengthUnit>,
     /// Unit of all energy columns; it goes before what the file says.
