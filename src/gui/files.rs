@@ -214,15 +214,14 @@ fn read_file(path: &Path, start: Settings) -> Done {
             meanings: Vec::new(),
         })
     };
-    let mut modified = None;
-    match std::fs::metadata(path) {
+    let modified = match std::fs::metadata(path) {
         Err(error) => return refuse(format!("{}: {error}. Check the path.", path.display())),
         Ok(data) if data.is_dir() => return read_folder(path, &start),
         Ok(data) if data.len() > MOST_BYTES => {
             return refuse(format!("{} has {} bytes: too large for a scan.", path.display(), data.len()));
         }
-        Ok(data) => modified = data.modified().ok(),
-    }
+        Ok(data) => data.modified().ok(),
+    };
     match std::fs::read(path) {
         Ok(bytes) => match understand(&file_name, Arc::from(bytes), Some(path.to_owned()), start) {
             Done::Scan(loaded) => Done::Scan(LoadedScan { modified, ..loaded }),

@@ -45,7 +45,7 @@ pub fn columns_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let Some(loaded) = state.view.columns_of.and_then(|key| state.document.scan(key)) else { return };
     let room = ui.ctx().content_rect().size();
     egui::Window::new(format!("Columns of {}", loaded.scan.file_name))
-        .id(egui::Id::new("columns"))
+        .id(egui::Id::unique("columns"))
         .collapsible(false)
         .resizable(false)
         .anchor(egui::Align2::CENTER_CENTER, egui::Vec2::ZERO)
@@ -65,7 +65,7 @@ fn columns_of(loaded: &LoadedScan) -> Vec<Shown<'_>> {
         is: Use::Length,
         cells: scan.bond_lengths.iter().take(rows).map(|r| show::as_read(*r)).collect(),
     };
-    let energies = scan.energies.iter().map(|e| Shown {
+    let energies = scan.energies.iter().filter(|e| e.made.is_none()).map(|e| Shown {
         name: &e.name,
         is: Use::Energy,
         cells: e.values.iter().take(rows).map(cell).collect(),
@@ -98,10 +98,17 @@ fn content_ui(ui: &mut Ui, loaded: &LoadedScan, out: &mut Vec<Command>) {
         if ui.button("Done").clicked() {
             out.push(Command::ShowColumns(None));
         }
-        let said = loaded.start.read != ReadSettings::default();
+        // What was made of the columns, and between which atoms, or how logs are searched, is another matter.
+        let plain = ReadSettings {
+            bond: loaded.start.read.bond,
+            made: loaded.start.read.made.clone(),
+            lines: loaded.start.read.lines.clone(),
+            ..ReadSettings::default()
+        };
+        let said = loaded.start.read != plain;
         let as_said = egui::Button::new("As the file says").frame(false);
         if ui.add_enabled(said, as_said).on_disabled_hover_text("It is read as it says.").clicked() {
-            read = ReadSettings::default();
+            read = plain;
         }
     });
     if read != loaded.start.read {

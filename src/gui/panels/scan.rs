@@ -6,7 +6,7 @@ use crate::findings::{FitFindings, Point};
 use crate::fit::{Fit, Weighting};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::{self, ButtonForm, Column, Row, as_read, columns_ui, command_button};
+use crate::gui::show::{self, ButtonForm, Column, Row, columns_ui, command_button};
 use crate::gui::state::{State, Study};
 use crate::units::to_per_cm;
 use eframe::egui;
@@ -162,7 +162,9 @@ fn point_ui(ui: &mut Ui, state: &State, study: &Study, point: &Point, out: &mut 
             command_button(ui, state, command, ButtonForm::Framed, out);
         });
     });
+    ui.add_space(look::STEP);
     reason_ui(ui, state, point, out);
+    ui.add_space(look::STEP);
     for fit in &study.findings.fits {
         residual_ui(ui, fit, point);
     }
