@@ -46,6 +46,7 @@ impl Case {
     fn settings(&self) -> ReadSettings {
         let one = |key: &str| self.all(key).first().copied();
         ReadSettings {
+            energy_columns: None,
             length_column: one("length-column").map(str::to_owned),
             length_unit: one("length-unit").map(|u| parse_length_unit(u).expect("a length unit")),
             bond: one("bond").map(|b| {

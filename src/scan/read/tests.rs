@@ -174,6 +174,7 @@ fn a_table_of_dipoles_is_refused() {
 #[test]
 fn options_go_before_the_header() {
     let settings = ReadSettings {
+        energy_columns: None,
         length_unit: Some(LengthUnit::Bohr),
         energy_unit: Some(EnergyUnit::PerCm),
         length_column: Some("r_OH2".to_owned()),
