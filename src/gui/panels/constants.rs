@@ -151,7 +151,7 @@ fn curve_rows(findings: &Findings) -> Vec<Row> {
     {
         let assumed = to_per_cm(asymptote_hartree - curve.v_e_hartree.value);
         rows.push(
-            Row::new("V(∞) − Vₑ, assumed", number::fixed(assumed, 0), PER_CM)
+            Row::new("V(∞), assumed", number::fixed(assumed, 0), PER_CM)
                 .beside("")
                 .about("Where the tail beyond the last point levels off. Give the energy of the separated atoms on the left, and depth and D₀ follow."),
         );

@@ -13,8 +13,6 @@ use egui::{Align, Color32, Frame, Layout, Margin, Panel, ScrollArea, Sense, Stro
 const ROW: f32 = 24.0;
 /// Rows shown without scrolling.
 const MOST_ROWS: usize = 3;
-/// Height of the line under them.
-const FOOT: f32 = 20.0;
 /// Margin at the sides.
 const MARGIN: i8 = 16;
 /// Room for the mark.
@@ -35,8 +33,10 @@ pub(super) fn notices_panel_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command
     let open = state.view.open_notice.and_then(|i| notices.get(i));
     let width = ui.available_width() - 2.0 * f32::from(MARGIN);
     let more = open.map_or(0.0, |n| open_height(ui, &show::typographic(&n.text), width) - ROW);
-    let foot = if rows > most { FOOT } else { 0.0 };
-    let height = (ROW * shown as f32 + more).min(0.45 * ui.available_height()) + 14.0 + foot;
+    // The line under the notices takes the place of one: what is above holds still when one more comes.
+    let foot = if rows > most { ROW } else { 0.0 };
+    let below = if state.view.all_notices { foot } else { 0.0 };
+    let height = (ROW * shown as f32 + more + below).min(0.45 * ui.available_height()) + 14.0;
     // The size of a panel is remembered by its name: another height is another panel.
     Panel::bottom(("notices", height.to_bits()))
         .exact_size(height)

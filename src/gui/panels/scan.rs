@@ -20,16 +20,16 @@ const FOOT: f32 = 190.0;
 fn columns(study: &Study) -> [Column; 4] {
     let source = &study.findings.source;
     [
-        Column { right: 0.09, name: "row", unit: "", about: "Row of the table in the file, counted from 1." },
+        Column { right: 0.08, name: "row", unit: "", about: "Row of the table in the file, counted from 1." },
         Column {
-            right: 0.30,
+            right: 0.24,
             name: "r",
             unit: show::length_unit(source.length_unit),
             about: "Bond length as read.",
         },
-        Column { right: 0.66, name: "energy", unit: show::unit(source.energy_unit), about: "As read." },
+        Column { right: 0.67, name: "energy", unit: show::unit(source.energy_unit), about: "As read." },
         Column {
-            right: 0.96,
+            right: 0.97,
             name: "above minimum",
             unit: "cm⁻¹",
             about: "Above the minimum of the curve, or above the lowest point where it has none.",
