@@ -67,6 +67,10 @@ pub enum Code {
     ShortRange,
     TextColumn,
     UnitContradicted,
+    /// A rotational quantum number was asked for that the state does not have.
+    NoSuchRotation,
+    /// V_inf or C_n of the tail was fitted to the outermost points, or could not be.
+    FittedTail,
 }
 
 impl Code {
@@ -111,6 +115,8 @@ impl Code {
             Self::ShortRange => "short-range",
             Self::TextColumn => "text-column",
             Self::UnitContradicted => "unit-contradicted",
+            Self::NoSuchRotation => "no-such-rotation",
+            Self::FittedTail => "fitted-tail",
         }
     }
 }

@@ -279,8 +279,18 @@ impl Timings {
     }
 
     fn to_json(&self) -> serde_json::Value {
-        let order =
-            ["read", "points", "curve", "fits", "levels", "distortion", "constants", "reach", "total"];
+        let order = [
+            "read",
+            "points",
+            "curve",
+            "fits",
+            "levels",
+            "distortion",
+            "constants",
+            "reach",
+            "further",
+            "total",
+        ];
         let mut seconds = serde_json::Map::new();
         for stage in order {
             if let Some(values) = self.stages.get(stage) {

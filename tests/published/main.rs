@@ -4,6 +4,8 @@
 
 mod experiment;
 mod fits;
+mod h2plus;
 mod levels;
+mod rotation;
 mod scans;
 mod strd;
