@@ -9,7 +9,7 @@ use crate::reach::Reach;
 use crate::scan::Layout;
 use crate::settings::Settings;
 use crate::species::Masses;
-use crate::spectroscopy::Constants;
+use crate::spectroscopy::{BirgeSponer, Constants, DunhamTable, NearDissociation};
 use crate::thermal::ThermalPoint;
 use crate::units::{EnergyUnit, LengthUnit};
 use std::sync::Arc;
@@ -92,6 +92,101 @@ pub struct FitBootstrap {
     pub level_errors_per_cm: Vec<Option<f64>>,
 }
 
+/// A level behind the centrifugal barrier. Energies count from V_e.
+#[derive(Clone, Debug, PartialEq)]
+pub struct QuasiBoundLevel {
+    /// Vibrational quantum number, counted on from the bound levels of the same J.
+    pub v: usize,
+    /// Rotational quantum number.
+    pub j: u32,
+    /// Energy in cm⁻¹.
+    pub energy_per_cm: f64,
+    /// Width Γ in cm⁻¹.
+    pub width_per_cm: f64,
+    /// Energy and width by the second way, in cm⁻¹.
+    pub by_phase_per_cm: Option<(f64, f64)>,
+    /// Top of the barrier in cm⁻¹.
+    pub barrier_per_cm: f64,
+    /// Where it stands, in bohr.
+    pub barrier_bohr: f64,
+}
+
+/// A property column averaged over the levels.
+#[derive(Clone, Debug, PartialEq)]
+pub struct PropertyAverages {
+    /// Full header name of the column.
+    pub column: String,
+    /// Its unit as written.
+    pub unit: Option<String>,
+    /// One average a level.
+    pub levels: Vec<PropertyAverage>,
+}
+
+/// ⟨v|f|v⟩ of a property f(r).
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct PropertyAverage {
+    /// Vibrational quantum number.
+    pub v: usize,
+    /// Rotational quantum number.
+    pub j: u32,
+    /// The average, in the column's unit.
+    pub value: f64,
+    /// Probability outside the points of the column, where its end values were taken.
+    pub outside: f64,
+}
+
+/// Other isotopes on the same curve.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Isotopologue {
+    /// The masses.
+    pub masses: Masses,
+    /// ω_e in cm⁻¹.
+    pub omega_e_per_cm: f64,
+    /// Energy of v = 0 above V_e in cm⁻¹.
+    pub zero_point_energy_per_cm: Option<f64>,
+    /// D_0 in cm⁻¹, where the asymptote is known.
+    pub d_0_per_cm: Option<f64>,
+    /// The levels, v ascending.
+    pub levels: Vec<IsotopicLevel>,
+}
+
+/// A level of other isotopes.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct IsotopicLevel {
+    /// Vibrational quantum number.
+    pub v: usize,
+    /// Energy above V_e in cm⁻¹.
+    pub energy_per_cm: f64,
+    /// B_v in cm⁻¹.
+    pub b_v_per_cm: f64,
+    /// Energy minus that of the study's own isotopes at the same v, in cm⁻¹.
+    pub shift_per_cm: Option<f64>,
+}
+
+/// How many levels there are and how many the scan supports.
+#[derive(Clone, Debug, PartialEq)]
+pub struct LevelSupport {
+    /// All levels without rotation.
+    pub levels: usize,
+    /// Those that lean on no tail.
+    pub supported: usize,
+    /// What moving the tail does; empty unless asked for.
+    pub sensitivity: Vec<TailTrial>,
+}
+
+/// The levels once more with another tail.
+#[derive(Clone, Debug, PartialEq)]
+pub struct TailTrial {
+    /// What was changed, in words.
+    pub change: String,
+    /// How many levels there are then.
+    pub levels: usize,
+    /// How many, from v = 0 on, moved by no more than a leaning level may.
+    pub unmoved: usize,
+    /// Largest shift of a level that is there in both, in cm⁻¹.
+    pub largest_shift_per_cm: f64,
+}
+
 /// All results of a study.
 #[derive(Clone, Debug)]
 pub struct Findings {
@@ -109,8 +204,24 @@ pub struct Findings {
     pub comparison: Comparison,
     /// The fits over many windows; none unless asked for.
     pub window_study: Option<WindowStudy>,
-    /// The levels, v ascending.
+    /// The levels without rotation, v ascending.
     pub levels: Vec<Level>,
+    /// The levels of the J asked for: J ascending, then v.
+    pub rotational_levels: Vec<Level>,
+    /// The quasi-bound levels of the J asked for; none where no J was.
+    pub quasi_bound: Option<Vec<QuasiBoundLevel>>,
+    /// The scan's property columns averaged over the levels without rotation.
+    pub property_averages: Vec<PropertyAverages>,
+    /// The isotopes asked for.
+    pub isotopologues: Vec<Isotopologue>,
+    /// How many levels the scan supports; none without levels.
+    pub level_support: Option<LevelSupport>,
+    /// Y_kl fitted to the levels of several J; none where no J was asked for.
+    pub dunham_table: Option<DunhamTable>,
+    /// Spacings and the straight line through them.
+    pub birge_sponer: Option<BirgeSponer>,
+    /// The highest levels under an inverse-power tail; none without one.
+    pub near_dissociation: Option<NearDissociation>,
     /// The constants.
     pub constants: Constants,
     /// The reach; none without a minimum.

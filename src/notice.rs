@@ -69,6 +69,10 @@ pub enum Code {
     UnitContradicted,
     TemperatureRange,
     ThermalLevels,
+    /// A rotational quantum number was asked for that the state does not have.
+    NoSuchRotation,
+    /// V_inf or C_n of the tail was fitted to the outermost points, or could not be.
+    FittedTail,
 }
 
 impl Code {
@@ -115,6 +119,8 @@ impl Code {
             Self::UnitContradicted => "unit-contradicted",
             Self::TemperatureRange => "temperature-range",
             Self::ThermalLevels => "thermal-levels",
+            Self::NoSuchRotation => "no-such-rotation",
+            Self::FittedTail => "fitted-tail",
         }
     }
 }

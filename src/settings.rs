@@ -5,7 +5,7 @@ use crate::fit::FitSettings;
 use crate::potential::curve::CurveSettings;
 use crate::reach::ReachSettings;
 use crate::scan::read::ReadSettings;
-use crate::species::MassSettings;
+use crate::species::{AtomChoice, MassSettings};
 use crate::thermal::ThermalSettings;
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
@@ -41,6 +41,14 @@ pub struct LevelSettings {
     pub rotation: Vec<u32>,
     /// Λ of the electronic state: X = J(J + 1) − Λ² for the levels with rotation, and no J below Λ.
     pub lambda: u32,
+    /// Whether the levels are computed once more for every moved tail.
+    pub tail_sensitivity: bool,
+    /// Highest v that enters the table of Y_kl fitted to the levels of several J.
+    pub dunham_highest_v: usize,
+    /// Highest power of (v + ½) in that table.
+    pub dunham_vibration_degree: usize,
+    /// Highest power of J(J + 1) in that table.
+    pub dunham_rotation_degree: usize,
     /// Highest v that enters the constants from levels.
     pub constants_highest_v: usize,
     /// Degree in (v + ½) of the constants from levels.
@@ -58,6 +66,10 @@ impl Default for LevelSettings {
             lean_shift_per_cm: 0.1,
             rotation: Vec::new(),
             lambda: 0,
+            tail_sensitivity: false,
+            dunham_highest_v: 6,
+            dunham_vibration_degree: 4,
+            dunham_rotation_degree: 3,
             constants_highest_v: 4,
             constants_degree: 3,
         }
@@ -91,6 +103,8 @@ pub struct Settings {
     pub curve: Option<String>,
     /// Masses.
     pub masses: MassSettings,
+    /// Further pairs of isotopes solved on the same curve.
+    pub isotopologues: Vec<[AtomChoice; 2]>,
     /// Rows left out.
     pub set_aside: Vec<SetAside>,
     /// Rows that the program would set aside and the user keeps.

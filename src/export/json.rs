@@ -69,13 +69,19 @@ pub fn findings_to_value(findings: &Findings) -> Value {
         "fits": findings.fits.iter().map(fit).collect::<Vec<_>>(),
         "comparison": fits::comparison(&findings.comparison),
         "window_study": findings.window_study.as_ref().map(windows::window_study),
-        "levels": findings.levels.iter().map(level).collect::<Vec<_>>(),
+        "levels": findings.levels.iter().chain(&findings.rotational_levels).map(level).collect::<Vec<_>>(),
         "constants": constants(&findings.constants),
         "reach": findings.reach.as_ref().map(reach),
         "thermal": findings.thermal.iter().map(thermal_point).collect::<Vec<_>>(),
         "next_points": [],
         "notices": findings.notices.iter().map(notice).collect::<Vec<_>>(),
     });
+    if let Value::Object(map) = &mut value {
+        // Before the notices, which come last.
+        let notices = map.remove("notices");
+        map.append(&mut super::extras::sections(findings));
+        map.extend(notices.map(|list| ("notices".to_owned(), list)));
+    }
     let lost = null_quantities_that_lost_a_number(&mut value);
     if !lost.is_empty()
         && let Some(Value::Array(notices)) = value.get_mut("notices")
@@ -115,12 +121,12 @@ fn null_quantities_that_lost_a_number(value: &mut Value) -> Vec<String> {
     lost
 }
 
-fn quantity(value: f64, unit: &str) -> Value {
+pub(super) fn quantity(value: f64, unit: &str) -> Value {
     json!({"value": value, "unit": unit, "std_error": null})
 }
 
 /// `estimate` times `factor` in `unit`; carries `method` where the source of the error is known.
-fn estimated(estimate: Estimate, factor: f64, unit: &str) -> Value {
+pub(super) fn estimated(estimate: Estimate, factor: f64, unit: &str) -> Value {
     let e = estimate.scaled(factor);
     match e.source {
         Some(source) => {
@@ -134,7 +140,7 @@ fn per_cm(estimate: Option<Estimate>) -> Value {
     estimate.map_or(Value::Null, |e| estimated(e, 1.0, "cm-1"))
 }
 
-fn angstrom(r_bohr: f64) -> Value {
+pub(super) fn angstrom(r_bohr: f64) -> Value {
     quantity(to_angstrom(r_bohr), "angstrom")
 }
 
@@ -148,7 +154,7 @@ fn point(point: &Point) -> Value {
     })
 }
 
-fn masses(masses: &Masses) -> Value {
+pub(super) fn masses(masses: &Masses) -> Value {
     let atoms = masses.atoms.as_ref().map(|atoms| {
         atoms
             .iter()
@@ -285,12 +291,7 @@ fn constants(constants: &Constants) -> Value {
             "alpha_e": per_cm(c.alpha_e_per_cm),
             "centrifugal_d_e": per_cm(Some(c.centrifugal_d_e_per_cm)),
             "y_00": per_cm(c.y_00_per_cm),
-            "y_kl": c.dunham_per_cm.iter().map(|y| {
-                let mut value = estimated(y.value_per_cm, 1.0, "cm-1");
-                value["k"] = y.k.into();
-                value["l"] = y.l.into();
-                value
-            }).collect::<Vec<_>>(),
+            "y_kl": c.dunham_per_cm.iter().map(super::extras::coefficient).collect::<Vec<_>>(),
         })
     });
     let from_levels = constants.from_levels.as_ref().map(|c| {

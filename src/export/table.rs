@@ -80,7 +80,7 @@ fn write_levels(studies: &[&Findings], out: impl Write) -> Result<(), csv::Error
         "minus_morse_cm-1",
     ])?;
     for study in studies {
-        for level in &study.levels {
+        for level in study.levels.iter().chain(&study.rotational_levels) {
             writer.write_record([
                 study.source.file_name.clone(),
                 study.source.curve.clone(),

@@ -14,9 +14,10 @@ use crate::potential::curve::{
     CurveKind, CurveParts, CurveSettings, InnerTail, LocalDerivatives, ScanCurve, SplineVariable,
 };
 use crate::potential::interpolant::{Interpolant, Recipe};
+use crate::potential::tail_fit::fit_tail;
 use crate::potential::tails::{Joint, OuterForm, Outside, inner_tail, outer_tail};
 use crate::scan::inspect::noise_hartree;
-use crate::units::to_angstrom;
+use crate::units::{to_angstrom, to_per_cm};
 use minimum::{StationaryPoint, minimum_between, stationary_points};
 use std::sync::Arc;
 
@@ -103,9 +104,15 @@ pub fn build_curve(
             power: settings.tail_power,
             base: interpolant.recipe().base.map(|b| (b.e_min_hartree + b.well_depth_hartree, b.a_per_bohr)),
         };
-        let (form, assumed, more) = outer_tail(outer_joint, outside);
-        notices.extend(more);
-        (form, assumed)
+        let fitted = fitted_tail(&data, outer_joint, settings, outside.asymptote, &mut notices);
+        fitted.map_or_else(
+            || {
+                let (form, assumed, more) = outer_tail(outer_joint, outside);
+                notices.extend(more);
+                (form, assumed)
+            },
+            |form| (form, false),
+        )
     };
 
     let noise = noise_hartree(&data.r, &data.e);
@@ -142,6 +149,36 @@ pub fn build_curve(
     });
     notices.extend(spread_caution(&curve));
     Ok((curve, notices))
+}
+
+/// The tail fitted to the outermost points, where the settings ask for one and the points give one.
+fn fitted_tail(
+    data: &Data,
+    joint: Joint,
+    settings: &CurveSettings,
+    asymptote: Option<f64>,
+    notices: &mut Vec<Notice>,
+) -> Option<OuterForm> {
+    let (n, count) = (settings.tail_power.filter(|&n| n > 0)?, settings.tail_fit_points?);
+    let from = data.r.len().saturating_sub(count);
+    let fit = fit_tail(&data.r[from..], &data.e[from..], n, asymptote);
+    let form = fit.and_then(|fit| fit.form(joint, n));
+    let text = match (fit, form) {
+        (Some(fit), Some(_)) => format!(
+            "The tail in 1/r^{n} was fitted to the last {} points (rms {:.2} cm-1): V_inf lies {:.1} cm-1 above the \
+             last point.",
+            data.r.len() - from,
+            to_per_cm(fit.rms),
+            to_per_cm(fit.asymptote - joint.energy)
+        ),
+        _ => format!(
+            "The last {} points give no tail in 1/r^{n} that binds; the tail follows from the last point alone.",
+            data.r.len() - from
+        ),
+    };
+    let notice = if form.is_some() { Notice::info } else { Notice::caution };
+    notices.push(notice(Code::FittedTail, text).at([joint.r]));
+    form
 }
 
 /// The gate: finite, ascending, enough, with a minimum inside.

@@ -54,6 +54,18 @@ pub struct StudyChoices {
     pub window: Option<Window>,
     /// Energy of the separated atoms in the file's unit and scale.
     pub asymptote: Option<f64>,
+    /// Leading inverse power of the tail.
+    pub tail_power: Option<u32>,
+    /// Outermost points the tail is fitted to.
+    pub tail_fit_points: Option<usize>,
+    /// Whether the levels are solved again with moved tails.
+    pub tail_sensitivity: bool,
+    /// Rotational quantum numbers.
+    pub rotation: Option<Vec<u32>>,
+    /// Λ.
+    pub lambda: Option<u32>,
+    /// Further pairs of isotopes.
+    pub isotopologues: Option<Vec<[crate::species::AtomChoice; 2]>>,
     /// The two atoms whose distance is the bond length, numbered from 1.
     pub bond: Option<[usize; 2]>,
     /// Weights of the points in fits.
@@ -75,7 +87,7 @@ pub struct StudyChoices {
     /// Temperatures of the thermal averages in K.
     pub temperatures_kelvin: Option<Vec<f64>>,
     /// Thermal averages with rotation.
-    pub rotation: bool,
+    pub thermal_rotation: bool,
 }
 
 impl StudyChoices {
@@ -105,6 +117,18 @@ impl StudyChoices {
         set(&mut settings.read.bond, &self.bond);
         set(&mut settings.fits.window, &self.window);
         set(&mut settings.interpolation.asymptote, &self.asymptote);
+        set(&mut settings.interpolation.tail_power, &self.tail_power);
+        set(&mut settings.interpolation.tail_fit_points, &self.tail_fit_points);
+        settings.levels.tail_sensitivity |= self.tail_sensitivity;
+        if let Some(rotation) = &self.rotation {
+            settings.levels.rotation.clone_from(rotation);
+        }
+        if let Some(lambda) = self.lambda {
+            settings.levels.lambda = lambda;
+        }
+        if let Some(isotopologues) = &self.isotopologues {
+            settings.isotopologues.clone_from(isotopologues);
+        }
         if self.atoms.is_some() {
             settings.masses.atoms.clone_from(&self.atoms);
             settings.masses.reduced_mass_u = None;
@@ -125,7 +149,7 @@ impl StudyChoices {
         if let Some(temperatures) = &self.temperatures_kelvin {
             settings.thermal.temperatures_kelvin.clone_from(temperatures);
         }
-        settings.thermal.rotation |= self.rotation;
+        settings.thermal.rotation |= self.thermal_rotation;
         if let Some(charge) = self.charge {
             settings.masses.charge = charge;
         }
@@ -486,6 +510,34 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
             let accepted = "a number in the unit and on the scale of the energy column";
             choices.asymptote = Some(value(parser, "asymptote", accepted, finite)?);
         }
+        "tail-power" => {
+            let power = |t: &str| t.parse().ok().filter(|n| (1..=20).contains(n));
+            choices.tail_power = Some(value(parser, "tail-power", "a whole number from 1 to 20", power)?);
+        }
+        "tail-points" => {
+            let count = |t: &str| t.parse().ok().filter(|n| *n >= 1);
+            choices.tail_fit_points = Some(value(parser, "tail-points", "a whole number from 1 on", count)?);
+        }
+        "tail-sensitivity" => choices.tail_sensitivity = true,
+        "rotation" => {
+            let accepted = "J up to 1000 with commas or a range: 1,2,10 or 0-20";
+            choices.rotation = Some(value(parser, "rotation", accepted, quantum_numbers)?);
+        }
+        "lambda" => {
+            let accepted = "a whole number from 0 to 20";
+            let lambda = |t: &str| t.parse().ok().filter(|n| *n <= 20);
+            choices.lambda = Some(value(parser, "lambda", accepted, lambda)?);
+        }
+        "isotopologues" => {
+            let text = parser.value()?.string()?;
+            let pairs = text.split(';').filter(|pair| !pair.trim().is_empty()).map(parse_atoms);
+            let pairs: Result<Vec<_>, _> = pairs.collect();
+            choices.isotopologues = Some(pairs.map_err(|error| UsageError::Value {
+                option: "isotopologues",
+                found: text.clone(),
+                accepted: format!("pairs with a semicolon between, e.g. 2H,35Cl;1H,37Cl ({error})"),
+            })?);
+        }
         "window" => {
             let accepted = "two bond lengths in angstrom, the smaller first: 0.8,1.2";
             choices.window = Some(value(parser, "window", accepted, window_range)?);
@@ -514,7 +566,7 @@ fn study_choice(name: &str, parser: &mut Parser, choices: &mut StudyChoices) -> 
             };
             choices.temperatures_kelvin = Some(value(parser, "temperatures", &accepted, list)?);
         }
-        "rotation" => choices.rotation = true,
+        "thermal-rotation" => choices.thermal_rotation = true,
         _ => return Ok(false),
     }
     Ok(true)
@@ -636,6 +688,24 @@ fn finite(text: &str) -> Option<f64> {
     text.parse().ok().filter(|v: &f64| v.is_finite())
 }
 
+/// `1,2,10`, `0-20` or both mixed.
+fn quantum_numbers(text: &str) -> Option<Vec<u32>> {
+    const HIGHEST: u32 = 1000;
+    let mut all = Vec::new();
+    for part in text.split(',') {
+        let number = |t: &str| t.trim().parse().ok().filter(|j: &u32| *j <= HIGHEST);
+        let (from, to) = match part.split_once('-') {
+            Some((from, to)) => (number(from)?, number(to)?),
+            None => (number(part)?, number(part)?),
+        };
+        if from > to {
+            return None;
+        }
+        all.extend(from..=to);
+    }
+    Some(all)
+}
+
 fn window_range(text: &str) -> Option<Window> {
     let (from, to) = text.split_once(',')?;
     let (from, to) = (finite(from.trim())?, finite(to.trim())?);
@@ -655,7 +725,8 @@ mod tests {
         let Ok(Command::Study(study)) = parsed(
             "study a.csv b.dat --atoms 2H,35Cl --charge -1 --length-unit BOHR --energy-unit kj/mol \
              --window 0.8,1.4 --asymptote -1.5 --table levels=l.csv --table constants=c.csv \
-             --out f.json --timings --repeat 3 --curve E_X --overwrite",
+             --out f.json --timings --repeat 3 --curve E_X --overwrite --rotation 1,4-6 --lambda 1 \
+             --tail-power 6 --tail-points 5 --tail-sensitivity --isotopologues 2H,35Cl;1H,37Cl",
         ) else {
             panic!("not understood")
         };
@@ -667,6 +738,13 @@ mod tests {
         assert_eq!(settings.read.energy_unit, Some(EnergyUnit::KilojoulePerMole));
         assert_eq!(settings.masses.charge, -1);
         assert_eq!(settings.interpolation.asymptote, Some(-1.5));
+        assert_eq!(
+            (settings.interpolation.tail_power, settings.interpolation.tail_fit_points),
+            (Some(6), Some(5))
+        );
+        assert_eq!(settings.levels.rotating(), [1, 4, 5, 6]);
+        assert!(settings.levels.tail_sensitivity && settings.levels.lambda == 1);
+        assert_eq!(settings.isotopologues.len(), 2);
     }
 
     #[test]
@@ -694,6 +772,10 @@ mod tests {
             ("study a --length-unit feet", "angstrom, bohr, pm, nm"),
             ("study a --window 2,1", "smaller first"),
             ("study a --reduced-mass -3", "positive"),
+            ("study a --rotation 5-2", "0-20"),
+            ("study a --rotation 1,x", "0-20"),
+            ("study a --isotopologues 2H,35Cl;H", "semicolon"),
+            ("study a --tail-power 0", "from 1 to 20"),
             ("study a --table residue=x.csv", "levels, constants"),
             ("study", "at least one file"),
             ("study a --weights=heavy", "noise=SIGMA"),

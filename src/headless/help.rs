@@ -62,8 +62,15 @@ STUDY
   --window-study             repeat the fits over all sensible windows and degrees, find the plateau
                              of omega_e and propose a window on it
   --temperatures T,T,...     of the thermal averages, in K (default: 100 to 2000 K)
-  --rotation                 thermal averages with rotation too, E(v, J) solved for each J, and the
+  --thermal-rotation         thermal averages with rotation too, E(v, J) solved for each J, and the
                              ideal gas at 1 bar
+  --tail-power N             leading inverse power of the tail V_inf - C/r^N beyond the last point
+  --tail-points M            fit that tail to the last M points (V_inf too, unless --asymptote is given)
+  --tail-sensitivity         solve again with moved tails and say how many levels stay
+  --rotation J,J,...         levels with these J too, and the quasi-bound ones with their widths; ranges
+                             such as 0-20 can be given; with several J also a fitted table of Y_kl
+  --lambda L                 Lambda of the electronic state, for the levels with rotation
+  --isotopologues A,B;C,D    other isotopes on the same curve, with shifts: 2H,35Cl;1H,37Cl
   --settings F               all settings at once, as a findings file carries them; other options
                              given beside it win
 
@@ -83,7 +90,8 @@ RESULTS
   --parameter-energy-unit U  unit of well depths and coefficients with --parameters (default cm-1)
   --parameter-length-unit U  unit of lengths and ranges with --parameters (default angstrom)
   --overwrite                replace existing files
-  --timings                  seconds per stage as one JSON line on standard error
+  --timings                  seconds per stage as one JSON line on standard error (the fits run beside
+                             the levels: their entry is what is left to wait for)
   --repeat K                 run each study K times for the timings (their median is given)
 
 FIGURE

@@ -289,6 +289,7 @@ impl Timings {
             "constants",
             "reach",
             "thermal",
+            "further",
             "total",
         ];
         let mut seconds = serde_json::Map::new();

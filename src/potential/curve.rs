@@ -44,6 +44,8 @@ pub struct CurveSettings {
     pub asymptote: Option<f64>,
     /// Leading inverse power n of the tail V_inf − C_n/rⁿ.
     pub tail_power: Option<u32>,
+    /// Fit C_n, and V_inf where `asymptote` does not give it, to this many outermost points; needs `tail_power`.
+    pub tail_fit_points: Option<usize>,
 }
 
 /// Where a function has its minimum and what it is like there, in atomic units.

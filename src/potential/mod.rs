@@ -17,6 +17,7 @@ mod polynomial;
 mod roots;
 mod rydberg;
 pub(crate) mod spline;
+pub(crate) mod tail_fit;
 pub(crate) mod tails;
 mod varshni;
 mod wells;

@@ -6,7 +6,7 @@
 
 use super::Solution;
 use super::chain::{Chain, Factors, dot};
-use super::parallel::in_halves;
+use super::parallel::{WORTH_A_THREAD, in_halves};
 use super::search::Found;
 use super::solve::mesh_points;
 
@@ -46,7 +46,7 @@ impl Solution {
         // At the walls ψ = 0; r = 0 may be one of them.
         let rotation: Vec<f64> =
             r.iter().map(|r| if *r == 0.0 { 0.0 } else { 1.0 / (two_mu * r * r) }).collect();
-        in_halves(&inner.found[..levels.min(inner.found.len())], |part| {
+        in_halves(&inner.found[..levels.min(inner.found.len())], WORTH_A_THREAD, |part| {
             let mut work = Work {
                 rotation: &rotation,
                 nodes: vec![0.0; r.len()],

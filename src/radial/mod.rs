@@ -20,6 +20,7 @@ mod wavefunction;
 
 pub use distortion::Distortion;
 pub use observables::{Observables, turning_points_bohr};
+pub(crate) use parallel::in_halves;
 pub use quasibound::{QuasiBound, quasi_bound};
 
 use crate::estimate::{ErrorSource, Estimate};

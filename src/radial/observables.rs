@@ -1,6 +1,6 @@
 //! What is reported of one level: turning points, probabilities, averages, B_v.
 
-use super::parallel::in_halves;
+use super::parallel::{WORTH_A_THREAD, in_halves};
 use super::{Inner, Solution};
 use crate::potential::Potential;
 use crate::units::to_per_cm;
@@ -133,7 +133,7 @@ impl Solution {
             return Vec::new();
         };
         let all: Vec<usize> = (0..self.states.len()).collect();
-        in_halves(&all, |part| {
+        in_halves(&all, WORTH_A_THREAD, |part| {
             part.iter().map(|&v| self.observables_of(inner, potential, v, (r_e_bohr, v_e_hartree))).collect()
         })
     }

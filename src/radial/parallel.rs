@@ -2,7 +2,7 @@
 //! and each part is computed as it would be alone.
 
 /// Lists shorter than this are not worth a second thread (starting one costs some ten microseconds).
-const WORTH_A_THREAD: usize = 12;
+pub(super) const WORTH_A_THREAD: usize = 12;
 
 /// Both results, the second computed on a thread of its own.
 pub(super) fn side_by_side<A, B: Send>(
@@ -19,9 +19,13 @@ pub(super) fn side_by_side<A, B: Send>(
     })
 }
 
-/// `work` on the two halves of `items`, joined in order.
-pub(super) fn in_halves<T: Sync, R: Send>(items: &[T], work: impl Fn(&[T]) -> Vec<R> + Sync) -> Vec<R> {
-    if items.len() < WORTH_A_THREAD {
+/// `work` on the two halves of `items`, joined in order; on one thread where there are fewer than `least`.
+pub(crate) fn in_halves<T: Sync, R: Send>(
+    items: &[T],
+    least: usize,
+    work: impl Fn(&[T]) -> Vec<R> + Sync,
+) -> Vec<R> {
+    if items.len() < least.max(2) {
         return work(items);
     }
     let (low, high) = items.split_at(items.len() / 2);
@@ -38,7 +42,7 @@ mod tests {
     fn halves_come_back_in_order() {
         for count in [0, 1, 11, 12, 33] {
             let items: Vec<usize> = (0..count).collect();
-            assert_eq!(in_halves(&items, <[usize]>::to_vec), items);
+            assert_eq!(in_halves(&items, 12, <[usize]>::to_vec), items);
         }
     }
 }

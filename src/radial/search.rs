@@ -5,6 +5,8 @@ use super::parallel::side_by_side;
 
 /// Relative size of the unwanted part of a vector at which it is finished.
 const FINISHED: f64 = 1e-13;
+/// Residual of a finished vector as a share of the depth; whatever the neighbours, the energy is right to this.
+const FINISHED_RESIDUAL: f64 = 1e-9;
 /// Levels closer than this share of the depth are kept orthogonal explicitly.
 const DEGENERATE: f64 = 1e-6;
 /// From this number of levels on two threads share the search.
@@ -209,7 +211,10 @@ fn refine(
         unwanted *= (distance / gap).min(10.0);
         // At rounding distance twice over there is nothing more to gain, whatever the neighbours.
         still = if distance <= 4.0 * rounding { still + 1 } else { 0 };
-        if unwanted < FINISHED || (unwanted < 1e-6 && still > 0) || still > 1 {
+        // ‖(H − E) x‖, free of charge: (H − shift) x is the last vector over the norm.
+        let residual = (1.0 / norm2 - (energy - shift).powi(2)).max(0.0).sqrt();
+        let settled = residual <= FINISHED_RESIDUAL * work.scale;
+        if settled && (unwanted < FINISHED || (unwanted < 1e-6 && still > 0)) || still > 1 {
             let right = if energy > shift { v } else { v + 1 };
             let sure = factors.below == right
                 || (distance <= 16.0 * rounding && (factors.below == v || factors.below == v + 1));
@@ -272,6 +277,7 @@ fn orthogonalise(levels: &mut [Found], width: f64) {
 /// Refines again where two levels turned out closer than was assumed.
 fn polish_clusters(chain: &Chain, factors: &mut Factors, levels: &mut [Found], scale: f64) {
     let rounding = 4.0 * f64::EPSILON * scale;
+    let mut image = vec![0.0; chain.len()];
     for i in 0..levels.len() {
         let above = levels.get(i + 1).map_or(f64::INFINITY, |l| l.energy - levels[i].energy);
         let below = if i == 0 { f64::INFINITY } else { levels[i].energy - levels[i - 1].energy };
@@ -297,7 +303,10 @@ fn polish_clusters(chain: &Chain, factors: &mut Factors, levels: &mut [Found], s
                 break;
             }
         }
-        levels[i].gap = gap;
+        let level = &mut levels[i];
+        chain.apply(&level.vector, level.energy, &mut image);
+        level.energy += dot(&level.vector, &image);
+        level.gap = gap;
     }
 }
 

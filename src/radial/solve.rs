@@ -18,8 +18,8 @@ pub(super) const DEGREE: usize = 14;
 const LEAST_BINDING: f64 = 1e-15;
 /// No accuracy below this is attempted: rounding.
 const LEAST_ACCURACY: f64 = 3e-12;
-/// Rounding of an energy, relative to the depth searched (measured: up to 1e-12 on random functions).
-const ROUNDING: f64 = 1e-12;
+/// Rounding of an energy, relative to the depth searched (measured: up to 3e-12 on long tails).
+const ROUNDING: f64 = 2e-12;
 /// Accuracy of the potential's polynomials in units of the accuracy of the energies.
 pub(super) const POTENTIAL_SHARE: f64 = 30.0;
 /// Rounds of refinement when the estimated error exceeds the accuracy asked for.

@@ -59,46 +59,47 @@ fn polynomial(v: &[f64], y: &[f64], degree: usize) -> Option<Vec<Estimate>> {
     Some(coefficients.iter().enumerate().map(estimate).collect())
 }
 
+/// A level that carries nothing but what is given.
+#[cfg(test)]
+pub(crate) fn made_level(v: usize, energy: f64, b: f64, leans: bool) -> Level {
+    Level {
+        v,
+        j: 0,
+        energy_per_cm: energy,
+        energy_error_per_cm: None,
+        energy_error_source: None,
+        below_asymptote_per_cm: None,
+        b_v_per_cm: b,
+        d_v_per_cm: 0.0,
+        h_v_per_cm: None,
+        inner_turning_point_bohr: 0.0,
+        outer_turning_point_bohr: 0.0,
+        mean_r_bohr: 0.0,
+        mean_square_x_bohr2: 0.0,
+        forbidden_probability: 0.0,
+        inside_reach: None,
+        outside_scan: 0.0,
+        leans_on_tail: leans,
+        minus_harmonic_per_cm: 0.0,
+        minus_morse_per_cm: None,
+        wavefunction: crate::radial::Wavefunction {
+            degree: 1,
+            r_bohr: Vec::new().into(),
+            weight_bohr: Vec::new().into(),
+            psi: Vec::new(),
+        },
+    }
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::radial::Wavefunction;
-
-    fn level(v: usize, energy: f64, b: f64, leans: bool) -> Level {
-        Level {
-            v,
-            j: 0,
-            energy_per_cm: energy,
-            energy_error_per_cm: None,
-            energy_error_source: None,
-            below_asymptote_per_cm: None,
-            b_v_per_cm: b,
-            d_v_per_cm: 0.0,
-            h_v_per_cm: None,
-            inner_turning_point_bohr: 0.0,
-            outer_turning_point_bohr: 0.0,
-            mean_r_bohr: 0.0,
-            mean_square_x_bohr2: 0.0,
-            forbidden_probability: 0.0,
-            inside_reach: None,
-            outside_scan: 0.0,
-            leans_on_tail: leans,
-            minus_harmonic_per_cm: 0.0,
-            minus_morse_per_cm: None,
-            wavefunction: Wavefunction {
-                degree: 1,
-                r_bohr: Vec::new().into(),
-                weight_bohr: Vec::new().into(),
-                psi: Vec::new(),
-            },
-        }
-    }
 
     fn ladder(lean_from: usize) -> Vec<Level> {
         let energy = |n: f64| -0.3 + 2170.0 * n - 13.3 * n * n + 0.012 * n * n * n;
         (0..8)
             .map(|v| (v, v as f64 + 0.5))
-            .map(|(v, n)| level(v, energy(n), 1.93 - 0.0175 * n, v >= lean_from))
+            .map(|(v, n)| made_level(v, energy(n), 1.93 - 0.0175 * n, v >= lean_from))
             .collect()
     }
 

@@ -1,8 +1,12 @@
 //! Spectroscopic constants from derivatives and from levels.
 
+mod dissociation;
+mod dunham_table;
 mod from_derivatives;
 mod from_levels;
 
+pub use dissociation::{BirgeSponer, NearDissociation, birge_sponer, inverse_power_tail, near_dissociation};
+pub use dunham_table::{DunhamChoice, DunhamTable, dunham_table};
 pub use from_derivatives::{DunhamConstants, dunham, from_derivatives};
 pub use from_levels::from_levels;
 

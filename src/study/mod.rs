@@ -3,9 +3,13 @@
 
 mod derived;
 mod fits;
+mod isotopologues;
 mod levels;
 mod points;
+mod properties;
 mod remarks;
+mod rotation;
+mod support;
 #[cfg(test)]
 mod tail_checks;
 mod tail_spread;
@@ -20,8 +24,8 @@ use crate::reach;
 use crate::scan::Scan;
 use crate::scan::error::ScanError;
 use crate::settings::{Settings, SettingsError};
-use crate::species::{self, SpeciesError};
-use crate::spectroscopy::{self, Constants, LevelSet};
+use crate::species::{self, Masses, SpeciesError};
+use crate::spectroscopy::{self, Constants, DunhamChoice, LevelSet};
 use std::sync::Arc;
 use thiserror::Error;
 
@@ -68,6 +72,8 @@ pub enum Stage {
     Reach,
     /// The thermal averages.
     Thermal,
+    /// Rotation, quasi-bound levels, averages, isotopologues, Y_kl: mostly on demand.
+    Further,
 }
 
 impl Stage {
@@ -82,6 +88,7 @@ impl Stage {
             Self::Constants => "constants",
             Self::Reach => "reach",
             Self::Thermal => "thermal",
+            Self::Further => "further",
         }
     }
 }
@@ -109,6 +116,7 @@ pub fn study_observed(
     settings.checked()?;
     let column = &scan.energies[scan.curve_index(settings.curve.as_deref())?];
     let masses = species::masses(&settings.masses, scan.atoms.as_ref(), scan.charge)?;
+    let pairs = isotopologues::masses(settings, scan.charge)?;
     let (points, mut notices) = points::points(scan, column, settings)?;
     after(Stage::Points);
 
@@ -132,6 +140,14 @@ pub fn study_observed(
         comparison: Comparison::default(),
         window_study: None,
         levels: Vec::new(),
+        rotational_levels: Vec::new(),
+        quasi_bound: None,
+        property_averages: Vec::new(),
+        isotopologues: Vec::new(),
+        level_support: None,
+        dunham_table: None,
+        birge_sponer: None,
+        near_dissociation: None,
         constants: Constants::default(),
         reach: None,
         thermal: Vec::new(),
@@ -152,6 +168,8 @@ pub fn study_observed(
     after(Stage::Curve);
     if findings.curve.is_some() {
         study_curve(&mut findings, after);
+        further(&mut findings, scan, &pairs);
+        after(Stage::Further);
     }
     if let Some(curve) = findings.curve.clone() {
         remarks::remark(&mut findings, &curve, column);
@@ -181,6 +199,32 @@ fn doubt(
     if let Ok((without, _)) = build_curve(&rest, asymptote_hartree, &settings.interpolation) {
         curve.set_without_doubtful(&without);
     }
+}
+
+/// What the levels lead to, and what is computed only on demand.
+fn further(findings: &mut Findings, scan: &Scan, pairs: &[Masses]) {
+    let (Some(curve), Some(masses)) = (findings.curve.clone(), &findings.masses) else { return };
+    let mass_me = masses.reduced_mass_me;
+    isotopologues::fill(findings, &curve, pairs);
+    if findings.levels.is_empty() {
+        return;
+    }
+    properties::fill(findings, scan);
+    support::fill(findings, &curve, mass_me);
+    let reach = reach::energy_and_force_reach(&curve, &findings.settings.reach).map(|(energy, _)| energy);
+    rotation::fill(findings, &curve, mass_me, reach.as_ref());
+    let settings = &findings.settings.levels;
+    let choice = DunhamChoice {
+        highest_v: settings.dunham_highest_v,
+        vibration_degree: settings.dunham_vibration_degree,
+        rotation_degree: settings.dunham_rotation_degree,
+        lambda: settings.lambda,
+    };
+    findings.dunham_table =
+        spectroscopy::dunham_table(findings.levels.iter().chain(&findings.rotational_levels), choice);
+    findings.birge_sponer = spectroscopy::birge_sponer(&findings.levels);
+    findings.near_dissociation = spectroscopy::inverse_power_tail(&curve)
+        .and_then(|(limit, tail)| spectroscopy::near_dissociation(&findings.levels, limit, tail, mass_me));
 }
 
 /// Everything that needs a curve.

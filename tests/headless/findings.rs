@@ -31,6 +31,11 @@ pub(crate) fn assert_valid(validator: &jsonschema::Validator, value: &Value, wha
     assert!(errors.is_empty(), "{what}: {}", errors.join("\n"));
 }
 
+/// Fails with the first violations of the schema.
+pub fn assert_satisfies_schema(value: &Value, what: &str) {
+    assert_valid(&schema(), value, what);
+}
+
 #[test]
 fn every_scan_gives_findings_that_satisfy_the_schema() {
     let validator = schema();

@@ -194,7 +194,7 @@ fn thermal_averages_by_option_and_as_a_table() {
         "H,Cl",
         "--temperatures",
         "150,298.15",
-        "--rotation",
+        "--thermal-rotation",
         "--table",
         &format!("thermal={}", table.to_str().expect("UTF-8")),
     ]);

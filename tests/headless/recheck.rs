@@ -15,7 +15,7 @@ fn prepared(folder: &Path) -> (PathBuf, PathBuf) {
         "7Li,1H",
         "--curve",
         "all",
-        "--rotation",
+        "--thermal-rotation",
         "--temperatures",
         "100,298.15",
         "--out",

@@ -4,7 +4,9 @@
 
 mod experiment;
 mod fits;
+mod h2plus;
 mod levels;
+mod rotation;
 mod scans;
 mod strd;
 mod thermal;
