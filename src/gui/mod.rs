@@ -15,6 +15,7 @@ pub mod look;
 pub mod meaning;
 pub mod painter;
 mod panels;
+mod paper;
 mod plot;
 pub mod program;
 mod run;
@@ -26,5 +27,6 @@ mod take;
 mod view;
 pub mod watch;
 
+pub use paper::drawing_to_png;
 pub use program::Program;
 pub use run::run;

@@ -221,6 +221,8 @@ pub struct FigureArgs {
     pub subject: Subject,
     /// The paper.
     pub paper: Paper,
+    /// Dots per inch of a PNG picture.
+    pub dots_per_inch: f64,
     /// Replace an existing file.
     pub overwrite: bool,
 }
@@ -265,7 +267,7 @@ pub enum UsageError {
         count: usize,
     },
     /// A picture without a place to go.
-    #[error("figure: say where to with --out F.svg or F.pdf")]
+    #[error("figure: say where to with --out F.svg, F.pdf or F.png")]
     NoOut,
     /// An option that belongs to the other command.
     #[error("--{option} belongs to {command}")]
@@ -342,6 +344,7 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
             out: figure.out.ok_or(UsageError::NoOut)?,
             subject: figure.subject.unwrap_or(Subject::Curve),
             paper: figure.paper,
+            dots_per_inch: figure.dots_per_inch.unwrap_or(300.0),
             overwrite,
         })),
         Verb::Recheck => Command::Recheck(Box::new(RecheckArgs { findings: one("recheck", files)?, source })),
@@ -385,7 +388,7 @@ impl Verb {
                 "force-constant-unit",
                 "convention",
             ],
-            Self::Figure => &["out", "what", "view", "width-mm", "font-pt", "theme"],
+            Self::Figure => &["out", "what", "view", "width-mm", "font-pt", "theme", "dpi"],
             Self::Recheck => &["source"],
         }
     }
@@ -406,6 +409,7 @@ struct FigureOptions {
     out: Option<PathBuf>,
     subject: Option<Subject>,
     paper: Paper,
+    dots_per_inch: Option<f64>,
 }
 
 /// An option that no command has, or that another one has.
@@ -444,6 +448,10 @@ fn figure_option(name: &str, parser: &mut Parser, figure: &mut FigureOptions) ->
         "theme" => {
             figure.paper.dark =
                 value(parser, "theme", "light, dark", |t| named(&[("light", false), ("dark", true)], t))?;
+        }
+        "dpi" => {
+            figure.dots_per_inch =
+                Some(value(parser, "dpi", "a number from 50 to 1200", range(50.0, 1200.0))?);
         }
         _ => return Ok(false),
     }

@@ -3,7 +3,7 @@
 use super::args::FigureArgs;
 use super::input::Input;
 use super::run_study::starting_settings;
-use crate::figure::drawing::drawing;
+use crate::figure::drawing::{Drawing, drawing};
 use crate::figure::{pdf, svg};
 use crate::files::{self, Replace};
 use crate::notice::Severity;
@@ -17,6 +17,7 @@ const IMPOSSIBLE: u8 = 4;
 enum Format {
     Svg,
     Pdf,
+    Png,
 }
 
 /// Runs the command; returns the exit status.
@@ -34,8 +35,9 @@ fn picture(arguments: &FigureArgs) -> Result<(), (u8, String)> {
     let format = match arguments.out.extension().and_then(|e| e.to_str()).map(str::to_lowercase).as_deref() {
         Some("svg") => Format::Svg,
         Some("pdf") => Format::Pdf,
+        Some("png") => Format::Png,
         _ => {
-            let text = format!("{}: a picture ends in .svg or .pdf", arguments.out.display());
+            let text = format!("{}: a picture ends in .svg, .pdf or .png", arguments.out.display());
             return Err((2, text));
         }
     };
@@ -52,7 +54,18 @@ fn picture(arguments: &FigureArgs) -> Result<(), (u8, String)> {
     let bytes = match format {
         Format::Svg => svg::svg(&drawing).into_bytes(),
         Format::Pdf => pdf::pdf(&drawing),
+        Format::Png => png(&drawing, arguments.dots_per_inch).map_err(|m| (NOT_READ, m))?,
     };
     let replace = if arguments.overwrite { Replace::Anything } else { Replace::Nothing };
     files::write(&arguments.out, &bytes, replace).map_err(|e| (NOT_READ, e.to_string()))
+}
+
+#[cfg(feature = "gui")]
+fn png(drawing: &Drawing, dots_per_inch: f64) -> Result<Vec<u8>, String> {
+    crate::gui::drawing_to_png(drawing, dots_per_inch)
+}
+
+#[cfg(not(feature = "gui"))]
+fn png(_drawing: &Drawing, _dots_per_inch: f64) -> Result<Vec<u8>, String> {
+    Err("this build has no painter for PNG pictures; write .svg or .pdf, or build with the window".to_owned())
 }

@@ -7,7 +7,7 @@ parabound: from a bond scan to constants, levels and the reach of the parabola
 USAGE
   parabound [FILE...]                  the window, with these scans or the bundled sample
   parabound study FILE... [OPTIONS]    a summary on standard output, findings as JSON and tables
-  parabound figure FILE --out F.svg    a picture for paper: SVG or PDF by the ending
+  parabound figure FILE --out F.svg    a picture for paper: SVG, PDF or PNG by the ending
   parabound recheck FINDINGS           compute a findings file again from its source and compare
 
 WINDOW OPTIONS
@@ -100,6 +100,7 @@ FIGURE
   --width-mm 140             width; the height follows
   --font-pt 9                font size
   --theme light|dark         colours (default: light, on white)
+  --dpi 300                  of a PNG picture (needs the build with the window)
   The study's options work here too.
 
 RECHECK

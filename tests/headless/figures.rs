@@ -116,6 +116,12 @@ fn refusals_of_pictures() {
     assert_eq!(status(&["none.csv", "--out", &at("f.svg")]), Some(3));
     assert_eq!(status(&[path, "--out", &at("f.svg"), "--what", "ladders"]), Some(4), "no mass, no levels");
     assert_eq!(status(&[path, "--out", &at("f.svg"), "--width-mm", "40", "--font-pt", "20"]), Some(4));
+    let png = if cfg!(feature = "gui") { Some(0) } else { Some(3) };
+    assert_eq!(
+        status(&[path, "--out", &at("f.png"), "--dpi", "72"]),
+        png,
+        "painted where there is a painter"
+    );
     // Without levels there still is a curve; and nothing is replaced unasked.
     assert_eq!(status(&[path, "--out", &at("f.svg")]), Some(0));
     assert_eq!(status(&[path, "--out", &at("f.svg")]), Some(3));
