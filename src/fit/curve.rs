@@ -32,6 +32,9 @@ const LEAVE_ONE_OUT_POINTS: usize = 200;
 const LEAVE_ONE_OUT_NEIGHBOURS: usize = 12;
 /// Spread of ω_e x_e over the interpolations, relative, above which there is a caution.
 const SPREAD_CAUTION: f64 = 0.05;
+/// Size of 5 a1²/4 − a2 below which a spread is no matter of per cent: bonds have 1 to 10 (a Morse function with
+/// a r_e = 2 has 7/3), so 0.05 is a parabola to all that a scan can say.
+const LEAST_ANHARMONICITY: f64 = 0.05;
 
 /// The points of a curve, energies counted from the lowest.
 struct Data {
@@ -106,7 +109,7 @@ pub fn build_curve(
     };
 
     let noise = noise_hartree(&data.r, &data.e);
-    let (alternatives, other) = minimum::alternatives(&data, interpolant.recipe(), &local);
+    let found = minimum::alternatives(&data, interpolant.recipe(), &local);
     let noise_variants = noise.map_or_else(Vec::new, |n| minimum::noise_variants(&data, &interpolant, n));
     let recipe = interpolant.recipe();
     let polynomial = data.r.len() < POINTS_FOR_BASE && recipe.degree == data.r.len() - 1;
@@ -127,8 +130,10 @@ pub fn build_curve(
         outer,
         outer_joint,
         outer_assumed,
-        alternatives,
-        other: Arc::new(other),
+        alternatives: found.minima,
+        other: Arc::new(found.other),
+        other_minimum: found.other_minimum,
+        polynomials: found.polynomials.into(),
         points: data.r.as_slice().into(),
         noise_variants,
         noise_hartree: noise,
@@ -333,7 +338,8 @@ fn spread_caution(curve: &ScanCurve) -> Option<Notice> {
     let values = curve.alternatives.iter().filter_map(anharmonicity);
     let own = anharmonicity(&curve.local).filter(|v| v.is_finite())?;
     let (low, high) = values.filter(|v| v.is_finite()).fold((own, own), |(l, h), v| (l.min(v), h.max(v)));
-    let spread = (high - low) / own.abs();
+    // An anharmonicity of nothing (a parabola) has no relative spread.
+    let spread = (high - low) / own.abs().max(LEAST_ANHARMONICITY / curve.local.r_e_bohr.powi(2));
     (spread > SPREAD_CAUTION).then(|| {
         let text = format!(
             "Admissible interpolations of the scan disagree about the anharmonicity by {:.0} %. Points closer \

@@ -2,6 +2,7 @@
 
 use super::Potential;
 use super::interpolant::Interpolant;
+use super::local_polynomial::LocalPolynomial;
 pub use super::tails::{InnerTail, OuterTail};
 use super::tails::{Joint, OuterForm};
 use crate::estimate::Estimate;
@@ -118,6 +119,8 @@ struct Body {
     interpolant: Arc<Interpolant>,
     /// The interpolation in the other variable.
     other: Arc<Interpolant>,
+    other_minimum: Option<LocalDerivatives>,
+    polynomials: Arc<[LocalPolynomial]>,
     zero: f64,
     v_e: f64,
     inner: InnerTail,
@@ -143,6 +146,8 @@ pub(crate) struct CurveParts {
     pub outer_assumed: bool,
     pub alternatives: Vec<LocalDerivatives>,
     pub other: Arc<Interpolant>,
+    pub other_minimum: Option<LocalDerivatives>,
+    pub polynomials: Arc<[LocalPolynomial]>,
     pub points: Arc<[f64]>,
     pub noise_variants: Vec<LocalDerivatives>,
     pub noise_hartree: Option<f64>,
@@ -173,6 +178,8 @@ impl ScanCurve {
             body: Body {
                 interpolant: parts.interpolant,
                 other: parts.other,
+                other_minimum: parts.other_minimum,
+                polynomials: parts.polynomials,
                 zero: parts.zero,
                 v_e: parts.local.v_e_hartree,
                 inner: parts.inner,
@@ -222,7 +229,7 @@ impl ScanCurve {
     /// interpolation error of the level.
     pub fn other_interpolation_hartree(&self, r_bohr: f64) -> f64 {
         let (from, to) = self.scan_range_bohr;
-        let Some(minimum) = self.alternatives.first() else { return 0.0 };
+        let Some(minimum) = &self.body.other_minimum else { return 0.0 };
         if !(from..=to).contains(&r_bohr) {
             return 0.0;
         }

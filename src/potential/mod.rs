@@ -10,6 +10,7 @@ mod harmonic;
 mod hulburt_hirschfelder;
 pub(crate) mod interpolant;
 mod jet;
+pub(crate) mod local_polynomial;
 mod morse;
 mod parametric;
 mod polynomial;
@@ -196,7 +197,7 @@ impl Model {
     pub fn closed_form_levels_hartree(&self, reduced_mass_me: f64, count: usize) -> Option<Vec<f64>> {
         match self {
             Self::Harmonic(model) => Some(model.levels_hartree(reduced_mass_me, count)),
-            Self::Morse(model) => Some(model.levels_hartree(reduced_mass_me)),
+            Self::Morse(model) => Some(model.levels_hartree(reduced_mass_me, count)),
             _ => None,
         }
     }

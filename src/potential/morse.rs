@@ -22,15 +22,16 @@ impl Morse {
         if edge > 0.0 { edge.ceil() as usize } else { 0 }
     }
 
-    /// The bound levels of the full-line Morse oscillator in hartree above its minimum, v ascending:
+    /// The lowest `count` bound levels of the full-line Morse oscillator in hartree above its minimum, v ascending:
     /// E_v = ω (v + ½) − (a²/2μ)(v + ½)², ω = a sqrt(2 D_e/μ).
     ///
-    /// The full line reaches through r = 0; for molecules the difference is far below 1e-9 cm⁻¹.
-    pub fn levels_hartree(&self, reduced_mass_me: f64) -> Vec<f64> {
+    /// The full line reaches through r = 0; for molecules the difference is far below 1e-9 cm⁻¹. A nearly harmonic
+    /// function binds any number of levels, so `count` has to end the list.
+    pub fn levels_hartree(&self, reduced_mass_me: f64, count: usize) -> Vec<f64> {
         let a = self.a_per_bohr;
         let omega = a * (2.0 * self.well_depth_hartree / reduced_mass_me).sqrt();
         let anharmonicity = a * a / (2.0 * reduced_mass_me);
-        (0..self.bound_levels(reduced_mass_me))
+        (0..self.bound_levels(reduced_mass_me).min(count))
             .map(|v| {
                 let n = v as f64 + 0.5;
                 n * (omega - anharmonicity * n)
@@ -139,7 +140,7 @@ mod tests {
     fn levels_agree_with_the_form_counted_from_the_limit() {
         let (morse, mu) = (example(), 918.0);
         let lambda = (2.0 * mu * morse.well_depth_hartree).sqrt() / morse.a_per_bohr;
-        let levels = morse.levels_hartree(mu);
+        let levels = morse.levels_hartree(mu, usize::MAX);
         assert_eq!(levels.len(), (lambda + 0.5).floor() as usize);
         for (v, level) in levels.iter().enumerate() {
             let gap = lambda - v as f64 - 0.5;
@@ -147,6 +148,15 @@ mod tests {
             assert!((level - want).abs() < 1e-15, "{level} against {want}");
         }
         let few = Morse { well_depth_hartree: 1e-9, ..morse };
-        assert!(few.levels_hartree(mu).is_empty());
+        assert!(few.levels_hartree(mu, 40).is_empty());
+    }
+
+    /// Nearly harmonic, or a mass beyond all measure: no more rungs than asked for.
+    #[test]
+    fn a_ladder_without_end_stops_at_the_count() {
+        let nearly_harmonic = Morse { well_depth_hartree: 1e9, a_per_bohr: 1e-5, ..example() };
+        for (morse, mu) in [(nearly_harmonic, 918.0), (example(), 1e300), (example(), f64::MAX)] {
+            assert_eq!(morse.levels_hartree(mu, 40).len(), 40);
+        }
     }
 }

@@ -5,15 +5,22 @@ use crate::estimate::{ErrorSource, Estimate};
 use crate::radial::Level;
 use nalgebra::{DMatrix, DVector};
 
+/// Fewest levels that constants are taken from.
+const LEVELS_NEEDED: usize = 4;
+
 /// Least squares of E(v, 0) by a polynomial in (v + ½) with a free constant, and of B_v by a straight line.
 ///
 /// E = c + ω_e (v + ½) − ω_e x_e (v + ½)² + ω_e y_e (v + ½)³, B_v = B_e − α_e (v + ½), over v = 0 .. `highest_v`
 /// as far as the levels do not lean on a tail; the degree falls to one less than the number of levels.
 /// Standard errors are those of the fit, none when it is exact (as many coefficients as levels). `levels`:
-/// rotationless, v ascending from 0, energies in cm⁻¹. None with fewer than two levels.
+/// rotationless, v ascending from 0, energies in cm⁻¹. None with fewer than four levels: two would make ω_e the
+/// fundamental and three leave out the second anharmonicity that the other constants lean on.
 pub fn from_levels(levels: &[Level], set: LevelSet) -> Option<LevelConstants> {
     let used: Vec<&Level> =
         levels.iter().take(set.highest_v.saturating_add(1)).take_while(|l| !l.leans_on_tail).collect();
+    if used.len() < LEVELS_NEEDED {
+        return None;
+    }
     let column = |f: fn(&Level) -> f64| -> Vec<f64> { used.iter().map(|l| f(l)).collect() };
     let (v, energies, b) = (column(|l| l.v as f64), column(|l| l.energy_per_cm), column(|l| l.b_v_per_cm));
     let fitted = polynomial(&v, &energies, set.degree)?;
@@ -107,18 +114,20 @@ mod tests {
         assert!(found.omega_e_per_cm.std_error.unwrap() < 1e-7);
     }
 
-    /// Leaning levels are left out; the degree falls, and an exact fit has no standard error.
+    /// Leaning levels are left out; an exact fit has no standard error, and three levels give no constants: with
+    /// two, "ω_e" would be the fundamental.
     #[test]
-    fn fewer_levels_lower_the_degree() {
-        let found = from_levels(&ladder(3), LevelSet { highest_v: 4, degree: 3 }).unwrap();
-        assert_eq!(found.levels_used, [0, 1, 2]);
-        assert_eq!(found.omega_e_y_e_per_cm, None);
+    fn four_levels_are_needed() {
+        let set = LevelSet { highest_v: 4, degree: 3 };
+        let found = from_levels(&ladder(4), set).unwrap();
+        assert_eq!(found.levels_used, [0, 1, 2, 3]);
         assert_eq!(found.omega_e_per_cm.std_error, None);
-        // Through three levels: second difference −2 ω_e x_e, with the cubic term's share 0.012 * 3 * 1.5.
-        assert!((found.omega_e_x_e_per_cm.unwrap().value - (13.3 - 0.012 * 4.5)).abs() < 1e-9);
+        assert!((found.omega_e_x_e_per_cm.unwrap().value - 13.3).abs() < 1e-8);
         assert!(found.b_e_per_cm.unwrap().std_error.is_some());
-        assert!(from_levels(&ladder(1), LevelSet { highest_v: 4, degree: 3 }).is_none());
-        assert!(from_levels(&[], LevelSet { highest_v: 4, degree: 3 }).is_none());
+        for few in 0..=3 {
+            assert!(from_levels(&ladder(few), set).is_none());
+        }
+        assert!(from_levels(&[], set).is_none());
     }
 
     /// One value off by δ on five levels of a cubic: the fit's error is that of the fourth difference,

@@ -5,13 +5,22 @@ use crate::estimate::Estimate;
 use crate::fit::Fit;
 use crate::potential::curve::LocalDerivatives;
 use crate::potential::{Family, Model, Parametric as _, Potential as _};
-use crate::radial::{RadialRequest, bound_states};
+use crate::radial::{MOST_LEVELS, RadialRequest, bound_states};
 use crate::spectroscopy::dunham;
 use crate::units::to_per_cm;
 
 /// Ladders without an end (harmonic, rising polynomials) are listed up to this many rungs: far beyond what a
 /// fit near the minimum can say.
 const RUNGS: usize = 40;
+
+/// How many levels a function in closed form is asked for: a Morse ladder ends by itself, but a nearly harmonic one
+/// only after millions.
+const fn rungs(family: Family) -> usize {
+    match family {
+        Family::Morse => MOST_LEVELS,
+        _ => RUNGS,
+    }
+}
 
 /// Names of the constants, in the order in which they are listed.
 pub const NAMES: [&str; 6] = ["omega_e", "omega_e_x_e", "b_e", "alpha_e", "d_e", "zero_point_energy"];
@@ -71,9 +80,10 @@ fn from_derivatives(fit: &Fit, mass_me: f64) -> Vec<Named> {
 /// Errors: closed forms by differences; solved levels by ∂E/∂p = ⟨ψ|∂V/∂p|ψ⟩ [Hellmann 1937, Feynman 1939], which
 /// needs no second solution.
 fn levels(fit: &Fit, mass_me: f64) -> Vec<Estimate> {
-    if fit.model.closed_form_levels_hartree(mass_me, RUNGS).is_some() {
+    let rungs = rungs(fit.model.family());
+    if fit.model.closed_form_levels_hartree(mass_me, rungs).is_some() {
         let closed = |m: &Model| {
-            m.closed_form_levels_hartree(mass_me, RUNGS).map(|l| l.into_iter().map(to_per_cm).collect())
+            m.closed_form_levels_hartree(mass_me, rungs).map(|l| l.into_iter().map(to_per_cm).collect())
         };
         let gradient = fit.gradient_of(&closed);
         let levels: Vec<f64> = closed(&fit.model).unwrap_or_default();

@@ -3,12 +3,10 @@
 use super::Data;
 use crate::potential::curve::{LocalDerivatives, SplineVariable};
 use crate::potential::interpolant::{Interpolant, Recipe};
-use nalgebra::{DMatrix, DVector};
+use crate::potential::local_polynomial::LocalPolynomial;
 
 /// Parts into which an interval between points is cut when stationary points are looked for.
 const PARTS: usize = 8;
-/// Half width of the window of the local polynomials, relative to r_e.
-const LOCAL_WINDOW: f64 = 0.2;
 /// Degrees of the local polynomials.
 const LOCAL_DEGREES: [usize; 2] = [6, 8];
 /// Changing an energy further from the lowest point than this many points does not move the minimum
@@ -49,26 +47,32 @@ fn root_of_slope(f: &impl Fn(f64) -> [f64; 5], mut a: f64, mut b: f64) -> f64 {
 }
 
 /// All stationary points within the scan, ascending.
+///
+/// A slope of exactly zero at a sample (usual in symmetric scans) is a stationary point where the slope has
+/// different signs on its two sides; a flat piece counts once, at its middle.
 pub(super) fn stationary_points(f: impl Fn(f64) -> [f64; 5], r: &[f64]) -> Vec<StationaryPoint> {
     let mut found = Vec::new();
-    let mut before = f(r[0])[1];
+    // The last sample with a slope, and the first and last of those without one since.
+    let mut before = (r[0], f(r[0])[1]);
+    let mut flat: Option<(f64, f64, usize)> = None;
     for (interval, pair) in r.windows(2).enumerate() {
         let step = (pair[1] - pair[0]) / PARTS as f64;
         for part in 1..=PARTS {
             let end = if part == PARTS { pair[1] } else { pair[0] + step * part as f64 };
-            let after = f(end)[1];
-            if before != 0.0 && after != 0.0 && (before < 0.0) != (after < 0.0) {
-                let start = pair[0] + step * (part - 1) as f64;
-                found.push(StationaryPoint {
-                    r: root_of_slope(&f, start, end),
-                    maximum: before > 0.0,
-                    interval,
-                });
+            let slope = f(end)[1];
+            if slope == 0.0 {
+                let (from, _, first) = flat.unwrap_or((end, end, interval));
+                flat = Some((from, end, first));
+                continue;
             }
-            // A slope of exactly zero at a sample point: the sign before it stands.
-            if after != 0.0 {
-                before = after;
+            if before.1 != 0.0 && (before.1 < 0.0) != (slope < 0.0) {
+                let (r, interval) = match flat {
+                    Some((from, to, first)) => (from + 0.5 * (to - from), first),
+                    None => (root_of_slope(&f, before.0, end), interval),
+                };
+                found.push(StationaryPoint { r, maximum: before.1 > 0.0, interval });
             }
+            (before, flat) = ((end, slope), None);
         }
     }
     found
@@ -81,51 +85,33 @@ pub(super) fn minimum_between(f: impl Fn(f64) -> [f64; 5], from: f64, to: f64) -
     candidates.min_by(|a, b| a.v_e_hartree.total_cmp(&b.v_e_hartree))
 }
 
+/// Other admissible interpolations of the scan.
+pub(super) struct Alternatives {
+    /// Their minima.
+    pub minima: Vec<LocalDerivatives>,
+    /// The spline in the other variable.
+    pub other: Interpolant,
+    /// Its minimum; none where it has none in the bracket.
+    pub other_minimum: Option<LocalDerivatives>,
+    /// The local polynomials.
+    pub polynomials: Vec<LocalPolynomial>,
+}
+
 /// The minimum by the spline in the other variable and by local polynomials, where the scan allows.
-/// The spline in the other variable comes along, for the spread of the levels.
-pub(super) fn alternatives(
-    data: &Data,
-    recipe: &Recipe,
-    local: &LocalDerivatives,
-) -> (Vec<LocalDerivatives>, Interpolant) {
+/// The spline in the other variable comes along with its own minimum, where it has one, for the spread of the
+/// levels.
+pub(super) fn alternatives(data: &Data, recipe: &Recipe, local: &LocalDerivatives) -> Alternatives {
     let other = match recipe.variable {
         SplineVariable::R => SplineVariable::Y,
         SplineVariable::Y => SplineVariable::R,
     };
     let spline = Recipe { variable: other, ..*recipe }.through(&data.r, &data.e);
     let (from, to) = data.bracket();
-    let mut found = Vec::new();
-    found.extend(minimum_between(|r| spline.derivatives(r), from, to));
-    found.extend(LOCAL_DEGREES.iter().filter_map(|&degree| by_polynomial(data, local.r_e_bohr, degree)));
-    (found, spline)
-}
-
-/// The minimum of the least-squares polynomial of `degree` over |x| ≤ 0.2 r_e; none unless there are more
-/// points than coefficients.
-fn by_polynomial(data: &Data, r_e: f64, degree: usize) -> Option<LocalDerivatives> {
-    let half = LOCAL_WINDOW * r_e;
-    let inside: Vec<usize> = (0..data.r.len()).filter(|&i| (data.r[i] - r_e).abs() <= half).collect();
-    if inside.len() <= degree + 1 {
-        return None;
-    }
-    let matrix = DMatrix::from_fn(inside.len(), degree + 1, |row, power| {
-        ((data.r[inside[row]] - r_e) / half).powi(power as i32)
-    });
-    let energies = DVector::from_iterator(inside.len(), inside.iter().map(|&i| data.e[i]));
-    let qr = matrix.qr();
-    let coefficients = qr.r().solve_upper_triangular(&(qr.q().transpose() * energies))?;
-    let derivatives = |r: f64| {
-        let t = (r - r_e) / half;
-        let mut s: Vec<f64> = coefficients.iter().copied().collect();
-        for k in 0..5 {
-            for j in (k..degree).rev() {
-                s[j] += t * s[j + 1];
-            }
-        }
-        let scale = |k: i32| half.powi(-k);
-        [s[0], s[1] * scale(1), 2.0 * s[2] * scale(2), 6.0 * s[3] * scale(3), 24.0 * s[4] * scale(4)]
-    };
-    minimum_between(derivatives, r_e - 0.25 * half, r_e + 0.25 * half)
+    let other_minimum = minimum_between(|r| spline.derivatives(r), from, to);
+    let by_degree = |&degree: &usize| LocalPolynomial::through(data, local.r_e_bohr, degree);
+    let polynomials: Vec<_> = LOCAL_DEGREES.iter().filter_map(by_degree).collect();
+    let minima = other_minimum.into_iter().chain(polynomials.iter().map(LocalPolynomial::minimum)).collect();
+    Alternatives { minima, other: spline, other_minimum, polynomials }
 }
 
 /// The minimum after each energy near it was raised by the noise, one after the other.
@@ -142,4 +128,15 @@ pub(super) fn noise_variants(data: &Data, interpolant: &Interpolant, noise: f64)
     };
     let end = data.r.len().min(data.lowest + NOISE_POINTS + 1);
     (data.lowest.saturating_sub(NOISE_POINTS)..end).filter_map(variant).collect()
+}
+
+impl LocalPolynomial {
+    /// The least-squares polynomial of `degree` over |x| ≤ 0.2 r_e; none unless there are more points than
+    /// coefficients and it has a minimum near r_e.
+    fn through(data: &Data, r_e: f64, degree: usize) -> Option<Self> {
+        let mut polynomial = Self::least_squares(&data.r, &data.e, r_e, degree)?;
+        let reach = 0.25 * polynomial.half_width_bohr();
+        polynomial.set_minimum(minimum_between(|r| polynomial.derivatives(r), r_e - reach, r_e + reach)?);
+        Some(polynomial)
+    }
 }

@@ -254,3 +254,43 @@ fn odd_data_never_panics() {
     let steps = sampled(|r| if r < 3.0 { 1.0 } else { 0.0 }, (0..9).map(f64::from).map(|i| 1.0 + i));
     assert!(build_curve(&steps, None, &CurveSettings::default()).is_err());
 }
+
+/// Symmetric scans put samples exactly on the minimum, where V′ is 0 to the last bit.
+#[test]
+fn symmetric_scans_have_their_minimum_in_the_middle() {
+    for n in 5..=31 {
+        for (middle, half) in [(1.0, 0.25), (1.05, 0.25), (2.5, 0.5), (2.625, 0.625), (2.0, 0.5)] {
+            let step = 2.0 * half / f64::from(n - 1);
+            let points = sampled(
+                |r| (r - middle) * (r - middle),
+                (0..n).map(|i| middle + step * (f64::from(i) - 0.5 * f64::from(n - 1))),
+            );
+            let (curve, _) = built(&points, &CurveSettings::default());
+            let r_e = curve.r_e_bohr.value;
+            assert!((r_e - middle).abs() < 1e-7, "{n} points around {middle}: {r_e}");
+        }
+    }
+    // Two scans that once gave 1.025 and 2.5625.
+    for (from, step, n, middle) in [(0.8, 0.05, 11, 1.0), (2.0, 0.125, 11, 2.5)] {
+        let points = sampled(|r| (r - middle) * (r - middle), (0..n).map(|i| from + step * f64::from(i)));
+        let (curve, notices) = built(&points, &CurveSettings::default());
+        assert!((curve.r_e_bohr.value - middle).abs() < 1e-7, "{}", curve.r_e_bohr.value);
+        // A parabola has no anharmonicity to disagree about.
+        assert!(!codes(&notices).contains(&Code::DerivativeSpread), "{notices:?}");
+    }
+}
+
+/// Where V′ is exactly 0 at a sample, at a minimum, a maximum, an inflection and along a flat piece.
+#[test]
+fn a_slope_of_exactly_zero_is_a_stationary_point_where_it_changes_sign() {
+    let r: Vec<f64> = (0..9).map(|i| 0.5 * f64::from(i)).collect();
+    let found = |slope: fn(f64) -> f64| {
+        let points = stationary_points(|r| [0.0, slope(r), 1.0, 0.0, 0.0], &r);
+        points.iter().map(|s| (s.r, s.maximum)).collect::<Vec<_>>()
+    };
+    assert_eq!(found(|r| r - 2.0), [(2.0, false)]);
+    assert_eq!(found(|r| 2.0 - r), [(2.0, true)]);
+    assert_eq!(found(|r| (r - 2.0) * (r - 2.0)), []);
+    assert_eq!(found(|r| r - r.clamp(1.0, 3.0)), [(2.0, false)]);
+    assert_eq!(found(|r| (r - 1.0) * (r - 3.0)), [(1.0, true), (3.0, false)]);
+}
