@@ -9,6 +9,8 @@ pub enum ErrorSource {
     Misfit,
     /// Spread between admissible interpolations of the scan.
     Interpolation,
+    /// Spread between admissible continuations beyond the scan.
+    Tail,
     /// Propagated noise of the energies.
     Noise,
     /// Published uncertainty (masses, constants).
@@ -24,6 +26,7 @@ impl ErrorSource {
             Self::Fit => "fit",
             Self::Misfit => "misfit",
             Self::Interpolation => "interpolation",
+            Self::Tail => "tail",
             Self::Noise => "noise",
             Self::Published => "published",
             Self::Bootstrap => "bootstrap",
@@ -65,6 +68,14 @@ impl Estimate {
         }
         let source = if n > i { ErrorSource::Noise } else { ErrorSource::Interpolation };
         Self::with_error(value, i.hypot(n), source)
+    }
+
+    /// Combines independent errors in quadrature; the source names the largest, and with none there is no error.
+    pub fn from_parts(value: f64, parts: &[(f64, ErrorSource)]) -> Self {
+        let Some(largest) = parts.iter().max_by(|a, b| a.0.total_cmp(&b.0)) else {
+            return Self::exact(value);
+        };
+        Self::with_error(value, parts.iter().fold(0.0, |sum: f64, part| sum.hypot(part.0)), largest.1)
     }
 
     /// Value and error multiplied by a constant (a change of unit).

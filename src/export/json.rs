@@ -252,10 +252,7 @@ pub fn parameter_unit(unit: ParameterUnit) -> (String, f64) {
 }
 
 fn level(level: &Level) -> Value {
-    let energy = match level.energy_error_per_cm {
-        Some(error) => json!({"value": level.energy_per_cm, "unit": "cm-1", "std_error": error}),
-        None => quantity(level.energy_per_cm, "cm-1"),
-    };
+    let energy = per_cm(Some(level.energy_estimate_per_cm()));
     json!({
         "v": level.v,
         "j": level.j,

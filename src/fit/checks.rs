@@ -210,6 +210,24 @@ fn leave_one_out_needs_no_refit_for_linear_fits() {
     assert!((all.leave_one_out_rms_hartree.unwrap() / want - 1.0).abs() < 1e-6);
 }
 
+/// Above 200 points leave-one-out comes from leverages: beside 200 points the refits agree with it, and thousands of
+/// points take no time that grows with their square.
+#[test]
+fn leave_one_out_of_many_points_needs_no_refits() {
+    let morse = Morse { e_min_hartree: -1.0, r_e_bohr: 1.4, well_depth_hartree: 0.17, a_per_bohr: 1.03 };
+    let rms = |count: u32| {
+        let points = around(&morse, count, 0.4);
+        let found = fit(FitRequest::plain(Family::Rydberg), &points, WINDOW).unwrap();
+        (found.leave_one_out_rms_hartree.unwrap(), found.rms_residual_hartree)
+    };
+    let ratio = |(loo, rms): (f64, f64)| (loo / rms - 1.0) * 200.0;
+    let (refits, leverages) = (ratio(rms(200)), ratio(rms(201)));
+    assert!(refits > 1.0 && (leverages / refits - 1.0).abs() < 0.1, "{refits} {leverages}");
+    let start = std::time::Instant::now();
+    let (many, plain) = rms(20_000);
+    assert!(many >= plain && start.elapsed().as_secs() < 5);
+}
+
 #[test]
 fn statistics_follow_their_definitions() {
     let morse = Morse { e_min_hartree: -1.0, r_e_bohr: 1.4, well_depth_hartree: 0.17, a_per_bohr: 1.03 };

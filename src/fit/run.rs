@@ -255,7 +255,7 @@ fn iterated<P: Parametric + Clone + Into<Model>>(
     families::told_apart(data, &model, &solution)?;
     Ok(Solved {
         leave_one_out_rms_hartree: match loo {
-            LeaveOneOut::Yes => families::leave_one_out_rms(data, &model),
+            LeaveOneOut::Yes => families::leave_one_out_rms(data, &model, &solution),
             LeaveOneOut::No => None,
         },
         model: model.into(),

@@ -1,10 +1,10 @@
 //! The curve through the scan's points: base function, spline of the rest, tails.
 
-use super::Potential;
 use super::interpolant::Interpolant;
 use super::local_polynomial::LocalPolynomial;
 pub use super::tails::{InnerTail, OuterTail};
 use super::tails::{Joint, OuterForm};
+use super::{Morse, Potential};
 use crate::estimate::Estimate;
 use serde::{Deserialize, Serialize};
 use std::sync::Arc;
@@ -110,7 +110,19 @@ pub struct ScanCurve {
     pub noise_hartree: Option<f64>,
     /// The bond lengths the curve runs through, ascending, in bohr.
     pub points_bohr: Arc<[f64]>,
+    without_doubtful: Option<WithoutDoubtful>,
     body: Body,
+}
+
+/// The curve without doubtful points.
+#[derive(Clone, Debug)]
+struct WithoutDoubtful {
+    /// Its minimum, on the zero of the whole curve.
+    local: LocalDerivatives,
+    interpolant: Arc<Interpolant>,
+    /// Energy of its minimum on its own zero.
+    v_e: f64,
+    range: (f64, f64),
 }
 
 /// What is evaluated. Energies count from `zero`.
@@ -175,6 +187,7 @@ impl ScanCurve {
             noise_variants: parts.noise_variants,
             noise_hartree: parts.noise_hartree,
             points_bohr: parts.points,
+            without_doubtful: None,
             body: Body {
                 interpolant: parts.interpolant,
                 other: parts.other,
@@ -190,6 +203,12 @@ impl ScanCurve {
                 breakpoints: Arc::new(breakpoints),
             },
         };
+        curve.set_estimates();
+        curve
+    }
+
+    fn set_estimates(&mut self) {
+        let curve = &*self;
         let derivative = |f: fn(&LocalDerivatives) -> f64| {
             let estimate = curve.estimate(|local| Some(f(local)));
             estimate.filter(|e| e.value.is_finite())
@@ -199,18 +218,32 @@ impl ScanCurve {
             derivative(|l| l.third_hartree),
             derivative(|l| l.fourth_hartree),
         ];
-        let r_e = derivative(|l| l.r_e_bohr);
-        let v_e = derivative(|l| l.v_e_hartree);
-        let zero = curve.body.zero;
-        curve.derivatives_hartree = derivatives;
-        curve.r_e_bohr = r_e.unwrap_or(Estimate::exact(curve.local.r_e_bohr));
-        curve.v_e_hartree = v_e.unwrap_or(Estimate::exact(curve.local.v_e_hartree));
-        curve.v_e_hartree.value += zero;
-        curve
+        let r_e = derivative(|l| l.r_e_bohr).unwrap_or(Estimate::exact(self.local.r_e_bohr));
+        let v_e = derivative(|l| l.v_e_hartree).unwrap_or(Estimate::exact(self.local.v_e_hartree));
+        self.derivatives_hartree = derivatives;
+        self.r_e_bohr = r_e;
+        self.v_e_hartree = Estimate { value: v_e.value + self.body.zero, ..v_e };
+    }
+
+    /// Takes the curve built without points that the inspection found off the curve as what may be true too: the
+    /// whole difference to it enters every error.
+    pub(crate) fn set_without_doubtful(&mut self, without: &Self) {
+        let local = LocalDerivatives {
+            v_e_hartree: without.local.v_e_hartree + without.body.zero - self.body.zero,
+            ..without.local
+        };
+        self.without_doubtful = Some(WithoutDoubtful {
+            local,
+            interpolant: Arc::clone(&without.body.interpolant),
+            v_e: without.local.v_e_hartree,
+            range: without.scan_range_bohr,
+        });
+        self.set_estimates();
     }
 
     /// Any quantity of the minimum with its standard error: half the spread over the admissible
-    /// interpolations, and the noise of the energies propagated linearly. None where the curve has no
+    /// interpolations, the whole difference to the curve without points found off it, and the noise of the energies
+    /// propagated linearly. None where the curve has no
     /// such quantity; an alternative that has none does not count.
     pub fn estimate(&self, quantity: impl Fn(&LocalDerivatives) -> Option<f64>) -> Option<Estimate> {
         let value = quantity(&self.local).filter(|v| v.is_finite())?;
@@ -221,20 +254,117 @@ impl ScanCurve {
         let shifts = self.noise_variants.iter().filter_map(&quantity).map(|v| v - value);
         let variance: f64 = shifts.filter(|s| s.is_finite()).map(|s| s * s).sum();
         let noise = (!self.noise_variants.is_empty()).then(|| variance.sqrt());
-        Some(Estimate::from_spread_and_noise(value, known.then_some(0.5 * (high - low)), noise))
+        let doubt = self.without_doubtful.as_ref().and_then(|w| quantity(&w.local)).map(|v| v - value);
+        let doubt = doubt.filter(|d| d.is_finite());
+        let spread = known.then_some(0.5 * (high - low));
+        let interpolation = match (spread, doubt) {
+            (None, None) => None,
+            (spread, doubt) => Some(spread.unwrap_or(0.0).hypot(doubt.unwrap_or(0.0))),
+        };
+        Some(Estimate::from_spread_and_noise(value, interpolation, noise))
     }
 
-    /// By how much the interpolation in the other variable departs from this curve at `r_bohr`, in hartree,
-    /// each counted from its own minimum; zero outside the scan. Half of it, averaged over a level, is the
-    /// interpolation error of the level.
-    pub fn other_interpolation_hartree(&self, r_bohr: f64) -> f64 {
+    /// By how much the other admissible interpolations (the spline in the other variable, the local polynomials
+    /// inside their window) depart from this curve at the bond lengths given, in hartree, each counted from its own
+    /// minimum; zero outside the scan. Half the spread, averaged over a level, is the level's interpolation error.
+    pub fn other_interpolations_hartree(&self, r_bohr: &[f64]) -> Vec<Vec<f64>> {
         let (from, to) = self.scan_range_bohr;
-        let Some(minimum) = &self.body.other_minimum else { return 0.0 };
-        if !(from..=to).contains(&r_bohr) {
-            return 0.0;
+        let inside = |r: f64| (from..=to).contains(&r);
+        let own = |r: f64| self.body.interpolant.energy(r) - self.body.v_e;
+        let mut found = Vec::new();
+        if let Some(minimum) = &self.body.other_minimum {
+            let other = |r: f64| self.body.other.energy(r) - minimum.v_e_hartree - own(r);
+            found.push(r_bohr.iter().map(|&r| if inside(r) { other(r) } else { 0.0 }).collect());
         }
-        let difference = self.body.other.energy(r_bohr) - self.body.interpolant.energy(r_bohr);
-        difference - (minimum.v_e_hartree - self.body.v_e)
+        for polynomial in self.body.polynomials.iter() {
+            let other = |r: f64| polynomial.above_minimum(r).map_or(0.0, |v| v - own(r));
+            found.push(r_bohr.iter().map(|&r| if inside(r) { other(r) } else { 0.0 }).collect());
+        }
+        found
+    }
+
+    /// The same for the curve without points found off it; none where there are no such points.
+    pub fn without_doubtful_hartree(&self, r_bohr: &[f64]) -> Option<Vec<f64>> {
+        let without = self.without_doubtful.as_ref()?;
+        let (from, to) =
+            (without.range.0.max(self.body.inner_joint.r), without.range.1.min(self.body.outer_joint.r));
+        let change = |&r: &f64| {
+            if !(from..=to).contains(&r) {
+                return 0.0;
+            }
+            without.interpolant.energy(r) - without.v_e - (self.body.interpolant.energy(r) - self.body.v_e)
+        };
+        Some(r_bohr.iter().map(change).collect())
+    }
+
+    /// Other admissible continuations beyond one end of the curve.
+    ///
+    /// Inside: the base function goes on, shifted to meet the curve; without a base an exponential with half and with
+    /// double the exponent. Outside: towards an assumed limit the base goes on; towards a given limit an exponential
+    /// with the base's range parameter (without a base with half and double the exponent, for an inverse power the
+    /// exponential in value and slope); at a hard wall the base, else an exponential in value and slope with the range
+    /// parameter −V‴/(3V″) of the minimum. None beyond a barrier that lies within the scan, and none where the curve does
+    /// not rise at its end.
+    pub(crate) fn other_tails(&self, side: Side) -> Vec<OtherTail<'_>> {
+        let body = &self.body;
+        let base = body.interpolant.recipe().base;
+        let forms = match side {
+            Side::Inner if body.inner_joint.r > self.scan_range_bohr.0 => Vec::new(),
+            Side::Inner => match (base, body.inner) {
+                (Some(base), _) => vec![OtherForm::Base(base)],
+                (None, InnerTail::Exponential { b_per_bohr: b }) => {
+                    let inner = |b_per_bohr| OtherForm::Inner(InnerTail::Exponential { b_per_bohr });
+                    vec![inner(0.5 * b), inner(2.0 * b)]
+                }
+                (None, InnerTail::HardWall) => Vec::new(),
+            },
+            Side::Outer if body.outer_joint.r < self.scan_range_bohr.1 || body.outer_joint.slope <= 0.0 => {
+                Vec::new()
+            }
+            Side::Outer => self.outer_forms(base),
+        };
+        forms.into_iter().map(|form| OtherTail { curve: self, side, form }).collect()
+    }
+
+    fn outer_forms(&self, base: Option<Morse>) -> Vec<OtherForm> {
+        let slope = self.body.outer_joint.slope;
+        let outer = |b: f64, gap: f64| OtherForm::Outer(OuterForm::Exponential { b, gap });
+        match (self.body.outer, base) {
+            (OuterForm::Power { gap, .. }, _) => vec![outer(slope / gap, gap)],
+            (OuterForm::Exponential { gap, .. }, Some(base)) if !self.body.outer_assumed => {
+                vec![outer(base.a_per_bohr, gap)]
+            }
+            (OuterForm::Exponential { b, gap }, None) => vec![outer(0.5 * b, gap), outer(2.0 * b, gap)],
+            (_, Some(base)) => vec![OtherForm::Base(base)],
+            (OuterForm::Wall, None) => {
+                let a = -self.local.third_hartree / (3.0 * self.local.second_hartree);
+                if a > 0.0 && a.is_finite() { vec![outer(a, slope / a)] } else { Vec::new() }
+            }
+        }
+    }
+
+    /// Where the curve ends at this side, and the last step between points before it, in bohr.
+    pub(crate) fn end_and_step_bohr(&self, side: Side) -> (f64, f64) {
+        let points = &self.points_bohr;
+        let n = points.len();
+        match side {
+            Side::Inner => (self.body.inner_joint.r, points[1] - points[0]),
+            Side::Outer => (self.body.outer_joint.r, points[n - 1] - points[n - 2]),
+        }
+    }
+
+    /// Whether the curve ends in a hard wall at this side.
+    pub(crate) fn ends_in_wall(&self, side: Side) -> bool {
+        match side {
+            Side::Inner => self.inner == InnerTail::HardWall,
+            Side::Outer => self.body.outer == OuterForm::Wall,
+        }
+    }
+
+    /// Height of the curve above V_e at its end at this side, in hartree.
+    pub(crate) fn end_height_hartree(&self, side: Side) -> f64 {
+        let joint = if side == Side::Inner { self.body.inner_joint } else { self.body.outer_joint };
+        joint.energy - self.body.v_e
     }
 
     /// The same curve with energies counted from V_e, free of the rounding of large total energies.
@@ -343,6 +473,90 @@ impl Potential for ScanCurve {
     }
     fn breakpoints_bohr(&self) -> &[f64] {
         &self.body.breakpoints
+    }
+}
+
+/// One of the two ends of a curve.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub(crate) enum Side {
+    Inner,
+    Outer,
+}
+
+#[derive(Clone, Copy, Debug)]
+enum OtherForm {
+    /// This function, shifted to meet the curve.
+    Base(Morse),
+    Inner(InnerTail),
+    Outer(OuterForm),
+}
+
+/// A curve, energies counted from V_e, that goes on otherwise beyond one of its ends.
+#[derive(Clone, Copy, Debug)]
+pub(crate) struct OtherTail<'a> {
+    curve: &'a ScanCurve,
+    side: Side,
+    form: OtherForm,
+}
+
+impl OtherTail<'_> {
+    fn joint(&self) -> Joint {
+        let body = &self.curve.body;
+        if self.side == Side::Inner { body.inner_joint } else { body.outer_joint }
+    }
+
+    /// Whether `r_bohr` lies beyond the end at which this differs from the curve.
+    pub(crate) fn differs_at(&self, r_bohr: f64) -> bool {
+        if self.side == Side::Inner { r_bohr < self.joint().r } else { r_bohr > self.joint().r }
+    }
+}
+
+impl Potential for OtherTail<'_> {
+    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+        if !self.differs_at(r_bohr) {
+            return self.curve.above_minimum().derivatives_hartree(r_bohr);
+        }
+        let (joint, v_e) = (self.joint(), self.curve.body.v_e);
+        let mut d = match self.form {
+            OtherForm::Base(base) => {
+                let mut d = base.derivatives_hartree(r_bohr);
+                d[0] += joint.energy - base.energy_hartree(joint.r);
+                d
+            }
+            OtherForm::Inner(tail) => tail.derivatives(joint, v_e, r_bohr),
+            OtherForm::Outer(tail) => tail.derivatives(joint, r_bohr),
+        };
+        d[0] -= v_e;
+        d
+    }
+    fn energy_hartree(&self, r_bohr: f64) -> f64 {
+        if self.differs_at(r_bohr) {
+            self.derivatives_hartree(r_bohr)[0]
+        } else {
+            self.curve.above_minimum().energy_hartree(r_bohr)
+        }
+    }
+    fn range_bohr(&self) -> (f64, f64) {
+        let (from, to) = self.curve.body.range();
+        if self.side == Side::Inner { (0.0, to) } else { (from, f64::INFINITY) }
+    }
+    fn limit_hartree(&self) -> f64 {
+        let body = &self.curve.body;
+        let (joint, inner_wall) = (self.joint(), self.curve.ends_in_wall(Side::Inner));
+        let outside = match self.form {
+            _ if self.side == Side::Inner => body.outer_joint.energy + body.outer.gap().unwrap_or(0.0),
+            OtherForm::Base(base) => joint.energy + base.limit_hartree() - base.energy_hartree(joint.r),
+            OtherForm::Outer(tail) => joint.energy + tail.gap().unwrap_or(0.0),
+            OtherForm::Inner(_) => joint.energy,
+        };
+        let limited = self.side == Side::Outer && inner_wall;
+        (if limited { outside.min(body.inner_joint.energy) } else { outside }) - body.v_e
+    }
+    fn minimum_bohr(&self) -> f64 {
+        self.curve.local.r_e_bohr
+    }
+    fn breakpoints_bohr(&self) -> &[f64] {
+        &self.curve.body.breakpoints
     }
 }
 

@@ -105,10 +105,13 @@ impl Walk {
         let sign = self.sign();
         let reference = ReferenceElement::of_degree(ground.demand.degree);
         let mut values = vec![0.0; reference.degree + 1];
-        while !self.at_end && self.boundaries.len() < MOST_ELEMENTS {
+        while !self.at_end {
             let r = self.end();
             if (r - at_least_bohr) * sign >= 0.0 && self.decay[stop] >= FULL_DECAY {
                 break;
+            }
+            if self.boundaries.len() >= MOST_ELEMENTS {
+                return Err(RadialError::Mesh { r_bohr: r });
             }
             values[0] = match self.values.last() {
                 Some(&value) => value,
@@ -124,6 +127,9 @@ impl Walk {
             }
             let next = self.fit_to_potential(ground, reference, r + sign * length, wall, &mut values)?;
             if next == r {
+                if (r - at_least_bohr) * sign < 0.0 {
+                    return Err(RadialError::Mesh { r_bohr: r });
+                }
                 break;
             }
             self.at_end = next == wall;

@@ -22,6 +22,7 @@ pub use distortion::Distortion;
 pub use observables::{Observables, turning_points_bohr};
 pub use quasibound::{QuasiBound, quasi_bound};
 
+use crate::estimate::{ErrorSource, Estimate};
 use crate::potential::Potential;
 use std::sync::Arc;
 use thiserror::Error;
@@ -89,6 +90,17 @@ pub enum RadialError {
         /// Where.
         r_bohr: f64,
     },
+    /// No mesh could be laid over the well, or none of a size that can be solved.
+    #[error(
+        "no mesh of a reasonable size serves the potential from {r_bohr} bohr on: its energies or the mass are beyond all measure"
+    )]
+    Mesh {
+        /// Where the mesh stopped.
+        r_bohr: f64,
+    },
+    /// The search for the levels asked for did not come to an end.
+    #[error("the search for levels did not come to an end")]
+    Search,
     /// The iteration inside one mesh element did not converge (the potential jumps there beyond all measure).
     #[error("no convergence in the mesh element at {r_bohr} bohr: the potential varies too wildly there")]
     NoConvergence {
@@ -166,8 +178,10 @@ pub struct Level {
     pub j: u32,
     /// Energy above V_e in cm⁻¹.
     pub energy_per_cm: f64,
-    /// Standard error of the energy in cm⁻¹ (interpolation and noise), where known.
+    /// Standard error of the energy in cm⁻¹ (interpolation, noise and tails), where known.
     pub energy_error_per_cm: Option<f64>,
+    /// Which of these is the largest.
+    pub energy_error_source: Option<ErrorSource>,
     /// V_inf − E in cm⁻¹; none where no asymptote is known.
     pub below_asymptote_per_cm: Option<f64>,
     /// Rotational constant B_v in cm⁻¹.
@@ -198,4 +212,14 @@ pub struct Level {
     pub minus_morse_per_cm: Option<f64>,
     /// The wavefunction.
     pub wavefunction: Wavefunction,
+}
+
+impl Level {
+    /// The energy above V_e with its standard error, in cm⁻¹.
+    pub fn energy_estimate_per_cm(&self) -> Estimate {
+        match (self.energy_error_per_cm, self.energy_error_source) {
+            (Some(error), Some(source)) => Estimate::with_error(self.energy_per_cm, error, source),
+            _ => Estimate::exact(self.energy_per_cm),
+        }
+    }
 }

@@ -149,7 +149,7 @@ pub(super) fn problem(
         height *= (wanted as f64 / factors.below.max(1) as f64).clamp(1.15, 4.0);
         depth_at(limit, &mut demand);
     }
-    Ok(None)
+    Err(RadialError::Search)
 }
 
 /// An energy below which at least `count` levels lie, and few more.
@@ -194,6 +194,9 @@ impl Walks {
     fn chain(&self, demand: &MeshDemand, earlier: Option<&Chain>) -> Result<Chain, RadialError> {
         let inward = self.inward.boundaries.iter().skip(1).rev();
         let boundaries: Vec<f64> = inward.chain(&self.outward.boundaries).copied().collect();
+        if boundaries.len() < 2 {
+            return Err(RadialError::Mesh { r_bohr: self.outward.end() });
+        }
         let values = self.inward.values.iter().rev().chain(&self.outward.values).copied().collect();
         Chain::extended(demand.two_mu, boundaries, values, demand.degree, earlier)
     }

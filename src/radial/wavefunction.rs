@@ -15,6 +15,24 @@ impl Wavefunction {
         (self.r_bohr[e * p], self.r_bohr[(e + 1) * p], &self.psi[e * p..=(e + 1) * p])
     }
 
+    /// ψ′ at the two ends of the mesh, in bohr^(−3/2): at a hard wall moved outwards by δ the level falls by
+    /// ψ′² δ/(2μ) (Hellmann-Feynman theorem).
+    pub fn end_slopes(&self) -> (f64, f64) {
+        let (p, n) = (self.degree, self.psi.len());
+        if p == 0 || n <= p {
+            return (0.0, 0.0);
+        }
+        let slope = |r: &[f64], psi: &[f64], end: usize| -> f64 {
+            // Derivative of the Lagrange polynomial at its own node `end`, where ψ = 0.
+            let product = |j: usize, without: usize| -> f64 {
+                (0..=p).filter(|&k| k != j && k != without).map(|k| (r[end] - r[k]) / (r[j] - r[k])).product()
+            };
+            (0..=p).filter(|&j| j != end).map(|j| psi[j] * product(j, end) / (r[j] - r[end])).sum()
+        };
+        let last = n - 1 - p;
+        (slope(&self.r_bohr[..=p], &self.psi[..=p], 0), slope(&self.r_bohr[last..], &self.psi[last..], p))
+    }
+
     /// ⟨f⟩ = Σ w f(r) ψ².
     pub fn expectation(&self, f: impl Fn(f64) -> f64) -> f64 {
         self.r_bohr

@@ -70,6 +70,7 @@ mod tests {
             j: 0,
             energy_per_cm: energy,
             energy_error_per_cm: None,
+            energy_error_source: None,
             below_asymptote_per_cm: None,
             b_v_per_cm: b,
             d_v_per_cm: 0.0,

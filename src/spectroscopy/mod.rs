@@ -6,7 +6,7 @@ mod from_levels;
 pub use from_derivatives::{DunhamConstants, dunham, from_derivatives};
 pub use from_levels::from_levels;
 
-use crate::estimate::{ErrorSource, Estimate};
+use crate::estimate::Estimate;
 use crate::potential::curve::ScanCurve;
 use crate::radial::Level;
 use crate::units::to_per_cm;
@@ -93,15 +93,15 @@ pub fn constants(
     levels: &[Level],
     set: LevelSet,
 ) -> Constants {
-    let error = |e: Option<f64>, value: f64| match e {
-        Some(e) => Estimate::with_error(value, e, ErrorSource::Interpolation),
-        None => Estimate::exact(value),
-    };
-    let level = |v: usize| levels.get(v).map(|l| error(l.energy_error_per_cm, l.energy_per_cm));
+    let level = |v: usize| levels.get(v).map(Level::energy_estimate_per_cm);
     let minus = |a: Estimate, b: Estimate| {
+        let value = a.value - b.value;
         // Errors of neighbouring levels go together; the root of the squares is the cautious choice.
-        let both = a.std_error.zip(b.std_error).map(|(a, b)| a.hypot(b));
-        error(both, a.value - b.value)
+        let part = |e: Estimate| e.std_error.zip(e.source);
+        match (part(a), part(b)) {
+            (Some(a), Some(b)) => Estimate::from_parts(value, &[a, b]),
+            _ => Estimate::exact(value),
+        }
     };
     let depth = curve.asymptote_hartree().and(curve.tail_depth_hartree()).map(|depth| {
         let own = curve.v_e_hartree;

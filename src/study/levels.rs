@@ -1,13 +1,15 @@
 //! The levels of a study: the solver's states with all that needs scan, reach and fits.
 
+use super::tail_spread::TailSpread;
+use crate::estimate::{ErrorSource, Estimate};
 use crate::findings::{Findings, FitFindings};
 use crate::notice::{Code, Notice};
-use crate::potential::curve::ScanCurve;
+use crate::potential::curve::{ScanCurve, Side};
 use crate::potential::{Family, Potential as _};
 use crate::radial::{self, Level, RadialRequest, Solution, Wavefunction};
 use crate::reach::Interval;
 use crate::settings::LevelSettings;
-use crate::units::{omega_e_per_cm, rotational_constant_per_cm, to_per_cm};
+use crate::units::{omega_e_per_cm, rotational_constant_per_cm, to_angstrom, to_per_cm};
 
 /// What is asked of the levels beside the curve.
 pub struct Question<'a> {
@@ -74,26 +76,47 @@ pub fn solve(curve: &ScanCurve, question: &Question) -> Solved {
     let observed = solution.observables(&above, r_e, 0.0);
     let states = solution.take_states();
     let Some(first) = states.first() else {
-        let text = "The well holds no level below its limit; the mass may be wrong, or the scan too short.";
-        let notice = (question.j == 0).then(|| Notice::caution(Code::ImplausibleMass, text));
-        return Solved::nothing(notice);
+        return Solved::nothing((question.j == 0).then(|| no_level(curve, question.mass_me)));
     };
     let tails = TailShifts::new(curve, &first.wavefunction, settings);
     let errors = Errors::new(curve, &first.wavefunction);
+    let spread = TailSpread::new(curve, question, states.iter().map(|s| (&s.wavefunction, s.energy_hartree)));
     let omega_e = omega_e_per_cm(curve.local.second_hartree, question.mass_me);
     let rigid = rotational_constant_per_cm(r_e, question.mass_me) * question.request().rotation_x;
     let asymptote_per_cm = curve.asymptote_hartree().and_then(|_| curve.tail_depth_hartree()).map(to_per_cm);
+    let mut leaning: Option<Leans> = None;
+    let off_nodes: Vec<usize> = states.iter().filter(|s| s.nodes != s.v).map(|s| s.v).collect();
     let levels = observed.iter().zip(states).map(|(seen, state)| {
         let psi = state.wavefunction;
-        let outside_scan = outside(&psi, curve.scan_range_bohr);
+        let (inner_outside, outer_outside) = outside(&psi, curve.scan_range_bohr);
+        let outside_scan = (inner_outside + outer_outside).max(0.0);
         let harmonic = omega_e * (state.v as f64 + 0.5) + rigid;
-        let leans_on_tail = outside_scan > settings.lean_probability
-            || tails.largest_per_cm(&psi) > settings.lean_shift_per_cm;
+        let wall_shift = |side| spread.wall_shift_per_cm(state.v, side) > settings.lean_shift_per_cm;
+        let leans = Leans {
+            inner: inner_outside > settings.lean_probability || wall_shift(Side::Inner),
+            outer: outer_outside > settings.lean_probability
+                || tails.largest_per_cm(&psi) > settings.lean_shift_per_cm
+                || wall_shift(Side::Outer),
+        };
+        let leans_on_tail = leans.inner || leans.outer || outside_scan > settings.lean_probability;
+        if leans_on_tail {
+            leaning.get_or_insert(leans);
+        }
+        let mut parts = errors.of(&psi);
+        parts.push((spread.error_per_cm(state.v), ErrorSource::Tail));
+        parts.push((seen.numerical_error_per_cm, ErrorSource::Interpolation));
+        // The tail alone says nothing about the part inside the scan.
+        let energy = if parts.len() > 2 || spread.error_per_cm(state.v) > seen.numerical_error_per_cm {
+            Estimate::from_parts(seen.energy_per_cm, &parts)
+        } else {
+            Estimate::exact(seen.energy_per_cm)
+        };
         Level {
             v: state.v,
             j: question.j,
             energy_per_cm: seen.energy_per_cm,
-            energy_error_per_cm: errors.of(&psi).map(|e| e.hypot(seen.numerical_error_per_cm)),
+            energy_error_per_cm: energy.std_error,
+            energy_error_source: energy.source,
             below_asymptote_per_cm: asymptote_per_cm.map(|limit| limit - seen.energy_per_cm),
             b_v_per_cm: seen.b_v_per_cm,
             d_v_per_cm: f64::NAN,
@@ -122,7 +145,15 @@ pub fn solve(curve: &ScanCurve, question: &Question) -> Solved {
             );
             notices.push(Notice::caution(Code::ManyLevels, text));
         }
-        notices.extend(remark_on_leaning(&levels));
+        notices.extend(leaning.and_then(|sides| remark_on_leaning(curve, &levels, sides)));
+        if let Some(v) = off_nodes.first() {
+            let text = format!(
+                "{} levels, from v = {v} on, have wavefunctions whose nodes do not count up to v: they are not resolved \
+                 well enough. Do not use them.",
+                off_nodes.len()
+            );
+            notices.push(Notice::caution(Code::NotConverged, text));
+        }
     }
     Solved { levels, notices, solution: Some(solution) }
 }
@@ -136,11 +167,12 @@ pub fn beside_morse(findings: &mut Findings) {
     }
 }
 
-fn outside(psi: &Wavefunction, (from, to): (f64, f64)) -> f64 {
-    let (Some(&first), Some(&last)) = (psi.r_bohr.first(), psi.r_bohr.last()) else { return 0.0 };
+/// Probability inside and outside of the scanned range.
+fn outside(psi: &Wavefunction, (from, to): (f64, f64)) -> (f64, f64) {
+    let (Some(&first), Some(&last)) = (psi.r_bohr.first(), psi.r_bohr.last()) else { return (0.0, 0.0) };
     let inner = if first < from { psi.probability(first, from) } else { 0.0 };
     let outer = if last > to { psi.probability(to, last) } else { 0.0 };
-    (inner + outer).max(0.0)
+    (inner, outer)
 }
 
 /// Probability inside the energy reach; a side that the scan ends counts up to the scan's end.
@@ -151,19 +183,79 @@ fn inside(psi: &Wavefunction, reach: &Interval, curve: &ScanCurve) -> f64 {
     psi.probability(from, to)
 }
 
-fn remark_on_leaning(levels: &[Level]) -> Option<Notice> {
+/// Which ends of the scan a level leans on.
+#[derive(Clone, Copy)]
+struct Leans {
+    inner: bool,
+    outer: bool,
+}
+
+/// Why a well holds no level: a scan that ends too low, or a mass.
+fn no_level(curve: &ScanCurve, mass_me: f64) -> Notice {
+    let first = 0.5 * omega_e_per_cm(curve.local.second_hartree, mass_me);
+    let low = |side: Side| to_per_cm(curve.end_height_hartree(side)) < first && curve.ends_in_wall(side);
+    let ends: Vec<Side> = [Side::Inner, Side::Outer].into_iter().filter(|&side| low(side)).collect();
+    if ends.is_empty() {
+        let text = "The well holds no level below its limit; the mass may be wrong, or the scan too short.";
+        return Notice::caution(Code::ImplausibleMass, text);
+    }
+    let says: Vec<String> = ends
+        .iter()
+        .map(|&side| {
+            format!(
+                "{:.0} cm-1 above the minimum at its {} end",
+                to_per_cm(curve.end_height_hartree(side)),
+                name(side)
+            )
+        })
+        .collect();
+    let add: Vec<String> = ends.iter().map(|&side| wanted(curve, side)).collect();
+    let text = format!(
+        "The scan ends {}, below the first level (near {first:.0} cm-1, half of omega_e), so there are no levels: {}.",
+        says.join(" and "),
+        add.join(" and ")
+    );
+    Notice::caution(Code::ShortRange, text).at(ends.iter().map(|&side| curve.end_and_step_bohr(side).0))
+}
+
+const fn name(side: Side) -> &'static str {
+    match side {
+        Side::Inner => "inner",
+        Side::Outer => "outer",
+    }
+}
+
+/// The points to add at one end, e.g. "add points below 1.000 angstrom".
+fn wanted(curve: &ScanCurve, side: Side) -> String {
+    let (end, _) = curve.end_and_step_bohr(side);
+    let where_to = if side == Side::Inner { "below" } else { "beyond" };
+    format!("add points {where_to} {:.3} angstrom", to_angstrom(end))
+}
+
+fn remark_on_leaning(curve: &ScanCurve, levels: &[Level], sides: Leans) -> Option<Notice> {
     let leaning = levels.iter().filter(|l| l.leans_on_tail).count();
     let lowest = levels.iter().find(|l| l.leans_on_tail)?;
     let all = levels.len();
+    let inner = sides.inner.then(|| wanted(curve, Side::Inner));
+    let outer = (sides.outer || !sides.inner).then(|| {
+        let known = curve.asymptote_hartree().is_some();
+        let or_give = if known { "" } else { " or give the energy of the separated atoms" };
+        format!("{}{or_give}", wanted(curve, Side::Outer))
+    });
+    let add: Vec<String> = inner.into_iter().chain(outer).collect();
     let text = format!(
-        "{} of {all} levels, from v = {} ({:.0} cm-1) on, lean on a tail that was never scanned; points further \
-         out or the energy of the separated atoms would settle them.",
-        leaning, lowest.v, lowest.energy_per_cm
+        "{} of {all} levels, from v = {} ({:.0} cm-1) on, lean on a part of the curve that was never scanned; {} to \
+         settle them.",
+        leaning,
+        lowest.v,
+        lowest.energy_per_cm,
+        add.join(", and ")
     );
-    let place = lowest.outer_turning_point_bohr;
+    let inner = sides.inner.then_some(lowest.inner_turning_point_bohr);
+    let outer = (sides.outer || !sides.inner).then_some(lowest.outer_turning_point_bohr);
     // A level that leans low in the well is a caution; the last few below the limit are to be expected.
     let notice = if lowest.v <= 2 { Notice::caution } else { Notice::info };
-    Some(notice(Code::LeansOnTail, text).at([place]))
+    Some(notice(Code::LeansOnTail, text).at(inner.into_iter().chain(outer)))
 }
 
 /// Changes of the potential, at the mesh points, when the tail is moved.
@@ -210,14 +302,17 @@ impl TailShifts {
 }
 
 /// Σ w ψ² f over the mesh.
-fn average(psi: &Wavefunction, values: &[f64]) -> f64 {
+pub(super) fn average(psi: &Wavefunction, values: &[f64]) -> f64 {
     psi.psi.iter().zip(psi.weight_bohr.iter()).zip(values).map(|((p, w), f)| w * p * p * f).sum()
 }
 
-/// What makes the error of a level: the other interpolation, to first order, and the noise of the points.
+/// What makes the error of a level inside the scan: the other interpolations, to first order, and the noise of the
+/// points.
 struct Errors {
-    other: Vec<f64>,
-    known: bool,
+    /// What the other interpolations change of V at the mesh points.
+    others: Vec<Vec<f64>>,
+    /// The same for the curve without points found off it.
+    without_doubtful: Option<Vec<f64>>,
     noise_hartree: Option<f64>,
     /// Index of the upper hat and its share, per mesh point and last for r_e; empty where no noise is known.
     hats: Vec<(usize, f64)>,
@@ -227,8 +322,8 @@ struct Errors {
 impl Errors {
     fn new(curve: &ScanCurve, mesh: &Wavefunction) -> Self {
         Self {
-            other: mesh.r_bohr.iter().map(|&r| curve.other_interpolation_hartree(r)).collect(),
-            known: !curve.alternatives.is_empty(),
+            others: curve.other_interpolations_hartree(&mesh.r_bohr),
+            without_doubtful: curve.without_doubtful_hartree(&mesh.r_bohr),
             noise_hartree: curve.noise_hartree,
             hats: Self::hats(curve, mesh),
             knots: curve.points_bohr.len(),
@@ -247,14 +342,17 @@ impl Errors {
         mesh.r_bohr.iter().chain([&curve.local.r_e_bohr]).map(hat).collect()
     }
 
-    /// sqrt(interpolation² + noise²) in cm⁻¹; none where neither is known.
-    fn of(&self, psi: &Wavefunction) -> Option<f64> {
-        if !self.known && self.noise_hartree.is_none() {
-            return None;
-        }
-        let interpolation = 0.5 * average(psi, &self.other).abs();
-        let noise = self.noise_hartree.map_or(0.0, |sigma| sigma * self.noise_weight(psi));
-        Some(to_per_cm(interpolation.hypot(noise)))
+    /// Interpolation (half the spread over the admissible ones, and the whole difference to the curve without points
+    /// found off it) and noise, in cm⁻¹; only what is known.
+    fn of(&self, psi: &Wavefunction) -> Vec<(f64, ErrorSource)> {
+        let shift = |change: &Vec<f64>| to_per_cm(average(psi, change));
+        let (low, high) =
+            self.others.iter().map(shift).fold((0.0_f64, 0.0_f64), |(l, h), x| (l.min(x), h.max(x)));
+        let spread = (!self.others.is_empty()).then_some(0.5 * (high - low));
+        let doubt = self.without_doubtful.as_ref().map(shift);
+        let noise = self.noise_hartree.map(|sigma| to_per_cm(sigma * self.noise_weight(psi)));
+        let interpolation = spread.into_iter().chain(doubt).map(|e| (e.abs(), ErrorSource::Interpolation));
+        interpolation.chain(noise.map(|e| (e, ErrorSource::Noise))).collect()
     }
 
     /// sqrt(Σ_i g_i²) with g_i = ⟨ψ|h_i|ψ⟩ − h_i(r_e), h_i the hat function of point i: how the energy above

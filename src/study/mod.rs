@@ -6,12 +6,16 @@ mod fits;
 mod levels;
 mod points;
 mod remarks;
+#[cfg(test)]
+mod tail_checks;
+mod tail_spread;
 mod thermal;
 
 use crate::findings::{Findings, Source};
-use crate::fit::Comparison;
 use crate::fit::curve::build_curve;
+use crate::fit::{Comparison, FitPoint};
 use crate::notice::{Code, Notice};
+use crate::potential::curve::ScanCurve;
 use crate::reach;
 use crate::scan::Scan;
 use crate::scan::error::ScanError;
@@ -138,7 +142,8 @@ pub fn study_observed(
     let used = points::in_use(&findings.source.points);
     let asymptote_hartree = settings.interpolation.asymptote.map(|e| column.unit.to_hartree(e));
     match build_curve(&used, asymptote_hartree, &settings.interpolation) {
-        Ok((curve, mut remarks)) => {
+        Ok((mut curve, mut remarks)) => {
+            doubt(&mut curve, &findings.notices, &used, asymptote_hartree, settings);
             findings.curve = Some(Arc::new(curve));
             findings.notices.append(&mut remarks);
         }
@@ -154,6 +159,28 @@ pub fn study_observed(
     // The gravest first; within one severity the order of the steps is kept.
     findings.notices.sort_by_key(|n| std::cmp::Reverse(n.severity));
     Ok(findings)
+}
+
+/// Points that the inspection found off the curve make the curve without them one that may be true.
+fn doubt(
+    curve: &mut ScanCurve,
+    notices: &[Notice],
+    used: &[FitPoint],
+    asymptote_hartree: Option<f64>,
+    settings: &Settings,
+) {
+    let off: Vec<f64> =
+        notices.iter().filter(|n| n.code == Code::OffCurve).flat_map(|n| n.at_bohr.iter().copied()).collect();
+    if off.is_empty() {
+        return;
+    }
+    let rest: Vec<FitPoint> = used.iter().filter(|p| !off.contains(&p.r_bohr)).copied().collect();
+    if rest.len() == used.len() {
+        return;
+    }
+    if let Ok((without, _)) = build_curve(&rest, asymptote_hartree, &settings.interpolation) {
+        curve.set_without_doubtful(&without);
+    }
 }
 
 /// Everything that needs a curve.
