@@ -85,9 +85,9 @@ fn short_scans_of_a_morse_function_hold_its_levels() {
 /// A function that turns over: its barrier stands as a wall, and the levels that feel it lean.
 #[test]
 fn levels_at_a_hard_wall_lean() {
-    // Invented: a Morse function less a steep Gaussian that makes a barrier near 1.25 angstrom.
-    let humped = |r: f64| MORSE.energy_hartree(r) - 0.2 * (-(r - 3.2_f64).powi(2) / 0.5).exp();
-    let found = scanned(humped, 0.5, 1.7, 0.02);
+    // Invented: a cubic with its barrier of 0.2 hartree 2 bohr outside of the minimum.
+    let cubic = |r: f64| (r - 1.733).powi(2) * (0.15 - 0.05 * (r - 1.733));
+    let found = scanned(cubic, 0.5, 2.2, 0.02);
     assert!(found.notices.iter().any(|n| n.code == Code::TurnsOver), "{:?}", found.notices);
     let last = found.levels.last().unwrap();
     assert!(last.leans_on_tail, "{}", last.energy_per_cm);
