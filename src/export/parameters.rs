@@ -234,7 +234,7 @@ mod tests {
         };
         // In one system of units k x² is D_e a² x² for the full convention.
         assert!((value("k") / (value("d_e") * value("a").powi(2)) - 1.0).abs() < 1e-2, "{written}");
-        assert!((value("d_e") / (0.17 * 2625.499_64) - 1.0).abs() < 1e-2);
+        assert!((value("d_e") / (0.17 * 2_625.499_64) - 1.0).abs() < 1e-2);
         let latex = latex(&morse, &units);
         for needle in [
             "\\begin{tabular}",

@@ -81,7 +81,7 @@ pub(super) fn pole(potential: &dyn Potential, search: &Search) -> Option<(f64, f
         let slope = (value(z + 1e-3) - value(z - 1e-3)) / 2e-3;
         let step = value(z) / slope;
         z -= step;
-        if !(z.re.abs() < 2.0 * f64::from(SIDE)) {
+        if z.re.is_nan() || z.re.abs() >= 2.0 * f64::from(SIDE) {
             return None;
         }
         if step.im.abs() <= 1e-12 * z.im.abs() && step.re.abs() < 1e-12 {

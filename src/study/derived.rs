@@ -116,8 +116,11 @@ fn expectation_gradients(model: &Model, r_bohr: &[f64], densities: &[Vec<f64>]) 
     sums
 }
 
+/// Takes the bond lengths of a mesh and the gradient of V by each parameter there.
+type Seen<'a> = dyn FnMut(&[f64], &[Vec<f64>]) + 'a;
+
 /// Levels in cm⁻¹; closed form where there is one, else solved, and then `seen` gets the mesh and w ψ² of each level.
-fn solve(model: &Model, mass_me: f64, seen: &mut dyn FnMut(&[f64], &[Vec<f64>])) -> Vec<f64> {
+fn solve(model: &Model, mass_me: f64, seen: &mut Seen<'_>) -> Vec<f64> {
     if let Some(levels) = model.closed_form_levels_hartree(mass_me, RUNGS) {
         return levels.into_iter().map(to_per_cm).collect();
     }

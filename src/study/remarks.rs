@@ -176,7 +176,7 @@ fn short_range(findings: &Findings, curve: &ScanCurve) -> Option<Notice> {
     let (first, last) = (points.first()?, points.last()?);
     let above = |energy: f64| to_per_cm(energy - curve.v_e_hartree.value);
     let wanted = findings.settings.levels.constants_highest_v;
-    let level = findings.levels.iter().filter(|l| l.v <= wanted).next_back()?;
+    let level = findings.levels.iter().rfind(|l| l.v <= wanted)?;
     let short: Vec<(&str, f64, f64)> = [("inner", first), ("outer", last)]
         .into_iter()
         .map(|(side, p)| (side, above(p.energy_hartree), p.r_bohr))

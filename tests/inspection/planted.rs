@@ -125,13 +125,13 @@ fn breaks(curve: &Curve, measure: Measure, size: f64, random: &mut Xorshift) -> 
         let gap = curve.r[at + 1] - curve.r[at];
         let place = curve.r[at] + 0.8 * random.uniform() * gap;
         let sign = if random.below(2) == 0 { 1.0 } else { -1.0 };
-        for i in at + 1..n {
+        for (energy, &r) in e.iter_mut().zip(&curve.r).skip(at + 1) {
             let grown = match measure {
                 Measure::Shift => 1.0,
-                Measure::FirstPoint => (curve.r[i] - place) / (curve.r[at + 1] - place),
-                Measure::Step => (curve.r[i] - place) / step,
+                Measure::FirstPoint => (r - place) / (curve.r[at + 1] - place),
+                Measure::Step => (r - place) / step,
             };
-            e[i] += sign * size * curve.noise_hartree * grown;
+            *energy += sign * size * curve.noise_hartree * grown;
         }
         let found = places(&inspected(&curve.r, &e), &[Code::OffCurve, Code::Kink, Code::Jump]);
         // Noise may move the place by one gap.

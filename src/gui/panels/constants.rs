@@ -67,6 +67,7 @@ fn error_words(estimate: &Estimate) -> String {
         Source::Noise => "estimated noise of the energies",
         Source::Published => "published uncertainty",
         Source::Bootstrap => "spread over resampled residuals",
+        Source::Tail => "spread between admissible continuations beyond the scan",
     };
     format!(" Error: {words}.")
 }

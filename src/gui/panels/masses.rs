@@ -153,11 +153,12 @@ fn element_ui(ui: &mut Ui, index: usize, pick: &mut impl FnMut(&mut Ui, AtomChoi
     {
         show::note(ui, &error.to_string());
     }
-    if field.lost_focus() && ui.input(|i| i.key_pressed(egui::Key::Enter)) {
-        if let Ok(choice) = parsed {
-            text.clear();
-            pick(ui, choice);
-        }
+    if field.lost_focus()
+        && ui.input(|i| i.key_pressed(egui::Key::Enter))
+        && let Ok(choice) = parsed
+    {
+        text.clear();
+        pick(ui, choice);
     }
     ui.data_mut(|d| d.insert_temp(id, text));
 }
