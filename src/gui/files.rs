@@ -310,12 +310,13 @@ fn asks_for_units(error: &ScanError) -> bool {
 
 fn write_findings(path: &Path, findings: &Findings, overwrite: bool) -> Result<String, String> {
     let text = crate::export::json::findings_to_string(findings);
-    let replace = if overwrite { Replace::Anything } else { Replace::Nothing };
+    let replace = if overwrite { Replace::Anything } else { Replace::Findings };
     match crate::files::write(path, text.as_bytes(), replace) {
         Ok(()) => Ok(format!("Findings written to {}.", path.display())),
-        Err(WriteError::Exists { path }) => {
-            Err(format!("{} exists and was left as it is. Choose another name.", path.display()))
-        }
+        Err(WriteError::Exists { path }) => Err(format!(
+            "{} exists, is no findings file, and was left as it is. Choose another name.",
+            path.display()
+        )),
         Err(error) => Err(format!("{error}.")),
     }
 }

@@ -5,13 +5,16 @@ use super::painter::{Canvas, render_offscreen};
 use super::shell::{Renderer, ShellOptions, run as open_window};
 use super::state::Page;
 use crate::headless::{WindowArgs, read_settings};
+use crate::scan::read::read_scan;
 use crate::settings::Settings;
+use crate::study::study;
 use eframe::egui;
 use std::path::Path;
 
 const DONE: u8 = 0;
 const WRONG_USAGE: u8 = 2;
 const NOT_READ: u8 = 3;
+const IMPOSSIBLE: u8 = 4;
 
 /// Opens the window, or paints it into a picture; gives the exit status.
 pub fn run(arguments: WindowArgs) -> u8 {
@@ -81,6 +84,22 @@ fn window(start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u
     }
 }
 
+/// What `parabound study` would end with for the files in the picture: the picture shows the refusal, the
+/// status says it.
+fn status_of(start: &Start) -> u8 {
+    let one = |path: &Path| -> Result<u8, String> {
+        let bytes = std::fs::read(path).map_err(|e| format!("could not be read ({e})"))?;
+        let name = path.file_name().map_or_else(String::new, |n| n.to_string_lossy().into_owned());
+        let scan = read_scan(&name, &bytes, &start.settings.read).map_err(|e| e.to_string())?;
+        let findings = study(&scan, &start.settings).map_err(|e| e.to_string())?;
+        Ok(if findings.impossible() { IMPOSSIBLE } else { DONE })
+    };
+    let status = |path: &std::path::PathBuf| {
+        one(path).unwrap_or_else(|message| fail(NOT_READ, &format!("{}: {message}", path.display())))
+    };
+    start.files.iter().map(status).max().unwrap_or(DONE)
+}
+
 fn paint(path: &Path, start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u8 {
     if path.exists() && !arguments.overwrite {
         let message = format!("{}: this file exists and is not replaced; give --overwrite", path.display());
@@ -95,10 +114,11 @@ fn paint(path: &Path, start: Start, theme: Option<egui::Theme>, arguments: &Wind
         theme: theme.unwrap_or(egui::Theme::Dark),
         ..Canvas::default()
     };
+    let status = status_of(&start);
     let start = Start { inline: true, ..start };
     let picture = render_offscreen(|ctx| App::new(ctx, start), canvas);
     match picture.save_png(path) {
-        Ok(()) => DONE,
+        Ok(()) => status,
         Err(error) => fail(NOT_READ, &format!("{}: could not be written ({error})", path.display())),
     }
 }

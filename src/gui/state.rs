@@ -226,7 +226,8 @@ impl State {
     pub fn window(&self) -> Option<Window> {
         let (_, loaded, settings) = self.document.focused()?;
         let unit = loaded.scan.length_unit;
-        settings.fits.window.or_else(|| {
+        // In the scan's own unit, in which points are compared and edges snap.
+        settings.fits.window.map(|window| window.converted(unit)).or_else(|| {
             let (from, to) = self.study()?.pictures.window_angstrom?;
             let convert = |a: f64| LengthUnit::Angstrom.convert(a, unit);
             Some(Window { from: convert(from), to: convert(to), unit })

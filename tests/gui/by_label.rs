@@ -100,12 +100,17 @@ fn findings_are_exported_and_nothing_is_replaced_unasked() {
     let study = state(&window).study().expect("a study");
     assert_eq!(text, parabound::export::json::findings_to_string(&study.findings));
     let ctx = window.ctx.clone();
-    let again = Command::ExportTo { path: path.clone(), overwrite: false };
-    window.state_mut().0.give(again, &ctx);
-    window.run();
-    let message = state(&window).view.message.clone().expect("a message");
-    assert!(message.failure && message.text.contains("exists"), "{message:?}");
-    assert_eq!(std::fs::read_to_string(&path).expect("still there"), text);
+    // A findings file is replaced, as on the command line; anything else is left alone.
+    for (content, refused) in [(text.as_str(), false), ("precious", true)] {
+        std::fs::write(&path, content).expect("written");
+        let again = Command::ExportTo { path: path.clone(), overwrite: false };
+        window.state_mut().0.give(again, &ctx);
+        window.run();
+        let message = state(&window).view.message.clone().expect("a message");
+        assert_eq!(message.failure, refused, "{message:?}");
+        assert_eq!(message.text.contains("exists"), refused, "{message:?}");
+        assert_eq!(std::fs::read_to_string(&path).expect("still there"), content);
+    }
 }
 
 #[test]

@@ -17,7 +17,7 @@ const ROW: f32 = 22.0;
 const COLUMNS: [Column; 5] = [
     Column { right: 0.06, name: "v", unit: "", about: "Vibrational quantum number." },
     Column { right: 0.33, name: "E − Vₑ", unit: "cm⁻¹", about: "Energy above the minimum." },
-    Column { right: 0.57, name: "− harmonic", unit: "cm⁻¹", about: "E − Vₑ − ωₑ(v + ½)." },
+    Column { right: 0.57, name: "E − harmonic", unit: "cm⁻¹", about: "E − Vₑ − ωₑ(v + ½)." },
     Column {
         right: 0.77, name: "Bᵥ", unit: "cm⁻¹", about: "Rotational constant ℏ²⟨r⁻²⟩/(2μ)."
     },

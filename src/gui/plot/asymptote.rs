@@ -70,7 +70,10 @@ pub(super) fn asymptote_ui(
 /// Where the hand, the keys or assistive technology want the line, in cm⁻¹.
 fn wanted(ui: &Ui, response: &Response, above: f64, map: &Map) -> Option<f64> {
     if response.dragged() {
-        let pointer = response.interact_pointer_pos().filter(|_| !response.drag_started())?;
+        // Only a hand that moves moves the line: the view may follow the new limit, and a resting pointer
+        // would then mean another energy, again and again.
+        let moves = !response.drag_started() && response.drag_delta() != egui::Vec2::ZERO;
+        let pointer = response.interact_pointer_pos().filter(|_| moves)?;
         return Some(map.y_value(pointer.y).round()).filter(|w| *w != above.round());
     }
     let mut steps = 0.0;

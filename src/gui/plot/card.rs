@@ -59,12 +59,12 @@ pub(super) fn card_ui(ui: &Ui, state: &State, study: &Study, stage: &Stage, map:
 
 fn rows(level: &Level, look: &Look) -> Vec<(&'static str, String, Color32)> {
     let mut rows = vec![(
-        "harmonic",
+        "harmonic − E",
         format!("{} cm⁻¹", number::signed(-level.minus_harmonic_per_cm, 2)),
         look.harmonic,
     )];
     if let Some(d) = level.minus_morse_per_cm {
-        rows.push(("Morse fit", format!("{} cm⁻¹", number::signed(-d, 2)), look.morse));
+        rows.push(("Morse − E", format!("{} cm⁻¹", number::signed(-d, 2)), look.morse));
     }
     rows.push(("beyond turning points", number::percent(level.forbidden_probability, 1), look.text));
     if let Some(p) = level.inside_reach {
@@ -83,7 +83,8 @@ fn line_ui(ui: &Ui, level: &Level, stage: &Stage) {
     let energy = number::fixed(level.energy_per_cm, 2);
     let harmonic = number::signed(-level.minus_harmonic_per_cm, 2);
     let beyond = number::percent(level.forbidden_probability, 1);
-    let text = format!("v = {}: {energy} cm⁻¹, harmonic {harmonic}, beyond turning points {beyond}", level.v);
+    let text =
+        format!("v = {}: {energy} cm⁻¹, harmonic − E {harmonic}, beyond turning points {beyond}", level.v);
     let at = pos2(stage.plot.left() + 2.0, (stage.plot.bottom() + stage.strip.top()) / 2.0);
     let over = ui.input(|i| i.pointer.hover_pos()).is_some_and(|p| stage.plot.union(stage.strip).contains(p));
     let room = stage.plot.width() - if over { 190.0 } else { 4.0 };
