@@ -22,8 +22,11 @@ const USUAL_BREAK: f64 = 2.4;
 const NEGLIGIBLE_HARTREE: f64 = 1e-8;
 /// Scatter below this is rounding (hartree).
 const ROUNDING_HARTREE: f64 = 1e-12;
-/// Scans longer than this are judged in one abscissa and one width, to bound the work.
+/// Scans longer than this are judged in one abscissa and one width, and after the first round only around
+/// what the round before has found: it bounds the work.
 const LONG: usize = 2_000;
+/// With more degrees of freedom than this Student's distribution is the normal one in all that matters here.
+const MOST_FREEDOM: usize = 1_000;
 /// Rounds of judging, each after what the one before has found is taken out.
 const ROUNDS: usize = 8;
 /// Most points that are called off: with more of them the scan as a whole is not smooth.
@@ -79,8 +82,10 @@ pub(super) fn faults(r: &[f64], e: &[f64]) -> Faults {
     let mut found = Faults::default();
     let mut kept: Vec<usize> = (0..r.len()).collect();
     let most_off = (r.len() / 5).min(MOST_OFF);
+    // Where the last round has changed something.
+    let mut changed: Option<Vec<usize>> = None;
     for _ in 0..ROUNDS {
-        let mut new = false;
+        let mut new = Vec::new();
         let mut cuts: Vec<usize> = found.breaks.iter().map(|b| b.before).collect();
         cuts.sort_unstable();
         let mut rest: &[usize] = &kept;
@@ -92,39 +97,63 @@ pub(super) fn faults(r: &[f64], e: &[f64]) -> Faults {
         }
         segments.push(rest.to_vec());
         for segment in segments {
-            for suspect in judge(r, e, &segment) {
+            let asked = |i: usize| match &changed {
+                Some(changed) if r.len() > LONG => changed.iter().any(|c| c.abs_diff(i) <= 2 * WIDTHS[1]),
+                _ => true,
+            };
+            for suspect in judge(r, e, &segment, asked) {
                 match suspect.fault {
                     Fault::Off(off) if found.off.len() < most_off => {
                         found.off.push(off);
                         kept.retain(|&i| i != off.index);
-                        new = true;
+                        new.push(off.index);
                     }
                     Fault::Break(b) if found.breaks.len() < MOST_OFF => {
                         found.breaks.push(b);
-                        new = true;
+                        new.push(b.before);
                     }
                     _ => {}
                 }
             }
         }
-        if !new {
+        if new.is_empty() {
             break;
         }
+        changed = Some(new);
     }
     found.off.sort_by_key(|o| o.index);
     found.breaks.sort_by_key(|b| b.before);
     found
 }
 
-/// A window length in one abscissa, with the scatter that its windows have in the middle.
+/// A window length in one abscissa, and the scatter that its windows have in the middle once it was asked for.
 struct View<'a> {
     x: &'a [f64],
     width: usize,
-    noise: f64,
+    noise: Option<f64>,
 }
 
-/// Suspects of a segment that do not disturb each other, the worst first.
-fn judge(r_all: &[f64], e_all: &[f64], segment: &[usize]) -> Vec<Suspect> {
+impl View<'_> {
+    /// The middle scatter (hartree). Of many windows a sample tells it as well.
+    fn noise(&mut self, e: &[f64]) -> f64 {
+        *self.noise.get_or_insert_with(|| {
+            let mut window = Window::new(self.width, ROUNDING_HARTREE);
+            let starts = (0..=self.x.len() - self.width).step_by(self.x.len() / LONG + 1);
+            let scatter = starts.map(|s| {
+                window.look_at(&self.x[s..s + self.width], &e[s..s + self.width]);
+                window.scatter_hartree()
+            });
+            middle(scatter.collect())
+        })
+    }
+}
+
+/// Suspects of a segment that do not disturb each other, the worst first. Only places are judged that
+/// `asked` names, by their index in the whole scan.
+///
+/// Whoever looks innocent in one view is not looked at in the next ones, and the scatter of all windows is
+/// computed only when somebody is left to be held against it: nearly always nobody is.
+fn judge(r_all: &[f64], e_all: &[f64], segment: &[usize], asked: impl Fn(usize) -> bool) -> Vec<Suspect> {
     let n = segment.len();
     if n < Window::FEWEST {
         return Vec::new();
@@ -133,123 +162,173 @@ fn judge(r_all: &[f64], e_all: &[f64], segment: &[usize]) -> Vec<Suspect> {
     let e: Vec<f64> = segment.iter().map(|&i| e_all[i]).collect();
     let lowest = (0..n).min_by(|&a, &b| e[a].total_cmp(&e[b])).unwrap_or(0);
     let y: Vec<f64> = r.iter().map(|x| (x - r[lowest]) / (x + r[lowest])).collect();
-    let mut widths = WIDTHS.map(|w| w.min(n)).to_vec();
-    widths.dedup();
-    let mut abscissae = vec![&r, &y];
-    if n > LONG {
-        widths.truncate(1);
-        abscissae.truncate(1);
+    let widths = WIDTHS.map(|w| w.min(n));
+    let view = |x, width| View { x, width, noise: None };
+    // The last one follows a curve best: it tells the size of a point's deviation.
+    let mut views = match (n > LONG, widths[0] == widths[1]) {
+        (true, _) => vec![view(r.as_slice(), widths[0])],
+        (_, true) => vec![view(&r, widths[0]), view(&y, widths[0])],
+        _ => vec![view(&y, widths[0]), view(&r, widths[0]), view(&r, widths[1]), view(&y, widths[1])],
+    };
+    let in_question = |i: usize| asked(segment[i]);
+    let mut spikes: Vec<Case> = (1..n - 1).filter(|&i| in_question(i)).map(Case::new).collect();
+    let mut gaps: Vec<Case> = Vec::new();
+    if n >= WIDTHS[0] {
+        // Two points at least on either side, or a branch is no branch.
+        gaps.extend((3..=n - 3).filter(|&i| in_question(i)).map(Case::new));
     }
-    let mut spikes: Vec<Option<Point>> = vec![Some(Point::default()); n];
-    let mut gaps: Vec<Gap> = vec![Gap::default(); n];
-    let mut views = 0;
+    let count = views.len();
+    for view in &views {
+        look(view, &e, &mut spikes, &mut gaps);
+        spikes.retain(|case| case.is_open(count, USUAL_OFF));
+        gaps.retain(|case| case.is_open(count, USUAL_BREAK));
+    }
     // What the middle scatter of all windows is worth, about.
-    let freedom = (n / 2).max(3);
-    for x in abscissae {
-        for &width in &widths {
-            views += 1;
-            let windows: Vec<Window> = (0..=n - width)
-                .map(|s| Window::new(&x[s..s + width], &e[s..s + width], ROUNDING_HARTREE))
-                .collect();
-            let view =
-                View { x, width, noise: middle(windows.iter().map(Window::scatter_hartree).collect()) };
-            for i in 0..n {
-                let start = i.saturating_sub(width / 2).min(n - width);
-                let window = &windows[start];
-                let smooth = window.smooth();
-                judge_point(window, smooth, i - start, view.noise, &mut spikes[i]);
-                // Two points at least on either side, or a branch is no branch.
-                if n >= WIDTHS[0] && i >= 3 && i + 3 <= n {
-                    let place = (i - start, &view.x[start..start + view.width]);
-                    judge_gap(window, smooth, place, (view.noise, freedom), &mut gaps[i]);
-                }
-            }
-        }
-    }
+    let freedom = (n / 2).clamp(3, MOST_FREEDOM);
     let mut suspects: Vec<Suspect> = Vec::new();
-    for i in 1..n.saturating_sub(1) {
-        if let Some(point) = &spikes[i] {
-            let worst = point.ratios.iter().copied().fold(f64::INFINITY, f64::min);
-            let chance = (n as f64 * student::two_sided(middle(point.t.clone()), freedom)).min(1.0);
-            let usual = middle(point.ratios.clone());
-            let sized = point.size_hartree.abs() > NEGLIGIBLE_HARTREE;
-            if worst > WORST && usual > USUAL_OFF && chance < CHANCE && sized {
-                let off = OffPoint { index: segment[i], deviation_hartree: point.size_hartree, chance };
-                suspects.push(Suspect { fault: Fault::Off(off), at: i, ratio: usual });
-            }
+    // First without the scatter of the other windows, which only makes a suspect look more innocent.
+    // A point is judged by the better of the two middle views, a break, which has more freedom, by the worse.
+    let mut chance = |case: &Case, middle: usize| {
+        let own = n as f64 * case.chances(freedom, &mut |_| 0.0)[middle];
+        if own >= CHANCE {
+            return own;
         }
-        let gap = &gaps[i];
-        if let Some((worst, suited, kink)) = gap.worst.filter(|_| gap.ratios.len() == views) {
-            let found = as_break(&r, segment, i, suited, kink);
-            let size = found.shift_hartree.abs().max(suited.size[1].abs());
-            let usual = middle(gap.ratios.clone());
-            let chance = n as f64 * middle(gap.chances.clone());
-            if worst > WORST && usual > USUAL_BREAK && chance < CHANCE && size > NEGLIGIBLE_HARTREE {
-                suspects.push(Suspect { fault: Fault::Break(found), at: i, ratio: usual });
-            }
+        n as f64 * case.chances(freedom, &mut |view| views[view].noise(&e))[middle]
+    };
+    let (better, worse) = ((count - 1) / 2, count / 2);
+    for case in &spikes {
+        let Some(last) = case.views.last() else { continue };
+        let deviation_hartree = last.suited.size[0];
+        if deviation_hartree.abs() <= NEGLIGIBLE_HARTREE {
+            continue;
+        }
+        let chance = chance(case, better);
+        if chance < CHANCE {
+            let off = OffPoint { index: segment[case.at], deviation_hartree, chance };
+            suspects.push(Suspect { fault: Fault::Off(off), at: case.at, ratio: case.usual() });
         }
     }
+    for case in &gaps {
+        let Some(worst) = case.worst() else { continue };
+        let found = as_break(&r, segment, case.at, worst.suited, worst.kink);
+        let size = found.shift_hartree.abs().max(worst.suited.size[1].abs());
+        if size > NEGLIGIBLE_HARTREE && chance(case, worse) < CHANCE {
+            suspects.push(Suspect { fault: Fault::Break(found), at: case.at, ratio: case.usual() });
+        }
+    }
+    apart(suspects)
+}
+
+/// The worst suspects, each far enough from the worse ones, no more of a kind than can be called faults.
+fn apart(mut suspects: Vec<Suspect>) -> Vec<Suspect> {
     suspects.sort_by(|a, b| b.ratio.total_cmp(&a.ratio));
     let mut chosen: Vec<Suspect> = Vec::new();
+    let mut left = [MOST_OFF; 2];
     for suspect in suspects {
+        let left = &mut left[usize::from(matches!(suspect.fault, Fault::Break(_)))];
         let near = |c: &Suspect| c.at.abs_diff(suspect.at) < WIDTHS[1];
-        if !chosen.iter().any(near) {
+        if *left > 0 && !chosen.iter().any(near) {
+            *left -= 1;
             chosen.push(suspect);
         }
     }
     chosen
 }
 
-/// How much better than a smooth curve one with a point beside it describes the windows around the point.
-#[derive(Clone, Default)]
-struct Point {
-    ratios: Vec<f64>,
-    t: Vec<f64>,
-    size_hartree: f64,
+/// A place under suspicion: a point that may lie beside the curve, or a gap (before the point) that may
+/// part two branches.
+struct Case {
+    at: usize,
+    /// What each view has shown so far.
+    views: Vec<Seen>,
+    /// No description with the fault was possible in some view.
+    closed: bool,
 }
 
-fn judge_point(window: &Window, smooth: Suited, i: usize, noise: f64, so_far: &mut Option<Point>) {
-    *so_far = so_far.take().zip(window.spike(i)).map(|(mut point, spike)| {
-        point.ratios.push(smooth.score / spike.score);
-        point.t.push(spike.t(noise));
-        // The last view is that of the wider window in y, which follows a curve best.
-        point.size_hartree = spike.size[0];
-        point
-    });
+/// How much better than a smooth curve the fault describes a window.
+#[derive(Clone, Copy)]
+struct Seen {
+    /// Score of the smooth curve over that of the fault.
+    ratio: f64,
+    suited: Suited,
+    /// Whether two slopes describe it best.
+    kink: bool,
 }
 
-/// How much better than a smooth curve two branches describe the windows around a gap.
-#[derive(Clone, Default)]
-struct Gap {
-    ratios: Vec<f64>,
-    /// How often chance alone does it at this gap.
-    chances: Vec<f64>,
-    /// The smallest ratio, what suits there, and whether it has two slopes.
-    worst: Option<(f64, Suited, bool)>,
+impl Case {
+    fn new(at: usize) -> Self {
+        Self { at, views: Vec::new(), closed: false }
+    }
+
+    fn add(&mut self, smooth: Suited, fault: Option<(Suited, bool)>) {
+        match fault {
+            Some((suited, kink)) => {
+                self.views.push(Seen { ratio: smooth.score / suited.score, suited, kink });
+            }
+            None => self.closed = true,
+        }
+    }
+
+    /// Whether the worst and the middle one of so many views may still be above their limits.
+    fn is_open(&self, views: usize, usual: f64) -> bool {
+        !self.closed
+            && self.views.iter().all(|v| v.ratio > WORST)
+            && self.views.iter().filter(|v| v.ratio <= usual).count() <= views / 2
+    }
+
+    /// The middle ratio.
+    fn usual(&self) -> f64 {
+        middle(self.views.iter().map(|v| v.ratio).collect())
+    }
+
+    /// The view in which the fault explains least.
+    fn worst(&self) -> Option<&Seen> {
+        self.views.iter().min_by(|a, b| a.ratio.total_cmp(&b.ratio))
+    }
+
+    /// Probabilities that chance does it at one place, a view each, ascending. The scatter is that of the
+    /// window or the one given for the view, whichever is larger.
+    fn chances(&self, freedom: usize, noise: &mut dyn FnMut(usize) -> f64) -> Vec<f64> {
+        let of = |(view, seen): (usize, &Seen)| {
+            let t = seen.suited.gain() / seen.suited.standard().max(noise(view));
+            // One fault: Student's t; two at once: F with 2 and ν, which has a closed form.
+            if seen.kink {
+                (1.0 + t * t / freedom as f64).powf(-0.5 * freedom as f64)
+            } else {
+                student::two_sided(t, freedom)
+            }
+        };
+        let mut chances: Vec<f64> = self.views.iter().enumerate().map(of).collect();
+        chances.sort_by(f64::total_cmp);
+        chances
+    }
 }
 
-fn judge_gap(
-    window: &Window,
-    smooth: Suited,
-    (i, x): (usize, &[f64]),
-    (noise, freedom): (f64, usize),
-    gap: &mut Gap,
-) {
-    let jump = window.jump(i).map(|s| (s, false));
-    let kink = window.kink(i, x).map(|s| (s, true));
-    let better = jump.into_iter().chain(kink).min_by(|a, b| a.0.score.total_cmp(&b.0.score));
-    if let Some((suited, kink)) = better {
-        let ratio = smooth.score / suited.score;
-        gap.ratios.push(ratio);
-        let t = suited.t(noise);
-        // One fault: Student's t; two at once: F with 2 and ν, which has a closed form.
-        gap.chances.push(if kink {
-            (1.0 + t * t / freedom as f64).powf(-0.5 * freedom as f64)
-        } else {
-            student::two_sided(t, freedom)
-        });
-        if gap.worst.is_none_or(|w| ratio < w.0) {
-            gap.worst = Some((ratio, suited, kink));
+/// Looks at all open cases, each in the window around it.
+fn look(view: &View, e: &[f64], spikes: &mut [Case], gaps: &mut [Case]) {
+    let (n, width) = (view.x.len(), view.width);
+    let mut window = Window::new(width, ROUNDING_HARTREE);
+    let mut seen = usize::MAX;
+    let (mut spikes, mut gaps) = (spikes.iter_mut().peekable(), gaps.iter_mut().peekable());
+    let mut smooth = None;
+    loop {
+        let next = [spikes.peek().map(|c| c.at), gaps.peek().map(|c| c.at)];
+        let Some(at) = next.into_iter().flatten().min() else { break };
+        let start = at.saturating_sub(width / 2).min(n - width);
+        let x = &view.x[start..start + width];
+        if start != seen {
+            window.look_at(x, &e[start..start + width]);
+            smooth = None;
+            seen = start;
+        }
+        let smooth = *smooth.get_or_insert_with(|| window.smooth());
+        if let Some(case) = spikes.next_if(|c| c.at == at) {
+            case.add(smooth, window.spike(at - start).map(|s| (s, false)));
+        }
+        if let Some(case) = gaps.next_if(|c| c.at == at) {
+            let [jump, kink] = window.branches(at - start, x);
+            let both = jump.map(|s| (s, false)).into_iter().chain(kink.map(|s| (s, true)));
+            case.add(smooth, both.min_by(|a, b| a.0.score.total_cmp(&b.0.score)));
         }
     }
 }

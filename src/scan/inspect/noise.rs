@@ -7,22 +7,30 @@ const PLATEAU: f64 = 2.0;
 /// How many successive orders a plateau needs.
 const PLATEAU_ORDERS: usize = 4;
 
-/// Weights of the divided difference over the abscissae, with unit norm, so that independent errors of
-/// the values come through with their own size.
-fn difference_weights(r: &[f64]) -> Vec<f64> {
-    let scale = (r[r.len() - 1] - r[0]) / 4.0; // keeps the products near one
-    let weight = |i: usize| {
-        let others = r.iter().enumerate().filter(|(k, _)| *k != i);
-        1.0 / others.map(|(_, x)| (r[i] - x) / scale).product::<f64>()
-    };
-    let mut weights: Vec<f64> = (0..r.len()).map(weight).collect();
-    let norm = weights.iter().map(|w| w * w).sum::<f64>().sqrt();
-    weights.iter_mut().for_each(|w| *w /= norm);
-    weights
-}
+/// Points of the highest difference.
+const MOST_POINTS: usize = *NOISE_ORDERS.end() + 1;
 
-fn difference(r: &[f64], e: &[f64]) -> f64 {
-    difference_weights(r).iter().zip(e).map(|(w, e)| w * e).sum()
+/// Divided differences over the first points, a size for each order asked for.
+///
+/// Their weights 1/Π (r_i − r_k) grow point by point; brought to unit norm, independent errors of the
+/// values come through with their own size.
+fn differences(r: &[f64], e: &[f64], mut sized: impl FnMut(usize, f64)) {
+    let scale = 4.0 / (r[r.len() - 1] - r[0]); // keeps the products near one
+    let mut weights = [1.0; MOST_POINTS];
+    for (points, x) in r.iter().enumerate() {
+        let mut new = 1.0;
+        for (weight, earlier) in weights.iter_mut().zip(&r[..points]) {
+            let reciprocal = 1.0 / ((earlier - x) * scale);
+            *weight *= reciprocal;
+            new *= -reciprocal;
+        }
+        weights[points] = new;
+        if NOISE_ORDERS.contains(&points) {
+            let weights = &weights[..=points];
+            let norm = weights.iter().map(|w| w * w).sum::<f64>().sqrt();
+            sized(points, (weights.iter().zip(e).map(|(w, e)| w * e).sum::<f64>() / norm).abs());
+        }
+    }
 }
 
 /// Standard deviation of the noise of the energies, where it can be told from curvature.
@@ -32,15 +40,21 @@ fn difference(r: &[f64], e: &[f64]) -> f64 {
 /// each level the median of |differences|/0.6745.
 pub fn noise_hartree(r_bohr: &[f64], energy_hartree: &[f64]) -> Option<f64> {
     let n = r_bohr.len();
-    let levels: Vec<f64> = NOISE_ORDERS
-        .take_while(|order| n >= order + 5)
-        .map(|order| {
-            let windows = r_bohr.windows(order + 1).zip(energy_hartree.windows(order + 1));
-            let mut sizes: Vec<f64> = windows.map(|(r, e)| difference(r, e).abs()).collect();
-            sizes.sort_by(f64::total_cmp);
-            sizes[sizes.len() / 2] / 0.674_5
-        })
-        .collect();
+    let mut sizes: Vec<Vec<f64>> =
+        NOISE_ORDERS.take_while(|order| n >= order + 5).map(|_| Vec::new()).collect();
+    for start in 0..n {
+        let end = (start + MOST_POINTS).min(n);
+        differences(&r_bohr[start..end], &energy_hartree[start..end], |order, size| {
+            if let Some(sizes) = sizes.get_mut(order - NOISE_ORDERS.start()) {
+                sizes.push(size);
+            }
+        });
+    }
+    let level = |mut sizes: Vec<f64>| {
+        let middle = sizes.len() / 2;
+        *sizes.select_nth_unstable_by(middle, f64::total_cmp).1 / 0.674_5
+    };
+    let levels: Vec<f64> = sizes.into_iter().map(level).collect();
     levels.windows(PLATEAU_ORDERS).find_map(|plateau| {
         let (low, high) = plateau.iter().fold((f64::INFINITY, 0.0_f64), |(l, h), &x| (l.min(x), h.max(x)));
         (high > 0.0 && high <= PLATEAU * low).then(|| plateau.iter().sum::<f64>() / plateau.len() as f64)

@@ -11,6 +11,14 @@ const LOWEST_DEGREE: usize = 3;
 const FREE: usize = 6;
 /// A column that the polynomials contain to more than this share cannot be told from them.
 const SEEN: f64 = 1e-3;
+/// Most points of a window, padded with zeros to whole lanes.
+const MOST_POINTS: usize = 24;
+/// Most degrees, zero counted.
+const MOST_DEGREES: usize = MOST_POINTS - FREE + 1;
+/// Sums run in this many lanes, so that the machine can add several at once.
+const LANES: usize = 4;
+
+type Row = [f64; MOST_POINTS];
 
 /// How well a description suits.
 #[derive(Clone, Copy, Debug)]
@@ -28,153 +36,171 @@ pub(super) struct Suited {
 }
 
 impl Suited {
-    fn standard(&self) -> f64 {
+    /// Scatter of the points about the description, in hartree.
+    pub(super) fn standard(&self) -> f64 {
         (self.rss / self.freedom as f64).sqrt()
     }
 
-    /// Size of the fault over its standard error, the scatter being that of the window or `noise`,
-    /// whichever is larger.
-    pub(super) fn t(&self, noise: f64) -> f64 {
-        ((self.rss_smooth - self.rss).max(0.0)).sqrt() / self.standard().max(noise)
+    /// Root of what the fault takes from the sum of squares, in hartree: over the scatter it is Student's t.
+    pub(super) fn gain(&self) -> f64 {
+        (self.rss_smooth - self.rss).max(0.0).sqrt()
     }
 }
 
-/// The descriptions of a window, judged.
+/// The descriptions of a window, judged. One value serves many windows of one length, one after the other.
 pub(super) struct Window {
-    /// Residuals of the points after each degree.
-    residuals: Vec<Vec<f64>>,
-    /// Orthonormal polynomials.
-    basis: Vec<Vec<f64>>,
-    /// A residual sum below this is rounding.
-    floor: f64,
+    points: usize,
+    /// Energies scatter by this much through rounding alone (hartree).
+    rounding: f64,
+    /// What a description with so many parameters costs, as a factor on the sum of squares.
+    cost: [f64; MOST_POINTS],
+    /// Orthonormal polynomials of the points' abscissae, zero beyond the points.
+    basis: [Row; MOST_DEGREES],
+    /// Residuals of the points after each degree, and the sums of their squares.
+    residuals: [Row; MOST_DEGREES],
+    rss: [f64; MOST_DEGREES],
 }
 
 impl Window {
     /// Points per window that are needed.
     pub(super) const FEWEST: usize = LOWEST_DEGREE + FREE + 2;
 
-    pub(super) fn new(x: &[f64], e: &[f64], rounding: f64) -> Self {
-        let m = x.len();
-        let (low, high) = (x[0], x[m - 1]);
-        let u: Vec<f64> = x.iter().map(|x| (2.0 * x - low - high) / (high - low)).collect();
-        let mut basis: Vec<Vec<f64>> = vec![vec![1.0 / (m as f64).sqrt(); m]];
-        while basis.len() <= m - FREE {
-            let last = &basis[basis.len() - 1];
-            let mut next: Vec<f64> = last.iter().zip(&u).map(|(p, u)| p * u).collect();
-            for p in &basis {
-                remove(&mut next, p);
-            }
-            let norm = dot(&next, &next).sqrt();
-            next.iter_mut().for_each(|v| *v /= norm);
-            basis.push(next);
+    /// For windows of so many points, [`Self::FEWEST`] to 24.
+    pub(super) fn new(points: usize, rounding_hartree: f64) -> Self {
+        debug_assert!((Self::FEWEST..=MOST_POINTS).contains(&points));
+        let m = points as f64;
+        let mut cost = [f64::INFINITY; MOST_POINTS];
+        for (k, cost) in cost.iter_mut().enumerate().take(points - 1) {
+            let k = k as f64;
+            *cost = ((2.0 * k + 2.0 * k * (k + 1.0) / (m - k - 1.0)) / m).exp();
         }
-        let mean = e.iter().sum::<f64>() / m as f64;
-        let mut residual: Vec<f64> = e.iter().map(|e| e - mean).collect();
-        let residuals = basis.iter().map(|p| {
-            remove(&mut residual, p);
-            residual.clone()
-        });
-        let floor = m as f64 * rounding * rounding;
-        Self { residuals: residuals.collect(), basis, floor }
+        Self {
+            points,
+            rounding: rounding_hartree,
+            cost,
+            basis: [[0.0; MOST_POINTS]; MOST_DEGREES],
+            residuals: [[0.0; MOST_POINTS]; MOST_DEGREES],
+            rss: [0.0; MOST_DEGREES],
+        }
     }
 
-    fn points(&self) -> usize {
-        self.basis[0].len()
+    /// Looks at these points: abscissae ascending and distinct, energies beside them.
+    ///
+    /// The polynomials come from their three-term recurrence, which stays orthogonal to 1e-12 for so few points.
+    pub(super) fn look_at(&mut self, x: &[f64], e: &[f64]) {
+        let m = self.points;
+        let padded = m.next_multiple_of(LANES);
+        let (low, high) = (x[0], x[m - 1]);
+        let mut u: Row = [0.0; MOST_POINTS];
+        let mut residual: Row = [0.0; MOST_POINTS];
+        let mean = e.iter().sum::<f64>() / m as f64;
+        for k in 0..m {
+            u[k] = (2.0 * x[k] - low - high) / (high - low);
+            residual[k] = e[k] - mean;
+        }
+        let flat = 1.0 / (m as f64).sqrt();
+        let mut last: Row = [0.0; MOST_POINTS];
+        last[..m].fill(flat);
+        let mut before: Row = [0.0; MOST_POINTS];
+        let mut beta = 0.0;
+        for degree in 0..=m - FREE {
+            let share = dot(&residual[..padded], &last[..padded]);
+            for k in 0..padded {
+                residual[k] -= share * last[k];
+            }
+            self.basis[degree] = last;
+            self.residuals[degree] = residual;
+            self.rss[degree] = dot(&residual[..padded], &residual[..padded]);
+            let mut next: Row = [0.0; MOST_POINTS];
+            for k in 0..padded {
+                next[k] = u[k] * last[k];
+            }
+            let alpha = dot(&next[..padded], &last[..padded]);
+            for k in 0..padded {
+                next[k] -= alpha * last[k] + beta * before[k];
+            }
+            beta = dot(&next[..padded], &next[..padded]).sqrt();
+            let scale = beta.recip();
+            for value in &mut next[..padded] {
+                *value *= scale;
+            }
+            before = last;
+            last = next;
+        }
     }
 
     fn suited(&self, degree: usize, columns: usize, rss: f64, size: [f64; 2]) -> Suited {
-        let m = self.points() as f64;
-        let k = (degree + 2 + columns) as f64;
-        let rss = rss.max(self.floor);
-        let residual = &self.residuals[degree];
+        let rss = rss.max(self.points as f64 * self.rounding * self.rounding);
         Suited {
-            score: rss * ((2.0 * k + 2.0 * k * (k + 1.0) / (m - k - 1.0)) / m).exp(),
+            score: rss * self.cost[degree + 2 + columns],
             rss,
-            rss_smooth: dot(residual, residual),
-            freedom: self.points() - degree - 1 - columns,
+            rss_smooth: self.rss[degree],
+            freedom: self.points - degree - 1 - columns,
             size,
         }
     }
 
     fn degrees(&self) -> std::ops::RangeInclusive<usize> {
-        LOWEST_DEGREE..=self.points() - FREE
+        LOWEST_DEGREE..=self.points - FREE
     }
 
     /// One smooth curve.
     pub(super) fn smooth(&self) -> Suited {
-        let of = |q: usize| self.suited(q, 0, dot(&self.residuals[q], &self.residuals[q]), [0.0; 2]);
+        let of = |q: usize| self.suited(q, 0, self.rss[q], [0.0; 2]);
         best(self.degrees().map(of)).unwrap_or_else(|| of(LOWEST_DEGREE))
     }
 
     /// A smooth curve with point i beside it.
     pub(super) fn spike(&self, i: usize) -> Option<Suited> {
-        let mut free: f64 = 1.0;
-        let mut found: Option<Suited> = None;
-        for (q, p) in self.basis.iter().enumerate() {
-            free -= p[i] * p[i];
-            if q >= LOWEST_DEGREE && free > SEEN {
-                let residual = &self.residuals[q];
-                let rss = dot(residual, residual) - residual[i] * residual[i] / free;
-                let this = self.suited(q, 1, rss, [residual[i] / free, 0.0]);
-                if found.is_none_or(|f| this.score < f.score) {
-                    found = Some(this);
-                }
-            }
-        }
-        found
+        let mut free = 1.0 - (0..LOWEST_DEGREE).map(|q| self.basis[q][i].powi(2)).sum::<f64>();
+        best(self.degrees().filter_map(|q| {
+            free -= self.basis[q][i] * self.basis[q][i];
+            let residual = self.residuals[q][i];
+            let rss = self.rss[q] - residual * residual / free;
+            (free > SEEN).then(|| self.suited(q, 1, rss, [residual / free, 0.0]))
+        }))
     }
 
-    /// A smooth curve on which all points from i on are shifted by one value.
-    pub(super) fn jump(&self, i: usize) -> Option<Suited> {
-        self.columns(vec![step(self.points(), i)])
-    }
-
-    /// Two branches with different value and slope, parted between points i − 1 and i. The second size is the
-    /// change of slope times the width of that gap, the first the shift in the middle of it.
-    pub(super) fn kink(&self, i: usize, x: &[f64]) -> Option<Suited> {
+    /// A smooth curve on which all points from i on are shifted by one value, and two branches with different
+    /// value and slope, parted between points i − 1 and i. Of the latter the second size is the change of
+    /// slope times the width of that gap, the first the shift in the middle of it.
+    pub(super) fn branches(&self, i: usize, x: &[f64]) -> [Option<Suited>; 2] {
         let (middle, gap) = (0.5 * (x[i - 1] + x[i]), x[i] - x[i - 1]);
-        let ramp = x.iter().map(|x| ((x - middle) / gap).max(0.0)).collect();
-        self.columns(vec![step(self.points(), i), ramp])
-    }
-
-    fn columns(&self, mut columns: Vec<Vec<f64>>) -> Option<Suited> {
-        let length: Vec<f64> = columns.iter().map(|c| dot(c, c)).collect();
-        let mut found: Option<Suited> = None;
-        for (q, p) in self.basis.iter().enumerate() {
-            columns.iter_mut().for_each(|c| remove(c, p));
-            if q < LOWEST_DEGREE {
+        let mut ramp: Row = [0.0; MOST_POINTS];
+        for k in i..self.points {
+            ramp[k] = (x[k] - middle) / gap;
+        }
+        let from_i = |row: &Row| row[i..self.points].iter().sum::<f64>();
+        let along_ramp = |row: &Row| {
+            row[i..self.points].iter().zip(&ramp[i..self.points]).map(|(a, b)| a * b).sum::<f64>()
+        };
+        let whole = [(self.points - i) as f64, along_ramp(&ramp)];
+        // Products of the two columns, step and ramp, once the polynomials are taken out of them.
+        let [mut aa, mut bb] = whole;
+        let mut ab = from_i(&ramp);
+        let (mut jump, mut kink) = (None, None);
+        for (q, p) in self.basis.iter().enumerate().take(self.points - FREE + 1) {
+            let (a, b) = (from_i(p), along_ramp(p));
+            aa -= a * a;
+            bb -= b * b;
+            ab -= a * b;
+            if q < LOWEST_DEGREE || aa <= SEEN * SEEN * whole[0] {
                 continue;
             }
-            let seen = |c: &[f64], length: f64| dot(c, c) > SEEN * SEEN * length;
-            let residual = &self.residuals[q];
-            let rss = dot(residual, residual);
-            let first = &columns[0];
-            if !seen(first, length[0]) {
-                continue;
-            }
-            let (aa, ar) = (dot(first, first), dot(first, residual));
-            let this = match columns.get(1) {
-                None => self.suited(q, 1, rss - ar * ar / aa, [ar / aa, 0.0]),
-                Some(second) => {
-                    let (ab, bb, br) = (dot(first, second), dot(second, second), dot(second, residual));
-                    let free = aa * bb - ab * ab;
-                    if !seen(second, length[1]) || free < 1e-6 * aa * bb {
-                        continue;
-                    }
-                    let (a, b) = ((bb * ar - ab * br) / free, (aa * br - ab * ar) / free);
-                    self.suited(q, 2, rss - a * ar - b * br, [a, b])
-                }
-            };
-            if found.is_none_or(|f| this.score < f.score) {
-                found = Some(this);
+            let (ar, br) = (from_i(&self.residuals[q]), along_ramp(&self.residuals[q]));
+            keep_better(&mut jump, self.suited(q, 1, self.rss[q] - ar * ar / aa, [ar / aa, 0.0]));
+            let free = aa * bb - ab * ab;
+            if bb > SEEN * SEEN * whole[1] && free >= 1e-6 * aa * bb {
+                let (a, b) = ((bb * ar - ab * br) / free, (aa * br - ab * ar) / free);
+                keep_better(&mut kink, self.suited(q, 2, self.rss[q] - a * ar - b * br, [a, b]));
             }
         }
-        found
+        [jump, kink]
     }
 
     /// Scatter of the window in hartree, one point being allowed to lie beside the curve.
     pub(super) fn scatter_hartree(&self) -> f64 {
-        let spikes = (0..self.points()).filter_map(|i| self.spike(i));
+        let spikes = (0..self.points).filter_map(|i| self.spike(i));
         best(spikes.chain([self.smooth()])).map_or(0.0, |b| b.standard())
     }
 }
@@ -183,16 +209,19 @@ fn best(all: impl Iterator<Item = Suited>) -> Option<Suited> {
     all.min_by(|a, b| a.score.total_cmp(&b.score))
 }
 
-fn step(points: usize, from: usize) -> Vec<f64> {
-    (0..points).map(|k| if k < from { 0.0 } else { 1.0 }).collect()
+fn keep_better(so_far: &mut Option<Suited>, this: Suited) {
+    if so_far.is_none_or(|s| this.score < s.score) {
+        *so_far = Some(this);
+    }
 }
 
+/// Of whole lanes.
 fn dot(a: &[f64], b: &[f64]) -> f64 {
-    a.iter().zip(b).map(|(a, b)| a * b).sum()
-}
-
-/// Takes the share along a unit vector out.
-fn remove(from: &mut [f64], unit: &[f64]) {
-    let share = dot(from, unit);
-    from.iter_mut().zip(unit).for_each(|(v, u)| *v -= share * u);
+    let mut sums = [0.0; LANES];
+    for (a, b) in a.chunks_exact(LANES).zip(b.chunks_exact(LANES)) {
+        for (sum, (a, b)) in sums.iter_mut().zip(a.iter().zip(b)) {
+            *sum += a * b;
+        }
+    }
+    (sums[0] + sums[1]) + (sums[2] + sums[3])
 }
