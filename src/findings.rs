@@ -1,7 +1,9 @@
 //! All results of a study: per step a value or that step's failure, and the notices.
 
 use crate::estimate::Estimate;
-use crate::fit::{BootstrapSettings, Comparison, Fit, FitError, FitRequest, WindowStudy};
+use crate::fit::{
+    BootstrapSettings, Comparison, Fit, FitError, FitRequest, Window, WindowStudy, default_window,
+};
 use crate::notice::{Notice, Severity};
 use crate::potential::curve::ScanCurve;
 use crate::radial::Level;
@@ -248,6 +250,15 @@ impl Findings {
             force_constant_hartree_per_bohr2: curve.local.second_hartree,
             reduced_mass_me: masses.reduced_mass_me,
             morse_per_cm: morse.map_or(&[], |f| &f.levels_per_cm),
+        })
+    }
+
+    /// The window of the fits: as given, or the default one around the minimum; none without a minimum.
+    pub fn window(&self) -> Option<Window> {
+        self.settings.fits.window.or_else(|| {
+            let r: Vec<f64> = self.source.points.iter().filter(|p| p.used).map(|p| p.r_as_read).collect();
+            let curve = self.curve.as_ref()?;
+            Some(default_window(curve.local.r_e_bohr, &r, self.source.length_unit))
         })
     }
 

@@ -2,10 +2,10 @@
 
 use super::{Axis, BOND_LENGTH, Figure, PlotPoint, Role, Series, Shape, number};
 use crate::findings::{Findings, FitFindings};
-use crate::fit::Family;
+use crate::fit::{Family, Window};
 use crate::potential::Potential;
 use crate::potential::curve::ScanCurve;
-use crate::units::{ANGSTROM_PER_BOHR, LengthUnit, PER_CM_PER_HARTREE, to_angstrom, to_per_cm};
+use crate::units::{ANGSTROM_PER_BOHR, PER_CM_PER_HARTREE, to_angstrom, to_per_cm};
 
 /// Points along a curve around the minimum, and outside that region.
 const FINE_POINTS: usize = 480;
@@ -31,32 +31,16 @@ pub(super) fn zero_hartree(findings: &Findings) -> f64 {
     findings.curve.as_ref().map_or_else(lowest, |c| c.v_e_hartree.value)
 }
 
-/// The window in use, in angstrom.
-pub(super) fn window_angstrom(findings: &Findings) -> Option<(f64, f64)> {
-    let fitted = findings.fits.iter().find_map(|f| f.result.as_ref().ok()).map(|f| f.window_bohr);
-    let asked = findings.settings.fits.window.map(|w| (w.unit.to_bohr(w.from), w.unit.to_bohr(w.to)));
-    // The default window of the fits, for curves on which every fit failed.
-    let default = findings.curve.as_ref().map(|c| (0.85 * c.r_e_bohr.value, 1.15 * c.r_e_bohr.value));
-    asked.or(fitted).or(default).map(|(a, b)| (to_angstrom(a), to_angstrom(b)))
-}
-
 /// The scan's points.
-pub(super) fn points(findings: &Findings, window: Option<(f64, f64)>) -> Vec<PlotPoint> {
+pub(super) fn points(findings: &Findings, window: Option<Window>) -> Vec<PlotPoint> {
     let zero = zero_hartree(findings);
     let unit = findings.source.length_unit;
-    // Edges are inclusive: the window is compared in the unit as read, as the fits do.
-    let edges =
-        findings.settings.fits.window.filter(|w| w.unit == unit).map(|w| (w.from, w.to)).or_else(|| {
-            window
-                .map(|(a, b)| (LengthUnit::Angstrom.convert(a, unit), LengthUnit::Angstrom.convert(b, unit)))
-        });
-    let slack = 1e-9;
     let point = |p: &crate::findings::Point| PlotPoint {
         row: p.row,
         r_as_read: p.r_as_read,
         at: [to_angstrom(p.r_bohr), to_per_cm(p.energy_hartree - zero)],
         energy_hartree: p.energy_hartree,
-        in_window: p.used && edges.is_none_or(|(a, b)| p.r_as_read >= a - slack && p.r_as_read <= b + slack),
+        in_window: p.used && window.is_none_or(|w| w.contains(p.r_as_read, unit)),
         set_aside: (!p.used).then(|| p.why_not.clone().unwrap_or_else(|| "not used".to_owned())),
     };
     findings.source.points.iter().map(point).filter(|p| p.at.iter().all(|c| c.is_finite())).collect()

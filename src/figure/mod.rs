@@ -28,6 +28,7 @@ pub use thermal::thermal_figure;
 pub use views::{Views, views};
 
 use crate::findings::Findings;
+use crate::fit::Window;
 use geometry::Bounds;
 
 /// What a series stands for.
@@ -181,24 +182,24 @@ pub struct Pictures {
     pub views: Views,
     /// The sentence.
     pub sentence: Sentence,
-    /// Lower and upper edge of the window in use, in angstrom; none when there is neither fit nor minimum.
-    pub window_angstrom: Option<(f64, f64)>,
+    /// The window in use; none when none is given and there is no minimum.
+    pub window: Option<Window>,
 }
 
 impl Pictures {
     /// Everything that is drawn of these findings.
     pub fn of(findings: &Findings) -> Self {
-        let window_angstrom = curve::window_angstrom(findings);
+        let window = findings.window();
         Self {
             main: main_plot(findings),
-            points: curve::points(findings, window_angstrom),
+            points: curve::points(findings, window),
             levels: level_pictures(findings),
             ladders: ladders(findings),
             gauge: gauge(findings),
             residuals: residuals(findings),
-            views: views(findings, window_angstrom),
+            views: views(findings, window),
             sentence: sentence(findings),
-            window_angstrom,
+            window,
         }
     }
 }

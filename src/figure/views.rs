@@ -3,9 +3,10 @@
 use super::curve::zero_hartree;
 use super::geometry::Bounds;
 use crate::findings::Findings;
+use crate::fit::Window;
 use crate::potential::Potential;
 use crate::potential::curve::ScanCurve;
-use crate::units::{to_angstrom, to_per_cm};
+use crate::units::{LengthUnit, to_angstrom, to_per_cm};
 
 /// The regions offered; one that a study does not have is none.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -21,12 +22,15 @@ pub struct Views {
 }
 
 /// The regions of a study.
-pub fn views(findings: &Findings, window: Option<(f64, f64)>) -> Views {
+pub fn views(findings: &Findings, window: Option<Window>) -> Views {
     let curve = findings.curve.as_deref();
     Views {
         near_minimum: curve.and_then(|c| near_minimum(findings, c)).filter(Bounds::is_valid),
         whole_well: curve.and_then(|c| whole_well(findings, c)).filter(Bounds::is_valid),
-        fit_window: curve.zip(window).and_then(|(c, w)| fit_window(c, w)).filter(Bounds::is_valid),
+        fit_window: curve
+            .zip(window)
+            .and_then(|(c, w)| fit_window(c, w.converted(LengthUnit::Angstrom)))
+            .filter(Bounds::is_valid),
         all_points: all_points(findings).filter(Bounds::is_valid),
     }
 }
@@ -86,7 +90,7 @@ fn well_below(curve: &ScanCurve, energy_per_cm: f64) -> Option<(f64, f64)> {
     (b > a).then(|| (to_angstrom(a), to_angstrom(b)))
 }
 
-fn fit_window(curve: &ScanCurve, (from, to): (f64, f64)) -> Option<Bounds> {
+fn fit_window(curve: &ScanCurve, Window { from, to, .. }: Window) -> Option<Bounds> {
     let energy = |r: f64| {
         to_per_cm(
             curve.energy_hartree(crate::units::LengthUnit::Angstrom.to_bohr(r)) - curve.v_e_hartree.value,

@@ -1,6 +1,7 @@
 //! Colours, text sizes and spacing, for dark and light. No other file names a colour or a size.
 
 use crate::figure::Role;
+use crate::figure::drawing::palette::{self, Palette, Rgb};
 use eframe::egui;
 use egui::{Color32, CornerRadius, FontFamily, FontId, Margin, Stroke, TextStyle, Theme, vec2};
 
@@ -23,8 +24,9 @@ pub const GRAB: f32 = 14.0;
 
 /// The colours of one theme, by what they are for.
 #[derive(Clone, Copy, Debug, PartialEq)]
-#[allow(missing_docs, reason = "each name says what the colour is for; the table is in the design page")]
+#[allow(missing_docs, reason = "each name says what the colour is for")]
 pub struct Look {
+    pub palette: &'static Palette,
     pub ground: Color32,
     pub panel: Color32,
     pub raised: Color32,
@@ -48,47 +50,69 @@ const fn rgb(hex: u32) -> Color32 {
     Color32::from_rgb((hex >> 16) as u8, (hex >> 8) as u8, hex as u8)
 }
 
+const fn color(Rgb(r, g, b): Rgb) -> Color32 {
+    Color32::from_rgb(r, g, b)
+}
+
+/// The colours that the window shares with pictures for paper.
+const fn shared(of: &'static Palette, own: Own) -> Look {
+    Look {
+        palette: of,
+        ground: own.ground,
+        panel: own.panel,
+        raised: own.raised,
+        rule: own.rule,
+        faint: own.faint,
+        stop: own.stop,
+        grid: color(of.grid),
+        text: color(of.text),
+        dim: color(of.dim),
+        scan: color(of.scan),
+        harmonic: color(of.harmonic),
+        morse: color(of.morse),
+        polynomial: color(of.polynomial),
+        reach: color(of.reach),
+        outside: color(of.outside),
+        level: color(of.level),
+        accent: color(of.accent),
+    }
+}
+
+/// The colours that only the window has.
+struct Own {
+    ground: Color32,
+    panel: Color32,
+    raised: Color32,
+    rule: Color32,
+    faint: Color32,
+    stop: Color32,
+}
+
 /// Dark theme.
-pub const DARK: Look = Look {
-    ground: rgb(0x12161b),
-    panel: rgb(0x181d24),
-    raised: rgb(0x212832),
-    rule: rgb(0x2c3440),
-    grid: rgb(0x232a34),
-    text: rgb(0xe8ebef),
-    dim: rgb(0x97a3b3),
-    faint: rgb(0x5f6b7a),
-    scan: rgb(0xf3f5f7),
-    harmonic: rgb(0xf2a65a),
-    morse: rgb(0x69b3f2),
-    polynomial: rgb(0x5fcf9e),
-    reach: rgb(0x3fb6a8),
-    outside: rgb(0xd98a5b),
-    level: rgb(0x8593a5),
-    accent: rgb(0xe9c46a),
-    stop: rgb(0xf07f7f),
-};
+pub const DARK: Look = shared(
+    &palette::DARK,
+    Own {
+        ground: rgb(0x12161b),
+        panel: rgb(0x181d24),
+        raised: rgb(0x212832),
+        rule: rgb(0x2c3440),
+        faint: rgb(0x5f6b7a),
+        stop: rgb(0xf07f7f),
+    },
+);
 
 /// Light theme.
-pub const LIGHT: Look = Look {
-    ground: rgb(0xf6f4ef),
-    panel: rgb(0xfdfcfa),
-    raised: rgb(0xffffff),
-    rule: rgb(0xd8d4ca),
-    grid: rgb(0xe8e4db),
-    text: rgb(0x1c232d),
-    dim: rgb(0x56616f),
-    faint: rgb(0x8b93a0),
-    scan: rgb(0x1c232d),
-    harmonic: rgb(0xb35c00),
-    morse: rgb(0x1f6fb5),
-    polynomial: rgb(0x0f7d55),
-    reach: rgb(0x157f74),
-    outside: rgb(0xb3592a),
-    level: rgb(0x6f7a88),
-    accent: rgb(0x8a6500),
-    stop: rgb(0xb3261e),
-};
+pub const LIGHT: Look = shared(
+    &palette::LIGHT,
+    Own {
+        ground: rgb(0xf6f4ef),
+        panel: rgb(0xfdfcfa),
+        raised: rgb(0xffffff),
+        rule: rgb(0xd8d4ca),
+        faint: rgb(0x8b93a0),
+        stop: rgb(0xb3261e),
+    },
+);
 
 impl Look {
     /// The colours of the theme in force.
@@ -98,16 +122,7 @@ impl Look {
 
     /// The colour of a series.
     pub const fn role(&self, role: Role) -> Color32 {
-        match role {
-            Role::Scanned | Role::Tail => self.scan,
-            Role::Parabola | Role::Harmonic => self.harmonic,
-            Role::Morse => self.morse,
-            Role::Polynomial => self.polynomial,
-            Role::Reach | Role::Tolerance => self.reach,
-            Role::LeadingOrder => self.dim,
-            Role::ZeroPoint => self.accent,
-            Role::Zero => self.level,
-        }
+        color(self.palette.role(role))
     }
 }
 

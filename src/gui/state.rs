@@ -4,13 +4,12 @@ use super::command::Command;
 use super::history::History;
 use super::meaning::Meaning;
 pub use super::view::{Page, Preset, Strip, Zoom};
-use crate::figure::Pictures;
 use crate::figure::geometry::Bounds;
+use crate::figure::{Pictures, PlotPoint};
 use crate::findings::Findings;
 use crate::fit::Window;
 use crate::scan::Scan;
 use crate::settings::Settings;
-use crate::units::LengthUnit;
 use std::collections::{BTreeMap, BTreeSet};
 use std::path::PathBuf;
 use std::sync::Arc;
@@ -227,11 +226,25 @@ impl State {
         let (_, loaded, settings) = self.document.focused()?;
         let unit = loaded.scan.length_unit;
         // In the scan's own unit, in which points are compared and edges snap.
-        settings.fits.window.map(|window| window.converted(unit)).or_else(|| {
-            let (from, to) = self.study()?.pictures.window_angstrom?;
-            let convert = |a: f64| LengthUnit::Angstrom.convert(a, unit);
-            Some(Window { from: convert(from), to: convert(to), unit })
-        })
+        settings
+            .fits
+            .window
+            .map(|window| window.converted(unit))
+            .or_else(|| Some(self.study()?.pictures.window?.converted(unit)))
+    }
+
+    /// Whether a point lies in the window in force, compared as the fits compare.
+    pub fn in_window(&self, point: &PlotPoint) -> bool {
+        let Some((_, loaded, settings)) = self.document.focused() else { return false };
+        let of_study = || self.study().and_then(|s| s.pictures.window);
+        let window = settings.fits.window.or_else(of_study);
+        window.is_none_or(|w| w.contains(point.r_as_read, loaded.scan.length_unit))
+    }
+
+    /// How many points in use the window in force holds.
+    pub fn points_in_window(&self) -> usize {
+        let points = self.study().map_or(&[][..], |s| &s.pictures.points);
+        points.iter().filter(|p| p.set_aside.is_none() && self.in_window(p)).count()
     }
 
     /// The level that the plot brings forward.

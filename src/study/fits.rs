@@ -9,7 +9,7 @@ use crate::fit::comparison::{compare, label};
 use crate::fit::window_study::{Stopped, WindowStudy, WindowStudyInput, WindowStudySettings, window_study};
 use crate::fit::{
     BootstrapError, BootstrapSettings, Fit, FitError, FitPoint, FitRequest, Variance, WeightedPoint,
-    Weighting, Window, bootstrap, declared_weight_per_hartree2, default_window, fit_with,
+    Weighting, Window, bootstrap, declared_weight_per_hartree2, fit_with,
 };
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{LocalDerivatives, ScanCurve};
@@ -20,7 +20,7 @@ use crate::units::to_per_cm;
 /// Does every fit that the settings ask for.
 pub fn fit_all(findings: &mut Findings, curve: &ScanCurve) {
     weigh(findings, curve);
-    let window = window(findings, curve);
+    let Some(window) = findings.window() else { return };
     let (inside, outside) = split(findings, curve, window);
     let variance = findings.settings.fits.weights.variance(curve.noise_hartree);
     let mass_me = mass_me(findings);
@@ -90,14 +90,6 @@ pub fn study_windows(
 
 fn mass_me(findings: &Findings) -> Option<f64> {
     findings.masses.as_ref().map(|m| m.reduced_mass_me)
-}
-
-fn window(findings: &Findings, curve: &ScanCurve) -> Window {
-    let source = &findings.source;
-    findings.settings.fits.window.unwrap_or_else(|| {
-        let r: Vec<f64> = source.points.iter().filter(|p| p.used).map(|p| p.r_as_read).collect();
-        default_window(curve.local.r_e_bohr, &r, source.length_unit)
-    })
 }
 
 /// Gives the points their weights; declared ones in cm² (1/σ², σ in cm⁻¹).

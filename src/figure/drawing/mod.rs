@@ -4,7 +4,7 @@
 mod axes;
 mod ladders;
 mod legend;
-mod palette;
+pub mod palette;
 mod panel;
 mod type_face;
 

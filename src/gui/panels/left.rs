@@ -4,7 +4,6 @@ use super::right::fold_ui;
 use super::{asymptote, masses};
 use crate::digits;
 use crate::figure::{fit_label, fit_role};
-use crate::fit::Window;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{self, ButtonForm, command_button, elided, line_sample};
@@ -174,7 +173,7 @@ fn window_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         }
     });
     ui.horizontal(|ui| {
-        let text = points_text(state, &window);
+        let text = points_text(state);
         ui.label(RichText::new(text).font(look::plain(look::SMALL)).color(look.dim));
         if state.can(&Command::ResetWindow).is_ok() {
             command_button(ui, state, Command::ResetWindow, ButtonForm::Link, out);
@@ -183,12 +182,10 @@ fn window_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 }
 
 /// How many points the window holds.
-fn points_text(state: &State, window: &Window) -> String {
+fn points_text(state: &State) -> String {
     let Some(study) = state.study() else { return String::new() };
     let points = &study.pictures.points;
-    let inside =
-        points.iter().filter(|p| p.set_aside.is_none() && crate::gui::plot::in_window(p, window)).count();
-    format!("{inside} of {} points used", points.len())
+    format!("{} of {} points used", state.points_in_window(), points.len())
 }
 
 fn fits_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &mut Vec<Command>) {

@@ -2,6 +2,7 @@
 
 use super::Stage;
 use super::map::Map;
+use super::steps::Slider;
 use crate::figure::number;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
@@ -10,8 +11,7 @@ use crate::potential::Potential;
 use crate::potential::curve::OuterTail;
 use crate::units::{EnergyUnit, to_per_cm};
 use eframe::egui;
-use egui::accesskit::{Action, ActionData};
-use egui::{CursorIcon, EventFilter, Key, Pos2, Rect, Response, Sense, Stroke, Ui, WidgetInfo, pos2, vec2};
+use egui::{CursorIcon, Pos2, Rect, Response, Sense, Stroke, Ui, pos2, vec2};
 
 /// Name of the handle, as read aloud.
 const NAME: &str = "Energy of the separated atoms above the minimum in wavenumbers";
@@ -52,7 +52,9 @@ pub(super) fn asymptote_ui(
             Sense::click_and_drag() | Sense::FOCUSABLE,
         )
         .on_hover_and_drag_cursor(CursorIcon::ResizeVertical);
-    if let Some(wanted) = wanted(ui, &response, above, map)
+    let slider =
+        Slider { name: NAME, value: above, limits: (0.0, f64::INFINITY), step: STEP, sideways: false };
+    if let Some(wanted) = wanted(ui, &response, &slider, map)
         && let Some(curve) = &study.findings.curve
     {
         // Below the minimum nothing dissociates.
@@ -63,52 +65,20 @@ pub(super) fn asymptote_ui(
     if response.drag_stopped() {
         out.push(Command::Settle);
     }
-    tell(ui, &response, above);
+    slider.tell(ui, &response);
     draw(ui, &response, stage, grip, above, assumed);
 }
 
 /// Where the hand, the keys or assistive technology want the line, in cm⁻¹.
-fn wanted(ui: &Ui, response: &Response, above: f64, map: &Map) -> Option<f64> {
+fn wanted(ui: &Ui, response: &Response, slider: &Slider<'_>, map: &Map) -> Option<f64> {
     if response.dragged() {
         // Only a hand that moves moves the line: the view may follow the new limit, and a resting pointer
         // would then mean another energy, again and again.
         let moves = !response.drag_started() && response.drag_delta() != egui::Vec2::ZERO;
         let pointer = response.interact_pointer_pos().filter(|_| moves)?;
-        return Some(map.y_value(pointer.y).round()).filter(|w| *w != above.round());
+        return Some(map.y_value(pointer.y).round()).filter(|w| *w != slider.value.round());
     }
-    let mut steps = 0.0;
-    if response.has_focus() {
-        ui.memory_mut(|m| {
-            m.set_focus_lock_filter(response.id, EventFilter { vertical_arrows: true, ..Default::default() });
-        });
-        let count = |key| ui.input(|i| i.num_presses(key)) as f64;
-        steps += count(Key::ArrowUp) - count(Key::ArrowDown);
-    }
-    let set = ui.input(|i| {
-        let count = |action| i.num_accesskit_action_requests(response.id, action) as f64;
-        steps += count(Action::Increment) - count(Action::Decrement);
-        i.accesskit_action_requests(response.id, Action::SetValue).find_map(|r| match r.data {
-            Some(ActionData::NumericValue(v)) => Some(v),
-            _ => None,
-        })
-    });
-    match set {
-        Some(v) if v.is_finite() => Some(v),
-        _ if steps != 0.0 => Some(above + STEP * steps),
-        _ => None,
-    }
-}
-
-fn tell(ui: &Ui, response: &Response, above: f64) {
-    response.widget_info(|| WidgetInfo::slider(true, above, NAME));
-    ui.ctx().accesskit_node_builder(response.id, |node| {
-        node.set_min_numeric_value(0.0);
-        node.set_numeric_value(above);
-        node.set_numeric_value_step(STEP);
-        for action in [Action::SetValue, Action::Increment, Action::Decrement] {
-            node.add_action(action);
-        }
-    });
+    slider.wanted(ui, response)
 }
 
 fn draw(ui: &Ui, response: &Response, stage: &Stage, grip: Pos2, above: f64, assumed: bool) {

@@ -2,7 +2,8 @@
 //! set by assistive technology.
 
 use super::map::Map;
-use super::points::{in_scan_unit, in_window, snap};
+use super::points::{in_scan_unit, snap};
+use super::steps::Slider;
 use super::{Stage, points};
 use crate::figure::number;
 use crate::fit::Window;
@@ -11,11 +12,7 @@ use crate::gui::look::{self, Look};
 use crate::gui::state::{State, Study};
 use crate::units::LengthUnit;
 use eframe::egui;
-use egui::accesskit::{Action, ActionData};
-use egui::{
-    Color32, CursorIcon, EventFilter, Key, Pos2, Rect, Response, Sense, Shape, Stroke, Ui, WidgetInfo, pos2,
-    vec2,
-};
+use egui::{Color32, CursorIcon, Pos2, Rect, Response, Sense, Shape, Stroke, Ui, pos2, vec2};
 
 /// Names of the handles, as read aloud.
 pub const NAMES: [&str; 2] = ["Lower edge of the fit window", "Upper edge of the fit window"];
@@ -36,12 +33,13 @@ pub(super) fn window_edges_ui(
 ) {
     let Some(window) = state.window() else { return };
     for upper in [false, true] {
-        edge_ui(ui, study, stage, map, window, upper, out);
+        edge_ui(ui, state, study, stage, map, window, upper, out);
     }
 }
 
 fn edge_ui(
     ui: &mut Ui,
+    state: &State,
     study: &Study,
     stage: &Stage,
     map: &Map,
@@ -66,7 +64,10 @@ fn edge_ui(
         .interact(hit, id, Sense::click_and_drag() | Sense::FOCUSABLE)
         .on_hover_and_drag_cursor(CursorIcon::ResizeHorizontal);
     let limits = limits(study, window, upper);
-    if let Some(wanted) = wanted_edge(ui, &response, value, study, map, window.unit) {
+    let shown = |edge: f64| window.unit.convert(edge, LengthUnit::Angstrom);
+    let slider =
+        Slider { name, value, limits: (shown(limits.0), shown(limits.1)), step: STEP, sideways: true };
+    if let Some(wanted) = wanted_edge(ui, &response, &slider, study, map, window.unit) {
         let wanted = wanted.clamp(limits.0, limits.1);
         let mut changed = window;
         if upper {
@@ -82,8 +83,8 @@ fn edge_ui(
         out.push(Command::Settle);
     }
     click_through(&response, study, map, out);
-    tell(ui, &response, name, value, limits, window.unit);
-    draw(ui, &response, study, stage, grip, value, seen, upper, &window);
+    slider.tell(ui, &response);
+    draw(ui, &response, state, stage, grip, value, seen, upper);
 }
 
 /// How far an edge may go, in the unit of the window: it keeps off the other edge and on the scan.
@@ -103,7 +104,7 @@ fn limits(study: &Study, window: Window, upper: bool) -> (f64, f64) {
 fn wanted_edge(
     ui: &Ui,
     response: &Response,
-    value: f64,
+    slider: &Slider<'_>,
     study: &Study,
     map: &Map,
     unit: LengthUnit,
@@ -117,29 +118,7 @@ fn wanted_edge(
         let near = snap(&study.pictures.points, pointer.x, map, SNAP);
         return Some(near.map_or_else(|| in_scan_unit(map.x_value(pointer.x), unit), |p| p.r_as_read));
     }
-    let mut steps = 0.0;
-    if response.has_focus() {
-        ui.memory_mut(|m| {
-            let keys = EventFilter { horizontal_arrows: true, ..Default::default() };
-            m.set_focus_lock_filter(response.id, keys);
-        });
-        let count = |key| ui.input(|i| i.num_presses(key)) as f64;
-        steps += count(Key::ArrowRight) - count(Key::ArrowLeft);
-    }
-    let (set, more) = ui.input(|i| {
-        let set = i.accesskit_action_requests(response.id, Action::SetValue).find_map(|r| match r.data {
-            Some(ActionData::NumericValue(v)) => Some(v),
-            _ => None,
-        });
-        let count = |action| i.num_accesskit_action_requests(response.id, action) as f64;
-        (set, count(Action::Increment) - count(Action::Decrement))
-    });
-    steps += more;
-    match set {
-        Some(v) if v.is_finite() => Some(in_scan_unit(v, unit)),
-        _ if steps != 0.0 => Some(in_scan_unit(value + STEP * steps, unit)),
-        _ => None,
-    }
+    slider.wanted(ui, response).map(|v| in_scan_unit(v, unit))
 }
 
 /// A click on the line where a point lies is meant for the point.
@@ -151,32 +130,16 @@ fn click_through(response: &Response, study: &Study, map: &Map, out: &mut Vec<Co
     }
 }
 
-fn tell(ui: &Ui, response: &Response, name: &str, value: f64, limits: (f64, f64), unit: LengthUnit) {
-    response.widget_info(|| WidgetInfo::slider(true, value, name));
-    let (low, high) =
-        (unit.convert(limits.0, LengthUnit::Angstrom), unit.convert(limits.1, LengthUnit::Angstrom));
-    ui.ctx().accesskit_node_builder(response.id, |node| {
-        node.set_min_numeric_value(low);
-        node.set_max_numeric_value(high);
-        node.set_numeric_value(value);
-        node.set_numeric_value_step(STEP);
-        node.add_action(Action::SetValue);
-        node.add_action(Action::Increment);
-        node.add_action(Action::Decrement);
-    });
-}
-
 #[expect(clippy::too_many_arguments, reason = "everything that is drawn of one edge")]
 fn draw(
     ui: &Ui,
     response: &Response,
-    study: &Study,
+    state: &State,
     stage: &Stage,
     grip: Pos2,
     value: f64,
     seen: bool,
     upper: bool,
-    window: &Window,
 ) {
     let look = Look::of(ui);
     let lively = response.hovered() || response.dragged() || response.has_focus();
@@ -194,8 +157,7 @@ fn draw(
         }
     }
     if lively {
-        let inside =
-            study.pictures.points.iter().filter(|p| p.set_aside.is_none() && in_window(p, window)).count();
+        let inside = state.points_in_window();
         let text = format!("{} Å · {inside} points", number::fixed(value, 3));
         tag(ui, stage, grip, &text, upper);
     }

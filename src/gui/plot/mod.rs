@@ -12,10 +12,9 @@ mod levels;
 mod main_plot;
 mod map;
 mod points;
+mod steps;
 mod strip;
 mod tolerance;
-
-pub use points::in_window;
 
 use super::command::Command;
 use super::look::{self, Look};

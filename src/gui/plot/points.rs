@@ -2,20 +2,12 @@
 
 use super::map::Map;
 use crate::figure::PlotPoint;
-use crate::fit::Window;
 use crate::gui::command::Command;
 use crate::gui::look::Look;
 use crate::gui::state::State;
 use crate::units::LengthUnit;
 use eframe::egui;
 use egui::{Stroke, Ui, vec2};
-
-/// Whether a point lies in a window, edges inclusive, compared in the unit in which it was read.
-pub fn in_window(point: &PlotPoint, window: &Window) -> bool {
-    // The default window comes from a conversion and back: rounding must not lose a point on its edge.
-    let slack = 1e-9 * point.r_as_read.abs();
-    point.r_as_read >= window.from - slack && point.r_as_read <= window.to + slack
-}
 
 /// What a click on a point does.
 pub(super) fn toggle(point: &PlotPoint) -> Command {
@@ -25,7 +17,6 @@ pub(super) fn toggle(point: &PlotPoint) -> Command {
 pub(super) fn points_ui(ui: &Ui, state: &State, points: &[PlotPoint], map: &Map, hovered: Option<usize>) {
     let look = Look::of(ui);
     let painter = ui.painter().with_clip_rect(map.rect.expand(1.0));
-    let window = state.window();
     let pointed = state.view.pointed_angstrom;
     for (index, point) in points.iter().enumerate() {
         if !(map.sees_x(point.at[0]) && map.sees_y(point.at[1])) {
@@ -45,7 +36,7 @@ pub(super) fn points_ui(ui: &Ui, state: &State, points: &[PlotPoint], map: &Map,
             }
             continue;
         }
-        let inside = window.is_none_or(|w| in_window(point, &w));
+        let inside = state.in_window(point);
         let (radius, color) = if inside { (3.6, look.scan) } else { (3.0, look.level) };
         painter.circle(at, radius, look.panel, Stroke::new(1.5, color));
     }

@@ -1,15 +1,13 @@
 //! The tolerance lines of the gauge: the upper one has a grip.
 
 use super::map::Map;
+use super::steps::Slider;
 use crate::figure::number;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::state::State;
 use eframe::egui;
-use egui::accesskit::{Action, ActionData};
-use egui::{
-    CursorIcon, EventFilter, Key, Rect, Response, Sense, Stroke, StrokeKind, Ui, WidgetInfo, pos2, vec2,
-};
+use egui::{CursorIcon, Rect, Response, Sense, Stroke, StrokeKind, Ui, pos2, vec2};
 
 /// Name of the handle, as read aloud.
 const NAME: &str = "Tolerance of the reach in percent";
@@ -33,7 +31,8 @@ pub(super) fn tolerance_ui(ui: &mut Ui, state: &State, map: &Map, out: &mut Vec<
             Sense::click_and_drag() | Sense::FOCUSABLE,
         )
         .on_hover_and_drag_cursor(CursorIcon::ResizeVertical);
-    if let Some(wanted) = wanted(ui, &response, percent, map) {
+    let slider = Slider { name: NAME, value: percent, limits: LIMITS, step: 0.5, sideways: false };
+    if let Some(wanted) = wanted(ui, &response, &slider, map) {
         let tolerance = wanted.clamp(LIMITS.0, LIMITS.1) / 100.0;
         if (tolerance - settings.reach.tolerance).abs() > 1e-9 {
             out.push(Command::SetTolerance { tolerance, resting: !response.dragged() });
@@ -42,50 +41,17 @@ pub(super) fn tolerance_ui(ui: &mut Ui, state: &State, map: &Map, out: &mut Vec<
     if response.drag_stopped() {
         out.push(Command::Settle);
     }
-    tell(ui, &response, percent);
+    slider.tell(ui, &response);
     draw(ui, &response, map, grip, percent);
 }
 
 /// Where the hand, the keys or assistive technology want the tolerance, in percent.
-fn wanted(ui: &Ui, response: &Response, percent: f64, map: &Map) -> Option<f64> {
+fn wanted(ui: &Ui, response: &Response, slider: &Slider<'_>, map: &Map) -> Option<f64> {
     if response.dragged() {
         let pointer = response.interact_pointer_pos().filter(|_| !response.drag_started())?;
         return Some((map.y_value(pointer.y) * 10.0).round() / 10.0);
     }
-    let mut steps = 0.0;
-    if response.has_focus() {
-        ui.memory_mut(|m| {
-            m.set_focus_lock_filter(response.id, EventFilter { vertical_arrows: true, ..Default::default() });
-        });
-        let count = |key| ui.input(|i| i.num_presses(key)) as f64;
-        steps += count(Key::ArrowUp) - count(Key::ArrowDown);
-    }
-    let set = ui.input(|i| {
-        let count = |action| i.num_accesskit_action_requests(response.id, action) as f64;
-        steps += count(Action::Increment) - count(Action::Decrement);
-        i.accesskit_action_requests(response.id, Action::SetValue).find_map(|r| match r.data {
-            Some(ActionData::NumericValue(v)) => Some(v),
-            _ => None,
-        })
-    });
-    match set {
-        Some(v) if v.is_finite() => Some(v),
-        _ if steps != 0.0 => Some(percent + 0.5 * steps),
-        _ => None,
-    }
-}
-
-fn tell(ui: &Ui, response: &Response, percent: f64) {
-    response.widget_info(|| WidgetInfo::slider(true, percent, NAME));
-    ui.ctx().accesskit_node_builder(response.id, |node| {
-        node.set_min_numeric_value(LIMITS.0);
-        node.set_max_numeric_value(LIMITS.1);
-        node.set_numeric_value(percent);
-        node.set_numeric_value_step(0.5);
-        for action in [Action::SetValue, Action::Increment, Action::Decrement] {
-            node.add_action(action);
-        }
-    });
+    slider.wanted(ui, response)
 }
 
 fn draw(ui: &Ui, response: &Response, map: &Map, grip: egui::Pos2, percent: f64) {
