@@ -1,5 +1,6 @@
 //! All results of a study: per step a value or that step's failure, and the notices.
 
+use crate::density::Densities;
 use crate::estimate::Estimate;
 use crate::fit::{
     BootstrapSettings, Comparison, Fit, FitError, FitRequest, Window, WindowStudy, default_window,
@@ -228,6 +229,8 @@ pub struct Findings {
     pub constants: Constants,
     /// The reach; none without a minimum.
     pub reach: Option<Reach>,
+    /// Figures of the densities of the levels without rotation.
+    pub densities: Densities,
     /// Thermal averages by temperature; empty without levels.
     pub thermal: Vec<ThermalPoint>,
     /// All remarks, the gravest first.

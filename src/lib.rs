@@ -22,6 +22,7 @@
 //! | D_e (centrifugal) | `centrifugal_d_e_per_cm` (never bare `d_e`: it has two meanings) |
 //! | v, J, G(v), B_v | `v`, `j`, `g_v_per_cm`, `b_v_per_cm` |
 
+pub mod density;
 pub mod digits;
 pub mod estimate;
 pub mod export;

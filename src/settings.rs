@@ -1,6 +1,7 @@
 //! Every choice the user has, in one value: the same in the window, in the headless command and in a
 //! findings file. Unknown keys are refused.
 
+use crate::density::DensitySettings;
 use crate::fit::FitSettings;
 use crate::potential::curve::CurveSettings;
 use crate::reach::ReachSettings;
@@ -117,6 +118,8 @@ pub struct Settings {
     pub levels: LevelSettings,
     /// The reach.
     pub reach: ReachSettings,
+    /// The densities.
+    pub densities: DensitySettings,
     /// The thermal averages.
     pub thermal: ThermalSettings,
 }
@@ -153,6 +156,9 @@ impl Settings {
         }
         if let Some(tolerance) = self.reach.spacing_tolerance_per_cm {
             above_zero("reach.spacing_tolerance_per_cm", tolerance)?;
+        }
+        if let Some(width) = self.densities.averaging_width_angstrom {
+            above_zero("densities.averaging_width_angstrom", width)?;
         }
         above_zero("levels.relative_accuracy", self.levels.relative_accuracy)?;
         above_zero("levels.lean_probability", self.levels.lean_probability)?;

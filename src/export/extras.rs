@@ -13,6 +13,7 @@ pub(super) fn sections(findings: &Findings) -> Map<String, Value> {
     let mut map = Map::new();
     let quasi = findings.quasi_bound.as_ref();
     let mut put = |key: &str, value: Value| map.insert(key.to_owned(), value);
+    put("densities", super::densities::densities(&findings.densities));
     put("quasi_bound", quasi.map_or(Value::Null, |list| list.iter().map(quasi_bound).collect()));
     put("property_averages", findings.property_averages.iter().map(averages).collect());
     put("isotopologues", findings.isotopologues.iter().map(isotopologue).collect());

@@ -1,6 +1,7 @@
 //! Findings written out: the findings file (JSON) and tables. Writers take a `Write`; nothing here
 //! opens a file.
 
+mod densities;
 mod extras;
 pub mod json;
 pub mod parameters;

@@ -2,6 +2,7 @@
 //! window studies.
 //! Units stand in the header; an empty cell means that the study has no such value.
 
+mod densities;
 mod thermal;
 
 use crate::estimate::Estimate;
@@ -22,17 +23,20 @@ pub enum Table {
     WindowStudy,
     /// One row a point of a curve, bond length and energy as read.
     Curve,
+    /// One row a bond length of each chosen level.
+    Densities,
     /// One row a temperature.
     Thermal,
 }
 
 impl Table {
     /// The tables by their names on the command line.
-    pub const ALL: [(&'static str, Self); 5] = [
+    pub const ALL: [(&'static str, Self); 6] = [
         ("levels", Self::Levels),
         ("constants", Self::Constants),
         ("window-study", Self::WindowStudy),
         ("curve", Self::Curve),
+        ("densities", Self::Densities),
         ("thermal", Self::Thermal),
     ];
 
@@ -46,6 +50,7 @@ impl Table {
             Self::Constants => write_constants(studies, out),
             Self::WindowStudy => write_window_studies(studies, out),
             Self::Curve => write_curves(studies, out),
+            Self::Densities => densities::write(studies, out),
             Self::Thermal => thermal::write(studies, out),
         }
     }

@@ -38,7 +38,7 @@ pub fn level_pictures(findings: &Findings) -> Vec<LevelPicture> {
 }
 
 /// The energy reach in angstrom; an open end runs to infinity.
-fn reach_angstrom(findings: &Findings) -> Option<(f64, f64)> {
+pub(super) fn reach_angstrom(findings: &Findings) -> Option<(f64, f64)> {
     let (reach, curve) = (findings.reach.as_ref()?, findings.curve.as_ref()?);
     let at = |x: f64| to_angstrom(curve.r_e_bohr.value + x);
     Some((
@@ -47,7 +47,7 @@ fn reach_angstrom(findings: &Findings) -> Option<(f64, f64)> {
     ))
 }
 
-fn scale_per_cm(levels: &[Level]) -> f64 {
+pub(super) fn scale_per_cm(levels: &[Level]) -> f64 {
     let Some(first) = levels.first() else { return 1.0 };
     let spacing = levels.get(1).map_or(first.energy_per_cm, |l| l.energy_per_cm - first.energy_per_cm);
     let peak = first.wavefunction.psi.iter().map(|p| p * p).fold(0.0, f64::max) / ANGSTROM_PER_BOHR;
@@ -112,7 +112,7 @@ fn psi_at(wave: &Wavefunction, r: f64) -> f64 {
 }
 
 /// Cuts the mesh at the ends of the reach and says which parts lie inside.
-fn split(
+pub(super) fn split(
     r: &mut Vec<f64>,
     density: &mut Vec<f64>,
     (from, to): (f64, f64),

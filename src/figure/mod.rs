@@ -6,6 +6,7 @@
 
 mod curve;
 mod densities;
+mod density_lines;
 pub mod drawing;
 mod gauge;
 pub mod geometry;
@@ -20,6 +21,7 @@ mod views;
 
 pub use curve::{fit_label, fit_role, main_plot};
 pub use densities::{LevelPicture, level_pictures};
+pub use density_lines::{DensityKind, DensityLine, DensityPicture, density_picture};
 pub use gauge::gauge;
 pub use ladders::{Ladder, Ladders, ladders};
 pub use residuals::residuals;

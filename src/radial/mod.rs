@@ -22,6 +22,7 @@ pub use distortion::Distortion;
 pub use observables::{Observables, turning_points_bohr};
 pub(crate) use parallel::in_halves;
 pub use quasibound::{QuasiBound, quasi_bound};
+pub use wavefunction::RunningProbability;
 
 use crate::estimate::{ErrorSource, Estimate};
 use crate::potential::Potential;
@@ -34,6 +35,12 @@ pub const HIGHEST_V_WITHOUT_LIMIT: usize = 99;
 /// No more levels than this are listed unless `highest_v` asks for them: a tail that rises for thousands of bohr
 /// can hold thousands of levels that no scan supports. A list of this length is cut there.
 pub const MOST_LEVELS: usize = 400;
+
+/// Nodes and weights of Gauss-Legendre quadrature with eight points on [−1, 1].
+pub(crate) fn gauss_legendre_8() -> (&'static [f64], &'static [f64]) {
+    let element = reference_element::ReferenceElement::of_degree(7);
+    (&element.gauss_nodes, &element.gauss_weights)
+}
 
 /// What the solver is asked for.
 #[derive(Clone, Copy, Debug, PartialEq)]

@@ -96,6 +96,22 @@ impl Wavefunction {
             .sum()
     }
 
+    /// The probability below any bond length, for many questions of one state; none without a mesh.
+    pub fn running_probability(&self) -> Option<RunningProbability<'_>> {
+        if self.psi.len() <= self.degree || self.degree == 0 {
+            return None;
+        }
+        let reference = ReferenceElement::of_degree(self.degree);
+        let mut sum = 0.0;
+        let at_ends = (0..self.elements()).map(|e| {
+            let before = sum;
+            let (left, right, _) = self.element(e);
+            sum += self.probability_in_element(reference, e, (left, right));
+            before
+        });
+        Some(RunningProbability { at_ends: at_ends.collect(), of: self, reference })
+    }
+
     /// ψ at the given bond lengths (any order), from the polynomial of the element each lies in; 0 outside the
     /// mesh.
     pub fn sample(&self, r_bohr: &[f64]) -> Vec<f64> {
@@ -134,5 +150,30 @@ impl Wavefunction {
             sign = psi.signum();
         }
         count
+    }
+}
+
+/// ∫ψ² from the inner end of the mesh, kept at the ends of its elements.
+#[derive(Clone, Debug)]
+pub struct RunningProbability<'a> {
+    of: &'a Wavefunction,
+    reference: &'static ReferenceElement,
+    /// Probability below the left end of each element.
+    at_ends: Vec<f64>,
+}
+
+impl RunningProbability<'_> {
+    /// Probability below `r_bohr`; the polynomials are integrated, as in [`Wavefunction::probability`].
+    pub fn below(&self, r_bohr: f64) -> f64 {
+        let points = &self.of.r_bohr;
+        let last = points.len() - 1;
+        if r_bohr.is_nan() || r_bohr <= points[0] {
+            return 0.0;
+        }
+        let end = r_bohr.min(points[last]);
+        let before = points.partition_point(|&x| x < end).saturating_sub(1);
+        let e = (before / self.of.degree).min(self.at_ends.len() - 1);
+        let (left, _, _) = self.of.element(e);
+        self.at_ends[e] + self.of.probability_in_element(self.reference, e, (left, end))
     }
 }

@@ -1,6 +1,7 @@
 //! The study: one pure function from scan and settings to findings. This file is only the order of the
 //! steps; each step has a file of its own or belongs to an area of its own.
 
+mod densities;
 mod derived;
 mod fits;
 mod isotopologues;
@@ -15,6 +16,7 @@ mod tail_checks;
 mod tail_spread;
 mod thermal;
 
+use crate::density::Densities;
 use crate::findings::{Findings, Source};
 use crate::fit::curve::build_curve;
 use crate::fit::{Comparison, FitPoint};
@@ -29,6 +31,7 @@ use crate::spectroscopy::{self, Constants, DunhamChoice, LevelSet};
 use std::sync::Arc;
 use thiserror::Error;
 
+pub use densities::{LevelDensities, level_densities};
 pub use fits::{bootstrap_fit, study_windows};
 
 /// Why settings and scan do not fit together (a wrong name, not a bad curve).
@@ -70,6 +73,8 @@ pub enum Stage {
     Constants,
     /// The reach.
     Reach,
+    /// The figures of the densities.
+    Densities,
     /// The thermal averages.
     Thermal,
     /// Rotation, quasi-bound levels, averages, isotopologues, Y_kl: mostly on demand.
@@ -87,6 +92,7 @@ impl Stage {
             Self::Distortion => "distortion",
             Self::Constants => "constants",
             Self::Reach => "reach",
+            Self::Densities => "densities",
             Self::Thermal => "thermal",
             Self::Further => "further",
         }
@@ -150,6 +156,7 @@ pub fn study_observed(
         near_dissociation: None,
         constants: Constants::default(),
         reach: None,
+        densities: Densities::default(),
         thermal: Vec::new(),
         notices: scan.notices.clone(),
     };
@@ -269,6 +276,9 @@ fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
 
     findings.reach = reach::reach(&curve, mass_me, &findings.levels, &findings.settings.reach);
     after(Stage::Reach);
+
+    densities::fill(findings, &curve);
+    after(Stage::Densities);
 
     thermal::fill(findings, &curve);
     after(Stage::Thermal);

@@ -2,6 +2,7 @@
 
 #![allow(clippy::unwrap_used, reason = "a test that cannot go on should stop with a panic")]
 
+mod densities;
 mod experiment;
 mod fits;
 mod h2plus;

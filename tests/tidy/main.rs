@@ -26,7 +26,7 @@ fn rust_files(folder: &Path) -> Vec<PathBuf> {
 }
 
 /// Areas in the order of dependency: an area may name only areas before it (or its own).
-const LAYERS: [(&str, &[&str]); 16] = [
+const LAYERS: [(&str, &[&str]); 17] = [
     ("units", &[]),
     ("estimate", &["units"]),
     ("digits", &[]),
@@ -38,6 +38,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
     ("radial", &["units", "estimate", "notice", "potential"]),
     ("spectroscopy", &["units", "estimate", "notice", "potential", "radial", "settings", "fit"]),
     ("thermal", &["units", "potential", "radial"]),
+    ("density", &["units", "potential", "radial"]),
     ("reach", &["units", "potential", "radial", "thermal", "settings", "estimate"]),
     (
         "findings",
@@ -54,6 +55,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
             "reach",
             "settings",
             "thermal",
+            "density",
         ],
     ),
     ("verdict", &["units", "digits", "findings", "notice", "reach"]),
@@ -74,6 +76,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
             "settings",
             "findings",
             "thermal",
+            "density",
         ],
     ),
     (
@@ -93,6 +96,7 @@ const LAYERS: [(&str, &[&str]); 16] = [
             "settings",
             "findings",
             "thermal",
+            "density",
             "digits",
             "verdict",
         ],
