@@ -81,7 +81,7 @@ pub fn distance(one: &dyn Distribution, other: &dyn Distribution, width_bohr: f6
     let half = (STEPS_A_WIDTH / 2).max((0.5 * width_bohr * STEPS.0 as f64 / range).ceil() as usize);
     let step = 0.5 * width_bohr / half as f64;
     let count = (range / step).ceil();
-    if !(count <= STEPS.1 as f64) {
+    if count.is_nan() || count > STEPS.1 as f64 {
         return None;
     }
     let start = from - 0.5 * width_bohr;
