@@ -8,7 +8,7 @@ use crate::fit::{
 use crate::notice::{Notice, Severity};
 use crate::potential::curve::ScanCurve;
 use crate::radial::Level;
-use crate::reach::Reach;
+use crate::reach::{FitReach, Reach};
 use crate::scan::Layout;
 use crate::settings::Settings;
 use crate::species::Masses;
@@ -76,6 +76,8 @@ pub struct FitFindings {
     pub levels_per_cm: Vec<f64>,
     /// Their standard errors in cm⁻¹, same order, where known.
     pub level_errors_per_cm: Vec<Option<f64>>,
+    /// Where the fit stands for the curve; none without a fit.
+    pub reach: Option<FitReach>,
     /// Standard errors by resampled residuals; none unless asked for.
     pub bootstrap: Option<FitBootstrap>,
 }

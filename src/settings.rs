@@ -151,6 +151,7 @@ impl Settings {
             })
         };
         above_zero("reach.tolerance", self.reach.tolerance)?;
+        above_zero("reach.absolute.value", self.reach.absolute.value)?;
         if let Some(tolerance) = self.reach.level_tolerance_per_cm {
             above_zero("reach.level_tolerance_per_cm", tolerance)?;
         }

@@ -5,9 +5,9 @@ use crate::potential::Potential;
 use std::f64::consts::{FRAC_PI_2, PI};
 
 /// Points between the turning points at which barriers above the energy are looked for.
-const LOOK: usize = 400;
+const LOOK: usize = 200;
 /// Panels over an allowed region, each with two Gauss points.
-const PANELS: usize = 512;
+const PANELS: usize = 200;
 
 /// The density proportional to 1/sqrt(E − V) wherever E > V, normalised.
 ///

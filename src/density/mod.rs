@@ -17,9 +17,9 @@ pub use quantum::QuantumDensity;
 use serde::{Deserialize, Serialize};
 
 /// Steps over one averaging width when two averaged densities are compared, at least.
-const STEPS_A_WIDTH: usize = 24;
+const STEPS_A_WIDTH: usize = 16;
 /// Steps over the whole range when they are compared, at least and at most.
-const STEPS: (usize, usize) = (600, 40_000);
+const STEPS: (usize, usize) = (400, 40_000);
 
 /// Choices about densities.
 #[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
@@ -28,9 +28,12 @@ pub struct DensitySettings {
     /// Width in angstrom over which densities are averaged before the quantum and the classical one are compared;
     /// none: the zero-point amplitude.
     pub averaging_width_angstrom: Option<f64>,
-    /// The levels of the table of densities; empty: v = 0 to 5.
+    /// The levels of the table of densities, empty: v = 0 to 5. They are compared with the classical density too.
     pub levels: Vec<usize>,
 }
+
+/// Levels up to this v are compared with the classical density, which takes some time, unasked.
+pub const COMPARED_UP_TO_V: usize = 11;
 
 /// Figures of all levels of a study.
 #[derive(Clone, Debug, Default, PartialEq)]

@@ -18,7 +18,7 @@ use crate::species::Masses;
 use crate::spectroscopy::Constants;
 use crate::thermal::{Averages, ThermalPoint};
 use crate::units::{
-    ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_angstrom,
+    ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_angstrom, to_per_cm,
 };
 use fits::fit;
 use serde_json::{Value, json};
@@ -314,16 +314,20 @@ fn constants(constants: &Constants) -> Value {
     })
 }
 
-fn interval(interval: &Interval) -> Value {
+pub(super) fn interval(interval: &Interval) -> Value {
     let word = |ended: EndedBy| match ended {
         EndedBy::Tolerance => "tolerance",
         EndedBy::Scan => "scan",
+        EndedBy::Barrier => "barrier",
     };
+    let end = |e: Option<Estimate>| e.map(|e| estimated(e, ANGSTROM_PER_BOHR, "angstrom"));
+    let energy = |i: usize| interval.energies_hartree[i].map(|e| quantity(to_per_cm(e), "cm-1"));
     json!({
-        "x_minus": interval.x_minus_bohr.map(angstrom),
-        "x_plus": interval.x_plus_bohr.map(angstrom),
-        "leading_order": interval.leading_order_bohr.map(angstrom),
+        "x_minus": end(interval.x_minus()),
+        "x_plus": end(interval.x_plus()),
+        "leading_order": end(interval.leading_order()),
         "ended_by": {"x_minus": word(interval.ended_by_minus), "x_plus": word(interval.ended_by_plus)},
+        "energy_at": {"x_minus": energy(0), "x_plus": energy(1)},
     })
 }
 
@@ -340,12 +344,17 @@ fn reach(reach: &Reach) -> Value {
         "tolerance": reach.tolerance,
         "energy": interval(&reach.energy),
         "force": interval(&reach.force),
+        "absolute": {
+            "tolerance": quantity(reach.absolute_tolerance.value, reach.absolute_tolerance.unit.name()),
+            "energy": interval(&reach.absolute),
+        },
         "levels": level_reach(reach.levels),
         "spacing": level_reach(reach.spacing),
         "temperature": {
             "partition_function": kelvin(reach.temperature_kelvin.partition_function),
             "mean_energy": kelvin(reach.temperature_kelvin.mean_energy),
             "mean_square_x": kelvin(reach.temperature_kelvin.mean_square_x),
+            "looked_up_to": kelvin(reach.temperature_kelvin.looked_up_to),
         },
         "zero_point_amplitude": reach.zero_point_amplitude_bohr.map(angstrom),
     })

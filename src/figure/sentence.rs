@@ -32,10 +32,12 @@ pub fn sentence(findings: &Findings) -> Sentence {
                     .to_owned(),
             );
         }
-        if reach.temperature_kelvin.partition_function.is_some() {
-            why.push(
-                "Temperature: |ln q(harmonic) − ln q| ≤ 0.01, q over the vibrational levels.".to_owned(),
-            );
+        if let Some(looked) = reach.temperature_kelvin.looked_up_to {
+            why.push(format!(
+                "Temperature: |ln q(harmonic) − ln q| ≤ 0.01, q over the vibrational levels, which support temperatures up \
+                 to {} K.",
+                crate::digits::fixed(looked.floor(), 0)
+            ));
         }
     }
     Sentence { text: verdict::sentence(findings), why }

@@ -61,6 +61,12 @@ STUDY
   --seed N                   seed of the resampling (default 1)
   --window-study             repeat the fits over all sensible windows and degrees, find the plateau
                              of omega_e and propose a window on it
+  --tolerance T,T,...        of the reach: 5% or 0.05 of the parabola's energy and force; an energy such as
+                             1kcal/mol, 4kJ/mol, 100cm-1 (default: 5%,1kcal/mol); levels=50cm-1 and
+                             spacing=20cm-1 for the level and the spacing reach (default: 5% of omega_e)
+  --averaging-width A        width in angstrom over which densities are averaged before they are compared
+                             with the classical one (default: the zero-point amplitude)
+  --density-levels V,V,...   the levels of --table densities, also ranges such as 0-5 (the default)
   --temperatures T,T,...     of the thermal averages, in K (default: 100 to 2000 K)
   --thermal-rotation         thermal averages with rotation too, E(v, J) solved for each J, and the
                              ideal gas at 1 bar

@@ -288,6 +288,7 @@ impl Timings {
             "distortion",
             "constants",
             "reach",
+            "densities",
             "thermal",
             "further",
             "total",

@@ -6,8 +6,8 @@ use crate::export::parameters::ParameterUnits;
 use crate::findings::{Findings, FitFindings};
 use crate::fit::{ParameterUnit, WindowStudy};
 use crate::potential::curve::OuterTail;
-use crate::reach::Interval;
-use crate::units::{ANGSTROM_PER_BOHR, LengthUnit, to_angstrom, to_per_cm};
+use crate::reach::{EndedBy, Interval, TemperatureReach};
+use crate::units::{ANGSTROM_PER_BOHR, EnergyUnit, LengthUnit, to_angstrom, to_per_cm};
 use crate::verdict::sentence;
 use std::fmt::Write as _;
 
@@ -23,6 +23,7 @@ pub fn summary(findings: &Findings, units: &ParameterUnits) -> String {
         fits(&mut text, findings, units);
         levels(&mut text, findings);
         reach(&mut text, findings);
+        force_field(&mut text, findings, units);
         thermal(&mut text, findings);
     }
     notices(&mut text, findings);
@@ -221,12 +222,11 @@ fn reach(text: &mut String, findings: &Findings) {
         "Reach of the parabola at a tolerance of {}",
         crate::verdict::percent(reach.tolerance)
     );
-    let side = |x: Option<f64>| x.map_or_else(|| "end of scan".to_owned(), |x| signed(to_angstrom(x), 4));
-    let line = |interval: &Interval| {
-        format!("{} ... {} angstrom", side(interval.x_minus_bohr), side(interval.x_plus_bohr))
-    };
-    let _ = writeln!(text, "  energy                {}", line(&reach.energy));
-    let _ = writeln!(text, "  force                 {}", line(&reach.force));
+    let _ = writeln!(text, "  energy                {}", interval_line(&reach.energy));
+    let _ = writeln!(text, "  force                 {}", interval_line(&reach.force));
+    let tolerance = reach.absolute_tolerance;
+    let name = format!("energy, {} {}", tolerance.value, tolerance.unit.name());
+    let _ = writeln!(text, "  {name:<21} {}", interval_line(&reach.absolute));
     let highest = |v: Option<usize>| v.map_or_else(|| "none".to_owned(), |v| format!("v <= {v}"));
     if let Some(levels) = reach.levels {
         let tolerance = rounded(levels.tolerance_per_cm, 4);
@@ -241,13 +241,118 @@ fn reach(text: &mut String, findings: &Findings) {
             highest(spacing.highest_v)
         );
     }
-    if let Some(kelvin) = reach.temperature_kelvin.partition_function {
-        let _ = writeln!(text, "  partition function    up to {} K (within 1 %)", fixed(kelvin, 0));
-    }
+    temperatures(text, &reach.temperature_kelvin);
     if let Some(amplitude) = reach.zero_point_amplitude_bohr {
         let _ = writeln!(text, "  zero-point amplitude  {} angstrom", fixed(to_angstrom(amplitude), 4));
     }
     text.push('\n');
+}
+
+/// Both ends with their errors, and how far from the minimum they lie in energy.
+fn interval_line(interval: &Interval) -> String {
+    let side = |end: Option<Estimate>, ended: EndedBy| match (end, ended) {
+        (Some(e), _) => {
+            let e = e.scaled(ANGSTROM_PER_BOHR);
+            let sign = if e.value > 0.0 { "+" } else { "" };
+            // Errors below the last digit shown are not worth showing.
+            let error = e.std_error.filter(|error| *error > 5e-6);
+            format!(
+                "{sign}{}",
+                error.map_or_else(|| fixed(e.value, 5), |s| with_uncertainty(e.value, Some(s), 5))
+            )
+        }
+        (None, EndedBy::Barrier) => "barrier".to_owned(),
+        (None, _) => "end of scan".to_owned(),
+    };
+    if interval.x_minus_bohr.is_none() && interval.x_plus_bohr.is_none() {
+        let scan = (interval.ended_by_minus, interval.ended_by_plus) == (EndedBy::Scan, EndedBy::Scan);
+        return if scan { "the whole scan".to_owned() } else { "the whole well".to_owned() };
+    }
+    let ends =
+        (side(interval.x_minus(), interval.ended_by_minus), side(interval.x_plus(), interval.ended_by_plus));
+    let strain: Vec<String> = interval
+        .energies_hartree
+        .iter()
+        .flatten()
+        .map(|e| rounded(EnergyUnit::KilocaloriePerMole.from_hartree(*e), 3))
+        .collect();
+    let strain = match strain.as_slice() {
+        [] => String::new(),
+        some => format!(" (V - V_e there: {} kcal/mol)", some.join(", ")),
+    };
+    format!("{} ... {} angstrom{strain}", ends.0, ends.1)
+}
+
+/// Up to which temperature the harmonic picture stands, by three quantities.
+fn temperatures(text: &mut String, reach: &TemperatureReach) {
+    let Some(looked) = reach.looked_up_to else { return };
+    for (name, limit, within) in [
+        ("partition function", reach.partition_function, "1 %"),
+        ("mean energy", reach.mean_energy, "0.01 k T"),
+        ("mean square x", reach.mean_square_x, "5 %"),
+    ] {
+        let words = match limit {
+            Some(kelvin) if kelvin < 1.0 => format!("not within {within} at any temperature"),
+            Some(kelvin) => format!("within {within} up to {} K", fixed(kelvin.floor(), 0)),
+            None => {
+                format!("within {within} up to {} K at least, where the levels end", fixed(looked.floor(), 0))
+            }
+        };
+        let _ = writeln!(text, "  {name:<22}{words}");
+    }
+}
+
+/// What a force field wants of this bond: k in its unit and convention, and where it holds.
+fn force_field(text: &mut String, findings: &Findings, units: &ParameterUnits) {
+    let (Some(reach), Some(curve)) = (&findings.reach, &findings.curve) else { return };
+    let Some(k) = curve.derivatives_hartree[0] else { return };
+    let (unit, factor) = units.of(ParameterUnit::ForceConstant);
+    let k = k.scaled(factor);
+    let r_e = curve.r_e_bohr.scaled(ANGSTROM_PER_BOHR);
+    let _ = writeln!(
+        text,
+        "In a force field, {}: k = {} {unit}, r_0 = {} angstrom",
+        units.convention.formula(),
+        with_uncertainty(k.value, k.std_error, 6),
+        with_uncertainty(r_e.value, r_e.std_error, 6)
+    );
+    let tolerance = reach.absolute_tolerance;
+    let _ = writeln!(
+        text,
+        "  this term stands for the curve within {} {}: {}",
+        tolerance.value,
+        tolerance.unit.name(),
+        interval_line(&reach.absolute)
+    );
+    for fit in &findings.fits {
+        let Some(reach) = &fit.reach else { continue };
+        let name = fit_name(fit);
+        let words = match &reach.interval {
+            Some(interval) => interval_line(interval),
+            None => "nowhere: off by more at r_e itself".to_owned(),
+        };
+        let _ = writeln!(text, "  {name:<25}{words}");
+    }
+    let fitted = findings.fits.iter().any(|f| f.reach.is_some());
+    if fitted {
+        let _ = writeln!(
+            text,
+            "  (fits: |V_fit - V| at most {} of V - V_e or {} {}, whichever is larger)",
+            crate::verdict::percent(reach.tolerance),
+            tolerance.value,
+            tolerance.unit.name()
+        );
+    }
+    text.push('\n');
+}
+
+/// Family and degree of a fit.
+fn fit_name(fit: &FitFindings) -> String {
+    let degree = fit.result.as_ref().ok().and_then(|f| f.degree);
+    degree.map_or_else(
+        || fit.request.family.word().to_owned(),
+        |d| format!("{} of degree {d}", fit.request.family.word()),
+    )
 }
 
 /// Numerical averages beside harmonic ones; the findings file and the thermal table have the rest.

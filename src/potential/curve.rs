@@ -1,5 +1,7 @@
 //! The curve through the scan's points: base function, spline of the rest, tails.
 
+mod variants;
+
 use super::interpolant::Interpolant;
 use super::local_polynomial::LocalPolynomial;
 pub use super::tails::{InnerTail, OuterTail};
@@ -8,6 +10,8 @@ use super::{Morse, Potential};
 use crate::estimate::Estimate;
 use serde::{Deserialize, Serialize};
 use std::sync::Arc;
+
+pub use variants::{CurveVariants, SeenCurve};
 
 /// How the curve runs through the points.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]

@@ -1,5 +1,6 @@
 //! Reach by energy and by force: the connected interval around the minimum within the tolerance.
 
+use super::uncertainty::Criterion;
 use super::{EndedBy, Interval, ReachSettings};
 use crate::potential::Potential;
 use crate::potential::curve::ScanCurve;
@@ -7,15 +8,54 @@ use crate::potential::curve::ScanCurve;
 /// Displacements below this share of r_e take the deviation from its series, not by subtraction.
 const SERIES_SHARE: f64 = 1e-3;
 /// Steps over a whole side of the scan when the crossing is looked for.
-const STEPS: f64 = 1000.0;
+pub(super) const STEPS: u32 = 1000;
 
 /// Energy and force reach of a scan's curve: only within the scanned points (and the well, where the
 /// curve turns over). None when V″(r_e) is not positive.
 pub fn energy_and_force_reach(curve: &ScanCurve, settings: &ReachSettings) -> Option<(Interval, Interval)> {
+    let (mut energy, mut force) =
+        energy_and_force_reach_of(&curve.above_minimum(), range_bohr(curve), settings.tolerance)?;
+    for interval in [&mut energy, &mut force] {
+        (interval.ended_by_minus, interval.ended_by_plus) =
+            ended(curve, interval.x_minus_bohr, interval.x_plus_bohr);
+    }
+    Some((energy, force))
+}
+
+/// Reach of a scan's curve by an absolute tolerance, |V − V_e − H| ≤ `tolerance_hartree`; otherwise as
+/// [`energy_and_force_reach`]. The leading order is (6 E/|V‴|)^(1/3).
+pub fn absolute_reach(curve: &ScanCurve, tolerance_hartree: f64) -> Option<Interval> {
+    let above = curve.above_minimum();
+    let local = &curve.local;
+    let (r_e, k) = (local.r_e_bohr, local.second_hartree);
+    if !(k > 0.0 && k.is_finite()) {
+        return None;
+    }
+    let off = |x: f64| above.energy_hartree(r_e + x) - 0.5 * k * x * x;
+    let (from, to) = range_bohr(curve);
+    let leading = Criterion::Absolute.leading_order(tolerance_hartree, local);
+    let mut found = interval(off, (from - r_e, to - r_e), tolerance_hartree, leading);
+    (found.ended_by_minus, found.ended_by_plus) = ended(curve, found.x_minus_bohr, found.x_plus_bohr);
+    Some(found)
+}
+
+/// Where a curve is looked at: within the scanned points and the well.
+pub(super) fn range_bohr(curve: &ScanCurve) -> (f64, f64) {
     let (from, to) = curve.range_bohr();
     let (first, last) = curve.scan_range_bohr;
-    let range = (from.max(first), to.min(last));
-    energy_and_force_reach_of(&curve.above_minimum(), range, settings.tolerance)
+    (from.max(first), to.min(last))
+}
+
+/// What ends an interval at either side.
+pub(super) fn ended(curve: &ScanCurve, minus: Option<f64>, plus: Option<f64>) -> (EndedBy, EndedBy) {
+    let (from, to) = curve.range_bohr();
+    let (first, last) = curve.scan_range_bohr;
+    let by = |x: Option<f64>, barrier: bool| match (x, barrier) {
+        (Some(_), _) => EndedBy::Tolerance,
+        (None, true) => EndedBy::Barrier,
+        (None, false) => EndedBy::Scan,
+    };
+    (by(minus, from > first), by(plus, to < last))
 }
 
 /// Energy and force reach of any potential over a range of bond lengths (bohr).
@@ -68,20 +108,14 @@ fn interval(
     let x_minus_bohr = first_crossing(&deviation, minus, tolerance, first_step);
     let x_plus_bohr = first_crossing(&deviation, plus, tolerance, first_step);
     let ended = |x: Option<f64>| if x.is_some() { EndedBy::Tolerance } else { EndedBy::Scan };
-    Interval {
-        x_minus_bohr,
-        x_plus_bohr,
-        leading_order_bohr,
-        ended_by_minus: ended(x_minus_bohr),
-        ended_by_plus: ended(x_plus_bohr),
-    }
+    Interval::new(x_minus_bohr, x_plus_bohr, leading_order_bohr, (ended(x_minus_bohr), ended(x_plus_bohr)))
 }
 
 /// The displacement nearest to 0 towards `end` at which |deviation| passes the tolerance.
 fn first_crossing(deviation: impl Fn(f64) -> f64, end: f64, tolerance: f64, first_step: f64) -> Option<f64> {
     let beyond = |x: f64| deviation(x).abs() > tolerance;
     let side = end.abs();
-    let largest_step = side / STEPS;
+    let largest_step = side / f64::from(STEPS);
     if largest_step.is_nan() || largest_step <= 0.0 {
         return None;
     }
@@ -99,7 +133,7 @@ fn first_crossing(deviation: impl Fn(f64) -> f64, end: f64, tolerance: f64, firs
 }
 
 /// Boundary between `inside` and `outside`, to rounding.
-fn bisect(beyond: impl Fn(f64) -> bool, mut inside: f64, mut outside: f64) -> f64 {
+pub(super) fn bisect(beyond: impl Fn(f64) -> bool, mut inside: f64, mut outside: f64) -> f64 {
     loop {
         let middle = 0.5 * (inside + outside);
         if middle <= inside || middle >= outside {

@@ -19,8 +19,8 @@ const LOWEST: f64 = 0.01;
 /// The highest temperatures (K) up to which each of three quantities holds at every lower temperature:
 /// |ln q_h − ln q| ≤ 0.01; |U_h − U| ≤ 0.01 k_B T, each counted from its own v = 0; ⟨x²⟩ within 5 %.
 ///
-/// Vibration alone. 0 K means outside already there. None where the levels end before the limit is
-/// met: only levels that do not lean on a tail count, and the Boltzmann factor of the highest of them
+/// Vibration alone. 0 K means outside at any temperature. None where the levels end before the limit is
+/// met, with the temperature up to which was looked beside it: only levels that do not lean on a tail count, and the Boltzmann factor of the highest of them
 /// must stay below 1e-4. Harmonic: q = 1/(1 − e^−u), U = ħω/(e^u − 1), ⟨x²⟩ = ħ/(2 μ ω) coth(u/2),
 /// u = ħω/(k_B T).
 pub fn temperature_reach(levels: &[Level], omega_e_per_cm: f64, reduced_mass_me: f64) -> TemperatureReach {
@@ -60,6 +60,7 @@ fn limits(used: &[(f64, f64)], omega: f64, zero_point_square: f64) -> Temperatur
         partition_function: limit(|c| c.log_q.abs() <= LOG_Q),
         mean_energy: limit(|c| c.energy_over_kt.abs() <= ENERGY),
         mean_square_x: limit(|c| c.square.abs() <= SQUARE),
+        looked_up_to: Some(supported.max(lowest)),
     }
 }
 
@@ -108,7 +109,11 @@ mod tests {
     fn harmonic_levels_have_no_limit() {
         let levels: Vec<(f64, f64)> =
             (0..200).map(f64::from).map(|v| (2000.0 * v, 0.01 * (2.0 * v + 1.0))).collect();
-        assert_eq!(limits(&levels, 2000.0, 0.01), TemperatureReach::default());
+        let found = limits(&levels, 2000.0, 0.01);
+        assert_eq!((found.partition_function, found.mean_energy, found.mean_square_x), (None, None, None));
+        // E/k of the highest of 200 levels over ln 10⁴.
+        let highest = 2000.0 * 199.0 / BOLTZMANN_PER_CM_PER_KELVIN / 1e4_f64.ln();
+        assert!((found.looked_up_to.unwrap() / highest - 1.0).abs() < 1e-12);
         assert_eq!(limits(&[], 2000.0, 0.01), TemperatureReach::default());
     }
 

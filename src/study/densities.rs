@@ -1,8 +1,8 @@
 //! Densities of a study: figures of every level, and all densities of one level for a picture or a table.
 
 use crate::density::{
-    ClassicalDensity, Densities, DensityFigures, Distribution, HarmonicDensity, MorseDensity, QuantumDensity,
-    density_figures,
+    COMPARED_UP_TO_V, ClassicalDensity, Densities, DensityFigures, Distribution, HarmonicDensity,
+    MorseDensity, QuantumDensity, density_figures,
 };
 use crate::findings::Findings;
 use crate::fit::Family;
@@ -20,7 +20,8 @@ const WORTH_A_THREAD: usize = 4;
 pub fn fill(findings: &mut Findings, curve: &ScanCurve) {
     let picture = Picture::of(findings, curve);
     let levels = in_halves(&findings.levels, WORTH_A_THREAD, |part| {
-        part.iter().map(|level| picture.figures(level)).collect()
+        let asked = |v: usize| v <= COMPARED_UP_TO_V || findings.settings.densities.levels.contains(&v);
+        part.iter().map(|level| picture.figures(level, asked(level.v))).collect()
     });
     findings.densities = Densities { averaging_width_bohr: picture.width_bohr, levels };
 }
@@ -116,9 +117,10 @@ impl<'a> Picture<'a> {
         }
     }
 
-    fn figures(&self, level: &Level) -> DensityFigures {
+    fn figures(&self, level: &Level, compared: bool) -> DensityFigures {
         let above = self.curve.above_minimum();
-        density_figures(&above, level, self.reach_bohr, self.amplitude_bohr, self.width_bohr)
+        let width = self.width_bohr.filter(|_| compared);
+        density_figures(&above, level, self.reach_bohr, self.amplitude_bohr, width)
     }
 
     fn densities(&self, level: &Level) -> Option<LevelDensities> {
@@ -142,7 +144,7 @@ impl<'a> Picture<'a> {
         let on_classical = classical.as_ref().map(|c| c as &dyn Distribution);
         let on_harmonic = harmonic.as_ref().map(|h| h as &dyn Distribution);
         let on_morse = morse.as_ref().map(|m| m as &dyn Distribution);
-        let mut figures = self.figures(level);
+        let mut figures = self.figures(level, true);
         if let Some(morse) = &morse {
             figures.forbidden.morse = Some(morse.forbidden_probability());
             figures.inside_reach.morse = self.reach_bohr.map(|(a, b)| morse.below(b) - morse.below(a));

@@ -14,6 +14,7 @@ use crate::fit::{
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{LocalDerivatives, ScanCurve};
 use crate::potential::{Family, Model, Potential as _};
+use crate::reach::fit_reach;
 use crate::spectroscopy::dunham;
 use crate::units::to_per_cm;
 
@@ -25,7 +26,13 @@ pub fn fit_all(findings: &mut Findings, curve: &ScanCurve) {
     let variance = findings.settings.fits.weights.variance(curve.noise_hartree);
     let mass_me = mass_me(findings);
     for request in findings.settings.fits.requests.clone() {
-        let found = one_fit(request, &inside, window, variance, mass_me);
+        let mut found = one_fit(request, &inside, window, variance, mass_me);
+        if let Ok(fit) = &found.result {
+            let settings = &findings.settings.reach;
+            let tolerances = (settings.tolerance, settings.absolute.hartree());
+            let band = |r: f64| fit.band_hartree(r).map(|b| (b, fit.error_source()));
+            found.reach = Some(fit_reach(curve, &fit.model, tolerances, &band));
+        }
         match &found.result {
             Ok(fit) => {
                 findings.notices.extend(fit.notices.iter().cloned());
@@ -145,6 +152,7 @@ fn one_fit(
         constants_per_cm,
         levels_per_cm: levels.iter().map(|e| e.value).collect(),
         level_errors_per_cm: levels.iter().map(|e| e.std_error).collect(),
+        reach: None,
         bootstrap: None,
     }
 }

@@ -7,6 +7,7 @@ mod experiment;
 mod fits;
 mod h2plus;
 mod levels;
+mod reach;
 mod rotation;
 mod scans;
 mod strd;

@@ -58,7 +58,7 @@ const LAYERS: [(&str, &[&str]); 17] = [
             "density",
         ],
     ),
-    ("verdict", &["units", "digits", "findings", "notice", "reach"]),
+    ("verdict", &["units", "digits", "estimate", "findings", "notice", "radial", "reach"]),
     (
         "study",
         &[

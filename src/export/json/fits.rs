@@ -1,9 +1,10 @@
 //! The fits of a findings file: each fit, and the fits side by side.
 
-use super::{estimated, parameter_unit, per_cm, quantity};
+use super::{estimated, interval, parameter_unit, per_cm, quantity};
 use crate::estimate::{ErrorSource, Estimate};
 use crate::findings::{FitBootstrap, FitFindings};
 use crate::fit::{Comparison, Fit, Parameter, Window};
+use crate::reach::FitReach;
 use crate::units::to_per_cm;
 use serde_json::{Map, Value, json};
 
@@ -41,6 +42,7 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
                     fit.leave_one_out_rms_hartree.map(|e| quantity(to_per_cm(e), "cm-1")),
                 "constants": constants,
                 "levels": levels(findings, fit),
+                "reach": findings.reach.as_ref().map(reach),
                 "bootstrap": findings.bootstrap.as_ref().map(|b| bootstrap(findings, fit, b)),
             });
             (head(fit.degree), rest)
@@ -51,7 +53,7 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
                 "window": null, "converged": false, "failure": error.to_string(), "parameters": [],
                 "covariance": [], "correlations": [], "rms_residual": null, "largest_residual": null, "aicc": null,
                 "leave_one_out_rms": null, "constants": constants, "levels": [],
-                "bootstrap": null,
+                "reach": null, "bootstrap": null,
             }),
         ),
     };
@@ -59,6 +61,15 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
         value.extend(rest);
     }
     value
+}
+
+/// Where the fit stands for the curve.
+fn reach(reach: &FitReach) -> Value {
+    json!({
+        "tolerance": reach.tolerance,
+        "absolute_tolerance": quantity(to_per_cm(reach.absolute_hartree), "cm-1"),
+        "energy": reach.interval.as_ref().map(interval),
+    })
 }
 
 fn parameter(parameter: &Parameter) -> Value {

@@ -1,6 +1,7 @@
 //! Choices about the study, the same for study, figure and window.
 
 use super::UsageError;
+use super::tolerance::Tolerances;
 use super::value::{finite, quantum_numbers, value, weighting, window_range};
 use crate::fit::{BootstrapSettings, Weighting, Window};
 use crate::scan::combine::Recipe;
@@ -68,6 +69,12 @@ pub struct StudyChoices {
     pub temperatures_kelvin: Option<Vec<f64>>,
     /// Thermal averages with rotation.
     pub thermal_rotation: bool,
+    /// Tolerances of the reach.
+    pub tolerance: Tolerances,
+    /// Averaging width of densities in angstrom.
+    pub averaging_width_angstrom: Option<f64>,
+    /// The levels of the table of densities.
+    pub density_levels: Option<Vec<usize>>,
 }
 
 impl StudyChoices {
@@ -130,6 +137,11 @@ impl StudyChoices {
             settings.thermal.temperatures_kelvin.clone_from(temperatures);
         }
         settings.thermal.rotation |= self.thermal_rotation;
+        self.tolerance.apply(&mut settings.reach);
+        set(&mut settings.densities.averaging_width_angstrom, &self.averaging_width_angstrom);
+        if let Some(levels) = &self.density_levels {
+            settings.densities.levels.clone_from(levels);
+        }
         if let Some(charge) = self.charge {
             settings.masses.charge = charge;
         }
@@ -256,6 +268,20 @@ pub(super) fn study_choice(
                 t.split(',').map(kelvin).collect::<Option<Vec<f64>>>()
             };
             choices.temperatures_kelvin = Some(value(parser, "temperatures", &accepted, list)?);
+        }
+        "tolerance" => {
+            let found = parser.value()?.string()?;
+            choices.tolerance.read(&found)?;
+        }
+        "averaging-width" => {
+            let width = |t: &str| finite(t).filter(|w| *w > 0.0);
+            let accepted = "a positive number in angstrom";
+            choices.averaging_width_angstrom = Some(value(parser, "averaging-width", accepted, width)?);
+        }
+        "density-levels" => {
+            let accepted = "v up to 1000 with commas or a range: 0,1,10 or 0-5";
+            let levels = |t: &str| Some(quantum_numbers(t)?.into_iter().map(|v| v as usize).collect());
+            choices.density_levels = Some(value(parser, "density-levels", accepted, levels)?);
         }
         "thermal-rotation" => choices.thermal_rotation = true,
         _ => return Ok(false),

@@ -3,6 +3,7 @@
 mod choices;
 mod figure;
 mod study;
+mod tolerance;
 mod value;
 mod window;
 
