@@ -23,18 +23,13 @@ pub(crate) struct PolynomialFit {
 
 /// The linear variable s, affine in the expansion variable: s = (r − r_c)/w, or (1 − r_c/r)/w for z.
 #[derive(Clone, Copy)]
-pub(crate) struct Centre {
+struct Centre {
     variable: Variable,
     r_c: f64,
     width: f64,
 }
 
 impl Centre {
-    /// s = (r − r_c)/width for the variable x.
-    pub const fn of_x(r_c: f64, width: f64) -> Self {
-        Self { variable: Variable::X, r_c, width }
-    }
-
     fn s(self, r: f64) -> Precise {
         // The abscissae are formed in plain doubles and then taken as exact: an error of one rounding in s
         // is an error of one rounding in r, while errors of single powers would not cancel.
@@ -91,7 +86,7 @@ fn lowest_minimum(b: &[f64], from: f64, to: f64) -> Option<f64> {
 }
 
 /// P⁽ᵐ⁾(s)/m!.
-pub(crate) fn taylor(b: &[f64], s: f64, m: usize) -> f64 {
+fn taylor(b: &[f64], s: f64, m: usize) -> f64 {
     b.iter().enumerate().skip(m).rev().fold(0.0, |sum, (k, b)| sum * s + binomial(k, m) * b)
 }
 
@@ -100,7 +95,7 @@ fn binomial(k: usize, m: usize) -> f64 {
 }
 
 /// e_min, r_e, c_2 ... about the minimum at s, and their derivatives by the coefficients b.
-pub(crate) fn about_minimum(b: &[f64], s: f64, centre: Centre) -> (Vec<f64>, Vec<Vec<f64>>) {
+fn about_minimum(b: &[f64], s: f64, centre: Centre) -> (Vec<f64>, Vec<Vec<f64>>) {
     let count = b.len();
     let (r_e, r_e_by_s) = centre.r_e(s);
     let (g, g_by_s) = centre.factor(r_e);

@@ -42,34 +42,49 @@ pub(crate) fn length(v: &[f64]) -> f64 {
 }
 
 impl Qr {
+    /// Storage to be filled.
+    pub const fn empty() -> Self {
+        let none = Vec::new();
+        Self { rows: 0, columns: 0, packed: none, beta: Vec::new(), diagonal: Vec::new(), lengths: Vec::new() }
+    }
+
     /// Factors `matrix` (column-major, `rows` × `columns`); none when an entry is not finite or a column is zero.
     pub fn new(matrix: &[f64], rows: usize, columns: usize) -> Option<Self> {
-        let mut packed = matrix.to_vec();
-        let mut lengths = Vec::with_capacity(columns);
+        let mut qr = Self::empty();
+        qr.refill(rows, columns, |packed| packed.extend_from_slice(matrix)).then_some(qr)
+    }
+
+    /// Factors the matrix that `fill` pushes, column by column, in the storage of the last one: no allocation when
+    /// it is no larger. False, and nothing to be used, where [`Self::new`] gives none.
+    pub fn refill(&mut self, rows: usize, columns: usize, fill: impl FnOnce(&mut Vec<f64>)) -> bool {
+        let Self { packed, beta, diagonal, lengths, .. } = self;
+        [&mut *packed, beta, diagonal, lengths].into_iter().for_each(Vec::clear);
+        (self.rows, self.columns) = (rows, columns);
+        fill(packed);
         for column in packed.chunks_exact_mut(rows) {
             let size = length(column);
             if !(size > 0.0 && size.is_finite()) {
-                return None;
+                return false;
             }
             column.iter_mut().for_each(|x| *x /= size);
             lengths.push(size);
         }
-        let (mut beta, mut diagonal) = (vec![0.0; columns], vec![0.0; columns]);
         for j in 0..columns {
             let (done, later) = packed.split_at_mut((j + 1) * rows);
             let v = &mut done[j * rows + j..];
             let size = length(v);
             let r = if v[0] > 0.0 { -size } else { size };
             v[0] -= r;
-            diagonal[j] = r;
+            diagonal.push(r);
             let square = dot(v, v);
-            beta[j] = if square > 0.0 { 2.0 / square } else { 0.0 };
+            let factor_of = if square > 0.0 { 2.0 / square } else { 0.0 };
+            beta.push(factor_of);
             for other in later.chunks_exact_mut(rows) {
-                let factor = beta[j] * dot(v, &other[j..]);
+                let factor = factor_of * dot(v, &other[j..]);
                 other[j..].iter_mut().zip(v.iter()).for_each(|(x, y)| *x -= factor * y);
             }
         }
-        Some(Self { rows, columns, packed, beta, diagonal, lengths })
+        true
     }
 
     fn reflect(&self, j: usize, v: &mut [f64]) {
@@ -93,27 +108,34 @@ impl Qr {
         if i == j { self.diagonal[i] } else { self.packed[j * self.rows + i] }
     }
 
-    /// Solves R D x = c in place.
+    /// Solves R D x = c in place, for the leading columns, as many as `c` has entries: the first columns of a matrix
+    /// have the leading part of its factorisation.
     pub fn back_substitute(&self, c: &mut [f64]) {
-        for i in (0..self.columns).rev() {
-            let tail: f64 = (i + 1..self.columns).map(|j| self.r(i, j) * c[j]).sum();
+        let p = c.len();
+        for i in (0..p).rev() {
+            let tail: f64 = (i + 1..p).map(|j| self.r(i, j) * c[j]).sum();
             c[i] = (c[i] - tail) / self.diagonal[i];
         }
         c.iter_mut().zip(&self.lengths).for_each(|(x, d)| *x /= d);
     }
 
-    /// Solves (R D)ᵀ w = g in place.
+    /// Solves (R D)ᵀ w = g in place, for the leading columns, as many as `g` has entries.
     pub fn forward_substitute(&self, g: &mut [f64]) {
         g.iter_mut().zip(&self.lengths).for_each(|(x, d)| *x /= d);
-        for j in 0..self.columns {
-            let head: f64 = (0..j).map(|i| self.r(i, j) * g[i]).sum();
+        for j in 0..g.len() {
+            let head = dot(&self.packed[j * self.rows..j * self.rows + j], &g[..j]);
             g[j] = (g[j] - head) / self.diagonal[j];
         }
     }
 
     /// Smallest over largest diagonal entry of R: near the rounding unit the columns depend on each other.
     pub fn reciprocal_condition(&self) -> f64 {
-        let sizes = self.diagonal.iter().map(|d| d.abs());
+        self.leading_condition(self.columns)
+    }
+
+    /// The same of the first `columns` columns alone.
+    pub fn leading_condition(&self, columns: usize) -> f64 {
+        let sizes = self.diagonal[..columns].iter().map(|d| d.abs());
         sizes.clone().fold(f64::INFINITY, f64::min) / sizes.fold(0.0, f64::max)
     }
 

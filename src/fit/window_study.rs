@@ -3,7 +3,7 @@
 #[cfg(test)]
 mod tests;
 
-use super::quick::polynomial_numbers;
+use super::quick::QuickFits;
 use super::run::fit_for_study;
 use super::{Family, Fit, FitError, FitPoint, FitRequest, Variable, Variance, Window};
 use crate::estimate::Estimate;
@@ -181,15 +181,19 @@ pub fn window_study(
 ) -> Result<WindowStudy, Stopped> {
     let windows = windows(input, settings);
     let all = windows.len() * settings.models.len();
-    let mut fits = Vec::with_capacity(all);
+    let highest = settings.models.iter().filter_map(|m| quick_degree(*m)).max().unwrap_or(2);
+    let mut quick = QuickFits::new(input.r_e_bohr, input.variance);
+    // Window by window, so that all models share what is computed for the points; listed model by model.
+    let mut lists: Vec<(Option<Model>, Vec<WindowFit>)> =
+        settings.models.iter().map(|_| (None, Vec::with_capacity(windows.len()))).collect();
     let mut done = 0;
-    for (model, request) in settings.models.iter().enumerate() {
-        let mut near: Option<Model> = None;
-        for (range, symmetric) in &windows {
+    for (range, symmetric) in &windows {
+        quick.take(&input.points[range.clone()], highest);
+        let at = |i: usize| input.points[i].r_bohr;
+        for (model, (near, list)) in lists.iter_mut().enumerate() {
             done += 1;
-            if let Some(numbers) = one(input, range, *request, &mut near, constants) {
-                let at = |i: usize| input.points[i].r_bohr;
-                fits.push(WindowFit {
+            if let Some(numbers) = one(input, range, settings.models[model], near, &mut quick, constants) {
+                list.push(WindowFit {
                     model,
                     window: edges(input, range),
                     points: range.len(),
@@ -204,6 +208,7 @@ pub fn window_study(
             }
         }
     }
+    let fits: Vec<WindowFit> = lists.into_iter().flat_map(|(_, list)| list).collect();
     let plateaus: Vec<Plateau> =
         (0..settings.models.len()).filter_map(|model| plateau(model, &fits)).collect();
     let length = |p: &Plateau| p.to_half_width_bohr / p.from_half_width_bohr;
@@ -245,13 +250,20 @@ fn windows(input: WindowStudyInput<'_>, settings: &WindowStudySettings) -> Vec<(
     // Edges enough to choose from, and no more than that of a scan of thousands of points.
     let step = |count: usize| count.div_ceil(4 * allowed).max(1);
     let mut others = Vec::new();
-    for from in (0..=centre - POINTS_A_SIDE).rev().step_by(step(centre)) {
-        for to in (centre + POINTS_A_SIDE..=n).step_by(step(n - centre)) {
+    let ends: Vec<usize> = (centre + POINTS_A_SIDE..=n).step_by(step(n - centre)).collect();
+    for (row, from) in (0..=centre - POINTS_A_SIDE).rev().step_by(step(centre)).enumerate() {
+        let mut add = |to: usize| {
             let (left, right) = (below(from), above(to - 1));
             let near = left.max(right) <= LARGEST_ASYMMETRY * left.min(right);
             if near && !symmetric.contains(&(from, to)) {
                 others.push((from..to, false));
             }
+        };
+        // Up and down in turns: each window differs little from the one before it, where fits start.
+        if row % 2 == 0 {
+            ends.iter().for_each(|&to| add(to));
+        } else {
+            ends.iter().rev().for_each(|&to| add(to));
         }
     }
     let left = allowed.saturating_sub(found.len());
@@ -288,6 +300,7 @@ fn one(
     range: &Range<usize>,
     request: FitRequest,
     near: &mut Option<Model>,
+    quick: &mut QuickFits,
     constants: ConstantsOf<'_>,
 ) -> Option<Result<WindowNumbers, FitError>> {
     // No family has fewer parameters than the harmonic one.
@@ -295,12 +308,16 @@ fn one(
     if range.len() < fewest {
         return None;
     }
-    let points = &input.points[range.clone()];
-    let quick = quick_degree(request)
-        .and_then(|degree| polynomial_numbers(points, input.r_e_bohr, degree, input.variance, constants));
-    if let Some(numbers) = quick {
+    if let Some(numbers) = quick_degree(request).and_then(|degree| quick.polynomial(degree, constants)) {
         return Some(Ok(numbers));
     }
+    if let Some(Model::Morse(start)) = near.as_ref().filter(|_| range.len() >= 4 + SPARE_POINTS)
+        && let Some((numbers, morse)) = quick.morse(start, constants)
+    {
+        *near = Some(morse.into());
+        return Some(Ok(numbers));
+    }
+    let points = &input.points[range.clone()];
     let window = edges(input, range);
     let found = fit_for_study(request, points, window, input.variance, near.as_ref());
     let enough = match &found {
