@@ -45,7 +45,14 @@ impl Qr {
     /// Storage to be filled.
     pub const fn empty() -> Self {
         let none = Vec::new();
-        Self { rows: 0, columns: 0, packed: none, beta: Vec::new(), diagonal: Vec::new(), lengths: Vec::new() }
+        Self {
+            rows: 0,
+            columns: 0,
+            packed: none,
+            beta: Vec::new(),
+            diagonal: Vec::new(),
+            lengths: Vec::new(),
+        }
     }
 
     /// Factors `matrix` (column-major, `rows` × `columns`); none when an entry is not finite or a column is zero.
