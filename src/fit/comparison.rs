@@ -68,13 +68,7 @@ pub fn compare(fits: &[(FitRequest, &Result<Fit, FitError>)], outside: &[FitPoin
 
 /// `polynomial of degree 6`, `extended Morse of order 4`, `Morse`: names of people keep their capital.
 pub fn label(fit: &Fit) -> String {
-    let title = match fit.model.family() {
-        Family::Harmonic => "harmonic",
-        Family::Polynomial => "polynomial",
-        Family::ExtendedMorse => "extended Morse",
-        Family::ExtendedRydberg => "extended Rydberg",
-        named => named.title(),
-    };
+    let title = fit.model.family().running_name();
     match (fit.model.family(), fit.degree) {
         (Family::Polynomial, Some(degree)) => format!("{title} of degree {degree}"),
         (_, Some(order)) => format!("{title} of order {order}"),

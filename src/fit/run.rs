@@ -8,10 +8,7 @@ use super::{
 };
 use crate::estimate::{ErrorSource, Estimate};
 use crate::notice::{Code, Notice};
-use crate::potential::{
-    ExtendedMorse, ExtendedRydberg, Harmonic, HulburtHirschfelder, Model, Morse, Parametric, Polynomial,
-    Potential, Rydberg, Varshni,
-};
+use crate::potential::{ExtendedMorse, Harmonic, Model, Morse, Parametric, Polynomial, Potential};
 
 /// Degree of a polynomial when none is asked for.
 const DEFAULT_DEGREE: u32 = 6;
@@ -121,12 +118,7 @@ fn solve(data: &Data, request: FitRequest, loo: LeaveOneOut) -> Result<Solved, F
             iterated(data, &families::morse_starts(data, &shape), loo)
         }
         Family::ExtendedMorse => extended_morse(data, request, loo),
-        Family::Varshni => iterated(data, &Varshni::starts(&guess::well_shape(data)?), loo),
-        Family::Rydberg => iterated(data, &Rydberg::starts(&guess::well_shape(data)?), loo),
-        Family::ExtendedRydberg => iterated(data, &ExtendedRydberg::starts(&guess::well_shape(data)?), loo),
-        Family::HulburtHirschfelder => {
-            iterated(data, &HulburtHirschfelder::starts(&guess::well_shape(data)?), loo)
-        }
+        family => iterated(data, &family.starts(&guess::well_shape(data)?), loo),
     }
 }
 

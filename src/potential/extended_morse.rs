@@ -1,7 +1,8 @@
 //! The extended (expanded) Morse oscillator: a Morse function whose range parameter varies with r.
 
 use super::jet::Jet;
-use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential, wells};
+use super::wells::{Well, well_base};
+use super::{LocalShape, ModelFault, ParameterUnit};
 
 /// V(r) = e_min + D_e (1 − exp(−β(y_p) (r − r_e)))², β = Σ β_i y_pⁱ, y_p = (rᵖ − r_eᵖ)/(rᵖ + r_eᵖ)
 /// [E. G. Lee, J. Y. Seto, T. Hirao, P. F. Bernath, R. J. Le Roy, J. Mol. Spectrosc. 194, 197 (1999)].
@@ -48,8 +49,21 @@ impl ExtendedMorse {
     }
 }
 
-impl Potential for ExtendedMorse {
-    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+impl Well for ExtendedMorse {
+    const MAY_TURN_OVER: bool = true;
+    well_base!();
+
+    fn range_parameters(&self) -> Vec<(String, ParameterUnit, f64)> {
+        let beta = self.beta_per_bohr.iter().enumerate();
+        beta.map(|(i, &b)| (format!("beta_{i}"), ParameterUnit::InverseLength, b)).collect()
+    }
+    fn set_range_parameters(&mut self, values: &[f64]) {
+        self.beta_per_bohr.copy_from_slice(values);
+    }
+    fn shape(&self, r_bohr: f64) -> f64 {
+        (-self.exponent(r_bohr).beta * (r_bohr - self.r_e_bohr)).exp_m1().powi(2)
+    }
+    fn shape_derivatives(&self, r_bohr: f64) -> [f64; 5] {
         let r = Jet::variable(r_bohr);
         let ratio = r.scaled(1.0 / self.r_e_bohr).powi(self.power);
         let one = Jet::constant(1.0);
@@ -58,66 +72,26 @@ impl Potential for ExtendedMorse {
         let exponent = -(beta * (r - Jet::constant(self.r_e_bohr)));
         let mut rest = one - exponent.exp();
         rest.0[0] = -exponent.0[0].exp_m1();
-        let mut derivatives = (rest * rest).scaled(self.well_depth_hartree).derivatives();
-        derivatives[0] += self.e_min_hartree;
-        derivatives
+        (rest * rest).derivatives()
     }
-    fn energy_hartree(&self, r_bohr: f64) -> f64 {
-        let rest = (-self.exponent(r_bohr).beta * (r_bohr - self.r_e_bohr)).exp_m1();
-        self.e_min_hartree + self.well_depth_hartree * rest * rest
-    }
-    fn range_bohr(&self) -> (f64, f64) {
-        (wells::inner_edge_bohr(self), f64::INFINITY)
-    }
-    fn limit_hartree(&self) -> f64 {
-        wells::limit_hartree(self, self.e_min_hartree + self.well_depth_hartree)
-    }
-    fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr
-    }
-}
-
-impl Parametric for ExtendedMorse {
-    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
-        let mut list = super::named(&[
-            ("e_min", ParameterUnit::TotalEnergy),
-            ("r_e", ParameterUnit::Length),
-            ("d_e", ParameterUnit::Wavenumber),
-        ]);
-        list.extend((0..=self.order()).map(|i| (format!("beta_{i}"), ParameterUnit::InverseLength)));
-        list
-    }
-    fn values(&self) -> Vec<f64> {
-        let mut values = vec![self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree];
-        values.extend_from_slice(&self.beta_per_bohr);
-        values
-    }
-    fn set_values(&mut self, values: &[f64]) {
-        [self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree] = [values[0], values[1], values[2]];
-        self.beta_per_bohr.copy_from_slice(&values[3..]);
-    }
-    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
+    fn shape_gradient(&self, r_bohr: f64, by_r_e: &mut f64, by_range: &mut [f64]) -> f64 {
         let x = r_bohr - self.r_e_bohr;
         let Exponent { beta, beta_by_y, y, y_by_r_e } = self.exponent(r_bohr);
         let minus_rest = (-beta * x).exp_m1();
-        let by_exponent = -2.0 * self.well_depth_hartree * minus_rest * (1.0 + minus_rest);
-        gradient[0] = 1.0;
-        gradient[1] = by_exponent * (x * beta_by_y * y_by_r_e - beta);
-        gradient[2] = minus_rest * minus_rest;
+        let by_exponent = -2.0 * minus_rest * (1.0 + minus_rest);
+        *by_r_e = by_exponent * (x * beta_by_y * y_by_r_e - beta);
         let mut power = by_exponent * x;
-        for entry in &mut gradient[3..] {
+        for entry in by_range {
             *entry = power;
             power *= y;
         }
-        self.e_min_hartree + self.well_depth_hartree * minus_rest * minus_rest
+        minus_rest * minus_rest
     }
-    fn fault(&self) -> Option<ModelFault> {
-        ModelFault::unless_positive(ModelFault::WellDepth, self.well_depth_hartree)
-            .or_else(|| ModelFault::unless_positive(ModelFault::BondLength, self.r_e_bohr))
-            .or_else(|| ModelFault::unless_positive(ModelFault::RangeParameter, self.beta_per_bohr[0]))
+    fn range_fault(&self) -> Option<ModelFault> {
+        ModelFault::unless_positive(ModelFault::RangeParameter, self.beta_per_bohr[0])
     }
     /// The Morse function of the shape, order 0.
-    fn starts(shape: &LocalShape) -> Vec<Self> {
+    fn first_guesses(shape: &LocalShape) -> Vec<Self> {
         vec![Self {
             e_min_hartree: shape.e_min_hartree,
             r_e_bohr: shape.r_e_bohr,
@@ -131,7 +105,7 @@ impl Parametric for ExtendedMorse {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::potential::{Morse, check};
+    use crate::potential::{Morse, Potential, check};
 
     #[test]
     fn derivatives_and_gradient_agree_with_differences() {

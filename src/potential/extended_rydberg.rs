@@ -1,7 +1,8 @@
 //! The extended Rydberg function of Murrell and Sorbie.
 
 use super::jet::Jet;
-use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential, wells};
+use super::wells::{Well, well_base};
+use super::{LocalShape, ModelFault, ParameterUnit};
 
 /// V(r) = e_min + D_e − D_e (1 + a1 x + a2 x² + a3 x³) exp(−a1 x), x = r − r_e
 /// [J. N. Murrell, K. S. Sorbie, J. Chem. Soc., Faraday Trans. 2 70, 1552 (1974)].
@@ -17,81 +18,58 @@ pub struct ExtendedRydberg {
     pub a_per_bohr_n: [f64; 3],
 }
 
-impl Potential for ExtendedRydberg {
-    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+impl ExtendedRydberg {
+    /// a1 x + a2 x² + a3 x³.
+    fn series(&self, x: f64) -> f64 {
         let [a1, a2, a3] = self.a_per_bohr_n;
-        let x = Jet::variable(r_bohr) - Jet::constant(self.r_e_bohr);
-        let series = ((x.scaled(a3) + Jet::constant(a2)) * x + Jet::constant(a1)) * x;
-        let decay = x.scaled(-a1).exp();
-        let mut derivatives = (Jet::constant(1.0) - (Jet::constant(1.0) + series) * decay)
-            .scaled(self.well_depth_hartree)
-            .derivatives();
-        derivatives[0] = self.energy_hartree(r_bohr);
-        derivatives
-    }
-    fn energy_hartree(&self, r_bohr: f64) -> f64 {
-        let [a1, a2, a3] = self.a_per_bohr_n;
-        let x = r_bohr - self.r_e_bohr;
-        let series = ((a3 * x + a2) * x + a1) * x;
-        self.e_min_hartree - self.well_depth_hartree * ((-a1 * x).exp_m1() + series * (-a1 * x).exp())
-    }
-    fn range_bohr(&self) -> (f64, f64) {
-        (wells::inner_edge_bohr(self), f64::INFINITY)
-    }
-    fn limit_hartree(&self) -> f64 {
-        wells::limit_hartree(self, self.e_min_hartree + self.well_depth_hartree)
-    }
-    fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr
+        ((a3 * x + a2) * x + a1) * x
     }
 }
 
-impl Parametric for ExtendedRydberg {
-    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
-        super::named(&[
-            ("e_min", ParameterUnit::TotalEnergy),
-            ("r_e", ParameterUnit::Length),
-            ("d_e", ParameterUnit::Wavenumber),
-            ("a1", ParameterUnit::InverseLength),
-            ("a2", ParameterUnit::InverseLengthPower(2)),
-            ("a3", ParameterUnit::InverseLengthPower(3)),
-        ])
+impl Well for ExtendedRydberg {
+    const MAY_TURN_OVER: bool = true;
+    well_base!();
+
+    fn range_parameters(&self) -> Vec<(String, ParameterUnit, f64)> {
+        let units = [
+            ParameterUnit::InverseLength,
+            ParameterUnit::InverseLengthPower(2),
+            ParameterUnit::InverseLengthPower(3),
+        ];
+        let names = ["a1", "a2", "a3"].map(str::to_owned);
+        names.into_iter().zip(units).zip(self.a_per_bohr_n).map(|((n, u), a)| (n, u, a)).collect()
     }
-    fn values(&self) -> Vec<f64> {
-        let [a1, a2, a3] = self.a_per_bohr_n;
-        vec![self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, a1, a2, a3]
+    fn set_range_parameters(&mut self, values: &[f64]) {
+        self.a_per_bohr_n.copy_from_slice(values);
     }
-    fn set_values(&mut self, values: &[f64]) {
-        [self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree] = [values[0], values[1], values[2]];
-        self.a_per_bohr_n = [values[3], values[4], values[5]];
-    }
-    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
-        let ([a1, a2, a3], d) = (self.a_per_bohr_n, self.well_depth_hartree);
+    fn shape(&self, r_bohr: f64) -> f64 {
         let x = r_bohr - self.r_e_bohr;
-        let decay = (-a1 * x).exp();
-        let series = ((a3 * x + a2) * x + a1) * x;
-        let shape = -((-a1 * x).exp_m1() + series * decay);
-        // V′ = D e^(−a1 x) (a1 (1 + series) − (a1 + 2 a2 x + 3 a3 x²)).
-        let slope = d * decay * (a1 * series - (2.0 * a2 + 3.0 * a3 * x) * x);
-        gradient.copy_from_slice(&[
-            1.0,
-            -slope,
-            shape,
-            d * decay * x * series,
-            -d * decay * x * x,
-            -d * decay * x * x * x,
-        ]);
-        self.e_min_hartree + d * shape
+        let fall = -self.a_per_bohr_n[0] * x;
+        -(fall.exp_m1() + self.series(x) * fall.exp())
     }
-    fn fault(&self) -> Option<ModelFault> {
+    fn shape_derivatives(&self, r_bohr: f64) -> [f64; 5] {
+        let [a1, a2, a3] = self.a_per_bohr_n;
+        let x = Jet::variable(r_bohr) - Jet::constant(self.r_e_bohr);
+        let series = ((x.scaled(a3) + Jet::constant(a2)) * x + Jet::constant(a1)) * x;
+        (Jet::constant(1.0) - (Jet::constant(1.0) + series) * x.scaled(-a1).exp()).derivatives()
+    }
+    fn shape_gradient(&self, r_bohr: f64, by_r_e: &mut f64, by_range: &mut [f64]) -> f64 {
+        let [a1, a2, a3] = self.a_per_bohr_n;
+        let x = r_bohr - self.r_e_bohr;
+        let (decay, series) = ((-a1 * x).exp(), self.series(x));
+        // f′ = e^(−a1 x) (a1 (1 + series) − (a1 + 2 a2 x + 3 a3 x²)).
+        *by_r_e = -decay * (a1 * series - (2.0 * a2 + 3.0 * a3 * x) * x);
+        by_range.copy_from_slice(&[decay * x * series, -decay * x * x, -decay * x * x * x]);
+        self.shape(r_bohr)
+    }
+    fn range_fault(&self) -> Option<ModelFault> {
         let [a1, a2, _] = self.a_per_bohr_n;
-        ModelFault::unless_positive(ModelFault::WellDepth, self.well_depth_hartree)
-            .or_else(|| ModelFault::unless_positive(ModelFault::RangeParameter, a1))
+        ModelFault::unless_positive(ModelFault::RangeParameter, a1)
             .or_else(|| ModelFault::unless_positive(ModelFault::ForceConstant, a1 * a1 - 2.0 * a2))
     }
     /// For a1 around the one-parameter function's sqrt(V″/D), a2 and a3 follow from V″ and V‴:
     /// V″ = D (a1² − 2 a2), V‴ = −6 D (a1³/3 − a1 a2 + a3).
-    fn starts(shape: &LocalShape) -> Vec<Self> {
+    fn first_guesses(shape: &LocalShape) -> Vec<Self> {
         let d = shape.depth_hartree;
         let one = (shape.second_hartree / d).sqrt();
         let start = |factor: f64| {
@@ -112,7 +90,7 @@ impl Parametric for ExtendedRydberg {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::potential::check;
+    use crate::potential::{Potential, check};
 
     #[test]
     fn derivatives_and_gradient_agree_with_differences() {

@@ -1,7 +1,8 @@
 //! The Hulburt-Hirschfelder function.
 
 use super::jet::Jet;
-use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential, wells};
+use super::wells::{Well, well_base};
+use super::{LocalShape, ModelFault, ParameterUnit};
 
 /// V(r) = e_min + D_e ((1 − e⁻ˣ)² + c x³ e⁻²ˣ (1 + b x)), x = a (r − r_e)
 /// [H. M. Hulburt, J. O. Hirschfelder, J. Chem. Phys. 9, 61 (1941); erratum 35, 1901 (1961)].
@@ -21,77 +22,50 @@ pub struct HulburtHirschfelder {
     pub c: f64,
 }
 
-impl Potential for HulburtHirschfelder {
-    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+impl Well for HulburtHirschfelder {
+    const MAY_TURN_OVER: bool = true;
+    well_base!();
+
+    fn range_parameters(&self) -> Vec<(String, ParameterUnit, f64)> {
+        vec![
+            ("a".to_owned(), ParameterUnit::InverseLength, self.a_per_bohr),
+            ("b".to_owned(), ParameterUnit::Dimensionless, self.b),
+            ("c".to_owned(), ParameterUnit::Dimensionless, self.c),
+        ]
+    }
+    fn set_range_parameters(&mut self, values: &[f64]) {
+        (self.a_per_bohr, self.b, self.c) = (values[0], values[1], values[2]);
+    }
+    fn shape(&self, r_bohr: f64) -> f64 {
+        let x = self.a_per_bohr * (r_bohr - self.r_e_bohr);
+        let (decay, rest) = ((-x).exp(), (-x).exp_m1());
+        rest * rest + self.c * x.powi(3) * decay * decay * (1.0 + self.b * x)
+    }
+    fn shape_derivatives(&self, r_bohr: f64) -> [f64; 5] {
         let x = (Jet::variable(r_bohr) - Jet::constant(self.r_e_bohr)).scaled(self.a_per_bohr);
         let decay = (-x).exp();
         let mut rest = Jet::constant(1.0) - decay;
         rest.0[0] = -(-x.0[0]).exp_m1();
-        let extra = (x.powi(3) * decay * decay * (Jet::constant(1.0) + x.scaled(self.b))).scaled(self.c);
-        let mut derivatives = (rest * rest + extra).scaled(self.well_depth_hartree).derivatives();
-        derivatives[0] += self.e_min_hartree;
-        derivatives
+        let extra = x.powi(3) * decay * decay * (Jet::constant(1.0) + x.scaled(self.b));
+        (rest * rest + extra.scaled(self.c)).derivatives()
     }
-    fn energy_hartree(&self, r_bohr: f64) -> f64 {
-        let x = self.a_per_bohr * (r_bohr - self.r_e_bohr);
-        let (decay, rest) = ((-x).exp(), (-x).exp_m1());
-        let extra = self.c * x.powi(3) * decay * decay * (1.0 + self.b * x);
-        self.e_min_hartree + self.well_depth_hartree * (rest * rest + extra)
-    }
-    fn range_bohr(&self) -> (f64, f64) {
-        (wells::inner_edge_bohr(self), f64::INFINITY)
-    }
-    fn limit_hartree(&self) -> f64 {
-        wells::limit_hartree(self, self.e_min_hartree + self.well_depth_hartree)
-    }
-    fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr
-    }
-}
-
-impl Parametric for HulburtHirschfelder {
-    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
-        super::named(&[
-            ("e_min", ParameterUnit::TotalEnergy),
-            ("r_e", ParameterUnit::Length),
-            ("d_e", ParameterUnit::Wavenumber),
-            ("a", ParameterUnit::InverseLength),
-            ("b", ParameterUnit::Dimensionless),
-            ("c", ParameterUnit::Dimensionless),
-        ])
-    }
-    fn values(&self) -> Vec<f64> {
-        vec![self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.a_per_bohr, self.b, self.c]
-    }
-    fn set_values(&mut self, values: &[f64]) {
-        [self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree] = [values[0], values[1], values[2]];
-        [self.a_per_bohr, self.b, self.c] = [values[3], values[4], values[5]];
-    }
-    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
-        let (a, b, c, d) = (self.a_per_bohr, self.b, self.c, self.well_depth_hartree);
+    fn shape_gradient(&self, r_bohr: f64, by_r_e: &mut f64, by_range: &mut [f64]) -> f64 {
+        let (a, b, c) = (self.a_per_bohr, self.b, self.c);
         let distance = r_bohr - self.r_e_bohr;
         let x = a * distance;
         let (decay, minus_rest) = ((-x).exp(), (-x).exp_m1());
         let cubic = x * x * x * decay * decay;
-        let shape = minus_rest * minus_rest + c * cubic * (1.0 + b * x);
         let by_x = -2.0 * minus_rest * decay
             + c * x * x * decay * decay * (3.0 + 4.0 * b * x - 2.0 * x * (1.0 + b * x));
-        gradient.copy_from_slice(&[
-            1.0,
-            -d * by_x * a,
-            shape,
-            d * by_x * distance,
-            d * c * cubic * x,
-            d * cubic * (1.0 + b * x),
-        ]);
-        self.e_min_hartree + d * shape
+        *by_r_e = -by_x * a;
+        by_range.copy_from_slice(&[by_x * distance, c * cubic * x, cubic * (1.0 + b * x)]);
+        minus_rest * minus_rest + c * cubic * (1.0 + b * x)
     }
-    fn fault(&self) -> Option<ModelFault> {
-        ModelFault::unless_positive(ModelFault::WellDepth, self.well_depth_hartree)
-            .or_else(|| ModelFault::unless_positive(ModelFault::RangeParameter, self.a_per_bohr))
+    fn range_fault(&self) -> Option<ModelFault> {
+        ModelFault::unless_positive(ModelFault::RangeParameter, self.a_per_bohr)
     }
     /// The Morse function of the shape with small c of either sign; c = 0 would leave b undetermined.
-    fn starts(shape: &LocalShape) -> Vec<Self> {
+    fn first_guesses(shape: &LocalShape) -> Vec<Self> {
         let start = |(b, c): (f64, f64)| Self {
             e_min_hartree: shape.e_min_hartree,
             r_e_bohr: shape.r_e_bohr,

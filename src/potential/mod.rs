@@ -71,7 +71,7 @@ pub trait Potential: Sync {
 
 /// Writes the two enums and their dispatch from the one list of families.
 macro_rules! registry {
-    ($($(#[$doc:meta])* $name:ident as $word:literal, $title:literal,)*) => {
+    ($($(#[$doc:meta])* $name:ident as $word:literal, $title:literal, $running:literal,)*) => {
         /// A family of model functions.
         #[derive(Clone, Copy, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
         pub enum Family {
@@ -90,6 +90,16 @@ macro_rules! registry {
             /// The name people read.
             pub const fn title(self) -> &'static str {
                 match self { $(Self::$name => $title,)* }
+            }
+
+            /// The same in running text: names of people keep their capital.
+            pub const fn running_name(self) -> &'static str {
+                match self { $(Self::$name => $running,)* }
+            }
+
+            /// Starting values for a scan of this shape, the likeliest first.
+            pub fn starts(self, shape: &LocalShape) -> Vec<Model> {
+                match self { $(Self::$name => $name::starts(shape).into_iter().map(Model::from).collect(),)* }
             }
         }
 
@@ -153,21 +163,21 @@ macro_rules! registry {
 
 registry! {
     /// V = e_min + k x²/2.
-    Harmonic as "harmonic", "Harmonic",
+    Harmonic as "harmonic", "Harmonic", "harmonic",
     /// A polynomial about its own minimum, no linear term.
-    Polynomial as "polynomial", "Polynomial",
+    Polynomial as "polynomial", "Polynomial", "polynomial",
     /// Morse [1929].
-    Morse as "morse", "Morse",
+    Morse as "morse", "Morse", "Morse",
     /// Extended Morse, β a polynomial in y_p [Lee et al. 1999].
-    ExtendedMorse as "extended_morse", "Extended Morse",
+    ExtendedMorse as "extended_morse", "Extended Morse", "extended Morse",
     /// Varshni [1957].
-    Varshni as "varshni", "Varshni",
+    Varshni as "varshni", "Varshni", "Varshni",
     /// Rydberg [1931], one range parameter.
-    Rydberg as "rydberg", "Rydberg",
+    Rydberg as "rydberg", "Rydberg", "Rydberg",
     /// Extended Rydberg [Murrell & Sorbie 1974].
-    ExtendedRydberg as "extended_rydberg", "Extended Rydberg",
+    ExtendedRydberg as "extended_rydberg", "Extended Rydberg", "extended Rydberg",
     /// Hulburt-Hirschfelder [1941, erratum 1961].
-    HulburtHirschfelder as "hulburt_hirschfelder", "Hulburt-Hirschfelder",
+    HulburtHirschfelder as "hulburt_hirschfelder", "Hulburt-Hirschfelder", "Hulburt-Hirschfelder",
 }
 
 impl Parametric for Model {

@@ -1,6 +1,7 @@
 //! The Morse function: V = e_min + D_e (1 − exp(−a (r − r_e)))².
 
-use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential};
+use super::wells::{Well, well_base};
+use super::{LocalShape, ModelFault, ParameterUnit};
 
 /// V(r) = e_min + D_e (1 − exp(−a (r − r_e)))² [P. M. Morse, Phys. Rev. 34, 57 (1929)].
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -45,69 +46,48 @@ impl Morse {
     }
 }
 
-impl Potential for Morse {
-    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
-        // With q = exp(−a x): V = e_min + D (1 − 2q + q²), and each derivative multiplies q by −a, q² by −2a.
-        let (a, d) = (self.a_per_bohr, self.well_depth_hartree);
-        let x = r_bohr - self.r_e_bohr;
-        // exp_m1 keeps all digits of V − e_min close to the minimum.
-        let minus_y = (-a * x).exp_m1();
+impl Well for Morse {
+    const MAY_TURN_OVER: bool = false;
+    well_base!();
+
+    fn range_parameters(&self) -> Vec<(String, ParameterUnit, f64)> {
+        vec![("a".to_owned(), ParameterUnit::InverseLength, self.a_per_bohr)]
+    }
+    fn set_range_parameters(&mut self, values: &[f64]) {
+        self.a_per_bohr = values[0];
+    }
+    fn shape(&self, r_bohr: f64) -> f64 {
+        let y = (-self.a_per_bohr * (r_bohr - self.r_e_bohr)).exp_m1();
+        y * y
+    }
+    fn shape_derivatives(&self, r_bohr: f64) -> [f64; 5] {
+        // With q = exp(−a x): f = 1 − 2q + q², and each derivative multiplies q by −a, q² by −2a.
+        let a = self.a_per_bohr;
+        // exp_m1 keeps all digits of the slope close to the minimum.
+        let minus_y = (-a * (r_bohr - self.r_e_bohr)).exp_m1();
         let q = 1.0 + minus_y;
-        let first = 2.0 * d * a * q;
+        let first = 2.0 * a * q;
         let (second, third) = (first * a, first * a * a);
         [
-            self.e_min_hartree + d * minus_y * minus_y,
+            minus_y * minus_y,
             -first * minus_y,
             second * (2.0 * q - 1.0),
             third * (1.0 - 4.0 * q),
             third * a * (8.0 * q - 1.0),
         ]
     }
-    fn energy_hartree(&self, r_bohr: f64) -> f64 {
-        let y = (-self.a_per_bohr * (r_bohr - self.r_e_bohr)).exp_m1();
-        self.e_min_hartree + self.well_depth_hartree * y * y
-    }
-    fn range_bohr(&self) -> (f64, f64) {
-        (0.0, f64::INFINITY)
-    }
-    fn limit_hartree(&self) -> f64 {
-        self.e_min_hartree + self.well_depth_hartree
-    }
-    fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr
-    }
-}
-
-impl Parametric for Morse {
-    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
-        super::named(&[
-            ("e_min", ParameterUnit::TotalEnergy),
-            ("r_e", ParameterUnit::Length),
-            ("d_e", ParameterUnit::Wavenumber),
-            ("a", ParameterUnit::InverseLength),
-        ])
-    }
-    fn values(&self) -> Vec<f64> {
-        vec![self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.a_per_bohr]
-    }
-    fn set_values(&mut self, values: &[f64]) {
-        [self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.a_per_bohr] =
-            [values[0], values[1], values[2], values[3]];
-    }
-    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
-        let (a, d) = (self.a_per_bohr, self.well_depth_hartree);
+    fn shape_gradient(&self, r_bohr: f64, by_r_e: &mut f64, by_range: &mut [f64]) -> f64 {
         let x = r_bohr - self.r_e_bohr;
-        let minus_y = (-a * x).exp_m1();
-        let twice = -2.0 * d * minus_y * (1.0 + minus_y);
-        gradient.copy_from_slice(&[1.0, -twice * a, minus_y * minus_y, twice * x]);
-        self.e_min_hartree + d * minus_y * minus_y
+        let minus_y = (-self.a_per_bohr * x).exp_m1();
+        let twice = -2.0 * minus_y * (1.0 + minus_y);
+        (*by_r_e, by_range[0]) = (-twice * self.a_per_bohr, twice * x);
+        minus_y * minus_y
     }
-    fn fault(&self) -> Option<ModelFault> {
-        ModelFault::unless_positive(ModelFault::WellDepth, self.well_depth_hartree)
-            .or_else(|| ModelFault::unless_positive(ModelFault::RangeParameter, self.a_per_bohr))
+    fn range_fault(&self) -> Option<ModelFault> {
+        ModelFault::unless_positive(ModelFault::RangeParameter, self.a_per_bohr)
     }
     /// a = −V‴/(3 V″), D_e = V″/(2 a²), and, should V‴ mislead, a from the depth the scan suggests.
-    fn starts(shape: &LocalShape) -> Vec<Self> {
+    fn first_guesses(shape: &LocalShape) -> Vec<Self> {
         let from_a = |a_per_bohr: f64| Self {
             e_min_hartree: shape.e_min_hartree,
             r_e_bohr: shape.r_e_bohr,

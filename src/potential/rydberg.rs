@@ -1,7 +1,8 @@
 //! The Rydberg function with one range parameter.
 
 use super::jet::Jet;
-use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential};
+use super::wells::{Well, well_base};
+use super::{LocalShape, ModelFault, ParameterUnit};
 
 /// V(r) = e_min + D_e − D_e (1 + x) exp(−x), x = a (r − r_e) [R. Rydberg, Z. Phys. 73, 376 (1931)].
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -16,60 +17,36 @@ pub struct Rydberg {
     pub a_per_bohr: f64,
 }
 
-impl Potential for Rydberg {
-    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
-        let x = (Jet::variable(r_bohr) - Jet::constant(self.r_e_bohr)).scaled(self.a_per_bohr);
-        let fall = (Jet::constant(1.0) + x) * (-x).exp();
-        let mut derivatives = (Jet::constant(1.0) - fall).scaled(self.well_depth_hartree).derivatives();
-        derivatives[0] = self.energy_hartree(r_bohr);
-        derivatives
+impl Well for Rydberg {
+    const MAY_TURN_OVER: bool = false;
+    well_base!();
+
+    fn range_parameters(&self) -> Vec<(String, ParameterUnit, f64)> {
+        vec![("a".to_owned(), ParameterUnit::InverseLength, self.a_per_bohr)]
     }
-    fn energy_hartree(&self, r_bohr: f64) -> f64 {
+    fn set_range_parameters(&mut self, values: &[f64]) {
+        self.a_per_bohr = values[0];
+    }
+    fn shape(&self, r_bohr: f64) -> f64 {
         let x = self.a_per_bohr * (r_bohr - self.r_e_bohr);
         // 1 − (1 + x) e⁻ˣ without the cancellation at small x: −(e⁻ˣ − 1) − x e⁻ˣ.
-        self.e_min_hartree - self.well_depth_hartree * ((-x).exp_m1() + x * (-x).exp())
+        -((-x).exp_m1() + x * (-x).exp())
     }
-    fn range_bohr(&self) -> (f64, f64) {
-        (0.0, f64::INFINITY)
+    fn shape_derivatives(&self, r_bohr: f64) -> [f64; 5] {
+        let x = (Jet::variable(r_bohr) - Jet::constant(self.r_e_bohr)).scaled(self.a_per_bohr);
+        (Jet::constant(1.0) - (Jet::constant(1.0) + x) * (-x).exp()).derivatives()
     }
-    fn limit_hartree(&self) -> f64 {
-        self.e_min_hartree + self.well_depth_hartree
+    fn shape_gradient(&self, r_bohr: f64, by_r_e: &mut f64, by_range: &mut [f64]) -> f64 {
+        let (a, distance) = (self.a_per_bohr, r_bohr - self.r_e_bohr);
+        let slope = a * distance * (-a * distance).exp();
+        (*by_r_e, by_range[0]) = (-slope * a, slope * distance);
+        self.shape(r_bohr)
     }
-    fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr
-    }
-}
-
-impl Parametric for Rydberg {
-    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
-        super::named(&[
-            ("e_min", ParameterUnit::TotalEnergy),
-            ("r_e", ParameterUnit::Length),
-            ("d_e", ParameterUnit::Wavenumber),
-            ("a", ParameterUnit::InverseLength),
-        ])
-    }
-    fn values(&self) -> Vec<f64> {
-        vec![self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.a_per_bohr]
-    }
-    fn set_values(&mut self, values: &[f64]) {
-        [self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.a_per_bohr] =
-            [values[0], values[1], values[2], values[3]];
-    }
-    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
-        let (a, d, distance) = (self.a_per_bohr, self.well_depth_hartree, r_bohr - self.r_e_bohr);
-        let x = a * distance;
-        let slope = d * x * (-x).exp();
-        let shape = -((-x).exp_m1() + x * (-x).exp());
-        gradient.copy_from_slice(&[1.0, -slope * a, shape, slope * distance]);
-        self.e_min_hartree + d * shape
-    }
-    fn fault(&self) -> Option<ModelFault> {
-        ModelFault::unless_positive(ModelFault::WellDepth, self.well_depth_hartree)
-            .or_else(|| ModelFault::unless_positive(ModelFault::RangeParameter, self.a_per_bohr))
+    fn range_fault(&self) -> Option<ModelFault> {
+        ModelFault::unless_positive(ModelFault::RangeParameter, self.a_per_bohr)
     }
     /// V″ = D_e a².
-    fn starts(shape: &LocalShape) -> Vec<Self> {
+    fn first_guesses(shape: &LocalShape) -> Vec<Self> {
         vec![Self {
             e_min_hartree: shape.e_min_hartree,
             r_e_bohr: shape.r_e_bohr,

@@ -1,7 +1,8 @@
 //! The Varshni function (the third of his paper).
 
 use super::jet::Jet;
-use super::{LocalShape, ModelFault, ParameterUnit, Parametric, Potential};
+use super::wells::{Well, well_base};
+use super::{LocalShape, ModelFault, ParameterUnit};
 
 /// V(r) = e_min + D_e (1 − (r_e/r) exp(−b (r² − r_e²)))² [Y. P. Varshni, Rev. Mod. Phys. 29, 664 (1957)].
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -25,67 +26,40 @@ impl Varshni {
     }
 }
 
-impl Potential for Varshni {
-    fn derivatives_hartree(&self, r_bohr: f64) -> [f64; 5] {
+impl Well for Varshni {
+    const MAY_TURN_OVER: bool = false;
+    well_base!();
+
+    fn range_parameters(&self) -> Vec<(String, ParameterUnit, f64)> {
+        vec![("b".to_owned(), ParameterUnit::InverseLengthPower(2), self.b_per_bohr2)]
+    }
+    fn set_range_parameters(&mut self, values: &[f64]) {
+        self.b_per_bohr2 = values[0];
+    }
+    fn shape(&self, r_bohr: f64) -> f64 {
+        self.rest(r_bohr).powi(2)
+    }
+    fn shape_derivatives(&self, r_bohr: f64) -> [f64; 5] {
         let (r, r_e) = (Jet::variable(r_bohr), self.r_e_bohr);
         let decay = (r * r - Jet::constant(r_e * r_e)).scaled(-self.b_per_bohr2).exp();
         let mut rest = Jet::constant(1.0) - r.recip().scaled(r_e) * decay;
         rest.0[0] = self.rest(r_bohr);
-        let mut derivatives = (rest * rest).scaled(self.well_depth_hartree).derivatives();
-        derivatives[0] += self.e_min_hartree;
-        derivatives
+        (rest * rest).derivatives()
     }
-    fn energy_hartree(&self, r_bohr: f64) -> f64 {
-        let rest = self.rest(r_bohr);
-        self.e_min_hartree + self.well_depth_hartree * rest * rest
-    }
-    fn range_bohr(&self) -> (f64, f64) {
-        (0.0, f64::INFINITY)
-    }
-    fn limit_hartree(&self) -> f64 {
-        self.e_min_hartree + self.well_depth_hartree
-    }
-    fn minimum_bohr(&self) -> f64 {
-        self.r_e_bohr
-    }
-}
-
-impl Parametric for Varshni {
-    fn parameter_names(&self) -> Vec<(String, ParameterUnit)> {
-        super::named(&[
-            ("e_min", ParameterUnit::TotalEnergy),
-            ("r_e", ParameterUnit::Length),
-            ("d_e", ParameterUnit::Wavenumber),
-            ("b", ParameterUnit::InverseLengthPower(2)),
-        ])
-    }
-    fn values(&self) -> Vec<f64> {
-        vec![self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.b_per_bohr2]
-    }
-    fn set_values(&mut self, values: &[f64]) {
-        [self.e_min_hartree, self.r_e_bohr, self.well_depth_hartree, self.b_per_bohr2] =
-            [values[0], values[1], values[2], values[3]];
-    }
-    fn gradient(&self, r_bohr: f64, gradient: &mut [f64]) -> f64 {
-        let (r, r_e, b, d) = (r_bohr, self.r_e_bohr, self.b_per_bohr2, self.well_depth_hartree);
+    fn shape_gradient(&self, r_bohr: f64, by_r_e: &mut f64, by_range: &mut [f64]) -> f64 {
+        let (r, r_e) = (r_bohr, self.r_e_bohr);
         let rest = self.rest(r);
-        // ∂g/∂r_e = g (1/r_e + 2 b r_e), ∂g/∂b = −g (r² − r_e²), V = e_min + D (1 − g)².
-        let by_g = -2.0 * d * rest * (1.0 - rest);
-        gradient.copy_from_slice(&[
-            1.0,
-            by_g * (1.0 / r_e + 2.0 * b * r_e),
-            rest * rest,
-            -by_g * (r - r_e) * (r + r_e),
-        ]);
-        self.e_min_hartree + d * rest * rest
+        // ∂g/∂r_e = g (1/r_e + 2 b r_e), ∂g/∂b = −g (r² − r_e²), f = (1 − g)².
+        let by_g = -2.0 * rest * (1.0 - rest);
+        *by_r_e = by_g * (1.0 / r_e + 2.0 * self.b_per_bohr2 * r_e);
+        by_range[0] = -by_g * (r - r_e) * (r + r_e);
+        rest * rest
     }
-    fn fault(&self) -> Option<ModelFault> {
-        ModelFault::unless_positive(ModelFault::WellDepth, self.well_depth_hartree)
-            .or_else(|| ModelFault::unless_positive(ModelFault::BondLength, self.r_e_bohr))
-            .or_else(|| ModelFault::unless_positive(ModelFault::RangeParameter, self.b_per_bohr2))
+    fn range_fault(&self) -> Option<ModelFault> {
+        ModelFault::unless_positive(ModelFault::RangeParameter, self.b_per_bohr2)
     }
     /// V″ = 2 D_e (1/r_e + 2 b r_e)².
-    fn starts(shape: &LocalShape) -> Vec<Self> {
+    fn first_guesses(shape: &LocalShape) -> Vec<Self> {
         let steepness = (shape.second_hartree / (2.0 * shape.depth_hartree)).sqrt();
         let r_e = shape.r_e_bohr;
         vec![Self {
