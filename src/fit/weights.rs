@@ -40,6 +40,15 @@ pub enum Weighting {
         #[serde(default)]
         declared: bool,
     },
+    /// By a column of the file; rows without a value there count 0.
+    Column {
+        /// Its header name, or whatever else a column answers to.
+        name: String,
+        /// Whether it holds standard errors σ, in the unit of the column or else that of the energies: weights are
+        /// then 1/σ², which fixes s² = 1.
+        #[serde(default)]
+        sigma: bool,
+    },
     /// A smooth step down above an energy.
     Energy(EnergyWeights),
     /// 1/σ² with the noise of the energies, which fixes s² = 1.
@@ -69,6 +78,8 @@ pub struct WeightedPoint {
     pub above_minimum_hartree: f64,
     /// Noise of the energies in hartree, where it can be told.
     pub noise_hartree: Option<f64>,
+    /// What a column of the file gives it: a weight, or 1/σ² in cm².
+    pub given: f64,
 }
 
 impl Weighting {
@@ -79,6 +90,7 @@ impl Weighting {
             Self::Point { rows, others, .. } => {
                 rows.iter().find(|w| w.row == point.row).map_or(*others, |w| w.weight)
             }
+            Self::Column { .. } => point.given,
             Self::Energy(weights) => weights.weight(point.above_minimum_hartree),
             Self::Noise { sigma_per_cm } => {
                 sigma_per_cm.or(point.noise_hartree.map(to_per_cm)).map_or(1.0, |sigma| sigma.powi(-2))
@@ -89,7 +101,7 @@ impl Weighting {
     /// Whether the weights are 1/σ², given the noise estimate.
     pub fn variance(&self, noise_hartree: Option<f64>) -> Variance {
         match self {
-            Self::Point { declared: true, .. } => Variance::Declared,
+            Self::Point { declared: true, .. } | Self::Column { sigma: true, .. } => Variance::Declared,
             Self::Noise { sigma_per_cm } if sigma_per_cm.is_some() || noise_hartree.is_some() => {
                 Variance::Declared
             }
@@ -159,6 +171,7 @@ mod tests {
         let all = [
             Weighting::default(),
             Weighting::Point { rows: vec![RowWeight { row: 3, weight: 0.5 }], others: 1.0, declared: true },
+            Weighting::Column { name: "w".to_owned(), sigma: true },
             Weighting::Energy(EnergyWeights::default()),
             Weighting::Noise { sigma_per_cm: Some(0.2) },
         ];
@@ -177,7 +190,7 @@ mod tests {
 
     #[test]
     fn only_declared_weights_fix_the_variance() {
-        let point = WeightedPoint { row: 3, above_minimum_hartree: 0.0, noise_hartree: Some(1e-6) };
+        let point = WeightedPoint { row: 3, above_minimum_hartree: 0.0, noise_hartree: Some(1e-6), given: 1.0 };
         let noise = Weighting::Noise { sigma_per_cm: None };
         assert_eq!(noise.variance(point.noise_hartree), Variance::Declared);
         assert_eq!(noise.variance(None), Variance::FromResiduals);

@@ -55,8 +55,9 @@ STUDY
   --asymptote E              energy of the separated atoms, in the file's unit and scale
   --weights W                weights of the points in fits: equal (default); energy or energy=STEP, a smooth
                              step down at STEP cm-1 above the minimum; noise or noise=SIGMA, 1/sigma^2
-                             with the estimated noise or SIGMA cm-1, which fixes s^2 = 1. Single
-                             weights stand in the settings.
+                             with the estimated noise or SIGMA cm-1, which fixes s^2 = 1; column=NAME,
+                             a column of the file; sigma=NAME, 1/sigma^2 with such a column (s^2 = 1);
+                             rows=ROW:WEIGHT,... single rows, counted from 0, the others 1
   --bootstrap K              standard errors of fits by K resamplings of their residuals too
   --seed N                   seed of the resampling (default 1)
   --window-study             repeat the fits over all sensible windows and degrees, find the plateau

@@ -225,6 +225,16 @@ impl Scan {
             self.energies.iter().map(|c| (c.name.as_str(), c.label.as_str())).collect();
         names::find(&names, wanted)
     }
+
+    /// The column beside bond length and energies that answers to a name, likewise.
+    ///
+    /// # Errors
+    /// As [`Scan::curve_index`].
+    pub fn property_index(&self, wanted: &str) -> Result<usize, ScanError> {
+        let names: Vec<(&str, &str)> =
+            self.properties.iter().map(|c| (c.name.as_str(), c.name.as_str())).collect();
+        names::find(&names, wanted)
+    }
 }
 
 #[cfg(test)]

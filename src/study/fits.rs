@@ -111,6 +111,7 @@ fn weigh(findings: &mut Findings, curve: &ScanCurve) {
             row: point.row,
             above_minimum_hartree: point.energy_hartree - curve.v_e_hartree.value,
             noise_hartree: curve.noise_hartree,
+            given: point.weight,
         });
     }
 }

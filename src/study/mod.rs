@@ -15,6 +15,7 @@ mod support;
 mod tail_checks;
 mod tail_spread;
 mod thermal;
+mod weights;
 
 use crate::density::Densities;
 use crate::findings::{Findings, Source};
@@ -46,6 +47,9 @@ pub enum StudyError {
     /// A setting makes no sense.
     #[error(transparent)]
     Settings(#[from] SettingsError),
+    /// Weights are asked of a column that the file does not have.
+    #[error("weights: {0}")]
+    Weights(ScanError),
     /// A row is set aside that the scan does not have.
     #[error("row {row} is set aside, but the scan has {rows} rows; counted from 0")]
     Row {

@@ -1,6 +1,6 @@
 //! Which points of a scan a study uses.
 
-use super::StudyError;
+use super::{StudyError, weights};
 use crate::findings::Point;
 use crate::fit::FitPoint;
 use crate::notice::{Code, Notice};
@@ -20,6 +20,7 @@ pub fn points(
     if let Some(wrong) = settings.set_aside.iter().find(|s| s.row >= rows) {
         return Err(StudyError::Row { row: wrong.row, rows });
     }
+    let (given, remark) = weights::by_column(scan, column, &settings.fits.weights)?;
     let mut points: Vec<Point> = (0..rows)
         .filter_map(|row| {
             let energy = column.values[row]?;
@@ -32,12 +33,12 @@ pub fn points(
                 energy_as_read: energy,
                 energy_hartree: column.unit.to_hartree(energy),
                 used: why_not.is_none(),
-                weight: 1.0,
+                weight: given[row],
                 why_not,
             })
         })
         .collect();
-    let mut notices = Vec::new();
+    let mut notices: Vec<Notice> = remark.into_iter().collect();
     let out_of_order = points.windows(2).filter(|w| w[1].r_as_read < w[0].r_as_read).count();
     if out_of_order > 0 {
         let falling = out_of_order + 1 == points.len();

@@ -246,7 +246,8 @@ pub(super) fn study_choice(
             choices.window = Some(value(parser, "window", accepted, window_range)?);
         }
         "weights" => {
-            let accepted = "equal, noise, noise=SIGMA (cm-1), energy or energy=STEP (cm-1)";
+            let accepted = "equal, noise, noise=SIGMA (cm-1), energy, energy=STEP (cm-1), column=NAME, sigma=NAME or \
+                            rows=ROW:WEIGHT,... (rows counted from 0)";
             choices.weights = Some(value(parser, "weights", accepted, weighting)?);
         }
         "bootstrap" => {

@@ -1,7 +1,7 @@
 //! Values of options: text to number, list or choice.
 
 use super::UsageError;
-use crate::fit::{EnergyWeights, Weighting, Window};
+use crate::fit::{EnergyWeights, RowWeight, Weighting, Window};
 use crate::units::LengthUnit;
 use lexopt::{Parser, ValueExt as _};
 
@@ -39,22 +39,36 @@ pub(super) fn quantum_numbers(text: &str) -> Option<Vec<u32>> {
     Some(all)
 }
 
-/// `equal`, `noise`, `noise=SIGMA`, `energy` or `energy=STEP`, both in cm-1.
+/// `equal`, `noise`, `noise=SIGMA`, `energy`, `energy=STEP` (both in cm-1), `column=NAME`, `sigma=NAME` or
+/// `rows=ROW:W,ROW:W`.
 pub(super) fn weighting(text: &str) -> Option<Weighting> {
-    let (by, number) = match text.split_once('=') {
-        Some((by, number)) => (by, Some(finite(number).filter(|n| *n > 0.0)?)),
+    let (by, given) = match text.split_once('=') {
+        Some((by, given)) => (by, Some(given.trim())),
         None => (text, None),
     };
-    match (by, number) {
-        ("equal", None) => Some(Weighting::Equal {}),
-        ("noise", sigma_per_cm) => Some(Weighting::Noise { sigma_per_cm }),
-        ("energy", step) => {
-            let default = EnergyWeights::default();
-            let step_per_cm = step.unwrap_or(default.step_per_cm);
-            Some(Weighting::Energy(EnergyWeights { step_per_cm, ..default }))
+    let positive = |text: &str| finite(text).filter(|n| *n > 0.0);
+    Some(match (by, given) {
+        ("equal", None) => Weighting::Equal {},
+        ("noise", None) => Weighting::Noise { sigma_per_cm: None },
+        ("noise", Some(sigma)) => Weighting::Noise { sigma_per_cm: Some(positive(sigma)?) },
+        ("energy", None) => Weighting::Energy(EnergyWeights::default()),
+        ("energy", Some(step)) => {
+            Weighting::Energy(EnergyWeights { step_per_cm: positive(step)?, ..EnergyWeights::default() })
         }
-        _ => None,
-    }
+        ("column" | "sigma", Some(name)) if !name.is_empty() => {
+            Weighting::Column { name: name.to_owned(), sigma: by == "sigma" }
+        }
+        ("rows", Some(list)) => {
+            let row = |part: &str| {
+                let (row, weight) = part.split_once(':')?;
+                let weight = finite(weight.trim()).filter(|w| *w >= 0.0)?;
+                Some(RowWeight { row: row.trim().parse().ok()?, weight })
+            };
+            let rows = list.split(',').map(row).collect::<Option<Vec<RowWeight>>>()?;
+            Weighting::Point { rows, others: 1.0, declared: false }
+        }
+        _ => return None,
+    })
 }
 
 /// Two bond lengths in angstrom, the smaller first.
@@ -71,6 +85,14 @@ mod tests {
     #[test]
     fn weights_need_a_positive_scale() {
         assert_eq!(weighting("noise=0.5"), Some(Weighting::Noise { sigma_per_cm: Some(0.5) }));
-        assert!(weighting("noise=-1").is_none() && weighting("equal=1").is_none());
+        for wrong in ["noise=-1", "noise=x", "equal=1", "column", "column=", "rows=3", "rows=3:-1", "energy=0"] {
+            assert!(weighting(wrong).is_none(), "{wrong}");
+        }
+        assert_eq!(weighting("sigma=err"), Some(Weighting::Column { name: "err".to_owned(), sigma: true }));
+        let rows = vec![RowWeight { row: 3, weight: 0.5 }, RowWeight { row: 7, weight: 0.0 }];
+        assert_eq!(
+            weighting("rows=3:0.5, 7:0"),
+            Some(Weighting::Point { rows, others: 1.0, declared: false })
+        );
     }
 }
