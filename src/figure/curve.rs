@@ -116,18 +116,11 @@ fn parabola(curve: &ScanCurve) -> Option<Series> {
     })
 }
 
-/// Name of a fit with its degree, e.g. `Polynomial 6`.
+/// Name of a fit with its degree or order, e.g. `Polynomial 6`.
 pub fn fit_label(fit: &FitFindings) -> String {
-    match fit.request.family {
-        Family::Harmonic => "Harmonic".to_owned(),
-        Family::Morse => "Morse".to_owned(),
-        Family::Polynomial => {
-            let used = fit.result.as_ref().ok().and_then(|f| f.degree).or(fit.request.degree);
-            used.map_or_else(|| "Polynomial".to_owned(), |d| format!("Polynomial {d}"))
-        }
-        #[allow(unreachable_patterns, reason = "later families draw as polynomials until they have a role")]
-        _ => "Fit".to_owned(),
-    }
+    let title = fit.request.family.title();
+    let used = fit.result.as_ref().ok().and_then(|f| f.degree).or(fit.request.degree);
+    used.map_or_else(|| title.to_owned(), |degree| format!("{title} {degree}"))
 }
 
 /// The role a fit is drawn in.
@@ -135,7 +128,6 @@ pub fn fit_role(family: Family) -> Role {
     match family {
         Family::Harmonic => Role::Harmonic,
         Family::Morse => Role::Morse,
-        #[allow(unreachable_patterns, reason = "later families draw as polynomials until they have a role")]
         _ => Role::Polynomial,
     }
 }

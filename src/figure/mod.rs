@@ -4,6 +4,7 @@
 //! How a role looks (colour, width) is the business of whoever draws; that harmonic is dashed and a
 //! polynomial dotted is part of the role, so that screen and file cannot disagree.
 
+mod comparison;
 mod curve;
 mod densities;
 mod density_lines;
@@ -18,7 +19,9 @@ mod sentence;
 pub mod svg;
 mod thermal;
 mod views;
+mod window_study;
 
+pub use comparison::{ComparedRow, ComparisonPicture, Measure};
 pub use curve::{fit_label, fit_role, main_plot};
 pub use densities::{LevelPicture, level_pictures};
 pub use density_lines::{DensityKind, DensityLine, DensityPicture, density_picture};
@@ -28,6 +31,7 @@ pub use residuals::residuals;
 pub use sentence::{Sentence, sentence};
 pub use thermal::thermal_figure;
 pub use views::{Views, views};
+pub use window_study::{WindowPicture, WindowTarget};
 
 use crate::findings::Findings;
 use crate::fit::Window;
@@ -48,6 +52,10 @@ pub enum Role {
     Morse,
     /// A polynomial fit.
     Polynomial,
+    /// A polynomial fit of this degree, where degrees stand side by side.
+    Degree(u32),
+    /// What is proposed.
+    Proposal,
     /// The reach.
     Reach,
     /// A tolerance.
@@ -83,7 +91,15 @@ impl Role {
             Self::Harmonic => LineStyle::LongDashed,
             Self::Tail | Self::Tolerance => LineStyle::ShortDashed,
             Self::Polynomial | Self::LeadingOrder => LineStyle::Dotted,
-            Self::Scanned | Self::Morse | Self::Reach | Self::ZeroPoint | Self::Zero => LineStyle::Solid,
+            // Beside their colours, so that neighbouring degrees differ in print too.
+            Self::Degree(n) => match n % 3 {
+                0 => LineStyle::ShortDashed,
+                1 => LineStyle::Dotted,
+                _ => LineStyle::Solid,
+            },
+            Self::Scanned | Self::Morse | Self::Reach | Self::ZeroPoint | Self::Zero | Self::Proposal => {
+                LineStyle::Solid
+            }
         }
     }
 }

@@ -190,7 +190,8 @@ mod tests {
 
     #[test]
     fn only_declared_weights_fix_the_variance() {
-        let point = WeightedPoint { row: 3, above_minimum_hartree: 0.0, noise_hartree: Some(1e-6), given: 1.0 };
+        let point =
+            WeightedPoint { row: 3, above_minimum_hartree: 0.0, noise_hartree: Some(1e-6), given: 1.0 };
         let noise = Weighting::Noise { sigma_per_cm: None };
         assert_eq!(noise.variance(point.noise_hartree), Variance::Declared);
         assert_eq!(noise.variance(None), Variance::FromResiduals);

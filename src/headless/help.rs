@@ -53,6 +53,9 @@ STUDY
   --set-aside R,R,...        leave out the points at these bond lengths (unit of the file)
   --window FROM,TO           fit window in angstrom (default: 15 % of r_e to each side)
   --asymptote E              energy of the separated atoms, in the file's unit and scale
+  --fits LIST                the fits, with commas between (default: harmonic,morse,polynomial:6): harmonic,
+                             polynomial:DEGREE:VARIABLE (x, xi, z or ogilvie), morse, extended_morse:ORDER:P,
+                             varshni, rydberg, extended_rydberg, hulburt_hirschfelder
   --weights W                weights of the points in fits: equal (default); energy or energy=STEP, a smooth
                              step down at STEP cm-1 above the minimum; noise or noise=SIGMA, 1/sigma^2
                              with the estimated noise or SIGMA cm-1, which fixes s^2 = 1; column=NAME,
@@ -102,7 +105,8 @@ RESULTS
   --repeat K                 run each study K times for the timings (their median is given)
 
 FIGURE
-  --what NAME                curve (the default), gauge, residuals, ladders, thermal
+  --what NAME                curve (the default), gauge, residuals, ladders, thermal, window-study (and
+                             asks for that study), comparison
   --view NAME                near-minimum (the default), whole-well, fit-window, all-points
   --width-mm 140             width; the height follows
   --font-pt 9                font size

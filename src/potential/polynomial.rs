@@ -21,6 +21,9 @@ pub enum Variable {
 }
 
 impl Variable {
+    /// All of them, in the order in which they are offered.
+    pub const ALL: [Self; 4] = [Self::X, Self::Xi, Self::Z, Self::Ogilvie];
+
     /// The word used in findings files.
     pub const fn word(self) -> &'static str {
         match self {

@@ -77,7 +77,7 @@ mod tests {
         assert_eq!(plain, [2.0, 0.0, 0.0]);
         assert!(remark.unwrap().text.starts_with("2 points without a usable weight"));
         assert_eq!(weights(&scan(None), true).0, [0.25, 0.0, 0.0]);
-        let per_cm = to_per_cm(EnergyUnit::ElectronVolt.to_hartree(2.0));
+        let per_cm = to_per_cm(EnergyUnit::Electronvolt.to_hartree(2.0));
         assert!((weights(&scan(Some("eV")), true).0[0] * per_cm * per_cm - 1.0).abs() < 1e-12);
         let other = Weighting::Column { name: "mass".to_owned(), sigma: false };
         let scan = scan(None);

@@ -41,7 +41,7 @@ const LIH: [&str; 2] = ["--atoms", "7Li,1H"];
 /// Every series is there and not empty, in the legend too; both axes have a title with a unit.
 #[test]
 fn pictures_have_every_series_axis_title_and_legend_entry() {
-    let cases: [(&str, &[&str], [&str; 2]); 4] = [
+    let cases: [(&str, &[&str], [&str; 2]); 5] = [
         (
             "curve",
             &["points", "scan", "parabola", "Harmonic", "Morse", "Polynomial 6", "reach"],
@@ -57,6 +57,11 @@ fn pictures_have_every_series_axis_title_and_legend_entry() {
             "thermal",
             &["harmonic", "Morse fit", "numerical"],
             ["temperature / K", "vibrational heat capacity / J/(mol K)"],
+        ),
+        (
+            "window-study",
+            &["harmonic", "degree 4", "degree 8", "Morse", "plateau", "proposed window"],
+            ["half width of the window / Å", "ωₑxₑ / cm⁻¹"],
         ),
     ];
     for (what, series, titles) in cases {
@@ -78,6 +83,23 @@ fn pictures_have_every_series_axis_title_and_legend_entry() {
     }
     assert!(ladders.texts.iter().any(|t| t == "energy above the minimum / cm⁻¹"));
     assert!(ladders.texts.iter().any(|t| t == "beyond tolerance"));
+}
+
+/// Every fit has its row with three marks at least and its distance in AICc; the sentence stands below.
+#[test]
+fn the_comparison_shows_every_fit() {
+    let fits = ["--what", "comparison", "--fits", "harmonic,morse,polynomial:6,varshni,extended_morse:3"];
+    let found = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &fits].concat()));
+    for name in ["Harmonic", "Morse", "Polynomial 6", "Varshni", "Extended Morse 3"] {
+        let parts: usize = found.series.iter().filter(|s| s.0 == name).map(|s| s.1).sum();
+        assert!(parts >= 4, "{name}: {:?}", found.series);
+        assert!(found.texts.iter().any(|t| t == name), "{name} in {:?}", found.texts);
+    }
+    for text in ["ΔAICc", "energy missed / cm⁻¹", "rms residual", "rms outside the window"] {
+        assert!(found.texts.iter().any(|t| t == text), "{text} in {:?}", found.texts);
+    }
+    let words = found.texts.join(" ");
+    assert!(words.contains("support"), "{words}");
 }
 
 /// The size is what was asked for; levels carry their number; two runs give the same bytes.

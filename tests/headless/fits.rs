@@ -41,6 +41,55 @@ fn weights_change_the_fits_and_nothing_else() {
     }
 }
 
+/// Invented: the parabola 0.2 x² with alternating errors, a column of weights and one of standard errors in cm-1.
+fn weighted_scan(folder: &std::path::Path) -> String {
+    let rows: Vec<String> = (0..15)
+        .map(|k| {
+            let x = -0.21 + 0.03 * f64::from(k);
+            let energy = -1.0 + 0.2 * x * x + if k % 2 == 0 { 1e-5 } else { -1e-5 };
+            let weight = if k == 3 { 0.0 } else { 1.0 + f64::from(k % 3) };
+            format!("{:.3},{energy:.8},{weight},{}", 1.2 + x, 2.0 + f64::from(k % 2))
+        })
+        .collect();
+    let path = folder.join("weighted.csv");
+    fs::write(&path, format!("r_angstrom,E_hartree,w,err_cm-1\n{}\n", rows.join("\n"))).expect("written");
+    path.to_str().expect("UTF-8").to_owned()
+}
+
+#[test]
+fn weights_come_from_a_column_or_row_by_row() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let path = weighted_scan(folder.path());
+    let run = |weights: &str| {
+        let out = folder.path().join("out.json");
+        let arguments = [&path, "--weights", weights, "--out", out.to_str().expect("UTF-8"), "--overwrite"];
+        let output = study(&arguments);
+        let text = String::from_utf8_lossy(&output.stderr).into_owned();
+        let value = fs::read_to_string(&out).ok().and_then(|t| serde_json::from_str::<Value>(&t).ok());
+        (output.status.code(), text, value.unwrap_or_default())
+    };
+    let of = |value: &Value| -> Vec<f64> {
+        value["source"]["points"].as_array().expect("points").iter().map(|p| number(&p["weight"])).collect()
+    };
+    let (_, _, equal) = run("equal");
+    let (status, _, column) = run("column=w");
+    assert_eq!(status, Some(0));
+    assert_eq!(of(&column)[..5], [1.0, 2.0, 3.0, 0.0, 2.0]);
+    assert_eq!(column["fits"][0]["window"]["points"], 14, "a weight of 0 leaves the point out of the fits");
+    assert_eq!(column["curve"]["minimum"], equal["curve"]["minimum"], "the curve has no weights");
+    assert_valid(&schema(), &column, "column");
+    let (_, _, sigma) = run("sigma=err");
+    assert_eq!(of(&sigma)[..2], [0.25, 1.0 / 9.0]);
+    assert_ne!(
+        sigma["fits"][0]["parameters"][2]["std_error"],
+        equal["fits"][0]["parameters"][2]["std_error"]
+    );
+    let (_, _, rows) = run("rows=0:0.5,2:0");
+    assert_eq!(of(&rows)[..4], [0.5, 1.0, 0.0, 1.0]);
+    let (status, text, _) = run("column=nowhere");
+    assert!(status == Some(3) && text.contains("nowhere") && text.contains("err"), "{status:?} {text}");
+}
+
 #[test]
 fn resampled_errors_stand_beside_the_others() {
     let options = ["--atoms", "H,Cl", "--bootstrap", "60", "--seed", "5"];

@@ -5,11 +5,15 @@ use crate::figure::geometry::Bounds;
 use crate::figure::{Axis, number};
 
 /// Where a panel lies on the paper and what it shows.
+#[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Frame {
-    /// Left, right, top, bottom in points.
+    /// Left edge in points.
     pub left: f64,
+    /// Right edge in points.
     pub right: f64,
+    /// Upper edge in points.
     pub top: f64,
+    /// Lower edge in points.
     pub bottom: f64,
     /// What is shown.
     pub bounds: Bounds,
@@ -25,7 +29,20 @@ impl Frame {
         ]
     }
 
-    pub fn corners(&self) -> Vec<[f64; 2]> {
+    /// The point of the figure at a place on the paper; none outside the panel.
+    pub fn value(&self, [x, y]: [f64; 2]) -> Option<[f64; 2]> {
+        let inside = (self.left..=self.right).contains(&x) && (self.top..=self.bottom).contains(&y);
+        let (a, b) = self.bounds.x;
+        let (c, d) = self.bounds.y;
+        inside.then(|| {
+            [
+                a + (x - self.left) / (self.right - self.left) * (b - a),
+                c + (self.bottom - y) / (self.bottom - self.top) * (d - c),
+            ]
+        })
+    }
+
+    pub(super) fn corners(&self) -> Vec<[f64; 2]> {
         vec![
             [self.left, self.top],
             [self.right, self.top],

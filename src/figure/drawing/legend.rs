@@ -1,5 +1,6 @@
 //! The legend: one entry a series, in rows above the plot, where it covers nothing.
 
+use super::comparison::{Mark, mark};
 use super::{Anchor, Item, Layout, Rgb, Stroke, area, line};
 
 /// The sign beside a name.
@@ -10,6 +11,8 @@ pub enum Sign {
     Area(Rgb, f64),
     /// A ring.
     Ring(Stroke, Rgb),
+    /// A mark told apart by its form.
+    Mark(Mark, Stroke),
 }
 
 /// One entry.
@@ -54,21 +57,26 @@ pub fn items(layout: &Layout, entries: &[Entry], at: [f64; 2], width_pt: f64) ->
         let left = at[0] + x;
         let base = at[1] + (row as f64 * ROW_EM + 1.0) * font;
         let (right, middle) = (left + SIGN_EM * font, base - 0.35 * font);
-        items.push(match &entry.sign {
-            Sign::Line(stroke) => line(vec![[left, middle], [right, middle]], stroke.clone(), 1.0),
+        let sign = match &entry.sign {
+            Sign::Mark(form, stroke) => {
+                items.extend(mark(layout, *form, [0.5 * (left + right), middle], stroke));
+                None
+            }
+            Sign::Line(stroke) => Some(line(vec![[left, middle], [right, middle]], stroke.clone(), 1.0)),
             Sign::Area(fill, opacity) => {
                 let half = 0.4 * font;
                 let corners = [[left, middle - half], [right, middle - half], [right, middle + half]];
-                area([&corners[..], &[[left, middle + half]]].concat(), *fill, *opacity)
+                Some(area([&corners[..], &[[left, middle + half]]].concat(), *fill, *opacity))
             }
-            Sign::Ring(stroke, fill) => Item::Circle {
+            Sign::Ring(stroke, fill) => Some(Item::Circle {
                 centre: [0.5 * (left + right), middle],
                 radius_pt: 0.26 * font,
                 stroke: stroke.clone(),
                 fill: *fill,
                 opacity: 1.0,
-            },
-        });
+            }),
+        };
+        items.extend(sign);
         items.push(layout.text([right + GAP_EM * font, base], entry.label.clone(), Anchor::Start));
     }
     items

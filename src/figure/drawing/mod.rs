@@ -2,17 +2,20 @@
 //! PDF are written from this one description.
 
 mod axes;
+mod comparison;
 mod ladders;
 mod legend;
 pub mod palette;
 mod panel;
+mod stack;
 mod type_face;
 
+pub use axes::Frame;
 pub use palette::{Palette, Rgb};
 pub use type_face::{FACE, GlyphRun, TypeFace};
 
 use super::geometry::Bounds;
-use super::{Figure, Pictures, Role, thermal_figure};
+use super::{ComparisonPicture, Figure, Pictures, Role, WindowPicture, thermal_figure};
 use crate::findings::Findings;
 use crate::units::to_angstrom;
 
@@ -29,16 +32,22 @@ pub enum Subject {
     Ladders,
     /// Heat capacity over temperature.
     Thermal,
+    /// ω_e, ω_e x_e and k against the half width of the fit window.
+    WindowStudy,
+    /// The fits side by side.
+    Comparison,
 }
 
 impl Subject {
     /// The pictures by their names on the command line.
-    pub const ALL: [(&'static str, Self); 5] = [
+    pub const ALL: [(&'static str, Self); 7] = [
         ("curve", Self::Curve),
         ("gauge", Self::Gauge),
         ("residuals", Self::Residuals),
         ("ladders", Self::Ladders),
         ("thermal", Self::Thermal),
+        ("window-study", Self::WindowStudy),
+        ("comparison", Self::Comparison),
     ];
 }
 
@@ -207,19 +216,18 @@ struct Layout<'a> {
 /// # Errors
 /// [`DrawingError`]
 pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<Drawing, DrawingError> {
-    let palette = if paper.dark { &palette::DARK } else { &palette::LIGHT };
     let width_pt = paper.width_mm * PT_PER_MM;
     if width_pt < 22.0 * paper.font_pt {
         return Err(DrawingError::TooNarrow { width_mm: paper.width_mm, font_pt: paper.font_pt });
     }
-    let face = TypeFace::get();
     let share = match subject {
         Subject::Curve | Subject::Ladders => 0.72,
         Subject::Gauge | Subject::Residuals => 0.45,
-        Subject::Thermal => 0.60,
+        Subject::Thermal | Subject::Comparison => 0.60,
+        Subject::WindowStudy => 1.0,
     };
     let size_pt = [width_pt, (share * width_pt).max(16.0 * paper.font_pt)];
-    let layout = Layout { palette, face, font_pt: paper.font_pt, unit: paper.font_pt / 9.0, size_pt };
+    let mut layout = Layout::new(size_pt, paper.font_pt, paper.dark);
     let pictures = Pictures::of(findings);
     let view = match paper.view {
         View::NearMinimum => pictures.views.near_minimum,
@@ -254,10 +262,41 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
             let bounds = Bounds { x: (0.0, bounds.x.1), y: (0.0, 1.08 * bounds.y.1) };
             panel::items(&layout, &figure, bounds, None)
         }
+        Subject::WindowStudy => {
+            let picture = WindowPicture::of(findings)
+                .ok_or(nothing("there is no window study (--window-study), or none of its fits succeeded"))?;
+            stack::items(&layout, &picture.figures, &picture.bounds).0
+        }
+        Subject::Comparison => {
+            let picture = ComparisonPicture::of(findings).ok_or(nothing("no fit succeeded"))?;
+            layout.size_pt[1] = comparison::height(&layout, &picture);
+            comparison::items(&layout, &picture)
+        }
     };
     let about =
         format!("{}, {}: {}", findings.source.file_name, findings.source.curve, pictures.sentence.text);
-    Ok(Drawing { size_pt, about, ground: palette.ground, items })
+    Ok(Drawing { size_pt: layout.size_pt, about, ground: layout.palette.ground, items })
+}
+
+/// A window study laid out at a size, with where each of its figures lies: for the screen, where it is clicked on.
+pub fn window_study_drawing(
+    picture: &WindowPicture,
+    size_pt: [f64; 2],
+    font_pt: f64,
+    dark: bool,
+) -> (Drawing, Vec<Frame>) {
+    let layout = Layout::new(size_pt, font_pt, dark);
+    let (items, frames) = stack::items(&layout, &picture.figures, &picture.bounds);
+    (Drawing { size_pt, about: picture.sentence.clone(), ground: layout.palette.ground, items }, frames)
+}
+
+/// A comparison laid out at a width; its height follows.
+pub fn comparison_drawing(picture: &ComparisonPicture, width_pt: f64, font_pt: f64, dark: bool) -> Drawing {
+    let mut layout = Layout::new([width_pt, 0.0], font_pt, dark);
+    layout.size_pt[1] = comparison::height(&layout, picture);
+    let about = picture.sentence.clone().unwrap_or_default();
+    let items = comparison::items(&layout, picture);
+    Drawing { size_pt: layout.size_pt, about, ground: layout.palette.ground, items }
 }
 
 fn figure_bounds(figure: &Figure) -> Option<Bounds> {
@@ -287,6 +326,11 @@ fn gauge_bounds(findings: &Findings, view: Option<Bounds>) -> Option<Bounds> {
 }
 
 impl Layout<'_> {
+    fn new(size_pt: [f64; 2], font_pt: f64, dark: bool) -> Self {
+        let palette = if dark { &palette::DARK } else { &palette::LIGHT };
+        Self { palette, face: TypeFace::get(), font_pt, unit: font_pt / 9.0, size_pt }
+    }
+
     /// Width of a text in points.
     fn width(&self, text: &str, size_pt: f64) -> f64 {
         self.face.width_pt(text, size_pt)

@@ -60,6 +60,15 @@ pub const LIGHT: Palette = Palette {
     accent: rgb(0x8a6500),
 };
 
+/// `percent` of the way from one colour to another.
+const fn mixed(from: Rgb, to: Rgb, percent: u32) -> Rgb {
+    const fn part(a: u8, b: u8, percent: u32) -> u8 {
+        let share = if percent > 100 { 100 } else { percent };
+        ((a as u32 * (100 - share) + b as u32 * share) / 100) as u8
+    }
+    Rgb(part(from.0, to.0, percent), part(from.1, to.1, percent), part(from.2, to.2, percent))
+}
+
 impl Palette {
     /// The colour of a series.
     pub const fn role(&self, role: Role) -> Rgb {
@@ -68,6 +77,9 @@ impl Palette {
             Role::Parabola | Role::Harmonic => self.harmonic,
             Role::Morse => self.morse,
             Role::Polynomial => self.polynomial,
+            // From the polynomials' green towards the accent, over the degrees offered.
+            Role::Degree(n) => mixed(self.polynomial, self.accent, n.saturating_sub(3) * 100 / 6),
+            Role::Proposal => self.outside,
             Role::Reach | Role::Tolerance => self.reach,
             Role::LeadingOrder => self.dim,
             Role::ZeroPoint => self.accent,

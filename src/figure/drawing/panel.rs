@@ -56,7 +56,7 @@ fn width(role: Role) -> f64 {
 }
 
 /// A series in a group of its own, whether or not the view shows any of it.
-fn drawn(layout: &Layout, frame: &Frame, series: &Series) -> Vec<Item> {
+pub(super) fn drawn(layout: &Layout, frame: &Frame, series: &Series) -> Vec<Item> {
     let mut items = vec![Item::Open(series.label.clone())];
     let stroke = layout.stroke(series.role, width(series.role));
     let placed = |run: &[[f64; 2]]| run.iter().map(|p| frame.place(*p)).collect::<Vec<_>>();
@@ -70,11 +70,11 @@ fn drawn(layout: &Layout, frame: &Frame, series: &Series) -> Vec<Item> {
             }
         }
         Shape::Points(points) => {
-            let solid = layout.solid(stroke.colour, 0.9);
+            let solid = layout.solid(stroke.colour, if series.role == Role::Proposal { 1.8 } else { 0.9 });
             let inside = |p: &&[f64; 2]| within(p[0], x) && within(p[1], y);
             items.extend(points.iter().filter(inside).map(|p| Item::Circle {
                 centre: frame.place(*p),
-                radius_pt: 1.7 * layout.unit,
+                radius_pt: if series.role == Role::Proposal { 3.0 } else { 1.7 } * layout.unit,
                 stroke: solid.clone(),
                 fill: layout.palette.ground,
                 opacity: 1.0,
@@ -185,7 +185,12 @@ fn points(layout: &Layout, frame: &Frame, points: &[PlotPoint]) -> Vec<Item> {
 }
 
 /// One entry for each kind of series that the figure has.
-fn entries(layout: &Layout, figure: &Figure, bounds: &Bounds, pictures: Option<&Pictures>) -> Vec<Entry> {
+pub(super) fn entries(
+    layout: &Layout,
+    figure: &Figure,
+    bounds: &Bounds,
+    pictures: Option<&Pictures>,
+) -> Vec<Entry> {
     let mut entries: Vec<Entry> = Vec::new();
     if let Some(pictures) = pictures
         && !pictures.points.is_empty()

@@ -2,8 +2,8 @@
 
 use super::UsageError;
 use super::tolerance::Tolerances;
-use super::value::{finite, quantum_numbers, value, weighting, window_range};
-use crate::fit::{BootstrapSettings, Weighting, Window};
+use super::value::{family_words, finite, fit_requests, quantum_numbers, value, weighting, window_range};
+use crate::fit::{BootstrapSettings, FitRequest, Weighting, Window};
 use crate::scan::combine::Recipe;
 use crate::scan::read::{Match, parse_energy_unit, parse_length_unit};
 use crate::settings::Settings;
@@ -49,6 +49,8 @@ pub struct StudyChoices {
     pub isotopologues: Option<Vec<[crate::species::AtomChoice; 2]>>,
     /// The two atoms whose distance is the bond length, numbered from 1.
     pub bond: Option<[usize; 2]>,
+    /// The fits.
+    pub fits: Option<Vec<FitRequest>>,
     /// Weights of the points in fits.
     pub weights: Option<Weighting>,
     /// Resampled residuals: how often.
@@ -121,6 +123,9 @@ impl StudyChoices {
             settings.masses.reduced_mass_u = None;
         }
         set(&mut settings.masses.reduced_mass_u, &self.reduced_mass_u);
+        if let Some(fits) = &self.fits {
+            settings.fits.requests.clone_from(fits);
+        }
         if let Some(weights) = &self.weights {
             settings.fits.weights.clone_from(weights);
         }
@@ -244,6 +249,14 @@ pub(super) fn study_choice(
         "window" => {
             let accepted = "two bond lengths in angstrom, the smaller first: 0.8,1.2";
             choices.window = Some(value(parser, "window", accepted, window_range)?);
+        }
+        "fits" => {
+            let accepted = format!(
+                "families with commas between ({}), polynomial:DEGREE:VARIABLE (x, xi, z, ogilvie), \
+                 extended_morse:ORDER:P",
+                family_words()
+            );
+            choices.fits = Some(value(parser, "fits", &accepted, fit_requests)?);
         }
         "weights" => {
             let accepted = "equal, noise, noise=SIGMA (cm-1), energy, energy=STEP (cm-1), column=NAME, sigma=NAME or \

@@ -151,15 +151,19 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
             choices.window_study |= study.tables.iter().any(|(table, _)| *table == Table::WindowStudy);
             Command::Study(Box::new(StudyArgs { files, choices, overwrite, ..study }))
         }
-        Verb::Figure => Command::Figure(Box::new(FigureArgs {
-            file: one("figure", files)?,
-            choices,
-            out: figure.out.ok_or(UsageError::NoOut)?,
-            subject: figure.subject.unwrap_or(Subject::Curve),
-            paper: figure.paper,
-            dots_per_inch: figure.dots_per_inch.unwrap_or(300.0),
-            overwrite,
-        })),
+        Verb::Figure => {
+            // A picture of the window study asks for that study.
+            choices.window_study |= figure.subject == Some(Subject::WindowStudy);
+            Command::Figure(Box::new(FigureArgs {
+                file: one("figure", files)?,
+                choices,
+                out: figure.out.ok_or(UsageError::NoOut)?,
+                subject: figure.subject.unwrap_or(Subject::Curve),
+                paper: figure.paper,
+                dots_per_inch: figure.dots_per_inch.unwrap_or(300.0),
+                overwrite,
+            }))
+        }
         Verb::Recheck => Command::Recheck(Box::new(RecheckArgs { findings: one("recheck", files)?, source })),
     })
 }

@@ -1,7 +1,7 @@
 //! Values of options: text to number, list or choice.
 
 use super::UsageError;
-use crate::fit::{EnergyWeights, RowWeight, Weighting, Window};
+use crate::fit::{EnergyWeights, Family, FitRequest, RowWeight, Variable, Weighting, Window};
 use crate::units::LengthUnit;
 use lexopt::{Parser, ValueExt as _};
 
@@ -71,6 +71,35 @@ pub(super) fn weighting(text: &str) -> Option<Weighting> {
     })
 }
 
+/// Fits with commas between: a family's word, for polynomials `:DEGREE:VARIABLE`, for extended Morse functions `:ORDER:P`,
+/// both parts optional.
+pub(super) fn fit_requests(text: &str) -> Option<Vec<FitRequest>> {
+    let one = |part: &str| {
+        let mut words = part.trim().split(':');
+        let word = words.next()?;
+        let family = *Family::ALL.iter().find(|f| f.word() == word)?;
+        let mut request = FitRequest::plain(family);
+        if let Some(degree) = words.next() {
+            let takes_one = matches!(family, Family::Polynomial | Family::ExtendedMorse);
+            request.degree = Some(degree.parse().ok().filter(|_| takes_one)?);
+        }
+        match (words.next(), family) {
+            (None, _) => {}
+            (Some(word), Family::Polynomial) => {
+                request.variable = Some(Variable::ALL.into_iter().find(|v| v.word() == word)?);
+            }
+            (Some(power), _) => request.power = Some(power.parse().ok()?),
+        }
+        words.next().is_none().then_some(request)
+    };
+    text.split(',').map(one).collect()
+}
+
+/// The families by their words.
+pub(super) fn family_words() -> String {
+    Family::ALL.iter().map(|f| f.word()).collect::<Vec<_>>().join(", ")
+}
+
 /// Two bond lengths in angstrom, the smaller first.
 pub(super) fn window_range(text: &str) -> Option<Window> {
     let (from, to) = text.split_once(',')?;
@@ -83,9 +112,30 @@ mod tests {
     use super::*;
 
     #[test]
+    fn fits_are_named_with_degree_and_variable() {
+        let found = fit_requests("harmonic, polynomial:4:xi,extended_morse:8:3,varshni").unwrap();
+        let extended =
+            FitRequest { degree: Some(8), power: Some(3), ..FitRequest::plain(Family::ExtendedMorse) };
+        assert_eq!(
+            found,
+            [
+                FitRequest::plain(Family::Harmonic),
+                FitRequest::polynomial(4, Variable::Xi),
+                extended,
+                FitRequest::plain(Family::Varshni)
+            ]
+        );
+        for wrong in ["", "spline", "morse:4", "polynomial:x", "polynomial:4:w", "polynomial:4:xi:2"] {
+            assert!(fit_requests(wrong).is_none(), "{wrong}");
+        }
+    }
+
+    #[test]
     fn weights_need_a_positive_scale() {
         assert_eq!(weighting("noise=0.5"), Some(Weighting::Noise { sigma_per_cm: Some(0.5) }));
-        for wrong in ["noise=-1", "noise=x", "equal=1", "column", "column=", "rows=3", "rows=3:-1", "energy=0"] {
+        for wrong in
+            ["noise=-1", "noise=x", "equal=1", "column", "column=", "rows=3", "rows=3:-1", "energy=0"]
+        {
             assert!(weighting(wrong).is_none(), "{wrong}");
         }
         assert_eq!(weighting("sigma=err"), Some(Weighting::Column { name: "err".to_owned(), sigma: true }));
