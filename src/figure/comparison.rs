@@ -91,7 +91,8 @@ impl ComparisonPicture {
         if high <= 0.0 {
             return None;
         }
+        let sentence = findings.comparison.sentence.as_ref().map(|s| s.replace("cm-1", "cm⁻¹"));
         let (from, to) = (low.log10().floor() as i32, high.log10().ceil() as i32);
-        Some(Self { rows, decades: (from, to.max(from + 1)), sentence: findings.comparison.sentence.clone() })
+        Some(Self { rows, decades: (from, to.max(from + 1)), sentence })
     }
 }

@@ -144,10 +144,23 @@ fn words(fit: &WindowFit) -> String {
     format!("{} to {} Å, {} points", edge(fit.window.from), edge(fit.window.to), fit.points)
 }
 
+/// The symmetric windows of a model that are no less balanced than their neighbours: each further window gains a point
+/// on one side only, and a line through all of them would show little but that. The proposal is always among them.
+fn balanced(study: &WindowStudy, model: usize) -> Vec<&WindowFit> {
+    let all: Vec<&WindowFit> = study.fits.iter().filter(|f| f.model == model && f.symmetric).collect();
+    let tilt = |i: usize| all.get(i).map_or(f64::INFINITY, |f| (f.below_bohr - f.above_bohr).abs());
+    let proposal = study.proposal().map(|f| f.window);
+    let kept = |i: usize| {
+        let before = if i > 0 { tilt(i - 1) } else { f64::INFINITY };
+        tilt(i) <= before && tilt(i) <= tilt(i + 1) || Some(all[i].window) == proposal
+    };
+    (0..all.len()).filter(|&i| kept(i)).map(|i| all[i]).collect()
+}
+
 /// One line a model over its symmetric windows, broken where there is no fit.
 fn lines(study: &WindowStudy, quantity: Quantity) -> Vec<Series> {
     let line = |(index, &model): (usize, &FitRequest)| {
-        let windows = study.fits.iter().filter(|f| f.model == index && f.symmetric);
+        let windows = balanced(study, index).into_iter();
         let points: Vec<[f64; 2]> = windows
             .map(|f| place(f, quantity).unwrap_or([to_angstrom(f.half_width_bohr()), f64::NAN]))
             .collect();

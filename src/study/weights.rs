@@ -20,15 +20,26 @@ pub fn by_column(
     let Weighting::Column { name, sigma } = weighting else {
         return Ok((vec![1.0; scan.bond_lengths.len()], None));
     };
-    let column = &scan.properties[scan.property_index(name).map_err(StudyError::Weights)?];
-    let unit = column.unit.as_deref().and_then(parse_energy_unit).unwrap_or(energies.unit);
+    let (column, unit, values) = match scan.property_index(name) {
+        Ok(index) => {
+            let column = &scan.properties[index];
+            (&column.name, column.unit.as_deref().and_then(parse_energy_unit), &column.values)
+        }
+        // Standard errors with a unit of energy look like one more curve.
+        Err(error) => {
+            let index = scan.curve_index(Some(name)).map_err(|_| StudyError::Weights(error))?;
+            let column = &scan.energies[index];
+            (&column.name, Some(column.unit), &column.values)
+        }
+    };
+    let unit = unit.unwrap_or(energies.unit);
     let weight = |value: f64| {
         if !*sigma {
             return Some(value).filter(|w| *w >= 0.0);
         }
         Some(to_per_cm(unit.to_hartree(value)).powi(-2)).filter(|w| value > 0.0 && w.is_finite())
     };
-    let found: Vec<Option<f64>> = column.values.iter().map(|value| value.and_then(weight)).collect();
+    let found: Vec<Option<f64>> = values.iter().map(|value| value.and_then(weight)).collect();
     // Rows without an energy are no points, so their weights are nobody's business.
     let without: Vec<f64> = (0..found.len())
         .filter(|&row| found[row].is_none() && energies.values[row].is_some())
@@ -40,7 +51,7 @@ pub fn by_column(
             without.len(),
             if without.len() == 1 { "" } else { "s" },
             if *sigma { "standard error" } else { "weight" },
-            column.name,
+            column,
             if without.len() == 1 { "it" } else { "them" }
         );
         Notice::caution(Code::NotFinite, text).at(without)

@@ -52,7 +52,8 @@ fn weighted_scan(folder: &std::path::Path) -> String {
         })
         .collect();
     let path = folder.join("weighted.csv");
-    fs::write(&path, format!("r_angstrom,E_hartree,w,err_cm-1\n{}\n", rows.join("\n"))).expect("written");
+    fs::write(&path, format!("r_angstrom,E_hartree,weight,err_cm-1\n{}\n", rows.join("\n")))
+        .expect("written");
     path.to_str().expect("UTF-8").to_owned()
 }
 
@@ -72,7 +73,7 @@ fn weights_come_from_a_column_or_row_by_row() {
         value["source"]["points"].as_array().expect("points").iter().map(|p| number(&p["weight"])).collect()
     };
     let (_, _, equal) = run("equal");
-    let (status, _, column) = run("column=w");
+    let (status, _, column) = run("column=weight");
     assert_eq!(status, Some(0));
     assert_eq!(of(&column)[..5], [1.0, 2.0, 3.0, 0.0, 2.0]);
     assert_eq!(column["fits"][0]["window"]["points"], 14, "a weight of 0 leaves the point out of the fits");
@@ -87,7 +88,7 @@ fn weights_come_from_a_column_or_row_by_row() {
     let (_, _, rows) = run("rows=0:0.5,2:0");
     assert_eq!(of(&rows)[..4], [0.5, 1.0, 0.0, 1.0]);
     let (status, text, _) = run("column=nowhere");
-    assert!(status == Some(3) && text.contains("nowhere") && text.contains("err"), "{status:?} {text}");
+    assert!(status == Some(3) && text.contains("nowhere") && text.contains("weight"), "{status:?} {text}");
 }
 
 #[test]

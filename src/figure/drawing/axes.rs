@@ -85,7 +85,7 @@ pub fn bottom_room(layout: &Layout) -> f64 {
 }
 
 fn wanted_up(layout: &Layout, height_pt: f64) -> f64 {
-    (height_pt / (4.0 * layout.font_pt)).clamp(2.0, 9.0)
+    (height_pt / (4.0 * layout.font_pt)).clamp(3.0, 9.0)
 }
 
 /// The grid, to be drawn behind everything.
