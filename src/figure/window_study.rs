@@ -86,7 +86,7 @@ impl WindowPicture {
         }
         let mut targets = Vec::new();
         let mut proposed = None;
-        for (index, fit) in study.fits.iter().enumerate().filter(|(_, f)| shown(&f)) {
+        for (index, fit) in study.fits.iter().enumerate().filter(|(_, f)| shown(f)) {
             if plateau.is_some_and(|p| p.middle == index) {
                 proposed = Some(targets.len());
             }

@@ -76,7 +76,9 @@ fn weights_come_from_a_column_or_row_by_row() {
     let (status, _, column) = run("column=weight");
     assert_eq!(status, Some(0));
     assert_eq!(of(&column)[..5], [1.0, 2.0, 3.0, 0.0, 2.0]);
-    assert_eq!(column["fits"][0]["window"]["points"], 14, "a weight of 0 leaves the point out of the fits");
+    // Row 3 lies in the window, and its weight of 0 leaves it out.
+    let in_window = |value: &Value| number(&value["fits"][0]["window"]["points"]);
+    assert_eq!(in_window(&column), in_window(&equal) - 1.0);
     assert_eq!(column["curve"]["minimum"], equal["curve"]["minimum"], "the curve has no weights");
     assert_valid(&schema(), &column, "column");
     let (_, _, sigma) = run("sigma=err");
