@@ -1,6 +1,7 @@
 //! Findings written out: the findings file (JSON) and tables. Writers take a `Write`; nothing here
 //! opens a file.
 
+pub mod compare;
 mod densities;
 mod extras;
 pub mod json;

@@ -196,6 +196,8 @@ pub struct Pictures {
     pub gauge: Figure,
     /// Residuals of the fits.
     pub residuals: Figure,
+    /// Averages over temperature.
+    pub thermal: Figure,
     /// Regions worth looking at.
     pub views: Views,
     /// The sentence.
@@ -215,6 +217,7 @@ impl Pictures {
             ladders: ladders(findings),
             gauge: gauge(findings),
             residuals: residuals(findings),
+            thermal: thermal_figure(findings),
             views: views(findings, window),
             sentence: sentence(findings),
             window,

@@ -3,6 +3,7 @@
 use super::command::Command;
 use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, State, Zoom};
 pub use super::take::*;
+use crate::export::compare::Quantity;
 use crate::figure::geometry::Bounds;
 use crate::fit::{RowWeight, Weighting};
 use crate::settings::{SetAside, Settings};
@@ -86,6 +87,11 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
                 return vec![Effect::Copy(text)];
             }
         }
+        Command::CopyComparison(form) => {
+            let text = super::panels::comparison_text(state, form);
+            state.view.message = Some(Message { text: "Comparison copied.".into(), failure: false });
+            return vec![Effect::Copy(text)];
+        }
         Command::SetDark(dark) => return vec![Effect::Theme(dark)],
         Command::TypePath(text) => {
             if let Some(window) = &mut state.view.path_window {
@@ -132,6 +138,13 @@ fn change_document(command: &Command, state: &mut State) -> bool {
         Command::SetTolerance { tolerance, resting } => {
             if *tolerance > 0.0 && *tolerance < 1.0 {
                 edit(state, "change the tolerance", !resting, |s| s.reach.tolerance = *tolerance);
+            }
+        }
+        Command::SetPublished { quantity, value } => {
+            let Some(index) = Quantity::ALL.iter().position(|q| q == quantity) else { return true };
+            if state.document.published[index] != *value {
+                state.history.note("enter a published constant", &state.document, true);
+                state.document.published[index] = *value;
             }
         }
         Command::SetAtoms(atoms) => {
@@ -275,7 +288,19 @@ fn change_view(command: Command, state: &mut State) {
         Command::ShowColumns(scan) => view.columns_of = scan,
         Command::OpenNotice(index) => view.open_notice = index,
         Command::ShowAllNotices(all) => view.all_notices = all,
-        Command::ShowPage(page) => view.page = page,
+        Command::ShowPage(page) => {
+            view.page = page;
+            view.comparison.open = false;
+        }
+        Command::ShowComparison(open) => view.comparison.open = open,
+        Command::SetReference(reference) => view.comparison.reference = reference,
+        Command::SortComparison(sort) => view.comparison.sort = sort,
+        Command::SetKelvin(kelvin) => {
+            let (low, high) = crate::thermal::TEMPERATURES_KELVIN;
+            if kelvin.is_finite() {
+                view.kelvin = Some(kelvin.clamp(low, high));
+            }
+        }
         Command::ShowStrip(strip) => view.strip = strip,
         Command::ToggleWhy => view.why_open = !view.why_open,
         Command::ShowLeft(open) => view.panels.left = Some(open),
@@ -345,11 +370,15 @@ fn findings_name(state: &State) -> String {
     format!("{stem}_{label}.findings.json")
 }
 
-/// The scan and settings to be computed next, where what is shown is older than the settings.
+/// The scan and settings to be computed next, where what is shown is older than the settings: the curve in
+/// focus first, then those compared with it.
 pub fn wanted(state: &State) -> Option<(CurveKey, Arc<crate::scan::Scan>, Settings)> {
-    if !state.is_stale() {
-        return None;
-    }
-    let (key, loaded, settings) = state.document.focused()?;
+    let focus = state.document.focus.filter(|key| state.is_stale_of(*key));
+    let compared = || {
+        let keys = state.view.comparison.open.then(|| state.document.settings.keys())?;
+        keys.copied().find(|key| state.is_stale_of(*key))
+    };
+    let key = focus.or_else(compared)?;
+    let (loaded, settings) = (state.document.scan(key.scan)?, state.document.settings.get(&key)?);
     Some((key, Arc::clone(&loaded.scan), settings.clone()))
 }

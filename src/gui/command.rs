@@ -1,6 +1,7 @@
 //! Everything the user can do, in one enum. Menu, buttons, shortcuts, drags and tests all speak it.
 
-use super::state::{CurveKey, Page, Preset, State, Strip};
+use super::state::{CurveKey, Page, Preset, Reference, State, Strip};
+use crate::export::compare::{Form, Quantity};
 use crate::figure::geometry::Bounds;
 use crate::fit::Window;
 use crate::scan::read::ReadSettings;
@@ -108,6 +109,23 @@ pub enum Command {
     PointAt(f64),
     /// Show a page of results.
     ShowPage(Page),
+    /// Show curves side by side, or the picture again.
+    ShowComparison(bool),
+    /// Take differences to this, or to nothing.
+    SetReference(Option<Reference>),
+    /// Sort the curves side by side, the largest on top if true, or not at all.
+    SortComparison(Option<(Quantity, bool)>),
+    /// Enter a published constant, in the unit of the quantity, or take it away.
+    SetPublished {
+        /// Which.
+        quantity: Quantity,
+        /// Its value.
+        value: Option<f64>,
+    },
+    /// Copy the curves side by side.
+    CopyComparison(Form),
+    /// Look at another temperature, in K.
+    SetKelvin(f64),
     /// Show a strip.
     ShowStrip(Strip),
     /// Show or hide the reasons of the sentence.
@@ -156,6 +174,7 @@ impl Command {
         let mut commands = vec![Self::Open, Self::Export, Self::Redo, Self::Undo];
         commands.extend(Preset::ALL.map(Self::Zoom));
         commands.extend(Page::ALL.map(Self::ShowPage));
+        commands.push(Self::ShowComparison(true));
         commands
     }
 
@@ -173,6 +192,12 @@ impl Command {
             Self::ShowPage(page) => page.name().into(),
             Self::ShowStrip(strip) => strip.name().into(),
             Self::CopyConstants => "Copy as text".into(),
+            Self::ShowComparison(true) => "Compare …".into(),
+            Self::ShowComparison(false) => "Picture".into(),
+            Self::CopyComparison(form) => {
+                let name = Form::ALL.iter().find(|(_, f)| f == form).map_or("", |(name, _)| name);
+                format!("Copy as {name}")
+            }
             Self::CloseScan => "Close scan".into(),
             Self::ResetWindow => "default".into(),
             Self::SetDark(true) => "Dark".into(),
@@ -205,6 +230,14 @@ impl Command {
             Self::ShowPage(Page::Reach) => "Where the parabola may be used, by every criterion.",
             Self::ShowStrip(Strip::Gauge) => "How far the curve departs from its parabola.",
             Self::ShowStrip(Strip::Residuals) => "Fitted minus scanned energies.",
+            Self::ShowPage(Page::Thermal) => {
+                "Partition function, heat capacity and displacements over temperature."
+            }
+            Self::ShowComparison(true) => {
+                "All curves in one table, with differences to one of them or to published constants."
+            }
+            Self::ShowComparison(false) => "Show the picture of the curve in focus again.",
+            Self::CopyComparison(_) => "Copy the table as it is shown.",
             Self::CopyConstants => "Copy constants, energies and masses to the clipboard.",
             Self::CloseScan => "Take this scan out of the window; the file stays.",
             Self::ResetWindow => "Take the default window again: within 15 % of rₑ, at least seven points.",
@@ -228,6 +261,7 @@ impl Command {
             Self::Export => with_command(Key::E),
             Self::Undo => with_command(Key::Z),
             Self::Redo => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::Z),
+            Self::ShowComparison(true) => KeyboardShortcut::new(Modifiers::ALT, Key::Num7),
             Self::Zoom(preset) => {
                 let key = match preset {
                     Preset::NearMinimum => Key::Num1,
@@ -244,6 +278,7 @@ impl Command {
                     Page::Levels => Key::Num3,
                     Page::Fits => Key::Num4,
                     Page::Reach => Key::Num5,
+                    Page::Thermal => Key::Num6,
                 };
                 KeyboardShortcut::new(Modifiers::ALT, key)
             }
@@ -271,6 +306,9 @@ impl Command {
                 "This study has no such region.",
             ),
             Self::CloseScan => need(state.document.focus.is_some(), "No scan is open."),
+            Self::ShowComparison(_) | Self::CopyComparison(_) => {
+                need(!state.document.settings.is_empty(), "No curve is open.")
+            }
             Self::ResetWindow => need(
                 state.document.focused().is_some_and(|(_, _, s)| s.fits.window.is_some()),
                 "This is the default window.",

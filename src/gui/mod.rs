@@ -5,6 +5,7 @@
 
 pub mod app;
 pub mod apply;
+mod chart;
 pub mod command;
 pub mod compute;
 mod dialogs;

@@ -3,7 +3,8 @@
 use super::command::Command;
 use super::history::History;
 use super::meaning::Meaning;
-pub use super::view::{Page, Preset, Strip, Zoom};
+pub use super::view::{Comparison, Page, Preset, Reference, Strip, Zoom};
+use crate::export::compare::Quantity;
 use crate::figure::geometry::Bounds;
 use crate::figure::{Pictures, PlotPoint};
 use crate::findings::Findings;
@@ -52,12 +53,21 @@ pub struct Document {
     pub focus: Option<CurveKey>,
     /// Settings of every curve.
     pub settings: BTreeMap<CurveKey, Settings>,
+    /// Published constants to compare with, in the order of [`Quantity::ALL`] and in its units.
+    pub published: [Option<f64>; Quantity::ALL.len()],
 }
 
 impl Document {
     /// The scan with this serial number.
     pub fn scan(&self, key: u64) -> Option<&LoadedScan> {
         self.scans.iter().find(|s| s.key == key)
+    }
+
+    /// The name of a curve, after its file where `with_file`.
+    pub fn curve_name(&self, key: CurveKey, with_file: bool) -> String {
+        let Some(scan) = self.scan(key.scan) else { return String::new() };
+        let label = scan.scan.energies.get(key.column).map_or("", |e| e.label.as_str());
+        if with_file { format!("{} · {label}", scan.scan.file_name) } else { label.to_owned() }
     }
 
     /// The scan, settings and key of the curve in focus.
@@ -111,6 +121,10 @@ pub struct ViewState {
     pub page: Page,
     /// The strip under the plot.
     pub strip: Strip,
+    /// Curves side by side.
+    pub comparison: Comparison,
+    /// The temperature looked at in K; none: 298.15 K.
+    pub kelvin: Option<f64>,
     /// Zoom of every curve looked at.
     pub zoom: BTreeMap<CurveKey, Zoom>,
     /// The level under the pointer.
@@ -143,6 +157,13 @@ pub struct ViewState {
     pub problem: Option<Problem>,
     /// The path window, where the desktop offers no dialog.
     pub path_window: Option<PathWindow>,
+}
+
+impl ViewState {
+    /// The temperature looked at in K.
+    pub fn kelvin(&self) -> f64 {
+        self.kelvin.unwrap_or(298.15)
+    }
 }
 
 /// What a path is asked for.
@@ -208,7 +229,15 @@ impl State {
 
     /// Whether what is shown was computed with other settings than those in force.
     pub fn is_stale(&self) -> bool {
-        let Some((key, loaded, settings)) = self.document.focused() else { return false };
+        self.document.focus.is_some_and(|key| self.is_stale_of(key))
+    }
+
+    /// The same of any curve; false of one that is not there.
+    pub fn is_stale_of(&self, key: CurveKey) -> bool {
+        let (Some(loaded), Some(settings)) = (self.document.scan(key.scan), self.document.settings.get(&key))
+        else {
+            return false;
+        };
         let of_this = |o: &Outcome| {
             o.settings == *settings
                 && o.study.as_ref().is_none_or(|s| s.findings.source.sha256 == loaded.scan.sha256)

@@ -1,5 +1,7 @@
 //! What can be looked at: pages, strips and regions of the plot.
 
+use super::state::CurveKey;
+use crate::export::compare::Quantity;
 use crate::figure::Pictures;
 use crate::figure::geometry::Bounds;
 
@@ -17,11 +19,14 @@ pub enum Page {
     Fits,
     /// The reach by every criterion.
     Reach,
+    /// Averages over temperature.
+    Thermal,
 }
 
 impl Page {
     /// All pages in order.
-    pub const ALL: [Self; 5] = [Self::Scan, Self::Constants, Self::Levels, Self::Fits, Self::Reach];
+    pub const ALL: [Self; 6] =
+        [Self::Scan, Self::Constants, Self::Levels, Self::Fits, Self::Reach, Self::Thermal];
 
     /// Its name.
     pub const fn name(self) -> &'static str {
@@ -31,8 +36,29 @@ impl Page {
             Self::Levels => "Levels",
             Self::Fits => "Fits",
             Self::Reach => "Reach",
+            Self::Thermal => "Thermal",
         }
     }
+}
+
+/// What the comparison takes differences to.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Reference {
+    /// A curve.
+    Curve(CurveKey),
+    /// The published constants entered.
+    Published,
+}
+
+/// Curves side by side.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct Comparison {
+    /// Whether the table is in the place of the picture.
+    pub open: bool,
+    /// What differences are taken to; none: values are shown.
+    pub reference: Option<Reference>,
+    /// What rows are sorted by, and whether the largest is on top; none: in order of loading.
+    pub sort: Option<(Quantity, bool)>,
 }
 
 /// What the strip shows.

@@ -65,6 +65,8 @@ fn curves_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let Some((key, ..)) = state.document.focused() else { return };
     ui.horizontal_wrapped(|ui| {
         command_button(ui, state, Command::ShowColumns(Some(key.scan)), ButtonForm::Quiet, out);
+        let other = Command::ShowComparison(!state.view.comparison.open);
+        command_button(ui, state, other, ButtonForm::Quiet, out);
         if several {
             command_button(ui, state, Command::CloseScan, ButtonForm::Quiet, out);
         }

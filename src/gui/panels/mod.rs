@@ -2,6 +2,7 @@
 
 mod asymptote;
 mod center;
+mod compare;
 mod constants;
 mod fits;
 mod left;
@@ -12,9 +13,11 @@ mod problem;
 mod reach;
 mod right;
 mod scan;
+mod thermal;
 mod top;
 mod units;
 
+pub use compare::comparison_text;
 pub use constants::constants_text;
 
 use super::command::Command;
@@ -85,7 +88,10 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
             .frame(plain(Margin::symmetric(2, 8)))
             .show(ui, |ui| folded_ui(ui, "Curves, masses, fits", Command::ShowLeft(true), out));
     }
-    if right_open {
+    let comparing = state.view.comparison.open;
+    if comparing {
+        // The table has all the room.
+    } else if right_open {
         let size = if width >= 1300.0 { 386.0 } else { 348.0 };
         Panel::right("right")
             .exact_size(size)
@@ -107,7 +113,13 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
             top: 10,
             bottom: 6,
         }))
-        .show(ui, |ui| center::center_ui(ui, state, out));
+        .show(ui, |ui| {
+            if comparing {
+                compare::compare_ui(ui, state, out);
+            } else {
+                center::center_ui(ui, state, out);
+            }
+        });
     problem::problem_ui(ui, state, out);
     dialogs::columns_ui(ui, state, out);
     dialogs::path_window_ui(ui, state, out);

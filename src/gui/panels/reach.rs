@@ -65,7 +65,7 @@ fn levels_ui(ui: &mut Ui, findings: &Findings) {
     }
 }
 
-fn temperature_ui(ui: &mut Ui, findings: &Findings) {
+pub(super) fn temperature_ui(ui: &mut Ui, findings: &Findings) {
     let Some(reach) = &findings.reach else { return };
     let t = reach.temperature_kelvin;
     let rows = [

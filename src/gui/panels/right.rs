@@ -1,6 +1,6 @@
 //! The pages on the right and their tabs.
 
-use super::{constants, fits, levels, reach, scan};
+use super::{constants, fits, levels, reach, scan, thermal};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show;
@@ -39,6 +39,7 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
             Page::Constants => constants::constants_ui(ui, state, findings, out),
             Page::Fits => fits::fits_ui(ui, state, findings, out),
             Page::Reach => reach::reach_ui(ui, findings),
+            Page::Thermal => thermal::thermal_ui(ui, state, study, out),
             Page::Levels | Page::Scan => {}
         }
         ui.add_space(8.0);
@@ -49,7 +50,7 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 fn tabs_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let look = Look::of(ui);
     let row = ui.horizontal(|ui| {
-        ui.spacing_mut().item_spacing.x = if ui.available_width() < 340.0 { 14.0 } else { 20.0 };
+        ui.spacing_mut().item_spacing.x = if ui.available_width() < 340.0 { 9.0 } else { 17.0 };
         for page in Page::ALL {
             let front = state.view.page == page;
             let (font, color) = if front {

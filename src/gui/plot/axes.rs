@@ -78,7 +78,7 @@ pub fn y_title_ui(ui: &Ui, map: &Map, title: &str) {
 }
 
 /// The bond-length axis under the strip.
-pub fn x_axis_ui(ui: &Ui, stage: &Stage, map: &Map) {
+pub(super) fn x_axis_ui(ui: &Ui, stage: &Stage, map: &Map) {
     let look = Look::of(ui);
     let font = look::figures(look::SMALL);
     let marks = x_ticks(map);

@@ -1,7 +1,7 @@
 //! The picture: main plot, strip and ladders on shared axes, and the hand that works on them.
 
 mod asymptote;
-mod axes;
+pub(in crate::gui) mod axes;
 mod card;
 mod cursor;
 mod handles;
@@ -10,7 +10,7 @@ mod items;
 mod ladders;
 mod levels;
 mod main_plot;
-mod map;
+pub(in crate::gui) mod map;
 mod points;
 mod steps;
 mod strip;
