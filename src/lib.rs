@@ -37,6 +37,7 @@ pub mod notice;
 pub mod potential;
 pub mod radial;
 pub mod reach;
+pub mod report;
 pub mod scan;
 pub mod settings;
 pub mod species;

@@ -56,7 +56,7 @@ impl ParameterUnits {
 const DIGITS: usize = 8;
 
 /// One parameter a row: name, value(uncertainty), unit.
-fn rows(fit: &Fit, units: &ParameterUnits) -> Vec<(String, String, String)> {
+pub fn rows(fit: &Fit, units: &ParameterUnits) -> Vec<(String, String, String)> {
     let row = |name: &str, estimate: crate::estimate::Estimate, unit: ParameterUnit| {
         let (unit, factor) = units.of(unit);
         let e = estimate.scaled(factor);

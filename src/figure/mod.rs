@@ -15,9 +15,11 @@ mod ladders;
 pub mod number;
 pub mod pdf;
 mod residuals;
+pub mod rows;
 mod sentence;
 pub mod svg;
 mod thermal;
+pub mod typography;
 mod views;
 mod window_study;
 

@@ -8,6 +8,7 @@ use super::state::{CurveKey, Page, PathPurpose, State, Study};
 use super::watch::{Watch, Watched};
 use super::{Program, look, panels};
 use crate::figure::Pictures;
+use crate::figure::drawing::Paper;
 use crate::scan::Scan;
 use crate::settings::Settings;
 use eframe::egui;
@@ -95,15 +96,16 @@ impl App {
     fn carry_out(&mut self, effect: Effect, ctx: &egui::Context) {
         match effect {
             Effect::AskOpen => self.files.ask_open(),
-            Effect::AskSave(name) => self.files.ask_save(name),
+            Effect::AskSave { product, name } => self.files.ask_save(product, name),
             Effect::Read(path) => self.files.read(path, Settings::default()),
             Effect::ReadSample(index) => self.files.read_sample(index, Settings::default()),
             Effect::ReadText(text) => self.files.read_text(text, Settings::default()),
             Effect::Reread { loaded, from_disk } => self.files.reread(loaded, from_disk),
             Effect::ReadBytes(problem) => self.files.read_again(problem),
-            Effect::Write { path, overwrite } => {
+            Effect::Write { product, path, overwrite } => {
                 if let Some(study) = self.state.study() {
-                    self.files.write(path, Arc::clone(&study.findings), overwrite);
+                    let paper = Paper { bounds: self.state.bounds(), ..Paper::default() };
+                    self.files.write(product, path, Arc::clone(&study.findings), paper, overwrite);
                 }
             }
             Effect::Copy(text) => ctx.copy_text(text),
@@ -124,9 +126,9 @@ impl App {
                 }
             }
             // A save dialog has asked about replacing already.
-            Done::Chosen(PathPurpose::SaveFindings, paths) => {
+            Done::Chosen(PathPurpose::Write(product), paths) => {
                 for path in paths {
-                    self.give(Command::ExportTo { path, overwrite: true }, ctx);
+                    self.give(Command::ExportTo { product, path, overwrite: true }, ctx);
                 }
             }
             Done::NoDialog(purpose, text, entries) => {

@@ -1,6 +1,7 @@
 //! Carries commands out: the only place where the window's state changes.
 
 use super::command::Command;
+use super::product::Product;
 use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, State, Zoom};
 pub use super::take::*;
 use crate::export::compare::Quantity;
@@ -15,8 +16,13 @@ use std::sync::Arc;
 pub enum Effect {
     /// Ask for files to open.
     AskOpen,
-    /// Ask where to write the findings of the focused curve.
-    AskSave(String),
+    /// Ask where to write something made of the focused curve's study.
+    AskSave {
+        /// What.
+        product: Product,
+        /// Name offered.
+        name: String,
+    },
     /// Read a file.
     Read(PathBuf),
     /// Read a bundled sample.
@@ -32,8 +38,10 @@ pub enum Effect {
     },
     /// Read these bytes again.
     ReadBytes(Problem),
-    /// Write the findings of the focused curve.
+    /// Write something made of the focused curve's study.
     Write {
+        /// What.
+        product: Product,
         /// Where.
         path: PathBuf,
         /// Whether a file there may be replaced.
@@ -78,8 +86,12 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
                 .into_iter()
                 .collect();
         }
-        Command::Export => return vec![Effect::AskSave(findings_name(state))],
-        Command::ExportTo { path, overwrite } => return vec![Effect::Write { path, overwrite }],
+        Command::Export(product) => {
+            return vec![Effect::AskSave { product, name: file_name(state, product) }];
+        }
+        Command::ExportTo { product, path, overwrite } => {
+            return vec![Effect::Write { product, path, overwrite }];
+        }
         Command::CopyConstants => {
             if let Some(study) = state.study() {
                 let text = super::panels::constants_text(&study.findings);
@@ -360,14 +372,14 @@ fn ordered(value: f64) -> u64 {
     value.max(0.0).to_bits()
 }
 
-/// Name offered for the findings of the focused curve.
-fn findings_name(state: &State) -> String {
-    let Some(study) = state.study() else { return "findings.json".into() };
+/// Name offered for something made of the focused curve's study.
+fn file_name(state: &State, product: Product) -> String {
+    let Some(study) = state.study() else { return format!("study{}", product.ending()) };
     let source = &study.findings.source;
     let stem = source.file_name.rsplit_once('.').map_or(source.file_name.as_str(), |(s, _)| s);
     let label: String =
         source.curve_label.chars().map(|c| if c.is_ascii_alphanumeric() { c } else { '_' }).collect();
-    format!("{stem}_{label}.findings.json")
+    format!("{stem}_{label}{}", product.ending())
 }
 
 /// The scan and settings to be computed next, where what is shown is older than the settings: the curve in

@@ -1,5 +1,6 @@
 //! Everything the user can do, in one enum. Menu, buttons, shortcuts, drags and tests all speak it.
 
+use super::product::Product;
 use super::state::{CurveKey, Page, Preset, Reference, State, Strip};
 use crate::export::compare::{Form, Quantity};
 use crate::figure::geometry::Bounds;
@@ -144,10 +145,12 @@ pub enum Command {
     Undo,
     /// Do it again.
     Redo,
-    /// Write the findings to a file that is asked for.
-    Export,
-    /// Write the findings to this file.
+    /// Write something made of the focused curve's study to a file that is asked for.
+    Export(Product),
+    /// Write it to this file.
     ExportTo {
+        /// What.
+        product: Product,
         /// Where.
         path: PathBuf,
         /// Whether a file there may be replaced.
@@ -171,7 +174,13 @@ const fn with_command(key: Key) -> KeyboardShortcut {
 impl Command {
     /// The commands that have a shortcut.
     pub fn with_shortcut() -> Vec<Self> {
-        let mut commands = vec![Self::Open, Self::Export, Self::Redo, Self::Undo];
+        let mut commands = vec![
+            Self::Open,
+            Self::Export(Product::Findings),
+            Self::Export(Product::Report),
+            Self::Redo,
+            Self::Undo,
+        ];
         commands.extend(Preset::ALL.map(Self::Zoom));
         commands.extend(Page::ALL.map(Self::ShowPage));
         commands.push(Self::ShowComparison(true));
@@ -182,7 +191,7 @@ impl Command {
     pub fn label(&self) -> String {
         match self {
             Self::Open => "Open …".into(),
-            Self::Export => "Export …".into(),
+            Self::Export(product) => product.label().into(),
             Self::Undo => "Undo".into(),
             Self::Redo => "Redo".into(),
             Self::OpenSample(i) => {
@@ -218,7 +227,7 @@ impl Command {
     pub fn tooltip(&self) -> &'static str {
         match self {
             Self::Open => "Read a scan from a file. Files can also be dropped on the window.",
-            Self::Export => "Write all findings of this curve as JSON; the headless command writes the same.",
+            Self::Export(product) => product.about(),
             Self::Zoom(Preset::NearMinimum) => "The lowest six levels.",
             Self::Zoom(Preset::WholeWell) => "Everything up to the limit of the bound levels.",
             Self::Zoom(Preset::FitWindow) => "The window of the fits.",
@@ -258,7 +267,8 @@ impl Command {
     pub fn shortcut(&self) -> Option<KeyboardShortcut> {
         Some(match self {
             Self::Open => with_command(Key::O),
-            Self::Export => with_command(Key::E),
+            Self::Export(Product::Findings) => with_command(Key::E),
+            Self::Export(Product::Report) => with_command(Key::R),
             Self::Undo => with_command(Key::Z),
             Self::Redo => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::Z),
             Self::ShowComparison(true) => KeyboardShortcut::new(Modifiers::ALT, Key::Num7),
@@ -296,7 +306,7 @@ impl Command {
         match self {
             Self::Undo => need(state.history.undo_name().is_some(), "Nothing to take back."),
             Self::Redo => need(state.history.redo_name().is_some(), "Nothing was taken back."),
-            Self::Export | Self::ExportTo { .. } => {
+            Self::Export(_) | Self::ExportTo { .. } => {
                 need(study.is_some(), "No findings yet.")?;
                 need(!state.is_stale(), "The findings are being computed.")
             }

@@ -1,9 +1,10 @@
 //! Files and dialogs, kept off the frame: every read, write and dialog runs on a thread of its own.
 
 use super::meaning::meanings;
+use super::product::Product;
 use super::samples::SAMPLES;
 use super::state::{LoadedScan, PathPurpose, Problem};
-use crate::files::{Replace, WriteError};
+use crate::figure::drawing::Paper;
 use crate::findings::Findings;
 use crate::scan::error::ScanError;
 use crate::scan::read::read_scan;
@@ -128,9 +129,16 @@ impl Files {
         self.run(move || understand(&file_name, bytes, path, start));
     }
 
-    /// Writes findings; refuses to replace a file unless told to.
-    pub fn write(&mut self, path: PathBuf, findings: Arc<Findings>, overwrite: bool) {
-        self.run(move || Done::Written(write_findings(&path, &findings, overwrite)));
+    /// Writes something made of a study; refuses to replace a file unless told to.
+    pub fn write(
+        &mut self,
+        product: Product,
+        path: PathBuf,
+        findings: Arc<Findings>,
+        paper: Paper,
+        overwrite: bool,
+    ) {
+        self.run(move || Done::Written(product.write(&findings, &path, &paper, overwrite)));
     }
 
     /// Lists the folder that a typed path names.
@@ -155,19 +163,21 @@ impl Files {
         });
     }
 
-    /// Asks where to write findings.
-    pub fn ask_save(&mut self, name: String) {
+    /// Asks where to write something.
+    pub fn ask_save(&mut self, product: Product, name: String) {
+        let purpose = PathPurpose::Write(product);
         if self.inline {
-            self.run(move || no_dialog(PathPurpose::SaveFindings, name));
+            self.run(move || no_dialog(purpose, name));
             return;
         }
         self.run(move || {
             let start = Instant::now();
-            let dialog = rfd::FileDialog::new().set_title("Write findings").set_file_name(&name);
+            let title = format!("Write {}", product.name().to_lowercase());
+            let dialog = rfd::FileDialog::new().set_title(title).set_file_name(&name);
             match dialog.save_file() {
-                Some(path) => Done::Chosen(PathPurpose::SaveFindings, vec![path]),
-                None if start.elapsed() < NO_DIALOG => no_dialog(PathPurpose::SaveFindings, name),
-                None => Done::Chosen(PathPurpose::SaveFindings, Vec::new()),
+                Some(path) => Done::Chosen(purpose, vec![path]),
+                None if start.elapsed() < NO_DIALOG => no_dialog(purpose, name),
+                None => Done::Chosen(purpose, Vec::new()),
             }
         });
     }
@@ -306,17 +316,4 @@ fn words(error: &ScanError) -> String {
 /// Whether naming units would settle the refusal.
 fn asks_for_units(error: &ScanError) -> bool {
     matches!(error, ScanError::LengthUnitMissing { .. } | ScanError::EnergyUnitMissing { .. })
-}
-
-fn write_findings(path: &Path, findings: &Findings, overwrite: bool) -> Result<String, String> {
-    let text = crate::export::json::findings_to_string(findings);
-    let replace = if overwrite { Replace::Anything } else { Replace::Findings };
-    match crate::files::write(path, text.as_bytes(), replace) {
-        Ok(()) => Ok(format!("Findings written to {}.", path.display())),
-        Err(WriteError::Exists { path }) => Err(format!(
-            "{} exists, is no findings file, and was left as it is. Choose another name.",
-            path.display()
-        )),
-        Err(error) => Err(format!("{error}.")),
-    }
 }

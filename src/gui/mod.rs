@@ -18,6 +18,7 @@ pub mod painter;
 mod panels;
 mod paper;
 mod plot;
+pub mod product;
 pub mod program;
 mod run;
 pub mod samples;

@@ -3,57 +3,20 @@
 use super::command::Command;
 use super::look::{self, Look};
 use super::state::State;
+pub use crate::figure::rows::Row;
+pub use crate::figure::typography::typographic;
 use crate::figure::{LineStyle, Role};
 use eframe::egui;
 use egui::{Align2, Color32, FontId, Rect, Response, Sense, Stroke, Ui, WidgetInfo, pos2, vec2};
 
-/// One row of figures: label, one or two values, unit.
-#[derive(Clone, Debug, Default)]
-pub struct Row {
-    /// Symbol or words.
-    pub label: String,
-    /// The value, already with its digits.
-    pub value: String,
-    /// A second value beside it, dimmer; rows of one block agree on having it.
-    pub second: Option<String>,
-    /// The unit.
-    pub unit: &'static str,
-    /// What it is: formula, source, where the error comes from.
-    pub about: String,
+/// A row on the screen.
+pub trait RowUi {
+    /// Draws the row.
+    fn ui(&self, ui: &mut Ui) -> Response;
 }
 
-impl Row {
-    /// A row with one value.
-    pub fn new(label: impl Into<String>, value: impl Into<String>, unit: &'static str) -> Self {
-        Self { label: label.into(), value: value.into(), unit, ..Self::default() }
-    }
-
-    /// With a second value.
-    pub fn beside(mut self, second: impl Into<String>) -> Self {
-        self.second = Some(second.into());
-        self
-    }
-
-    /// With words about it.
-    pub fn about(mut self, about: impl Into<String>) -> Self {
-        self.about = about.into();
-        self
-    }
-
-    /// The row as one line of text, as copied and as read aloud.
-    pub fn text(&self) -> String {
-        let mut text = format!("{} {}", self.label, self.value);
-        if let Some(second) = &self.second {
-            text.push_str(&format!(" ({second})"));
-        }
-        if !self.unit.is_empty() {
-            text.push_str(&format!(" {}", self.unit));
-        }
-        text
-    }
-
-    /// Draws the row.
-    pub fn ui(&self, ui: &mut Ui) -> Response {
+impl RowUi for Row {
+    fn ui(&self, ui: &mut Ui) -> Response {
         let look = Look::of(ui);
         let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), look::ROW), Sense::hover());
         response.widget_info(|| WidgetInfo::labeled(egui::Role::Label, true, self.text()));
@@ -102,47 +65,6 @@ pub fn elided(ui: &Ui, left_center: egui::Pos2, room: f32, text: &str, font: Fon
     let rect = Rect::from_min_size(min, galley.size());
     ui.painter().galley(min, galley, color);
     rect
-}
-
-/// Text of the numerics, which is plain enough for any terminal, as the window writes units.
-pub fn typographic(text: &str) -> String {
-    let mut text = text.replace("cm-1", "cm⁻¹").replace(" angstrom", " Å");
-    // Options of the command line mean nothing here.
-    while let Some(start) = text.find(" (--") {
-        let Some(length) = text[start..].find(')') else { break };
-        text.replace_range(start..=start + length, "");
-    }
-    set_numbers(&text)
-}
-
-/// True minus signs before numbers, thin spaces between the thousands of numbers of five digits and more.
-fn set_numbers(text: &str) -> String {
-    let mut out = String::with_capacity(text.len() + 8);
-    let chars: Vec<char> = text.chars().collect();
-    let mut at = 0;
-    while at < chars.len() {
-        let before = at.checked_sub(1).map(|i| chars[i]);
-        let free = before.is_none_or(|c| !c.is_alphanumeric() && c != '.' && c != '_' && c != '-');
-        if chars[at] == '-' && free && chars.get(at + 1).is_some_and(char::is_ascii_digit) {
-            out.push('−');
-            at += 1;
-            continue;
-        }
-        let digits = chars[at..].iter().take_while(|c| c.is_ascii_digit()).count();
-        if digits == 0 {
-            out.push(chars[at]);
-            at += 1;
-            continue;
-        }
-        for (i, digit) in chars[at..at + digits].iter().enumerate() {
-            if free && digits > 4 && i > 0 && (digits - i).is_multiple_of(3) {
-                out.push(crate::figure::number::THIN_SPACE);
-            }
-            out.push(*digit);
-        }
-        at += digits;
-    }
-    out
 }
 
 /// A heading of a block, with dim words at the right.
@@ -315,22 +237,5 @@ pub fn styled_line(painter: &egui::Painter, points: &[egui::Pos2], style: LineSt
         LineStyle::LongDashed => dashes(11.0, 4.0),
         LineStyle::ShortDashed => dashes(3.0, 3.0),
         LineStyle::Dotted => dashes(2.0, 3.0),
-    }
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn units_are_set_and_options_left_out() {
-        assert_eq!(typographic("11 cm-1 at 1.44 angstrom"), "11 cm⁻¹ at 1.44 Å");
-        assert_eq!(
-            typographic("name the atoms (--atoms) or a mass (--reduced-mass)."),
-            "name the atoms or a mass."
-        );
-        assert_eq!(typographic("left open (--"), "left open (--");
-        assert_eq!(typographic("v = 23 (19976 cm-1), -0.5"), "v = 23 (19\u{2009}976 cm⁻¹), −0.5");
-        assert_eq!(typographic("[Watson 1980] lag-1, a 2-3, 0.12345"), "[Watson 1980] lag-1, a 2-3, 0.12345");
     }
 }

@@ -3,6 +3,7 @@
 use super::command::Command;
 use super::history::History;
 use super::meaning::Meaning;
+use super::product::Product;
 pub use super::view::{Comparison, Page, Preset, Reference, Strip, Zoom};
 use crate::export::compare::Quantity;
 use crate::figure::geometry::Bounds;
@@ -171,8 +172,8 @@ impl ViewState {
 pub enum PathPurpose {
     /// A file to open.
     Open,
-    /// Where findings go.
-    SaveFindings,
+    /// Where something made of a study goes.
+    Write(Product),
 }
 
 /// The built-in path window.

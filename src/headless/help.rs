@@ -92,6 +92,7 @@ RESULTS
                              window-study (one row a fit, and asks for that study) or thermal (one row a
                              temperature); may be
                              repeated
+  --report F.html            one page: picture, sentence, constants, fits, levels, notices, settings
   --parameters F             parameters of the fits with value(uncertainty); LaTeX where F ends in .tex,
                              else text
   --force-constant-unit U    N/m (default), mdyn/angstrom, hartree/bohr^2, 'kJ/(mol nm^2)',

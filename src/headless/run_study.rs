@@ -229,6 +229,9 @@ fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Resu
         }
         keep(files::write(path, &bytes, table_replace));
     }
+    if let Some(path) = &arguments.report {
+        keep(files::write(path, crate::report::report(&all).as_bytes(), table_replace));
+    }
     if let Some(path) = &arguments.parameters {
         keep(files::write(path, all_parameters(&all, path, &arguments.units).as_bytes(), table_replace));
     }

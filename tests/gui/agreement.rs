@@ -73,3 +73,35 @@ fn a_window_in_angstrom_on_a_scan_in_bohr() {
     window.run();
     assert!(count(&window) > before);
 }
+
+/// A picture of the window ends with the status that a headless study of the same file ends with.
+#[test]
+fn pictures_of_the_window_end_with_the_status_of_the_study() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let out = folder.path().join("window.png");
+    let write = |name: &str, text: &str| {
+        let path = folder.path().join(name);
+        std::fs::write(&path, text).expect("written");
+        path
+    };
+    // Invented numbers: no unit; then a wall without a minimum.
+    let refused = write("open.csv", "R,E\n1.0,0.3\n1.1,0.2\n1.2,0.1\n1.3,0.2\n1.4,0.3\n");
+    let falling: String = (0..12).map(|i| format!("{},{}\n", 1.0 + 0.1 * f64::from(i), -0.01 * f64::from(i))).collect();
+    let impossible = write("wall.csv", &format!("r_bohr,E_hartree\n{falling}"));
+    let picture = |file: PathBuf, overwrite: bool| {
+        parabound::gui::run(parabound::headless::WindowArgs {
+            files: vec![file],
+            picture: Some(out.clone()),
+            size: Some((500, 400)),
+            overwrite,
+            ..Default::default()
+        })
+    };
+    assert_eq!(picture(scan("lih_X_A.csv"), false), 0);
+    let first = std::fs::read(&out).expect("a picture");
+    assert_eq!(picture(scan("lih_X_A.csv"), false), 3, "a picture is in the way");
+    assert_eq!(std::fs::read(&out).expect("still there"), first);
+    assert_eq!(picture(refused, true), 3);
+    assert_eq!(picture(impossible, true), 4);
+    assert_ne!(std::fs::read(&out).expect("a picture of the refusal"), first);
+}

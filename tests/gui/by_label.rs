@@ -5,6 +5,7 @@ use eframe::egui::{self, Key, Modifiers, accesskit::Role, vec2};
 use egui_kittest::kittest::{NodeT as _, Queryable as _, by};
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
+use parabound::gui::product::Product;
 use parabound::gui::state::{Page, Strip};
 
 const UPPER: &str = "Upper edge of the fit window";
@@ -39,12 +40,16 @@ fn dragging_the_window_edge_changes_the_force_constant_and_undo_takes_it_back() 
 #[test]
 fn an_edge_snaps_to_a_point_so_that_the_point_counts() {
     let mut window = open_sample();
+    let plot = window.get(by().role(Role::Figure).label_contains("Plot of")).rect();
+    let bounds = state(&window).bounds().expect("bounds");
+    // The scan has 2.0 angstrom; the hand lets go four screen points beside it.
+    let share = ((2.0 - bounds.x.0) / (bounds.x.1 - bounds.x.0)) as f32;
+    let x = plot.left() + plot.width() * share + 4.0;
     let grip = window.get_by_role_and_label(Role::Slider, UPPER).rect().center();
-    drag(&mut window, grip, grip + vec2(61.0, 0.0));
-    let edge = edge_value(&window, UPPER);
+    drag(&mut window, grip, egui::pos2(x, grip.y));
+    assert_eq!(edge_value(&window, UPPER), 2.0);
     let points = &state(&window).study().expect("a study").pictures.points;
-    let nearest = points.iter().map(|p| (p.r_as_read - edge).abs()).fold(f64::INFINITY, f64::min);
-    assert!(nearest < 1e-9 || (edge * 1000.0 - (edge * 1000.0).round()).abs() < 1e-6, "{edge}");
+    assert!(points.iter().any(|p| p.r_as_read == 2.0 && p.in_window));
 }
 
 #[test]
@@ -87,7 +92,8 @@ fn findings_are_exported_and_nothing_is_replaced_unasked() {
     let folder = tempfile::tempdir().expect("a folder");
     let path = folder.path().join("lih.findings.json");
     let mut window = open_sample();
-    press(&mut window, "Export …");
+    press(&mut window, "Export");
+    press(&mut window, "Findings (JSON) …");
     // Without a desktop the built-in path window asks.
     let field = window.get_by_role_and_label(Role::TextInput, "Path");
     field.focus();
@@ -103,7 +109,7 @@ fn findings_are_exported_and_nothing_is_replaced_unasked() {
     // A findings file is replaced, as on the command line; anything else is left alone.
     for (content, refused) in [(text.as_str(), false), ("precious", true)] {
         std::fs::write(&path, content).expect("written");
-        let again = Command::ExportTo { path: path.clone(), overwrite: false };
+        let again = Command::ExportTo { product: Product::Findings, path: path.clone(), overwrite: false };
         window.state_mut().0.give(again, &ctx);
         window.run();
         let message = state(&window).view.message.clone().expect("a message");
@@ -111,6 +117,47 @@ fn findings_are_exported_and_nothing_is_replaced_unasked() {
         assert_eq!(message.text.contains("exists"), refused, "{message:?}");
         assert_eq!(std::fs::read_to_string(&path).expect("still there"), content);
     }
+}
+
+#[test]
+fn everything_made_of_a_study_is_written() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let mut window = open_sample();
+    let ctx = window.ctx.clone();
+    for product in Product::ALL {
+        let endings: &[&str] =
+            if product == Product::Picture { &[".svg", ".pdf", ".png"] } else { &[product.ending()] };
+        for ending in endings {
+            let path = folder.path().join(format!("lih{ending}"));
+            let write = Command::ExportTo { product, path: path.clone(), overwrite: false };
+            window.state_mut().0.give(write.clone(), &ctx);
+            window.run();
+            let bytes = std::fs::read(&path).expect("written");
+            let starts: &[u8] = match *ending {
+                ".svg" => b"<?xml",
+                ".pdf" => b"%PDF",
+                ".png" => b"\x89PNG",
+                ".report.html" => b"<!DOCTYPE html>",
+                ".findings.json" => b"{",
+                _ => b"",
+            };
+            assert!(bytes.len() > 200 && bytes.starts_with(starts), "{ending}");
+            // A second time it is in the way, unless it is a findings file.
+            window.state_mut().0.give(write, &ctx);
+            window.run();
+            let message = state(&window).view.message.clone().expect("a message");
+            assert_eq!(message.failure, product != Product::Findings, "{message:?}");
+        }
+    }
+    let wrong = Command::ExportTo {
+        product: Product::Picture,
+        path: folder.path().join("lih.bmp"),
+        overwrite: false,
+    };
+    window.state_mut().0.give(wrong, &ctx);
+    window.run();
+    let message = state(&window).view.message.clone().expect("a message");
+    assert!(message.failure && message.text.contains(".svg, .pdf or .png"), "{message:?}");
 }
 
 #[test]

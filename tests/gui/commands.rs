@@ -4,6 +4,7 @@ use parabound::fit::Window;
 use parabound::gui::apply::{Effect, apply, take_outcome, take_scan, wanted};
 use parabound::gui::command::Command;
 use parabound::gui::files::{Done, understand};
+use parabound::gui::product::Product;
 use parabound::gui::samples::SAMPLES;
 use parabound::gui::state::{CurveKey, Preset, State, Study, Zoom};
 use parabound::settings::Settings;
@@ -117,8 +118,12 @@ fn setting_aside_and_restoring_are_inverse() {
 #[test]
 fn a_disabled_command_does_nothing_and_says_why() {
     let mut state = State::default();
-    for command in [Command::Undo, Command::Export, Command::Zoom(Preset::WholeWell), Command::CopyConstants]
-    {
+    for command in [
+        Command::Undo,
+        Command::Export(Product::Findings),
+        Command::Zoom(Preset::WholeWell),
+        Command::CopyConstants,
+    ] {
         let reason = command.is_enabled(&state).expect_err("nothing is open");
         assert!(reason.ends_with('.'), "{reason}");
         assert!(apply(command, &mut state).is_empty());
@@ -133,7 +138,10 @@ fn results_of_older_settings_are_marked_until_new_ones_come() {
     assert!(!state.is_stale());
     apply(Command::SetWindow { window: window(1.1, 2.2), resting: true }, &mut state);
     assert!(state.is_stale() && state.study().is_some(), "the old study stays in sight");
-    assert!(apply(Command::Export, &mut state).is_empty(), "what is not up to date is not exported");
+    assert!(
+        apply(Command::Export(Product::Findings), &mut state).is_empty(),
+        "what is not up to date is not exported"
+    );
     compute(&mut state);
     assert!(!state.is_stale());
 }
@@ -174,7 +182,7 @@ fn opening_and_exporting_are_left_to_the_world_outside() {
     let mut state = with_sample();
     assert!(matches!(apply(Command::Open, &mut state)[..], [Effect::AskOpen]));
     compute(&mut state);
-    let effects = apply(Command::Export, &mut state);
-    let [Effect::AskSave(name)] = &effects[..] else { panic!("{effects:?}") };
+    let effects = apply(Command::Export(Product::Findings), &mut state);
+    let [Effect::AskSave { name, .. }] = &effects[..] else { panic!("{effects:?}") };
     assert_eq!(name, "lih_X_A_E_X.findings.json");
 }

@@ -42,6 +42,10 @@ fn every_page_is_shown_in_every_kind_of_window() {
             assert_eq!(state(&window).view.page, page);
             write(&mut window, &format!("{kind}_{}", page.name().to_lowercase()));
         }
+        give(&mut window, &[Command::ShowComparison(true)]);
+        window.run();
+        write(&mut window, &format!("{kind}_compare"));
+        give(&mut window, &[Command::ShowComparison(false)]);
         let row = state(&window).study().expect("a study").findings.source.points[12].row;
         give(
             &mut window,

@@ -8,5 +8,6 @@ mod commands;
 mod frames;
 mod gallery;
 mod harness;
+mod pages;
 mod pictures;
 mod reading;

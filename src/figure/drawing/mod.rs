@@ -86,11 +86,13 @@ pub struct Paper {
     pub dark: bool,
     /// Part of the curve.
     pub view: View,
+    /// Another part of it: angstrom, cm⁻¹ above the minimum.
+    pub bounds: Option<Bounds>,
 }
 
 impl Default for Paper {
     fn default() -> Self {
-        Self { width_mm: 140.0, font_pt: 9.0, dark: false, view: View::NearMinimum }
+        Self { width_mm: 140.0, font_pt: 9.0, dark: false, view: View::NearMinimum, bounds: None }
     }
 }
 
@@ -229,13 +231,13 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
     let size_pt = [width_pt, (share * width_pt).max(16.0 * paper.font_pt)];
     let mut layout = Layout::new(size_pt, paper.font_pt, paper.dark);
     let pictures = Pictures::of(findings);
-    let view = match paper.view {
+    let named = match paper.view {
         View::NearMinimum => pictures.views.near_minimum,
         View::WholeWell => pictures.views.whole_well,
         View::FitWindow => pictures.views.fit_window,
         View::AllPoints => pictures.views.all_points,
-    }
-    .or_else(|| pictures.views.first());
+    };
+    let view = paper.bounds.filter(Bounds::is_valid).or(named).or_else(|| pictures.views.first());
     let nothing = |why| DrawingError::Nothing { why };
     let items = match subject {
         Subject::Curve => {

@@ -12,8 +12,8 @@ use std::path::{Path, PathBuf};
 pub fn path_window_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let Some(window) = &state.view.path_window else { return };
     let title = match window.purpose {
-        PathPurpose::Open => "Open a bond scan",
-        PathPurpose::SaveFindings => "Write findings",
+        PathPurpose::Open => "Open a bond scan".to_owned(),
+        PathPurpose::Write(product) => format!("Write {}", product.name().to_lowercase()),
     };
     egui::Window::new(title)
         .collapsible(false)
@@ -48,7 +48,7 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
     ui.horizontal(|ui| {
         let verb = match window.purpose {
             PathPurpose::Open => "Open",
-            PathPurpose::SaveFindings => "Write",
+            PathPurpose::Write(_) => "Write",
         };
         accepted |= ui.button(verb).clicked();
         if ui.button("Cancel").clicked() {
@@ -59,7 +59,7 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
         let path = PathBuf::from(window.text.trim());
         out.push(match window.purpose {
             PathPurpose::Open => Command::OpenPath(path),
-            PathPurpose::SaveFindings => Command::ExportTo { path, overwrite: false },
+            PathPurpose::Write(product) => Command::ExportTo { product, path, overwrite: false },
         });
         out.push(Command::ClosePathWindow);
     }

@@ -5,7 +5,7 @@ use crate::findings::{Findings, FitFindings};
 use crate::fit::{Fit, Parameter, ParameterUnit};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::{self, ButtonForm, Row, command_button_as, line_sample};
+use crate::gui::show::{self, ButtonForm, Row, RowUi as _, command_button_as, line_sample};
 use crate::gui::state::State;
 use crate::units::{
     ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_per_cm,

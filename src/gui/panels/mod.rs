@@ -17,8 +17,8 @@ mod thermal;
 mod top;
 mod units;
 
+pub use crate::figure::rows::constants_text;
 pub use compare::comparison_text;
-pub use constants::constants_text;
 
 use super::command::Command;
 use super::dialogs;

@@ -1,9 +1,10 @@
 //! The page of the reach: by energy, by force, by level, by temperature.
 
 use crate::figure::number;
+use crate::figure::rows::{Row, interval_text, level_value, temperature_text};
 use crate::findings::Findings;
-use crate::gui::show::{self, Row};
-use crate::reach::{Interval, LevelReach};
+use crate::gui::show::{self, RowUi as _};
+use crate::reach::Interval;
 use crate::units::to_angstrom;
 use crate::verdict::percent;
 use eframe::egui::Ui;
@@ -87,17 +88,6 @@ pub(super) fn temperature_ui(ui: &mut Ui, findings: &Findings) {
     }
 }
 
-/// A highest temperature in kelvin.
-pub(super) fn temperature_text(kelvin: f64) -> String {
-    if kelvin < 0.5 { "not even at 0".to_owned() } else { format!("up to {}", number::fixed(kelvin, 0)) }
-}
-
-/// Both ends in angstrom.
-pub(super) fn interval_text(interval: &Interval) -> String {
-    let end = |x: Option<f64>| x.map_or_else(|| "scan end".to_owned(), |x| number::signed(to_angstrom(x), 4));
-    format!("{} … {}", end(interval.x_minus_bohr), end(interval.x_plus_bohr))
-}
-
 fn open_end(interval: &Interval) -> Option<&'static str> {
     match (interval.x_minus_bohr, interval.x_plus_bohr) {
         (Some(_), Some(_)) => None,
@@ -105,18 +95,4 @@ fn open_end(interval: &Interval) -> Option<&'static str> {
         (None, _) => Some("Not left on the inner side before the scan ends."),
         (_, None) => Some("Not left on the outer side before the scan ends."),
     }
-}
-
-pub(super) fn level_label(reach: &LevelReach, findings: &Findings) -> String {
-    let omega = findings.constants.from_derivatives.as_ref().map(|d| d.omega_e_per_cm.value);
-    match omega {
-        Some(omega) if findings.settings.reach.level_tolerance_per_cm.is_none() && omega > 0.0 => {
-            format!("levels within {} of ωₑ", percent(reach.tolerance_per_cm / omega))
-        }
-        _ => format!("levels within {} cm⁻¹", number::fixed(reach.tolerance_per_cm, 1)),
-    }
-}
-
-pub(super) fn level_value(reach: &LevelReach) -> String {
-    reach.highest_v.map_or_else(|| "none".to_owned(), |v| format!("v ≤ {v}"))
 }

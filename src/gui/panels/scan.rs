@@ -6,7 +6,7 @@ use crate::findings::{FitFindings, Point};
 use crate::fit::{Fit, Weighting};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::{self, ButtonForm, Column, Row, columns_ui, command_button};
+use crate::gui::show::{self, ButtonForm, Column, Row, RowUi as _, columns_ui, command_button};
 use crate::gui::state::{State, Study};
 use crate::units::to_per_cm;
 use eframe::egui;

@@ -3,6 +3,7 @@
 use crate::figure::number;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
+use crate::gui::product::Product;
 use crate::gui::samples::SAMPLES;
 use crate::gui::show::{ButtonForm, command_button, elided};
 use crate::gui::state::State;
@@ -16,7 +17,7 @@ pub(super) fn top_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         command_button(ui, state, Command::Redo, ButtonForm::Quiet, out);
         command_button(ui, state, Command::Undo, ButtonForm::Quiet, out);
         ui.add_space(12.0);
-        command_button(ui, state, Command::Export, ButtonForm::Framed, out);
+        export_ui(ui, state, out);
         samples_ui(ui, state, out);
         command_button(ui, state, Command::Open, ButtonForm::Framed, out);
         ui.add_space(16.0);
@@ -73,6 +74,16 @@ fn samples_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     ui.menu_button("Samples", |ui| {
         for index in 0..SAMPLES.len() {
             if command_button(ui, state, Command::OpenSample(index), ButtonForm::Quiet, out).clicked() {
+                ui.close();
+            }
+        }
+    });
+}
+
+fn export_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    ui.menu_button("Export", |ui| {
+        for product in Product::ALL {
+            if command_button(ui, state, Command::Export(product), ButtonForm::Quiet, out).clicked() {
                 ui.close();
             }
         }

@@ -199,6 +199,7 @@ impl Verb {
                 "timings",
                 "repeat",
                 "dry-run",
+                "report",
                 "parameters",
                 "parameter-energy-unit",
                 "parameter-length-unit",

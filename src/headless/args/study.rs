@@ -23,6 +23,8 @@ pub struct StudyArgs {
     pub out_dir: Option<PathBuf>,
     /// Tables to write.
     pub tables: Vec<(Table, PathBuf)>,
+    /// File for the report of all studies.
+    pub report: Option<PathBuf>,
     /// Files for the parameters of the fits, as text or, where the name ends in `.tex`, LaTeX.
     pub parameters: Option<PathBuf>,
     /// Units of parameters and force constants, in the summary and in that file.
@@ -52,6 +54,10 @@ pub(super) fn study_option(
             let list = |t: &str| t.split(',').map(|r| finite(r.trim()).filter(|r| *r > 0.0)).collect();
             let accepted = "bond lengths in the unit of the file, e.g. 1.44,1.48";
             study.set_aside = value(parser, "set-aside", accepted, list)?;
+        }
+        "report" => {
+            let html = |t: &str| t.to_lowercase().ends_with(".html").then(|| PathBuf::from(t));
+            study.report = Some(value(parser, "report", "a file name that ends in .html", html)?);
         }
         "parameters" => study.parameters = Some(parser.value()?.into()),
         "parameter-energy-unit" => {
