@@ -52,8 +52,8 @@ impl Quantity {
             Self::OmegaEXE => "ωₑxₑ",
             Self::BE => "Bₑ",
             Self::AlphaE => "αₑ",
-            Self::ZeroPoint => "zero-point energy",
-            Self::Fundamental => "fundamental",
+            Self::ZeroPoint => "ZPE",
+            Self::Fundamental => "1 ← 0",
             Self::WellDepth => "Dₑ",
         }
     }
@@ -67,7 +67,7 @@ impl Quantity {
             Self::OmegaEXE => r"$\omega_\mathrm{e}x_\mathrm{e}$",
             Self::BE => r"$B_\mathrm{e}$",
             Self::AlphaE => r"$\alpha_\mathrm{e}$",
-            Self::ZeroPoint => "zero-point energy",
+            Self::ZeroPoint => "ZPE",
             Self::Fundamental => r"$1 \leftarrow 0$",
             Self::WellDepth => r"$D_\mathrm{e}$",
         }
@@ -101,8 +101,8 @@ impl Quantity {
             Self::OmegaEXE => "3/2 Bₑ (5/4 a₁² − a₂) [Dunham 1932].",
             Self::BE => "h/(8π²cμrₑ²).",
             Self::AlphaE => "−(6 Bₑ²/ωₑ)(1 + a₁) [Dunham 1932].",
-            Self::ZeroPoint => "E(0) − Vₑ of the numerical ground level.",
-            Self::Fundamental => "E(1) − E(0) of the numerical levels, J = 0.",
+            Self::ZeroPoint => "Zero-point energy: E(0) − Vₑ of the numerical ground level.",
+            Self::Fundamental => "Fundamental: E(1) − E(0) of the numerical levels, J = 0.",
             Self::WellDepth => "V(∞) − Vₑ, where the energy of the separated atoms is known.",
         }
     }

@@ -1,6 +1,7 @@
 //! Carries commands out: the only place where the window's state changes.
 
 use super::command::Command;
+use super::densities::DensityView;
 use super::product::Product;
 use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, State, Zoom};
 pub use super::take::*;
@@ -307,6 +308,11 @@ fn change_view(command: Command, state: &mut State) {
         Command::ShowComparison(open) => view.comparison.open = open,
         Command::SetReference(reference) => view.comparison.reference = reference,
         Command::SortComparison(sort) => view.comparison.sort = sort,
+        Command::SetDensities(densities) => {
+            let (low, high) = DensityView::HEIGHTS;
+            let height = if densities.height.is_finite() { densities.height.clamp(low, high) } else { 1.0 };
+            view.densities = DensityView { height, ..densities };
+        }
         Command::SetKelvin(kelvin) => {
             let (low, high) = crate::thermal::TEMPERATURES_KELVIN;
             if kelvin.is_finite() {

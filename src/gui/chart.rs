@@ -33,12 +33,13 @@ pub fn chart_ui(ui: &mut Ui, figure: &Figure, height: f32, mark: Option<f64>) ->
     let (whole, _) = ui.allocate_exact_size(vec2(width, height), Sense::hover());
     let rect = Rect::from_min_max(
         pos2(whole.left() + LEFT, whole.top() + 16.0),
-        pos2(whole.right() - 6.0, whole.bottom() - BELOW),
+        pos2(whole.right() - 18.0, whole.bottom() - BELOW),
     );
     let pad = 0.05 * (content.y.1 - content.y.0).max(1e-9 * content.y.1.abs()).max(1e-12);
     let bounds = Bounds { x: content.x, y: (content.y.0 - pad, content.y.1 + pad) };
     let map = Map { rect, bounds };
-    let response = ui.allocate_rect(rect, Sense::click_and_drag());
+    let id = ui.scope_id().with(("chart", figure.y.title));
+    let response = ui.interact(rect, id, Sense::click_and_drag());
     ui.painter().rect_filled(rect, 2.0, look.ground);
     let (x, y) = (ticks(bounds.x, rect.width(), 62.0), ticks(bounds.y, rect.height(), 30.0));
     grid_ui(ui, &map, &x, &y);

@@ -1,5 +1,6 @@
 //! Everything the user can do, in one enum. Menu, buttons, shortcuts, drags and tests all speak it.
 
+use super::densities::DensityView;
 use super::product::Product;
 use super::state::{CurveKey, Page, Preset, Reference, State, Strip};
 use crate::export::compare::{Form, Quantity};
@@ -125,6 +126,8 @@ pub enum Command {
     },
     /// Copy the curves side by side.
     CopyComparison(Form),
+    /// Draw other densities over that of the level shown.
+    SetDensities(DensityView),
     /// Look at another temperature, in K.
     SetKelvin(f64),
     /// Show a strip.

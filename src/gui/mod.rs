@@ -8,6 +8,7 @@ pub mod apply;
 mod chart;
 pub mod command;
 pub mod compute;
+pub mod densities;
 mod dialogs;
 pub mod files;
 pub mod fonts;

@@ -1,6 +1,7 @@
 //! What the window knows: the document (undoable), the view (not), and results (derived).
 
 use super::command::Command;
+use super::densities::DensityView;
 use super::history::History;
 use super::meaning::Meaning;
 use super::product::Product;
@@ -124,6 +125,8 @@ pub struct ViewState {
     pub strip: Strip,
     /// Curves side by side.
     pub comparison: Comparison,
+    /// What is drawn over the density of the level shown.
+    pub densities: DensityView,
     /// The temperature looked at in K; none: 298.15 K.
     pub kelvin: Option<f64>,
     /// Zoom of every curve looked at.

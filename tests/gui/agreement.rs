@@ -86,7 +86,8 @@ fn pictures_of_the_window_end_with_the_status_of_the_study() {
     };
     // Invented numbers: no unit; then a wall without a minimum.
     let refused = write("open.csv", "R,E\n1.0,0.3\n1.1,0.2\n1.2,0.1\n1.3,0.2\n1.4,0.3\n");
-    let falling: String = (0..12).map(|i| format!("{},{}\n", 1.0 + 0.1 * f64::from(i), -0.01 * f64::from(i))).collect();
+    let falling: String =
+        (0..12).map(|i| format!("{},{}\n", 1.0 + 0.1 * f64::from(i), -0.01 * f64::from(i))).collect();
     let impossible = write("wall.csv", &format!("r_bohr,E_hartree\n{falling}"));
     let picture = |file: PathBuf, overwrite: bool| {
         parabound::gui::run(parabound::headless::WindowArgs {

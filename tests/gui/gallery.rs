@@ -5,6 +5,7 @@ use crate::harness::{Window, open, state};
 use eframe::egui::Theme;
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
+use parabound::gui::densities::DensityView;
 use parabound::gui::state::{Page, Preset};
 use std::path::PathBuf;
 
@@ -42,7 +43,22 @@ fn every_page_is_shown_in_every_kind_of_window() {
             assert_eq!(state(&window).view.page, page);
             write(&mut window, &format!("{kind}_{}", page.name().to_lowercase()));
         }
-        give(&mut window, &[Command::ShowComparison(true)]);
+        let all = DensityView { harmonic: true, morse: true, classical: true, ..DensityView::default() };
+        let averaged = DensityView { averaged: true, classical: true, height: 2.0, ..DensityView::default() };
+        for (name, level, densities) in [("densities", 1, all), ("averaged", 14, averaged)] {
+            give(
+                &mut window,
+                &[
+                    Command::ShowPage(Page::Levels),
+                    Command::PinLevel(Some(level)),
+                    Command::Zoom(if level > 5 { Preset::WholeWell } else { Preset::NearMinimum }),
+                    Command::SetDensities(densities),
+                ],
+            );
+            write(&mut window, &format!("{kind}_{name}"));
+        }
+        give(&mut window, &[Command::SetDensities(DensityView::default()), Command::PinLevel(Some(1))]);
+        give(&mut window, &[Command::Zoom(Preset::NearMinimum), Command::ShowComparison(true)]);
         window.run();
         write(&mut window, &format!("{kind}_compare"));
         give(&mut window, &[Command::ShowComparison(false)]);

@@ -18,7 +18,7 @@ fn give(window: &mut Window, command: Command) {
 fn figures(window: &Window, name: &str) -> Vec<f64> {
     let start = format!("{name} levels ");
     let node = window.get(by().role(Role::Label).label_contains(&start));
-    let label = node.accesskit_node().label().unwrap_or_default();
+    let label = node.accesskit_node().value().unwrap_or_default();
     label.split_whitespace().filter_map(|word| word.parse().ok()).collect()
 }
 
@@ -93,4 +93,31 @@ fn curves_stand_side_by_side_with_differences_to_a_reference() {
     assert!(state(&window).view.comparison.open);
     give(&mut window, Command::CopyComparison(Form::Latex));
     assert_eq!(state(&window).view.message.as_ref().map(|m| m.text.as_str()), Some("Comparison copied."));
+}
+
+#[test]
+fn densities_of_the_level_shown_are_compared() {
+    let mut window = open_sample();
+    give(&mut window, Command::ShowPage(Page::Levels));
+    give(&mut window, Command::PinLevel(Some(0)));
+    let shares = |window: &Window| -> Vec<String> {
+        let node = window.get(by().role(Role::Label).label_contains("beyond its turning points,"));
+        let text = node.accesskit_node().value().unwrap_or_default();
+        text.split(", ").skip(1).map(str::to_owned).collect()
+    };
+    let ground = shares(&window);
+    // erfc(1) = 0.1573: the harmonic ground state beyond its turning points.
+    assert_eq!(ground[1], "harmonic 15.7 %");
+    assert_eq!(ground[3], "classical 0.0 %");
+    assert!(ground[0].starts_with("numerical 15.") || ground[0].starts_with("numerical 16."), "{ground:?}");
+    // The tails shrink as v grows.
+    give(&mut window, Command::PinLevel(Some(8)));
+    let percent = |text: &str| -> f64 { text.split_whitespace().nth(1).unwrap().parse().expect("a number") };
+    assert!(percent(&shares(&window)[0]) < 0.6 * percent(&ground[0]), "{:?}", shares(&window));
+    // A check box draws the classical density over the plot: the picture changes.
+    let before = window.render().expect("painted");
+    window.get_by_role_and_label(Role::CheckBox, "classical").click();
+    window.run();
+    assert!(state(&window).view.densities.classical);
+    assert_ne!(window.render().expect("painted"), before);
 }

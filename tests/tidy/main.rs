@@ -28,8 +28,18 @@ fn rust_files(folder: &Path) -> Vec<PathBuf> {
 /// What every area may name.
 const COMMON: &[&str] = &["units", "estimate", "notice"];
 /// The physics and what it reads.
-const PHYSICS: &[&str] =
-    &["species", "scan", "potential", "fit", "radial", "spectroscopy", "reach", "settings", "thermal", "density"];
+const PHYSICS: &[&str] = &[
+    "species",
+    "scan",
+    "potential",
+    "fit",
+    "radial",
+    "spectroscopy",
+    "reach",
+    "settings",
+    "thermal",
+    "density",
+];
 
 /// Areas in the order of dependency, each with groups of areas that it may name.
 const LAYERS: [(&str, &[&[&str]]); 20] = [

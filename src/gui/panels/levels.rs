@@ -1,11 +1,11 @@
 //! The page of levels: one row each, hovering shows the level on the plot.
 
+use super::densities;
 use crate::figure::number;
-use crate::findings::Findings;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{self, Column, columns_ui};
-use crate::gui::state::State;
+use crate::gui::state::{State, Study};
 use crate::radial::Level;
 use eframe::egui;
 use egui::{Align2, ScrollArea, Sense, Ui, WidgetInfo, pos2, vec2};
@@ -29,7 +29,8 @@ const COLUMNS: [Column; 5] = [
     },
 ];
 
-pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Command>) {
+pub(super) fn levels_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command>) {
+    let findings = &*study.findings;
     if findings.levels.is_empty() {
         let text = if findings.masses.is_none() {
             "Levels need a mass: name the atoms or give a reduced mass on the left."
@@ -44,7 +45,8 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &m
     columns_ui(ui, width, &COLUMNS);
     let leaning = findings.levels.iter().any(|l| l.leans_on_tail);
     let mut hovered = None;
-    let foot = if leaning { 46.0 } else { 0.0 };
+    let roomy = ui.available_height() > densities::HEIGHT + 8.0 * ROW;
+    let foot = if leaning { 30.0 } else { 0.0 } + if roomy { densities::HEIGHT } else { 0.0 };
     ScrollArea::vertical()
         .id_salt("levels")
         .auto_shrink(false)
@@ -67,6 +69,9 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &m
     if leaning {
         ui.add_space(6.0);
         show::note(ui, "○ leans on the tail: would change if the curve beyond the scan did.");
+    }
+    if roomy {
+        densities::densities_ui(ui, state, study, out);
     }
 }
 

@@ -4,6 +4,7 @@ mod asymptote;
 mod center;
 mod compare;
 mod constants;
+mod densities;
 mod fits;
 mod left;
 mod levels;

@@ -24,7 +24,7 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     }
     let findings = &*study.findings;
     if state.view.page == Page::Levels {
-        levels::levels_ui(ui, state, findings, out);
+        levels::levels_ui(ui, state, study, out);
         return;
     }
     if state.view.page == Page::Scan {

@@ -14,14 +14,14 @@ use eframe::egui;
 use egui::{Align2, DragValue, Rect, Sense, Ui, WidgetInfo, pos2, vec2};
 
 const COLUMNS: [Column; 4] = [
-    Column { right: 0.46, name: "levels", unit: "", about: "Over the numerical levels, vibration alone." },
+    Column { right: 0.41, name: "levels", unit: "", about: "Over the numerical levels, vibration alone." },
     Column {
-        right: 0.66,
+        right: 0.61,
         name: "harmonic",
         unit: "",
         about: "The oscillator with k = V″(rₑ), in closed form.",
     },
-    Column { right: 0.85, name: "Morse", unit: "", about: "Over the levels of the Morse fit." },
+    Column { right: 0.80, name: "Morse", unit: "", about: "Over the levels of the Morse fit." },
     Column { right: 1.0, name: "", unit: "", about: "" },
 ];
 /// Populations shown.
@@ -54,7 +54,11 @@ pub(super) fn thermal_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Ve
         && let Some(pointer) = shown.response.interact_pointer_pos()
     {
         let wanted = shown.map.x_value(pointer.x.clamp(shown.map.rect.left(), shown.map.rect.right()));
-        out.push(Command::SetKelvin(wanted.round().max(1.0)));
+        let wanted = wanted.round().max(1.0);
+        // A hand that rests on the chart asks for nothing new.
+        if wanted != kelvin {
+            out.push(Command::SetKelvin(wanted));
+        }
     }
     populations_ui(ui, &point);
     reach_ui(ui, findings);
@@ -179,7 +183,9 @@ fn populations_ui(ui: &mut Ui, point: &ThermalPoint) {
     show::rule(ui);
     show::heading(ui, "Populations", "share of all molecules");
     let look = Look::of(ui);
-    for (v, share) in point.populations.iter().take(POPULATIONS).enumerate() {
+    for (v, share) in
+        point.populations.iter().take(POPULATIONS).enumerate().filter(|(v, share)| *v < 2 || **share >= 5e-7)
+    {
         let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 20.0), Sense::hover());
         let name = format!("v = {v}");
         let value = number::percent(*share, if *share < 1e-3 { 4 } else { 2 });

@@ -1,12 +1,13 @@
 //! Levels with their densities.
 
 use super::map::Map;
-use crate::figure::LevelPicture;
+use crate::figure::{DensityKind, DensityPicture, LevelPicture};
+use crate::gui::densities::DensityView;
 use crate::gui::look::Look;
 use crate::gui::state::{State, Study};
 use eframe::egui;
 use egui::{Color32, Stroke, Ui, pos2};
-use egui_plot::{FilledArea, Line, PlotPoints, PlotUi};
+use egui_plot::{FilledArea, Line, LineStyle, PlotPoints, PlotUi};
 
 /// Densities are drawn where levels are at least this far apart on the screen.
 const ROOM_FOR_DENSITY: f64 = 8.0;
@@ -26,12 +27,13 @@ pub fn add_levels(
     plot: &mut PlotUi<'_>,
     levels: &[LevelPicture],
     shown: Option<usize>,
+    height: f64,
     map: &Map,
     look: &Look,
 ) {
     for (index, level) in levels.iter().enumerate() {
-        let top =
-            level.energy_per_cm + level.density.iter().fold(0.0, |a: f64, d| a.max(*d)) * level.scale_per_cm;
+        let top = level.energy_per_cm
+            + level.density.iter().fold(0.0, |a: f64, d| a.max(*d)) * height * level.scale_per_cm;
         if top < map.bounds.y.0 || level.energy_per_cm > map.bounds.y.1 {
             continue;
         }
@@ -39,14 +41,22 @@ pub fn add_levels(
         let room = room(levels, index, map);
         if is_shown || room >= ROOM_FOR_DENSITY {
             let strength = if is_shown { 0.78 } else { 0.40 };
-            add_density(plot, level, strength, map, look);
+            add_density(plot, level, height, strength, map, look);
         }
         let alpha = if room < 3.0 { 0.35 } else { 0.8 };
         add_line(plot, level, look.level.gamma_multiply(alpha));
     }
 }
 
-fn add_density(plot: &mut PlotUi<'_>, level: &LevelPicture, strength: f32, map: &Map, look: &Look) {
+fn add_density(
+    plot: &mut PlotUi<'_>,
+    level: &LevelPicture,
+    height: f64,
+    strength: f32,
+    map: &Map,
+    look: &Look,
+) {
+    let scale = height * level.scale_per_cm;
     let span = level.r.last().zip(level.r.first()).map_or(0.0, |(b, a)| b - a);
     let points_per_x = f64::from(map.rect.width()) / (map.bounds.x.1 - map.bounds.x.0);
     let wanted = (span * points_per_x / POINT_EVERY).max(24.0);
@@ -57,8 +67,7 @@ fn add_density(plot: &mut PlotUi<'_>, level: &LevelPicture, strength: f32, map: 
         let chosen: Vec<usize> = (start..end).step_by(stride).chain([end]).collect();
         let x: Vec<f64> = chosen.iter().map(|&i| level.r[i]).collect();
         let low = vec![level.energy_per_cm; x.len()];
-        let high: Vec<f64> =
-            chosen.iter().map(|&i| level.energy_per_cm + level.scale_per_cm * level.density[i]).collect();
+        let high: Vec<f64> = chosen.iter().map(|&i| level.energy_per_cm + scale * level.density[i]).collect();
         let (color, strength) =
             if *inside { (look.reach, (strength * 1.3).min(0.95)) } else { (look.outside, strength) };
         let area = FilledArea::new("density", &x, &low, &high)
@@ -66,6 +75,31 @@ fn add_density(plot: &mut PlotUi<'_>, level: &LevelPicture, strength: f32, map: 
             .fill_color(color.gamma_multiply(strength))
             .allow_hover(false);
         plot.add(area);
+    }
+}
+
+/// The other densities of the level shown, each from the line of its own level.
+pub fn add_density_lines(plot: &mut PlotUi<'_>, picture: &DensityPicture, view: &DensityView, look: &Look) {
+    let scale = picture.scale_per_cm * view.height;
+    for line in picture.lines.iter().filter(|l| view.shows(l.kind)) {
+        let (color, style) = match line.kind {
+            DensityKind::Numerical => (look.text, LineStyle::Solid),
+            DensityKind::Harmonic => (look.harmonic, LineStyle::dashed_dense()),
+            DensityKind::Morse => (look.morse, LineStyle::Solid),
+            DensityKind::Classical => (look.dim, LineStyle::dotted_dense()),
+            DensityKind::AveragedNumerical => (look.scan, LineStyle::Solid),
+            DensityKind::AveragedClassical => (look.accent, LineStyle::dashed_dense()),
+        };
+        let points: Vec<[f64; 2]> =
+            line.points.iter().map(|[r, density]| [*r, line.energy_per_cm + scale * density]).collect();
+        plot.line(
+            Line::new(line.label, PlotPoints::from(points))
+                .id(("density line", line.label))
+                .color(color)
+                .style(style)
+                .width(1.6)
+                .allow_hover(false),
+        );
     }
 }
 

@@ -5,6 +5,7 @@ use super::{Stage, asymptote, axes, card, hits, items, levels, points, reach_ban
 use crate::figure::geometry::Bounds;
 use crate::figure::number;
 use crate::gui::command::Command;
+use crate::gui::densities::shown_densities;
 use crate::gui::look::Look;
 use crate::gui::state::{Preset, State, Study};
 use eframe::egui;
@@ -54,6 +55,7 @@ fn plot_items_ui(
     let pictures = &study.pictures;
     let wheel = ui.input(|i| i.smooth_scroll_delta().y);
     let shown = state.shown_level();
+    let densities = state.view.densities.is_any().then(|| shown_densities(ui.ctx(), state, study)).flatten();
     let response = ui
         .scope_builder(UiBuilder::new().max_rect(before.rect), |ui| {
             Plot::new("main plot")
@@ -73,7 +75,17 @@ fn plot_items_ui(
                     if wheel != 0.0 && plot.response().contains_pointer() {
                         plot.zoom_bounds_around_hovered(egui::Vec2::splat((wheel * 0.004).exp()));
                     }
-                    levels::add_levels(plot, &pictures.levels, shown, before, look);
+                    levels::add_levels(
+                        plot,
+                        &pictures.levels,
+                        shown,
+                        state.view.densities.height,
+                        before,
+                        look,
+                    );
+                    if let Some(densities) = &densities {
+                        levels::add_density_lines(plot, densities, &state.view.densities, look);
+                    }
                     for (index, series) in pictures.main.series.iter().enumerate() {
                         items::add_lines(plot, series, index, &bounds, look);
                     }
