@@ -101,7 +101,7 @@ fn densities_of_the_level_shown_are_compared() {
     give(&mut window, Command::ShowPage(Page::Levels));
     give(&mut window, Command::PinLevel(Some(0)));
     let shares = |window: &Window| -> Vec<String> {
-        let node = window.get(by().role(Role::Label).label_contains("beyond its turning points,"));
+        let node = window.get(by().role(Role::Label).label_contains("forbidden, numerical"));
         let text = node.accesskit_node().value().unwrap_or_default();
         text.split(", ").skip(1).map(str::to_owned).collect()
     };

@@ -11,8 +11,8 @@ use eframe::egui;
 use egui::{Align2, CursorIcon, DragValue, Rect, ScrollArea, Sense, Stroke, Ui, WidgetInfo, pos2, vec2};
 
 /// Width of the names, and of a column of values at least.
-const NAMES: f32 = 210.0;
-const COLUMN: f32 = 96.0;
+const NAMES: f32 = 168.0;
+const COLUMN: f32 = 84.0;
 const ROW: f32 = 28.0;
 const HEAD: f32 = 44.0;
 /// The name of the row of published constants.

@@ -27,9 +27,9 @@ pub(super) fn densities_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut 
     head_ui(ui, figures.v);
     shares_ui(
         ui,
-        "beyond its turning points",
+        "forbidden",
         &figures.forbidden,
-        "Where V is above the level's energy: a classical particle is never there.",
+        "Beyond the turning points, where V is above the level's energy: a classical particle is never there.",
     );
     shares_ui(ui, "inside the reach", &figures.inside_reach, "Inside the energy reach of the parabola.");
     if let (Some(distance), Some(width)) = (figures.classical_distance, picture.averaging_width) {

@@ -15,7 +15,7 @@ const ROW: f32 = 22.0;
 
 /// Right edges of the columns as fractions of the width, with their headings.
 const COLUMNS: [Column; 5] = [
-    Column { right: 0.06, name: "v", unit: "", about: "Vibrational quantum number." },
+    Column { right: 0.085, name: "v", unit: "", about: "Vibrational quantum number." },
     Column { right: 0.33, name: "E − Vₑ", unit: "cm⁻¹", about: "Energy above the minimum." },
     Column { right: 0.57, name: "E − harmonic", unit: "cm⁻¹", about: "E − Vₑ − ωₑ(v + ½)." },
     Column {
@@ -101,7 +101,7 @@ fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Resp
         show::text_in(ui, at, Align2::RIGHT_CENTER, cell, &look::figures(look::SECONDARY), color);
     }
     if level.leans_on_tail {
-        let at = pos2(rect.left() + COLUMNS[0].right * width + 8.0, rect.center().y);
+        let at = pos2(rect.left() + 3.0, rect.center().y);
         ui.painter().circle_stroke(at, 3.0, egui::Stroke::new(1.2, look.accent));
     }
     let lean = if level.leans_on_tail { ", leans on the tail" } else { "" };

@@ -158,7 +158,10 @@ fn table_ui(ui: &mut Ui, point: &ThermalPoint) {
         let colors = [look.text, look.harmonic, look.morse];
         let mut words = quantity.name.to_owned();
         for ((value, column), color) in quantity.values.iter().zip(&COLUMNS).zip(colors) {
-            let shown = value.map_or_else(|| number::NONE.to_owned(), |v| digits::rounded(v, 5));
+            let shown = value.map_or_else(
+                || number::NONE.to_owned(),
+                |v| digits::rounded(v, if v.abs() < 0.1 { 3 } else { 5 }),
+            );
             let x = rect.left() + column.right * width;
             text(ui, x, y, Align2::RIGHT_CENTER, &shown, &look::figures(look::SECONDARY), color);
             words.push_str(&format!(" {} {shown}", column.name));

@@ -13,6 +13,8 @@ use egui_plot::{FilledArea, Line, LineStyle, PlotPoints, PlotUi};
 const ROOM_FOR_DENSITY: f64 = 8.0;
 /// A filled area gets one point per so many screen points at most.
 const POINT_EVERY: f64 = 2.5;
+/// Other densities are cut where they fall below this fraction of the highest numerical one.
+const NEGLIGIBLE: f64 = 2e-3;
 
 /// Distance of a level to its neighbours on the screen.
 fn room(levels: &[LevelPicture], index: usize, map: &Map) -> f64 {
@@ -90,8 +92,15 @@ pub fn add_density_lines(plot: &mut PlotUi<'_>, picture: &DensityPicture, view: 
             DensityKind::AveragedNumerical => (look.scan, LineStyle::Solid),
             DensityKind::AveragedClassical => (look.accent, LineStyle::dashed_dense()),
         };
-        let points: Vec<[f64; 2]> =
-            line.points.iter().map(|[r, density]| [*r, line.energy_per_cm + scale * density]).collect();
+        // Singular at the turning points, a classical density has no highest value to measure by.
+        let highest =
+            picture.lines.first().map_or(0.0, |l| l.points.iter().fold(0.0, |a: f64, p| a.max(p[1])));
+        let points: Vec<[f64; 2]> = line
+            .points
+            .iter()
+            .filter(|p| p[1] > NEGLIGIBLE * highest)
+            .map(|[r, density]| [*r, line.energy_per_cm + scale * density])
+            .collect();
         plot.line(
             Line::new(line.label, PlotPoints::from(points))
                 .id(("density line", line.label))
