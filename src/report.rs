@@ -264,7 +264,9 @@ mod tests {
 
     fn page(text: &str) -> (Findings, String) {
         let scan = read_scan("a <b>.csv", text.as_bytes(), &Default::default()).expect("a scan");
-        let findings = crate::study::study(&scan, &Settings::default()).expect("a study");
+        let mut settings = Settings::default();
+        settings.masses.atoms = Some(crate::species::parse_atoms("1H,1H").expect("atoms"));
+        let findings = crate::study::study(&scan, &settings).expect("a study");
         let page = report(&[&findings]);
         (findings, page)
     }
@@ -275,7 +277,7 @@ mod tests {
             let r = 0.9 + 0.05 * f64::from(i);
             format!("{r:.2},{:.9}\n", 0.17 * (1.0 - (-1.1 * (r - 1.4)).exp()).powi(2))
         };
-        format!("# atoms: H H\nr_bohr,E_hartree\n{}", (0..40).map(row).collect::<String>())
+        format!("r_bohr,E_hartree\n{}", (0..40).map(row).collect::<String>())
     }
 
     #[test]

@@ -308,6 +308,7 @@ fn change_view(command: Command, state: &mut State) {
         Command::ShowComparison(open) => view.comparison.open = open,
         Command::SetReference(reference) => view.comparison.reference = reference,
         Command::SortComparison(sort) => view.comparison.sort = sort,
+        Command::SetAxes(axes) => view.axes = axes,
         Command::SetDensities(densities) => {
             let (low, high) = DensityView::HEIGHTS;
             let height = if densities.height.is_finite() { densities.height.clamp(low, high) } else { 1.0 };

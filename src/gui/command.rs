@@ -2,7 +2,7 @@
 
 use super::densities::DensityView;
 use super::product::Product;
-use super::state::{CurveKey, Page, Preset, Reference, State, Strip};
+use super::state::{AxisView, CurveKey, Page, Preset, Reference, State, Strip};
 use crate::export::compare::{Form, Quantity};
 use crate::figure::geometry::Bounds;
 use crate::fit::Window;
@@ -126,6 +126,8 @@ pub enum Command {
     },
     /// Copy the curves side by side.
     CopyComparison(Form),
+    /// Show other units, or displacements, on the axes of the plot.
+    SetAxes(AxisView),
     /// Draw other densities over that of the level shown.
     SetDensities(DensityView),
     /// Look at another temperature, in K.

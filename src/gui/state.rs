@@ -5,7 +5,7 @@ use super::densities::DensityView;
 use super::history::History;
 use super::meaning::Meaning;
 use super::product::Product;
-pub use super::view::{Comparison, Page, Preset, Reference, Strip, Zoom};
+pub use super::view::{AxisView, Comparison, Page, Preset, Reference, Strip, Zoom};
 use crate::export::compare::Quantity;
 use crate::figure::geometry::Bounds;
 use crate::figure::{Pictures, PlotPoint};
@@ -125,6 +125,8 @@ pub struct ViewState {
     pub strip: Strip,
     /// Curves side by side.
     pub comparison: Comparison,
+    /// What the axes of the plot show.
+    pub axes: AxisView,
     /// What is drawn over the density of the level shown.
     pub densities: DensityView,
     /// The temperature looked at in K; none: 298.15 K.

@@ -4,6 +4,7 @@ use super::state::CurveKey;
 use crate::export::compare::Quantity;
 use crate::figure::Pictures;
 use crate::figure::geometry::Bounds;
+use crate::units::{EnergyUnit, LengthUnit};
 
 /// A page of results.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -38,6 +39,23 @@ impl Page {
             Self::Reach => "Reach",
             Self::Thermal => "Thermal",
         }
+    }
+}
+
+/// What the axes of the plot show.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct AxisView {
+    /// Unit of the bond lengths.
+    pub length: LengthUnit,
+    /// Displacements x = r − r_e instead of bond lengths.
+    pub displacement: bool,
+    /// Unit of the energies.
+    pub energy: EnergyUnit,
+}
+
+impl Default for AxisView {
+    fn default() -> Self {
+        Self { length: LengthUnit::Angstrom, displacement: false, energy: EnergyUnit::PerCm }
     }
 }
 

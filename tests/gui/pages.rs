@@ -7,6 +7,7 @@ use egui_kittest::kittest::{NodeT as _, Queryable as _, by};
 use parabound::export::compare::{Form, Quantity};
 use parabound::gui::command::Command;
 use parabound::gui::state::{Page, Reference};
+use parabound::units::{EnergyUnit, LengthUnit};
 
 fn give(window: &mut Window, command: Command) {
     let ctx = window.ctx.clone();
@@ -120,4 +121,24 @@ fn densities_of_the_level_shown_are_compared() {
     window.run();
     assert!(state(&window).view.densities.classical);
     assert_ne!(window.render().expect("painted"), before);
+}
+
+#[test]
+fn the_axes_show_other_units_and_displacements() {
+    let mut window = open_sample();
+    let before = window.render().expect("painted");
+    window.get_by_role_and_label(Role::Button, "Unit of the energy axis").click();
+    window.run();
+    window.get_by_role_and_label(Role::RadioButton, "kJ/mol").click();
+    window.run();
+    assert_eq!(state(&window).view.axes.energy, EnergyUnit::KilojoulePerMole);
+    window.get_by_role_and_label(Role::Button, "Unit of the bond-length axis").click();
+    window.run();
+    window.get_by_role_and_label(Role::RadioButton, "displacement / bohr").click();
+    window.run();
+    let axes = state(&window).view.axes;
+    assert!(axes.displacement && axes.length == LengthUnit::Bohr);
+    assert_ne!(window.render().expect("painted"), before);
+    // Nothing of the study has changed by it.
+    assert!(state(&window).history.undo_name().is_none());
 }

@@ -1,5 +1,6 @@
 //! The main plot: curve, fits, levels with densities, points.
 
+use super::axes::Scale;
 use super::map::Map;
 use super::{Stage, asymptote, axes, card, hits, items, levels, points, reach_band_ui, reach_label_ui};
 use crate::figure::geometry::Bounds;
@@ -23,14 +24,16 @@ pub(super) fn main_plot_ui(
 ) -> Map {
     let look = Look::of(ui);
     let before = Map { rect: stage.plot, bounds };
-    let (x, y) = (axes::x_ticks(&before), axes::ticks(bounds.y, stage.plot.height(), 44.0));
+    let (r_axis, e_axis) = (Scale::of_length(&state.view.axes, study), Scale::of_energy(&state.view.axes));
+    let (x, y) =
+        (axes::x_ticks(&before, &r_axis), axes::scaled_ticks(bounds.y, stage.plot.height(), 44.0, &e_axis));
     axes::grid_ui(ui, &before, &x, &y);
     reach_band_ui(ui, study, stage, &before);
     let (response, bounds) = plot_items_ui(ui, state, study, &before, look, out);
     let map = Map { rect: stage.plot, bounds };
     let hit = hits::find(ui, &response, study, &map);
     axes::y_labels_ui(ui, &map, &y, |v| number::fixed(v, y.decimals));
-    axes::y_title_ui(ui, &map, &study.pictures.main.y.text());
+    axes::energy_title_ui(ui, state, &map, &e_axis, out);
     points::points_ui(ui, state, &study.pictures.points, &map, hit.point);
     levels::shown_level_ui(ui, state, study, &map);
     reach_label_ui(ui, study, stage, &map);

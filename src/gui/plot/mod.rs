@@ -75,12 +75,13 @@ pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command
     }
     let map = main_plot::main_plot_ui(ui, state, study, &stage, bounds, out);
     let strip = strip::strip_ui(ui, state, study, &stage, &map, out);
-    axes::x_axis_ui(ui, &stage, &map);
+    let r_axis = axes::Scale::of_length(&state.view.axes, study);
+    axes::x_axis_ui(ui, state, &stage, &map, &r_axis, out);
     if has_ladders {
         ladders::ladders_ui(ui, state, &study.pictures.ladders, &stage, &map, out);
     }
     handles::window_edges_ui(ui, state, study, &stage, &map, out);
-    cursor::cursor_ui(ui, &stage, &map, &strip);
+    cursor::cursor_ui(ui, state, &stage, &map, &strip, &r_axis);
     stale_mark_ui(ui, state, &stage);
     ui.allocate_rect(whole, egui::Sense::hover());
 }

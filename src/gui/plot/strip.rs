@@ -23,8 +23,8 @@ pub(super) fn strip_ui(
     out: &mut Vec<Command>,
 ) -> Map {
     let map = match state.view.strip {
-        Strip::Gauge => gauge_ui(ui, study, stage, main),
-        Strip::Residuals => residuals_ui(ui, study, stage, main),
+        Strip::Gauge => gauge_ui(ui, state, study, stage, main),
+        Strip::Residuals => residuals_ui(ui, state, study, stage, main),
     };
     axes::frame_ui(ui, &map);
     if state.view.strip == Strip::Gauge {
@@ -72,7 +72,7 @@ fn lines_ui(ui: &mut Ui, name: &str, figure: &Figure, map: &Map, look: &Look) {
     });
 }
 
-fn gauge_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
+fn gauge_ui(ui: &mut Ui, state: &State, study: &Study, stage: &Stage, main: &Map) -> Map {
     let look = Look::of(ui);
     let figure = &study.pictures.gauge;
     let tolerance = figure.series.iter().find_map(|s| match (s.role, &s.shape) {
@@ -82,7 +82,7 @@ fn gauge_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
     let half = half_range(tolerance.unwrap_or(5.0));
     let map = Map { rect: stage.strip, bounds: Bounds { x: main.bounds.x, y: (-half, half) } };
     let y = axes::ticks(map.bounds.y, map.rect.height(), 22.0);
-    axes::grid_ui(ui, &map, &axes::x_ticks(&map), &y);
+    axes::grid_ui(ui, &map, &axes::x_ticks(&map, &axes::Scale::of_length(&state.view.axes, study)), &y);
     let painter = ui.painter().with_clip_rect(map.rect);
     if let Some(t) = tolerance {
         let band = Rect::from_min_max(pos2(map.rect.left(), map.y(t)), pos2(map.rect.right(), map.y(-t)));
@@ -132,7 +132,7 @@ fn zero_point_ui(ui: &Ui, figure: &Figure, map: &Map) {
 
 /// Residuals differ by orders of magnitude between fits: the axis is linear near zero and logarithmic
 /// beyond (inverse hyperbolic sine).
-fn residuals_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
+fn residuals_ui(ui: &mut Ui, state: &State, study: &Study, stage: &Stage, main: &Map) -> Map {
     let look = Look::of(ui);
     let mut figure = study.pictures.residuals.clone();
     let largest = |points: &[[f64; 2]]| points.iter().map(|p| p[1].abs()).fold(0.0, f64::max);
@@ -160,8 +160,8 @@ fn residuals_ui(ui: &mut Ui, study: &Study, stage: &Stage, main: &Map) -> Map {
     let half = 1.15 * bend(largest.max(unit));
     let map = Map { rect: stage.strip, bounds: Bounds { x: main.bounds.x, y: (-half, half) } };
     let (values, labels) = decades(unit, largest, &map, bend);
-    let y = axes::Ticks { values, decimals: 0 };
-    axes::grid_ui(ui, &map, &axes::x_ticks(&map), &y);
+    let y = axes::Ticks { shown: values.clone(), values, decimals: 0 };
+    axes::grid_ui(ui, &map, &axes::x_ticks(&map, &axes::Scale::of_length(&state.view.axes, study)), &y);
     lines_ui(ui, "residuals", &figure, &map, look);
     axes::y_labels_ui(ui, &map, &y, |v| {
         let label = labels.iter().find(|(at, _)| *at == v);
