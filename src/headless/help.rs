@@ -101,8 +101,8 @@ RESULTS
   --parameter-energy-unit U  unit of well depths and coefficients with --parameters (default cm-1)
   --parameter-length-unit U  unit of lengths and ranges with --parameters (default angstrom)
   --overwrite                replace existing files
-  --timings                  seconds per stage as one JSON line on standard error (the fits run beside
-                             the levels: their entry is what is left to wait for)
+  --timings                  seconds per stage as one JSON line on standard error; the fits run beside the
+                             levels, so the stages may add up to more than the total
   --repeat K                 run each study K times for the timings (their median is given)
 
 FIGURE

@@ -10,9 +10,10 @@ use crate::files::{self, Replace};
 use crate::findings::Findings;
 use crate::scan::Scan;
 use crate::settings::{SetAside, Settings};
-use crate::study::{Stage, study_observed};
+use crate::study::{Mark, Stage, study_observed};
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
+use std::sync::{Mutex, PoisonError};
 use std::time::Instant;
 
 pub(super) const DONE: u8 = 0;
@@ -159,14 +160,41 @@ fn guarded_study(scan: &Scan, settings: &Settings, seconds: &mut Timings) -> Res
 
 fn timed_study(scan: &Scan, settings: &Settings, seconds: &mut Timings) -> Result<Findings, String> {
     let start = Instant::now();
-    let mut last = start;
-    let findings = study_observed(scan, settings, &mut |stage: Stage| {
+    // Stages of other threads end while this one is inside another.
+    let stages = Mutex::new(StageClock::default());
+    let findings = study_observed(scan, settings, &|stage, mark| {
         let now = Instant::now();
-        seconds.add(stage.name(), (now - last).as_secs_f64());
-        last = now;
+        if let Ok(mut stages) = stages.lock() {
+            stages.mark(stage, mark, now);
+        }
     });
     seconds.add("total", start.elapsed().as_secs_f64());
+    let stages = stages.into_inner().unwrap_or_else(PoisonError::into_inner);
+    for (stage, elapsed) in stages.ended {
+        seconds.add(stage.name(), elapsed);
+    }
     findings.map_err(|e| e.to_string())
+}
+
+/// When the stages of one study began, and how long the ended ones took, in seconds.
+#[derive(Default)]
+struct StageClock {
+    begun: Vec<(Stage, Instant)>,
+    ended: Vec<(Stage, f64)>,
+}
+
+impl StageClock {
+    fn mark(&mut self, stage: Stage, mark: Mark, now: Instant) {
+        match mark {
+            Mark::Begins => self.begun.push((stage, now)),
+            Mark::Ended => {
+                if let Some(at) = self.begun.iter().rposition(|(s, _)| *s == stage) {
+                    let (_, begun) = self.begun.swap_remove(at);
+                    self.ended.push((stage, now.duration_since(begun).as_secs_f64()));
+                }
+            }
+        }
+    }
 }
 
 /// The columns that `--curve` means: one choice, or each column for `all`. A name that does not lead
@@ -288,6 +316,7 @@ impl Timings {
             "curve",
             "fits",
             "levels",
+            "level_errors",
             "distortion",
             "constants",
             "reach",

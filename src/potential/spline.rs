@@ -88,7 +88,7 @@ pub(crate) struct SplineFactors {
     /// Knots with multiplicities.
     knots: Vec<f64>,
     /// Row i holds the matrix elements (i, i − p .. i + p) after elimination: unit lower and upper factor.
-    band: Vec<[f64; 2 * MAX_DEGREE + 1]>,
+    band: Vec<Row>,
 }
 
 impl SplineFactors {
@@ -117,17 +117,11 @@ impl SplineFactors {
                 }
             }
         }
-        for i in 0..n {
-            let (above, below) = band.split_at_mut(i + 1);
-            let pivot = above[i];
-            for (step, row) in below.iter_mut().take(degree).enumerate() {
-                let place = degree - 1 - step;
-                let factor = row[place] / pivot[degree];
-                row[place] = factor;
-                for k in 1..=degree {
-                    row[place + k] -= factor * pivot[degree + k];
-                }
-            }
+        // Of the two usual degrees the machine knows the length of the rows.
+        match degree {
+            5 => eliminate::<5>(&mut band),
+            3 => eliminate::<3>(&mut band),
+            _ => eliminate_any(&mut band, degree),
         }
         Self { degree, knots, band }
     }
@@ -195,6 +189,31 @@ impl SplineFactors {
         }
         PiecewisePolynomial::new(t[first..=last + 1].to_vec(), pieces)
     }
+}
+
+/// One row of a band matrix, the diagonal at the place of the degree.
+type Row = [f64; 2 * MAX_DEGREE + 1];
+
+/// Elimination without pivoting, the multipliers left in the lower triangle.
+#[inline(always)]
+fn eliminate_any(band: &mut [Row], degree: usize) {
+    for i in 0..band.len() {
+        let (above, below) = band.split_at_mut(i + 1);
+        let pivot = &above[i];
+        for (step, row) in below.iter_mut().take(degree).enumerate() {
+            let place = degree - 1 - step;
+            let factor = row[place] / pivot[degree];
+            row[place] = factor;
+            for k in 1..=degree {
+                row[place + k] -= factor * pivot[degree + k];
+            }
+        }
+    }
+}
+
+/// The same, written for one degree.
+fn eliminate<const DEGREE: usize>(band: &mut [Row]) {
+    eliminate_any(band, DEGREE);
 }
 
 /// Index l with knots[l] ≤ x < knots[l + 1], the last non-empty one for the right end.

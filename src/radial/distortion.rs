@@ -25,6 +25,8 @@ pub struct Distortion {
 struct Work<'a> {
     /// 1/(2μr²) at the mesh points.
     rotation: &'a [f64],
+    /// The same times the weights of quadrature.
+    rotation_weight: &'a [f64],
     nodes: Vec<f64>,
     image: Vec<f64>,
     first: Vec<f64>,
@@ -42,13 +44,15 @@ impl Solution {
         };
         let chain = &inner.problem.chain;
         let two_mu = inner.problem.demand.two_mu;
-        let (r, _) = mesh_points(chain);
+        let (r, weight) = mesh_points(chain);
         // At the walls ψ = 0; r = 0 may be one of them.
         let rotation: Vec<f64> =
             r.iter().map(|r| if *r == 0.0 { 0.0 } else { 1.0 / (two_mu * r * r) }).collect();
+        let rotation_weight: Vec<f64> = rotation.iter().zip(weight.iter()).map(|(x, w)| x * w).collect();
         in_halves(&inner.found[..levels.min(inner.found.len())], WORTH_A_THREAD, |part| {
             let mut work = Work {
                 rotation: &rotation,
+                rotation_weight: &rotation_weight,
                 nodes: vec![0.0; r.len()],
                 image: vec![0.0; chain.len()],
                 first: vec![0.0; chain.len()],
@@ -60,18 +64,13 @@ impl Solution {
     }
 }
 
-/// W times a vector, both in the basis of the chain.
-fn rotate(chain: &Chain, vector: &[f64], rotation: &[f64], nodes: &mut [f64], image: &mut [f64]) {
-    chain.to_nodes(vector, nodes);
-    for (x, w) in nodes.iter_mut().zip(rotation) {
-        *x *= w;
-    }
-    chain.to_basis(nodes, image);
-}
-
 fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
     let zero = &level.vector;
-    rotate(chain, zero, work.rotation, &mut work.nodes, &mut work.image);
+    chain.to_nodes(zero, &mut work.nodes);
+    for (x, w) in work.nodes.iter_mut().zip(work.rotation) {
+        *x *= w;
+    }
+    chain.to_basis(&work.nodes, &mut work.image);
     let b = dot(zero, &work.image);
     // The right-hand side −(W − B) ψ₀ is orthogonal to ψ₀ by construction. The shift stands a little beside the level,
     // so that rounding does not fill the result with ψ₀; the second round removes what that costs.
@@ -101,7 +100,8 @@ fn distortion(chain: &Chain, level: &Found, work: &mut Work) -> Distortion {
         d -= *y * (w - b * x);
     }
     let norm2 = dot(&work.first, &work.first);
-    rotate(chain, &work.first, work.rotation, &mut work.nodes, &mut work.image);
-    let h = dot(&work.first, &work.image) - b * norm2;
+    chain.to_nodes(&work.first, &mut work.nodes);
+    let mean: f64 = work.nodes.iter().zip(work.rotation_weight).map(|(x, w)| w * x * x).sum();
+    let h = mean - b * norm2;
     Distortion { b_v_hartree: b, d_v_hartree: d, h_v_hartree: h }
 }

@@ -41,8 +41,33 @@ pub(super) struct MeshDemand {
 }
 
 impl MeshDemand {
-    fn energy(&self, share: f64) -> f64 {
-        self.top_hartree - share * (self.top_hartree - self.bottom_hartree)
+    /// The energies of the ladder.
+    fn energies(&self) -> [f64; LADDER.len()] {
+        LADDER.map(|share| self.top_hartree - share * (self.top_hartree - self.bottom_hartree))
+    }
+}
+
+/// The ladder as one element meets it.
+struct Rungs {
+    two_mu: f64,
+    energies: [f64; LADDER.len()],
+    /// Squares of the weights of the wavenumbers.
+    weights2: [f64; LADDER.len()],
+}
+
+impl Rungs {
+    /// Largest weighted wavenumber of the ladder.
+    fn rate(&self, v: f64, slope: f64) -> f64 {
+        if v == f64::INFINITY {
+            return f64::INFINITY;
+        }
+        let airy = (self.two_mu * slope.abs()).cbrt();
+        let airy = 0.5 * airy * airy;
+        let mut largest = 0.0_f64;
+        for (energy, weight2) in self.energies.iter().zip(&self.weights2) {
+            largest = largest.max((self.two_mu * (energy - v).abs() + airy) * weight2);
+        }
+        largest.sqrt()
     }
 }
 
@@ -155,14 +180,15 @@ impl Walk {
             (false, _) => f64::INFINITY,
         };
         let to_wall = (wall - r) * sign;
-        let mut length = (demand.phase / self.rate(demand, v, 0.0)).min(longest);
+        let rungs = self.rungs(demand);
+        let mut length = (demand.phase / rungs.rate(v, 0.0)).min(longest);
         if !length.is_finite() {
             // A free particle at rest in a range without bound.
             length = r.abs().max(1.0);
         }
         // No element steps over something the survey has seen.
         for &(at, seen) in survey_inside(ground.survey, r, r + sign * length) {
-            length = length.min((at - r).abs() + demand.phase / self.rate(demand, seen, 0.0));
+            length = length.min((at - r).abs() + demand.phase / rungs.rate(seen, 0.0));
         }
         let mut middle = v;
         for _ in 0..4 {
@@ -171,9 +197,7 @@ impl Walk {
             let end = ground.value(r + sign * length)?;
             let slope = (end - v) / length;
             let phase = length / 6.0
-                * (self.rate(demand, v, slope)
-                    + 4.0 * self.rate(demand, middle, slope)
-                    + self.rate(demand, end, slope));
+                * (rungs.rate(v, slope) + 4.0 * rungs.rate(middle, slope) + rungs.rate(end, slope));
             if !phase.is_finite() {
                 // An infinite wall inside the element: closer.
                 length *= 0.5;
@@ -236,26 +260,15 @@ impl Walk {
         }
     }
 
-    /// Largest weighted wavenumber of the ladder.
-    fn rate(&self, demand: &MeshDemand, v: f64, slope: f64) -> f64 {
-        if v == f64::INFINITY {
-            return f64::INFINITY;
-        }
-        let airy = (demand.two_mu * slope.abs()).cbrt();
-        let airy = 0.5 * airy * airy;
-        LADDER
-            .iter()
-            .zip(&self.decay)
-            .map(|(&rung, &decay)| {
-                let q = (demand.two_mu * (demand.energy(rung) - v).abs() + airy).sqrt();
-                q * (-decay / (1.5 * demand.degree as f64)).exp()
-            })
-            .fold(0.0, f64::max)
+    /// The ladder with its weights where the walk has arrived.
+    fn rungs(&self, demand: &MeshDemand) -> Rungs {
+        let weight2 =
+            |decay: f64| if decay == 0.0 { 1.0 } else { (-decay / (0.75 * demand.degree as f64)).exp() };
+        Rungs { two_mu: demand.two_mu, energies: demand.energies(), weights2: self.decay.map(weight2) }
     }
 
     fn decay_over(&mut self, demand: &MeshDemand, length: f64, v: [f64; 3]) {
-        for (&rung, decay) in LADDER.iter().zip(&mut self.decay) {
-            let energy = demand.energy(rung);
+        for (energy, decay) in demand.energies().into_iter().zip(&mut self.decay) {
             let kappa = v.map(|v| (demand.two_mu * (v - energy)).max(0.0).sqrt());
             let added = length / 6.0 * (kappa[0] + 4.0 * kappa[1] + kappa[2]);
             if kappa[2] == 0.0 {

@@ -3,6 +3,7 @@
 //! −1/(2μ) ψ″ + [V(r) + X/(2 μ r²)] ψ = E ψ in atomic units, X = J(J+1) − Λ²; X = 0 drops the term.
 
 mod chain;
+mod condensed;
 mod distortion;
 mod mesh;
 mod observables;

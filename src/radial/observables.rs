@@ -60,14 +60,19 @@ fn crossings(
 /// Root of `f` between `a` and `b`, where it has the values `fa` and `fb` of opposite sign: the Illinois variant of
 /// regula falsi (M. Dowell, P. Jarratt, BIT 11, 168 (1971)) with bisection where it is slow.
 fn root(f: &dyn Fn(f64) -> f64, mut a: f64, mut b: f64, mut fa: f64, mut fb: f64) -> f64 {
+    let mut last = f64::NAN;
     for round in 0..200 {
         let mut x = b - fb * (b - a) / (fb - fa);
-        if !(x > a && x < b) || round % 8 == 7 {
+        let halved = !(x > a && x < b) || round % 8 == 7;
+        if halved {
             x = 0.5 * (a + b);
         }
-        if (b - a).abs() <= 2.0 * f64::EPSILON * x.abs() || x == a || x == b {
+        // One end stands still for long; a step of rounding size means that the other has arrived.
+        let arrived = !halved && (x - last).abs() <= 4.0 * f64::EPSILON * x.abs();
+        if arrived || (b - a).abs() <= 2.0 * f64::EPSILON * x.abs() || x == a || x == b {
             return x;
         }
+        last = x;
         let fx = f(x);
         if fx == 0.0 || fx.is_nan() {
             return x;

@@ -25,6 +25,10 @@ pub(super) struct ReferenceElement {
     pub barycentric: Vec<f64>,
     /// Stiffness ∫ l_i′ l_j′, row-major (p + 1)².
     pub stiffness: Vec<f64>,
+    /// The stiffness between the p − 1 interior nodes in orthonormal coordinates, for half length 1.
+    pub interior: Vec<f64>,
+    /// Stiffness between each interior node (orthonormal) and the left and right end (as they are).
+    pub to_ends: Vec<[f64; 2]>,
     /// Rows that give the Legendre coefficients of degree p − 1 and p of the polynomial through nodal values.
     pub highest: [Vec<f64>; 2],
     /// Gauss-Legendre nodes, p + 1 of them (exact for degree 2p + 1).
@@ -106,6 +110,12 @@ impl ReferenceElement {
                 stiffness[j * n + i] = value;
             }
         }
+        let root_weights: Vec<f64> = weights.iter().map(|w| w.sqrt()).collect();
+        let inside = || (1..p).flat_map(|i| (1..p).map(move |j| (i, j)));
+        let interior =
+            inside().map(|(i, j)| stiffness[i * n + j] / (root_weights[i] * root_weights[j])).collect();
+        let to_ends =
+            (1..p).map(|i| [stiffness[i], stiffness[p * n + i]].map(|k| k / root_weights[i])).collect();
         // c_k = (k + ½) ∫ P_k f; by this quadrature the norm of P_p itself comes out as 2/p.
         let row = |last: bool| -> Vec<f64> {
             let factor = if last { 0.5 * order } else { order - 0.5 };
@@ -114,7 +124,6 @@ impl ReferenceElement {
         };
         let highest = [row(false), row(true)];
         let (gauss_nodes, gauss_weights) = gauss_legendre(n);
-        let root_weights: Vec<f64> = weights.iter().map(|w| w.sqrt()).collect();
         let inverse_root_weights = root_weights.iter().map(|w| 1.0 / w).collect();
         Self {
             degree: p,
@@ -124,6 +133,8 @@ impl ReferenceElement {
             inverse_root_weights,
             barycentric,
             stiffness,
+            interior,
+            to_ends,
             highest,
             gauss_nodes,
             gauss_weights,

@@ -1,6 +1,7 @@
 //! Finding the levels of a chain: brackets from counts, Rayleigh-quotient iteration inside them.
 
 use super::chain::{Chain, Factors, dot};
+use super::condensed::{Condensed, Reduced, ReducedFactors, product, scale};
 use super::parallel::side_by_side;
 
 /// Relative size of the unwanted part of a vector at which it is finished.
@@ -10,7 +11,7 @@ const FINISHED_RESIDUAL: f64 = 1e-9;
 /// Levels closer than this share of the depth are kept orthogonal explicitly.
 const DEGENERATE: f64 = 1e-6;
 /// From this number of levels on two threads share the search.
-const WORTH_A_THREAD: usize = 24;
+const WORTH_A_THREAD: usize = 64;
 /// Rounds for one level before the bracket's middle is taken as it is.
 const MOST_ROUNDS: usize = 400;
 
@@ -53,11 +54,20 @@ pub(super) fn lowest_levels(
 ) -> Vec<Found> {
     let scale = top - bottom;
     let start = start_vector(chain);
+    let condensed = Condensed::new(chain);
     let search = |from: usize, to: usize| {
         let mut factors = Factors::default();
         let mut brackets = Brackets { low: vec![bottom; to], high: vec![top; to] };
         let mut found: Vec<Option<Found>> = vec![None; to];
-        let mut work = Work { y: vec![0.0; chain.len()], start: &start, scale };
+        let mut work = Work {
+            y: vec![0.0; chain.len()],
+            start: &start,
+            scale,
+            condensed: &condensed,
+            reduced: ReducedFactors::default(),
+            vectors: Default::default(),
+            kept: Vec::new(),
+        };
         for v in from..to {
             if found[v].is_none() {
                 find(chain, &mut factors, &mut brackets, &mut found, v, &mut work);
@@ -92,6 +102,11 @@ struct Work<'a> {
     /// Where every iteration begins.
     start: &'a [f64],
     scale: f64,
+    condensed: &'a Condensed<'a>,
+    reduced: ReducedFactors,
+    /// Reduced vector, its norm image, and what is solved for.
+    vectors: [Reduced; 3],
+    kept: Vec<Option<usize>>,
 }
 
 /// Most levels from which the next one is extrapolated.
@@ -141,12 +156,20 @@ fn find(
     let mut shift = guess(found, v, brackets.low[v], brackets.high[v]);
     for _ in 0..MOST_ROUNDS {
         // Isolate: a shift whose count says it is next to v.
-        factors.factorise(chain, shift);
-        brackets.note(shift, factors.below);
+        work.reduced.factorise(work.condensed, shift);
+        let below = work.reduced.below;
+        brackets.note(shift, below);
         let (low, high) = (brackets.low[v], brackets.high[v]);
-        let near = factors.below == v || factors.below == v + 1;
+        let near = below == v || below == v + 1;
         let narrow = high - low <= 16.0 * rounding;
+        if near && !narrow {
+            if let Some(level) = refine_reduced(brackets, found, v, shift, work) {
+                found[v] = Some(level);
+                return;
+            }
+        }
         if near || narrow {
+            factors.factorise(chain, shift);
             if let Some(level) = refine(chain, factors, brackets, found, (v, narrow), shift, work) {
                 if found[v].is_none() {
                     found[v] = Some(level);
@@ -160,6 +183,90 @@ fn find(
         let (low, high) = (brackets.low[v], brackets.high[v]);
         shift = 0.5 * (low + high);
     }
+}
+
+/// Distance to the levels next to `v` that the refinement assumes: the spacing so far, or what the counts leave open.
+fn assumed_gap(
+    brackets: &Brackets,
+    previous: Option<&Found>,
+    v: usize,
+    shift: f64,
+    work: &Work<'_>,
+) -> f64 {
+    let rounding = 4.0 * f64::EPSILON * work.scale;
+    match previous {
+        Some(previous) => (shift - previous.energy).abs().max(rounding),
+        None => (brackets.high[v] - brackets.low[v]).max(0.05 * work.scale / brackets.low.len() as f64),
+    }
+}
+
+/// Rayleigh-quotient iteration on the interface values alone, from a shift that `work.reduced` holds; none where it
+/// leaves the bracket, where the count contradicts v, or near a level already found: then [`refine`] takes over.
+fn refine_reduced(
+    brackets: &mut Brackets,
+    found: &[Option<Found>],
+    v: usize,
+    start: f64,
+    work: &mut Work<'_>,
+) -> Option<Found> {
+    let rounding = 4.0 * f64::EPSILON * work.scale;
+    let previous = v.checked_sub(1).and_then(|i| found[i].as_ref());
+    let mut shift = start;
+    let [mut x, mut image, mut y] = std::mem::take(&mut work.vectors);
+    let faces = work.reduced.kept().len() + 1;
+    x.copy_from(&Reduced::from_faces(&work.start[..faces]));
+    let mut unwanted = 1e2;
+    let mut still = 0;
+    let mut level = None;
+    for round in 0..12 {
+        if round > 0 {
+            work.kept.clear();
+            work.kept.extend_from_slice(work.reduced.kept());
+            work.reduced.factorise(work.condensed, shift);
+            brackets.note(shift, work.reduced.below);
+            work.reduced.take_over(work.condensed, &work.kept, &mut x);
+        }
+        let gap = assumed_gap(brackets, previous, v, shift, work);
+        if previous.is_some() && gap <= 10.0 * DEGENERATE * work.scale {
+            break;
+        }
+        work.reduced.norm(&x, &mut image);
+        y.copy_from(&image);
+        work.reduced.solve(&mut y);
+        let overlap = product(&y, &image);
+        let length2 = product(&image, &image);
+        work.reduced.norm(&y, &mut image);
+        let norm2 = product(&y, &image);
+        if !(norm2.is_finite() && norm2 > 0.0) {
+            break;
+        }
+        let energy = shift + overlap / norm2;
+        scale(&mut y, 1.0 / norm2.sqrt());
+        std::mem::swap(&mut x, &mut y);
+        let distance = (energy - shift).abs().max(rounding * 0.25);
+        unwanted *= (distance / gap).min(10.0);
+        still = if distance <= 4.0 * rounding { still + 1 } else { 0 };
+        // ‖(H − E) x‖: (H − shift) x is the right-hand side over the norm, and zero in the modes.
+        let residual = (length2 / norm2 - (energy - shift).powi(2)).max(0.0).sqrt();
+        let settled = residual <= FINISHED_RESIDUAL * work.scale;
+        if settled && (unwanted < FINISHED || (unwanted < 1e-6 && still > 0)) || still > 1 {
+            let below = work.reduced.below;
+            let right = if energy > shift { v } else { v + 1 };
+            let sure =
+                below == right || (distance <= 16.0 * rounding && (below == v || below == v + 1));
+            if sure {
+                level = Some(Found { energy, vector: work.reduced.whole(work.condensed, &x, energy), gap });
+            }
+            break;
+        }
+        if (energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding) && round > 0 {
+            break;
+        }
+        let outside = energy < brackets.low[v] || energy > brackets.high[v];
+        shift = if outside { 0.5 * (brackets.low[v] + brackets.high[v]) } else { energy };
+    }
+    work.vectors = [x, image, y];
+    level
 }
 
 /// Rayleigh-quotient iteration from an already factorised shift; none when it leaves the bracket of v or the
@@ -184,15 +291,7 @@ fn refine(
             factors.factorise(chain, shift);
             brackets.note(shift, factors.below);
         }
-        // Distance to other levels: the spacing so far, or what the counts leave open.
-        let below = previous.map_or(f64::INFINITY, |p| (shift - p.energy).abs());
-        let mut gap = below.min(brackets.high[v.min(brackets.high.len() - 1)] - brackets.low[v]);
-        if !below.is_finite() {
-            gap = gap.max(0.05 * work.scale / brackets.low.len() as f64);
-        } else {
-            gap = below;
-        }
-        gap = gap.max(rounding);
+        let gap = assumed_gap(brackets, previous, v, shift, work);
         work.y.copy_from_slice(&vector);
         factors.solve(chain, &mut work.y);
         deflate(&mut work.y, found, v, shift, DEGENERATE * work.scale);

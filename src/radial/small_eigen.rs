@@ -1,6 +1,7 @@
 //! Eigenvalues and eigenvectors of one small dense symmetric matrix: Householder reduction and the
 //! implicit QL iteration (H. Bowdler, R. S. Martin, C. Reinsch, J. H. Wilkinson, Numer. Math. 11, 293
 //! (1968)), with the eigenvectors kept as rows so that every rotation runs over contiguous memory.
+//! Where only the overlaps of the eigenvectors with a few vectors are needed, those are carried along instead.
 
 /// Diagonalises the symmetric `matrix` (row-major, n × n, both triangles filled).
 ///
@@ -8,16 +9,56 @@
 /// least 2n numbers. Returns false when the iteration does not converge (60 rounds for one value).
 pub(super) fn diagonalise(matrix: &mut [f64], values: &mut [f64], scratch: &mut [f64], n: usize) -> bool {
     let (off, column) = scratch.split_at_mut(n);
-    tridiagonalise(matrix, values, off, column, n);
-    ql(matrix, values, off, n) && {
-        sort_rows(matrix, values, n);
+    reduce(matrix, values, off, column, n);
+    accumulate(matrix, values, n);
+    ql(matrix, values, off, (n, n)) && {
+        sort_rows(matrix, values, (n, n));
         true
     }
 }
 
-/// Householder reduction; on return `matrix` holds Qᵀ by rows (row k is what is rotated into the k-th
-/// tridiagonal basis vector), `diagonal` and `off[1..]` the tridiagonal matrix.
-fn tridiagonalise(a: &mut [f64], diagonal: &mut [f64], off: &mut [f64], p: &mut [f64], n: usize) {
+/// Eigenvalues of the symmetric `matrix` (destroyed), ascending, with the overlaps of each eigenvector with the two
+/// vectors whose components stand in the rows of `pairs`; on return row k belongs to `values[k]`.
+///
+/// A quarter of the work of [`diagonalise`]. Returns false when the iteration does not converge.
+pub(super) fn overlaps(
+    matrix: &mut [f64],
+    pairs: &mut [f64],
+    values: &mut [f64],
+    scratch: &mut [f64],
+    n: usize,
+) -> bool {
+    let (off, column) = scratch.split_at_mut(n);
+    reduce(matrix, values, off, column, n);
+    for i in (2..n).rev() {
+        // Half the squared length of the reflector, 0 where there was nothing to reflect.
+        let h = values[i];
+        if h != 0.0 {
+            let u = &matrix[i * n..i * n + i];
+            let mut along = [0.0; 2];
+            for (pair, u) in pairs.chunks_exact(2).zip(u) {
+                along[0] += pair[0] * u;
+                along[1] += pair[1] * u;
+            }
+            let along = along.map(|x| x / h);
+            for (pair, u) in pairs.chunks_exact_mut(2).zip(u) {
+                pair[0] -= along[0] * u;
+                pair[1] -= along[1] * u;
+            }
+        }
+    }
+    for (i, value) in values.iter_mut().enumerate() {
+        *value = matrix[i * n + i];
+    }
+    ql(pairs, values, off, (n, 2)) && {
+        sort_rows(pairs, values, (n, 2));
+        true
+    }
+}
+
+/// Householder reduction; on return row i of `a` holds reflector i in its first i columns and the diagonal of the
+/// tridiagonal matrix after them, `half` half the squared lengths of the reflectors, `off[1..]` the other diagonal.
+fn reduce(a: &mut [f64], half: &mut [f64], off: &mut [f64], p: &mut [f64], n: usize) {
     // Reduce from the last row upwards; reflector i lives in row i, columns 0..i.
     for i in (2..n).rev() {
         let (above, row) = a.split_at_mut(i * n);
@@ -25,7 +66,7 @@ fn tridiagonalise(a: &mut [f64], diagonal: &mut [f64], off: &mut [f64], p: &mut 
         let norm2: f64 = u[..i - 1].iter().map(|x| x * x).sum();
         if norm2 == 0.0 {
             off[i] = u[i - 1];
-            diagonal[i] = 0.0;
+            half[i] = 0.0;
             continue;
         }
         let last = u[i - 1];
@@ -35,7 +76,7 @@ fn tridiagonalise(a: &mut [f64], diagonal: &mut [f64], off: &mut [f64], p: &mut 
         u[i - 1] = last - g;
         let h = norm2 + u[i - 1] * u[i - 1];
         let h = 0.5 * h; // |u|²/2
-        diagonal[i] = h;
+        half[i] = h;
         // p = A u / h, from the full symmetric leading block
         let mut k = 0.0;
         for (j, pj) in p[..i].iter_mut().enumerate() {
@@ -56,11 +97,16 @@ fn tridiagonalise(a: &mut [f64], diagonal: &mut [f64], off: &mut [f64], p: &mut 
     }
     if n > 1 {
         off[1] = a[n];
-        diagonal[1] = 0.0;
+        half[1] = 0.0;
     }
     off[0] = 0.0;
-    diagonal[0] = 0.0;
-    // Accumulate: rows 0..i hold Qᵀ of the leading block before reflector i is applied to it.
+    half[0] = 0.0;
+}
+
+/// Turns what [`reduce`] left into Qᵀ by rows (row k is what is rotated into the k-th tridiagonal basis vector) and
+/// `diagonal`, which holds the half squared lengths before.
+fn accumulate(a: &mut [f64], diagonal: &mut [f64], n: usize) {
+    // Rows 0..i hold Qᵀ of the leading block before reflector i is applied to it.
     for i in 0..n {
         let h = diagonal[i];
         diagonal[i] = a[i * n + i];
@@ -84,7 +130,8 @@ fn tridiagonalise(a: &mut [f64], diagonal: &mut [f64], off: &mut [f64], p: &mut 
     }
 }
 
-fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], n: usize) -> bool {
+/// The implicit QL iteration on the tridiagonal matrix; `z` has n rows of `width` numbers that are rotated along.
+fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], (n, width): (usize, usize)) -> bool {
     for i in 1..n {
         e[i - 1] = e[i];
     }
@@ -123,8 +170,8 @@ fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], n: usize) -> bool {
                 p = s * r;
                 d[i + 1] = g + p;
                 g = c * r - b;
-                let (low, high) = z.split_at_mut((i + 1) * n);
-                for (x, y) in low[i * n..].iter_mut().zip(&mut high[..n]) {
+                let (low, high) = z.split_at_mut((i + 1) * width);
+                for (x, y) in low[i * width..].iter_mut().zip(&mut high[..width]) {
                     let f = *y;
                     *y = s * *x + c * f;
                     *x = c * *x - s * f;
@@ -142,7 +189,7 @@ fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], n: usize) -> bool {
 }
 
 /// Ascending values, rows along (selection sort: n is small).
-fn sort_rows(z: &mut [f64], d: &mut [f64], n: usize) {
+fn sort_rows(z: &mut [f64], d: &mut [f64], (n, width): (usize, usize)) {
     for i in 0..n {
         let mut least = i;
         for j in i + 1..n {
@@ -152,15 +199,15 @@ fn sort_rows(z: &mut [f64], d: &mut [f64], n: usize) {
         }
         if least != i {
             d.swap(i, least);
-            let (low, high) = z.split_at_mut(least * n);
-            low[i * n..(i + 1) * n].swap_with_slice(&mut high[..n]);
+            let (low, high) = z.split_at_mut(least * width);
+            low[i * width..(i + 1) * width].swap_with_slice(&mut high[..width]);
         }
     }
 }
 
 #[cfg(test)]
 mod tests {
-    use super::diagonalise;
+    use super::{diagonalise, overlaps};
 
     #[test]
     fn vectors_diagonalise_the_matrix_and_are_orthonormal() {
@@ -182,6 +229,20 @@ mod tests {
             let mut values = vec![0.0; n];
             assert!(diagonalise(&mut a, &mut values, &mut vec![0.0; 2 * n], n));
             assert!(values.windows(2).all(|pair| pair[0] <= pair[1]));
+            // The same by what is carried along: overlaps with two invented vectors, up to a sign a row.
+            let ends: Vec<[f64; 2]> = (0..n).map(|i| [(i as f64).cos(), 1.0 / (1.0 + i as f64)]).collect();
+            let mut pairs: Vec<f64> = ends.iter().flatten().copied().collect();
+            let mut again = vec![0.0; n];
+            assert!(overlaps(&mut original.clone(), &mut pairs, &mut again, &mut vec![0.0; 2 * n], n));
+            for k in 0..n {
+                assert!((again[k] - values[k]).abs() < 1e-12 * (n * n) as f64);
+                let row = &a[k * n..(k + 1) * n];
+                let along = [0, 1].map(|c| row.iter().zip(&ends).map(|(x, e)| x * e[c]).sum::<f64>());
+                let sign = (along[0] * pairs[2 * k] + along[1] * pairs[2 * k + 1]).signum();
+                for c in 0..2 {
+                    assert!((sign * pairs[2 * k + c] - along[c]).abs() < 1e-11 * n as f64, "{n} {k} {c}");
+                }
+            }
             for k in 0..n {
                 let row = &a[k * n..(k + 1) * n];
                 for l in 0..n {

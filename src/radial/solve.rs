@@ -2,7 +2,7 @@
 
 use super::chain::{Chain, Factors, node};
 use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
-use super::parallel::side_by_side;
+use super::parallel::{WORTH_A_THREAD, side_by_side};
 use super::reference_element::ReferenceElement;
 use super::search::{Found, lowest_levels};
 use super::{
@@ -118,16 +118,8 @@ pub(super) fn problem(
         let count = factors.below.min(MOST_LEVELS);
         return Ok(Some(Problem { chain, demand, count }));
     }
-    // Raise the top until enough levels lie below it, starting from the harmonic estimate.
-    let minimum = potential.minimum_bohr();
-    let curvature = potential.derivatives_hartree(minimum)[2];
-    let quantum = (2.0 * curvature / demand.two_mu).sqrt();
-    let quantum = if quantum.is_finite() && quantum > 0.0 {
-        quantum
-    } else {
-        1.0 / (demand.two_mu * minimum * minimum).max(f64::MIN_POSITIVE)
-    };
-    let mut height = quantum * (wanted as f64 + 0.5);
+    // Raise the top until enough levels lie below it.
+    let mut height = height_of_levels(potential, &demand, wanted as f64 + 0.1);
     for _ in 0..200 {
         let top = demand.bottom_hartree + height;
         if top >= limit {
@@ -150,6 +142,65 @@ pub(super) fn problem(
         depth_at(limit, &mut demand);
     }
     Err(RadialError::Search)
+}
+
+/// Steps in which a harmonic oscillator's half width is crossed by [`phase_below`].
+const PHASE_STEPS: f64 = 24.0;
+/// Steps after which it gives up.
+const MOST_PHASE_STEPS: usize = 2000;
+
+/// Height above the bottom at which the phase integral (1/π) ∫ √(2μ(E − V)) dr is about `phase`; the harmonic
+/// estimate where that is no use. A starting value: whether the levels are there is counted.
+fn height_of_levels(potential: &dyn Potential, demand: &MeshDemand, phase: f64) -> f64 {
+    let minimum = potential.minimum_bohr();
+    let curvature = potential.derivatives_hartree(minimum)[2];
+    let quantum = (2.0 * curvature / demand.two_mu).sqrt();
+    if !(quantum.is_finite() && quantum > 0.0) {
+        return phase / (demand.two_mu * minimum * minimum).max(f64::MIN_POSITIVE);
+    }
+    let harmonic = quantum * phase;
+    let highest = demand.top_hartree - demand.bottom_hartree;
+    let mut height = harmonic;
+    for _ in 0..12 {
+        if height >= highest {
+            return highest;
+        }
+        let step = (2.0 * height / curvature).sqrt() / PHASE_STEPS;
+        let found = phase_below(potential, demand, demand.bottom_hartree + height, step);
+        let Some(found) = found.filter(|f| *f > 0.0) else { return harmonic };
+        if (found - phase).abs() < 0.05 {
+            return height;
+        }
+        height *= (phase / found).clamp(0.25, 4.0);
+    }
+    height
+}
+
+/// (1/π) ∫ √(2μ(E − V)) dr over the well around the minimum, by the trapezoidal rule; none where the well has no end
+/// within a reasonable number of steps.
+fn phase_below(potential: &dyn Potential, demand: &MeshDemand, energy: f64, step: f64) -> Option<f64> {
+    let (from, to) = potential.range_bohr();
+    let minimum = potential.minimum_bohr();
+    let wavenumber = |r: f64| {
+        let v = effective(potential, demand.two_mu, demand.rotation_x, r);
+        (demand.two_mu * (energy - v)).max(0.0).sqrt()
+    };
+    let mut sum = wavenumber(minimum);
+    for sign in [-1.0, 1.0] {
+        let mut r = minimum;
+        for round in 1.. {
+            r += sign * step;
+            let k = if r <= from || r >= to { 0.0 } else { wavenumber(r) };
+            if k.is_nan() || round == MOST_PHASE_STEPS {
+                return None;
+            }
+            if k == 0.0 {
+                break;
+            }
+            sum += k;
+        }
+    }
+    Some(sum * step / std::f64::consts::PI)
 }
 
 /// An energy below which at least `count` levels lie, and few more.
@@ -285,7 +336,11 @@ pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Resul
         let Some(problem) = problem(potential, request, factor)? else {
             return Ok(Solution { states: Vec::new(), inner: None });
         };
-        let (found, coarse) = side_by_side(|| levels(&problem), || coarser(potential, &problem));
+        let (found, coarse) = if problem.count < WORTH_A_THREAD {
+            (levels(&problem), coarser(potential, &problem))
+        } else {
+            side_by_side(|| levels(&problem), || coarser(potential, &problem))
+        };
         let errors = estimated_errors(&problem, &coarse?, &found);
         let depth = problem.demand.top_hartree - problem.demand.bottom_hartree;
         let worst = errors.iter().fold(0.0_f64, |a, &b| a.max(b));
@@ -305,7 +360,7 @@ fn coarser(potential: &dyn Potential, problem: &Problem) -> Result<Chain, Radial
     let degree = demand.degree - 1;
     let boundaries = problem.chain.boundaries.clone();
     let values = node_values(potential, demand, &boundaries, ReferenceElement::of_degree(degree))?;
-    Chain::new(demand.two_mu, boundaries, values, degree)
+    Chain::without_vectors(demand.two_mu, boundaries, values, degree)
 }
 
 /// Twice the difference to the coarser problem, plus rounding.

@@ -102,18 +102,20 @@ fn levels(fit: &Fit, mass_me: f64) -> Vec<Estimate> {
 
 /// ⟨ψ|∂V/∂p|ψ⟩ of each level in cm⁻¹ per atomic unit; zero for e_min, from which the levels count.
 fn expectation_gradients(model: &Model, r_bohr: &[f64], densities: &[Vec<f64>]) -> Vec<Vec<f64>> {
-    let mut gradient = vec![0.0; model.values().len()];
-    let mut sums = vec![vec![0.0; gradient.len()]; densities.len()];
+    let parameters = model.values().len();
+    let mut gradient = vec![0.0; parameters];
+    // A row a parameter, in cm⁻¹; zero where no level has anything.
+    let mut on_mesh = vec![vec![0.0; r_bohr.len()]; parameters];
     for (i, &r) in r_bohr.iter().enumerate() {
-        if densities.iter().all(|d| d[i] == 0.0) {
-            continue;
-        }
-        model.gradient(r, &mut gradient);
-        for (sum, density) in sums.iter_mut().zip(densities) {
-            sum.iter_mut().zip(&gradient).skip(1).for_each(|(s, g)| *s += to_per_cm(density[i] * g));
+        if densities.iter().any(|d| d[i] != 0.0) {
+            model.gradient(r, &mut gradient);
+            for (row, g) in on_mesh.iter_mut().zip(&gradient).skip(1) {
+                row[i] = to_per_cm(*g);
+            }
         }
     }
-    sums
+    let mean = |density: &[f64], row: &[f64]| density.iter().zip(row).map(|(d, g)| d * g).sum();
+    densities.iter().map(|density| on_mesh.iter().map(|row| mean(density, row)).collect()).collect()
 }
 
 /// Takes the bond lengths of a mesh and the gradient of V by each parameter there.

@@ -6,7 +6,7 @@ use crate::findings::{Findings, FitFindings};
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{ScanCurve, Side};
 use crate::potential::{Family, Potential as _};
-use crate::radial::{self, Level, RadialRequest, Solution, Wavefunction};
+use crate::radial::{self, BoundState, Level, Observables, RadialError, RadialRequest, Solution, Wavefunction};
 use crate::reach::Interval;
 use crate::settings::LevelSettings;
 use crate::units::{omega_e_per_cm, rotational_constant_per_cm, to_angstrom, to_per_cm};
@@ -61,20 +61,41 @@ impl Solved {
     }
 }
 
+/// The solver's answer at one J, before anything is known about its errors.
+pub struct States {
+    solution: Solution,
+    states: Vec<BoundState>,
+    observed: Vec<Observables>,
+}
+
+/// All levels of the curve at one J with B_v, turning points and averages.
+///
+/// # Errors
+/// [`RadialError`]
+pub fn states(curve: &ScanCurve, question: &Question) -> Result<States, RadialError> {
+    let above = curve.above_minimum();
+    let mut solution = radial::solve(&above, &question.request())?;
+    let observed = solution.observables(&above, curve.local.r_e_bohr, 0.0);
+    let states = solution.take_states();
+    Ok(States { solution, states, observed })
+}
+
 /// Solves for all levels of the curve at one J.
 pub fn solve(curve: &ScanCurve, question: &Question) -> Solved {
+    judged(curve, question, states(curve, question))
+}
+
+/// The levels with their standard errors, and what leans.
+pub fn judged(curve: &ScanCurve, question: &Question, states: Result<States, RadialError>) -> Solved {
     let settings = question.settings;
-    let above = curve.above_minimum();
-    let mut solution = match radial::solve(&above, &question.request()) {
-        Ok(solution) => solution,
+    let States { solution, states, observed } = match states {
+        Ok(states) => states,
         Err(error) => {
             let text = format!("There are no levels with J = {}: {error}.", question.j);
             return Solved::nothing(Some(Notice::caution(Code::NotConverged, text)));
         }
     };
     let r_e = curve.local.r_e_bohr;
-    let observed = solution.observables(&above, r_e, 0.0);
-    let states = solution.take_states();
     let Some(first) = states.first() else {
         return Solved::nothing((question.j == 0).then(|| no_level(curve, question.mass_me)));
     };

@@ -60,7 +60,7 @@ pub enum StudyError {
     },
 }
 
-/// A finished stage of a study, for progress and timings.
+/// A stage of a study, for progress and timings.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Stage {
     /// Points in use and their inspection.
@@ -69,8 +69,10 @@ pub enum Stage {
     Curve,
     /// The fits.
     Fits,
-    /// The levels, with all but their centrifugal constants.
+    /// The levels with wavefunctions, B_v, turning points and averages.
     Levels,
+    /// The standard errors of the levels, and which of them lean on a tail.
+    LevelErrors,
     /// The centrifugal constants D_v and H_v.
     Distortion,
     /// The constants.
@@ -93,6 +95,7 @@ impl Stage {
             Self::Curve => "curve",
             Self::Fits => "fits",
             Self::Levels => "levels",
+            Self::LevelErrors => "level_errors",
             Self::Distortion => "distortion",
             Self::Constants => "constants",
             Self::Reach => "reach",
@@ -103,6 +106,26 @@ impl Stage {
     }
 }
 
+/// Whether a stage begins or has ended.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Mark {
+    /// It begins.
+    Begins,
+    /// It has ended.
+    Ended,
+}
+
+/// Is told of every stage, from the thread it runs on: the fits run beside the levels.
+pub type Observer<'a> = dyn Fn(Stage, Mark) + Sync + 'a;
+
+/// Does `work`, telling the observer when it begins and when it has ended.
+fn observed<T>(observer: &Observer, stage: Stage, work: impl FnOnce() -> T) -> T {
+    observer(stage, Mark::Begins);
+    let result = work();
+    observer(stage, Mark::Ended);
+    result
+}
+
 /// Studies one curve of a scan.
 ///
 /// Pure: reads no file, no clock, no environment; the same scan and settings give the same findings.
@@ -111,24 +134,24 @@ impl Stage {
 /// [`StudyError`] when the settings name something that the scan does not have. A curve that cannot
 /// be studied is no error here: its findings say why in a `stop` notice.
 pub fn study(scan: &Scan, settings: &Settings) -> Result<Findings, StudyError> {
-    study_observed(scan, settings, &mut |_| {})
+    study_observed(scan, settings, &|_, _| ())
 }
 
-/// The same, calling `after` at the end of each stage.
+/// The same, telling `observer` of the beginning and the end of each stage.
 ///
 /// # Errors
 /// As [`study`].
 pub fn study_observed(
     scan: &Scan,
     settings: &Settings,
-    after: &mut dyn FnMut(Stage),
+    observer: &Observer,
 ) -> Result<Findings, StudyError> {
     settings.checked()?;
     let column = &scan.energies[scan.curve_index(settings.curve.as_deref())?];
     let masses = species::masses(&settings.masses, scan.atoms.as_ref(), scan.charge)?;
     let pairs = isotopologues::masses(settings, scan.charge)?;
-    let (points, mut notices) = points::points(scan, column, settings)?;
-    after(Stage::Points);
+    let (points, mut notices) =
+        observed(observer, Stage::Points, || points::points(scan, column, settings))?;
 
     let mut findings = Findings {
         source: Source {
@@ -168,19 +191,22 @@ pub fn study_observed(
 
     let used = points::in_use(&findings.source.points);
     let asymptote_hartree = settings.interpolation.asymptote.map(|e| column.unit.to_hartree(e));
-    match build_curve(&used, asymptote_hartree, &settings.interpolation) {
-        Ok((mut curve, mut remarks)) => {
+    let built = observed(observer, Stage::Curve, || {
+        build_curve(&used, asymptote_hartree, &settings.interpolation).map(|(mut curve, remarks)| {
             doubt(&mut curve, &findings.notices, &used, asymptote_hartree, settings);
+            (curve, remarks)
+        })
+    });
+    match built {
+        Ok((curve, mut remarks)) => {
             findings.curve = Some(Arc::new(curve));
             findings.notices.append(&mut remarks);
         }
         Err(error) => findings.notices.push(error.notice()),
     }
-    after(Stage::Curve);
     if findings.curve.is_some() {
-        study_curve(&mut findings, after);
-        further(&mut findings, scan, &pairs);
-        after(Stage::Further);
+        study_curve(&mut findings, observer);
+        observed(observer, Stage::Further, || further(&mut findings, scan, &pairs));
     }
     if let Some(curve) = findings.curve.clone() {
         remarks::remark(&mut findings, &curve, column);
@@ -239,7 +265,7 @@ fn further(findings: &mut Findings, scan: &Scan, pairs: &[Masses]) {
 }
 
 /// Everything that needs a curve.
-fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
+fn study_curve(findings: &mut Findings, observer: &Observer) {
     let Some(curve) = findings.curve.clone() else { return };
     let mass_me = findings.masses.as_ref().map(|m| m.reduced_mass_me);
     let reach = reach::energy_and_force_reach(&curve, &findings.settings.reach).map(|(energy, _)| energy);
@@ -248,17 +274,18 @@ fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
         mass_me.map(|mass_me| levels::Question { settings: &settings, mass_me, reach: reach.as_ref(), j: 0 });
     // The fits and the levels know nothing of each other: a thread each.
     let solved = std::thread::scope(|scope| {
-        let fitting = scope.spawn(|| fits::fit_all(findings, &curve));
-        let mut solved = question.as_ref().map(|q| levels::solve(&curve, q));
-        after(Stage::Levels);
-        if let Some(solved) = &mut solved {
-            solved.distort();
-        }
-        after(Stage::Distortion);
+        let fitting =
+            scope.spawn(|| observed(observer, Stage::Fits, || fits::fit_all(findings, &curve)));
+        let solved = question.as_ref().map(|question| {
+            let states = observed(observer, Stage::Levels, || levels::states(&curve, question));
+            let mut solved =
+                observed(observer, Stage::LevelErrors, || levels::judged(&curve, question, states));
+            observed(observer, Stage::Distortion, || solved.distort());
+            solved
+        });
         if let Err(panic) = fitting.join() {
             std::panic::resume_unwind(panic);
         }
-        after(Stage::Fits);
         solved
     });
     if let Some(mut solved) = solved {
@@ -275,15 +302,12 @@ fn study_curve(findings: &mut Findings, after: &mut dyn FnMut(Stage)) {
         highest_v: findings.settings.levels.constants_highest_v,
         degree: findings.settings.levels.constants_degree,
     };
-    findings.constants = spectroscopy::constants(&curve, mass_me, &findings.levels, set);
-    after(Stage::Constants);
-
-    findings.reach = reach::reach(&curve, mass_me, &findings.levels, &findings.settings.reach);
-    after(Stage::Reach);
-
-    densities::fill(findings, &curve);
-    after(Stage::Densities);
-
-    thermal::fill(findings, &curve);
-    after(Stage::Thermal);
+    findings.constants = observed(observer, Stage::Constants, || {
+        spectroscopy::constants(&curve, mass_me, &findings.levels, set)
+    });
+    findings.reach = observed(observer, Stage::Reach, || {
+        reach::reach(&curve, mass_me, &findings.levels, &findings.settings.reach)
+    });
+    observed(observer, Stage::Densities, || densities::fill(findings, &curve));
+    observed(observer, Stage::Thermal, || thermal::fill(findings, &curve));
 }

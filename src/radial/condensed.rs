@@ -1,0 +1,255 @@
+//! The chain with its modes eliminated: at a shift s only the interface values f remain, T(s) f = 0.
+//!
+//! T(s) is the Schur complement of the modes and M(s) = −dT/ds, the norm that f has with its modes. Inverse iteration
+//! T(s) y = M(s) x is that of the whole problem with the modes following the interface values, and the Rayleigh quotient
+//! of the whole vector is s + yᵀ M x / yᵀ M y; a round costs one division and six sums a mode and keeps no vector of the
+//! length of the mesh. A mode so close to s that eliminating it would cost digits is kept beside the interface values.
+
+use super::chain::{Chain, close_to_mode, guarded};
+
+/// What the elimination needs of every mode, in lanes of two.
+#[derive(Debug)]
+pub(super) struct Condensed<'a> {
+    chain: &'a Chain,
+    /// Pairs of modes an element.
+    lanes: usize,
+    /// λ and the products of the couplings left·left, left·right, right·right; padded with a mode at infinity that is
+    /// coupled to nothing.
+    modes: Vec<[[f64; 2]; 4]>,
+}
+
+/// Sums over the modes of one element: Schur complement and norm, each left-left, left-right, right-right.
+#[derive(Clone, Copy)]
+struct Sums {
+    complement: [f64; 3],
+    norm: [f64; 3],
+}
+
+impl<'a> Condensed<'a> {
+    pub fn new(chain: &'a Chain) -> Self {
+        let lanes = chain.modes.div_ceil(2);
+        let mut modes = vec![[[f64::INFINITY; 2], [0.0; 2], [0.0; 2], [0.0; 2]]; lanes * chain.elements()];
+        for e in 0..chain.elements() {
+            for k in 0..chain.modes {
+                let (at, mode) = (e * chain.modes + k, &mut modes[e * lanes + k / 2]);
+                let (left, right) = (chain.to_left[at], chain.to_right[at]);
+                for (row, value) in
+                    mode.iter_mut().zip([chain.lambda[at], left * left, left * right, right * right])
+                {
+                    row[k % 2] = value;
+                }
+            }
+        }
+        Self { chain, lanes, modes }
+    }
+
+    /// Sums over the modes of element `e`, one of them left out.
+    fn sums(&self, e: usize, shift: f64, without: Option<usize>) -> Sums {
+        let mut complement = [[0.0; 2]; 3];
+        let mut norm = [[0.0; 2]; 3];
+        for (pair, mode) in self.modes[e * self.lanes..(e + 1) * self.lanes].iter().enumerate() {
+            let mut inverse = [1.0 / (mode[0][0] - shift), 1.0 / (mode[0][1] - shift)];
+            if let Some(k) = without.filter(|k| k / 2 == pair) {
+                inverse[k % 2] = 0.0;
+            }
+            for c in 0..3 {
+                for lane in 0..2 {
+                    let share = mode[c + 1][lane] * inverse[lane];
+                    complement[c][lane] += share;
+                    norm[c][lane] += share * inverse[lane];
+                }
+            }
+        }
+        Sums { complement: complement.map(|s| s[0] + s[1]), norm: norm.map(|s| s[0] + s[1]) }
+    }
+}
+
+/// Interface values and kept modes.
+#[derive(Clone, Debug, Default)]
+pub(super) struct Reduced {
+    face: Vec<f64>,
+    own: Vec<f64>,
+}
+
+impl Reduced {
+    pub fn from_faces(face: &[f64]) -> Self {
+        let n = face.len();
+        let mut face = face.to_vec();
+        face[0] = 0.0;
+        face[n - 1] = 0.0;
+        Self { own: vec![1.0; n - 1], face }
+    }
+
+    pub fn copy_from(&mut self, other: &Self) {
+        self.face.clone_from(&other.face);
+        self.own.clone_from(&other.own);
+    }
+}
+
+/// T(s) factorised, with M(s).
+#[derive(Debug, Default)]
+pub(super) struct ReducedFactors {
+    pub shift: f64,
+    /// Levels below the shift.
+    pub below: usize,
+    kept: Vec<Option<usize>>,
+    pivot: Vec<f64>,
+    kept_pivot: Vec<f64>,
+    to_next: Vec<f64>,
+    to_kept: Vec<f64>,
+    from_kept: Vec<f64>,
+    norm_face: Vec<f64>,
+    norm_next: Vec<f64>,
+}
+
+impl ReducedFactors {
+    /// Factorises T(`shift`) and counts the levels below `shift`.
+    pub fn factorise(&mut self, condensed: &Condensed, shift: f64) {
+        let chain = condensed.chain;
+        let (elements, modes) = (chain.elements(), chain.modes);
+        self.shift = shift;
+        self.kept.resize(elements, None);
+        for list in [
+            &mut self.pivot,
+            &mut self.kept_pivot,
+            &mut self.to_next,
+            &mut self.to_kept,
+            &mut self.from_kept,
+            &mut self.norm_face,
+            &mut self.norm_next,
+        ] {
+            list.resize(elements + 1, 0.0);
+        }
+        let mut below = 0;
+        let (mut carried, mut norm) = (0.0, 1.0);
+        for e in 0..elements {
+            let lambda = &chain.lambda[e * modes..(e + 1) * modes];
+            below += lambda.iter().filter(|&&value| value < shift).count();
+            let kept = close_to_mode(lambda, shift);
+            let Sums { complement: [ll, lr, rr], norm: norms } = condensed.sums(e, shift, kept);
+            self.kept[e] = kept;
+            self.norm_face[e] = norm + norms[0];
+            self.norm_next[e] = norms[1];
+            norm = 1.0 + norms[2];
+            let direct = chain.beta[e] - lr;
+            let mut next = chain.alpha[e + 1] - shift - rr;
+            let inner_wall = e == 0;
+            let pivot = guarded(carried - ll, chain.alpha[e]);
+            self.pivot[e] = pivot;
+            if inner_wall {
+                self.to_next[e] = 0.0;
+            } else {
+                below += usize::from(pivot < 0.0);
+                self.to_next[e] = direct / pivot;
+                next -= direct * self.to_next[e];
+            }
+            if let Some(k) = kept {
+                below -= usize::from(lambda[k] < shift);
+                let (left, mut right) = (chain.to_left[e * modes + k], chain.to_right[e * modes + k]);
+                let mut own = lambda[k] - shift;
+                self.to_kept[e] = 0.0;
+                if !inner_wall {
+                    self.to_kept[e] = left / pivot;
+                    own -= left * self.to_kept[e];
+                    right -= direct * self.to_kept[e];
+                }
+                let own = guarded(own, chain.alpha[e]);
+                below += usize::from(own < 0.0);
+                self.kept_pivot[e] = own;
+                self.from_kept[e] = right / own;
+                next -= right * self.from_kept[e];
+            }
+            carried = next;
+        }
+        self.norm_face[elements] = norm;
+        self.below = below;
+    }
+
+    /// M x.
+    pub fn norm(&self, x: &Reduced, image: &mut Reduced) {
+        let elements = self.kept.len();
+        image.face.resize(elements + 1, 0.0);
+        image.own.resize(elements, 0.0);
+        let mut from_left = 0.0;
+        for e in 0..elements {
+            image.face[e] = from_left + self.norm_face[e] * x.face[e] + self.norm_next[e] * x.face[e + 1];
+            from_left = self.norm_next[e] * x.face[e];
+            image.own[e] = if self.kept[e].is_some() { x.own[e] } else { 0.0 };
+        }
+        image.face[0] = 0.0;
+        image.face[elements] = 0.0;
+    }
+
+    /// Solves T y = x in place.
+    pub fn solve(&self, x: &mut Reduced) {
+        let elements = self.kept.len();
+        for e in 0..elements {
+            let from = x.face[e];
+            x.face[e + 1] -= self.to_next[e] * from;
+            if self.kept[e].is_some() {
+                x.own[e] -= self.to_kept[e] * from;
+                x.face[e + 1] -= self.from_kept[e] * x.own[e];
+            }
+        }
+        x.face[elements] = 0.0;
+        for e in (0..elements).rev() {
+            let next = x.face[e + 1];
+            let mut taken = self.to_next[e] * next;
+            if self.kept[e].is_some() {
+                x.own[e] = x.own[e] / self.kept_pivot[e] - self.from_kept[e] * next;
+                taken += self.to_kept[e] * x.own[e];
+            }
+            x.face[e] = if e == 0 { 0.0 } else { x.face[e] / self.pivot[e] - taken };
+        }
+    }
+
+    /// Gives modes that were not kept before the amounts that follow from the interface values.
+    pub fn take_over(&self, condensed: &Condensed, before: &[Option<usize>], x: &mut Reduced) {
+        let (chain, modes) = (condensed.chain, condensed.chain.modes);
+        for (e, kept) in self.kept.iter().enumerate() {
+            if let Some(k) = kept.filter(|_| before.get(e) != Some(kept)) {
+                let at = e * modes + k;
+                let pull = chain.to_left[at] * x.face[e] + chain.to_right[at] * x.face[e + 1];
+                x.own[e] = -pull / guarded(chain.lambda[at] - self.shift, chain.lambda[at]);
+            }
+        }
+    }
+
+    /// Which modes are kept.
+    pub fn kept(&self) -> &[Option<usize>] {
+        &self.kept
+    }
+
+    /// The whole normalised vector of the chain: modes follow the interface values at `energy`.
+    pub fn whole(&self, condensed: &Condensed, x: &Reduced, energy: f64) -> Vec<f64> {
+        let (chain, modes) = (condensed.chain, condensed.chain.modes);
+        let mut vector = x.face.clone();
+        vector.reserve(chain.lambda.len());
+        for (e, kept) in self.kept.iter().enumerate() {
+            let (left, right) = (x.face[e], x.face[e + 1]);
+            let range = e * modes..(e + 1) * modes;
+            let couplings = chain.to_left[range.clone()].iter().zip(&chain.to_right[range.clone()]);
+            vector.extend(
+                couplings
+                    .zip(&chain.lambda[range])
+                    .map(|((to_left, to_right), value)| (to_left * left + to_right * right) / (energy - value)),
+            );
+            if let Some(k) = kept {
+                vector[x.face.len() + e * modes + k] = x.own[e];
+            }
+        }
+        let scale = 1.0 / super::chain::dot(&vector, &vector).sqrt();
+        vector.iter_mut().for_each(|v| *v *= scale);
+        vector
+    }
+}
+
+/// x · y over interface values and kept modes (a mode that is not kept must be zero in one of them).
+pub(super) fn product(x: &Reduced, y: &Reduced) -> f64 {
+    super::chain::dot(&x.face, &y.face) + super::chain::dot(&x.own, &y.own)
+}
+
+/// x times a number.
+pub(super) fn scale(x: &mut Reduced, by: f64) {
+    x.face.iter_mut().chain(&mut x.own).for_each(|v| *v *= by);
+}
