@@ -8,8 +8,13 @@
 //! operations per mesh point. All coordinates are orthonormal: interface value × √mass, and modes.
 
 use super::RadialError;
+use super::parallel::{WORTH_A_THREAD, side_by_side};
 use super::reference_element::ReferenceElement;
 use super::small_eigen::{diagonalise, overlaps};
+use super::solve::DEGREE;
+
+/// Modes of an element of a chain that has vectors: the machine knows the length of the innermost loops.
+pub(super) const MODES: usize = DEGREE - 1;
 
 /// The mesh, the potential on it and the modes of every element.
 #[derive(Clone, Debug)]
@@ -36,6 +41,14 @@ pub(super) struct Chain {
     pub beta: Vec<f64>,
     /// Lumped mass in bohr at each boundary.
     pub mass: Vec<f64>,
+}
+
+/// Some elements of a chain to be filled in, from one on.
+struct Part<'a> {
+    from: usize,
+    vectors: &'a mut [f64],
+    lambda: &'a mut [f64],
+    pairs: &'a mut [[f64; 2]],
 }
 
 impl Chain {
@@ -65,12 +78,25 @@ impl Chain {
         earlier: Option<&Self>,
     ) -> Result<Self, RadialError> {
         let mut chain = Self::empty(boundaries, values, degree);
-        let elements = chain.elements();
-        chain.vectors = vec![0.0; elements * chain.modes * chain.modes];
-        let mut scratch = vec![0.0; 2 * chain.modes];
-        for e in 0..elements {
-            chain.modes_of(e, two_mu, earlier, &mut scratch)?;
+        let (elements, modes) = (chain.elements(), chain.modes);
+        let mut vectors = vec![0.0; elements * modes * modes];
+        let mut lambda = std::mem::take(&mut chain.lambda);
+        let mut pairs = vec![[0.0; 2]; elements * modes];
+        let cut = if elements < WORTH_A_THREAD { elements } else { elements / 2 };
+        let (low_vectors, high_vectors) = vectors.split_at_mut(cut * modes * modes);
+        let (low_lambda, high_lambda) = lambda.split_at_mut(cut * modes);
+        let (low_pairs, high_pairs) = pairs.split_at_mut(cut * modes);
+        let low = Part { from: 0, vectors: low_vectors, lambda: low_lambda, pairs: low_pairs };
+        let high = Part { from: cut, vectors: high_vectors, lambda: high_lambda, pairs: high_pairs };
+        if cut == elements {
+            chain.fill(low, two_mu, earlier)?;
+        } else {
+            let (low, high) =
+                side_by_side(|| chain.fill(low, two_mu, earlier), || chain.fill(high, two_mu, earlier));
+            low.and(high)?;
         }
+        (chain.vectors, chain.lambda) = (vectors, lambda);
+        (chain.to_left, chain.to_right) = pairs.into_iter().map(|[left, right]| (left, right)).unzip();
         chain.join(two_mu);
         Ok(chain)
     }
@@ -162,39 +188,34 @@ impl Chain {
         }
     }
 
-    /// Modes of element `e`, and their couplings without the factors that [`Chain::join`] gives them.
-    fn modes_of(
-        &mut self,
-        e: usize,
-        two_mu: f64,
-        earlier: Option<&Self>,
-        scratch: &mut [f64],
-    ) -> Result<(), RadialError> {
+    /// Modes of a part of the elements, and their couplings without the factors that [`Chain::join`] gives them.
+    fn fill(&self, part: Part, two_mu: f64, earlier: Option<&Self>) -> Result<(), RadialError> {
         let modes = self.modes;
-        let (blocks, range) = (e * modes * modes..(e + 1) * modes * modes, e * modes..(e + 1) * modes);
-        let known = earlier.and_then(|chain| Some((chain, chain.same_element(self, e)?)));
-        if let Some((chain, k)) = known {
-            let other = &chain.vectors[k * modes * modes..(k + 1) * modes * modes];
-            self.vectors[blocks.clone()].copy_from_slice(other);
-            self.lambda[range].copy_from_slice(&chain.lambda[k * modes..(k + 1) * modes]);
-        } else {
-            let mut block = std::mem::take(&mut self.vectors);
-            self.fill_block(e, two_mu, &mut block[blocks.clone()]);
-            let converged =
-                diagonalise(&mut block[blocks.clone()], &mut self.lambda[range], scratch, modes);
-            self.vectors = block;
-            if !converged {
-                return Err(RadialError::NoConvergence { r_bohr: self.boundaries[e] });
+        let mut scratch = vec![0.0; 2 * modes];
+        let elements = part
+            .vectors
+            .chunks_exact_mut(modes * modes)
+            .zip(part.lambda.chunks_exact_mut(modes))
+            .zip(part.pairs.chunks_exact_mut(modes));
+        for (e, ((block, lambda), pairs)) in (part.from..).zip(elements) {
+            let known = earlier.and_then(|chain| Some((chain, chain.same_element(self, e)?)));
+            if let Some((chain, k)) = known {
+                block.copy_from_slice(&chain.vectors[k * modes * modes..(k + 1) * modes * modes]);
+                lambda.copy_from_slice(&chain.lambda[k * modes..(k + 1) * modes]);
+            } else {
+                self.fill_block(e, two_mu, block);
+                if !diagonalise(block, lambda, &mut scratch, modes) {
+                    return Err(RadialError::NoConvergence { r_bohr: self.boundaries[e] });
+                }
             }
-        }
-        for (k, row) in self.vectors[blocks].chunks_exact(modes).enumerate() {
-            let (mut left, mut right) = (0.0, 0.0);
-            for (x, [to_left, to_right]) in row.iter().zip(&self.reference.to_ends) {
-                left += x * to_left;
-                right += x * to_right;
+            for (pair, row) in pairs.iter_mut().zip(block.chunks_exact(modes)) {
+                let (mut left, mut right) = (0.0, 0.0);
+                for (x, [to_left, to_right]) in row.iter().zip(&self.reference.to_ends) {
+                    left += x * to_left;
+                    right += x * to_right;
+                }
+                *pair = [left, right];
             }
-            self.to_left[e * modes + k] = left;
-            self.to_right[e * modes + k] = right;
         }
         Ok(())
     }
@@ -222,20 +243,28 @@ impl Chain {
         }
     }
 
+    /// The modes of every element, one a row.
+    fn rows(&self) -> &[[[f64; MODES]; MODES]] {
+        self.vectors.as_chunks::<MODES>().0.as_chunks::<MODES>().0
+    }
+
     /// ψ at the mesh points (elements × p + 1) of a vector of this basis.
     pub fn to_nodes(&self, vector: &[f64], psi: &mut [f64]) {
-        let (p, modes) = (self.reference.degree, self.modes);
+        let p = MODES + 1;
         let (face, mode) = vector.split_at(self.alpha.len());
-        for e in 0..self.elements() {
-            let half = self.element(e).1;
+        let elements = self.rows().iter().zip(mode.as_chunks::<MODES>().0);
+        for (e, (rows, amounts)) in elements.enumerate() {
+            let mut inside = [0.0; MODES];
+            for (row, amount) in rows.iter().zip(amounts) {
+                for (x, q) in inside.iter_mut().zip(row) {
+                    *x += amount * q;
+                }
+            }
+            let scale = 1.0 / self.element(e).1.sqrt();
             psi[e * p] = face[e] / self.mass[e].sqrt();
-            let inside = &mut psi[e * p + 1..(e + 1) * p];
-            inside.fill(0.0);
-            let rows = &self.vectors[e * modes * modes..(e + 1) * modes * modes];
-            add_rows(rows, &mode[e * modes..(e + 1) * modes], inside);
-            let scale = 1.0 / half.sqrt();
-            for (x, w) in inside.iter_mut().zip(&self.reference.inverse_root_weights[1..p]) {
-                *x *= w * scale;
+            let weights = &self.reference.inverse_root_weights[1..p];
+            for ((value, x), w) in psi[e * p + 1..(e + 1) * p].iter_mut().zip(&inside).zip(weights) {
+                *value = x * w * scale;
             }
         }
         let end = self.elements();
@@ -244,45 +273,51 @@ impl Chain {
 
     /// The vector of this basis of a function given at the mesh points; its values at the walls are dropped.
     pub fn to_basis(&self, psi: &[f64], vector: &mut [f64]) {
-        let (p, modes) = (self.reference.degree, self.modes);
+        let p = MODES + 1;
         let faces = self.alpha.len();
         let (face, mode) = vector.split_at_mut(faces);
-        let mut inside = vec![0.0; modes];
-        for e in 0..self.elements() {
+        let elements = self.rows().iter().zip(mode.as_chunks_mut::<MODES>().0);
+        for (e, (rows, amounts)) in elements.enumerate() {
             let scale = self.element(e).1.sqrt();
             face[e] = psi[e * p] * self.mass[e].sqrt();
+            let mut inside = [0.0; MODES];
             let values = psi[e * p + 1..(e + 1) * p].iter().zip(&self.reference.root_weights[1..p]);
             for (x, (value, root)) in inside.iter_mut().zip(values) {
                 *x = value * root * scale;
             }
-            let rows = self.vectors[e * modes * modes..(e + 1) * modes * modes].chunks_exact(modes);
-            for (row, amount) in rows.zip(&mut mode[e * modes..(e + 1) * modes]) {
-                *amount = dot(row, &inside);
+            for (row, amount) in rows.iter().zip(amounts) {
+                *amount = short_dot(row, &inside);
             }
         }
         face[0] = 0.0;
         face[faces - 1] = 0.0;
     }
 
+    /// λ and the couplings to the left and to the right of element `e`.
+    pub fn modes_at(&self, e: usize) -> (&[f64; MODES], &[f64; MODES], &[f64; MODES]) {
+        (
+            &self.lambda.as_chunks::<MODES>().0[e],
+            &self.to_left.as_chunks::<MODES>().0[e],
+            &self.to_right.as_chunks::<MODES>().0[e],
+        )
+    }
+
     /// (H − `shift`) x.
     pub fn apply(&self, x: &[f64], shift: f64, image: &mut [f64]) {
-        let modes = self.modes;
         let (face, mode) = x.split_at(self.alpha.len());
         let (face_image, mode_image) = image.split_at_mut(self.alpha.len());
         for ((y, x), alpha) in face_image.iter_mut().zip(face).zip(&self.alpha) {
             *y = (alpha - shift) * x;
         }
-        for e in 0..self.elements() {
+        let inside = mode.as_chunks::<MODES>().0.iter().zip(mode_image.as_chunks_mut::<MODES>().0);
+        for (e, (mode, mode_image)) in inside.enumerate() {
             let (from, to) = (face[e], face[e + 1]);
-            let (mut left, mut right) = (self.beta[e] * to, self.beta[e] * from);
-            for k in e * modes..(e + 1) * modes {
-                left += self.to_left[k] * mode[k];
-                right += self.to_right[k] * mode[k];
-                mode_image[k] =
-                    (self.lambda[k] - shift) * mode[k] + self.to_left[k] * from + self.to_right[k] * to;
+            let (lambda, to_left, to_right) = self.modes_at(e);
+            for k in 0..MODES {
+                mode_image[k] = (lambda[k] - shift) * mode[k] + to_left[k] * from + to_right[k] * to;
             }
-            face_image[e] += left;
-            face_image[e + 1] += right;
+            face_image[e] += self.beta[e] * to + short_dot(to_left, mode);
+            face_image[e + 1] += self.beta[e] * from + short_dot(to_right, mode);
         }
         face_image[0] = 0.0;
         face_image[face.len() - 1] = 0.0;
@@ -318,26 +353,20 @@ impl Chain {
     }
 }
 
-/// Adds to `sum` the rows of a matrix, each by its amount; three rows at a time, so that the sums are loaded less often.
-fn add_rows(rows: &[f64], amounts: &[f64], sum: &mut [f64]) {
-    let n = sum.len();
-    let (three, rest) = amounts.as_chunks::<3>();
-    for (block, [a, b, c]) in rows.chunks_exact(3 * n).zip(three) {
-        let (first, others) = block.split_at(n);
-        let (second, third) = others.split_at(n);
-        for (((x, p), q), r) in sum.iter_mut().zip(first).zip(second).zip(third) {
-            *x += a * p + b * q + c * r;
+/// Σ a b over the modes of one element, in two independent sums.
+pub(super) fn short_dot(a: &[f64; MODES], b: &[f64; MODES]) -> f64 {
+    let mut sums = [0.0; 2];
+    for k in 0..MODES / 2 {
+        for lane in 0..2 {
+            sums[lane] += a[2 * k + lane] * b[2 * k + lane];
         }
     }
-    for (row, amount) in rows.chunks_exact(n).skip(3 * three.len()).zip(rest) {
-        for (x, p) in sum.iter_mut().zip(row) {
-            *x += amount * p;
-        }
-    }
+    let last = if MODES % 2 == 1 { a[MODES - 1] * b[MODES - 1] } else { 0.0 };
+    sums[0] + sums[1] + last
 }
 
 /// Σ a b in four independent sums, in an order that does not depend on the machine.
-pub(super) fn dot(a: &[f64], b: &[f64]) -> f64 {
+pub(crate) fn dot(a: &[f64], b: &[f64]) -> f64 {
     let mut sums = [0.0; 4];
     let (a4, b4) = (a.chunks_exact(4), b.chunks_exact(4));
     let rest: f64 = a4.remainder().iter().zip(b4.remainder()).map(|(x, y)| x * y).sum();
@@ -382,7 +411,7 @@ pub(super) fn guarded(pivot: f64, scale: f64) -> f64 {
 impl Factors {
     /// Factorises H − `shift` and counts the levels below `shift`.
     pub fn factorise(&mut self, chain: &Chain, shift: f64) {
-        let (elements, modes) = (chain.elements(), chain.modes);
+        let elements = chain.elements();
         self.shift = shift;
         self.inverse.resize(chain.lambda.len(), 0.0);
         self.kept.resize(elements, None);
@@ -395,33 +424,28 @@ impl Factors {
         // Pivot being collected at the left interface of the element; none at the inner wall.
         let mut carried = 0.0;
         for e in 0..elements {
-            let range = e * modes..(e + 1) * modes;
-            let lambda = &chain.lambda[range.clone()];
-            let to_left = &chain.to_left[range.clone()];
-            let to_right = &chain.to_right[range.clone()];
-            let inverse = &mut self.inverse[range];
-            let under = lambda.partition_point(|&value| value < shift);
+            let (lambda, to_left, to_right) = chain.modes_at(e);
+            let inverse = &mut self.inverse.as_chunks_mut::<MODES>().0[e];
+            let under = lambda.iter().filter(|&&value| value < shift).count();
             let kept = nearest_mode(lambda, under, shift);
-            let (mut ll, mut lr, mut rr) = (0.0, 0.0, 0.0);
-            for (((inv, &value), &cl), &cr) in inverse.iter_mut().zip(lambda).zip(to_left).zip(to_right) {
-                let d = 1.0 / (value - shift);
-                *inv = d;
-                ll += cl * cl * d;
-                lr += cl * cr * d;
-                rr += cr * cr * d;
+            for (inv, &value) in inverse.iter_mut().zip(lambda) {
+                *inv = 1.0 / (value - shift);
             }
             below += under;
             if let Some(k) = kept {
-                // Summed again without it: subtracting a huge term would lose the digits it is kept for.
+                // Left out of the sums from the beginning: subtracting a huge term would lose the digits it is kept for.
                 inverse[k] = 0.0;
-                (ll, lr, rr) = (0.0, 0.0, 0.0);
-                for ((inv, &cl), &cr) in inverse.iter().zip(to_left).zip(to_right) {
-                    ll += cl * cl * inv;
-                    lr += cl * cr * inv;
-                    rr += cr * cr * inv;
-                }
                 below -= usize::from(k < under);
             }
+            let mut share = [0.0; MODES];
+            for k in 0..MODES {
+                share[k] = to_left[k] * inverse[k];
+            }
+            let (ll, lr) = (short_dot(&share, to_left), short_dot(&share, to_right));
+            for k in 0..MODES {
+                share[k] = to_right[k] * inverse[k];
+            }
+            let rr = short_dot(&share, to_right);
             self.kept[e] = kept;
             let direct = chain.beta[e] - lr;
             let mut next = chain.alpha[e + 1] - shift - rr;
@@ -463,18 +487,13 @@ impl Factors {
         face[0] = 0.0;
         face[elements] = 0.0;
         for e in 0..elements {
-            let range = e * modes..(e + 1) * modes;
-            let (mut left, mut right) = (0.0, 0.0);
-            for (((value, inv), cl), cr) in mode[range.clone()]
-                .iter()
-                .zip(&self.inverse[range.clone()])
-                .zip(&chain.to_left[range.clone()])
-                .zip(&chain.to_right[range])
-            {
-                let y = value * inv;
-                left += cl * y;
-                right += cr * y;
+            let (_, to_left, to_right) = chain.modes_at(e);
+            let (inside, inverse) = (&mode.as_chunks::<MODES>().0[e], &self.inverse.as_chunks::<MODES>().0[e]);
+            let mut share = [0.0; MODES];
+            for k in 0..MODES {
+                share[k] = inside[k] * inverse[k];
             }
+            let (left, right) = (short_dot(&share, to_left), short_dot(&share, to_right));
             face[e] -= left;
             face[e + 1] -= right;
             if e == 0 {
@@ -501,14 +520,11 @@ impl Factors {
                 face[e] / self.pivot[e] - self.to_next[e] * next - self.to_kept_if(e) * own
             };
             face[e] = from;
-            let range = e * modes..(e + 1) * modes;
-            for (((value, inv), cl), cr) in mode[range.clone()]
-                .iter_mut()
-                .zip(&self.inverse[range.clone()])
-                .zip(&chain.to_left[range.clone()])
-                .zip(&chain.to_right[range])
-            {
-                *value = (*value - cl * from - cr * next) * inv;
+            let (_, to_left, to_right) = chain.modes_at(e);
+            let (inside, inverse) =
+                (&mut mode.as_chunks_mut::<MODES>().0[e], &self.inverse.as_chunks::<MODES>().0[e]);
+            for k in 0..MODES {
+                inside[k] = (inside[k] - to_left[k] * from - to_right[k] * next) * inverse[k];
             }
             if let Some(k) = self.kept[e] {
                 mode[e * modes + k] = own;
@@ -527,7 +543,7 @@ pub(super) fn close_to_mode(lambda: &[f64], shift: f64) -> Option<usize> {
 }
 
 /// The mode so close to the shift that eliminating it first would cost digits.
-fn nearest_mode(lambda: &[f64], under: usize, shift: f64) -> Option<usize> {
+pub(super) fn nearest_mode(lambda: &[f64], under: usize, shift: f64) -> Option<usize> {
     let spacing = if lambda.len() > 1 { lambda[1] - lambda[0] } else { lambda[0].abs() };
     let near = |k: usize| (lambda[k] - shift).abs() < 0.01 * spacing;
     if under < lambda.len() && near(under) {

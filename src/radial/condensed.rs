@@ -5,17 +5,20 @@
 //! of the whole vector is s + yᵀ M x / yᵀ M y; a round costs one division and six sums a mode and keeps no vector of the
 //! length of the mesh. A mode so close to s that eliminating it would cost digits is kept beside the interface values.
 
-use super::chain::{Chain, close_to_mode, guarded};
+use super::chain::{Chain, MODES, guarded, nearest_mode};
+
+/// Pairs of modes an element.
+const LANES: usize = MODES.div_ceil(2);
+
+/// λ and the products of the couplings left·left, left·right, right·right of an element's modes.
+type Packed = [[[f64; 2]; LANES]; 4];
 
 /// What the elimination needs of every mode, in lanes of two.
 #[derive(Debug)]
 pub(super) struct Condensed<'a> {
     chain: &'a Chain,
-    /// Pairs of modes an element.
-    lanes: usize,
-    /// λ and the products of the couplings left·left, left·right, right·right; padded with a mode at infinity that is
-    /// coupled to nothing.
-    modes: Vec<[[f64; 2]; 4]>,
+    /// By the element; padded with a mode at infinity that is coupled to nothing.
+    modes: Vec<Packed>,
 }
 
 /// Sums over the modes of one element: Schur complement and norm, each left-left, left-right, right-right.
@@ -27,40 +30,45 @@ struct Sums {
 
 impl<'a> Condensed<'a> {
     pub fn new(chain: &'a Chain) -> Self {
-        let lanes = chain.modes.div_ceil(2);
-        let mut modes = vec![[[f64::INFINITY; 2], [0.0; 2], [0.0; 2], [0.0; 2]]; lanes * chain.elements()];
-        for e in 0..chain.elements() {
-            for k in 0..chain.modes {
-                let (at, mode) = (e * chain.modes + k, &mut modes[e * lanes + k / 2]);
-                let (left, right) = (chain.to_left[at], chain.to_right[at]);
-                for (row, value) in
-                    mode.iter_mut().zip([chain.lambda[at], left * left, left * right, right * right])
-                {
-                    row[k % 2] = value;
+        let nothing = [[0.0; 2]; LANES];
+        let packed = |e: usize| {
+            let mut packed = [[[f64::INFINITY; 2]; LANES], nothing, nothing, nothing];
+            let (lambda, to_left, to_right) = chain.modes_at(e);
+            for k in 0..MODES {
+                let (left, right) = (to_left[k], to_right[k]);
+                for (row, value) in packed.iter_mut().zip([lambda[k], left * left, left * right, right * right]) {
+                    row[k / 2][k % 2] = value;
                 }
             }
-        }
-        Self { chain, lanes, modes }
+            packed
+        };
+        Self { chain, modes: (0..chain.elements()).map(packed).collect() }
     }
 
     /// Sums over the modes of element `e`, one of them left out.
     fn sums(&self, e: usize, shift: f64, without: Option<usize>) -> Sums {
-        let mut complement = [[0.0; 2]; 3];
-        let mut norm = [[0.0; 2]; 3];
-        for (pair, mode) in self.modes[e * self.lanes..(e + 1) * self.lanes].iter().enumerate() {
-            let mut inverse = [1.0 / (mode[0][0] - shift), 1.0 / (mode[0][1] - shift)];
-            if let Some(k) = without.filter(|k| k / 2 == pair) {
-                inverse[k % 2] = 0.0;
-            }
-            for c in 0..3 {
+        let [lambda, products @ ..] = &self.modes[e];
+        let mut inverse = [[0.0; 2]; LANES];
+        for (inverse, lambda) in inverse.iter_mut().zip(lambda) {
+            *inverse = [1.0 / (lambda[0] - shift), 1.0 / (lambda[1] - shift)];
+        }
+        if let Some(k) = without {
+            inverse[k / 2][k % 2] = 0.0;
+        }
+        let mut sums = Sums { complement: [0.0; 3], norm: [0.0; 3] };
+        for (c, product) in products.iter().enumerate() {
+            let (mut complement, mut norm) = ([0.0; 2], [0.0; 2]);
+            for pair in 0..LANES {
                 for lane in 0..2 {
-                    let share = mode[c + 1][lane] * inverse[lane];
-                    complement[c][lane] += share;
-                    norm[c][lane] += share * inverse[lane];
+                    let share = product[pair][lane] * inverse[pair][lane];
+                    complement[lane] += share;
+                    norm[lane] += share * inverse[pair][lane];
                 }
             }
+            sums.complement[c] = complement[0] + complement[1];
+            sums.norm[c] = norm[0] + norm[1];
         }
-        Sums { complement: complement.map(|s| s[0] + s[1]), norm: norm.map(|s| s[0] + s[1]) }
+        sums
     }
 }
 
@@ -106,7 +114,7 @@ impl ReducedFactors {
     /// Factorises T(`shift`) and counts the levels below `shift`.
     pub fn factorise(&mut self, condensed: &Condensed, shift: f64) {
         let chain = condensed.chain;
-        let (elements, modes) = (chain.elements(), chain.modes);
+        let elements = chain.elements();
         self.shift = shift;
         self.kept.resize(elements, None);
         for list in [
@@ -123,9 +131,10 @@ impl ReducedFactors {
         let mut below = 0;
         let (mut carried, mut norm) = (0.0, 1.0);
         for e in 0..elements {
-            let lambda = &chain.lambda[e * modes..(e + 1) * modes];
-            below += lambda.iter().filter(|&&value| value < shift).count();
-            let kept = close_to_mode(lambda, shift);
+            let (lambda, to_left, to_right) = chain.modes_at(e);
+            let under = lambda.iter().filter(|&&value| value < shift).count();
+            below += under;
+            let kept = nearest_mode(lambda, under, shift);
             let Sums { complement: [ll, lr, rr], norm: norms } = condensed.sums(e, shift, kept);
             self.kept[e] = kept;
             self.norm_face[e] = norm + norms[0];
@@ -144,8 +153,8 @@ impl ReducedFactors {
                 next -= direct * self.to_next[e];
             }
             if let Some(k) = kept {
-                below -= usize::from(lambda[k] < shift);
-                let (left, mut right) = (chain.to_left[e * modes + k], chain.to_right[e * modes + k]);
+                below -= usize::from(k < under);
+                let (left, mut right) = (to_left[k], to_right[k]);
                 let mut own = lambda[k] - shift;
                 self.to_kept[e] = 0.0;
                 if !inner_wall {
@@ -205,10 +214,10 @@ impl ReducedFactors {
 
     /// Gives modes that were not kept before the amounts that follow from the interface values.
     pub fn take_over(&self, condensed: &Condensed, before: &[Option<usize>], x: &mut Reduced) {
-        let (chain, modes) = (condensed.chain, condensed.chain.modes);
+        let chain = condensed.chain;
         for (e, kept) in self.kept.iter().enumerate() {
             if let Some(k) = kept.filter(|_| before.get(e) != Some(kept)) {
-                let at = e * modes + k;
+                let at = e * MODES + k;
                 let pull = chain.to_left[at] * x.face[e] + chain.to_right[at] * x.face[e + 1];
                 x.own[e] = -pull / guarded(chain.lambda[at] - self.shift, chain.lambda[at]);
             }
@@ -222,20 +231,19 @@ impl ReducedFactors {
 
     /// The whole normalised vector of the chain: modes follow the interface values at `energy`.
     pub fn whole(&self, condensed: &Condensed, x: &Reduced, energy: f64) -> Vec<f64> {
-        let (chain, modes) = (condensed.chain, condensed.chain.modes);
+        let chain = condensed.chain;
         let mut vector = x.face.clone();
         vector.reserve(chain.lambda.len());
         for (e, kept) in self.kept.iter().enumerate() {
             let (left, right) = (x.face[e], x.face[e + 1]);
-            let range = e * modes..(e + 1) * modes;
-            let couplings = chain.to_left[range.clone()].iter().zip(&chain.to_right[range.clone()]);
-            vector.extend(
-                couplings
-                    .zip(&chain.lambda[range])
-                    .map(|((to_left, to_right), value)| (to_left * left + to_right * right) / (energy - value)),
-            );
+            let (lambda, to_left, to_right) = chain.modes_at(e);
+            let mut inside = [0.0; MODES];
+            for k in 0..MODES {
+                inside[k] = (to_left[k] * left + to_right[k] * right) / (energy - lambda[k]);
+            }
+            vector.extend_from_slice(&inside);
             if let Some(k) = kept {
-                vector[x.face.len() + e * modes + k] = x.own[e];
+                vector[x.face.len() + e * MODES + k] = x.own[e];
             }
         }
         let scale = 1.0 / super::chain::dot(&vector, &vector).sqrt();

@@ -19,6 +19,7 @@ mod solve;
 mod tests;
 mod wavefunction;
 
+pub(crate) use chain::dot;
 pub use distortion::Distortion;
 pub use observables::{Observables, turning_points_bohr};
 pub(crate) use parallel::in_halves;

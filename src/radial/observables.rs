@@ -1,5 +1,6 @@
 //! What is reported of one level: turning points, probabilities, averages, B_v.
 
+use super::chain::dot;
 use super::parallel::{WORTH_A_THREAD, in_halves};
 use super::{Inner, Solution};
 use crate::potential::Potential;
@@ -36,18 +37,50 @@ pub struct Observables {
     pub forbidden_probability: f64,
 }
 
+/// What is the same for all levels, at the points of the mesh.
+struct OnMesh {
+    /// Effective potential in hartree.
+    effective_hartree: Vec<f64>,
+    /// 1/(2μr²), r, r², (r − r_e)²; zero at the walls, where ψ is.
+    functions: [Vec<f64>; 4],
+}
+
+impl OnMesh {
+    fn new(inner: &Inner, r_bohr: &[f64], r_e: f64) -> Self {
+        let chain = &inner.problem.chain;
+        let (two_mu, n) = (inner.problem.demand.two_mu, chain.reference.degree + 1);
+        let mut effective_hartree = Vec::with_capacity(r_bohr.len());
+        for element in chain.potential.chunks_exact(n) {
+            effective_hartree.extend_from_slice(&element[..n - 1]);
+        }
+        effective_hartree.extend(chain.potential.last());
+        let last = r_bohr.len() - 1;
+        let on_points = |f: &dyn Fn(f64) -> f64| -> Vec<f64> {
+            let inside = |i: usize| i > 0 && i < last;
+            r_bohr.iter().enumerate().map(|(i, &r)| if inside(i) { f(r) } else { 0.0 }).collect()
+        };
+        let functions = [
+            on_points(&|r| 1.0 / (two_mu * r * r)),
+            on_points(&|r| r),
+            on_points(&|r| r * r),
+            on_points(&|r| (r - r_e) * (r - r_e)),
+        ];
+        Self { effective_hartree, functions }
+    }
+}
+
 /// All bond lengths (bohr, ascending) where `effective` crosses `energy_hartree` between neighbouring points of
 /// `r_bohr` (the two walls left out), with `effective_hartree` its values there.
 fn crossings(
     effective: &dyn Fn(f64) -> f64,
     energy_hartree: f64,
     r_bohr: &[f64],
-    effective_hartree: &dyn Fn(usize) -> f64,
+    effective_hartree: &[f64],
 ) -> Vec<f64> {
     let mut found = Vec::new();
-    let mut last = effective_hartree(1) - energy_hartree;
+    let mut last = effective_hartree[1] - energy_hartree;
     for i in 2..r_bohr.len() - 1 {
-        let now = effective_hartree(i) - energy_hartree;
+        let now = effective_hartree[i] - energy_hartree;
         if (last > 0.0) != (now > 0.0) {
             let (a, b) = (r_bohr[i - 1], r_bohr[i]);
             found.push(root(&|r| effective(r) - energy_hartree, a, b, last, now));
@@ -137,9 +170,15 @@ impl Solution {
         let Some(inner) = &self.inner else {
             return Vec::new();
         };
+        let Some(first) = self.states.first() else {
+            return Vec::new();
+        };
+        let mesh = OnMesh::new(inner, &first.wavefunction.r_bohr, r_e_bohr);
         let all: Vec<usize> = (0..self.states.len()).collect();
         in_halves(&all, WORTH_A_THREAD, |part| {
-            part.iter().map(|&v| self.observables_of(inner, potential, v, (r_e_bohr, v_e_hartree))).collect()
+            part.iter()
+                .map(|&v| self.observables_of(inner, potential, v, (&mesh, v_e_hartree)))
+                .collect()
         })
     }
 
@@ -148,7 +187,7 @@ impl Solution {
         inner: &Inner,
         potential: &dyn Potential,
         v: usize,
-        (r_e, v_e): (f64, f64),
+        (mesh, v_e): (&OnMesh, f64),
     ) -> Observables {
         let state = &self.states[v];
         let psi = &state.wavefunction;
@@ -156,27 +195,23 @@ impl Solution {
         let (two_mu, x) = (demand.two_mu, demand.rotation_x);
         let effective =
             |r: f64| potential.energy_hartree(r) + if x == 0.0 { 0.0 } else { x / (two_mu * r * r) };
-        let (p, on_elements) = (psi.degree, &inner.problem.chain.potential);
         let last = psi.r_bohr.len() - 1;
-        let at_point = |i: usize| {
-            let e = (i / p).min(last / p - 1);
-            on_elements[e * (p + 1) + (i - e * p)]
-        };
         let energy = state.energy_hartree;
-        let turning = crossings(&effective, energy, &psi.r_bohr, &at_point);
+        let turning = crossings(&effective, energy, &psi.r_bohr, &mesh.effective_hartree);
         let (from, to) = (psi.r_bohr[0], psi.r_bohr[last]);
         // A wall inside the allowed region takes the place of the turning point.
-        let inner_end = if at_point(1) > energy { turning.first().copied().unwrap_or(to) } else { from };
+        let inner_end = if mesh.effective_hartree[1] > energy { turning.first().copied().unwrap_or(to) } else { from };
         let outer_end =
-            if at_point(last - 1) > energy { turning.last().copied().unwrap_or(from) } else { to };
+            if mesh.effective_hartree[last - 1] > energy { turning.last().copied().unwrap_or(from) } else { to };
         let forbidden_inner = psi.probability(from, inner_end);
         let forbidden_outer = psi.probability(outer_end, to);
         let between: Vec<f64> =
             turning.iter().copied().filter(|r| *r > inner_end && *r < outer_end).collect();
         let barriers: f64 = between.chunks_exact(2).map(|pair| psi.probability(pair[0], pair[1])).sum();
         let limit = potential.limit_hartree();
+        let density = psi.weighted_density();
         let [inverse_square, mean_r, mean_square_r, mean_square_x] =
-            psi.expectations(|r| [1.0 / (two_mu * r * r), r, r * r, (r - r_e) * (r - r_e)]);
+            mesh.functions.each_ref().map(|f| dot(&density, f));
         Observables {
             v: state.v,
             energy_per_cm: to_per_cm(energy - v_e),

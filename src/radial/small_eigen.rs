@@ -3,6 +3,8 @@
 //! (1968)), with the eigenvectors kept as rows so that every rotation runs over contiguous memory.
 //! Where only the overlaps of the eigenvectors with a few vectors are needed, those are carried along instead.
 
+use super::chain::MODES;
+
 /// Diagonalises the symmetric `matrix` (row-major, n × n, both triangles filled).
 ///
 /// On return row k of `matrix` is the eigenvector of `values[k]`, values ascending. `scratch` holds at
@@ -11,7 +13,12 @@ pub(super) fn diagonalise(matrix: &mut [f64], values: &mut [f64], scratch: &mut 
     let (off, column) = scratch.split_at_mut(n);
     reduce(matrix, values, off, column, n);
     accumulate(matrix, values, n);
-    ql(matrix, values, off, (n, n)) && {
+    // The machine knows the length of the usual rows.
+    let converged = match n {
+        MODES => ql::<MODES>(matrix, values, off, n, MODES),
+        _ => ql::<0>(matrix, values, off, n, n),
+    };
+    converged && {
         sort_rows(matrix, values, (n, n));
         true
     }
@@ -50,7 +57,7 @@ pub(super) fn overlaps(
     for (i, value) in values.iter_mut().enumerate() {
         *value = matrix[i * n + i];
     }
-    ql(pairs, values, off, (n, 2)) && {
+    ql::<2>(pairs, values, off, n, 2) && {
         sort_rows(pairs, values, (n, 2));
         true
     }
@@ -131,7 +138,10 @@ fn accumulate(a: &mut [f64], diagonal: &mut [f64], n: usize) {
 }
 
 /// The implicit QL iteration on the tridiagonal matrix; `z` has n rows of `width` numbers that are rotated along.
-fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], (n, width): (usize, usize)) -> bool {
+///
+/// `WIDTH`: `width` where it is known beforehand, else 0.
+fn ql<const WIDTH: usize>(z: &mut [f64], d: &mut [f64], e: &mut [f64], n: usize, width: usize) -> bool {
+    let width = if WIDTH > 0 { WIDTH } else { width };
     for i in 1..n {
         e[i - 1] = e[i];
     }
@@ -171,11 +181,7 @@ fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], (n, width): (usize, usize)) -
                 d[i + 1] = g + p;
                 g = c * r - b;
                 let (low, high) = z.split_at_mut((i + 1) * width);
-                for (x, y) in low[i * width..].iter_mut().zip(&mut high[..width]) {
-                    let f = *y;
-                    *y = s * *x + c * f;
-                    *x = c * *x - s * f;
-                }
+                rotate::<WIDTH>(&mut low[i * width..], &mut high[..width], c, s);
             }
             if underflow {
                 continue;
@@ -186,6 +192,20 @@ fn ql(z: &mut [f64], d: &mut [f64], e: &mut [f64], (n, width): (usize, usize)) -
         }
     }
     true
+}
+
+/// One rotation of two rows.
+#[inline(always)]
+fn rotate<const WIDTH: usize>(low: &mut [f64], high: &mut [f64], c: f64, s: f64) {
+    let turn = |(x, y): (&mut f64, &mut f64)| {
+        let f = *y;
+        *y = s * *x + c * f;
+        *x = c * *x - s * f;
+    };
+    match (low.first_chunk_mut::<WIDTH>(), high.first_chunk_mut::<WIDTH>()) {
+        (Some(low), Some(high)) if WIDTH > 0 => low.iter_mut().zip(high).for_each(turn),
+        _ => low.iter_mut().zip(high).for_each(turn),
+    }
 }
 
 /// Ascending values, rows along (selection sort: n is small).

@@ -45,19 +45,9 @@ impl Wavefunction {
             .sum()
     }
 
-    /// Several expectation values at once.
-    pub fn expectations<const N: usize>(&self, f: impl Fn(f64) -> [f64; N]) -> [f64; N] {
-        let mut sums = [0.0; N];
-        for ((&r, w), psi) in self.r_bohr.iter().zip(self.weight_bohr.iter()).zip(&self.psi) {
-            // ψ = 0 at the walls, where f need not be finite.
-            if *psi != 0.0 {
-                let density = w * psi * psi;
-                for (sum, value) in sums.iter_mut().zip(f(r)) {
-                    *sum += density * value;
-                }
-            }
-        }
-        sums
+    /// w ψ² at the mesh points: what an average sums over.
+    pub fn weighted_density(&self) -> Vec<f64> {
+        self.psi.iter().zip(self.weight_bohr.iter()).map(|(psi, w)| w * psi * psi).collect()
     }
 
     /// Probability between two bond lengths, ∫ψ² over the part of the mesh between them.

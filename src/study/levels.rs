@@ -6,7 +6,7 @@ use crate::findings::{Findings, FitFindings};
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{ScanCurve, Side};
 use crate::potential::{Family, Potential as _};
-use crate::radial::{self, BoundState, Level, Observables, RadialError, RadialRequest, Solution, Wavefunction};
+use crate::radial::{self, dot, BoundState, Level, Observables, RadialError, RadialRequest, Solution, Wavefunction};
 use crate::reach::Interval;
 use crate::settings::LevelSettings;
 use crate::units::{omega_e_per_cm, rotational_constant_per_cm, to_angstrom, to_per_cm};
@@ -101,13 +101,14 @@ pub fn judged(curve: &ScanCurve, question: &Question, states: Result<States, Rad
     };
     let tails = TailShifts::new(curve, &first.wavefunction, settings);
     let errors = Errors::new(curve, &first.wavefunction);
-    let spread = TailSpread::new(curve, question, states.iter().map(|s| (&s.wavefunction, s.energy_hartree)));
+    let densities: Vec<Vec<f64>> = states.iter().map(|s| s.wavefunction.weighted_density()).collect();
+    let spread = TailSpread::new(curve, question, &states, &densities);
     let omega_e = omega_e_per_cm(curve.local.second_hartree, question.mass_me);
     let rigid = rotational_constant_per_cm(r_e, question.mass_me) * question.request().rotation_x;
     let asymptote_per_cm = curve.asymptote_hartree().and_then(|_| curve.tail_depth_hartree()).map(to_per_cm);
     let mut leaning: Option<Leans> = None;
     let off_nodes: Vec<usize> = states.iter().filter(|s| s.nodes != s.v).map(|s| s.v).collect();
-    let levels = observed.iter().zip(states).map(|(seen, state)| {
+    let levels = observed.iter().zip(states).zip(&densities).map(|((seen, state), density)| {
         let psi = state.wavefunction;
         let (inner_outside, outer_outside) = outside(&psi, curve.scan_range_bohr);
         let outside_scan = (inner_outside + outer_outside).max(0.0);
@@ -116,14 +117,14 @@ pub fn judged(curve: &ScanCurve, question: &Question, states: Result<States, Rad
         let leans = Leans {
             inner: inner_outside > settings.lean_probability || wall_shift(Side::Inner),
             outer: outer_outside > settings.lean_probability
-                || tails.largest_per_cm(&psi) > settings.lean_shift_per_cm
+                || tails.largest_per_cm(density) > settings.lean_shift_per_cm
                 || wall_shift(Side::Outer),
         };
         let leans_on_tail = leans.inner || leans.outer || outside_scan > settings.lean_probability;
         if leans_on_tail {
             leaning.get_or_insert(leans);
         }
-        let mut parts = errors.of(&psi);
+        let mut parts = errors.of(density);
         parts.push((spread.error_per_cm(state.v), ErrorSource::Tail));
         parts.push((seen.numerical_error_per_cm, ErrorSource::Interpolation));
         // The tail alone says nothing about the part inside the scan.
@@ -317,15 +318,11 @@ impl TailShifts {
     }
 
     /// The largest shift of a level over the changes, in cm⁻¹.
-    fn largest_per_cm(&self, psi: &Wavefunction) -> f64 {
-        self.changes.iter().map(|change| to_per_cm(average(psi, change)).abs()).fold(0.0, f64::max)
+    fn largest_per_cm(&self, density: &[f64]) -> f64 {
+        self.changes.iter().map(|change| to_per_cm(dot(density, change)).abs()).fold(0.0, f64::max)
     }
 }
 
-/// Σ w ψ² f over the mesh.
-pub(super) fn average(psi: &Wavefunction, values: &[f64]) -> f64 {
-    psi.psi.iter().zip(psi.weight_bohr.iter()).zip(values).map(|((p, w), f)| w * p * p * f).sum()
-}
 
 /// What makes the error of a level inside the scan: the other interpolations, to first order, and the noise of the
 /// points.
@@ -364,14 +361,14 @@ impl Errors {
     }
 
     /// Interpolation (half the spread over the admissible ones, and the whole difference to the curve without points
-    /// found off it) and noise, in cm⁻¹; only what is known.
-    fn of(&self, psi: &Wavefunction) -> Vec<(f64, ErrorSource)> {
-        let shift = |change: &Vec<f64>| to_per_cm(average(psi, change));
+    /// found off it) and noise, in cm⁻¹; only what is known. `density`: w ψ² at the mesh points.
+    fn of(&self, density: &[f64]) -> Vec<(f64, ErrorSource)> {
+        let shift = |change: &Vec<f64>| to_per_cm(dot(density, change));
         let (low, high) =
             self.others.iter().map(shift).fold((0.0_f64, 0.0_f64), |(l, h), x| (l.min(x), h.max(x)));
         let spread = (!self.others.is_empty()).then_some(0.5 * (high - low));
         let doubt = self.without_doubtful.as_ref().map(shift);
-        let noise = self.noise_hartree.map(|sigma| to_per_cm(sigma * self.noise_weight(psi)));
+        let noise = self.noise_hartree.map(|sigma| to_per_cm(sigma * self.noise_weight(density)));
         let interpolation = spread.into_iter().chain(doubt).map(|e| (e.abs(), ErrorSource::Interpolation));
         interpolation.chain(noise.map(|e| (e, ErrorSource::Noise))).collect()
     }
@@ -379,15 +376,15 @@ impl Errors {
     /// sqrt(Σ_i g_i²) with g_i = ⟨ψ|h_i|ψ⟩ − h_i(r_e), h_i the hat function of point i: how the energy above
     /// V_e follows the points. Hats stand for the spline's own cardinal functions, which differ by oscillations that
     /// average out.
-    fn noise_weight(&self, psi: &Wavefunction) -> f64 {
+    fn noise_weight(&self, density: &[f64]) -> f64 {
         let Some((at_minimum, on_mesh)) = self.hats.split_last() else { return 0.0 };
         let mut g = vec![0.0; self.knots];
         let mut add = |&(i, t): &(usize, f64), amount: f64| {
             g[i - 1] += (1.0 - t) * amount;
             g[i] += t * amount;
         };
-        for ((hat, &w), &p) in on_mesh.iter().zip(psi.weight_bohr.iter()).zip(&psi.psi) {
-            add(hat, w * p * p);
+        for (hat, &amount) in on_mesh.iter().zip(density) {
+            add(hat, amount);
         }
         add(at_minimum, -1.0);
         g.iter().map(|g| g * g).sum::<f64>().sqrt()

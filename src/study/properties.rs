@@ -3,7 +3,7 @@
 use crate::findings::{Findings, PropertyAverage, PropertyAverages};
 use crate::potential::curve::SplineVariable;
 use crate::potential::interpolant::{Interpolant, Recipe};
-use crate::radial::Wavefunction;
+use crate::radial::{Wavefunction, dot};
 use crate::scan::{PropertyColumn, Scan};
 
 /// Fewest points a column is interpolated through.
@@ -40,11 +40,10 @@ fn average(findings: &Findings, column: &PropertyColumn) -> Option<PropertyAvera
     let on_mesh = sampled(&spline, ends, &first.wavefunction);
     let levels = findings.levels.iter().map(|level| {
         let psi = &level.wavefunction;
-        let weighted = psi.psi.iter().zip(psi.weight_bohr.iter()).zip(&on_mesh);
         PropertyAverage {
             v: level.v,
             j: level.j,
-            value: weighted.map(|((p, w), f)| w * p * p * f).sum(),
+            value: dot(&psi.weighted_density(), &on_mesh),
             outside: (1.0 - psi.probability(ends.0, ends.1)).max(0.0),
         }
     });

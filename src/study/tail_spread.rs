@@ -1,10 +1,10 @@
 //! What the unknown course of the curve beyond the scan does to the levels: the error it makes, and whether a hard
 //! wall carries them.
 
-use super::levels::{Question, average};
+use super::levels::Question;
 use crate::potential::Potential as _;
 use crate::potential::curve::{OtherTail, ScanCurve, Side};
-use crate::radial::{self, RadialRequest, Wavefunction};
+use crate::radial::{self, BoundState, RadialRequest, Wavefunction, dot};
 use crate::units::to_per_cm;
 
 /// A first-order shift of a low level above this (cm⁻¹) is no perturbation to rely on: the levels are solved once
@@ -32,12 +32,15 @@ pub(super) struct TailSpread {
 impl TailSpread {
     /// First order, ⟨ψ|V_other − V|ψ⟩ beyond the joint, at a hard wall ψ′² δ/(2μ) with δ the last step of the scan;
     /// where that exceeds 1 cm⁻¹ for a low level, the difference to the levels solved with the other tail.
-    pub(super) fn new<'a>(
+    ///
+    /// `densities`: w ψ² of every state at the mesh points.
+    pub(super) fn new(
         curve: &ScanCurve,
         question: &Question,
-        states: impl Iterator<Item = (&'a Wavefunction, f64)> + Clone,
+        states: &[BoundState],
+        densities: &[Vec<f64>],
     ) -> Self {
-        Self { sides: [Side::Inner, Side::Outer].map(|side| shifts(curve, question, side, states.clone())) }
+        Self { sides: [Side::Inner, Side::Outer].map(|side| shifts(curve, question, side, (states, densities))) }
     }
 
     /// Error of the energy of level v.
@@ -51,17 +54,17 @@ impl TailSpread {
     }
 }
 
-fn shifts<'a>(
+fn shifts(
     curve: &ScanCurve,
     question: &Question,
     side: Side,
-    states: impl Iterator<Item = (&'a Wavefunction, f64)> + Clone,
+    (states, densities): (&[BoundState], &[Vec<f64>]),
 ) -> SideShifts {
     let others = curve.other_tails(side);
     let wall_per_cm: Vec<f64> =
-        states.clone().map(|(psi, _)| wall_shift(curve, side, psi, question.mass_me)).collect();
+        states.iter().map(|s| wall_shift(curve, side, &s.wavefunction, question.mass_me)).collect();
     let above = curve.above_minimum();
-    let mesh = states.clone().next().map(|(psi, _)| psi.r_bohr.clone());
+    let mesh = states.first().map(|state| state.wavefunction.r_bohr.clone());
     let first_order = |other: &OtherTail| -> Vec<f64> {
         let change = |&r: &f64| {
             if !other.differs_at(r) {
@@ -71,7 +74,7 @@ fn shifts<'a>(
             if change.is_nan() { 0.0 } else { change.clamp(-LARGEST_CHANGE_HARTREE, LARGEST_CHANGE_HARTREE) }
         };
         let changes: Vec<f64> = mesh.iter().flat_map(|r| r.iter()).map(change).collect();
-        states.clone().map(|(psi, _)| to_per_cm(average(psi, &changes)).abs()).collect()
+        densities.iter().map(|density| to_per_cm(dot(density, &changes)).abs()).collect()
     };
     let low = question.settings.constants_highest_v + 1;
     let worst_low = |s: &[f64]| s.iter().take(low).fold(0.0_f64, |m, x| m.max(*x));
@@ -94,8 +97,8 @@ fn shifts<'a>(
             ..question.request()
         };
         if let Ok(solved) = radial::bound_states(other, &request) {
-            for ((shift, (_, energy)), state) in shifts_per_cm.iter_mut().zip(states).zip(solved) {
-                *shift = to_per_cm(state.energy_hartree - energy).abs();
+            for ((shift, own), other) in shifts_per_cm.iter_mut().zip(states).zip(solved) {
+                *shift = to_per_cm(other.energy_hartree - own.energy_hartree).abs();
             }
         }
     }
