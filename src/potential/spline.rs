@@ -147,18 +147,11 @@ impl SplineFactors {
 
     /// Coefficients of the B-splines.
     fn coefficients(&self, values: &[f64]) -> Vec<f64> {
-        let (n, p) = (self.band.len(), self.degree);
         let mut c = values.to_vec();
-        for i in 0..n {
-            for j in i.saturating_sub(p)..i {
-                c[i] -= self.band[i][j + p - i] * c[j];
-            }
-        }
-        for i in (0..n).rev() {
-            for j in i + 1..n.min(i + p + 1) {
-                c[i] -= self.band[i][j + p - i] * c[j];
-            }
-            c[i] /= self.band[i][p];
+        match self.degree {
+            5 => back_substitute::<5>(&self.band, &mut c),
+            3 => back_substitute::<3>(&self.band, &mut c),
+            degree => back_substitute_any(&self.band, &mut c, degree),
         }
         c
     }
@@ -211,6 +204,27 @@ fn eliminate_any(band: &mut [Row], degree: usize) {
     }
 }
 
+/// Solves with the factors that [`eliminate_any`] left.
+#[inline(always)]
+fn back_substitute_any(band: &[Row], c: &mut [f64], degree: usize) {
+    for i in 0..c.len() {
+        let before = &c[i.saturating_sub(degree)..i];
+        let factors = &band[i][degree - before.len()..degree];
+        let sum: f64 = factors.iter().zip(before).map(|(f, c)| f * c).sum();
+        c[i] -= sum;
+    }
+    for i in (0..c.len()).rev() {
+        let after = &c[i + 1..];
+        let sum: f64 = band[i][degree + 1..=2 * degree].iter().zip(after).map(|(f, c)| f * c).sum();
+        c[i] = (c[i] - sum) / band[i][degree];
+    }
+}
+
+/// The same, written for one degree.
+fn back_substitute<const DEGREE: usize>(band: &[Row], c: &mut [f64]) {
+    back_substitute_any(band, c, DEGREE);
+}
+
 /// The same, written for one degree.
 fn eliminate<const DEGREE: usize>(band: &mut [Row]) {
     eliminate_any(band, DEGREE);
@@ -223,12 +237,27 @@ fn find_interval(knots: &[f64], degree: usize, n: usize, x: f64) -> usize {
 
 /// The degree + 1 B-splines that do not vanish in interval l, at x [de Boor 1978, algorithm BSPLVB].
 fn basis(knots: &[f64], l: usize, degree: usize, x: f64) -> [f64; ORDER] {
+    // The machine knows the lengths of the loops.
+    match degree {
+        0 => basis_of::<0>(knots, l, x),
+        1 => basis_of::<1>(knots, l, x),
+        2 => basis_of::<2>(knots, l, x),
+        3 => basis_of::<3>(knots, l, x),
+        4 => basis_of::<4>(knots, l, x),
+        5 => basis_of::<5>(knots, l, x),
+        _ => basis_of::<MAX_DEGREE>(knots, l, x),
+    }
+}
+
+fn basis_of<const DEGREE: usize>(knots: &[f64], l: usize, x: f64) -> [f64; ORDER] {
     let mut b = [0.0; ORDER];
     b[0] = 1.0;
-    for d in 1..=degree {
+    // The knots that matter: `DEGREE` to either side.
+    let near = &knots[l + 1 - DEGREE..][..2 * DEGREE];
+    for d in 1..=DEGREE {
         let mut carried = 0.0;
         for i in 0..d {
-            let (left, right) = (knots[l + 1 + i - d], knots[l + 1 + i]);
+            let (left, right) = (near[DEGREE + i - d], near[DEGREE + i]);
             let share = b[i] / (right - left);
             b[i] = carried + (right - x) * share;
             carried = (x - left) * share;

@@ -8,6 +8,7 @@
 //! operations per mesh point. All coordinates are orthonormal: interface value × √mass, and modes.
 
 use super::RadialError;
+use super::pair::{Pair, add_row, pair_dot};
 use super::parallel::{WORTH_A_THREAD, side_by_side};
 use super::reference_element::ReferenceElement;
 use super::small_eigen::{diagonalise, overlaps};
@@ -256,9 +257,7 @@ impl Chain {
         for (e, (rows, amounts)) in elements.enumerate() {
             let mut inside = [0.0; MODES];
             for (row, amount) in rows.iter().zip(amounts) {
-                for (x, q) in inside.iter_mut().zip(row) {
-                    *x += amount * q;
-                }
+                add_row(&mut inside, *amount, row);
             }
             let scale = 1.0 / self.element(e).1.sqrt();
             psi[e * p] = face[e] / self.mass[e].sqrt();
@@ -353,29 +352,23 @@ impl Chain {
     }
 }
 
-/// Σ a b over the modes of one element, in two independent sums.
+/// Σ a b over the modes of one element.
+#[inline(always)]
 pub(super) fn short_dot(a: &[f64; MODES], b: &[f64; MODES]) -> f64 {
-    let mut sums = [0.0; 2];
-    for k in 0..MODES / 2 {
-        for lane in 0..2 {
-            sums[lane] += a[2 * k + lane] * b[2 * k + lane];
-        }
-    }
-    let last = if MODES % 2 == 1 { a[MODES - 1] * b[MODES - 1] } else { 0.0 };
-    sums[0] + sums[1] + last
+    pair_dot(a, b)
 }
 
 /// Σ a b in four independent sums, in an order that does not depend on the machine.
 pub(crate) fn dot(a: &[f64], b: &[f64]) -> f64 {
-    let mut sums = [0.0; 4];
-    let (a4, b4) = (a.chunks_exact(4), b.chunks_exact(4));
-    let rest: f64 = a4.remainder().iter().zip(b4.remainder()).map(|(x, y)| x * y).sum();
-    for (x, y) in a4.zip(b4) {
-        for ((sum, x), y) in sums.iter_mut().zip(x).zip(y) {
-            *sum += x * y;
-        }
+    let (a4, rest_a) = a.as_chunks::<4>();
+    let (b4, rest_b) = b.as_chunks::<4>();
+    let rest: f64 = rest_a.iter().zip(rest_b).map(|(x, y)| x * y).sum();
+    let mut sums = [Pair::both(0.0); 2];
+    for (x, y) in a4.iter().zip(b4) {
+        sums[0] = sums[0] + Pair::new([x[0], x[1]]) * Pair::new([y[0], y[1]]);
+        sums[1] = sums[1] + Pair::new([x[2], x[3]]) * Pair::new([y[2], y[3]]);
     }
-    (sums[0] + sums[1]) + (sums[2] + sums[3]) + rest
+    sums[0].sum() + sums[1].sum() + rest
 }
 
 /// A node of an element.

@@ -7,69 +7,44 @@
 
 use super::chain::{Chain, MODES, guarded, nearest_mode};
 
-/// Pairs of modes an element.
-const LANES: usize = MODES.div_ceil(2);
-
-/// λ and the products of the couplings left·left, left·right, right·right of an element's modes.
-type Packed = [[[f64; 2]; LANES]; 4];
+/// The products of a mode's couplings: left·left, left·right, right·right, and a zero to fill the second pair.
+type Products = [f64; 4];
 
 /// What the elimination needs of every mode, in lanes of two.
 #[derive(Debug)]
 pub(super) struct Condensed<'a> {
     chain: &'a Chain,
-    /// By the element; padded with a mode at infinity that is coupled to nothing.
-    modes: Vec<Packed>,
-}
-
-/// Sums over the modes of one element: Schur complement and norm, each left-left, left-right, right-right.
-#[derive(Clone, Copy)]
-struct Sums {
-    complement: [f64; 3],
-    norm: [f64; 3],
+    /// By element and mode.
+    modes: Vec<[Products; MODES]>,
 }
 
 impl<'a> Condensed<'a> {
     pub fn new(chain: &'a Chain) -> Self {
-        let nothing = [[0.0; 2]; LANES];
-        let packed = |e: usize| {
-            let mut packed = [[[f64::INFINITY; 2]; LANES], nothing, nothing, nothing];
-            let (lambda, to_left, to_right) = chain.modes_at(e);
-            for k in 0..MODES {
+        let products = |e: usize| {
+            let (_, to_left, to_right) = chain.modes_at(e);
+            let of = |k: usize| {
                 let (left, right) = (to_left[k], to_right[k]);
-                for (row, value) in packed.iter_mut().zip([lambda[k], left * left, left * right, right * right]) {
-                    row[k / 2][k % 2] = value;
-                }
-            }
-            packed
+                [left * left, left * right, right * right, 0.0]
+            };
+            std::array::from_fn(of)
         };
-        Self { chain, modes: (0..chain.elements()).map(packed).collect() }
+        Self { chain, modes: (0..chain.elements()).map(products).collect() }
     }
+}
 
-    /// Sums over the modes of element `e`, one of them left out.
-    fn sums(&self, e: usize, shift: f64, without: Option<usize>) -> Sums {
-        let [lambda, products @ ..] = &self.modes[e];
-        let mut inverse = [[0.0; 2]; LANES];
-        for (inverse, lambda) in inverse.iter_mut().zip(lambda) {
-            *inverse = [1.0 / (lambda[0] - shift), 1.0 / (lambda[1] - shift)];
+/// Σ p/(λ − s) over the modes of an element and, from the fifth place on, Σ p/(λ − s)², for the products p.
+// Left as a function of its own, the sums are written to memory as neighbours, and are then summed two at a time.
+#[inline(never)]
+fn sums(products: &[Products; MODES], inverse: &[f64; MODES]) -> [f64; 8] {
+    let mut sums = [0.0; 8];
+    for (p, d) in products.iter().zip(inverse) {
+        let share = p.map(|p| p * d);
+        for c in 0..4 {
+            sums[c] += share[c];
+            sums[c + 4] += share[c] * d;
         }
-        if let Some(k) = without {
-            inverse[k / 2][k % 2] = 0.0;
-        }
-        let mut sums = Sums { complement: [0.0; 3], norm: [0.0; 3] };
-        for (c, product) in products.iter().enumerate() {
-            let (mut complement, mut norm) = ([0.0; 2], [0.0; 2]);
-            for pair in 0..LANES {
-                for lane in 0..2 {
-                    let share = product[pair][lane] * inverse[pair][lane];
-                    complement[lane] += share;
-                    norm[lane] += share * inverse[pair][lane];
-                }
-            }
-            sums.complement[c] = complement[0] + complement[1];
-            sums.norm[c] = norm[0] + norm[1];
-        }
-        sums
     }
+    sums
 }
 
 /// Interface values and kept modes.
@@ -135,7 +110,11 @@ impl ReducedFactors {
             let under = lambda.iter().filter(|&&value| value < shift).count();
             below += under;
             let kept = nearest_mode(lambda, under, shift);
-            let Sums { complement: [ll, lr, rr], norm: norms } = condensed.sums(e, shift, kept);
+            let mut inverse = lambda.map(|value| 1.0 / (value - shift));
+            if let Some(k) = kept {
+                inverse[k] = 0.0;
+            }
+            let [ll, lr, rr, _, norms @ ..] = sums(&condensed.modes[e], &inverse);
             self.kept[e] = kept;
             self.norm_face[e] = norm + norms[0];
             self.norm_next[e] = norms[1];

@@ -8,6 +8,7 @@ mod distortion;
 mod mesh;
 mod observables;
 mod outgoing;
+mod pair;
 mod parallel;
 mod quasibound;
 mod real_axis;

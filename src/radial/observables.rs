@@ -90,33 +90,37 @@ fn crossings(
     found
 }
 
-/// Root of `f` between `a` and `b`, where it has the values `fa` and `fb` of opposite sign: the Illinois variant of
-/// regula falsi (M. Dowell, P. Jarratt, BIT 11, 168 (1971)) with bisection where it is slow.
+/// Root of `f` between `a` and `b`, where it has the values `fa` and `fb` of opposite sign: inverse quadratic
+/// interpolation where it is safe, else halving (T. R. Chandrupatla, Adv. Eng. Softw. 28, 145 (1997)).
 fn root(f: &dyn Fn(f64) -> f64, mut a: f64, mut b: f64, mut fa: f64, mut fb: f64) -> f64 {
-    let mut last = f64::NAN;
-    for round in 0..200 {
-        let mut x = b - fb * (b - a) / (fb - fa);
-        let halved = !(x > a && x < b) || round % 8 == 7;
-        if halved {
-            x = 0.5 * (a + b);
-        }
-        // One end stands still for long; a step of rounding size means that the other has arrived.
-        let arrived = !halved && (x - last).abs() <= 4.0 * f64::EPSILON * x.abs();
-        if arrived || (b - a).abs() <= 2.0 * f64::EPSILON * x.abs() || x == a || x == b {
-            return x;
-        }
-        last = x;
+    let mut share = 0.5;
+    for _ in 0..200 {
+        let x = a + share * (b - a);
         let fx = f(x);
-        if fx == 0.0 || fx.is_nan() {
+        if fx.is_nan() {
             return x;
         }
-        if (fx > 0.0) == (fb > 0.0) {
-            (b, fb) = (x, fx);
-            fa *= 0.5;
+        // The root stays between a and b; c is where one of them was before.
+        let (c, fc);
+        if (fx > 0.0) == (fa > 0.0) {
+            (c, fc) = (a, fa);
         } else {
-            (a, fa) = (x, fx);
-            fb *= 0.5;
+            (c, fc) = (b, fb);
+            (b, fb) = (a, fa);
         }
+        (a, fa) = (x, fx);
+        let (best, value) = if fa.abs() < fb.abs() { (a, fa) } else { (b, fb) };
+        let least = 2.0 * f64::EPSILON * best.abs() / (b - a).abs();
+        if value == 0.0 || least >= 0.5 {
+            return best;
+        }
+        let (xi, phi) = ((a - b) / (c - b), (fa - fb) / (fc - fb));
+        share = if phi * phi < xi && (1.0 - phi) * (1.0 - phi) < 1.0 - xi {
+            fa / (fb - fa) * fc / (fb - fc) + (c - a) / (b - a) * fa / (fc - fa) * fb / (fc - fb)
+        } else {
+            0.5
+        };
+        share = if share.is_nan() { 0.5 } else { share.clamp(least, 1.0 - least) };
     }
     0.5 * (a + b)
 }

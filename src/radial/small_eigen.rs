@@ -4,6 +4,7 @@
 //! Where only the overlaps of the eigenvectors with a few vectors are needed, those are carried along instead.
 
 use super::chain::MODES;
+use super::pair::{add_row, pair_dot, rotate};
 
 /// Diagonalises the symmetric `matrix` (row-major, n × n, both triangles filled).
 ///
@@ -87,8 +88,7 @@ fn reduce(a: &mut [f64], half: &mut [f64], off: &mut [f64], p: &mut [f64], n: us
         // p = A u / h, from the full symmetric leading block
         let mut k = 0.0;
         for (j, pj) in p[..i].iter_mut().enumerate() {
-            let dot: f64 = above[j * n..j * n + i].iter().zip(u.iter()).map(|(x, y)| x * y).sum();
-            *pj = dot / h;
+            *pj = pair_dot(&above[j * n..j * n + i], u) / h;
             k += *pj * u[j];
         }
         let k = 0.5 * k / h;
@@ -97,9 +97,9 @@ fn reduce(a: &mut [f64], half: &mut [f64], off: &mut [f64], p: &mut [f64], n: us
         }
         for j in 0..i {
             let (pj, uj) = (p[j], u[j]);
-            for ((x, ul), pl) in above[j * n..j * n + i].iter_mut().zip(u.iter()).zip(&p[..i]) {
-                *x -= uj * pl + pj * ul;
-            }
+            let row = &mut above[j * n..j * n + i];
+            add_row(row, -uj, &p[..i]);
+            add_row(row, -pj, u);
         }
     }
     if n > 1 {
@@ -122,11 +122,8 @@ fn accumulate(a: &mut [f64], diagonal: &mut [f64], n: usize) {
             let u = &row[..i];
             for j in 0..i {
                 let q = &mut above[j * n..j * n + i];
-                let dot: f64 = q.iter().zip(u).map(|(x, y)| x * y).sum();
-                let scale = dot / h;
-                for (x, y) in q.iter_mut().zip(u) {
-                    *x -= scale * y;
-                }
+                let share = pair_dot(q, u) / h;
+                add_row(q, -share, u);
             }
         }
         for j in 0..i {
@@ -181,7 +178,7 @@ fn ql<const WIDTH: usize>(z: &mut [f64], d: &mut [f64], e: &mut [f64], n: usize,
                 d[i + 1] = g + p;
                 g = c * r - b;
                 let (low, high) = z.split_at_mut((i + 1) * width);
-                rotate::<WIDTH>(&mut low[i * width..], &mut high[..width], c, s);
+                rotate(&mut low[i * width..], &mut high[..width], c, s);
             }
             if underflow {
                 continue;
@@ -192,20 +189,6 @@ fn ql<const WIDTH: usize>(z: &mut [f64], d: &mut [f64], e: &mut [f64], n: usize,
         }
     }
     true
-}
-
-/// One rotation of two rows.
-#[inline(always)]
-fn rotate<const WIDTH: usize>(low: &mut [f64], high: &mut [f64], c: f64, s: f64) {
-    let turn = |(x, y): (&mut f64, &mut f64)| {
-        let f = *y;
-        *y = s * *x + c * f;
-        *x = c * *x - s * f;
-    };
-    match (low.first_chunk_mut::<WIDTH>(), high.first_chunk_mut::<WIDTH>()) {
-        (Some(low), Some(high)) if WIDTH > 0 => low.iter_mut().zip(high).for_each(turn),
-        _ => low.iter_mut().zip(high).for_each(turn),
-    }
 }
 
 /// Ascending values, rows along (selection sort: n is small).
