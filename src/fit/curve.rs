@@ -30,8 +30,8 @@ const BASE_HEIGHT: f64 = 1.5;
 /// Leave-one-out is judged on at most about this many points.
 const LEAVE_ONE_OUT_POINTS: usize = 200;
 /// Neighbours on either side that the curve without a point is built from: what lies further off changes the curve
-/// there by a thousandth.
-const LEAVE_ONE_OUT_NEIGHBOURS: usize = 8;
+/// there by less than a hundredth.
+const LEAVE_ONE_OUT_NEIGHBOURS: usize = 6;
 /// Spread of ω_e x_e over the interpolations, relative, above which there is a caution.
 const SPREAD_CAUTION: f64 = 0.05;
 /// Size of 5 a1²/4 − a2 below which a spread is no matter of per cent: bonds have 1 to 10 (a Morse function with

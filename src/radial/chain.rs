@@ -42,6 +42,10 @@ pub(super) struct Chain {
     pub beta: Vec<f64>,
     /// Lumped mass in bohr at each boundary.
     pub mass: Vec<f64>,
+    /// Its square root.
+    root_mass: Vec<f64>,
+    /// Square root of the half length of each element.
+    root_half: Vec<f64>,
 }
 
 /// Some elements of a chain to be filled in, from one on.
@@ -149,13 +153,17 @@ impl Chain {
             alpha: vec![0.0; elements + 1],
             beta: vec![0.0; elements],
             mass: vec![0.0; elements + 1],
+            root_mass: Vec::new(),
+            root_half: Vec::with_capacity(elements),
             boundaries,
         };
         for e in 0..elements {
             let (_, half) = chain.element(e);
             chain.mass[e] += reference.weights[0] * half;
             chain.mass[e + 1] += reference.weights[p] * half;
+            chain.root_half.push(half.sqrt());
         }
+        chain.root_mass = chain.mass.iter().map(|mass| mass.sqrt()).collect();
         chain
     }
 
@@ -230,8 +238,8 @@ impl Chain {
             let (_, half) = self.element(e);
             // Coupling of the unscaled interface value to an orthonormal interior node:
             // K_0i/(2μ half)/√(w_i half); the interface's own √mass follows.
-            let scale = 1.0 / (two_mu * half * half.sqrt());
-            let (left_mass, right_mass) = (self.mass[e].sqrt(), self.mass[e + 1].sqrt());
+            let scale = 1.0 / (two_mu * half * self.root_half[e]);
+            let (left_mass, right_mass) = (self.root_mass[e], self.root_mass[e + 1]);
             let range = e * modes..(e + 1) * modes;
             self.to_left[range.clone()].iter_mut().for_each(|x| *x *= scale / left_mass);
             self.to_right[range].iter_mut().for_each(|x| *x *= scale / right_mass);
@@ -259,15 +267,15 @@ impl Chain {
             for (row, amount) in rows.iter().zip(amounts) {
                 add_row(&mut inside, *amount, row);
             }
-            let scale = 1.0 / self.element(e).1.sqrt();
-            psi[e * p] = face[e] / self.mass[e].sqrt();
+            let scale = 1.0 / self.root_half[e];
+            psi[e * p] = face[e] / self.root_mass[e];
             let weights = &self.reference.inverse_root_weights[1..p];
             for ((value, x), w) in psi[e * p + 1..(e + 1) * p].iter_mut().zip(&inside).zip(weights) {
                 *value = x * w * scale;
             }
         }
         let end = self.elements();
-        psi[end * p] = face[end] / self.mass[end].sqrt();
+        psi[end * p] = face[end] / self.root_mass[end];
     }
 
     /// The vector of this basis of a function given at the mesh points; its values at the walls are dropped.
@@ -277,8 +285,8 @@ impl Chain {
         let (face, mode) = vector.split_at_mut(faces);
         let elements = self.rows().iter().zip(mode.as_chunks_mut::<MODES>().0);
         for (e, (rows, amounts)) in elements.enumerate() {
-            let scale = self.element(e).1.sqrt();
-            face[e] = psi[e * p] * self.mass[e].sqrt();
+            let scale = self.root_half[e];
+            face[e] = psi[e * p] * self.root_mass[e];
             let mut inside = [0.0; MODES];
             let values = psi[e * p + 1..(e + 1) * p].iter().zip(&self.reference.root_weights[1..p]);
             for (x, (value, root)) in inside.iter_mut().zip(values) {
@@ -330,9 +338,11 @@ impl Chain {
         let modes = other.modes;
         let energy = level.energy;
         let (mut above, mut norm) = (0.0, 0.0);
+        let value = |i: usize| level.vector[i] / self.root_mass[i] * other.root_mass[i];
+        let mut right = value(0);
         for e in 0..self.elements() {
-            let value = |i: usize| level.vector[i] / self.mass[i].sqrt() * other.mass[i].sqrt();
-            let (left, right) = (value(e), value(e + 1));
+            let left = right;
+            right = value(e + 1);
             // Each interface is counted once, with the element to its right.
             above += left * left * (other.alpha[e] - energy) + 2.0 * left * right * other.beta[e];
             norm += left * left;

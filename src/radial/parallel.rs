@@ -2,7 +2,7 @@
 //! and each part is computed as it would be alone.
 
 /// Lists shorter than this are not worth a second thread (starting one costs some ten microseconds).
-pub(super) const WORTH_A_THREAD: usize = 40;
+pub(super) const WORTH_A_THREAD: usize = 56;
 
 /// Both results, the second computed on a thread of its own.
 pub(super) fn side_by_side<A, B: Send>(
