@@ -63,6 +63,11 @@ pub trait Distribution {
     /// Outside this range (bohr) nothing worth counting is left.
     fn support_bohr(&self) -> (f64, f64);
 
+    /// [`Distribution::below`] at many bond lengths, ascending.
+    fn below_all(&self, ascending_bohr: &[f64]) -> Vec<f64> {
+        ascending_bohr.iter().map(|r| self.below(*r)).collect()
+    }
+
     /// The density averaged over a width around `r_bohr`, in 1/bohr: free of the singularities of a classical one.
     fn averaged_per_bohr(&self, r_bohr: f64, width_bohr: f64) -> f64 {
         let half = 0.5 * width_bohr;
@@ -88,10 +93,9 @@ pub fn distance(one: &dyn Distribution, other: &dyn Distribution, width_bohr: f6
         return None;
     }
     let start = from - 0.5 * width_bohr;
-    let gap: Vec<f64> = (0..=count as usize + 2 * half)
-        .map(|i| start + step * i as f64)
-        .map(|r| one.below(r) - other.below(r))
-        .collect();
+    let r: Vec<f64> = (0..=count as usize + 2 * half).map(|i| start + step * i as f64).collect();
+    let gap: Vec<f64> =
+        one.below_all(&r).into_iter().zip(other.below_all(&r)).map(|(one, other)| one - other).collect();
     Some(
         gap.iter().zip(&gap[2 * half..]).map(|(low, high)| (high - low).abs()).sum::<f64>() * step
             / width_bohr,

@@ -26,6 +26,10 @@ impl Distribution for QuantumDensity<'_> {
         self.running.below(r_bohr)
     }
 
+    fn below_all(&self, ascending_bohr: &[f64]) -> Vec<f64> {
+        self.running.below_all(ascending_bohr)
+    }
+
     /// Where |ψ| stands above 1e-7 of its maximum.
     fn support_bohr(&self) -> (f64, f64) {
         let (r, psi) = (&self.wavefunction.r_bohr, &self.wavefunction.psi);

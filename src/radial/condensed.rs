@@ -5,7 +5,7 @@
 //! of the whole vector is s + yᵀ M x / yᵀ M y; a round costs one division and six sums a mode and keeps no vector of the
 //! length of the mesh. A mode so close to s that eliminating it would cost digits is kept beside the interface values.
 
-use super::chain::{Chain, MODES, guarded, nearest_mode};
+use super::chain::{Chain, MODES, guarded, nearest_mode, short_dot};
 
 /// The products of a mode's couplings: left·left, left·right, right·right, and a zero to fill the second pair.
 type Products = [f64; 4];
@@ -208,11 +208,15 @@ impl ReducedFactors {
         &self.kept
     }
 
-    /// The whole normalised vector of the chain: modes follow the interface values at `energy`.
-    pub fn whole(&self, condensed: &Condensed, x: &Reduced, energy: f64) -> Vec<f64> {
+    /// The whole normalised vector of the chain, its modes following the interface values at `energy`, and the norm of
+    /// (H − `energy`) times it, as it is and not as the iteration has it: where many elements have a mode at the
+    /// energy, elimination without pivoting can fail.
+    pub fn whole(&self, condensed: &Condensed, x: &Reduced, energy: f64) -> (Vec<f64>, f64) {
         let chain = condensed.chain;
         let mut vector = x.face.clone();
         vector.reserve(chain.lambda.len());
+        let mut residual2 = 0.0;
+        let mut from_left = 0.0;
         for (e, kept) in self.kept.iter().enumerate() {
             let (left, right) = (x.face[e], x.face[e + 1]);
             let (lambda, to_left, to_right) = chain.modes_at(e);
@@ -220,14 +224,22 @@ impl ReducedFactors {
             for k in 0..MODES {
                 inside[k] = (to_left[k] * left + to_right[k] * right) / (energy - lambda[k]);
             }
-            vector.extend_from_slice(&inside);
-            if let Some(k) = kept {
-                vector[x.face.len() + e * MODES + k] = x.own[e];
+            if let Some(k) = *kept {
+                inside[k] = x.own[e];
+                let row = (lambda[k] - energy) * x.own[e] + to_left[k] * left + to_right[k] * right;
+                residual2 += row * row;
             }
+            if e > 0 {
+                let own = (chain.alpha[e] - energy) * left + chain.beta[e] * right;
+                let row = from_left + own + short_dot(to_left, &inside);
+                residual2 += row * row;
+            }
+            from_left = chain.beta[e] * left + short_dot(to_right, &inside);
+            vector.extend_from_slice(&inside);
         }
         let scale = 1.0 / super::chain::dot(&vector, &vector).sqrt();
         vector.iter_mut().for_each(|v| *v *= scale);
-        vector
+        (vector, residual2.sqrt() * scale)
     }
 }
 

@@ -3,6 +3,7 @@
 //! Spectral elements with these nodes and lumped mass are the finite-element discrete variable
 //! representation (T. N. Rescigno, C. W. McCurdy, Phys. Rev. A 62, 032706 (2000)).
 
+use super::pair::pair_dot;
 use std::sync::OnceLock;
 
 /// Highest polynomial degree for which reference elements are kept.
@@ -35,6 +36,81 @@ pub(super) struct ReferenceElement {
     pub gauss_nodes: Vec<f64>,
     /// Gauss-Legendre weights.
     pub gauss_weights: Vec<f64>,
+}
+
+/// How ψ² of one element is integrated up to any place: for ψ of degree p the integral is a Legendre series of
+/// degree 2p + 1.
+#[derive(Debug)]
+pub(super) struct Cumulation {
+    /// Points at which ψ² fixes the series: 2p + 1 Gauss points.
+    points: usize,
+    /// Values there from values at the p + 1 nodes, row-major.
+    to_points: Vec<f64>,
+    /// ½ w P_m at the points, a row for each m = 0 to 2p.
+    moments: Vec<f64>,
+    /// (2k + 1)/(k + 1) and (k + 1)/(k + 2) of Clenshaw's recurrence.
+    recurrence: Vec<[f64; 2]>,
+}
+
+impl Cumulation {
+    /// For elements of `degree` (see [`ReferenceElement::of_degree`]), computed once.
+    pub fn of_degree(degree: usize) -> &'static Self {
+        static KEPT: [OnceLock<Cumulation>; HIGHEST_DEGREE + 1] = [const { OnceLock::new() }; HIGHEST_DEGREE + 1];
+        let degree = degree.clamp(2, HIGHEST_DEGREE);
+        KEPT[degree].get_or_init(|| Self::build(ReferenceElement::of_degree(degree)))
+    }
+
+    fn build(element: &ReferenceElement) -> Self {
+        let (nodes, points) = (element.degree + 1, 2 * element.degree + 1);
+        let (x, w) = gauss_legendre(points);
+        let mut to_points = Vec::with_capacity(points * nodes);
+        for &x in &x {
+            for j in 0..nodes {
+                let mut unit = vec![0.0; nodes];
+                unit[j] = 1.0;
+                to_points.push(element.interpolate(&unit, x));
+            }
+        }
+        let row = |m: usize| x.iter().zip(&w).map(move |(&x, w)| 0.5 * w * legendre_pair(m, x).0);
+        let recurrence = |k: usize| {
+            let k = k as f64;
+            [(2.0 * k + 1.0) / (k + 1.0), (k + 1.0) / (k + 2.0)]
+        };
+        Self {
+            points,
+            to_points,
+            moments: (0..points).flat_map(row).collect(),
+            recurrence: (0..=points).map(recurrence).collect(),
+        }
+    }
+
+    /// ∫ψ² from −1 to each of the places `t` (in [−1, 1]), times `half`, for ψ by its values at the nodes.
+    ///
+    /// The series is Σ g_k P_k with g_k = s_(k−1) − s_(k+1), s_m = ½ ∫ψ² P_m, since ∫P_m = (P_(m+1) − P_(m−1))/(2m + 1);
+    /// all places go through Clenshaw's recurrence together.
+    pub fn up_to(&self, values: &[f64], t: &[f64], half: f64, found: &mut Vec<f64>) {
+        let squares: Vec<f64> = self
+            .to_points
+            .chunks_exact(values.len())
+            .map(|row| {
+                let psi = pair_dot(row, values);
+                half * psi * psi
+            })
+            .collect();
+        let mut s: Vec<f64> =
+            self.moments.chunks_exact(self.points).map(|row| pair_dot(row, &squares)).collect();
+        s.extend([0.0; 2]);
+        let (mut now, mut after) = (vec![0.0; t.len()], vec![0.0; t.len()]);
+        for k in (0..=self.points).rev() {
+            let g = if k == 0 { s[0] - s[1] } else { s[k - 1] - s[k + 1] };
+            let [first, second] = self.recurrence[k];
+            for ((now, after), t) in now.iter_mut().zip(&mut after).zip(t) {
+                let next = g + first * t * *now - second * *after;
+                (*after, *now) = (*now, next);
+            }
+        }
+        found.append(&mut now);
+    }
 }
 
 /// P_n(x) and P_{n−1}(x) by the three-term recurrence.

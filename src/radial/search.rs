@@ -255,7 +255,10 @@ fn refine_reduced(
             let sure =
                 below == right || (distance <= 16.0 * rounding && (below == v || below == v + 1));
             if sure {
-                level = Some(Found { energy, vector: work.reduced.whole(work.condensed, &x, energy), gap });
+                let (vector, residual) = work.reduced.whole(work.condensed, &x, energy);
+                if residual <= FINISHED_RESIDUAL * work.scale {
+                    level = Some(Found { energy, vector, gap });
+                }
             }
             break;
         }

@@ -82,8 +82,18 @@ fn tables_and_a_folder_of_findings() {
     // Medians of two passes are means, so that the stages of one thread add up to less than the total, and to most
     // of it. The fits run beside them; three fits with levels take more than 20 microseconds on any machine.
     let seconds = |stage: &str| timings["seconds"][stage].as_f64().unwrap_or(f64::NAN);
-    let one_after_another =
-        ["points", "curve", "levels", "level_errors", "distortion", "constants", "reach", "densities", "thermal", "further"];
+    let one_after_another = [
+        "points",
+        "curve",
+        "levels",
+        "level_errors",
+        "distortion",
+        "constants",
+        "reach",
+        "densities",
+        "thermal",
+        "further",
+    ];
     let sum: f64 = one_after_another.map(seconds).iter().sum();
     let total = seconds("total");
     assert!(one_after_another.iter().all(|stage| seconds(stage) > 0.0), "{timings}");
