@@ -491,7 +491,8 @@ impl Factors {
         face[elements] = 0.0;
         for e in 0..elements {
             let (_, to_left, to_right) = chain.modes_at(e);
-            let (inside, inverse) = (&mode.as_chunks::<MODES>().0[e], &self.inverse.as_chunks::<MODES>().0[e]);
+            let (inside, inverse) =
+                (&mode.as_chunks::<MODES>().0[e], &self.inverse.as_chunks::<MODES>().0[e]);
             let mut share = [0.0; MODES];
             for k in 0..MODES {
                 share[k] = inside[k] * inverse[k];

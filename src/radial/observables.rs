@@ -180,9 +180,7 @@ impl Solution {
         let mesh = OnMesh::new(inner, &first.wavefunction.r_bohr, r_e_bohr);
         let all: Vec<usize> = (0..self.states.len()).collect();
         in_halves(&all, WORTH_A_THREAD, |part| {
-            part.iter()
-                .map(|&v| self.observables_of(inner, potential, v, (&mesh, v_e_hartree)))
-                .collect()
+            part.iter().map(|&v| self.observables_of(inner, potential, v, (&mesh, v_e_hartree))).collect()
         })
     }
 
@@ -204,9 +202,13 @@ impl Solution {
         let turning = crossings(&effective, energy, &psi.r_bohr, &mesh.effective_hartree);
         let (from, to) = (psi.r_bohr[0], psi.r_bohr[last]);
         // A wall inside the allowed region takes the place of the turning point.
-        let inner_end = if mesh.effective_hartree[1] > energy { turning.first().copied().unwrap_or(to) } else { from };
-        let outer_end =
-            if mesh.effective_hartree[last - 1] > energy { turning.last().copied().unwrap_or(from) } else { to };
+        let inner_end =
+            if mesh.effective_hartree[1] > energy { turning.first().copied().unwrap_or(to) } else { from };
+        let outer_end = if mesh.effective_hartree[last - 1] > energy {
+            turning.last().copied().unwrap_or(from)
+        } else {
+            to
+        };
         let forbidden_inner = psi.probability(from, inner_end);
         let forbidden_outer = psi.probability(outer_end, to);
         let between: Vec<f64> =

@@ -55,7 +55,8 @@ pub(super) struct Cumulation {
 impl Cumulation {
     /// For elements of `degree` (see [`ReferenceElement::of_degree`]), computed once.
     pub fn of_degree(degree: usize) -> &'static Self {
-        static KEPT: [OnceLock<Cumulation>; HIGHEST_DEGREE + 1] = [const { OnceLock::new() }; HIGHEST_DEGREE + 1];
+        static KEPT: [OnceLock<Cumulation>; HIGHEST_DEGREE + 1] =
+            [const { OnceLock::new() }; HIGHEST_DEGREE + 1];
         let degree = degree.clamp(2, HIGHEST_DEGREE);
         KEPT[degree].get_or_init(|| Self::build(ReferenceElement::of_degree(degree)))
     }

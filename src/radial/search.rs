@@ -186,13 +186,7 @@ fn find(
 }
 
 /// Distance to the levels next to `v` that the refinement assumes: the spacing so far, or what the counts leave open.
-fn assumed_gap(
-    brackets: &Brackets,
-    previous: Option<&Found>,
-    v: usize,
-    shift: f64,
-    work: &Work<'_>,
-) -> f64 {
+fn assumed_gap(brackets: &Brackets, previous: Option<&Found>, v: usize, shift: f64, work: &Work<'_>) -> f64 {
     let rounding = 4.0 * f64::EPSILON * work.scale;
     match previous {
         Some(previous) => (shift - previous.energy).abs().max(rounding),
@@ -252,8 +246,7 @@ fn refine_reduced(
         if settled && (unwanted < FINISHED || (unwanted < 1e-6 && still > 0)) || still > 1 {
             let below = work.reduced.below;
             let right = if energy > shift { v } else { v + 1 };
-            let sure =
-                below == right || (distance <= 16.0 * rounding && (below == v || below == v + 1));
+            let sure = below == right || (distance <= 16.0 * rounding && (below == v || below == v + 1));
             if sure {
                 let (vector, residual) = work.reduced.whole(work.condensed, &x, energy);
                 if residual <= FINISHED_RESIDUAL * work.scale {

@@ -212,12 +212,8 @@ mod tests {
             r.extend(reference.nodes[1..].iter().map(|x| pair[0] + 0.5 * (pair[1] - pair[0]) * (1.0 + x)));
         }
         let psi: Vec<f64> = r.iter().map(|r| (7.0 * r).sin() * (-(r - 2.0) * (r - 2.0)).exp()).collect();
-        let wavefunction = Wavefunction {
-            degree,
-            weight_bohr: vec![0.0; r.len()].into(),
-            r_bohr: r.into(),
-            psi,
-        };
+        let wavefunction =
+            Wavefunction { degree, weight_bohr: vec![0.0; r.len()].into(), r_bohr: r.into(), psi };
         let running = wavefunction.running_probability().unwrap();
         let mut asked: Vec<f64> = (0..200).map(|i| 0.9 + 0.0115 * f64::from(i)).collect();
         asked.extend(ends);

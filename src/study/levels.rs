@@ -6,7 +6,9 @@ use crate::findings::{Findings, FitFindings};
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{ScanCurve, Side};
 use crate::potential::{Family, Potential as _};
-use crate::radial::{self, dot, BoundState, Level, Observables, RadialError, RadialRequest, Solution, Wavefunction};
+use crate::radial::{
+    self, BoundState, Level, Observables, RadialError, RadialRequest, Solution, Wavefunction, dot,
+};
 use crate::reach::Interval;
 use crate::settings::LevelSettings;
 use crate::units::{omega_e_per_cm, rotational_constant_per_cm, to_angstrom, to_per_cm};
@@ -322,7 +324,6 @@ impl TailShifts {
         self.changes.iter().map(|change| to_per_cm(dot(density, change)).abs()).fold(0.0, f64::max)
     }
 }
-
 
 /// What makes the error of a level inside the scan: the other interpolations, to first order, and the noise of the
 /// points.

@@ -141,17 +141,12 @@ pub fn study(scan: &Scan, settings: &Settings) -> Result<Findings, StudyError> {
 ///
 /// # Errors
 /// As [`study`].
-pub fn study_observed(
-    scan: &Scan,
-    settings: &Settings,
-    observer: &Observer,
-) -> Result<Findings, StudyError> {
+pub fn study_observed(scan: &Scan, settings: &Settings, observer: &Observer) -> Result<Findings, StudyError> {
     settings.checked()?;
     let column = &scan.energies[scan.curve_index(settings.curve.as_deref())?];
     let masses = species::masses(&settings.masses, scan.atoms.as_ref(), scan.charge)?;
     let pairs = isotopologues::masses(settings, scan.charge)?;
-    let (points, mut notices) =
-        observed(observer, Stage::Points, || points::points(scan, column, settings))?;
+    let (points, mut notices) = observed(observer, Stage::Points, || points::points(scan, column, settings))?;
 
     let mut findings = Findings {
         source: Source {
@@ -274,8 +269,7 @@ fn study_curve(findings: &mut Findings, observer: &Observer) {
         mass_me.map(|mass_me| levels::Question { settings: &settings, mass_me, reach: reach.as_ref(), j: 0 });
     // The fits and the levels know nothing of each other: a thread each.
     let solved = std::thread::scope(|scope| {
-        let fitting =
-            scope.spawn(|| observed(observer, Stage::Fits, || fits::fit_all(findings, &curve)));
+        let fitting = scope.spawn(|| observed(observer, Stage::Fits, || fits::fit_all(findings, &curve)));
         let solved = question.as_ref().map(|question| {
             let states = observed(observer, Stage::Levels, || levels::states(&curve, question));
             let mut solved =

@@ -40,7 +40,9 @@ impl TailSpread {
         states: &[BoundState],
         densities: &[Vec<f64>],
     ) -> Self {
-        Self { sides: [Side::Inner, Side::Outer].map(|side| shifts(curve, question, side, (states, densities))) }
+        Self {
+            sides: [Side::Inner, Side::Outer].map(|side| shifts(curve, question, side, (states, densities))),
+        }
     }
 
     /// Error of the energy of level v.
