@@ -162,11 +162,12 @@ fn find(
         let (low, high) = (brackets.low[v], brackets.high[v]);
         let near = below == v || below == v + 1;
         let narrow = high - low <= 16.0 * rounding;
-        if near && !narrow {
-            if let Some(level) = refine_reduced(brackets, found, v, shift, work) {
-                found[v] = Some(level);
-                return;
-            }
+        if near
+            && !narrow
+            && let Some(level) = refine_reduced(brackets, found, v, shift, work)
+        {
+            found[v] = Some(level);
+            return;
         }
         if near || narrow {
             factors.factorise(chain, shift);
