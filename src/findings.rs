@@ -13,7 +13,7 @@ use crate::scan::Layout;
 use crate::settings::Settings;
 use crate::species::Masses;
 use crate::spectroscopy::{BirgeSponer, Constants, DunhamTable, NearDissociation};
-use crate::thermal::ThermalPoint;
+use crate::thermal::{Position, ThermalDensity, ThermalPoint, thermal_density};
 use crate::units::{EnergyUnit, LengthUnit};
 use std::sync::Arc;
 
@@ -233,6 +233,8 @@ pub struct Findings {
     pub reach: Option<Reach>,
     /// Figures of the densities of the levels without rotation.
     pub densities: Densities,
+    /// Where the lowest levels of the Morse fit are, v ascending; empty without one.
+    pub morse_positions: Vec<Position>,
     /// Thermal averages by temperature; empty without levels.
     pub thermal: Vec<ThermalPoint>,
     /// All remarks, the gravest first.
@@ -255,6 +257,7 @@ impl Findings {
             force_constant_hartree_per_bohr2: curve.local.second_hartree,
             reduced_mass_me: masses.reduced_mass_me,
             morse_per_cm: morse.map_or(&[], |f| &f.levels_per_cm),
+            morse_positions: &self.morse_positions,
         })
     }
 
@@ -265,6 +268,13 @@ impl Findings {
             let curve = self.curve.as_ref()?;
             Some(default_window(curve.local.r_e_bohr, &r, self.source.length_unit))
         })
+    }
+
+    /// Density and populations at a temperature; none without levels or outside the temperatures that are computed.
+    pub fn thermal_density(&self, kelvin: f64) -> Option<ThermalDensity> {
+        let input = self.thermal_input()?;
+        let spring = (input.force_constant_hartree_per_bohr2, input.reduced_mass_me);
+        thermal_density(&self.levels, self.curve.as_ref()?.local.r_e_bohr, spring, kelvin)
     }
 
     /// The fit of a family that succeeded, where there is one.

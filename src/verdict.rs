@@ -205,7 +205,7 @@ mod tests {
         found.x_plus_error = Some((0.014, ErrorSource::Noise));
         assert_eq!(interval_words(&found), "holds from −0.041 to +0.04 Å");
         found.x_plus_error = Some((0.08, ErrorSource::Noise));
-        assert_eq!(interval_words(&found), "holds from about −0.041 to +0.044 Å");
+        assert_eq!(interval_words(&found), "holds from about −0.041 to +0.04 Å");
     }
 
     #[test]

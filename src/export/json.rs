@@ -376,8 +376,16 @@ fn thermal_point(point: &ThermalPoint) -> Value {
         value["mean_square_x"] = point.harmonic_mean_square_x_bohr2.map_or(Value::Null, square);
         value
     });
+    let morse = point.morse.as_ref().map(|m| {
+        let mut value = averages(m);
+        value["mean_r"] = point.morse_mean_r_bohr.map_or(Value::Null, angstrom);
+        value["mean_square_x"] = point.morse_mean_square_x_bohr2.map_or(Value::Null, square);
+        value
+    });
     let rovibrational = point.rotating.map(|r| {
         let mut value = averages(&r.rovibrational);
+        value["harmonic"] = r.harmonic.as_ref().map_or(Value::Null, averages);
+        value["morse"] = r.morse.as_ref().map_or(Value::Null, averages);
         value["mean_r"] = angstrom(r.mean_r_bohr);
         value["mean_square_x"] = square(r.mean_square_x_bohr2);
         value
@@ -395,7 +403,7 @@ fn thermal_point(point: &ThermalPoint) -> Value {
         "mean_r": angstrom(point.mean_r_bohr),
         "mean_square_x": square(point.mean_square_x_bohr2),
         "harmonic": harmonic,
-        "morse": point.morse.as_ref().map(averages),
+        "morse": morse,
         "populations": point.populations,
         "rovibrational": rovibrational,
         "ideal_gas": ideal_gas,

@@ -31,7 +31,7 @@ pub use gauge::gauge;
 pub use ladders::{Ladder, Ladders, ladders};
 pub use residuals::residuals;
 pub use sentence::{Sentence, sentence};
-pub use thermal::thermal_figure;
+pub use thermal::{ThermalPanel, thermal_figure, thermal_panels};
 pub use views::{Views, views};
 pub use window_study::{WindowPicture, WindowTarget};
 
@@ -148,7 +148,7 @@ pub struct Axis {
 impl Axis {
     /// Title and unit as written along the axis.
     pub fn text(&self) -> String {
-        format!("{} / {}", self.title, self.unit)
+        if self.unit.is_empty() { self.title.to_owned() } else { format!("{} / {}", self.title, self.unit) }
     }
 }
 

@@ -179,6 +179,7 @@ pub fn study_observed(scan: &Scan, settings: &Settings, observer: &Observer) -> 
         constants: Constants::default(),
         reach: None,
         densities: Densities::default(),
+        morse_positions: Vec::new(),
         thermal: Vec::new(),
         notices: scan.notices.clone(),
     };

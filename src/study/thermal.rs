@@ -1,20 +1,27 @@
 //! Thermal averages of a study: over the levels found, and over E(v, J) when rotation is asked for.
 
 use crate::findings::Findings;
+use crate::fit::Family;
 use crate::notice::{Code, Notice};
+use crate::potential::Potential as _;
 use crate::potential::curve::ScanCurve;
+use crate::radial::{self, RadialRequest};
 use crate::species::{Masses, mean_atomic_mass_u};
 use crate::thermal::{
-    self, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings, ideal_gas, over_levels,
-    rotating_levels,
+    self, Averages, Position, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings, ideal_gas,
+    over_levels, rigid_rotor, rotating_levels,
 };
-use crate::units::BOLTZMANN_PER_CM_PER_KELVIN;
+use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, rotational_constant_per_cm};
 
 /// Levels with a Boltzmann factor below e^−30 do not change a sum.
 const HIGHEST_IN_KT: f64 = 30.0;
 
-/// Fills `findings.thermal`.
+/// Levels of the Morse fit whose position is computed: far more than are populated below the dissociation of a bond.
+const MORSE_LEVELS: usize = 40;
+
+/// Fills `findings.thermal`, and before it `findings.morse_positions`.
 pub fn fill(findings: &mut Findings, curve: &ScanCurve) {
+    findings.morse_positions = morse_positions(findings).unwrap_or_default();
     let Some(input) = findings.thermal_input() else { return };
     let Some(masses) = &findings.masses else { return };
     let settings = &findings.settings.thermal;
@@ -29,6 +36,30 @@ pub fn fill(findings: &mut Findings, curve: &ScanCurve) {
     notices.extend(unsupported(&points));
     findings.thermal = points;
     findings.notices.append(&mut notices);
+}
+
+/// ⟨r⟩ and ⟨x²⟩ of the lowest levels of the Morse fit that are populated at the highest temperature.
+fn morse_positions(findings: &Findings) -> Option<Vec<Position>> {
+    let (fit, mass_me) = (findings.fit_of(Family::Morse)?, findings.masses.as_ref()?.reduced_mass_me);
+    let levels = findings.fits.iter().find(|f| f.request.family == Family::Morse)?;
+    let highest = findings.settings.thermal.temperatures_kelvin.iter().copied().fold(0.0, f64::max);
+    let ceiling = HIGHEST_IN_KT * BOLTZMANN_PER_CM_PER_KELVIN * highest;
+    let lowest = levels.levels_per_cm.first()?;
+    let populated = levels.levels_per_cm.iter().take_while(|e| **e - lowest <= ceiling).count();
+    let request = RadialRequest {
+        reduced_mass_me: mass_me,
+        rotation_x: 0.0,
+        relative_accuracy: findings.settings.levels.relative_accuracy,
+        highest_v: Some(populated.clamp(1, MORSE_LEVELS) - 1),
+    };
+    let r_e = fit.model.minimum_bohr();
+    let solution = radial::solve(&fit.model, &request).ok()?;
+    let seen = solution.observables(&fit.model, r_e, fit.model.energy_hartree(r_e));
+    let position = |o: radial::Observables| Position {
+        mean_r_bohr: o.mean_r_bohr,
+        mean_square_x_bohr2: o.mean_square_x_bohr2,
+    };
+    Some(seen.into_iter().map(position).collect())
 }
 
 fn left_out(settings: &ThermalSettings) -> Option<Notice> {
@@ -82,11 +113,43 @@ fn rotate(
     let settings = &findings.settings.thermal;
     let weights = spin_weights(settings, masses);
     let mass_u = molecule_mass_u(masses);
+    let rigid = rotational_constant_per_cm(curve.local.r_e_bohr, masses.reduced_mass_me);
+    let of_morse = findings.fit_of(Family::Morse).and_then(|fit| {
+        rotating_levels(
+            &fit.model,
+            masses.reduced_mass_me,
+            HIGHEST_IN_KT * BOLTZMANN_PER_CM_PER_KELVIN * highest_kelvin,
+            highest_v.min(MORSE_LEVELS),
+            findings.settings.levels.relative_accuracy,
+        )
+        .ok()
+    });
     for point in points {
-        point.rotating =
-            Some(at(&levels, weights, mass_u, f64::from(settings.electronic_weight), point.kelvin));
+        let electronic = f64::from(settings.electronic_weight);
+        let mut rotating = at(&levels, weights, mass_u, electronic, point.kelvin);
+        let rotor = rigid_rotor(rigid, weights, point.kelvin);
+        rotating.harmonic = point.harmonic.map(|h| h.with(&rotor));
+        rotating.morse = of_morse.as_ref().map(|levels| counted(levels, weights, point.kelvin).1);
+        point.rotating = Some(rotating);
     }
     None
+}
+
+/// The levels that count, each with its weight, the lowest first; and the averages over them.
+fn counted(
+    levels: &[RotatingLevel],
+    weights: SpinWeights,
+    kelvin: f64,
+) -> (Vec<(&RotatingLevel, f64)>, Averages) {
+    let mut counted: Vec<(&RotatingLevel, f64)> = levels
+        .iter()
+        .map(|l| (l, weights.of(l.j) * f64::from(2 * l.j + 1)))
+        .filter(|(_, weight)| *weight > 0.0)
+        .collect();
+    counted.sort_by(|a, b| a.0.energy_per_cm.total_cmp(&b.0.energy_per_cm));
+    let lowest = counted.first().map_or(0.0, |(l, _)| l.energy_per_cm);
+    let averages = over_levels(counted.iter().map(|(l, g)| (l.energy_per_cm - lowest, *g)), kelvin);
+    (counted, averages)
 }
 
 fn at(
@@ -96,14 +159,8 @@ fn at(
     electronic_weight: f64,
     kelvin: f64,
 ) -> Rotating {
-    let mut counted: Vec<(&RotatingLevel, f64)> = levels
-        .iter()
-        .map(|l| (l, weights.of(l.j) * f64::from(2 * l.j + 1)))
-        .filter(|(_, weight)| *weight > 0.0)
-        .collect();
-    counted.sort_by(|a, b| a.0.energy_per_cm.total_cmp(&b.0.energy_per_cm));
+    let (counted, rovibrational) = counted(levels, weights, kelvin);
     let lowest = counted.first().map_or(0.0, |(l, _)| l.energy_per_cm);
-    let rovibrational = over_levels(counted.iter().map(|(l, g)| (l.energy_per_cm - lowest, *g)), kelvin);
     let kt = BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
     let average = |value: fn(&RotatingLevel) -> f64| {
         let terms = counted.iter().map(|(l, g)| g * (-(l.energy_per_cm - lowest) / kt).exp() * value(l));
@@ -113,6 +170,8 @@ fn at(
         rovibrational,
         mean_r_bohr: average(|l| l.mean_r_bohr),
         mean_square_x_bohr2: average(|l| l.mean_square_x_bohr2),
+        harmonic: None,
+        morse: None,
         ideal_gas: mass_u.map(|mass| ideal_gas(&rovibrational, mass, electronic_weight, kelvin)),
     }
 }

@@ -2,13 +2,15 @@
 //!
 //! Energies count from the lowest level, so that q goes to 1 at low temperature.
 
+mod density;
 mod ideal_gas;
 mod rotation;
 mod sums;
 
+pub use density::{ThermalDensity, thermal_density};
 pub use ideal_gas::{IdealGas, STANDARD_PRESSURE_PASCAL, SpinWeights, ideal_gas};
-pub use rotation::{RotatingLevel, rotating_levels};
-pub use sums::{Averages, harmonic, over_levels};
+pub use rotation::{RotatingLevel, rigid_rotor, rotating_levels};
+pub use sums::{Averages, boltzmann, harmonic, over_levels};
 
 use crate::radial::Level;
 use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, to_per_cm};
@@ -18,6 +20,8 @@ use serde::{Deserialize, Serialize};
 pub const TEMPERATURES_KELVIN: (f64, f64) = (1e-3, 1e5);
 /// Largest share of a thermal average that may rest on levels which lean on a tail, or lie beyond the last one.
 const UNSUPPORTED_SHARE: f64 = 1e-4;
+/// Largest population of levels whose position is not known.
+const BEYOND_POSITIONS: f64 = 1e-9;
 /// Levels whose populations are listed.
 const POPULATIONS: usize = 12;
 
@@ -67,6 +71,10 @@ pub struct ThermalPoint {
     pub harmonic_mean_square_x_bohr2: Option<f64>,
     /// Over the levels of the Morse fit; none without one.
     pub morse: Option<Averages>,
+    /// ⟨r⟩_T of the Morse fit in bohr; none without one, and where levels beyond those solved for are populated.
+    pub morse_mean_r_bohr: Option<f64>,
+    /// ⟨(r − r_e)²⟩_T of the Morse fit about its own r_e in bohr²; likewise.
+    pub morse_mean_square_x_bohr2: Option<f64>,
     /// Populations of the lowest levels, v ascending.
     pub populations: Vec<f64>,
     /// Over E(v, J) and as an ideal gas; none unless asked for.
@@ -85,6 +93,10 @@ pub struct Rotating {
     pub mean_r_bohr: f64,
     /// ⟨x²⟩_T about r_e in bohr².
     pub mean_square_x_bohr2: f64,
+    /// The harmonic oscillator and a rigid rotor of length r_e, with the same weights.
+    pub harmonic: Option<Averages>,
+    /// Over E(v, J) of the Morse fit, with the same weights; none without one.
+    pub morse: Option<Averages>,
     /// The ideal gas at 1 bar; none when the masses of the atoms are not known.
     pub ideal_gas: Option<IdealGas>,
 }
@@ -100,6 +112,17 @@ pub struct ThermalInput<'a> {
     pub reduced_mass_me: f64,
     /// Levels of the Morse fit above its own minimum in cm⁻¹, v ascending; may be empty.
     pub morse_per_cm: &'a [f64],
+    /// Where the lowest of them are, v ascending; may be shorter or empty.
+    pub morse_positions: &'a [Position],
+}
+
+/// Where a level is, in atomic units.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Position {
+    /// ⟨r⟩ in bohr.
+    pub mean_r_bohr: f64,
+    /// ⟨(r − r_e)²⟩ in bohr².
+    pub mean_square_x_bohr2: f64,
 }
 
 /// Thermal averages at each temperature, without rotation.
@@ -127,6 +150,13 @@ pub fn thermal(input: &ThermalInput, temperatures_kelvin: &[f64]) -> Vec<Thermal
             input.levels.iter().zip(&weights).filter(|(l, _)| l.leans_on_tail).map(|(_, w)| w).sum();
         let beyond = weights.last().copied().unwrap_or(0.0);
         let is_harmonic = omega > 0.0;
+        let morse_average = |value: fn(&Position) -> f64| {
+            let weights = sums::boltzmann(&morse, kelvin);
+            let known = input.morse_positions;
+            let beyond: f64 = weights.iter().skip(known.len()).sum();
+            (!known.is_empty() && !weights.is_empty() && beyond < BEYOND_POSITIONS)
+                .then(|| known.iter().zip(&weights).map(|(p, w)| w * value(p)).sum())
+        };
         ThermalPoint {
             kelvin,
             vibrational: over_levels(excitations.iter().map(|e| (*e, 1.0)), kelvin),
@@ -138,6 +168,8 @@ pub fn thermal(input: &ThermalInput, temperatures_kelvin: &[f64]) -> Vec<Thermal
                 0.5 / (input.reduced_mass_me * omega_hartree) / (0.5 * u).tanh()
             }),
             morse: (!morse.is_empty()).then(|| over_levels(morse.iter().map(|e| (*e, 1.0)), kelvin)),
+            morse_mean_r_bohr: morse_average(|p| p.mean_r_bohr),
+            morse_mean_square_x_bohr2: morse_average(|p| p.mean_square_x_bohr2),
             populations: weights.iter().take(POPULATIONS).copied().collect(),
             rotating: None,
             converged: leaning + beyond <= UNSUPPORTED_SHARE,

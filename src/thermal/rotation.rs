@@ -1,8 +1,9 @@
 //! Levels E(v, J) for the rovibrational sum: solved for each J, not taken from an expansion.
 
+use super::{Averages, SpinWeights, over_levels};
 use crate::potential::Potential;
 use crate::radial::{RadialError, RadialRequest, bound_states};
-use crate::units::to_per_cm;
+use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, to_per_cm};
 
 /// One level with rotation.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -19,6 +20,8 @@ pub struct RotatingLevel {
     pub mean_square_x_bohr2: f64,
 }
 
+/// A rigid rotor is summed up to this J at most.
+const MOST_J: u32 = 20_000;
 /// No J beyond this one is solved for.
 const HIGHEST_J: u32 = 600;
 
@@ -73,4 +76,39 @@ pub fn rotating_levels(
         highest_v = highest_v.min(added - 1);
     }
     Ok(levels)
+}
+
+/// A rigid rotor, E = B J(J + 1), by its sum with weights 2J + 1 times nuclear spin, counted from its lowest level.
+pub fn rigid_rotor(b_per_cm: f64, weights: SpinWeights, kelvin: f64) -> Averages {
+    let energy = |j: u32| b_per_cm * f64::from(j) * f64::from(j + 1);
+    // e^−40 of the largest term ends the sum.
+    let highest = 40.0 * BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
+    let levels: Vec<(f64, f64)> = (0..=MOST_J)
+        .take_while(|&j| j < 2 || energy(j) <= highest)
+        .map(|j| (energy(j), weights.of(j) * f64::from(2 * j + 1)))
+        .filter(|(_, weight)| *weight > 0.0)
+        .collect();
+    let lowest = levels.first().map_or(0.0, |l| l.0);
+    over_levels(levels.iter().map(|(e, g)| (e - lowest, *g)), kelvin)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// At high temperature q → kT/(σ B) + 1/(3σ) (Mulholland 1928), C → k and U → kT − B/3.
+    #[test]
+    fn the_rigid_rotor_becomes_classical() {
+        let (b, kelvin) = (2.0, 3000.0);
+        let kt = BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
+        for number in [1.0, 2.0] {
+            let found = rigid_rotor(b, SpinWeights::Symmetry(number), kelvin);
+            assert!((found.partition_function * number - kt / b - 1.0 / 3.0).abs() < 1e-3);
+            assert!((found.mean_energy_per_cm - (kt - b / 3.0)).abs() < 1e-3);
+            assert!((found.heat_capacity_boltzmann - 1.0).abs() < 1e-6);
+        }
+        // Only odd J: the lowest level is J = 1, of weight 3.
+        let odd = rigid_rotor(b, SpinWeights::EvenOdd(0.0, 1.0), 0.1);
+        assert!((odd.partition_function - 3.0).abs() < 1e-12);
+    }
 }

@@ -18,6 +18,17 @@ pub struct Averages {
 }
 
 impl Averages {
+    /// Of two motions that know nothing of each other: q multiplies, all else adds.
+    pub fn with(&self, other: &Self) -> Self {
+        Self {
+            partition_function: self.partition_function * other.partition_function,
+            log_partition_function: self.log_partition_function + other.log_partition_function,
+            mean_energy_per_cm: self.mean_energy_per_cm + other.mean_energy_per_cm,
+            heat_capacity_boltzmann: self.heat_capacity_boltzmann + other.heat_capacity_boltzmann,
+            entropy_boltzmann: self.entropy_boltzmann + other.entropy_boltzmann,
+        }
+    }
+
     /// U in kJ/mol.
     pub fn mean_energy_kilojoule_per_mole(&self) -> f64 {
         self.mean_energy_per_cm / BOLTZMANN_PER_CM_PER_KELVIN * GAS_CONSTANT_JOULE_PER_MOLE_KELVIN * 1e-3
@@ -73,8 +84,8 @@ pub fn harmonic(omega_per_cm: f64, kelvin: f64) -> Averages {
     }
 }
 
-/// Populations of levels (cm⁻¹ above the lowest, which comes first).
-pub(super) fn boltzmann(excitations_per_cm: &[f64], kelvin: f64) -> Vec<f64> {
+/// Populations of levels (cm⁻¹ above the lowest, which comes first) at one temperature; they add up to 1.
+pub fn boltzmann(excitations_per_cm: &[f64], kelvin: f64) -> Vec<f64> {
     let kt = BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
     let factors: Vec<f64> = excitations_per_cm.iter().map(|e| (-e / kt).exp()).collect();
     // The small ones first.

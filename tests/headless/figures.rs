@@ -55,8 +55,8 @@ fn pictures_have_every_series_axis_title_and_legend_entry() {
         ("residuals", &["Harmonic", "Morse", "Polynomial 6"], ["bond length / Å", "residual / cm⁻¹"]),
         (
             "thermal",
-            &["harmonic", "Morse fit", "numerical"],
-            ["temperature / K", "vibrational heat capacity / J/(mol K)"],
+            &["harmonic", "Morse fit", "numerical", "tolerance", "reach", "temperatures listed"],
+            ["temperature / K", "heat capacity / J/(mol K)"],
         ),
         (
             "window-study",
@@ -75,6 +75,21 @@ fn pictures_have_every_series_axis_title_and_legend_entry() {
             assert!(found.texts.iter().any(|t| t == title), "{what}: no {title} in {:?}", found.texts);
         }
     }
+    // The thermal picture has a panel a quantity, each with its title and unit, and names the levels it counts.
+    let thermal = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &["--what", "thermal"]].concat()));
+    for text in [
+        "deviation of q / %",
+        "deviation of U / % of kT",
+        "population / %",
+        "mean bond length / Å",
+        "mean square x / 10⁻³ Å²",
+        "v = 0",
+        "v = 1",
+    ] {
+        assert!(thermal.texts.iter().any(|t| t == text), "{text} in {:?}", thermal.texts);
+    }
+    // The temperature stands below both columns, once each.
+    assert_eq!(thermal.texts.iter().filter(|t| *t == "temperature / K").count(), 2);
     let ladders = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &["--what", "ladders"]].concat()));
     for name in ["harmonic", "numerical", "Morse", "Polynomial 6"] {
         assert!(ladders.texts.iter().any(|t| t == name), "{name} in {:?}", ladders.texts);
@@ -83,6 +98,10 @@ fn pictures_have_every_series_axis_title_and_legend_entry() {
     }
     assert!(ladders.texts.iter().any(|t| t == "energy above the minimum / cm⁻¹"));
     assert!(ladders.texts.iter().any(|t| t == "beyond tolerance"));
+    // Harmonic minus numerical at v = 1 of LiH, 46 cm⁻¹ by ω_e x_e (v + ½)² with 23 cm⁻¹ [Huber & Herzberg 1979] less
+    // what higher terms take; the picture writes it over the rung.
+    let off = |t: &String| t.strip_prefix('+').and_then(|n| n.parse::<f64>().ok());
+    assert!(ladders.texts.iter().filter_map(off).any(|d| (45.0..60.0).contains(&d)), "{:?}", ladders.texts);
 }
 
 /// Every fit has its row with three marks at least and its distance in AICc; the sentence stands below.
@@ -115,6 +134,50 @@ fn size_levels_and_bytes() {
     assert!(String::from_utf8(dark).expect("UTF-8").contains("#12161b"));
 }
 
+/// Follows startxref and the table it points at to every object in use; returns how many there are.
+fn references_checked(pdf: &[u8]) -> usize {
+    let find = |needle: &[u8], from: usize| {
+        pdf[from..].windows(needle.len()).position(|w| w == needle).map(|i| from + i)
+    };
+    let number = |at: usize| -> usize {
+        let digits: String = pdf[at..].iter().map(|b| *b as char).take_while(char::is_ascii_digit).collect();
+        digits.parse().expect("a number")
+    };
+    let start = (0..pdf.len()).rev().find(|&i| pdf[i..].starts_with(b"startxref")).expect("startxref");
+    let table = number(start + 10);
+    assert!(pdf[table..].starts_with(b"xref"), "startxref points at the table");
+    let trailer = find(b"trailer", table).expect("trailer");
+    let lines = std::str::from_utf8(&pdf[table..trailer]).expect("ASCII");
+    let mut objects = 0;
+    for (index, line) in
+        lines.lines().skip(2).enumerate().skip(1).filter(|(_, l)| l.ends_with(" n ") || l.ends_with(" n"))
+    {
+        let offset: usize = line[..10].parse().expect("an offset");
+        let head = format!("{index} 0 obj");
+        assert!(pdf[offset..].starts_with(head.as_bytes()), "object {index} at {offset}");
+        assert!(find(b"endobj", offset).is_some());
+        objects += 1;
+    }
+    objects
+}
+
+/// Where the viewer is installed the page is painted, at its size and not blank; elsewhere the structure has to do.
+fn opens_in_pdftoppm(pdf: &[u8], what: &str) {
+    let folder = tempfile::tempdir().expect("a folder");
+    let path = folder.path().join("f.pdf");
+    fs::write(&path, pdf).expect("written");
+    let painted = std::process::Command::new("pdftoppm").args(["-r", "72", "-gray"]).arg(&path).output();
+    let Ok(painted) = painted else {
+        println!("pdftoppm is not installed; {what} was checked by its structure only");
+        return;
+    };
+    assert!(painted.status.success(), "{what}: {}", String::from_utf8_lossy(&painted.stderr));
+    let picture = painted.stdout;
+    assert!(picture.starts_with(b"P5"), "{what}");
+    let grey: std::collections::BTreeSet<u8> = picture[picture.len() / 4..].iter().copied().collect();
+    assert!(grey.len() > 10, "{what} is blank");
+}
+
 #[test]
 fn a_pdf_is_one_page_with_its_face() {
     let pdf = figure("lih_X_A.csv", "pdf", &LIH);
@@ -122,6 +185,13 @@ fn a_pdf_is_one_page_with_its_face() {
     let has = |needle: &[u8]| pdf.windows(needle.len()).any(|w| w == needle);
     // 140 mm are 396.85 points.
     assert!(has(b"/MediaBox [0 0 396.85") && has(b"/FontFile3") && has(b"/ToUnicode"));
+    // Every picture: the cross-reference table points at the objects it names, and every object is closed.
+    for what in ["curve", "gauge", "residuals", "ladders", "thermal"] {
+        let pdf = figure("lih_X_A.csv", "pdf", &[&LIH[..], &["--what", what]].concat());
+        let objects = references_checked(&pdf);
+        assert!(objects > 5, "{what}: {objects} objects");
+        opens_in_pdftoppm(&pdf, what);
+    }
 }
 
 #[test]

@@ -88,13 +88,19 @@ fn sampled_morse_curves_agree_to_1e_5_up_to_2000_kelvin() {
         settings.masses.reduced_mass_u = Some(number(&parameters["reduced_mass_amu"]));
         let scan = read_scan("morse.csv", text.as_bytes(), &settings.read).unwrap();
         let findings = study(&scan, &settings).unwrap();
-        let mut worst = 0.0_f64;
+        let (mut worst, mut positions) = (0.0_f64, 0);
         for point in &findings.thermal {
             let rows = block["morse"].as_array().unwrap();
             let Some(row) = rows.iter().find(|r| number(&r["T_K"]) == point.kelvin) else { continue };
             let what = format!("{} sampled, {} K", block["name"], point.kelvin);
             agree(&point.vibrational, row, 1e-5, &what);
             agree(&point.morse.unwrap(), row, 1e-5, &what);
+            // The Morse fit of a Morse curve is the curve: its positions are those of the numerical levels.
+            if let Some(mean) = point.morse_mean_r_bohr {
+                close(mean, point.mean_r_bohr, 1e-5, &what);
+                close(point.morse_mean_square_x_bohr2.unwrap(), point.mean_square_x_bohr2, 1e-4, &what);
+                positions += 1;
+            }
             // The I2-like well is only 9 kT deep at 2000 K: its last levels count, and that is said.
             let shallow = block["name"] == "I2-like" && point.kelvin == 2000.0;
             assert_eq!(point.converged, !shallow, "{what}");
@@ -107,6 +113,7 @@ fn sampled_morse_curves_agree_to_1e_5_up_to_2000_kelvin() {
             }
         }
         println!("{}: partition function off by at most {worst:.1e}", block["name"]);
+        assert!(positions > 2, "{positions}");
     }
 }
 
@@ -164,7 +171,57 @@ fn ideal_gases_against_thermochemical_tables() {
             let (cp, s) = (gas.heat_capacity_joule_per_mole_kelvin, gas.entropy_joule_per_mole_kelvin);
             let (d_cp, d_s) = (cp - number(&row["Cp"]), s - number(&row["S"]));
             println!("  {} K: C_p {cp:.3} ({d_cp:+.3}), S {s:.3} ({d_s:+.3}) J/(mol K)", point.kelvin);
+            // H − H(0) at 298.15 K of the same tables, from memory: CO 8.671, N2 8.670, HCl 8.640, H2 8.467 kJ/mol.
+            let h = match molecule {
+                "CO" => 8.671,
+                "N2" => 8.670,
+                "HCl" => 8.640,
+                _ => 8.467,
+            };
+            if point.kelvin == 298.15 {
+                let d_h = gas.enthalpy_kilojoule_per_mole - h;
+                println!("  H - H(0) {:.3} ({d_h:+.3}) kJ/mol", gas.enthalpy_kilojoule_per_mole);
+                assert!(d_h.abs() < 0.01, "{molecule}: {d_h}");
+            }
+            // The rigid rotor with the harmonic oscillator is near, the J sum of the Morse fit nearer.
+            let rotating = point.rotating.unwrap();
+            let off = |a: Option<Averages>| {
+                (a.unwrap().partition_function / rotating.rovibrational.partition_function - 1.0).abs()
+            };
+            println!(
+                "  q: rigid rotor off by {:.2e}, Morse by {:.2e}",
+                off(rotating.harmonic),
+                off(rotating.morse)
+            );
+            assert!(off(rotating.harmonic) < 0.06 && off(rotating.morse) < off(rotating.harmonic));
             assert!(d_cp.abs() < 0.03 && (d_s - by_b_e).abs() < 0.03, "{molecule} at {} K", point.kelvin);
         }
     }
+}
+
+/// The density at a temperature is normalised, its mean and its mean square are the thermal averages, and the harmonic
+/// one is the Gaussian that Bloch (1932) found; populations fall with v and add up to 1.
+#[test]
+fn thermal_densities_have_the_thermal_moments() {
+    let findings = real_scan("hf_ccsdt_cc-pvqz.csv", "H,F", &[298.15, 3000.0], false);
+    let r_e = findings.curve.as_deref().unwrap().local.r_e_bohr;
+    for point in &findings.thermal {
+        let found = findings.thermal_density(point.kelvin).unwrap();
+        let step = found.r_bohr[1] - found.r_bohr[0];
+        let moment = |density: &[f64], f: &dyn Fn(f64) -> f64| {
+            step * found.r_bohr.iter().zip(density).map(|(r, d)| f(*r) * d).sum::<f64>()
+        };
+        let numerical = &found.numerical_per_bohr;
+        assert!((moment(numerical, &|_| 1.0) - 1.0).abs() < 1e-6);
+        close(moment(numerical, &|r| r), point.mean_r_bohr, 1e-6, "mean");
+        close(moment(numerical, &|r| (r - r_e).powi(2)), point.mean_square_x_bohr2, 1e-5, "mean square");
+        let variance = moment(&found.harmonic_per_bohr, &|r| (r - r_e).powi(2));
+        close(variance, point.harmonic_mean_square_x_bohr2.unwrap(), 1e-3, "harmonic mean square");
+        assert!((found.populations.iter().sum::<f64>() - 1.0).abs() < 1e-6);
+        assert!(found.populations.windows(2).all(|p| p[1] < p[0]));
+        assert!(
+            (found.harmonic_populations[0] - 1.0 / point.harmonic.unwrap().partition_function).abs() < 1e-12
+        );
+    }
+    assert!(findings.thermal_density(-1.0).is_none() && findings.thermal_density(f64::NAN).is_none());
 }

@@ -60,7 +60,8 @@ pub fn ticks((from, to): (f64, f64), wanted: f64) -> (Vec<f64>, usize) {
     }
     let power = rough.log10().floor();
     let ten = 10_f64.powf(power);
-    let step = [1.0, 2.0, 5.0, 10.0].map(|m| m * ten).into_iter().find(|s| *s >= rough).unwrap_or(10.0 * ten);
+    let step =
+        [1.0, 2.0, 5.0, 10.0].map(|m| m * ten).into_iter().find(|s| *s >= 0.75 * rough).unwrap_or(10.0 * ten);
     let decimals = (-step.log10().floor()).max(0.0) as usize;
     let first = (from / step).ceil() as i64;
     let last = (to / step).floor() as i64;
@@ -85,7 +86,7 @@ pub fn bottom_room(layout: &Layout) -> f64 {
 }
 
 fn wanted_up(layout: &Layout, height_pt: f64) -> f64 {
-    (height_pt / (4.0 * layout.font_pt)).clamp(3.0, 9.0)
+    (height_pt / (3.2 * layout.font_pt)).clamp(3.0, 9.0)
 }
 
 /// The grid, to be drawn behind everything.
@@ -114,8 +115,13 @@ fn all_ticks(layout: &Layout, frame: &Frame) -> (Ticks, Ticks) {
     )
 }
 
-/// Frame, tick marks, numbers and titles.
+/// Frame, tick marks, numbers and titles; the vertical title at the left edge of the paper.
 pub fn axes(layout: &Layout, frame: &Frame, x: Option<&Axis>, y: &Axis) -> Vec<Item> {
+    axes_at(layout, frame, x, y, 0.0)
+}
+
+/// The same with the vertical title at `left_pt`.
+pub fn axes_at(layout: &Layout, frame: &Frame, x: Option<&Axis>, y: &Axis, left_pt: f64) -> Vec<Item> {
     let (font, mark) = (layout.font_pt, 0.35 * layout.font_pt);
     let ((x_values, x_decimals), (y_values, y_decimals)) = all_ticks(layout, frame);
     let stroke = || layout.solid(layout.palette.text, 0.8);
@@ -141,7 +147,7 @@ pub fn axes(layout: &Layout, frame: &Frame, x: Option<&Axis>, y: &Axis) -> Vec<I
         items.push(layout.text([frame.left - 0.5 * font, at + 0.35 * font], label, Anchor::End));
     }
     items.push(Item::Text {
-        at: [1.15 * font, 0.5 * (frame.top + frame.bottom)],
+        at: [left_pt + 1.15 * font, 0.5 * (frame.top + frame.bottom)],
         text: y.text(),
         size_pt: font,
         colour: layout.palette.text,

@@ -3,7 +3,7 @@
 use super::axes::{self, Frame};
 use super::{Anchor, Item, Layout, line};
 use crate::figure::geometry::Bounds;
-use crate::figure::{Axis, Ladders};
+use crate::figure::{Axis, Ladder, Ladders, number};
 
 const ENERGY: Axis = Axis { title: "energy above the minimum", unit: "cm⁻¹" };
 /// Half a rung as a fraction of a column.
@@ -29,6 +29,12 @@ pub fn items(layout: &Layout, ladders: &Ladders, y: (f64, f64)) -> Vec<Item> {
         for (v, &energy) in column.energies_per_cm.iter().enumerate().filter(|(_, e)| shown(**e)) {
             let rung = [middle - HALF_RUNG, middle + HALF_RUNG].map(|x| frame.place([x, energy]));
             items.push(line(rung.to_vec(), layout.stroke(column.role, 1.5), 1.0));
+            let above = frame.place([middle, energy]);
+            let room = above[1] - 1.4 * font > frame.top;
+            if let Some(text) = difference(ladders, column, v, energy).filter(|_| room) {
+                let at = [above[0], above[1] - 0.45 * font];
+                items.push(layout.dim_text(at, text, Anchor::Middle));
+            }
             let next = ladders.columns.get(i + 1).and_then(|c| c.energies_per_cm.get(v));
             if let Some(&next) = next.filter(|e| shown(**e)) {
                 let tie = [[middle + HALF_RUNG, energy], [middle + 1.0 - HALF_RUNG, next]];
@@ -40,9 +46,23 @@ pub fn items(layout: &Layout, ladders: &Ladders, y: (f64, f64)) -> Vec<Item> {
         let at = frame.place([middle, y.0]);
         items.push(layout.text([at[0], frame.bottom + 1.4 * font], column.label.clone(), Anchor::Middle));
     }
+    if ladders.columns.len() > 1 {
+        let at = [frame.left + 0.6 * font, frame.top + 1.3 * font];
+        items.push(layout.dim_text(at, "numbers: minus numerical, in cm⁻¹", Anchor::Start));
+    }
     items.extend(names(layout, ladders, &frame, shown));
     items.extend(axes::axes(layout, &frame, None, &ENERGY));
     items
+}
+
+/// By how much a model's rung lies above the numerical one, in cm⁻¹.
+fn difference(ladders: &Ladders, column: &Ladder, v: usize, energy: f64) -> Option<String> {
+    let numerical = ladders.columns.iter().find(|c| c.label == "numerical")?;
+    if numerical.label == column.label {
+        return None;
+    }
+    let off = energy - numerical.energies_per_cm.get(v)?;
+    Some(number::signed(off, if off.abs() < 9.95 { 1 } else { 0 }))
 }
 
 /// v at the right of the last rungs, and the mark of the first level beyond the tolerance.

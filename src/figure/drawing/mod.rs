@@ -8,6 +8,7 @@ mod legend;
 pub mod palette;
 mod panel;
 mod stack;
+mod thermal;
 mod type_face;
 
 pub use axes::Frame;
@@ -15,7 +16,7 @@ pub use palette::{Palette, Rgb};
 pub use type_face::{FACE, GlyphRun, TypeFace};
 
 use super::geometry::Bounds;
-use super::{ComparisonPicture, Figure, Pictures, Role, WindowPicture, thermal_figure};
+use super::{ComparisonPicture, Figure, Pictures, Role, WindowPicture, thermal_panels};
 use crate::findings::Findings;
 use crate::units::to_angstrom;
 
@@ -30,7 +31,7 @@ pub enum Subject {
     Residuals,
     /// Levels side by side.
     Ladders,
-    /// Heat capacity over temperature.
+    /// Partition function, energy, heat capacity, populations, bond length and amplitude over temperature.
     Thermal,
     /// ω_e, ω_e x_e and k against the half width of the fit window.
     WindowStudy,
@@ -225,7 +226,8 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
     let share = match subject {
         Subject::Curve | Subject::Ladders => 0.72,
         Subject::Gauge | Subject::Residuals => 0.45,
-        Subject::Thermal | Subject::Comparison => 0.60,
+        Subject::Thermal => thermal::HEIGHT,
+        Subject::Comparison => 0.60,
         Subject::WindowStudy => 1.0,
     };
     let size_pt = [width_pt, (share * width_pt).max(16.0 * paper.font_pt)];
@@ -258,11 +260,9 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
             ladders::items(&layout, &pictures.ladders, bounds.y)
         }
         Subject::Thermal => {
-            let figure = thermal_figure(findings);
-            let bounds = figure_bounds(&figure)
-                .ok_or(nothing("there are no levels (name the atoms or a reduced mass)"))?;
-            let bounds = Bounds { x: (0.0, bounds.x.1), y: (0.0, 1.08 * bounds.y.1) };
-            panel::items(&layout, &figure, bounds, None)
+            let panels = thermal_panels(findings);
+            thermal::items(&layout, &panels)
+                .ok_or(nothing("there are no levels (name the atoms or a reduced mass)"))?
         }
         Subject::WindowStudy => {
             let picture = WindowPicture::of(findings)
@@ -356,6 +356,18 @@ impl Layout<'_> {
             colour: self.palette.role(role),
             width_pt: width * self.unit,
             dashes_pt: dashes.iter().map(|d| d * self.unit).collect(),
+        }
+    }
+
+    /// A text that stands back.
+    fn dim_text(&self, at: [f64; 2], text: impl Into<String>, anchor: Anchor) -> Item {
+        Item::Text {
+            at,
+            text: text.into(),
+            size_pt: 0.9 * self.font_pt,
+            colour: self.palette.dim,
+            anchor,
+            upwards: false,
         }
     }
 

@@ -203,7 +203,27 @@ pub(super) fn entries(
         Shape::Line(points) if s.role == Role::Tail => !clip_line(points, bounds).is_empty(),
         _ => true,
     };
-    for series in figure.series.iter().filter(shown) {
+    for entry in entries_of(layout, figure.series.iter().filter(shown)) {
+        if !entries.iter().any(|e| e.label == entry.label) {
+            entries.push(entry);
+        }
+    }
+    let shown =
+        |p: &&Pictures| p.levels.iter().any(|l| within(l.energy_per_cm, bounds.y) && !l.parts.is_empty());
+    if pictures.filter(shown).is_some() {
+        for (label, colour) in
+            [("density inside the reach", layout.palette.reach), ("density outside", layout.palette.outside)]
+        {
+            entries.push(Entry { label: label.to_owned(), sign: Sign::Area(colour, 2.0 * DENSITY) });
+        }
+    }
+    entries
+}
+
+/// One entry for each name.
+pub(super) fn entries_of<'a>(layout: &Layout, all: impl Iterator<Item = &'a Series>) -> Vec<Entry> {
+    let mut entries: Vec<Entry> = Vec::new();
+    for series in all {
         if entries.iter().any(|e| e.label == series.label) {
             continue;
         }
@@ -214,15 +234,6 @@ pub(super) fn entries(
             _ => Sign::Line(stroke),
         };
         entries.push(Entry { label: series.label.clone(), sign });
-    }
-    let shown =
-        |p: &&Pictures| p.levels.iter().any(|l| within(l.energy_per_cm, bounds.y) && !l.parts.is_empty());
-    if pictures.filter(shown).is_some() {
-        for (label, colour) in
-            [("density inside the reach", layout.palette.reach), ("density outside", layout.palette.outside)]
-        {
-            entries.push(Entry { label: label.to_owned(), sign: Sign::Area(colour, 2.0 * DENSITY) });
-        }
     }
     entries
 }
