@@ -4,68 +4,171 @@ use super::{Axis, BOND_LENGTH, Figure, Role, Series, Shape, number};
 use crate::findings::Findings;
 use crate::potential::Potential;
 use crate::potential::curve::ScanCurve;
-use crate::units::to_angstrom;
+use crate::reach::{Interval, Reach};
+use crate::units::{ANGSTROM_PER_BOHR, to_angstrom, to_per_cm};
 
-/// Deviation (V − V_e − H)/H in percent at displacement x; near x = 0 from its limit V‴ x/(3 k), as
-/// a difference of nearly equal numbers would lose all digits.
-fn deviation_percent(curve: &ScanCurve, k: f64, third: f64, x: f64) -> f64 {
-    if x.abs() < 1e-3 {
-        return 100.0 * third * x / (3.0 * k);
-    }
-    let h = 0.5 * k * x * x;
-    100.0 * (curve.energy_hartree(curve.r_e_bohr.value + x) - curve.v_e_hartree.value - h) / h
+/// What the gauge measures.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum GaugeMeasure {
+    /// (V − V_e − H)/H in percent, H = ½ k x².
+    #[default]
+    EnergyPercent,
+    /// V − V_e − H in cm⁻¹.
+    EnergyPerCm,
+    /// (V′ − k x)/(k x) in percent.
+    ForcePercent,
+    /// V′ − k x in cm⁻¹/Å.
+    ForcePerCmAngstrom,
 }
 
-/// Deviation of the curve from its parabola in percent of the parabola's energy, with the tolerance,
-/// the leading-order line and the zero-point amplitude.
+impl GaugeMeasure {
+    /// The measures by their names on the command line.
+    pub const ALL: [(&'static str, Self); 4] = [
+        ("energy", Self::EnergyPercent),
+        ("energy-cm-1", Self::EnergyPerCm),
+        ("force", Self::ForcePercent),
+        ("force-cm-1", Self::ForcePerCmAngstrom),
+    ];
+
+    const fn axis(self) -> Axis {
+        match self {
+            Self::EnergyPercent => Axis { title: "deviation", unit: "%" },
+            Self::EnergyPerCm => Axis { title: "deviation", unit: "cm⁻¹" },
+            Self::ForcePercent => Axis { title: "deviation of the force", unit: "%" },
+            Self::ForcePerCmAngstrom => Axis { title: "deviation of the force", unit: "cm⁻¹/Å" },
+        }
+    }
+
+    const fn about(self) -> &'static str {
+        match self {
+            Self::EnergyPercent => "(V − Vₑ − ½ k x²)/(½ k x²), with k = V″(rₑ).",
+            Self::EnergyPerCm => "V − Vₑ − ½ k x², with k = V″(rₑ).",
+            Self::ForcePercent => "(V′ − k x)/(k x), with k = V″(rₑ).",
+            Self::ForcePerCmAngstrom => "V′ − k x, with k = V″(rₑ).",
+        }
+    }
+
+    const fn leading_about(self) -> &'static str {
+        match self {
+            Self::EnergyPercent => "V‴ x/(3 k): what the cubic term alone would do.",
+            Self::EnergyPerCm => "V‴ x³/6: what the cubic term alone would do.",
+            Self::ForcePercent => "V‴ x/(2 k): what the cubic term alone would do.",
+            Self::ForcePerCmAngstrom => "V‴ x²/2: what the cubic term alone would do.",
+        }
+    }
+
+    /// What the cubic term alone would do at displacement x.
+    fn leading(self, k: f64, third: f64, x: f64) -> f64 {
+        match self {
+            Self::EnergyPercent => 100.0 * third * x / (3.0 * k),
+            Self::EnergyPerCm => to_per_cm(third * x.powi(3) / 6.0),
+            Self::ForcePercent => 100.0 * third * x / (2.0 * k),
+            Self::ForcePerCmAngstrom => to_per_cm(0.5 * third * x * x) / ANGSTROM_PER_BOHR,
+        }
+    }
+
+    /// The deviation at displacement x; near x = 0 relative ones from their limit, as a difference of nearly equal
+    /// numbers would lose all digits.
+    fn deviation(self, curve: &ScanCurve, k: f64, third: f64, x: f64) -> f64 {
+        let relative = matches!(self, Self::EnergyPercent | Self::ForcePercent);
+        if relative && x.abs() < 1e-3 {
+            return self.leading(k, third, x);
+        }
+        let r = curve.local.r_e_bohr + x;
+        let above = curve.above_minimum();
+        let h = 0.5 * k * x * x;
+        match self {
+            Self::EnergyPercent => 100.0 * (above.energy_hartree(r) - h) / h,
+            Self::EnergyPerCm => to_per_cm(above.energy_hartree(r) - h),
+            Self::ForcePercent => 100.0 * (above.derivatives_hartree(r)[1] / (k * x) - 1.0),
+            Self::ForcePerCmAngstrom => {
+                to_per_cm(above.derivatives_hartree(r)[1] - k * x) / ANGSTROM_PER_BOHR
+            }
+        }
+    }
+
+    /// The reach by this measure; the one by force serves both forces.
+    pub(super) const fn interval(self, reach: &Reach) -> &Interval {
+        match self {
+            Self::EnergyPercent => &reach.energy,
+            Self::EnergyPerCm => &reach.absolute,
+            Self::ForcePercent | Self::ForcePerCmAngstrom => &reach.force,
+        }
+    }
+
+    /// The tolerance in the unit of the axis, where it is one number.
+    pub(super) fn tolerance(self, reach: &Reach) -> Option<f64> {
+        match self {
+            Self::EnergyPercent | Self::ForcePercent => Some(100.0 * reach.tolerance),
+            Self::EnergyPerCm => Some(to_per_cm(reach.absolute_tolerance.hartree())),
+            Self::ForcePerCmAngstrom => None,
+        }
+    }
+}
+
+/// Deviation of the curve from its parabola in percent of the parabola's energy, see [`gauge_of`].
 pub fn gauge(findings: &Findings) -> Figure {
-    let y = Axis { title: "deviation", unit: "%" };
+    gauge_of(findings, GaugeMeasure::EnergyPercent)
+}
+
+/// Deviation of the curve from its parabola by a measure, with the tolerance, the leading-order line and the zero-point
+/// amplitude.
+pub fn gauge_of(findings: &Findings, measure: GaugeMeasure) -> Figure {
     let mut series = Vec::new();
     if let Some(curve) = findings.curve.as_deref()
         && let Some(k) = curve.derivatives_hartree[0].map(|e| e.value).filter(|k| *k > 0.0)
     {
         let third = curve.derivatives_hartree[1].map_or(0.0, |e| e.value);
-        series.extend(reach(findings, curve));
-        series.push(leading_order(curve, k, third));
-        series.push(exact(curve, k, third));
+        series.extend(reach(findings, curve, measure));
+        let leading = |x: f64| measure.leading(k, third, x);
+        series.push(line(curve, Role::LeadingOrder, "leading order", measure.leading_about(), &leading));
+        let exact = |x: f64| measure.deviation(curve, k, third, x);
+        series.push(line(curve, Role::Scanned, "deviation from the parabola", measure.about(), &exact));
     }
-    Figure { x: BOND_LENGTH, y, series }
+    Figure { x: BOND_LENGTH, y: measure.axis(), series }
 }
 
-fn exact(curve: &ScanCurve, k: f64, third: f64) -> Series {
+/// The classical turning points of the lowest levels at the zero line of a gauge: both ends of each, v ascending
+/// outwards. None without levels.
+pub fn gauge_turning_points(findings: &Findings, levels: usize) -> Option<Series> {
+    let ends = findings
+        .levels
+        .iter()
+        .take(levels)
+        .flat_map(|l| [l.inner_turning_point_bohr, l.outer_turning_point_bohr]);
+    let points: Vec<[f64; 2]> = ends.map(|r| [to_angstrom(r), 0.0]).collect();
+    (!points.is_empty()).then(|| Series {
+        role: Role::Zero,
+        label: "turning points of the levels".to_owned(),
+        about: "Where a classical particle of each level's energy turns: v = 0 inside, higher v outwards."
+            .to_owned(),
+        strong: None,
+        shape: Shape::Points(points),
+    })
+}
+
+/// A line over the whole scan: half the points within 40 % of r_e, where the curve bends.
+fn line(curve: &ScanCurve, role: Role, label: &str, about: &str, value: &dyn Fn(f64) -> f64) -> Series {
     let (first, last) = curve.scan_range_bohr;
     let r_e = curve.r_e_bohr.value;
     let n = 700;
-    // Half the points within 40 % of r_e, where the curve bends.
     let near = (0.4 * r_e).min(last - r_e).min(r_e - first).max(0.0);
     let mut x: Vec<f64> =
         (0..=n).map(|i| first - r_e + (last - first) * f64::from(i) / f64::from(n)).collect();
     x.extend((0..=n).map(|i| near * (2.0 * f64::from(i) / f64::from(n) - 1.0)));
     x.sort_by(f64::total_cmp);
     x.dedup();
-    let at = |x: f64| [to_angstrom(r_e + x), deviation_percent(curve, k, third, x)];
+    let at = |x: f64| [to_angstrom(r_e + x), value(x)];
     Series {
-        role: Role::Scanned,
-        label: "deviation from the parabola".to_owned(),
-        about: "(V − Vₑ − ½ k x²)/(½ k x²), with k = V″(rₑ).".to_owned(),
+        role,
+        label: label.to_owned(),
+        about: about.to_owned(),
         strong: None,
         shape: Shape::Line(x.into_iter().map(at).filter(|p| p.iter().all(|c| c.is_finite())).collect()),
     }
 }
 
-fn leading_order(curve: &ScanCurve, k: f64, third: f64) -> Series {
-    let (r_e, slope) = (curve.r_e_bohr.value, 100.0 * third / (3.0 * k));
-    let at = |x: f64| [to_angstrom(r_e + x), slope * x];
-    Series {
-        role: Role::LeadingOrder,
-        label: "leading order".to_owned(),
-        about: "V‴ x/(3 k): what the cubic term alone would do.".to_owned(),
-        strong: None,
-        shape: Shape::Line(vec![at(curve.scan_range_bohr.0 - r_e), at(curve.scan_range_bohr.1 - r_e)]),
-    }
-}
-
-fn reach(findings: &Findings, curve: &ScanCurve) -> Vec<Series> {
+fn reach(findings: &Findings, curve: &ScanCurve, measure: GaugeMeasure) -> Vec<Series> {
     let Some(reach) = findings.reach.as_ref() else { return Vec::new() };
     let r_e = curve.r_e_bohr.value;
     let end = |x: Option<f64>| x.map(|x| to_angstrom(r_e + x));
@@ -76,18 +179,20 @@ fn reach(findings: &Findings, curve: &ScanCurve) -> Vec<Series> {
         strong: None,
         shape,
     };
-    let tau = 100.0 * reach.tolerance;
+    let interval = measure.interval(reach);
     let mut series = vec![
         plain(
             Role::Reach,
             "reach",
             "Between the two crossings of the deviation with the tolerance.".to_owned(),
-            Shape::Band(end(reach.energy.x_minus_bohr), end(reach.energy.x_plus_bohr)),
+            Shape::Band(end(interval.x_minus_bohr), end(interval.x_plus_bohr)),
         ),
         plain(Role::Zero, "no deviation", String::new(), Shape::Level(0.0)),
-        plain(Role::Tolerance, "tolerance", "The tolerance of the reach.".to_owned(), Shape::Level(tau)),
-        plain(Role::Tolerance, "tolerance", "The tolerance of the reach.".to_owned(), Shape::Level(-tau)),
     ];
+    for tolerance in measure.tolerance(reach).into_iter().flat_map(|t| [t, -t]) {
+        let about = "The tolerance of the reach.".to_owned();
+        series.push(plain(Role::Tolerance, "tolerance", about, Shape::Level(tolerance)));
+    }
     if let Some(amplitude) = reach.zero_point_amplitude_bohr {
         series.push(plain(
             Role::ZeroPoint,

@@ -27,7 +27,7 @@ pub use comparison::{ComparedRow, ComparisonPicture, Measure};
 pub use curve::{fit_label, fit_role, main_plot};
 pub use densities::{LevelPicture, level_pictures};
 pub use density_lines::{DensityKind, DensityLine, DensityPicture, density_picture};
-pub use gauge::gauge;
+pub use gauge::{GaugeMeasure, gauge, gauge_of, gauge_turning_points};
 pub use ladders::{Ladder, Ladders, ladders};
 pub use residuals::residuals;
 pub use sentence::{Sentence, sentence};

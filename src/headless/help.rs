@@ -109,6 +109,7 @@ FIGURE
   --what NAME                curve (the default), gauge, residuals, ladders, thermal, window-study (and
                              asks for that study), comparison
   --view NAME                near-minimum (the default), whole-well, fit-window, all-points
+  --gauge MEASURE            what the gauge measures: energy (%, the default), energy-cm-1, force (%), force-cm-1
   --width-mm 140             width; the height follows
   --font-pt 9                font size
   --theme light|dark         colours (default: light, on white)

@@ -17,7 +17,7 @@ use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, rotational_constant_per_cm};
 const HIGHEST_IN_KT: f64 = 30.0;
 
 /// Levels of the Morse fit whose position is computed: far more than are populated below the dissociation of a bond.
-const MORSE_LEVELS: usize = 40;
+const MORSE_LEVELS: usize = 150;
 
 /// Fills `findings.thermal`, and before it `findings.morse_positions`.
 pub fn fill(findings: &mut Findings, curve: &ScanCurve) {

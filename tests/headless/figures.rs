@@ -121,6 +121,26 @@ fn the_comparison_shows_every_fit() {
     assert!(words.contains("support"), "{words}");
 }
 
+/// The gauge measures energy and force, in percent and in wavenumbers, with the turning points of the levels.
+#[test]
+fn the_gauge_has_four_measures() {
+    for (measure, title) in [
+        ("energy", "deviation / %"),
+        ("energy-cm-1", "deviation / cm⁻¹"),
+        ("force", "deviation of the force / %"),
+        ("force-cm-1", "deviation of the force / cm⁻¹/Å"),
+    ] {
+        let options = [&LIH[..], &["--what", "gauge", "--gauge", measure]].concat();
+        let found = read(&figure("lih_X_A.csv", "svg", &options));
+        assert!(found.texts.iter().any(|t| t == title), "{title} in {:?}", found.texts);
+        for name in ["deviation from the parabola", "leading order", "reach", "turning points of the levels"]
+        {
+            let parts: usize = found.series.iter().filter(|s| s.0 == name).map(|s| s.1).sum();
+            assert!(parts > 0, "{measure}: nothing drawn of {name} in {:?}", found.series);
+        }
+    }
+}
+
 /// The size is what was asked for; levels carry their number; two runs give the same bytes.
 #[test]
 fn size_levels_and_bytes() {

@@ -16,7 +16,10 @@ pub use palette::{Palette, Rgb};
 pub use type_face::{FACE, GlyphRun, TypeFace};
 
 use super::geometry::Bounds;
-use super::{ComparisonPicture, Figure, Pictures, Role, WindowPicture, thermal_panels};
+use super::{
+    ComparisonPicture, Figure, GaugeMeasure, Pictures, Role, Shape, WindowPicture, gauge_of,
+    gauge_turning_points, thermal_panels,
+};
 use crate::findings::Findings;
 use crate::units::to_angstrom;
 
@@ -89,14 +92,25 @@ pub struct Paper {
     pub view: View,
     /// Another part of it: angstrom, cm⁻¹ above the minimum.
     pub bounds: Option<Bounds>,
+    /// What the gauge measures.
+    pub gauge: GaugeMeasure,
 }
 
 impl Default for Paper {
     fn default() -> Self {
-        Self { width_mm: 140.0, font_pt: 9.0, dark: false, view: View::NearMinimum, bounds: None }
+        Self {
+            width_mm: 140.0,
+            font_pt: 9.0,
+            dark: false,
+            view: View::NearMinimum,
+            bounds: None,
+            gauge: GaugeMeasure::EnergyPercent,
+        }
     }
 }
 
+/// Levels whose turning points stand in a gauge.
+const GAUGE_LEVELS: usize = 6;
 /// Points (1/72 inch) in a millimetre.
 pub const PT_PER_MM: f64 = 72.0 / 25.4;
 
@@ -247,8 +261,11 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
             panel::items(&layout, &pictures.main, bounds, Some(&pictures))
         }
         Subject::Gauge => {
-            let bounds = gauge_bounds(findings, view).ok_or(nothing("the curve has no parabola"))?;
-            panel::items(&layout, &pictures.gauge, bounds, None)
+            let mut figure = gauge_of(findings, paper.gauge);
+            let bounds = gauge_bounds(findings, view, (&figure, paper.gauge));
+            let bounds = bounds.ok_or(nothing("the curve has no parabola"))?;
+            figure.series.extend(gauge_turning_points(findings, GAUGE_LEVELS));
+            panel::items(&layout, &figure, bounds, None)
         }
         Subject::Residuals => {
             let bounds = figure_bounds(&pictures.residuals).ok_or(nothing("no fit succeeded"))?;
@@ -311,10 +328,14 @@ fn figure_bounds(figure: &Figure) -> Option<Bounds> {
 
 /// The ordinate reaches a few tolerances to either side, the abscissa as far as the deviation and the zero-point
 /// amplitude are seen within.
-fn gauge_bounds(findings: &Findings, view: Option<Bounds>) -> Option<Bounds> {
+fn gauge_bounds(
+    findings: &Findings,
+    view: Option<Bounds>,
+    (figure, measure): (&Figure, GaugeMeasure),
+) -> Option<Bounds> {
     let (reach, curve) = (findings.reach.as_ref()?, findings.curve.as_ref()?);
-    let height = 400.0 * reach.tolerance;
-    let ends = [reach.energy.x_minus_bohr, reach.energy.x_plus_bohr].into_iter().flatten();
+    let interval = measure.interval(reach);
+    let ends = [interval.x_minus_bohr, interval.x_plus_bohr].into_iter().flatten();
     let widest = ends.fold(0.0, |w: f64, x| w.max(4.5 * x.abs()));
     let widest = widest.max(1.25 * reach.zero_point_amplitude_bohr.unwrap_or(0.0));
     let (first, last) = curve.scan_range_bohr;
@@ -324,6 +345,17 @@ fn gauge_bounds(findings: &Findings, view: Option<Bounds>) -> Option<Bounds> {
     } else {
         view?.x
     };
+    let height = measure.tolerance(reach).map(|t| 4.0 * t).or_else(|| {
+        // No tolerance: whatever the line does between the ends of the reach, four times over.
+        let at = [interval.x_minus_bohr, interval.x_plus_bohr].map(|x| x.map(|x| to_angstrom(r_e + x)));
+        let lines = figure.series.iter().filter_map(|s| match &s.shape {
+            Shape::Line(points) if s.role == Role::Scanned => Some(points),
+            _ => None,
+        });
+        let (from, to) = (at[0].unwrap_or(x.0), at[1].unwrap_or(x.1));
+        let inside = lines.flatten().filter(|p| p[0] >= from && p[0] <= to);
+        Some(4.0 * inside.map(|p| p[1].abs()).fold(0.0, f64::max))
+    })?;
     Some(Bounds { x, y: (-height, height) }).filter(Bounds::is_valid)
 }
 

@@ -3,6 +3,7 @@
 use super::UsageError;
 use super::choices::StudyChoices;
 use super::value::{finite, value};
+use crate::figure::GaugeMeasure;
 use crate::figure::drawing::{Paper, Subject, View};
 use lexopt::Parser;
 use std::path::PathBuf;
@@ -54,6 +55,10 @@ pub(super) fn figure_option(
             figure.subject = Some(value(parser, "what", &names(&Subject::ALL), subject)?);
         }
         "view" => figure.paper.view = value(parser, "view", &names(&View::ALL), |t| named(&View::ALL, t))?,
+        "gauge" => {
+            let list = &GaugeMeasure::ALL;
+            figure.paper.gauge = value(parser, "gauge", &names(list), |t| named(list, t))?;
+        }
         "width-mm" => {
             figure.paper.width_mm =
                 value(parser, "width-mm", "a number from 40 to 1000", range(40.0, 1000.0))?;

@@ -206,7 +206,7 @@ impl Verb {
                 "force-constant-unit",
                 "convention",
             ],
-            Self::Figure => &["out", "what", "view", "width-mm", "font-pt", "theme", "dpi"],
+            Self::Figure => &["out", "what", "view", "gauge", "width-mm", "font-pt", "theme", "dpi"],
             Self::Recheck => &["source"],
         }
     }
