@@ -43,6 +43,7 @@ pub mod settings;
 pub mod species;
 pub mod spectroscopy;
 pub mod study;
+pub mod study_file;
 pub mod thermal;
 pub mod units;
 pub mod verdict;

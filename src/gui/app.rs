@@ -1,20 +1,22 @@
 //! The program in the window: takes results and commands, then draws. Holds the parts and nothing more.
 
 use super::apply::{self, Effect, apply};
-use super::command::Command;
-use super::compute::Worker;
+use super::command::{Command, InterfaceSize};
+use super::compute::{Ticket, Worker};
 use super::files::{Done, Files};
-use super::state::{CurveKey, Page, PathPurpose, State, Study};
-use super::watch::{Watch, Watched};
+use super::job::{Request, StudyJob, broken_off, compute};
+use super::keeper::Keeper;
+use super::preferences::dress;
+use super::state::{CurveKey, Failure, Page, PathPurpose, Progress, State, Study};
+use super::watch::{Watch, Watched, Watching};
 use super::{Program, look, panels};
-use crate::figure::Pictures;
 use crate::figure::drawing::Paper;
-use crate::scan::Scan;
 use crate::settings::Settings;
 use eframe::egui;
 use egui::Key;
 use std::path::PathBuf;
 use std::sync::Arc;
+use std::time::Duration;
 
 /// What the window starts with.
 #[derive(Clone, Debug, Default)]
@@ -25,29 +27,32 @@ pub struct Start {
     pub settings: Settings,
     /// The page shown first.
     pub page: Page,
+    /// The theme asked for; none: as remembered, or as the desktop has it.
+    pub theme: Option<egui::Theme>,
     /// Opens nothing, for the empty state.
     pub empty: bool,
     /// Works on the thread that draws, for pictures and tests.
     pub inline: bool,
+    /// How a study is computed; none: as the headless command does.
+    pub job: Option<StudyJob>,
+    /// Where running work and preferences are kept; none: nowhere.
+    pub state_folder: Option<PathBuf>,
 }
 
-type StudyRequest = (CurveKey, Arc<Scan>, Settings);
+/// Results that come sooner are not announced.
+const LATE: Duration = Duration::from_millis(150);
+/// Work that takes longer shows how far it is and can be stopped.
+const LONG: Duration = Duration::from_millis(500);
 
 /// The program.
 pub struct App {
     state: State,
-    worker: Worker<StudyRequest, Result<Study, String>>,
+    worker: Worker<Request, Result<Study, String>>,
     files: Files,
     /// What was asked for last: the curve, its settings, the check sum of its file.
     asked: Option<(CurveKey, Settings, String)>,
     watch: Option<Watch>,
-}
-
-/// The study with everything drawn of it; what the worker does.
-fn compute((_, scan, settings): &StudyRequest) -> Result<Study, String> {
-    let findings = crate::study::study(scan, settings).map_err(|e| e.to_string())?;
-    let pictures = Arc::new(Pictures::of(&findings));
-    Ok(Study { findings: Arc::new(findings), pictures })
+    keeper: Option<Keeper>,
 }
 
 impl App {
@@ -56,17 +61,28 @@ impl App {
         super::fonts::install_fonts(ctx);
         look::install(ctx);
         let (wake, wake_files) = (ctx.clone(), ctx.clone());
+        let study = start.job.unwrap_or(compute);
+        let job = move |(_, scan, settings): &Request, ticket: &Ticket| study(scan, settings, ticket);
         let worker = if start.inline {
-            Worker::inline(compute)
+            Worker::inline(job)
         } else {
-            Worker::spawn(move || wake.request_repaint(), compute)
+            Worker::spawn(move || wake.request_repaint(), job)
         };
         let wake_watch = ctx.clone();
         // Pictures and tests are made from files that hold still.
         let watch = (!start.inline).then(|| Watch::new(move || wake_watch.request_repaint()));
         let files = Files::new(move || wake_files.request_repaint(), start.inline);
-        let mut app = Self { state: State::default(), worker, files, asked: None, watch };
+        let mut app = Self { state: State::default(), worker, files, asked: None, watch, keeper: None };
         app.state.view.page = start.page;
+        if let Some(folder) = start.state_folder {
+            app.keeper = Some(Keeper::new(folder, ctx, &mut app.state, &mut app.files));
+            if let Some(theme) = start.theme {
+                app.state.preferences.dark = Some(theme == egui::Theme::Dark);
+            }
+            dress(ctx, &app.state.preferences);
+        }
+        // Our own commands do it, and are remembered.
+        ctx.options_mut(|options| options.zoom_with_keyboard = false);
         if start.files.is_empty() && !start.empty {
             app.files.read_sample(0, start.settings.clone());
         }
@@ -96,7 +112,16 @@ impl App {
     fn carry_out(&mut self, effect: Effect, ctx: &egui::Context) {
         match effect {
             Effect::AskOpen => self.files.ask_open(),
-            Effect::AskSave { product, name } => self.files.ask_save(product, name),
+            Effect::AskSave { product, name } => self.files.ask_save(PathPurpose::Write(product), name),
+            Effect::AskSaveStudy(name) => self.files.ask_save(PathPurpose::SaveStudy, name),
+            Effect::WriteStudy { path, overwrite, known, work } => {
+                self.files.write_study(path, work, known, overwrite);
+            }
+            Effect::ForgetRecent | Effect::Restore(_) | Effect::Discard(_) | Effect::Leave => {
+                if let Some(keeper) = &mut self.keeper {
+                    keeper.carry_out(&effect, &self.state, &mut self.files);
+                }
+            }
             Effect::Read(path) => self.files.read(path, Settings::default()),
             Effect::ReadSample(index) => self.files.read_sample(index, Settings::default()),
             Effect::ReadText(text) => self.files.read_text(text, Settings::default()),
@@ -108,8 +133,14 @@ impl App {
                     self.files.write(product, path, Arc::clone(&study.findings), paper, overwrite);
                 }
             }
+            Effect::Stop => self.worker.stop(),
             Effect::Copy(text) => ctx.copy_text(text),
-            Effect::Theme(dark) => ctx.set_theme(if dark { egui::Theme::Dark } else { egui::Theme::Light }),
+            Effect::Prefer => {
+                dress(ctx, &self.state.preferences);
+                if let Some(keeper) = &mut self.keeper {
+                    keeper.carry_out(&effect, &self.state, &mut self.files);
+                }
+            }
             Effect::ListFolder(text) => self.files.list(text),
         }
     }
@@ -129,6 +160,18 @@ impl App {
             Done::Chosen(PathPurpose::Write(product), paths) => {
                 for path in paths {
                     self.give(Command::ExportTo { product, path, overwrite: true }, ctx);
+                }
+            }
+            Done::Chosen(PathPurpose::SaveStudy, paths) => {
+                for path in paths {
+                    self.give(Command::SaveStudyTo { path, overwrite: true }, ctx);
+                }
+            }
+            Done::Study(opened) => apply::take_opened(*opened, &mut self.state),
+            Done::Saved(result) => apply::take_saved(result, &mut self.state),
+            Done::Leftovers(_) | Done::Restored(..) | Done::Remembered(_) => {
+                if let Some(keeper) = &mut self.keeper {
+                    keeper.take(done, &mut self.state);
                 }
             }
             Done::NoDialog(purpose, text, entries) => {
@@ -152,14 +195,27 @@ impl App {
             self.asked = None;
         }
         if let Some(answer) = self.worker.poll() {
-            let (key, _, settings) = answer.input;
             let result = match answer.result {
-                Ok(result) => result,
-                Err(panic) => Err(format!(
-                    "The computation broke off: {panic}. This is a fault of the program; your scan and settings are unharmed."
-                )),
+                Ok(result) => result.map_err(Failure::from),
+                Err(panic) => Err(broken_off(&panic, &answer.input)),
             };
+            let (key, _, settings) = answer.input;
             apply::take_outcome(key, settings, result, &mut self.state);
+        }
+        let running = self.worker.running();
+        let view = &mut self.state.view;
+        view.late = running.as_ref().is_some_and(|r| r.since >= LATE);
+        view.progress = running
+            .filter(|r| r.since >= LONG)
+            .map(|r| Progress { tenths: r.since.as_millis() as u64 / 100, step: r.step });
+    }
+
+    /// Looks again when work under way becomes late or long, and while its progress is shown.
+    fn look_again(&self, ctx: &egui::Context) {
+        if let Some(running) = self.worker.running() {
+            let next = [LATE, LONG].into_iter().find(|t| *t > running.since);
+            let wait = next.map_or(Duration::from_millis(200), |t| t - running.since);
+            ctx.request_repaint_after(wait + Duration::from_millis(1));
         }
     }
 
@@ -167,14 +223,25 @@ impl App {
     fn look_at_files(&mut self, ctx: &egui::Context) {
         let Some(watch) = &mut self.watch else { return };
         while let Some(changed) = watch.poll() {
-            apply::take_changed(changed.key, &mut self.state);
+            match changed.what {
+                Watching::Scan(key) => apply::take_changed(key, &mut self.state),
+                Watching::Study(origin) => apply::take_study_changed(origin, &mut self.state),
+            }
         }
-        let scans = self.state.document.scans.iter().filter(|s| !self.state.view.changed.contains(&s.key));
-        let watched = |s: &super::state::LoadedScan| {
-            let (path, modified) = (s.path.clone()?, s.modified?);
-            Some(Watched { key: s.key, path, modified })
-        };
-        watch.set(scans.filter_map(watched).collect(), ctx.input(|i| i.focused));
+        let state = &self.state;
+        let scans = state.document.scans.iter().filter(|s| !state.view.changed.contains(&s.key));
+        let mut watched: Vec<Watched> = scans
+            .filter_map(|s| {
+                let (path, modified) = (s.path.clone()?, s.modified?);
+                Some(Watched { what: Watching::Scan(s.key), path, modified })
+            })
+            .collect();
+        let origin = state.document.origin;
+        watched.extend(state.kept.get(&origin).and_then(|kept| {
+            let (path, modified) = (kept.path.clone(), kept.modified?);
+            Some(Watched { what: Watching::Study(origin), path, modified })
+        }));
+        watch.set(watched, ctx.input(|i| i.focused));
     }
 
     fn shortcuts(&mut self, ctx: &egui::Context) {
@@ -183,6 +250,11 @@ impl App {
             if ctx.input_mut(|i| i.consume_shortcut(&keys)) {
                 self.give(command, ctx);
             }
+        }
+        // On many keyboards plus is written with another key.
+        let equals = egui::KeyboardShortcut::new(egui::Modifiers::COMMAND, Key::Equals);
+        if ctx.input_mut(|i| i.consume_shortcut(&equals)) {
+            self.give(Command::SizeInterface(InterfaceSize::Larger), ctx);
         }
         if ctx.memory(|m| m.focused().is_none()) {
             let count = |key| ctx.input(|i| i.num_presses(key)) as i32;
@@ -218,6 +290,10 @@ impl Program for App {
         self.shortcuts(ctx);
         self.look_at_files(ctx);
         self.exchange_studies();
+        self.look_again(ctx);
+        if let Some(keeper) = &mut self.keeper {
+            keeper.note(&mut self.state, &mut self.files);
+        }
     }
 
     fn ui(&mut self, ui: &mut egui::Ui) {
@@ -237,5 +313,11 @@ impl Program for App {
 
     fn is_working(&self) -> bool {
         self.worker.is_waiting() || self.files.is_busy()
+    }
+
+    fn on_exit(&mut self) {
+        if let Some(keeper) = &mut self.keeper {
+            keeper.close(&self.state);
+        }
     }
 }

@@ -3,7 +3,9 @@
 use super::command::Command;
 use super::densities::DensityView;
 use super::product::Product;
-use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, State, Zoom};
+pub use super::saving::*;
+use super::session::Work;
+use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Search, State, Zoom};
 pub use super::take::*;
 use crate::export::compare::Quantity;
 use crate::figure::geometry::Bounds;
@@ -50,16 +52,44 @@ pub enum Effect {
     },
     /// Put text on the clipboard.
     Copy(String),
-    /// Change the theme.
-    Theme(bool),
+    /// What the program remembers has changed.
+    Prefer,
     /// List the folder that the path window names.
     ListFolder(String),
+    /// Ask where to save the study.
+    AskSaveStudy(String),
+    /// Write the study.
+    WriteStudy {
+        /// Where.
+        path: PathBuf,
+        /// Whether any file there may be replaced.
+        overwrite: bool,
+        /// Check sum of the file that may be replaced.
+        known: Option<String>,
+        /// What is saved.
+        work: Box<Work>,
+    },
+    /// Give up the computation under way.
+    Stop,
+    /// Forget the files used last.
+    ForgetRecent,
+    /// Take unsaved work of an earlier window into this one.
+    Restore(u64),
+    /// Delete unsaved work of an earlier window.
+    Discard(u64),
+    /// Leave unsaved work of earlier windows for later.
+    Leave,
 }
 
 /// Carries one command out and says what else has to happen.
 pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
     if command.is_enabled(state).is_err() {
         return Vec::new();
+    }
+    if let Some(effects) = super::saving::apply_saving(&command, state)
+        .or_else(|| super::preferences::apply_preference(&command, state))
+    {
+        return effects;
     }
     match command {
         Command::Open => return vec![Effect::AskOpen],
@@ -93,19 +123,30 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
         Command::ExportTo { product, path, overwrite } => {
             return vec![Effect::Write { product, path, overwrite }];
         }
+        Command::StopComputing => {
+            state.view.stopped = state.document.focused().map(|(key, _, s)| (key, s.clone()));
+            state.view.progress = None;
+            return vec![Effect::Stop];
+        }
+        Command::ComputeAgain => state.view.stopped = None,
+        Command::CopyReport => {
+            if let Some(report) = state.report().map(str::to_owned) {
+                state.view.message = Some(Message::told("Report copied."));
+                return vec![Effect::Copy(report)];
+            }
+        }
         Command::CopyConstants => {
             if let Some(study) = state.study() {
                 let text = super::panels::constants_text(&study.findings);
-                state.view.message = Some(Message { text: "Constants copied.".into(), failure: false });
+                state.view.message = Some(Message::told("Constants copied."));
                 return vec![Effect::Copy(text)];
             }
         }
         Command::CopyComparison(form) => {
             let text = super::panels::comparison_text(state, form);
-            state.view.message = Some(Message { text: "Comparison copied.".into(), failure: false });
+            state.view.message = Some(Message::told("Comparison copied."));
             return vec![Effect::Copy(text)];
         }
-        Command::SetDark(dark) => return vec![Effect::Theme(dark)],
         Command::TypePath(text) => {
             if let Some(window) = &mut state.view.path_window {
                 window.text.clone_from(&text);
@@ -128,7 +169,7 @@ fn undo(state: &mut State, back: bool) {
     let name =
         if back { state.history.undo(&mut state.document) } else { state.history.redo(&mut state.document) };
     let verb = if back { "Undone" } else { "Redone" };
-    state.view.message = name.map(|n| Message { text: format!("{verb}: {n}."), failure: false });
+    state.view.message = name.map(|n| Message::told(format!("{verb}: {n}.")));
 }
 
 /// Changes of the document, each under its name in the history. False when the command is none.
@@ -140,6 +181,13 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 forget_level(state);
             }
         }
+        Command::StepCurve(step) => {
+            let keys: Vec<CurveKey> = state.document.settings.keys().copied().collect();
+            let here = keys.iter().position(|k| Some(*k) == state.document.focus).unwrap_or(0);
+            let next = (here as i64 + i64::from(*step)).rem_euclid(keys.len().max(1) as i64) as usize;
+            state.document.focus = keys.get(next).copied();
+            forget_level(state);
+        }
         Command::CloseScan => close_scan(state),
         Command::SetWindow { window, resting } => {
             if window.from.is_finite() && window.to.is_finite() && window.from < window.to {
@@ -147,6 +195,9 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 edit(state, "move the fit window", !resting, |s| s.fits.window = Some(*window));
             }
         }
+        Command::ResetSettings => edit(state, "default settings", false, |s| {
+            *s = Settings { read: s.read.clone(), curve: s.curve.clone(), ..Settings::default() };
+        }),
         Command::ResetWindow => edit(state, "default fit window", false, |s| s.fits.window = None),
         Command::SetTolerance { tolerance, resting } => {
             if *tolerance > 0.0 && *tolerance < 1.0 {
@@ -324,6 +375,15 @@ fn change_view(command: Command, state: &mut State) {
         Command::ToggleWhy => view.why_open = !view.why_open,
         Command::ShowLeft(open) => view.panels.left = Some(open),
         Command::ShowRight(open) => view.panels.right = Some(open),
+        Command::ShowHints(shown) => view.hints = shown,
+        Command::ShowSearch(open) => view.search = open.then(Search::default),
+        Command::TypeSearch(text) => view.search = Some(Search { text, chosen: 0 }),
+        Command::ChooseFound(line) => {
+            if let Some(search) = &mut view.search {
+                search.chosen = line;
+            }
+        }
+        Command::ShowKeys(open) => view.keys_open = open,
         Command::ClosePathWindow => view.path_window = None,
         Command::DropProblem => view.problem = None,
         Command::DismissMessage => view.message = None,
@@ -392,7 +452,7 @@ fn file_name(state: &State, product: Product) -> String {
 /// The scan and settings to be computed next, where what is shown is older than the settings: the curve in
 /// focus first, then those compared with it.
 pub fn wanted(state: &State) -> Option<(CurveKey, Arc<crate::scan::Scan>, Settings)> {
-    let focus = state.document.focus.filter(|key| state.is_stale_of(*key));
+    let focus = state.document.focus.filter(|key| state.is_stale_of(*key) && !state.is_stopped());
     let compared = || {
         let keys = state.view.comparison.open.then(|| state.document.settings.keys())?;
         keys.copied().find(|key| state.is_stale_of(*key))

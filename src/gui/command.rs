@@ -7,6 +7,7 @@ use crate::export::compare::{Form, Quantity};
 use crate::figure::geometry::Bounds;
 use crate::fit::Window;
 use crate::scan::read::ReadSettings;
+use crate::settings::Settings;
 use crate::species::AtomChoice;
 use eframe::egui;
 use egui::{Key, KeyboardShortcut, Modifiers};
@@ -161,6 +162,35 @@ pub enum Command {
         /// Whether a file there may be replaced.
         overwrite: bool,
     },
+    /// Save the study to its file, which is asked for the first time.
+    SaveStudy,
+    /// Save the study to a file that is asked for.
+    SaveStudyAs,
+    /// Save the study to this file.
+    SaveStudyTo {
+        /// Where.
+        path: PathBuf,
+        /// Whether a file there may be replaced.
+        overwrite: bool,
+    },
+    /// Open the study's file again as it is now.
+    ReopenStudy,
+    /// Forget the files used last.
+    ForgetRecent,
+    /// Take up the unsaved work of an earlier window.
+    RestoreWork,
+    /// Delete the unsaved work of an earlier window.
+    DiscardWork,
+    /// Decide about unsaved work another time.
+    LeaveWork,
+    /// Take the default settings for the focused curve again.
+    ResetSettings,
+    /// Give up the computation under way.
+    StopComputing,
+    /// Take up again what was stopped.
+    ComputeAgain,
+    /// Copy the report of a computation that broke off.
+    CopyReport,
     /// Copy the constants as text.
     CopyConstants,
     /// Change the text of the path window.
@@ -169,6 +199,33 @@ pub enum Command {
     ClosePathWindow,
     /// Put the message away.
     DismissMessage,
+    /// Look at the next (+1) or the previous (-1) curve.
+    StepCurve(i32),
+    /// Show the interface larger or smaller.
+    SizeInterface(InterfaceSize),
+    /// Let nothing move by itself, or let it again.
+    SetStill(bool),
+    /// Show or put away the hints on the picture.
+    ShowHints(bool),
+    /// Open or close the search of commands.
+    ShowSearch(bool),
+    /// Change what is searched for.
+    TypeSearch(String),
+    /// Go to a line of what was found.
+    ChooseFound(usize),
+    /// Open or close the sheet of shortcuts.
+    ShowKeys(bool),
+}
+
+/// A step in the size of the interface.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum InterfaceSize {
+    /// A tenth larger.
+    Larger,
+    /// A tenth smaller.
+    Smaller,
+    /// As the desktop has it.
+    Usual,
 }
 
 /// Control on most systems, Command on a Mac.
@@ -179,12 +236,22 @@ const fn with_command(key: Key) -> KeyboardShortcut {
 impl Command {
     /// The commands that have a shortcut.
     pub fn with_shortcut() -> Vec<Self> {
+        // Of two shortcuts with the same key the one with more modifiers stands first: it would be taken for the other.
         let mut commands = vec![
             Self::Open,
+            Self::SaveStudyAs,
+            Self::SaveStudy,
             Self::Export(Product::Findings),
             Self::Export(Product::Report),
             Self::Redo,
             Self::Undo,
+            Self::ShowSearch(true),
+            Self::ShowKeys(true),
+            Self::StepCurve(1),
+            Self::StepCurve(-1),
+            Self::SizeInterface(InterfaceSize::Larger),
+            Self::SizeInterface(InterfaceSize::Smaller),
+            Self::SizeInterface(InterfaceSize::Usual),
         ];
         commands.extend(Preset::ALL.map(Self::Zoom));
         commands.extend(Page::ALL.map(Self::ShowPage));
@@ -197,6 +264,19 @@ impl Command {
         match self {
             Self::Open => "Open …".into(),
             Self::Export(product) => product.label().into(),
+            Self::SaveStudy => "Save study".into(),
+            Self::SaveStudyAs => "Save study as …".into(),
+            Self::SaveStudyTo { .. } => "Replace it".into(),
+            Self::ReopenStudy => "Open it again".into(),
+            Self::ForgetRecent => "Forget these".into(),
+            Self::RestoreWork => "Restore".into(),
+            Self::DiscardWork => "Discard".into(),
+            Self::LeaveWork => "Not now".into(),
+            Self::ResetSettings => "Default settings".into(),
+            Self::StopComputing => "Stop".into(),
+            Self::ComputeAgain => "Compute".into(),
+            Self::CopyReport => "Copy report".into(),
+            Self::OpenPath(path) => super::files::file_name_of(path),
             Self::Undo => "Undo".into(),
             Self::Redo => "Redo".into(),
             Self::OpenSample(i) => {
@@ -224,7 +304,61 @@ impl Command {
             Self::ShowColumns(Some(_)) => "Columns …".into(),
             Self::Reload(_) => "Read again".into(),
             Self::SetAsymptote { energy: None, .. } => "assume it".into(),
+            Self::DismissMessage => "Dismiss".into(),
+            Self::ShowAllNotices(true) => "show all".into(),
+            Self::ShowAllNotices(false) => "show fewer".into(),
+            Self::StepCurve(step) if *step > 0 => "Next curve".into(),
+            Self::StepCurve(_) => "Previous curve".into(),
+            Self::StepLevel(step) if *step > 0 => "Level up".into(),
+            Self::StepLevel(_) => "Level down".into(),
+            Self::PinLevel(None) => "Let go of the level".into(),
+            Self::ShowLeft(true) => "Open the left panel".into(),
+            Self::ShowLeft(false) => "Fold the left panel".into(),
+            Self::ShowRight(true) => "Open the right panel".into(),
+            Self::ShowRight(false) => "Fold the right panel".into(),
+            Self::SizeInterface(InterfaceSize::Larger) => "Larger interface".into(),
+            Self::SizeInterface(InterfaceSize::Smaller) => "Smaller interface".into(),
+            Self::SizeInterface(InterfaceSize::Usual) => "Usual size".into(),
+            Self::SetStill(true) => "Reduce motion".into(),
+            Self::SetStill(false) => "Allow motion".into(),
+            Self::ShowHints(true) => "Show hints".into(),
+            Self::ShowHints(false) => "Put hints away".into(),
+            Self::ShowSearch(_) => "Commands …".into(),
+            Self::ShowKeys(_) => "Keys and mouse".into(),
             _ => String::new(),
+        }
+    }
+
+    /// What it is called away from its place: in the search and on the sheet of shortcuts.
+    pub fn name(&self) -> String {
+        match self {
+            Self::Zoom(preset) => format!("Look at {}", preset.name()),
+            Self::ShowPage(page) => format!("Page {}", page.name()),
+            Self::ShowStrip(strip) => format!("Strip {}", strip.name()),
+            Self::SetDark(true) => "Dark theme".into(),
+            Self::SetDark(false) => "Light theme".into(),
+            Self::ResetWindow => "Default fit window".into(),
+            Self::ToggleWhy => "Why: the reasons of the sentence".into(),
+            Self::CopyConstants => "Copy constants as text".into(),
+            Self::ForgetRecent => "Forget the files used last".into(),
+            Self::OpenSample(_) => format!("Sample {}", self.label()),
+            Self::OpenPath(_) => format!("Open {}", self.label()),
+            Self::Export(product) => format!("Export {}", product.label()),
+            Self::ShowComparison(true) => "Compare curves …".into(),
+            Self::ReopenStudy => "Open the study file again".into(),
+            Self::DismissMessage => "Dismiss the message".into(),
+            Self::ReadAgain(read) => {
+                let length = read.length_unit.map_or("?", crate::units::LengthUnit::name);
+                let energy = read.energy_unit.map_or("?", crate::units::EnergyUnit::name);
+                format!("Read lengths in {length}, energies in {energy}")
+            }
+            Self::ShowAllNotices(true) => "Show all notices".into(),
+            Self::ShowAllNotices(false) => "Show fewer notices".into(),
+            Self::RestoreWork => "Restore unsaved work".into(),
+            Self::DiscardWork => "Discard unsaved work".into(),
+            Self::LeaveWork => "Leave unsaved work for later".into(),
+            Self::StopComputing => "Stop computing".into(),
+            _ => self.label(),
         }
     }
 
@@ -233,6 +367,38 @@ impl Command {
         match self {
             Self::Open => "Read a scan from a file. Files can also be dropped on the window.",
             Self::Export(product) => product.about(),
+            Self::SaveStudy => "Save scans, settings and view, to go on another time.",
+            Self::SaveStudyAs => "Save scans, settings and view to another file.",
+            Self::SaveStudyTo { .. } => "Save over the file that is there.",
+            Self::ReopenStudy => "Read the study file as it is now; this can be undone.",
+            Self::ForgetRecent => "Empty the list of files used last; the files stay.",
+            Self::RestoreWork => "Take this work up again; this can be undone.",
+            Self::DiscardWork => "Delete this work for good.",
+            Self::LeaveWork => "It will be offered again when the program starts the next time.",
+            Self::ResetSettings => {
+                "Window, atoms, points set aside and all else of this curve as when it was opened."
+            }
+            Self::StopComputing => "Give up this computation; what is shown stays.",
+            Self::ComputeAgain => "Compute with the settings as they are now.",
+            Self::CopyReport => {
+                "What broke off, with the settings, as text to send to the makers of the program."
+            }
+            Self::StepCurve(_) => "Look at another curve of the list.",
+            Self::StepLevel(_) => "Walk the levels; the picture shows the one reached.",
+            Self::PinLevel(_) => "Show no level.",
+            Self::ShowLeft(_) => "Curves, masses, fit window, tolerance.",
+            Self::ShowRight(_) => "The pages of results.",
+            Self::SizeInterface(_) => "Text, lines and controls together.",
+            Self::SetStill(true) => "Nothing moves by itself: no fading, no blinking.",
+            Self::SetStill(false) => "Fading and blinking as usual.",
+            Self::ShowHints(_) => "Short hints on the picture: what can be taken hold of.",
+            Self::ShowSearch(_) => "Every command by name.",
+            Self::ShowKeys(_) => "Every shortcut, and what the mouse does on the picture.",
+            Self::SetDark(_) => "How the window is coloured.",
+            Self::OpenPath(_) => "Open this file.",
+            Self::DismissMessage => "Put the message away.",
+            Self::ReadAgain(_) => "Read the file that does not state its units with these.",
+            Self::ShowAllNotices(_) => "How many notices are listed at once.",
             Self::Zoom(Preset::NearMinimum) => "The lowest six levels.",
             Self::Zoom(Preset::WholeWell) => "Everything up to the limit of the bound levels.",
             Self::Zoom(Preset::FitWindow) => "The window of the fits.",
@@ -274,6 +440,18 @@ impl Command {
             Self::Open => with_command(Key::O),
             Self::Export(Product::Findings) => with_command(Key::E),
             Self::Export(Product::Report) => with_command(Key::R),
+            Self::SaveStudy => with_command(Key::S),
+            Self::SaveStudyAs => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::S),
+            Self::ShowSearch(true) => with_command(Key::K),
+            Self::ShowKeys(true) => KeyboardShortcut::new(Modifiers::NONE, Key::F1),
+            Self::StepCurve(step) => with_command(if *step > 0 { Key::PageDown } else { Key::PageUp }),
+            Self::SizeInterface(InterfaceSize::Larger) => with_command(Key::Plus),
+            Self::SizeInterface(InterfaceSize::Smaller) => with_command(Key::Minus),
+            Self::SizeInterface(InterfaceSize::Usual) => with_command(Key::Num0),
+            // These three only while nothing else has the keyboard.
+            Self::StepLevel(1) => KeyboardShortcut::new(Modifiers::NONE, Key::ArrowUp),
+            Self::StepLevel(-1) => KeyboardShortcut::new(Modifiers::NONE, Key::ArrowDown),
+            Self::PinLevel(None) => KeyboardShortcut::new(Modifiers::NONE, Key::Escape),
             Self::Undo => with_command(Key::Z),
             Self::Redo => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::Z),
             Self::ShowComparison(true) => KeyboardShortcut::new(Modifiers::ALT, Key::Num7),
@@ -315,6 +493,35 @@ impl Command {
                 need(study.is_some(), "No findings yet.")?;
                 need(!state.is_stale(), "The findings are being computed.")
             }
+            Self::SaveStudy | Self::SaveStudyAs | Self::SaveStudyTo { .. } => {
+                need(!state.document.scans.is_empty(), "There is nothing to save.")
+            }
+            Self::ReopenStudy => {
+                need(state.kept.contains_key(&state.document.origin), "This study is not kept in a file yet.")
+            }
+            Self::StepCurve(_) => need(state.document.settings.len() > 1, "There is no other curve."),
+            Self::PinLevel(None) => need(state.view.pinned_level.is_some(), "No level is kept."),
+            Self::ToggleWhy => {
+                need(study.is_some_and(|s| !s.pictures.sentence.why.is_empty()), "There is no sentence yet.")
+            }
+            Self::ShowHints(true) => need(study.is_some(), "There is no picture yet."),
+            Self::DismissMessage => need(state.view.message.is_some(), "There is no message."),
+            Self::ForgetRecent => need(!state.recent.is_empty(), "The list is empty."),
+            Self::RestoreWork | Self::DiscardWork | Self::LeaveWork => {
+                need(!state.leftovers.is_empty(), "No unsaved work was found.")
+            }
+            Self::ResetSettings => need(
+                state.document.focused().is_some_and(|(_, _, s)| {
+                    let (read, curve) = (s.read.clone(), s.curve.clone());
+                    *s != Settings { read, curve, ..Settings::default() }
+                }),
+                "These are the default settings.",
+            ),
+            Self::StopComputing => {
+                need(state.is_stale() && !state.is_stopped(), "Nothing is being computed.")
+            }
+            Self::ComputeAgain => need(state.is_stopped(), "Nothing was stopped."),
+            Self::CopyReport => need(state.report().is_some(), "Nothing broke off."),
             Self::CopyConstants => need(study.is_some(), "No constants yet."),
             Self::Zoom(preset) => need(
                 study.is_some_and(|s| preset.bounds(&s.pictures).is_some()),

@@ -1,14 +1,20 @@
 //! Files and dialogs, kept off the frame: every read, write and dialog runs on a thread of its own.
 
+use super::autosave::{self, Slot};
 use super::meaning::meanings;
+use super::preferences::Preferences;
 use super::product::Product;
 use super::samples::SAMPLES;
-use super::state::{LoadedScan, PathPurpose, Problem};
+use super::saving::SavedStudy;
+use super::session::{self, Opened, Work, sha256_of};
+use super::state::{Leftover, LoadedScan, PathPurpose, Problem};
 use crate::figure::drawing::Paper;
+use crate::files::{Replace, WriteError};
 use crate::findings::Findings;
 use crate::scan::error::ScanError;
 use crate::scan::read::read_scan;
 use crate::settings::Settings;
+use crate::study_file::is_study_file;
 use std::path::{Path, PathBuf};
 use std::sync::{Arc, mpsc};
 use std::time::{Duration, Instant};
@@ -18,7 +24,7 @@ const NO_DIALOG: Duration = Duration::from_millis(300);
 /// No more files of a folder are read.
 const MOST_FILES: usize = 1000;
 /// Larger files are refused before they are read.
-const MOST_BYTES: u64 = 64 << 20;
+pub(super) const MOST_BYTES: u64 = 64 << 20;
 
 /// Something that was finished beside the window.
 #[derive(Debug)]
@@ -39,6 +45,16 @@ pub enum Done {
     Entries(Vec<String>),
     /// A file was written, or why not.
     Written(Result<String, String>),
+    /// A study file was read.
+    Study(Box<Opened>),
+    /// Unsaved work of an earlier window was read, or why not.
+    Restored(u64, Result<Box<Opened>, String>),
+    /// Unsaved work of earlier windows was looked for.
+    Leftovers(Vec<(Slot, Leftover)>),
+    /// What the program remembers was changed, or why not.
+    Remembered(Result<(), String>),
+    /// A study was saved, or why not and which file is in the way.
+    Saved(Result<SavedStudy, (String, Option<PathBuf>)>),
 }
 
 /// Does file work beside the window.
@@ -141,6 +157,26 @@ impl Files {
         self.run(move || Done::Written(product.write(&findings, &path, &paper, overwrite)));
     }
 
+    /// Saves a study; replaces only the file whose check sum is known, unless told otherwise.
+    pub fn write_study(&mut self, path: PathBuf, work: Box<Work>, known: Option<String>, overwrite: bool) {
+        self.run(move || Done::Saved(save_study(path, *work, known.as_deref(), overwrite)));
+    }
+
+    /// Looks for unsaved work of earlier windows.
+    pub fn look_for_leftovers(&mut self, folder: PathBuf) {
+        self.run(move || Done::Leftovers(autosave::leftovers(&folder)));
+    }
+
+    /// Reads unsaved work of an earlier window.
+    pub fn restore(&mut self, id: u64, path: PathBuf) {
+        self.run(move || Done::Restored(id, autosave::restore(&path).map(Box::new)));
+    }
+
+    /// Changes what the program remembers.
+    pub fn remember(&mut self, folder: PathBuf, change: impl FnOnce(&mut Preferences) + Send + 'static) {
+        self.run(move || Done::Remembered(Preferences::update(&folder, change)));
+    }
+
     /// Lists the folder that a typed path names.
     pub fn list(&mut self, text: String) {
         self.run(move || Done::Entries(entries_of(&text)));
@@ -163,16 +199,18 @@ impl Files {
         });
     }
 
-    /// Asks where to write something.
-    pub fn ask_save(&mut self, product: Product, name: String) {
-        let purpose = PathPurpose::Write(product);
+    /// Asks where to write something under this name.
+    pub fn ask_save(&mut self, purpose: PathPurpose, name: String) {
         if self.inline {
             self.run(move || no_dialog(purpose, name));
             return;
         }
         self.run(move || {
             let start = Instant::now();
-            let title = format!("Write {}", product.name().to_lowercase());
+            let title = match purpose {
+                PathPurpose::Write(product) => format!("Write {}", product.name().to_lowercase()),
+                _ => "Save study".to_owned(),
+            };
             let dialog = rfd::FileDialog::new().set_title(title).set_file_name(&name);
             match dialog.save_file() {
                 Some(path) => Done::Chosen(purpose, vec![path]),
@@ -207,7 +245,8 @@ fn entries_of(text: &str) -> Vec<String> {
     names
 }
 
-fn file_name_of(path: &Path) -> String {
+/// The name of a file without its folder.
+pub(super) fn file_name_of(path: &Path) -> String {
     path.file_name().map_or_else(|| path.display().to_string(), |n| n.to_string_lossy().into_owned())
 }
 
@@ -233,6 +272,10 @@ fn read_file(path: &Path, start: Settings) -> Done {
         Ok(data) => data.modified().ok(),
     };
     match std::fs::read(path) {
+        Ok(bytes) if is_study_file(&bytes) => match session::open(path, &bytes) {
+            Ok(opened) => Done::Study(Box::new(opened)),
+            Err(text) => refuse(text),
+        },
         Ok(bytes) => match understand(&file_name, Arc::from(bytes), Some(path.to_owned()), start) {
             Done::Scan(loaded) => Done::Scan(LoadedScan { modified, ..loaded }),
             other => other,
@@ -316,4 +359,33 @@ fn words(error: &ScanError) -> String {
 /// Whether naming units would settle the refusal.
 fn asks_for_units(error: &ScanError) -> bool {
     matches!(error, ScanError::LengthUnitMissing { .. } | ScanError::EnergyUnitMissing { .. })
+}
+
+fn save_study(
+    path: PathBuf,
+    work: Work,
+    known: Option<&str>,
+    overwrite: bool,
+) -> Result<SavedStudy, (String, Option<PathBuf>)> {
+    let folder = path.parent().filter(|p| !p.as_os_str().is_empty()).unwrap_or(Path::new("."));
+    let text = work.to_file(Some(folder)).to_text();
+    let there = std::fs::read(&path).ok().map(|bytes| sha256_of(&bytes));
+    let is_ours = there.is_some() && there.as_deref() == known;
+    let replace = if overwrite || is_ours { Replace::Anything } else { Replace::Nothing };
+    match crate::files::write(&path, text.as_bytes(), replace) {
+        Ok(()) => Ok(SavedStudy {
+            sha256: sha256_of(text.as_bytes()),
+            modified: std::fs::metadata(&path).and_then(|d| d.modified()).ok(),
+            document: work.document,
+            path,
+        }),
+        Err(WriteError::Exists { path: there }) if known.is_some() => Err((
+            format!("{} was changed by another program and left as it is.", there.display()),
+            Some(path),
+        )),
+        Err(WriteError::Exists { path: there }) => {
+            Err((format!("{} exists and was left as it is.", there.display()), Some(path)))
+        }
+        Err(error) => Err((format!("{error}."), None)),
+    }
 }

@@ -1,5 +1,6 @@
 //! What a file would mean in every unit that it leaves open.
 
+use super::command::Command;
 use crate::estimate::Estimate;
 use crate::scan::Scan;
 use crate::scan::read::{ReadSettings, read_scan};
@@ -28,6 +29,17 @@ pub struct Meaning {
     pub rise_electronvolt: f64,
     /// Whether all of it is common for a bond.
     pub is_common: bool,
+}
+
+impl Meaning {
+    /// The command that makes this choice.
+    pub fn command(&self, read: &ReadSettings) -> Command {
+        Command::ReadAgain(ReadSettings {
+            length_unit: Some(self.length),
+            energy_unit: Some(self.energy),
+            ..read.clone()
+        })
+    }
 }
 
 /// Every choice of the units that are open, the common ones first; empty where the file cannot be read whatever they

@@ -2,6 +2,7 @@
 
 use super::app::{App, Start};
 use super::painter::{Canvas, render_offscreen};
+use super::preferences::state_folder;
 use super::shell::{Renderer, ShellOptions, run as open_window};
 use super::state::Page;
 use crate::headless::{WindowArgs, read_settings};
@@ -72,6 +73,7 @@ fn window(start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u
     if let Some((width, height)) = arguments.size {
         options.size_points = [width as f32, height as f32];
     }
+    let start = Start { state_folder: state_folder(), theme, ..start };
     let make = |ctx: &egui::Context| -> Box<dyn super::Program> {
         if let Some(theme) = theme {
             ctx.set_theme(theme);

@@ -4,6 +4,7 @@ use super::command::Command;
 use super::densities::DensityView;
 use super::history::History;
 use super::meaning::Meaning;
+use super::preferences::Preferences;
 use super::product::Product;
 pub use super::view::{AxisView, Comparison, Page, Preset, Reference, Strip, Zoom};
 use crate::export::compare::Quantity;
@@ -47,7 +48,7 @@ pub struct LoadedScan {
 }
 
 /// What is undone and redone: the scans, the curve in focus, the settings of every curve.
-#[derive(Clone, Debug, Default)]
+#[derive(Clone, Debug, Default, PartialEq)]
 pub struct Document {
     /// The scans, in order of loading.
     pub scans: Vec<LoadedScan>,
@@ -57,9 +58,25 @@ pub struct Document {
     pub settings: BTreeMap<CurveKey, Settings>,
     /// Published constants to compare with, in the order of [`Quantity::ALL`] and in its units.
     pub published: [Option<f64>; Quantity::ALL.len()],
+    /// Which study this is, counted in this window: 0 until a study file was opened.
+    pub origin: u64,
+}
+
+impl PartialEq for LoadedScan {
+    fn eq(&self, other: &Self) -> bool {
+        (self.key, self.modified, self.is_sample) == (other.key, other.modified, other.is_sample)
+            && self.path == other.path
+            && self.scan.sha256 == other.scan.sha256
+            && self.start == other.start
+    }
 }
 
 impl Document {
+    /// Whether scans and settings are the same; the curve in focus does not matter.
+    pub fn holds_the_same(&self, other: &Self) -> bool {
+        self.settings == other.settings && self.scans == other.scans && self.published == other.published
+    }
+
     /// The scan with this serial number.
     pub fn scan(&self, key: u64) -> Option<&LoadedScan> {
         self.scans.iter().find(|s| s.key == key)
@@ -86,6 +103,37 @@ pub struct Message {
     pub text: String,
     /// Whether it tells of a failure.
     pub failure: bool,
+    /// What can be done about it.
+    pub action: Option<Command>,
+}
+
+impl Message {
+    /// Words that tell of no failure.
+    pub fn told(text: impl Into<String>) -> Self {
+        Self { text: text.into(), failure: false, action: None }
+    }
+}
+
+/// A study that the user keeps in a file.
+#[derive(Clone, Debug)]
+pub struct KeptStudy {
+    /// Where.
+    pub path: PathBuf,
+    /// Check sum of what was last read from or written to it.
+    pub sha256: Option<String>,
+    /// What it holds, if that is known.
+    pub saved: Option<Document>,
+    /// When it was last changed as it was read or written.
+    pub modified: Option<SystemTime>,
+}
+
+/// Work that an earlier window left unsaved.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Leftover {
+    /// Its number in this window.
+    pub id: u64,
+    /// What it is about, in words.
+    pub text: String,
 }
 
 /// A file that was refused, with all that is needed to try again.
@@ -163,6 +211,27 @@ pub struct ViewState {
     pub problem: Option<Problem>,
     /// The path window, where the desktop offers no dialog.
     pub path_window: Option<PathWindow>,
+    /// Whether the hints are shown.
+    pub hints: bool,
+    /// The search of commands, where it is open.
+    pub search: Option<Search>,
+    /// Whether the sheet of shortcuts is open.
+    pub keys_open: bool,
+    /// Whether new results are late, so that the older ones are marked.
+    pub late: bool,
+    /// Work that takes long.
+    pub progress: Option<Progress>,
+    /// What was stopped; it is not begun again by itself.
+    pub stopped: Option<(CurveKey, Settings)>,
+}
+
+/// The search of commands.
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
+pub struct Search {
+    /// What was typed.
+    pub text: String,
+    /// The line that Enter takes.
+    pub chosen: usize,
 }
 
 impl ViewState {
@@ -179,6 +248,8 @@ pub enum PathPurpose {
     Open,
     /// Where something made of a study goes.
     Write(Product),
+    /// Where a study goes.
+    SaveStudy,
 }
 
 /// The built-in path window.
@@ -209,7 +280,31 @@ pub struct Outcome {
     /// The latest study that succeeded.
     pub study: Option<Study>,
     /// Why the latest one failed.
-    pub failure: Option<String>,
+    pub failure: Option<Failure>,
+}
+
+/// Why a computation failed.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Failure {
+    /// In words.
+    pub text: String,
+    /// What to send to those who can mend it, where it is a fault of the program.
+    pub report: Option<String>,
+}
+
+impl<T: Into<String>> From<T> for Failure {
+    fn from(text: T) -> Self {
+        Self { text: text.into(), report: None }
+    }
+}
+
+/// Work that takes more than half a second.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Progress {
+    /// Tenths of a second since it was asked for.
+    pub tenths: u64,
+    /// What is done now.
+    pub step: String,
 }
 
 /// All that the window knows.
@@ -225,6 +320,16 @@ pub struct State {
     pub results: BTreeMap<CurveKey, Outcome>,
     /// The next serial number of a scan.
     pub next_scan: u64,
+    /// Number of the study file opened last.
+    pub next_origin: u64,
+    /// Where the studies of this window are kept, by their number.
+    pub kept: BTreeMap<u64, KeptStudy>,
+    /// Files used last, the latest first.
+    pub recent: Vec<PathBuf>,
+    /// Unsaved work of earlier windows, the newest first.
+    pub leftovers: Vec<Leftover>,
+    /// What the program remembers; the list of files apart.
+    pub preferences: Preferences,
 }
 
 impl State {
@@ -253,7 +358,24 @@ impl State {
 
     /// Why the latest computation of the focused curve failed, where it did.
     pub fn failure(&self) -> Option<&str> {
-        self.results.get(&self.document.focus?)?.failure.as_deref()
+        Some(self.results.get(&self.document.focus?)?.failure.as_ref()?.text.as_str())
+    }
+
+    /// The report of that failure, where it is a fault of the program.
+    pub fn report(&self) -> Option<&str> {
+        self.results.get(&self.document.focus?)?.failure.as_ref()?.report.as_deref()
+    }
+
+    /// Whether the computation of what is in focus was stopped.
+    pub fn is_stopped(&self) -> bool {
+        let focused = self.document.focused();
+        focused.is_some_and(|(key, _, s)| self.view.stopped.as_ref().is_some_and(|o| o.0 == key && o.1 == *s))
+    }
+
+    /// Whether what is shown has to be marked as older than the settings. A result that comes at once is not
+    /// announced: the window would flicker under the hand.
+    pub fn looks_old(&self) -> bool {
+        self.failure().is_some() || self.is_stale() && (self.view.late || self.is_stopped())
     }
 
     /// The window in force in the unit of the scan.

@@ -1,8 +1,9 @@
 //! Takes what was finished beside the window into the state: scans, refusals, studies, files written.
 
 use super::apply::forget_level;
+use super::command::Command;
 use super::state::{
-    CurveKey, Document, LoadedScan, Message, Outcome, PathPurpose, PathWindow, Problem, State, Study,
+    CurveKey, Document, Failure, LoadedScan, Message, Outcome, PathPurpose, PathWindow, Problem, State, Study,
 };
 use crate::settings::Settings;
 
@@ -28,7 +29,7 @@ fn add_scan(mut loaded: LoadedScan, state: &mut State) {
     state.next_scan += 1;
     let document: &mut Document = &mut state.document;
     for (column, energy) in loaded.scan.energies.iter().enumerate() {
-        let settings = Settings { curve: Some(energy.name.clone()), ..loaded.start.clone() };
+        let settings = super::saving::fresh(&loaded.start, &energy.name);
         document.settings.insert(CurveKey { scan: loaded.key, column }, settings);
     }
     // A name that fits no column was refused when the file was read.
@@ -36,7 +37,11 @@ fn add_scan(mut loaded: LoadedScan, state: &mut State) {
     document.focus = Some(CurveKey { scan: loaded.key, column });
     // A bundled sample opens with the point of it all in sight: the first level that the parabola misses.
     let sample = loaded.is_sample;
+    let path = loaded.path.clone();
     document.scans.push(loaded);
+    if let Some(path) = path {
+        super::saving::remember(path, state);
+    }
     state.view.problem = None;
     state.view.message = None;
     forget_level(state);
@@ -84,8 +89,8 @@ pub fn take_reread(loaded: LoadedScan, state: &mut State) {
 pub fn take_changed(key: u64, state: &mut State) {
     let Some(name) = state.document.scan(key).map(|s| s.scan.file_name.clone()) else { return };
     state.view.changed.insert(key);
-    let text = format!("{name} has changed on disk. The curves on the left offer to read it again.");
-    state.view.message = Some(Message { text, failure: false });
+    let text = format!("{name} has changed on disk; what is shown is as it was.");
+    state.view.message = Some(Message { action: Some(Command::Reload(key)), ..Message::told(text) });
 }
 
 /// Takes what a folder held.
@@ -96,7 +101,7 @@ pub fn take_folder(scans: Vec<LoadedScan>, refused: Vec<String>, state: &mut Sta
     if !refused.is_empty() {
         text.push_str(&format!(" Not read: {}.", refused.join(", ")));
     }
-    state.view.message = Some(Message { text, failure: read == 0 });
+    state.view.message = Some(Message { failure: read == 0, ..Message::told(text) });
 }
 
 /// Takes a file that was refused.
@@ -105,7 +110,11 @@ pub fn take_problem(problem: Problem, state: &mut State) {
 }
 
 /// Takes the answer of the worker about one curve.
-pub fn take_outcome(key: CurveKey, settings: Settings, answer: Result<Study, String>, state: &mut State) {
+pub fn take_outcome(key: CurveKey, settings: Settings, answer: Result<Study, Failure>, state: &mut State) {
+    // Its scan may have been closed meanwhile.
+    if state.document.scan(key.scan).is_none() {
+        return;
+    }
     let before = state.results.remove(&key).and_then(|o| o.study);
     let outcome = match answer {
         Ok(study) => Outcome { settings, study: Some(study), failure: None },
@@ -138,5 +147,5 @@ pub fn take_written(result: Result<String, String>, state: &mut State) {
         Ok(text) => (text, false),
         Err(text) => (text, true),
     };
-    state.view.message = Some(Message { text, failure });
+    state.view.message = Some(Message { failure, ..Message::told(text) });
 }

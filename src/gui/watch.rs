@@ -9,11 +9,20 @@ use std::time::{Duration, SystemTime};
 /// Time between two looks.
 const PAUSE: Duration = Duration::from_secs(2);
 
+/// What was read from a file.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Watching {
+    /// The scan of this number.
+    Scan(u64),
+    /// The study of this number.
+    Study(u64),
+}
+
 /// A file as it was when it was read.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Watched {
-    /// The scan read from it.
-    pub key: u64,
+    /// What was read from it.
+    pub what: Watching,
     /// Where it is.
     pub path: PathBuf,
     /// When it was last changed.
@@ -112,9 +121,9 @@ mod tests {
         let old = SystemTime::UNIX_EPOCH + Duration::from_secs(1_000_000);
         let (woken, wakes) = mpsc::channel();
         let mut watch = Watch::new(move || woken.send(()).expect("heard"));
-        watch.set(vec![Watched { key: 3, path, modified: old }], true);
+        watch.set(vec![Watched { what: Watching::Scan(3), path, modified: old }], true);
         wakes.recv_timeout(Duration::from_secs(20)).expect("the change is told");
-        assert_eq!(watch.poll().map(|w| w.key), Some(3));
+        assert_eq!(watch.poll().map(|w| w.what), Some(Watching::Scan(3)));
         assert_eq!(watch.poll(), None);
     }
 }

@@ -11,7 +11,8 @@ USAGE
   parabound recheck FINDINGS           compute a findings file again from its source and compare
 
 WINDOW OPTIONS
-  --renderer auto|gl|cpu     how it is painted; auto (the default) needs no GPU
+  --renderer auto|gl|cpu     how it is painted; auto (the default) needs no GPU. PARABOUND_RENDERER
+                             does the same; with PARABOUND_VERBOSE=1 the program says how it paints
   --theme light|dark         colours; the default follows the desktop
   --page NAME                page at the right: scan, constants, levels, fits, reach
   --picture F.png            paint the window once, without any display, and end
@@ -81,8 +82,8 @@ STUDY
                              such as 0-20 can be given; with several J also a fitted table of Y_kl
   --lambda L                 Lambda of the electronic state, for the levels with rotation
   --isotopologues A,B;C,D    other isotopes on the same curve, with shifts: 2H,35Cl;1H,37Cl
-  --settings F               all settings at once, as a findings file carries them; other options
-                             given beside it win
+  --settings F               all settings at once, as a findings or study file carries them;
+                             other options given beside it win
 
 RESULTS
   --out F                    findings (JSON); '-' for standard output. Replaces a findings file,

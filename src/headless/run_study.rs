@@ -11,6 +11,7 @@ use crate::findings::Findings;
 use crate::scan::Scan;
 use crate::settings::{SetAside, Settings};
 use crate::study::{Mark, Stage, study_observed};
+use crate::study_file::{self, StudyFile};
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
 use std::sync::{Mutex, PoisonError};
@@ -73,7 +74,8 @@ pub(super) fn starting_settings(choices: &StudyChoices) -> Result<Settings, Stri
     Ok(settings)
 }
 
-/// Settings from a findings file of one study, or from a file that holds settings alone.
+/// Settings from a findings file of one study, from a study file (those of the curve in focus), or from a
+/// file that holds settings alone.
 ///
 /// # Errors
 /// A sentence with the file, what is wrong and what is accepted.
@@ -88,6 +90,11 @@ pub fn read_settings(path: &Path) -> Result<Settings, String> {
         }
         other => other,
     };
+    if value.get("format").and_then(|f| f.as_str()) == Some(study_file::FORMAT) {
+        let file = StudyFile::from_value(value).map_err(|e| format!("{}: {e}", path.display()))?;
+        let none = || format!("{}: no curve of this study file is in focus", path.display());
+        return file.focused_settings().cloned().ok_or_else(none);
+    }
     let settings = value.get("settings").cloned().unwrap_or(value);
     serde_json::from_value(settings)
         .map_err(|e| format!("{}: these settings do not fit: {e}", path.display()))

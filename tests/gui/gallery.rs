@@ -121,3 +121,66 @@ fn missing_atoms_and_missing_units_are_shown_in_every_kind_of_window() {
         write(&mut window, &format!("{kind}_empty"));
     }
 }
+
+#[test]
+fn hints_search_sheet_offer_and_menus_are_shown_in_every_kind_of_window() {
+    use egui_kittest::kittest::Queryable as _;
+    for (kind, theme, size, scale) in KINDS {
+        let folder = tempfile::tempdir().expect("a folder");
+        let start =
+            || Start { state_folder: Some(folder.path().to_owned()), theme: Some(theme), ..Start::default() };
+        let mut left = open(size, theme, start());
+        give(&mut left, &[Command::SetTolerance { tolerance: 0.1, resting: true }]);
+        drop(left);
+        let mut window = open(size, theme, start());
+        window.ctx.set_pixels_per_point(scale);
+        assert!(state(&window).view.hints && !state(&window).leftovers.is_empty());
+        write(&mut window, &format!("{kind}_hints_offer"));
+        give(&mut window, &[Command::LeaveWork, Command::ShowHints(false), Command::ShowSearch(true)]);
+        write(&mut window, &format!("{kind}_search"));
+        give(&mut window, &[Command::TypeSearch("le".into())]);
+        write(&mut window, &format!("{kind}_search_typed"));
+        give(&mut window, &[Command::ShowSearch(false), Command::ShowKeys(true)]);
+        write(&mut window, &format!("{kind}_keys"));
+        give(&mut window, &[Command::ShowKeys(false)]);
+        for menu in ["File", "View"] {
+            window.get_by_role_and_label(eframe::egui::accesskit::Role::Button, menu).click();
+            window.run();
+            write(&mut window, &format!("{kind}_menu_{}", menu.to_lowercase()));
+            window.key_press(eframe::egui::Key::Escape);
+            window.run();
+        }
+    }
+}
+
+#[test]
+fn failures_are_shown_in_every_kind_of_window() {
+    use parabound::gui::compute::Ticket;
+    use parabound::gui::job::compute;
+    use parabound::gui::state::Study;
+    fn faulty(
+        scan: &parabound::scan::Scan,
+        settings: &parabound::settings::Settings,
+        ticket: &Ticket,
+    ) -> Result<Study, String> {
+        assert!(settings.reach.tolerance < 0.06, "a fault put in for the test");
+        compute(scan, settings, ticket)
+    }
+    for (kind, theme, size, scale) in KINDS {
+        let start = Start { job: Some(faulty), ..Start::default() };
+        let mut window = open(size, theme, start);
+        window.ctx.set_pixels_per_point(scale);
+        give(&mut window, &[Command::SetTolerance { tolerance: 0.2, resting: true }]);
+        assert!(state(&window).report().is_some());
+        write(&mut window, &format!("{kind}_failed_with_older"));
+        let settings = parabound::settings::Settings {
+            reach: parabound::reach::ReachSettings { tolerance: 0.2, ..Default::default() },
+            ..Default::default()
+        };
+        let start = Start { job: Some(faulty), settings, ..Start::default() };
+        let mut window = open(size, theme, start);
+        window.ctx.set_pixels_per_point(scale);
+        write(&mut window, &format!("{kind}_failed"));
+        assert!(state(&window).study().is_none());
+    }
+}

@@ -5,9 +5,13 @@
 mod agreement;
 mod by_label;
 mod commands;
+mod every_command;
 mod frames;
 mod gallery;
 mod harness;
+mod killed;
 mod pages;
 mod pictures;
 mod reading;
+mod saving;
+mod working;

@@ -232,3 +232,39 @@ fn thermal_averages_by_option_and_as_a_table() {
         assert_eq!(study(&arguments).status.code(), Some(2), "{wrong}");
     }
 }
+
+#[test]
+fn settings_come_out_of_a_study_file_too() {
+    use parabound::settings::Settings;
+    use parabound::study_file::{FORMAT, Focus, StudyCurve, StudyFile, StudyScan, VERSION};
+    let mut settings = Settings { curve: Some("E_A".into()), ..Settings::default() };
+    settings.reach.tolerance = 0.03;
+    let curve =
+        |name: &str, settings: &Settings| StudyCurve { name: name.into(), settings: settings.clone() };
+    let file = StudyFile {
+        format: FORMAT.into(),
+        version: VERSION,
+        scans: vec![StudyScan {
+            file_name: "lih_X_A.csv".into(),
+            curves: vec![curve("E_X", &Settings::default()), curve("E_A", &settings)],
+            ..StudyScan::default()
+        }],
+        focus: Some(Focus { scan: 0, curve: "E_A".into() }),
+        ..StudyFile::default()
+    };
+    let folder = tempfile::tempdir().expect("a folder");
+    let path = folder.path().join("lih.parabound");
+    let path_text = path.to_str().expect("UTF-8").to_owned();
+    fs::write(&path, file.to_text()).expect("written");
+    let through = findings("lih_X_A.csv", &["--settings", &path_text]);
+    let direct = serde_json::to_value(&settings).expect("JSON");
+    assert_eq!(through["settings"]["reach"], direct["reach"]);
+    let curve = through["source"]["curve"].as_str().expect("a name");
+    assert!(curve.starts_with("E_A"), "{curve}");
+    // Which curve is meant has to be said where none is in focus.
+    fs::write(&path, StudyFile { focus: None, ..file }.to_text()).expect("written");
+    let scan = scan("lih_X_A.csv");
+    let output = study(&[scan.to_str().expect("UTF-8"), "--settings", &path_text]);
+    assert_eq!(output.status.code(), Some(3));
+    assert!(text(&output.stderr).contains("in focus"), "{}", text(&output.stderr));
+}

@@ -42,7 +42,7 @@ const PHYSICS: &[&str] = &[
 ];
 
 /// Areas in the order of dependency, each with groups of areas that it may name.
-const LAYERS: [(&str, &[&[&str]]); 20] = [
+const LAYERS: [(&str, &[&[&str]]); 21] = [
     ("units", &[]),
     ("estimate", &[&["units"]]),
     ("digits", &[]),
@@ -60,6 +60,7 @@ const LAYERS: [(&str, &[&[&str]]); 20] = [
     ("findings", &[COMMON, PHYSICS]),
     ("verdict", &[COMMON, &["digits", "findings", "radial", "reach"]]),
     ("study", &[COMMON, PHYSICS, &["digits", "findings"]]),
+    ("study_file", &[&["settings"]]),
     ("figure", &[COMMON, PHYSICS, &["digits", "findings", "verdict", "study"]]),
     ("export", &[COMMON, PHYSICS, &["digits", "findings", "verdict", "study"]]),
     ("report", &[COMMON, PHYSICS, &["digits", "findings", "verdict", "figure", "export"]]),

@@ -1,7 +1,11 @@
 //! Small windows over the window.
 
 mod columns;
+mod keys;
 mod path;
+mod search;
 
 pub use columns::columns_ui;
+pub use keys::keys_ui;
 pub use path::path_window_ui;
+pub use search::search_ui;

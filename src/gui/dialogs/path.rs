@@ -14,6 +14,7 @@ pub fn path_window_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let title = match window.purpose {
         PathPurpose::Open => "Open a bond scan".to_owned(),
         PathPurpose::Write(product) => format!("Write {}", product.name().to_lowercase()),
+        PathPurpose::SaveStudy => "Save study".to_owned(),
     };
     egui::Window::new(title)
         .collapsible(false)
@@ -31,6 +32,9 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
     let label = ui.label(RichText::new("Path").font(look::plain(look::SECONDARY)).color(look.dim));
     let mut text = window.text.clone();
     let field = ui.add(TextEdit::singleline(&mut text).desired_width(f32::INFINITY)).labelled_by(label.id);
+    if ui.memory(|m| m.focused().is_none()) {
+        field.request_focus();
+    }
     if field.changed() {
         out.push(Command::TypePath(text));
     }
@@ -49,6 +53,7 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
         let verb = match window.purpose {
             PathPurpose::Open => "Open",
             PathPurpose::Write(_) => "Write",
+            PathPurpose::SaveStudy => "Save",
         };
         accepted |= ui.button(verb).clicked();
         if ui.button("Cancel").clicked() {
@@ -60,6 +65,7 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
         out.push(match window.purpose {
             PathPurpose::Open => Command::OpenPath(path),
             PathPurpose::Write(product) => Command::ExportTo { product, path, overwrite: false },
+            PathPurpose::SaveStudy => Command::SaveStudyTo { path, overwrite: false },
         });
         out.push(Command::ClosePathWindow);
     }

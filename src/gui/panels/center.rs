@@ -1,5 +1,6 @@
 //! The middle: sentence, regions, plot, strip and ladders.
 
+use super::waiting;
 use crate::figure::Role;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
@@ -20,8 +21,7 @@ pub(super) fn center_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         return;
     }
     let Some(study) = state.study() else {
-        let text = state.failure().unwrap_or("Computing …");
-        ui.centered_and_justified(|ui| ui.label(text));
+        waiting::waiting_ui(ui, state, out);
         return;
     };
     sentence_ui(ui, state, out);
@@ -35,7 +35,7 @@ fn sentence_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let look = Look::of(ui);
     let Some(study) = state.study() else { return };
     let sentence = &study.pictures.sentence;
-    let fade = state.is_stale() || state.failure().is_some();
+    let fade = state.looks_old();
     ui.horizontal_wrapped(|ui| {
         let color = if fade { look.dim } else { look.text };
         let mut text = RichText::new(&sentence.text).font(look::semibold(look::SENTENCE)).color(color);

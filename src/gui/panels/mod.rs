@@ -10,6 +10,7 @@ mod left;
 mod levels;
 mod masses;
 mod notices;
+mod offer;
 mod problem;
 mod reach;
 mod right;
@@ -17,9 +18,11 @@ mod scan;
 mod thermal;
 mod top;
 mod units;
+mod waiting;
 
 pub use crate::figure::rows::constants_text;
 pub use compare::comparison_text;
+pub(super) use waiting::words as progress_words;
 
 use super::command::Command;
 use super::dialogs;
@@ -65,11 +68,12 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         .resizable(false)
         .frame(plain(Margin::symmetric(16, 0)))
         .show(ui, |ui| top::top_ui(ui, state, out));
+    offer::offer_ui(ui, state, out);
     if state.document.scans.is_empty() {
         egui::CentralPanel::default()
             .frame(Frame::new().fill(look.ground).inner_margin(24))
             .show(ui, |ui| problem::empty_ui(ui, state, out));
-        dialogs::path_window_ui(ui, state, out);
+        dialogs_ui(ui, state, out);
         return;
     }
     let left_open = state.view.panels.left.unwrap_or(width >= ROOM_FOR_LEFT);
@@ -123,7 +127,13 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         });
     problem::problem_ui(ui, state, out);
     dialogs::columns_ui(ui, state, out);
+    dialogs_ui(ui, state, out);
+}
+
+fn dialogs_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     dialogs::path_window_ui(ui, state, out);
+    dialogs::keys_ui(ui, state, out);
+    dialogs::search_ui(ui, state, out);
 }
 
 /// A folded panel: its name written upwards, unfolded by a click anywhere on it.

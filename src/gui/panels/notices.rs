@@ -3,7 +3,7 @@
 use crate::findings::Findings;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::{self, ButtonForm, command_button_as, elided};
+use crate::gui::show::{self, ButtonForm, command_button, command_button_as, elided};
 use crate::gui::state::{Page, Preset, State};
 use crate::notice::{Code, Notice, Severity};
 use eframe::egui;
@@ -63,6 +63,9 @@ fn list_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         let mark = if message.failure { look.stop } else { look.reach };
         row_ui(ui, &message.text, Mark::Round(mark), false, |ui| {
             command_button_as(ui, state, "Dismiss", Command::DismissMessage, ButtonForm::Link, out);
+            if let Some(action) = &message.action {
+                command_button(ui, state, action.clone(), ButtonForm::Link, out);
+            }
         });
     }
     let Some(study) = state.study() else { return };

@@ -3,7 +3,7 @@
 use super::{constants, fits, levels, reach, scan, thermal};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show;
+use crate::gui::show::{self, ButtonForm, command_button};
 use crate::gui::state::{Page, State};
 use eframe::egui;
 use egui::{Align2, ScrollArea, Sense, Stroke, Ui, WidgetInfo, vec2};
@@ -11,15 +11,15 @@ use egui::{Align2, ScrollArea, Sense, Stroke, Ui, WidgetInfo, vec2};
 pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     tabs_ui(ui, state, out);
     ui.add_space(6.0);
-    let Some(study) = state.study() else {
-        let waiting = state.failure().unwrap_or("Computing …").to_owned();
-        show::note(ui, &waiting);
-        return;
-    };
+    // Without a study the middle of the window says why.
+    let Some(study) = state.study() else { return };
     if let Some(failure) = state.failure() {
         show::note(ui, &format!("{failure} The figures below belong to the settings before."));
+        if state.report().is_some() {
+            command_button(ui, state, Command::CopyReport, ButtonForm::Link, out);
+        }
     }
-    if state.is_stale() || state.failure().is_some() {
+    if state.looks_old() {
         ui.multiply_opacity(0.55);
     }
     let findings = &*study.findings;

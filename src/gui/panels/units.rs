@@ -6,7 +6,6 @@ use crate::gui::look::{self, Look};
 use crate::gui::meaning::Meaning;
 use crate::gui::show::{self, Column, columns_ui};
 use crate::gui::state::Problem;
-use crate::scan::read::ReadSettings;
 use eframe::egui;
 use egui::{Align2, ScrollArea, Sense, Ui, WidgetInfo, pos2, vec2};
 
@@ -52,11 +51,7 @@ pub(super) fn units_ui(ui: &mut Ui, problem: &Problem, out: &mut Vec<Command>) {
         .show_rows(ui, ROW, rows, |ui, range| {
             for meaning in &problem.meanings[range] {
                 if meaning_ui(ui, meaning, width) {
-                    out.push(Command::ReadAgain(ReadSettings {
-                        length_unit: Some(meaning.length),
-                        energy_unit: Some(meaning.energy),
-                        ..problem.start.read.clone()
-                    }));
+                    out.push(meaning.command(&problem.start.read));
                 }
             }
         });

@@ -31,9 +31,8 @@ pub(super) fn window_edges_ui(
     map: &Map,
     out: &mut Vec<Command>,
 ) {
-    let Some(window) = state.window() else { return };
     for upper in [false, true] {
-        edge_ui(ui, state, study, stage, map, window, upper, out);
+        edge_ui(ui, state, study, stage, map, upper, out);
     }
 }
 
@@ -43,10 +42,10 @@ fn edge_ui(
     study: &Study,
     stage: &Stage,
     map: &Map,
-    window: Window,
     upper: bool,
     out: &mut Vec<Command>,
 ) {
+    let Some(window) = state.window() else { return };
     let edge = if upper { window.to } else { window.from };
     let value = window.unit.convert(edge, LengthUnit::Angstrom);
     let seen = map.sees_x(value);

@@ -1,7 +1,7 @@
 //! Levels with their densities.
 
 use super::map::Map;
-use crate::figure::{DensityKind, DensityPicture, LevelPicture};
+use crate::figure::{DensityKind, DensityPicture, LevelPicture, number};
 use crate::gui::densities::DensityView;
 use crate::gui::look::Look;
 use crate::gui::state::{State, Study};
@@ -152,4 +152,31 @@ pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
     for x in [left, right] {
         painter.line_segment([pos2(x, y - 5.0), pos2(x, y + 5.0)], Stroke::new(2.0, look.accent));
     }
+}
+
+/// The levels as a list for those who do not see the picture. It takes no room and no pointer.
+pub(super) fn list_ui(ui: &mut Ui, study: &Study, map: &Map) {
+    let builder = egui::UiBuilder::new().id_salt("levels of the picture").max_rect(map.rect);
+    ui.scope_builder(builder, |ui| {
+        ui.ctx().accesskit_node_builder(ui.unique_id(), |node| {
+            node.set_role(egui::accesskit::Role::List);
+            node.set_label("Levels of the picture");
+        });
+        for level in &study.pictures.levels {
+            let y = map.y(level.energy_per_cm).clamp(map.rect.top(), map.rect.bottom());
+            let line = egui::Rect::from_min_size(pos2(map.rect.left(), y), egui::vec2(map.rect.width(), 0.0));
+            let response = ui.interact(line, ui.unique_id().with(level.v), egui::Sense::hover());
+            response.widget_info(|| {
+                let (inner, outer) = level.turning_points;
+                let text = format!(
+                    "Level v = {}: {} cm⁻¹ above the minimum, turning points {} and {} Å",
+                    level.v,
+                    number::fixed(level.energy_per_cm, 2),
+                    number::fixed(inner, 3),
+                    number::fixed(outer, 3)
+                );
+                egui::WidgetInfo::labeled(egui::accesskit::Role::ListItem, true, text)
+            });
+        }
+    });
 }

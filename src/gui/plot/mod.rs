@@ -5,6 +5,7 @@ pub(in crate::gui) mod axes;
 mod card;
 mod cursor;
 mod handles;
+mod hints;
 mod hits;
 mod items;
 mod ladders;
@@ -18,6 +19,7 @@ mod tolerance;
 
 use super::command::Command;
 use super::look::{self, Look};
+use super::show::{ButtonForm, command_button};
 use super::state::{State, Study};
 use crate::figure::{Role, Shape};
 use eframe::egui;
@@ -82,23 +84,48 @@ pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command
     }
     handles::window_edges_ui(ui, state, study, &stage, &map, out);
     cursor::cursor_ui(ui, state, &stage, &map, &strip, &r_axis);
-    stale_mark_ui(ui, state, &stage);
+    levels::list_ui(ui, study, &map);
+    hints::hints_ui(ui, state, &stage, &map, &strip, out);
+    stale_mark_ui(ui, state, &stage, out);
     ui.allocate_rect(whole, egui::Sense::hover());
 }
 
-/// Says that what is seen is older than the settings, in a corner, so that nothing moves when it comes and goes.
-fn stale_mark_ui(ui: &Ui, state: &State, stage: &Stage) {
+/// Says that what is seen is older than the settings, and what can be done, in a corner, so that nothing moves
+/// when it comes and goes.
+fn stale_mark_ui(ui: &mut Ui, state: &State, stage: &Stage, out: &mut Vec<Command>) {
+    if !state.looks_old() {
+        return;
+    }
     let look = Look::of(ui);
-    let (text, color) = match state.failure() {
-        Some(_) => ("failed: older result shown", look.stop),
-        None if state.is_stale() => ("computing …", look.dim),
-        None => return,
+    let veil = look.ground.gamma_multiply(0.45);
+    ui.painter().rect_filled(stage.plot.union(stage.strip).with_max_x(stage.whole.right()), 0.0, veil);
+    let (text, color, command) = if state.failure().is_some() {
+        ("failed: older result shown".to_owned(), look.stop, None)
+    } else if state.is_stopped() {
+        ("stopped: older result shown".to_owned(), look.accent, Some(Command::ComputeAgain))
+    } else if let Some(progress) = &state.view.progress {
+        let words = super::panels::progress_words(progress.tenths, &progress.step);
+        (format!("computing …  {words}"), look.dim, Some(Command::StopComputing))
+    } else {
+        ("computing …".to_owned(), look.dim, None)
     };
-    let galley = ui.painter().layout_no_wrap(text.to_owned(), look::plain(look::SMALL), color);
+    let galley = ui.painter().layout_no_wrap(text, look::plain(look::SMALL), color);
     let size = galley.size();
-    let rect = Rect::from_min_size(pos2(stage.plot.right() - size.x - 8.0, stage.plot.top() + 7.0), size);
-    ui.painter().rect_filled(rect.expand2(egui::vec2(4.0, 2.0)), 3.0, look.panel);
-    ui.painter().galley(rect.min, galley, color);
+    let room = if command.is_some() { 66.0 } else { 0.0 };
+    let right = stage.plot.right() - 8.0;
+    let at = pos2(right - room - size.x, stage.plot.top() + 7.0);
+    let back = Rect::from_min_max(at, pos2(right, at.y + size.y)).expand2(egui::vec2(6.0, 4.0));
+    ui.painter().rect_filled(back, 3.0, look.raised);
+    ui.painter().galley(at, galley, color);
+    if let Some(command) = command {
+        let place = Rect::from_min_max(pos2(right - room + 4.0, back.top()), pos2(right, back.bottom()));
+        let layout = egui::Layout::right_to_left(egui::Align::Center);
+        ui.scope_builder(egui::UiBuilder::new().max_rect(place).layout(layout), |ui| {
+            ui.spacing_mut().interact_size.y = 16.0;
+            ui.spacing_mut().button_padding.y = 0.0;
+            command_button(ui, state, command, ButtonForm::Link, out);
+        });
+    }
 }
 
 /// The ends of the reach on the bond-length axis, open ends at the border of the view.

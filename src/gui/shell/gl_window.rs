@@ -41,6 +41,7 @@ pub(super) fn run(
             }
             let make = make.borrow_mut().take().ok_or("the program was already made")?;
             made.set(true);
+            super::tell(&format!("through OpenGL ({name})"));
             Ok(Box::new(App(make(&cc.egui_ctx))))
         }
     };

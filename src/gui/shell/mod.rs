@@ -106,10 +106,22 @@ pub fn run<'a>(
             gl_window::Outcome::Unusable(reason) if options.renderer == Renderer::Gl => {
                 return Err(ShellError::NoGl { reason });
             }
-            gl_window::Outcome::Unusable(_) => {}
+            gl_window::Outcome::Unusable(reason) => tell(&format!("by the processor: OpenGL, {reason}")),
         }
+    } else {
+        tell("by the processor, as demanded");
     }
     cpu_window::run(&mut event_loop, &make, options)
+}
+
+/// The environment variable that, when it holds anything, lets the program say how it paints and why.
+const VERBOSE_VARIABLE: &str = "PARABOUND_VERBOSE";
+
+/// Says on standard error how the window is painted, where that is asked for.
+fn tell(how: &str) {
+    if std::env::var_os(VERBOSE_VARIABLE).is_some_and(|v| !v.is_empty()) {
+        eprintln!("parabound: painted {how}");
+    }
 }
 
 /// Connects to the display. The window system's own messages speak of libraries and source files, so
