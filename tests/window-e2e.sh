@@ -104,11 +104,11 @@ command_named() { keys ctrl+k; settled; type_text "$1"; sleep 0.5; keys Return; 
 kept() { cat "$work"/state/work-*.parabound 2>/dev/null; }
 knows() { kept | grep -q -- "$1"; }
 type_path() { settled; keys ctrl+a; type_text "$1"; sleep 0.3; keys Return; }
-# The column of the picture with the most points in the colour of the handles, right of the given one: a window edge.
-edge_right_of() {
-    import -silent -window "$window" -crop 700x300+240+180 +repage txt:- |
-        awk -F'[,: ]+' -v least="$1" '/#E9C46A/ && $1 + 240 > least { n[$1]++ }
-            END { for (x in n) if (n[x] > 200 && x + 0 > best) best = x; print best + 240 }'
+# The right-most column of the picture that is mostly in the colour of the handles: the upper window edge.
+upper_edge() {
+    import -silent -window "$window" -crop 700x300+240+200 +repage txt:- |
+        awk -F'[(,: )]+' '$3 > 170 && $3 - $5 > 80 && $4 > 140 && $4 < $3 { n[$1]++ }
+            END { for (x in n) if (n[x] > 200 && x + 0 > best) best = x + 0; print best + 240 }'
 }
 
 whole_job() {
@@ -130,7 +130,7 @@ whole_job() {
     say "$renderer: a file without units opened by keys, units chosen by name"
     settled; picture "$folder/job-2-opened.png"
 
-    x=$(edge_right_of 560); [[ $x -gt 560 ]] || fail "$renderer: no window edge to be seen"
+    x=$(upper_edge); [[ $x -gt 260 ]] || fail "$renderer: no window edge to be seen"
     local y=330
     xdotool mousemove --window "$window" "$x" "$y"; sleep 0.3
     xdotool mousedown 1; sleep 0.3
@@ -149,6 +149,13 @@ whole_job() {
         fail "$renderer: the findings are not those of the window"
     say "$renderer: findings written, with the window as dragged"
     cp "$findings" "$folder/"
+
+    command_named "export picture"
+    type_path "$work/seen.svg"
+    wait_for 20 test -s "$work/seen.svg" || fail "$renderer: no picture"
+    grep -q '<svg' "$work/seen.svg" || fail "$renderer: the picture is no SVG"
+    cp "$work/seen.svg" "$folder/"
+    say "$renderer: picture of the view written"
 
     keys ctrl+s
     type_path "$work/unknown.parabound"
