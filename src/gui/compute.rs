@@ -217,14 +217,16 @@ fn guarded<I, O>(job: &dyn Fn(&I, &Ticket) -> O, input: &I, ticket: &Ticket) -> 
     }
 }
 
-/// Where a panic happened; only the hook is told.
+/// Where a panic happened; only the hook is told. A study works on threads of its own, so the latest place of any
+/// thread stands in where this one has none.
 mod place {
     use std::cell::RefCell;
-    use std::sync::Once;
+    use std::sync::{Mutex, Once};
 
     thread_local! {
         static PLACE: RefCell<Option<String>> = const { RefCell::new(None) };
     }
+    static LATEST: Mutex<Option<String>> = Mutex::new(None);
     static LISTENING: Once = Once::new();
 
     /// Keeps the place of every panic, for the thread it happened on; what was done about panics before goes on.
@@ -237,6 +239,9 @@ mod place {
                     let file = l.file().rsplit_once("src/").map_or(l.file(), |(_, file)| file);
                     format!("{file}, line {}", l.line())
                 });
+                if let Ok(mut latest) = LATEST.lock() {
+                    latest.clone_from(&place);
+                }
                 PLACE.with(|p| *p.borrow_mut() = place);
                 before(info);
             }));
@@ -245,7 +250,7 @@ mod place {
 
     /// Where the latest panic of this thread happened, once.
     pub(super) fn take() -> Option<String> {
-        PLACE.with(|p| p.borrow_mut().take())
+        PLACE.with(|p| p.borrow_mut().take()).or_else(|| LATEST.lock().ok()?.take())
     }
 }
 

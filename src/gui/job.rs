@@ -5,7 +5,7 @@ use super::state::{CurveKey, Failure, Study};
 use crate::figure::Pictures;
 use crate::scan::Scan;
 use crate::settings::Settings;
-use crate::study::{Stage, study_observed};
+use crate::study::{Mark, Stage, study_observed};
 use std::sync::Arc;
 
 /// A study as the worker does it; tests put others in its place.
@@ -19,9 +19,12 @@ pub(super) type Request = (CurveKey, Arc<Scan>, Settings);
 /// # Errors
 /// Why settings and scan do not fit together.
 pub fn compute(scan: &Scan, settings: &Settings, ticket: &Ticket) -> Result<Study, String> {
-    ticket.step("points");
-    let done = &mut |stage: Stage| ticket.step(&format!("{} done", stage.name()));
-    let findings = study_observed(scan, settings, done).map_err(|e| e.to_string())?;
+    let observer = |stage: Stage, mark: Mark| {
+        if matches!(mark, Mark::Begins) {
+            ticket.step(stage.name());
+        }
+    };
+    let findings = study_observed(scan, settings, &observer).map_err(|e| e.to_string())?;
     ticket.step("drawing");
     let pictures = Arc::new(Pictures::of(&findings));
     Ok(Study { findings: Arc::new(findings), pictures })
