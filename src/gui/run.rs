@@ -5,6 +5,7 @@ use super::painter::{Canvas, render_offscreen};
 use super::preferences::state_folder;
 use super::shell::{Renderer, ShellOptions, run as open_window};
 use super::state::Page;
+use crate::files::{self, Replace};
 use crate::headless::{WindowArgs, read_settings};
 use crate::scan::read::read_scan;
 use crate::settings::Settings;
@@ -119,9 +120,14 @@ fn paint(path: &Path, start: Start, theme: Option<egui::Theme>, arguments: &Wind
     let status = status_of(&start);
     let start = Start { inline: true, ..start };
     let picture = render_offscreen(|ctx| App::new(ctx, start), canvas);
-    match picture.save_png(path) {
+    let replace = if arguments.overwrite { Replace::Anything } else { Replace::Nothing };
+    let written = picture
+        .to_png()
+        .map_err(|e| format!("{}: could not be encoded ({e})", path.display()))
+        .and_then(|bytes| files::write(path, &bytes, replace).map_err(|e| e.to_string()));
+    match written {
         Ok(()) => status,
-        Err(error) => fail(NOT_READ, &format!("{}: could not be written ({error})", path.display())),
+        Err(message) => fail(NOT_READ, &message),
     }
 }
 

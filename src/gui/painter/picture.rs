@@ -1,8 +1,7 @@
-//! A picture in memory and its PNG file.
+//! A picture in memory, and as PNG.
 
 use super::pixel;
-use std::io::{Cursor, Write};
-use std::path::Path;
+use std::io::Cursor;
 
 /// The largest side of a picture, in pixels.
 pub const MAX_SIDE_PX: usize = 16_384;
@@ -92,30 +91,6 @@ impl Picture {
             .map_err(std::io::Error::other)?;
         Ok(bytes.into_inner())
     }
-
-    /// Writes the picture as PNG, all or nothing: the file appears only when it is complete.
-    /// An existing file is replaced; asking before that is the caller's part.
-    ///
-    /// # Errors
-    /// Whatever the file system refuses.
-    pub fn save_png(&self, path: &Path) -> std::io::Result<()> {
-        let bytes = self.to_png()?;
-        let folder = path.parent().filter(|f| !f.as_os_str().is_empty()).unwrap_or_else(|| Path::new("."));
-        let mut builder = tempfile::Builder::new();
-        builder.prefix(".parabound-");
-        #[cfg(unix)]
-        {
-            use std::os::unix::fs::PermissionsExt as _;
-            // Temporary files are private to their owner; a picture should be as readable as any new
-            // file. The process's mask still takes its bits away.
-            builder.permissions(std::fs::Permissions::from_mode(0o666));
-        }
-        let mut file = builder.tempfile_in(folder)?;
-        file.write_all(&bytes)?;
-        file.as_file().sync_all()?;
-        file.persist(path).map_err(|e| e.error)?;
-        Ok(())
-    }
 }
 
 #[cfg(test)]
@@ -126,21 +101,15 @@ mod tests {
     fn png_comes_back_as_it_was() {
         let mut picture = Picture::new([3, 2], [10, 20, 30, 255]);
         picture.pixels_mut()[4] = pixel::pack([64, 0, 128, 128]);
-        let folder = tempfile::tempdir().unwrap();
-        let path = folder.path().join("a.png");
-        picture.save_png(&path).unwrap();
-        picture.save_png(&path).unwrap();
-        let back = image::load_from_memory(&std::fs::read(&path).unwrap()).unwrap().to_rgba8();
+        let back = image::load_from_memory(&picture.to_png().unwrap()).unwrap().to_rgba8();
         assert_eq!(back.dimensions(), (3, 2));
         assert_eq!(back.get_pixel(0, 0).0, [10, 20, 30, 255]);
         assert_eq!(back.get_pixel(1, 1).0, [128, 0, 255, 128]);
-        assert_eq!(std::fs::read_dir(folder.path()).unwrap().count(), 1);
     }
 
     #[test]
     fn empty_and_huge_pictures_are_no_panic() {
         assert!(Picture::new([0, 7], [0; 4]).to_png().is_err());
         assert_eq!(Picture::new([usize::MAX, 1], [0; 4]).size_px(), [MAX_SIDE_PX, 1]);
-        assert!(Picture::new([2, 2], [0; 4]).save_png(Path::new("/no/such/folder/a.png")).is_err());
     }
 }
