@@ -27,7 +27,8 @@ h2{font-size:12.5px;font-weight:600;color:#56616f;margin:18px 0 4px;border-botto
 p.sentence{font-size:17px;font-weight:600;line-height:1.4;margin:6px 0 10px}\
 svg{width:100%;height:auto;display:block}\
 table{border-collapse:collapse;font-variant-numeric:tabular-nums;width:100%}\
-td,th{padding:2px 10px 2px 0;text-align:right;vertical-align:baseline}\
+td,th{padding:2px 10px 2px 0;text-align:right;vertical-align:baseline;white-space:nowrap}\
+.words{white-space:normal;text-align:left;padding-left:14px}\
 td:first-child,th:first-child{text-align:left}\
 th{font-weight:400;color:#56616f;border-bottom:1px solid #e8e4db}\
 td.unit{text-align:left;color:#56616f;width:1%;white-space:nowrap}\
@@ -131,7 +132,7 @@ fn fits(out: &mut String, findings: &Findings) {
     let _ = writeln!(
         out,
         "<section><h2>Fits <span class=\"dim\">{about}</span></h2><table>\
-         <tr><th>family</th><th>points</th><th>rms / cm⁻¹</th><th>largest / cm⁻¹</th><th>parameters</th></tr>"
+         <tr><th>family</th><th>points</th><th>rms / cm⁻¹</th><th>largest / cm⁻¹</th><th class=\"words\">parameters</th></tr>"
     );
     for fit in &findings.fits {
         fit_row(out, fit);
@@ -144,7 +145,7 @@ fn fit_row(out: &mut String, fit: &FitFindings) {
     let _ = match &fit.result {
         Err(error) => writeln!(
             out,
-            "<tr><td>{label}</td><td colspan=\"4\">no fit: {}</td></tr>",
+            "<tr><td>{label}</td><td class=\"words\" colspan=\"4\">no fit: {}</td></tr>",
             escaped(&typographic(&error.to_string()))
         ),
         Ok(result) => {
@@ -153,12 +154,14 @@ fn fit_row(out: &mut String, fit: &FitFindings) {
                 .into_iter()
                 .map(|(name, value, unit)| {
                     let unit = if unit == "1" { String::new() } else { format!(" {unit}") };
-                    typographic(&format!("{name} = {value}{unit}")).replace(' ', "\u{a0}")
+                    typographic(&format!("{name} = {value}{unit}"))
+                        .replace("angstrom", "Å")
+                        .replace(' ', "\u{a0}")
                 })
                 .collect();
             writeln!(
                 out,
-                "<tr><td>{label}</td><td>{}</td><td>{}</td><td>{}</td><td>{}</td></tr>",
+                "<tr><td>{label}</td><td>{}</td><td>{}</td><td>{}</td><td class=\"words\">{}</td></tr>",
                 result.points,
                 per_cm(result.rms_residual_hartree),
                 per_cm(result.largest_residual_hartree),
