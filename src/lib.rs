@@ -14,13 +14,13 @@
 //! | Symbol | Identifier |
 //! | --- | --- |
 //! | r, r_e | `r_bohr`, `r_e_bohr` |
-//! | V, D_e (depth), D_0 | `energy_hartree`, `well_depth_hartree`, `d_0_hartree` |
+//! | V, D_e (depth), D_0 | `energy_hartree`, `well_depth_hartree`, `d_0_per_cm` |
 //! | μ | `reduced_mass_me` |
 //! | k_e | `force_constant_hartree_per_bohr2` |
 //! | ω_e, ω_e x_e | `omega_e_per_cm`, `omega_e_x_e_per_cm` |
 //! | B_e, α_e | `b_e_per_cm`, `alpha_e_per_cm` |
 //! | D_e (centrifugal) | `centrifugal_d_e_per_cm` (never bare `d_e`: it has two meanings) |
-//! | v, J, G(v), B_v | `v`, `j`, `g_v_per_cm`, `b_v_per_cm` |
+//! | v, J, G(v), B_v | `v`, `j`, `energy_per_cm`, `b_v_per_cm` |
 
 pub mod density;
 pub mod digits;

@@ -35,8 +35,6 @@ pub const BOLTZMANN_PER_CM_PER_KELVIN: f64 =
     BOLTZMANN_JOULE_PER_KELVIN / (PLANCK_JOULE_SECOND * LIGHT_METRE_PER_SECOND * 100.0);
 /// Molar gas constant in J/(mol K) (exact): N_A k_B.
 pub const GAS_CONSTANT_JOULE_PER_MOLE_KELVIN: f64 = AVOGADRO_PER_MOL * BOLTZMANN_JOULE_PER_KELVIN;
-/// Speed of light in atomic units: 1/α with α = 0.0072973525643 (CODATA 2022).
-pub const LIGHT_ATOMIC_UNITS: f64 = 1.0 / 0.007_297_352_564_3;
 
 /// Unit of an energy column.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
@@ -261,11 +259,6 @@ impl ForceConstantConvention {
 /// Mass in u to electron masses.
 pub const fn u_to_electron_masses(mass_u: f64) -> f64 {
     mass_u / U_PER_ELECTRON_MASS
-}
-
-/// Mass in electron masses to u.
-pub const fn electron_masses_to_u(mass_me: f64) -> f64 {
-    mass_me * U_PER_ELECTRON_MASS
 }
 
 /// Bohr to angstrom.

@@ -4,7 +4,7 @@ use super::number;
 use crate::estimate::Estimate;
 use crate::findings::Findings;
 use crate::potential::curve::OuterTail;
-use crate::reach::{Interval, LevelReach};
+use crate::reach::{EndedBy, Interval, LevelReach};
 use crate::units::{ANGSTROM_PER_BOHR, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom, to_per_cm};
 use crate::verdict::percent;
 
@@ -174,10 +174,12 @@ pub fn energy_rows(findings: &Findings) -> Vec<Row> {
     push("fundamental 1 ← 0", constants.fundamental_per_cm, "E(1) − E(0) of the numerical levels, J = 0.");
     let level = |v: usize| findings.levels.iter().find(|l| l.v == v);
     if let (Some(zero), Some(two)) = (level(0), level(2)) {
+        // As of the fundamental: the root of the squares is the cautious choice.
+        let error = zero.energy_error_per_cm.zip(two.energy_error_per_cm).map(|(a, b)| a.hypot(b));
         let overtone = Estimate {
             value: two.energy_per_cm - zero.energy_per_cm,
-            std_error: two.energy_error_per_cm,
-            source: None,
+            std_error: error,
+            source: two.energy_estimate_per_cm().source,
         };
         push("first overtone 2 ← 0", Some(overtone), "E(2) − E(0) of the numerical levels, J = 0.");
     }
@@ -243,8 +245,13 @@ pub fn temperature_text(kelvin: f64) -> String {
 
 /// Both ends in angstrom.
 pub fn interval_text(interval: &Interval) -> String {
-    let end = |x: Option<f64>| x.map_or_else(|| "scan end".to_owned(), |x| number::signed(to_angstrom(x), 4));
-    format!("{} … {}", end(interval.x_minus_bohr), end(interval.x_plus_bohr))
+    let end = |x: Option<f64>, ended: EndedBy| match (x, ended) {
+        (Some(x), _) => number::signed(to_angstrom(x), 4),
+        (None, EndedBy::Barrier) => "barrier".to_owned(),
+        (None, _) => "scan end".to_owned(),
+    };
+    let (minus, plus) = (interval.ended_by_minus, interval.ended_by_plus);
+    format!("{} … {}", end(interval.x_minus_bohr, minus), end(interval.x_plus_bohr, plus))
 }
 
 /// What the level reach counts, e.g. `levels within 5 % of ωₑ`.

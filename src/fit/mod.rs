@@ -117,9 +117,6 @@ pub struct Parameter {
     pub unit: ParameterUnit,
 }
 
-/// Where the standard errors of a fit come from ([`ErrorSource::Fit`] or [`ErrorSource::Misfit`]).
-pub type FitErrorSource = ErrorSource;
-
 /// Why an iteration ended.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum FitEnd {

@@ -277,7 +277,7 @@ fn finish(data: &Data, solved: Solved, window: Window, variance: Variance) -> Fi
     let (rms_residual_hartree, largest_residual_hartree) = statistics::rms_and_largest(&residuals);
     let covariance = statistics::covariance(&unit_covariance, weighted_square_sum, n, variance)
         .filter(|c| c.iter().flatten().all(|x| x.is_finite()));
-    let source = error_source(&residuals, &covariance, &mut notices, n, model.family(), variance);
+    let source = error_source(&residuals, &covariance, &mut notices, (n, p), model.family(), variance);
     model.shift_energy_hartree(data.zero_hartree);
     let parametric = model.as_parametric();
     let parameters = parametric
@@ -316,15 +316,17 @@ fn error_source(
     residuals: &[f64],
     covariance: &Option<Vec<Vec<f64>>>,
     notices: &mut Vec<Notice>,
-    n: usize,
+    (n, parameters): (usize, usize),
     family: Family,
     variance: Variance,
 ) -> ErrorSource {
     if covariance.is_none() {
-        let text = format!(
-            "The {} fit has as many parameters as points ({n}), so its parameters carry no standard errors.",
-            family.word()
-        );
+        let why = if n > parameters {
+            "is so ill-conditioned that its covariance cannot be computed".to_owned()
+        } else {
+            format!("has as many parameters as points ({n})")
+        };
+        let text = format!("The {} fit {why}, so its parameters carry no standard errors.", family.word());
         notices.push(Notice::info(Code::FewPoints, text));
         return ErrorSource::Fit;
     }

@@ -14,7 +14,7 @@ WINDOW OPTIONS
   --renderer auto|gl|cpu     how it is painted; auto (the default) needs no GPU. PARABOUND_RENDERER
                              does the same; with PARABOUND_VERBOSE=1 the program says how it paints
   --theme light|dark         colours; the default follows the desktop
-  --page NAME                page at the right: scan, constants, levels, fits, reach
+  --page NAME                page at the right: scan, constants, levels, fits, reach, thermal
   --picture F.png            paint the window once, without any display, and end
   --size 1400x900            size of that picture in points
   --scale 2                  pixels per point of that picture
@@ -90,9 +90,8 @@ RESULTS
                              refuses any other file unless --overwrite is given
   --out-dir D                one findings file per study in this folder
   --table WHAT=F.csv         of all studies: levels, constants (one row a curve), curve (the points as read),
-                             window-study (one row a fit, and asks for that study) or thermal (one row a
-                             temperature); may be
-                             repeated
+                             densities (of --density-levels), window-study (one row a fit, and asks for that
+                             study) or thermal (one row a temperature); may be repeated
   --report F.html            one page: picture, sentence, constants, fits, levels, notices, settings
   --parameters F             parameters of the fits with value(uncertainty); LaTeX where F ends in .tex,
                              else text
@@ -115,7 +114,7 @@ FIGURE
   --font-pt 9                font size
   --theme light|dark         colours (default: light, on white)
   --dpi 300                  of a PNG picture (needs the build with the window)
-  The study's options work here too.
+  The study's options about reading, masses, curve, fits and levels work here too.
 
 RECHECK
   --source F                 the scan; without it, the file named in the findings is looked for beside

@@ -66,7 +66,8 @@ fn source_path(arguments: &RecheckArgs, study: &serde_json::Value) -> Result<Pat
     let name = name.filter(|n| Path::new(n).file_name().is_some_and(|f| f == Path::new(n).as_os_str()));
     let name = name.ok_or_else(|| format!("{}: no findings file: it names no source", path.display()))?;
     let beside = path.parent().unwrap_or(Path::new("")).join(name);
-    if beside.is_file() {
+    // Text logs are studied as a folder.
+    if beside.exists() {
         return Ok(beside);
     }
     Err(format!("{}: the source {name} is not beside it; say where it is with --source", path.display()))

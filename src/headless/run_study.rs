@@ -12,7 +12,7 @@ use crate::scan::Scan;
 use crate::settings::{SetAside, Settings};
 use crate::study::{Mark, Stage, study_observed};
 use crate::study_file::{self, StudyFile};
-use std::collections::BTreeMap;
+use std::collections::{BTreeMap, BTreeSet};
 use std::path::{Path, PathBuf};
 use std::sync::{Mutex, PoisonError};
 use std::time::Instant;
@@ -248,7 +248,7 @@ fn write_results(arguments: &StudyArgs, studies: &[(PathBuf, Findings)]) -> Resu
         if let Err(error) = std::fs::create_dir_all(folder) {
             return Err(format!("{}: could not be made ({error})", folder.display()));
         }
-        let mut taken = BTreeMap::new();
+        let mut taken = BTreeSet::new();
         for (path, findings) in studies {
             let file = folder.join(findings_file_name(path, findings, &mut taken));
             keep(files::write(&file, all_to_string(&[findings]).as_bytes(), replace));
@@ -287,15 +287,18 @@ fn all_parameters(studies: &[&Findings], path: &Path, units: &ParameterUnits) ->
 }
 
 /// `lih_X_A.E_X.json`; characters that file systems refuse become `_`, a name used twice gets a number.
-fn findings_file_name(path: &Path, findings: &Findings, taken: &mut BTreeMap<String, usize>) -> String {
+fn findings_file_name(path: &Path, findings: &Findings, taken: &mut BTreeSet<String>) -> String {
     let stem = path.file_stem().map_or_else(|| "scan".into(), |s| s.to_string_lossy());
     let name: String = format!("{stem}.{}", findings.source.curve_label)
         .chars()
         .map(|c| if c.is_alphanumeric() || "._+-=()".contains(c) { c } else { '_' })
         .collect();
-    let count = taken.entry(name.clone()).or_insert(0);
-    *count += 1;
-    if *count == 1 { format!("{name}.json") } else { format!("{name}.{count}.json") }
+    let numbered =
+        std::iter::once(format!("{name}.json")).chain((2_usize..).map(|n| format!("{name}.{n}.json")));
+    // A number may make the name of another curve: the first name that is free.
+    let free = numbered.into_iter().find(|name| !taken.contains(name)).unwrap_or(name);
+    taken.insert(free.clone());
+    free
 }
 
 /// Seconds per stage and pass; the median over passes is printed.
@@ -349,5 +352,27 @@ fn median(values: &[f64]) -> f64 {
         0 => 0.0,
         n if n % 2 == 1 => sorted[n / 2],
         n => 0.5 * (sorted[n / 2 - 1] + sorted[n / 2]),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Invented numbers.
+    #[test]
+    fn no_findings_file_takes_the_name_of_another() {
+        let text = "r_bohr,E (hartree),e2 (hartree)\n1.0,0.2,0.2\n1.2,0.1,0.1\n1.4,0.0,0.0\n1.6,0.1,0.1\n1.8,0.2,0.2\n";
+        let scan =
+            crate::scan::read::read_scan("a.csv", text.as_bytes(), &Default::default()).expect("a scan");
+        let mut findings = crate::study::study(&scan, &Settings::default()).expect("a study");
+        let mut taken = BTreeSet::new();
+        let names: Vec<String> = ["E", "E", "E.2", "E.2"]
+            .map(|label| {
+                findings.source.curve_label = label.to_owned();
+                findings_file_name(Path::new("a.csv"), &findings, &mut taken)
+            })
+            .to_vec();
+        assert_eq!(names, ["a.E.json", "a.E.2.json", "a.E.2.2.json", "a.E.2.3.json"]);
     }
 }

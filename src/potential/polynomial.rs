@@ -133,11 +133,6 @@ impl Polynomial {
         self.series.len() - 1
     }
 
-    /// c_2, c_3, ... in hartree (per bohrⁿ for `Variable::X`).
-    pub fn coefficients_hartree(&self) -> &[f64] {
-        &self.series[2..]
-    }
-
     fn ends(&self) -> Ends {
         *self.ends.get_or_init(|| self.find_ends())
     }

@@ -88,6 +88,17 @@ pub struct LevelSet {
     pub degree: usize,
 }
 
+impl Constants {
+    /// The same where V_inf was not given but follows from the outer points: its own error is not known, and that of
+    /// V_e alone, far smaller, must not pass for it.
+    pub fn with_limit_from_points(mut self) -> Self {
+        for depth in [&mut self.well_depth_per_cm, &mut self.d_0_per_cm].into_iter().flatten() {
+            *depth = Estimate::exact(depth.value);
+        }
+        self
+    }
+}
+
 /// All constants of a curve. Without a mass only the well depth; without levels only what needs none.
 ///
 /// `levels`: rotationless, v ascending from 0, energies from V_e.

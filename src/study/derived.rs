@@ -4,7 +4,7 @@
 use crate::estimate::Estimate;
 use crate::fit::Fit;
 use crate::potential::curve::LocalDerivatives;
-use crate::potential::{Family, Model, Parametric as _, Potential as _};
+use crate::potential::{Family, Model, Parametric as _, Potential as _, Variable};
 use crate::radial::{MOST_LEVELS, RadialRequest, bound_states};
 use crate::spectroscopy::dunham;
 use crate::units::to_per_cm;
@@ -13,12 +13,12 @@ use crate::units::to_per_cm;
 /// fit near the minimum can say.
 const RUNGS: usize = 40;
 
-/// How many levels a function in closed form is asked for: a Morse ladder ends by itself, but a nearly harmonic one
-/// only after millions.
+/// How many levels a function is asked for: the ladder of a well that dissociates ends by itself, but that of a nearly
+/// harmonic Morse function only after millions.
 const fn rungs(family: Family) -> usize {
     match family {
-        Family::Morse => MOST_LEVELS,
-        _ => RUNGS,
+        Family::Harmonic | Family::Polynomial => RUNGS,
+        _ => MOST_LEVELS,
     }
 }
 
@@ -47,7 +47,7 @@ pub fn derived(fit: &Fit, mass_me: f64) -> (Vec<Named>, Vec<Estimate>) {
 /// The same numbers without errors, for a model whose parameters were resampled: the constants in the order of
 /// [`NAMES`] (NaN where there is none), then the levels.
 pub fn values(model: &Model, mass_me: f64) -> Vec<f64> {
-    let levels = solve(model, mass_me, &mut |_, _| ());
+    let levels = solve(model, mass_me, rungs(model.family()), &mut |_, _| ());
     let names = model.parameter_names();
     let depth = names.iter().position(|(name, _)| name == "d_e").map(|i| to_per_cm(model.values()[i]));
     let mut values = named(model, mass_me).unwrap_or([f64::NAN; FROM_DERIVATIVES]).to_vec();
@@ -64,8 +64,17 @@ fn named(model: &Model, mass_me: f64) -> Option<[f64; FROM_DERIVATIVES]> {
         return None;
     }
     let c = dunham(&local, mass_me);
-    let anharmonic = |value: f64| if model.family() == Family::Harmonic { f64::NAN } else { value };
-    Some([c.omega_e_per_cm, anharmonic(c.omega_e_x_e_per_cm), c.b_e_per_cm, anharmonic(c.alpha_e_per_cm)])
+    // α_e needs V‴, ω_e x_e also V⁗: a polynomial of lower degree does not know them.
+    let degree = match model.family() {
+        Family::Harmonic => 2,
+        Family::Polynomial => match model {
+            Model::Polynomial(p) if matches!(p.variable(), Variable::X | Variable::Xi) => p.degree(),
+            _ => usize::MAX,
+        },
+        _ => usize::MAX,
+    };
+    let known = |value: f64, from_degree: usize| if degree < from_degree { f64::NAN } else { value };
+    Some([c.omega_e_per_cm, known(c.omega_e_x_e_per_cm, 4), c.b_e_per_cm, known(c.alpha_e_per_cm, 3)])
 }
 
 fn from_derivatives(fit: &Fit, mass_me: f64) -> Vec<Named> {
@@ -92,7 +101,7 @@ fn levels(fit: &Fit, mass_me: f64) -> Vec<Estimate> {
         return levels.iter().enumerate().map(|(v, &e)| fit.estimate(e, along(v).as_deref())).collect();
     }
     let mut gradients = Vec::new();
-    let levels = solve(&fit.model, mass_me, &mut |r_bohr: &[f64], densities: &[Vec<f64>]| {
+    let levels = solve(&fit.model, mass_me, rungs, &mut |r_bohr: &[f64], densities: &[Vec<f64>]| {
         if !fit.covariance.is_empty() {
             gradients = expectation_gradients(&fit.model, r_bohr, densities);
         }
@@ -122,8 +131,8 @@ fn expectation_gradients(model: &Model, r_bohr: &[f64], densities: &[Vec<f64>]) 
 type Seen<'a> = dyn FnMut(&[f64], &[Vec<f64>]) + 'a;
 
 /// Levels in cm⁻¹; closed form where there is one, else solved, and then `seen` gets the mesh and w ψ² of each level.
-fn solve(model: &Model, mass_me: f64, seen: &mut Seen<'_>) -> Vec<f64> {
-    if let Some(levels) = model.closed_form_levels_hartree(mass_me, RUNGS) {
+fn solve(model: &Model, mass_me: f64, rungs: usize, seen: &mut Seen<'_>) -> Vec<f64> {
+    if let Some(levels) = model.closed_form_levels_hartree(mass_me, rungs) {
         return levels.into_iter().map(to_per_cm).collect();
     }
     let mut above = model.clone();
@@ -132,7 +141,7 @@ fn solve(model: &Model, mass_me: f64, seen: &mut Seen<'_>) -> Vec<f64> {
         reduced_mass_me: mass_me,
         rotation_x: 0.0,
         relative_accuracy: 1e-10,
-        highest_v: Some(RUNGS - 1),
+        highest_v: Some(rungs - 1),
     };
     let Ok(states) = bound_states(&above, &request) else { return Vec::new() };
     if let Some(first) = states.first() {

@@ -298,7 +298,9 @@ fn study_curve(findings: &mut Findings, observer: &Observer) {
         degree: findings.settings.levels.constants_degree,
     };
     findings.constants = observed(observer, Stage::Constants, || {
-        spectroscopy::constants(&curve, mass_me, &findings.levels, set)
+        let constants = spectroscopy::constants(&curve, mass_me, &findings.levels, set);
+        let given = findings.settings.interpolation.asymptote.is_some();
+        if given { constants } else { constants.with_limit_from_points() }
     });
     findings.reach = observed(observer, Stage::Reach, || {
         reach::reach(&curve, mass_me, &findings.levels, &findings.settings.reach)

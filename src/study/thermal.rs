@@ -8,8 +8,8 @@ use crate::potential::curve::ScanCurve;
 use crate::radial::{self, RadialRequest};
 use crate::species::{Masses, mean_atomic_mass_u};
 use crate::thermal::{
-    self, Averages, Position, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings, ideal_gas,
-    over_levels, rigid_rotor, rotating_levels,
+    self, Averages, HIGHEST_J, Position, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings,
+    ideal_gas, over_levels, rigid_rotor, rotating_levels,
 };
 use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, rotational_constant_per_cm};
 
@@ -95,6 +95,14 @@ fn rotate(
     curve: &ScanCurve,
     masses: &Masses,
 ) -> Option<Notice> {
+    let lambda = findings.settings.levels.lambda;
+    if lambda > 0 {
+        let text = format!(
+            "There are no thermal averages with rotation: they are made for closed-shell states, and this one has \
+             Lambda = {lambda}."
+        );
+        return Some(Notice::caution(Code::ThermalLevels, text));
+    }
     let highest_kelvin = points.iter().map(|p| p.kelvin).fold(0.0, f64::max);
     let highest_v = findings.levels.len().checked_sub(1)?;
     let levels = match rotating_levels(
@@ -132,7 +140,14 @@ fn rotate(
         rotating.morse = of_morse.as_ref().map(|levels| counted(levels, weights, point.kelvin).1);
         point.rotating = Some(rotating);
     }
-    None
+    // A sum that runs into the last J solved for may lack what lies beyond it.
+    levels.iter().any(|l| l.j == HIGHEST_J).then(|| {
+        let text = format!(
+            "The thermal averages with rotation stop at J = {HIGHEST_J}: at the highest temperatures more levels \
+             would count. Ask for lower temperatures."
+        );
+        Notice::caution(Code::ThermalLevels, text)
+    })
 }
 
 /// The levels that count, each with its weight, the lowest first; and the averages over them.

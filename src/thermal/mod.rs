@@ -9,7 +9,7 @@ mod sums;
 
 pub use density::{ThermalDensity, thermal_density};
 pub use ideal_gas::{IdealGas, STANDARD_PRESSURE_PASCAL, SpinWeights, ideal_gas};
-pub use rotation::{RotatingLevel, rigid_rotor, rotating_levels};
+pub use rotation::{HIGHEST_J, RotatingLevel, rigid_rotor, rotating_levels};
 pub use sums::{Averages, boltzmann, harmonic, over_levels};
 
 use crate::radial::Level;

@@ -23,7 +23,7 @@ pub struct RotatingLevel {
 /// A rigid rotor is summed up to this J at most.
 const MOST_J: u32 = 20_000;
 /// No J beyond this one is solved for.
-const HIGHEST_J: u32 = 600;
+pub const HIGHEST_J: u32 = 1000;
 
 /// The bound levels E(v, J) up to `highest_per_cm` above E(0, 0), J ascending, for a closed-shell state (Λ = 0).
 ///

@@ -268,3 +268,56 @@ fn settings_come_out_of_a_study_file_too() {
     assert_eq!(output.status.code(), Some(3));
     assert!(text(&output.stderr).contains("in focus"), "{}", text(&output.stderr));
 }
+
+#[test]
+fn rotation_of_open_shells_is_not_summed_in_silence() {
+    let path = scan("hcl_clean.csv");
+    let list = [path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--lambda", "1", "--thermal-rotation"];
+    let output = study(&list);
+    assert_eq!(output.status.code(), Some(0));
+    let summary = text(&output.stdout);
+    assert!(summary.contains("made for closed-shell states"), "{summary}");
+}
+
+#[test]
+fn a_limit_from_the_outer_points_has_no_error_of_its_own() {
+    let path = scan("hcl_clean.csv");
+    let with = |more: &[&str]| {
+        let mut list = vec![path.to_str().expect("UTF-8"), "--atoms", "H,Cl", "--out", "-"];
+        list.extend_from_slice(more);
+        let output = study(&list);
+        assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+        let value: serde_json::Value = serde_json::from_slice(&output.stdout).expect("JSON");
+        value["constants"]["d_e"].clone()
+    };
+    let followed = with(&["--tail-power", "6"]);
+    assert!(followed["value"].is_number() && followed["std_error"].is_null(), "{followed}");
+    let given = with(&["--asymptote", "0.0"]);
+    assert!(given.is_null() || given["std_error"].is_number(), "{given}");
+}
+
+#[test]
+fn constants_that_a_degree_cannot_know_are_null() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let settings = folder.path().join("s.json");
+    let requests: Vec<serde_json::Value> =
+        [2, 3, 4].map(|degree| serde_json::json!({"family": "polynomial", "degree": degree})).to_vec();
+    fs::write(&settings, serde_json::json!({"fits": {"requests": requests}}).to_string()).expect("written");
+    let path = scan("hcl_clean.csv");
+    let list = [
+        path.to_str().expect("UTF-8"),
+        "--atoms",
+        "H,Cl",
+        "--settings",
+        settings.to_str().expect("UTF-8"),
+        "--out",
+        "-",
+    ];
+    let output = study(&list);
+    assert_eq!(output.status.code(), Some(0), "{}", text(&output.stderr));
+    let value: serde_json::Value = serde_json::from_slice(&output.stdout).expect("JSON");
+    let known = |fit: usize, name: &str| !value["fits"][fit]["constants"][name].is_null();
+    for (fit, expected) in [(0, [false, false]), (1, [false, true]), (2, [true, true])] {
+        assert_eq!([known(fit, "omega_e_x_e"), known(fit, "alpha_e")], expected, "fit {fit}");
+    }
+}
