@@ -384,6 +384,7 @@ fn change_view(command: Command, state: &mut State) {
             }
         }
         Command::ShowKeys(open) => view.keys_open = open,
+        Command::ShowGuide(open) => view.guide = open,
         Command::ClosePathWindow => view.path_window = None,
         Command::DropProblem => view.problem = None,
         Command::DismissMessage => view.message = None,

@@ -111,7 +111,12 @@ pub fn view_menu(state: &State) -> Vec<Command> {
 
 /// The menu of help.
 pub fn help_menu(state: &State) -> Vec<Command> {
-    vec![Command::ShowSearch(true), Command::ShowKeys(true), Command::ShowHints(!state.view.hints)]
+    vec![
+        Command::ShowGuide(true),
+        Command::ShowSearch(true),
+        Command::ShowKeys(true),
+        Command::ShowHints(!state.view.hints),
+    ]
 }
 
 /// Every command that can be named without more words, with those that are shown only now and then where they are

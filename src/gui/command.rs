@@ -215,6 +215,8 @@ pub enum Command {
     ChooseFound(usize),
     /// Open or close the sheet of shortcuts.
     ShowKeys(bool),
+    /// Open or close the user guide.
+    ShowGuide(bool),
 }
 
 /// A step in the size of the interface.
@@ -246,6 +248,7 @@ impl Command {
             Self::Redo,
             Self::Undo,
             Self::ShowSearch(true),
+            Self::ShowGuide(true),
             Self::ShowKeys(true),
             Self::StepCurve(1),
             Self::StepCurve(-1),
@@ -325,6 +328,7 @@ impl Command {
             Self::ShowHints(false) => "Put hints away".into(),
             Self::ShowSearch(_) => "Commands …".into(),
             Self::ShowKeys(_) => "Keys and mouse".into(),
+            Self::ShowGuide(_) => "User guide".into(),
             _ => String::new(),
         }
     }
@@ -393,6 +397,7 @@ impl Command {
             Self::SetStill(false) => "Fading and blinking as usual.",
             Self::ShowHints(_) => "Short hints on the picture: what can be taken hold of.",
             Self::ShowSearch(_) => "Every command by name.",
+            Self::ShowGuide(_) => "What everything is and how it is used, with pictures.",
             Self::ShowKeys(_) => "Every shortcut, and what the mouse does on the picture.",
             Self::SetDark(_) => "How the window is coloured.",
             Self::OpenPath(_) => "Open this file.",
@@ -444,6 +449,7 @@ impl Command {
             Self::SaveStudyAs => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::S),
             Self::ShowSearch(true) => with_command(Key::K),
             Self::ShowKeys(true) => KeyboardShortcut::new(Modifiers::NONE, Key::F1),
+            Self::ShowGuide(true) => KeyboardShortcut::new(Modifiers::SHIFT, Key::F1),
             Self::StepCurve(step) => with_command(if *step > 0 { Key::PageDown } else { Key::PageUp }),
             Self::SizeInterface(InterfaceSize::Larger) => with_command(Key::Plus),
             Self::SizeInterface(InterfaceSize::Smaller) => with_command(Key::Minus),

@@ -173,6 +173,8 @@ pub struct ViewState {
     pub strip: Strip,
     /// Curves side by side.
     pub comparison: Comparison,
+    /// Whether the user guide is open.
+    pub guide: bool,
     /// What the axes of the plot show.
     pub axes: AxisView,
     /// What is drawn over the density of the level shown.

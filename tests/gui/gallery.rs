@@ -142,7 +142,9 @@ fn hints_search_sheet_offer_and_menus_are_shown_in_every_kind_of_window() {
         write(&mut window, &format!("{kind}_search_typed"));
         give(&mut window, &[Command::ShowSearch(false), Command::ShowKeys(true)]);
         write(&mut window, &format!("{kind}_keys"));
-        give(&mut window, &[Command::ShowKeys(false)]);
+        give(&mut window, &[Command::ShowKeys(false), Command::ShowGuide(true)]);
+        write(&mut window, &format!("{kind}_guide"));
+        give(&mut window, &[Command::ShowGuide(false)]);
         for menu in ["File", "View"] {
             window.get_by_role_and_label(eframe::egui::accesskit::Role::Button, menu).click();
             window.run();

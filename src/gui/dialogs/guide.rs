@@ -39,7 +39,8 @@ fn parts(text: &str) -> impl Iterator<Item = Part<'_>> {
         if let Some(code) = line.strip_prefix("    ") {
             return Part::Code(code);
         }
-        let picture = line.strip_prefix("![").and_then(|l| l.strip_suffix(')')).and_then(|l| l.split_once("]("));
+        let picture =
+            line.strip_prefix("![").and_then(|l| l.strip_suffix(')')).and_then(|l| l.split_once("]("));
         match picture {
             Some((caption, file)) => Part::Picture { caption, file },
             None => Part::Paragraph(line),
@@ -87,13 +88,17 @@ fn part_ui(ui: &mut Ui, part: Part<'_>) {
         }
         Part::Item(text) => words(ui, RichText::new(format!("•  {text}"))),
         Part::Paragraph(text) => words(ui, RichText::new(text)),
-        Part::Code(text) => words(ui, RichText::new(text).font(look::figures(look::SECONDARY)).color(look.dim)),
+        Part::Code(text) => {
+            words(ui, RichText::new(text).font(look::figures(look::SECONDARY)).color(look.dim))
+        }
         Part::Picture { caption, file } => {
             if let Some(texture) = picture(ui.ctx(), file) {
                 let width = ui.available_width();
                 let size = texture.size_vec2();
                 ui.add_space(6.0);
-                ui.add(egui::Image::new((texture.id(), vec2(width, width * size.y / size.x))).alt_text(caption));
+                ui.add(
+                    egui::Image::new((texture.id(), vec2(width, width * size.y / size.x))).alt_text(caption),
+                );
                 show::note(ui, caption);
                 ui.add_space(6.0);
             }

@@ -131,6 +131,7 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 }
 
 fn dialogs_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    dialogs::guide_ui(ui, state, out);
     dialogs::path_window_ui(ui, state, out);
     dialogs::keys_ui(ui, state, out);
     dialogs::search_ui(ui, state, out);
