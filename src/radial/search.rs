@@ -195,6 +195,23 @@ fn assumed_gap(brackets: &Brackets, previous: Option<&Found>, v: usize, shift: f
     }
 }
 
+/// Whether the level found at `energy` from `shift`, with `below` levels below the shift, is level v.
+///
+/// Where the two are one to rounding, the count at the shift fits two levels; a count on the far side decides.
+fn is_level(
+    v: usize,
+    (energy, shift): (f64, f64),
+    below: usize,
+    rounding: f64,
+    count: &mut dyn FnMut(f64) -> usize,
+) -> bool {
+    if (energy - shift).abs() > 16.0 * rounding {
+        return below == if energy > shift { v } else { v + 1 };
+    }
+    (below == v && count(energy + 64.0 * rounding) > v)
+        || (below == v + 1 && count(energy - 64.0 * rounding) <= v)
+}
+
 /// Rayleigh-quotient iteration on the interface values alone, from a shift that `work.reduced` holds; none where it
 /// leaves the bracket, where the count contradicts v, or near a level already found: then [`refine`] takes over.
 fn refine_reduced(
@@ -246,13 +263,14 @@ fn refine_reduced(
         let settled = residual <= FINISHED_RESIDUAL * work.scale;
         if settled && (unwanted < FINISHED || (unwanted < 1e-6 && still > 0)) || still > 1 {
             let below = work.reduced.below;
-            let right = if energy > shift { v } else { v + 1 };
-            let sure = below == right || (distance <= 16.0 * rounding && (below == v || below == v + 1));
-            if sure {
-                let (vector, residual) = work.reduced.whole(work.condensed, &x, energy);
-                if residual <= FINISHED_RESIDUAL * work.scale {
-                    level = Some(Found { energy, vector, gap });
-                }
+            let (vector, residual) = work.reduced.whole(work.condensed, &x, energy);
+            let mut count = |at: f64| {
+                work.reduced.factorise(work.condensed, at);
+                work.reduced.below
+            };
+            let sure = is_level(v, (energy, shift), below, rounding, &mut count);
+            if sure && residual <= FINISHED_RESIDUAL * work.scale {
+                level = Some(Found { energy, vector, gap });
             }
             break;
         }
@@ -311,13 +329,20 @@ fn refine(
         let residual = (1.0 / norm2 - (energy - shift).powi(2)).max(0.0).sqrt();
         let settled = residual <= FINISHED_RESIDUAL * work.scale;
         if settled && (unwanted < FINISHED || (unwanted < 1e-6 && still > 0)) || still > 1 {
-            let right = if energy > shift { v } else { v + 1 };
-            let sure = factors.below == right
-                || (distance <= 16.0 * rounding && (factors.below == v || factors.below == v + 1));
-            if !sure && !forced {
+            let mut count = |at: f64| {
+                work.reduced.factorise(work.condensed, at);
+                work.reduced.below
+            };
+            if !forced && !is_level(v, (energy, shift), factors.below, rounding, &mut count) {
                 return None;
             }
-            return Some(Found { energy, vector, gap });
+            // As it is, not as the iteration has it: a shift that meets the level to the last digit can spoil a round.
+            chain.apply(&vector, energy, &mut work.y);
+            if forced || dot(&work.y, &work.y).sqrt() <= FINISHED_RESIDUAL * work.scale {
+                return Some(Found { energy, vector, gap });
+            }
+            shift = energy + 1e-7 * gap;
+            continue;
         }
         let outside = energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding;
         // The first estimate comes from a vector that knows nothing yet.

@@ -320,7 +320,8 @@ fn the_stated_error_is_the_true_one_or_more() {
         );
         assert!(found.refused * 100 <= potentials as usize, "{} refused", found.refused);
         assert!(found.levels > 500 && found.wrong * 100 <= found.levels);
-        // One level of the thousand potentials (seed 886, v = 12) is off by far more than asked; it must not become two.
-        assert!(found.beyond <= 1 && median <= 100.0);
+        // No level is off by more than the accuracy asked for. (Seed 886, v = 12 was once: a shift met the level above to
+        // the last digit, where the count at the shift fits both.)
+        assert!(found.beyond == 0 && median <= 100.0, "{} beyond", found.beyond);
     }
 }
