@@ -149,7 +149,10 @@ fn growth() {
         println!("  {levels:4} levels: {ms:.3} ms, {:.1} us a level", 1e3 * ms / levels as f64);
     }
     let cases = cases();
-    println!("Growth with J (all levels of J = 1 to N of {}, D_v and quasi-bound levels included):", cases[0].name);
+    println!(
+        "Growth with J (all levels of J = 1 to N of {}, D_v and quasi-bound levels included):",
+        cases[0].name
+    );
     let scan = read(&cases[0]);
     for highest in [0_u32, 5, 10, 20] {
         let (medians, _) = with(&scan, cases[0].mass_u, |s| s.levels.rotation = (1..=highest).collect());
