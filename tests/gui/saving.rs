@@ -64,7 +64,8 @@ fn a_study_is_saved_by_menu_and_opens_as_it_was() {
     let typed = folder.path().join("kept").display().to_string();
     window.get_by_role_and_label(Role::TextInput, "Path").type_text(&typed);
     window.run();
-    press(&mut window, "Save");
+    window.key_press(Key::Enter);
+    window.run();
     assert!(message(&window).contains("kept.parabound"), "{}", message(&window));
 
     let again = open_file(&path);

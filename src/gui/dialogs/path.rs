@@ -32,13 +32,14 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
     let label = ui.label(RichText::new("Path").font(look::plain(look::SECONDARY)).color(look.dim));
     let mut text = window.text.clone();
     let field = ui.add(TextEdit::singleline(&mut text).desired_width(f32::INFINITY)).labelled_by(label.id);
-    if ui.memory(|m| m.focused().is_none()) {
-        field.request_focus();
-    }
     if field.changed() {
         out.push(Command::TypePath(text));
     }
     let mut accepted = field.lost_focus() && ui.input(|i| i.key_pressed(Key::Enter));
+    // Only then: a field that asks for the keyboard again has not lost it.
+    if ui.memory(|m| m.focused().is_none()) {
+        field.request_focus();
+    }
     ScrollArea::vertical().id_salt("entries").max_height(230.0).auto_shrink(false).show(ui, |ui| {
         if window.entries.is_empty() {
             show::note(ui, "No such folder, or nothing in it.");

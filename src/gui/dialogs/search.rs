@@ -106,9 +106,9 @@ fn line_ui(ui: &mut Ui, state: &State, entry: &Entry, chosen: bool) -> bool {
     let (right, middle) = (rect.right() - 10.0, rect.center().y);
     text_in(ui, pos2(right, middle), Align2::RIGHT_CENTER, &keys, &look::plain(look::SECONDARY), look.text);
     let place = refused.unwrap_or(entry.place.name());
-    let room = 0.40 * rect.width();
+    let room = 0.26 * rect.width();
     let font = look::plain(look::SMALL);
-    let place_left = rect.left() + 0.42 * rect.width();
+    let place_left = rect.left() + 0.55 * rect.width();
     elided(ui, pos2(place_left, middle), room, place, font, look.dim);
     let room = place_left - rect.left() - 22.0;
     elided(ui, pos2(rect.left() + 12.0, middle), room, &name, look::plain(look::BODY), color);
