@@ -136,6 +136,8 @@ whole_job() {
     xdotool mousedown 1; sleep 0.3
     for moved in 10 20 30 40; do xdotool mousemove --window "$window" $((x + moved)) "$y"; sleep 0.15; done
     xdotool mouseup 1
+    # What is kept is a moment behind.
+    settled; sleep 2
     wait_for 20 knows '"to": ' || fail "$renderer: the edge at $x does not move"
     local dragged; dragged=$(kept | sed -n 's/^ *"to": \([0-9.]*\).*/\1/p' | head -1)
     say "$renderer: upper edge of the fit window dragged with the mouse, to $dragged"
