@@ -36,6 +36,8 @@ pub struct Point {
     pub weight: f64,
     /// Why it is not used.
     pub why_not: Option<String>,
+    /// A note of the user.
+    pub note: Option<String>,
 }
 
 /// Where the curve came from.
@@ -237,8 +239,21 @@ pub struct Findings {
     pub morse_positions: Vec<Position>,
     /// Thermal averages by temperature; empty without levels.
     pub thermal: Vec<ThermalPoint>,
+    /// Bond lengths whose computation would help most, ascending.
+    pub next_points: Vec<NextPoint>,
     /// All remarks, the gravest first.
     pub notices: Vec<Notice>,
+}
+
+/// A bond length worth computing.
+#[derive(Clone, Debug, PartialEq)]
+pub struct NextPoint {
+    /// Bond length in bohr.
+    pub r_bohr: f64,
+    /// The same in the unit of the scan.
+    pub r_as_read: f64,
+    /// Why there.
+    pub why: String,
 }
 
 impl Findings {

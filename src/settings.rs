@@ -1,6 +1,8 @@
 //! Every choice the user has, in one value: the same in the window, in the headless command and in a
 //! findings file. Unknown keys are refused.
 
+mod checked;
+
 use crate::density::DensitySettings;
 use crate::fit::FitSettings;
 use crate::potential::curve::CurveSettings;
@@ -19,6 +21,16 @@ pub struct SetAside {
     pub row: usize,
     /// Why.
     pub reason: String,
+}
+
+/// A note on a row of the scan.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct PointNote {
+    /// Row of the scan, counted from 0 in file order.
+    pub row: usize,
+    /// The note.
+    pub text: String,
 }
 
 /// Which levels are computed and when they count as leaning on a tail.
@@ -110,6 +122,9 @@ pub struct Settings {
     pub set_aside: Vec<SetAside>,
     /// Rows that the program would set aside and the user keeps.
     pub kept: Vec<usize>,
+    /// Notes on rows.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub notes: Vec<PointNote>,
     /// The curve through the points and its tails.
     pub interpolation: CurveSettings,
     /// The fits.
@@ -134,77 +149,4 @@ pub struct SettingsError {
     pub found: String,
     /// What is accepted.
     pub accepted: &'static str,
-}
-
-impl Settings {
-    /// The one gate through which both front ends send settings, whatever file they came from.
-    ///
-    /// # Errors
-    /// The first setting that makes no sense, with what is accepted.
-    pub fn checked(&self) -> Result<(), SettingsError> {
-        let above_zero = |name, value: f64| {
-            let fine = value.is_finite() && value > 0.0;
-            fine.then_some(()).ok_or_else(|| SettingsError {
-                name,
-                found: value.to_string(),
-                accepted: "a finite number above 0",
-            })
-        };
-        above_zero("reach.tolerance", self.reach.tolerance)?;
-        above_zero("reach.absolute.value", self.reach.absolute.value)?;
-        if let Some(tolerance) = self.reach.level_tolerance_per_cm {
-            above_zero("reach.level_tolerance_per_cm", tolerance)?;
-        }
-        if let Some(tolerance) = self.reach.spacing_tolerance_per_cm {
-            above_zero("reach.spacing_tolerance_per_cm", tolerance)?;
-        }
-        if let Some(width) = self.densities.averaging_width_angstrom {
-            above_zero("densities.averaging_width_angstrom", width)?;
-        }
-        above_zero("levels.relative_accuracy", self.levels.relative_accuracy)?;
-        above_zero("levels.lean_probability", self.levels.lean_probability)?;
-        above_zero("levels.lean_shift_per_cm", self.levels.lean_shift_per_cm)?;
-        if let Some(asymptote) = self.interpolation.asymptote.filter(|a| !a.is_finite()) {
-            return Err(SettingsError {
-                name: "interpolation.asymptote",
-                found: asymptote.to_string(),
-                accepted: "a finite number",
-            });
-        }
-        if let Some(window) = self.fits.window {
-            let fine = window.from.is_finite() && window.to.is_finite() && window.from < window.to;
-            if !fine {
-                return Err(SettingsError {
-                    name: "fits.window",
-                    found: format!("{} to {} {}", window.from, window.to, window.unit.name()),
-                    accepted: "two finite bond lengths, the smaller first",
-                });
-            }
-        }
-        Ok(())
-    }
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn settings_without_sense_are_refused_by_name() {
-        assert_eq!(Settings::default().checked(), Ok(()));
-        let mut settings = Settings::default();
-        settings.reach.tolerance = -0.05;
-        let error = settings.checked().expect_err("negative");
-        assert!(
-            error.to_string().contains("reach.tolerance") && error.to_string().contains("-0.05"),
-            "{error}"
-        );
-        let mut settings = Settings::default();
-        settings.fits.window =
-            Some(crate::fit::Window { from: 2.0, to: 1.0, unit: crate::units::LengthUnit::Bohr });
-        assert!(settings.checked().is_err());
-        let mut settings = Settings::default();
-        settings.levels.relative_accuracy = 0.0;
-        assert!(settings.checked().is_err());
-    }
 }

@@ -38,8 +38,8 @@ pub struct Atom {
 pub struct MassSettings {
     /// The two atoms; none takes those the scan names.
     pub atoms: Option<[AtomChoice; 2]>,
-    /// Charge of the molecule in units of e; 0 takes the charge the scan names, where it names one.
-    pub charge: i32,
+    /// Charge of the molecule in units of e; none takes the charge the scan names, and 0 where it names none.
+    pub charge: Option<i32>,
     /// Reduced mass in u given directly; it replaces the atoms.
     pub reduced_mass_u: Option<f64>,
 }
@@ -249,7 +249,7 @@ pub fn masses(
     scan_atoms: Option<&[AtomChoice; 2]>,
     scan_charge: Option<i32>,
 ) -> Result<Option<Masses>, SpeciesError> {
-    let charge = if settings.charge == 0 { scan_charge.unwrap_or(0) } else { settings.charge };
+    let charge = settings.charge.or(scan_charge).unwrap_or(0);
     if let Some(found_u) = settings.reduced_mass_u {
         if !(found_u.is_finite() && found_u > 0.0) {
             return Err(SpeciesError::ReducedMassNotPositive { found_u });
@@ -299,8 +299,11 @@ mod tests {
     use super::*;
 
     fn with_atoms(text: &str, charge: i32) -> Masses {
-        let settings =
-            MassSettings { atoms: Some(parse_atoms(text).expect("atoms")), charge, reduced_mass_u: None };
+        let settings = MassSettings {
+            atoms: Some(parse_atoms(text).expect("atoms")),
+            charge: Some(charge),
+            reduced_mass_u: None,
+        };
         masses(&settings, None, None).expect("masses").expect("some")
     }
 
@@ -362,7 +365,7 @@ mod tests {
         let direct = |m| masses(&MassSettings { reduced_mass_u: Some(m), ..Default::default() }, None, None);
         assert!(direct(0.0).is_err() && direct(f64::NAN).is_err() && direct(-1.0).is_err());
         assert_eq!(direct(2.0).expect("ok").expect("some").reduced_mass_u, Estimate::exact(2.0));
-        let bare = MassSettings { charge: 3, ..Default::default() };
+        let bare = MassSettings { charge: Some(3), ..Default::default() };
         let h2 = parse_atoms("H,H").expect("atoms");
         assert!(masses(&bare, Some(&h2), None).expect_err("refused").to_string().contains("2 electrons"));
         assert_eq!(masses(&MassSettings::default(), None, None), Ok(None));
@@ -370,5 +373,8 @@ mod tests {
             masses(&MassSettings::default(), Some(&h2), Some(1)).expect("ok").expect("some").charge,
             1
         );
+        // A charge of 0 by choice goes before the one that the scan names.
+        let neutral = MassSettings { charge: Some(0), ..Default::default() };
+        assert_eq!(masses(&neutral, Some(&h2), Some(1)).expect("ok").expect("some").charge, 0);
     }
 }

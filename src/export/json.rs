@@ -8,7 +8,7 @@ mod fits;
 mod windows;
 
 use crate::estimate::Estimate;
-use crate::findings::{Findings, Point};
+use crate::findings::{Findings, NextPoint, Point};
 use crate::fit::ParameterUnit;
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{InnerTail, OuterTail, ScanCurve};
@@ -73,7 +73,7 @@ pub fn findings_to_value(findings: &Findings) -> Value {
         "constants": constants(&findings.constants),
         "reach": findings.reach.as_ref().map(reach),
         "thermal": findings.thermal.iter().map(thermal_point).collect::<Vec<_>>(),
-        "next_points": [],
+        "next_points": findings.next_points.iter().map(next_point).collect::<Vec<_>>(),
         "notices": findings.notices.iter().map(notice).collect::<Vec<_>>(),
     });
     if let Value::Object(map) = &mut value {
@@ -144,13 +144,17 @@ pub(super) fn angstrom(r_bohr: f64) -> Value {
     quantity(to_angstrom(r_bohr), "angstrom")
 }
 
+fn next_point(next: &NextPoint) -> Value {
+    json!({"r": angstrom(next.r_bohr), "why": next.why})
+}
+
 fn point(point: &Point) -> Value {
     json!({
         "r": to_angstrom(point.r_bohr),
         "energy": point.energy_hartree,
         "used": point.used,
         "weight": point.weight,
-        "why_not": point.why_not,
+        "why_not": point.why_not, "note": point.note,
     })
 }
 

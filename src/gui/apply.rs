@@ -218,7 +218,9 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 s.masses.reduced_mass_u = None;
             });
         }
-        Command::SetCharge(charge) => edit(state, "change the charge", true, |s| s.masses.charge = *charge),
+        Command::SetCharge(charge) => {
+            edit(state, "change the charge", true, |s| s.masses.charge = Some(*charge))
+        }
         Command::SetReducedMass(mass) => {
             if mass.is_none_or(|m| m.is_finite() && m > 0.0) {
                 edit(state, "give the reduced mass", true, |s| s.masses.reduced_mass_u = *mass);

@@ -1,5 +1,6 @@
 //! `--dry-run`: what was understood of each file, and nothing computed.
 
+use super::args::StudyChoices;
 use super::input::Input;
 use super::run_study::{DONE, NOT_READ};
 use crate::scan::{Scan, UnitOrigin};
@@ -8,13 +9,18 @@ use std::fmt::Write as _;
 use std::path::PathBuf;
 
 /// Prints what each file holds; the status is that of reading.
-pub fn run(files: &[PathBuf], settings: &Settings) -> u8 {
+pub fn run(files: &[PathBuf], choices: &StudyChoices, settings: &Settings) -> u8 {
     let mut status = DONE;
     for group in Input::groups(files, &settings.read) {
         let path = &group[0];
-        let read = Input::read(&group, &settings.read)
-            .and_then(|input| input.scan(&settings.read))
-            .and_then(|scan| understood(&scan, settings));
+        let read = Input::read(&group, &settings.read).and_then(|input| input.scan(&settings.read)).and_then(
+            |scan| {
+                let mut settings = settings.clone();
+                choices.set_rows_aside(&scan, &mut settings)?;
+                settings.checked().map_err(|e| e.to_string())?;
+                understood(&scan, &settings)
+            },
+        );
         match read {
             Ok(text) => {
                 super::print(&text);
@@ -64,12 +70,17 @@ fn understood(scan: &Scan, settings: &Settings) -> Result<String, String> {
     let atoms = settings.masses.atoms.as_ref().map(|a| (a, "given"));
     match atoms.or_else(|| scan.atoms.as_ref().map(|a| (a, "named in the file"))) {
         Some(([a, b], who)) => {
-            let charge = scan.charge.map_or_else(String::new, |q| format!(", charge {q:+}"));
+            let charge = settings.masses.charge.or(scan.charge);
+            let charge = charge.map_or_else(String::new, |q| format!(", charge {q:+}"));
             let _ = writeln!(text, "  atoms          {a},{b} ({who}){charge}");
         }
         None => {
             let _ = writeln!(text, "  atoms          not named; levels need --atoms or --reduced-mass");
         }
+    }
+    if !settings.set_aside.is_empty() {
+        let lines: Vec<String> = settings.set_aside.iter().map(|s| scan.line(s.row).to_string()).collect();
+        let _ = writeln!(text, "  set aside      the rows in line {}", lines.join(", "));
     }
     for notice in &scan.notices {
         let _ = writeln!(text, "  {}: {}", notice.severity.word(), notice.text);

@@ -42,9 +42,10 @@ fn picture(arguments: &FigureArgs) -> Result<(), (u8, String)> {
         }
     };
     let not_read = |message: String| (NOT_READ, format!("{}: {message}", arguments.file.display()));
-    let settings = starting_settings(&arguments.choices).map_err(|m| (NOT_READ, m))?;
+    let mut settings = starting_settings(&arguments.choices).map_err(|m| (NOT_READ, m))?;
     let input = Input::read(std::slice::from_ref(&arguments.file), &settings.read).map_err(not_read)?;
     let scan = input.scan(&settings.read).map_err(not_read)?;
+    arguments.choices.set_rows_aside(&scan, &mut settings).map_err(not_read)?;
     let findings = study(&scan, &settings).map_err(|e| not_read(e.to_string()))?;
     if let Some(stop) = findings.notices.iter().find(|n| n.severity == Severity::Stop) {
         return Err((IMPOSSIBLE, format!("{}: {}", arguments.file.display(), stop.text)));

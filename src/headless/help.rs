@@ -27,6 +27,9 @@ READING
   --length-column NAME       likewise, where the first column is not the bond length
   --length-unit UNIT         angstrom, bohr, pm, nm: where the file does not say, or says it wrong
   --energy-unit UNIT         hartree, eV, meV, kJ/mol, kcal/mol, cm-1
+  --delimiter WORD           what separates the columns of a table, where it is not told rightly from its
+                             lines: semicolons, tabs, commas, blanks
+  --decimal-sign WORD        likewise what stands for decimals: point, comma
   --bond A,B                 the atoms whose distance is the bond length, numbered from 1, in files of
                              Cartesian coordinates with more than two atoms
 
@@ -46,12 +49,13 @@ READING
 
 MASSES
   --atoms A,B                the two atoms, with mass numbers where wanted: H,F or 2H,35Cl
-  --charge Q                 charge of the molecule in units of e (default 0)
+  --charge Q                 charge of the molecule in units of e (default: what the file names, else 0)
   --reduced-mass U           reduced mass in u, instead of atoms
   Without atoms or a mass there are fits, derivatives and reach, but no levels.
 
 STUDY
-  --set-aside R,R,...        leave out the points at these bond lengths (unit of the file)
+  --set-aside R,R,...        leave out the points at these bond lengths (unit of the file); not for the
+                             window, where a click does it
   --window FROM,TO           fit window in angstrom (default: 15 % of r_e to each side)
   --asymptote E              energy of the separated atoms, in the file's unit and scale
   --fits LIST                the fits, with commas between (default: harmonic,morse,polynomial:6): harmonic,

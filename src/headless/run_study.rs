@@ -9,7 +9,7 @@ use crate::export::parameters::{self, ParameterUnits};
 use crate::files::{self, Replace};
 use crate::findings::Findings;
 use crate::scan::Scan;
-use crate::settings::{SetAside, Settings};
+use crate::settings::Settings;
 use crate::study::{Mark, Stage, study_observed};
 use crate::study_file::{self, StudyFile};
 use std::collections::{BTreeMap, BTreeSet};
@@ -31,7 +31,7 @@ pub fn run(arguments: &StudyArgs) -> u8 {
         }
     };
     if arguments.dry_run {
-        return dry_run::run(&arguments.files, &settings);
+        return dry_run::run(&arguments.files, &arguments.choices, &settings);
     }
     let mut status = DONE;
     let mut studies: Vec<(PathBuf, Findings)> = Vec::new();
@@ -119,13 +119,12 @@ fn study_file(
             Err(message) => return vec![Err(message)],
         };
         seconds.add("read", start.elapsed().as_secs_f64());
-        let set_aside = match rows_set_aside(&scan, &arguments.set_aside) {
-            Ok(rows) => rows,
-            Err(message) => return vec![Err(message)],
-        };
-        for curve in chosen_curves(&scan, settings) {
-            let mut settings = Settings { curve, ..settings.clone() };
-            settings.set_aside.extend(set_aside.iter().cloned());
+        let mut settings = settings.clone();
+        if let Err(message) = arguments.choices.set_rows_aside(&scan, &mut settings) {
+            return vec![Err(message)];
+        }
+        for curve in chosen_curves(&scan, &settings) {
+            let settings = Settings { curve, ..settings.clone() };
             let found = guarded_study(&scan, &settings, seconds);
             if pass == 0 {
                 results.push(found);
@@ -134,27 +133,6 @@ fn study_file(
         seconds.end_pass();
     }
     results
-}
-
-/// The rows at the bond lengths that `--set-aside` names, in the scan's unit.
-fn rows_set_aside(scan: &Scan, bond_lengths: &[f64]) -> Result<Vec<SetAside>, String> {
-    let mut rows = Vec::new();
-    for &wanted in bond_lengths {
-        let before = rows.len();
-        let same = |r: f64| (r - wanted).abs() <= 1e-9 * wanted.abs();
-        rows.extend(
-            (0..scan.bond_lengths.len())
-                .filter(|&row| same(scan.bond_lengths[row]))
-                .map(|row| SetAside { row, reason: "set aside on the command line".to_owned() }),
-        );
-        if rows.len() == before {
-            let unit = scan.length_unit.name();
-            return Err(format!(
-                "--set-aside: no point at {wanted} {unit}; give bond lengths as the file has them"
-            ));
-        }
-    }
-    Ok(rows)
 }
 
 /// A panic is a fault of ours; it must not take the other files with it.

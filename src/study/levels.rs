@@ -170,14 +170,7 @@ pub fn judged(curve: &ScanCurve, question: &Question, states: Result<States, Rad
             notices.push(Notice::caution(Code::ManyLevels, text));
         }
         notices.extend(leaning.and_then(|sides| remark_on_leaning(curve, &levels, sides)));
-        if let Some(v) = off_nodes.first() {
-            let text = format!(
-                "{} levels, from v = {v} on, have wavefunctions whose nodes do not count up to v: they are not resolved \
-                 well enough. Do not use them.",
-                off_nodes.len()
-            );
-            notices.push(Notice::caution(Code::NotConverged, text));
-        }
+        notices.extend(remark_on_nodes(&off_nodes));
     }
     Solved { levels, notices, solution: Some(solution) }
 }
@@ -254,6 +247,17 @@ fn wanted(curve: &ScanCurve, side: Side) -> String {
     let (end, _) = curve.end_and_step_bohr(side);
     let where_to = if side == Side::Inner { "below" } else { "beyond" };
     format!("add points {where_to} {:.3} angstrom", to_angstrom(end))
+}
+
+/// Levels whose wavefunctions have another number of nodes than v.
+fn remark_on_nodes(off_nodes: &[usize]) -> Option<Notice> {
+    let v = off_nodes.first()?;
+    let text = format!(
+        "{} levels, from v = {v} on, have wavefunctions whose nodes do not count up to v: they are not resolved \
+         well enough. Do not use them.",
+        off_nodes.len()
+    );
+    Some(Notice::caution(Code::NotConverged, text))
 }
 
 fn remark_on_leaning(curve: &ScanCurve, levels: &[Level], sides: Leans) -> Option<Notice> {
@@ -389,5 +393,19 @@ impl Errors {
         }
         add(at_minimum, -1.0);
         g.iter().map(|g| g * g).sum::<f64>().sqrt()
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Levels whose nodes do not count up to v are not to be used.
+    #[test]
+    fn levels_with_wrong_nodes_are_a_caution() {
+        assert_eq!(remark_on_nodes(&[]), None);
+        let notice = remark_on_nodes(&[7, 8]).expect("a notice");
+        assert_eq!((notice.code, notice.severity), (Code::NotConverged, crate::notice::Severity::Caution));
+        assert!(notice.text.contains("2 levels, from v = 7 on"), "{}", notice.text);
     }
 }

@@ -6,6 +6,7 @@ mod derived;
 mod fits;
 mod isotopologues;
 mod levels;
+mod next_points;
 mod points;
 mod properties;
 mod remarks;
@@ -181,6 +182,7 @@ pub fn study_observed(scan: &Scan, settings: &Settings, observer: &Observer) -> 
         densities: Densities::default(),
         morse_positions: Vec::new(),
         thermal: Vec::new(),
+        next_points: Vec::new(),
         notices: scan.notices.clone(),
     };
     findings.notices.append(&mut notices);
@@ -207,8 +209,11 @@ pub fn study_observed(scan: &Scan, settings: &Settings, observer: &Observer) -> 
     if let Some(curve) = findings.curve.clone() {
         remarks::remark(&mut findings, &curve, column);
     }
+    let curve = findings.curve.clone();
+    next_points::fill(&mut findings, curve.as_deref());
     // The gravest first; within one severity the order of the steps is kept.
-    findings.notices.sort_by_key(|n| std::cmp::Reverse(n.severity));
+    // Where the atoms were read is what least needs to be looked at.
+    findings.notices.sort_by_key(|n| (std::cmp::Reverse(n.severity), n.code == Code::AtomsFromComment));
     Ok(findings)
 }
 

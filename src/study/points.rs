@@ -7,6 +7,7 @@ use crate::notice::{Code, Notice};
 use crate::scan::inspect::{InspectedPoint, inspect};
 use crate::scan::{EnergyColumn, Scan};
 use crate::settings::Settings;
+use std::collections::BTreeMap;
 
 /// The points of a curve, ascending in r (equal bond lengths in file order), with what was remarked.
 ///
@@ -21,11 +22,14 @@ pub fn points(
         return Err(StudyError::Row { row: wrong.row, rows });
     }
     let (given, remark) = weights::by_column(scan, column, &settings.fits.weights)?;
+    let set_aside: BTreeMap<usize, &str> =
+        settings.set_aside.iter().map(|s| (s.row, s.reason.as_str())).collect();
+    let notes: BTreeMap<usize, &str> = settings.notes.iter().map(|n| (n.row, n.text.as_str())).collect();
     let mut points: Vec<Point> = (0..rows)
         .filter_map(|row| {
             let energy = column.values[row]?;
             let r_as_read = scan.bond_lengths[row];
-            let why_not = settings.set_aside.iter().find(|s| s.row == row).map(|s| s.reason.clone());
+            let why_not = set_aside.get(&row).map(|reason| (*reason).to_owned());
             Some(Point {
                 row,
                 r_as_read,
@@ -35,6 +39,7 @@ pub fn points(
                 used: why_not.is_none(),
                 weight: given[row],
                 why_not,
+                note: notes.get(&row).map(|text| (*text).to_owned()),
             })
         })
         .collect();
@@ -63,10 +68,11 @@ fn inspect_points(points: &mut [Point], kept: &[usize], notices: &mut Vec<Notice
         .map(|p| InspectedPoint { row: p.row, r_bohr: p.r_bohr, energy_hartree: p.energy_hartree })
         .collect();
     let mut found = inspect(&inspected, kept);
-    for (row, reason) in found.left_out {
-        if let Some(point) = points.iter_mut().find(|p| p.row == row) {
+    let left_out: BTreeMap<usize, String> = found.left_out.into_iter().collect();
+    for point in points.iter_mut() {
+        if let Some(reason) = left_out.get(&point.row) {
             point.used = false;
-            point.why_not = Some(reason);
+            point.why_not = Some(reason.clone());
         }
     }
     notices.append(&mut found.notices);

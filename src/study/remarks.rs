@@ -11,7 +11,7 @@ use crate::units::{EnergyUnit, omega_e_per_cm, to_angstrom, to_per_cm};
 
 /// Points per zero-point amplitude below which the grid is called coarse: with steps of a whole amplitude the
 /// curve under the lowest level rests on about five points.
-const STEPS_PER_AMPLITUDE: f64 = 1.0;
+pub(super) const STEPS_PER_AMPLITUDE: f64 = 1.0;
 /// Bond lengths (angstrom) between which every known bond lies, from H2+ squeezed to weakly bound rare gases
 /// (common practice, no source).
 const PLAUSIBLE_R_ANGSTROM: (f64, f64) = (0.3, 8.0);
@@ -160,11 +160,9 @@ fn coarse_grid(findings: &Findings, curve: &ScanCurve, mass_me: f64) -> Option<N
     (step * STEPS_PER_AMPLITUDE > amplitude).then(|| {
         let text = format!(
             "The grid is coarse where the lowest level lives: steps up to {:.4} angstrom against a zero-point amplitude \
-             of {:.4} angstrom. Points between {:.3} and {:.3} angstrom would help most.",
+             of {:.4} angstrom.",
             to_angstrom(step),
-            to_angstrom(amplitude),
-            to_angstrom(from),
-            to_angstrom(to)
+            to_angstrom(amplitude)
         );
         Notice::caution(Code::CoarseGrid, text).at([widest[0], widest[1]])
     })

@@ -46,16 +46,14 @@ impl Case {
     fn settings(&self) -> ReadSettings {
         let one = |key: &str| self.all(key).first().copied();
         ReadSettings {
-            energy_columns: None,
             length_column: one("length-column").map(str::to_owned),
             length_unit: one("length-unit").map(|u| parse_length_unit(u).expect("a length unit")),
             bond: one("bond").map(|b| {
                 let (a, b) = b.split_once(',').expect("two numbers");
                 [a, b].map(|n| n.parse().expect("a number"))
             }),
-            made: Vec::new(),
-            lines: None,
             energy_unit: one("energy-unit").map(|u| parse_energy_unit(u).expect("an energy unit")),
+            ..ReadSettings::default()
         }
     }
 }

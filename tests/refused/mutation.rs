@@ -84,11 +84,8 @@ fn mutated_files_never_panic() {
     let stated = ReadSettings {
         length_unit: Some(LengthUnit::Angstrom),
         energy_unit: Some(EnergyUnit::Hartree),
-        energy_columns: None,
-        length_column: None,
         bond: Some([1, 2]),
-        made: Vec::new(),
-        lines: None,
+        ..ReadSettings::default()
     };
     let mut random = Xorshift(SEED);
     let (mut read, mut refused) = (0, 0);

@@ -35,7 +35,7 @@ pub(super) fn masses_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &m
             );
             show::note(ui, "Choose both atoms here, or give the reduced mass below.");
         }
-        charge_ui(ui, settings, out);
+        charge_ui(ui, state, settings, out);
     }
     let mass = state.study().and_then(|s| s.findings.masses.as_ref()).map(|m| m.reduced_mass_u.value);
     let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), 22.0), Sense::hover());
@@ -163,11 +163,12 @@ fn element_ui(ui: &mut Ui, index: usize, pick: &mut impl FnMut(&mut Ui, AtomChoi
     ui.data_mut(|d| d.insert_temp(id, text));
 }
 
-fn charge_ui(ui: &mut Ui, settings: &Settings, out: &mut Vec<Command>) {
+fn charge_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &mut Vec<Command>) {
     let look = Look::of(ui);
     ui.horizontal(|ui| {
         let label = ui.label(RichText::new("charge").font(look::plain(look::SECONDARY)).color(look.dim));
-        let mut charge = settings.masses.charge;
+        let of_file = state.document.focused().and_then(|(_, loaded, _)| loaded.scan.charge);
+        let mut charge = settings.masses.charge.or(of_file).unwrap_or(0);
         let field = DragValue::new(&mut charge)
             .range(-4..=4)
             .speed(0.05)

@@ -4,9 +4,10 @@ use super::UsageError;
 use super::tolerance::Tolerances;
 use super::value::{family_words, finite, fit_requests, quantum_numbers, value, weighting, window_range};
 use crate::fit::{BootstrapSettings, FitRequest, Weighting, Window};
+use crate::scan::Scan;
 use crate::scan::combine::Recipe;
-use crate::scan::read::{Match, parse_energy_unit, parse_length_unit};
-use crate::settings::Settings;
+use crate::scan::read::{DecimalSign, Delimiter, Match, parse_energy_unit, parse_length_unit};
+use crate::settings::{SetAside, Settings};
 use crate::species::parse_atoms;
 use crate::units::{EnergyUnit, LengthUnit};
 use lexopt::{Parser, ValueExt as _};
@@ -47,6 +48,12 @@ pub struct StudyChoices {
     pub lambda: Option<u32>,
     /// Further pairs of isotopes.
     pub isotopologues: Option<Vec<[crate::species::AtomChoice; 2]>>,
+    /// What separates the columns.
+    pub delimiter: Option<Delimiter>,
+    /// What stands for decimals.
+    pub decimal_sign: Option<DecimalSign>,
+    /// Bond lengths, in the scan's unit, whose points are set aside.
+    pub set_aside: Vec<f64>,
     /// The two atoms whose distance is the bond length, numbered from 1.
     pub bond: Option<[usize; 2]>,
     /// The fits.
@@ -80,6 +87,26 @@ pub struct StudyChoices {
 }
 
 impl StudyChoices {
+    /// Sets aside the rows of a scan at the bond lengths that `--set-aside` names.
+    ///
+    /// # Errors
+    /// A bond length that the scan does not have.
+    pub fn set_rows_aside(&self, scan: &Scan, settings: &mut Settings) -> Result<(), String> {
+        for &wanted in &self.set_aside {
+            let same = |row: &usize| (scan.bond_lengths[*row] - wanted).abs() <= 1e-9 * wanted.abs();
+            let rows: Vec<usize> = (0..scan.bond_lengths.len()).filter(same).collect();
+            if rows.is_empty() {
+                let unit = scan.length_unit.name();
+                return Err(format!(
+                    "--set-aside: no point at {wanted} {unit}; give bond lengths as the file has them"
+                ));
+            }
+            let reason = "set aside on the command line";
+            settings.set_aside.extend(rows.iter().map(|&row| SetAside { row, reason: reason.to_owned() }));
+        }
+        Ok(())
+    }
+
     /// The settings with these choices laid over them.
     pub fn apply(&self, settings: &mut Settings) {
         fn set<T: Clone>(target: &mut Option<T>, choice: &Option<T>) {
@@ -103,6 +130,8 @@ impl StudyChoices {
         set(&mut settings.read.length_column, &self.length_column);
         set(&mut settings.read.length_unit, &self.length_unit);
         set(&mut settings.read.energy_unit, &self.energy_unit);
+        set(&mut settings.read.delimiter, &self.delimiter);
+        set(&mut settings.read.decimal_sign, &self.decimal_sign);
         set(&mut settings.read.bond, &self.bond);
         set(&mut settings.fits.window, &self.window);
         set(&mut settings.interpolation.asymptote, &self.asymptote);
@@ -147,10 +176,16 @@ impl StudyChoices {
         if let Some(levels) = &self.density_levels {
             settings.densities.levels.clone_from(levels);
         }
-        if let Some(charge) = self.charge {
-            settings.masses.charge = charge;
-        }
+        set(&mut settings.masses.charge, &self.charge);
     }
+}
+
+/// Takes `--set-aside`, which only commands have that study one scan after the other by themselves.
+pub(super) fn set_aside(parser: &mut Parser, choices: &mut StudyChoices) -> Result<(), UsageError> {
+    let list = |t: &str| t.split(',').map(|r| finite(r.trim()).filter(|r| *r > 0.0)).collect();
+    let accepted = "bond lengths in the unit of the file, e.g. 1.44,1.48";
+    choices.set_aside = value(parser, "set-aside", accepted, list)?;
+    Ok(())
 }
 
 /// Takes the option into `choices`; false where it is no choice about the study.
@@ -170,6 +205,15 @@ pub(super) fn study_choice(
         "energy-unit" => {
             let names = EnergyUnit::ALL.map(EnergyUnit::name).join(", ");
             choices.energy_unit = Some(value(parser, "energy-unit", &names, parse_energy_unit)?);
+        }
+        "delimiter" => {
+            let words = Delimiter::ALL.map(Delimiter::words).join(", ");
+            let named = |t: &str| Delimiter::ALL.into_iter().find(|d| d.words() == t);
+            choices.delimiter = Some(value(parser, "delimiter", &words, named)?);
+        }
+        "decimal-sign" => {
+            let named = |t: &str| DecimalSign::ALL.into_iter().find(|d| d.word() == t);
+            choices.decimal_sign = Some(value(parser, "decimal-sign", "point or comma", named)?);
         }
         "length-pattern" => choices.length_pattern = Some(parser.value()?.string()?),
         "energy-pattern" => choices.energy_pattern = Some(parser.value()?.string()?),

@@ -14,7 +14,7 @@ pub use window::WindowArgs;
 
 use crate::export::table::Table;
 use crate::figure::drawing::Subject;
-use choices::study_choice;
+use choices::{set_aside, study_choice};
 use figure::{FigureOptions, figure_option};
 use lexopt::{Arg, Parser};
 use std::ffi::OsString;
@@ -115,6 +115,9 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
             Arg::Short('h') | Arg::Long("help") => return Ok(Command::Help),
             Arg::Short('V') | Arg::Long("version") => return Ok(Command::Version),
             Arg::Value(file) => files.push(file.into()),
+            Arg::Long("set-aside") if matches!(verb, Verb::Study | Verb::Figure) => {
+                set_aside(&mut parser, &mut choices)?;
+            }
             Arg::Long("overwrite") if verb != Verb::Recheck => overwrite = true,
             Arg::Long(name) => {
                 let name = name.to_owned();
@@ -259,7 +262,7 @@ mod tests {
         study.choices.apply(&mut settings);
         assert_eq!(settings.read.length_unit, Some(LengthUnit::Bohr));
         assert_eq!(settings.read.energy_unit, Some(EnergyUnit::KilojoulePerMole));
-        assert_eq!(settings.masses.charge, -1);
+        assert_eq!(settings.masses.charge, Some(-1));
         assert_eq!(settings.interpolation.asymptote, Some(-1.5));
         assert_eq!(
             (settings.interpolation.tail_power, settings.interpolation.tail_fit_points),

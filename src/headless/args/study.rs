@@ -2,7 +2,7 @@
 
 use super::UsageError;
 use super::choices::StudyChoices;
-use super::value::{finite, value};
+use super::value::value;
 use crate::export::parameters::ParameterUnits;
 use crate::export::table::Table;
 use crate::scan::read::{parse_energy_unit, parse_length_unit};
@@ -31,8 +31,6 @@ pub struct StudyArgs {
     pub units: ParameterUnits,
     /// Replace existing files.
     pub overwrite: bool,
-    /// Bond lengths, in the scan's unit, whose points are set aside.
-    pub set_aside: Vec<f64>,
     /// Print timings.
     pub timings: bool,
     /// Only say what was understood.
@@ -50,11 +48,6 @@ pub(super) fn study_option(
         "out" => study.out = Some(parser.value()?.into()),
         "out-dir" => study.out_dir = Some(parser.value()?.into()),
         "timings" => study.timings = true,
-        "set-aside" => {
-            let list = |t: &str| t.split(',').map(|r| finite(r.trim()).filter(|r| *r > 0.0)).collect();
-            let accepted = "bond lengths in the unit of the file, e.g. 1.44,1.48";
-            study.set_aside = value(parser, "set-aside", accepted, list)?;
-        }
         "report" => {
             let html = |t: &str| t.to_lowercase().ends_with(".html").then(|| PathBuf::from(t));
             study.report = Some(value(parser, "report", "a file name that ends in .html", html)?);

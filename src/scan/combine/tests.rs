@@ -64,6 +64,19 @@ fn sequences_that_follow_the_laws_give_their_limits() {
     assert!((limit(rule, &x(&power, &[3.0, 5.0])).expect("a limit") + 0.3).abs() < 1e-15);
 }
 
+/// Counterpoise: E_int = E_AB(AB) − E_A(AB) − E_B(AB), all three in the basis of the pair (S. F. Boys, F. Bernardi,
+/// Mol. Phys. 19, 553 (1970)). Invented energies.
+#[test]
+fn a_counterpoise_correction_is_a_sum() {
+    let text =
+        "R_angstrom,E_AB_hartree,E_A_hartree,E_B_hartree\n3.0,-2.5,-1.25,-1.2\n4.0,-2.5,-1.125,-1.25\n";
+    let made = vec![Recipe::parse("E_int = E_AB - E_A - E_B").expect("a recipe")];
+    let settings = ReadSettings { made, ..ReadSettings::default() };
+    let scan = read_scan("pair.csv", text.as_bytes(), &settings).expect("a scan");
+    assert!((values(&scan, 3)[0] + 0.05).abs() < 1e-15);
+    assert_eq!(values(&scan, 3)[1], -0.125);
+}
+
 fn small() -> Scan {
     let r = (LengthUnit::Angstrom, vec![1.0, 1.5]);
     let mut scan =

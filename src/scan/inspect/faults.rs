@@ -11,12 +11,21 @@ use super::window::{Suited, Window};
 const WIDTHS: [usize; 2] = [15, 21];
 /// A point is beside the curve when chance puts one there in fewer scans than this share.
 const CHANCE: f64 = 0.01;
-/// How much better than a smooth curve a fault must describe its worst window, as a quotient of scores ...
-const WORST: f64 = 0.7;
-/// ... and the middle one of its windows, a point beside the curve, ...
-const USUAL_OFF: f64 = 1.0;
-/// ... or a jump or kink, which has more places to sit and more freedom.
-const USUAL_BREAK: f64 = 2.4;
+/// How much better than a smooth curve a fault must describe its windows, as a quotient of scores.
+#[derive(Clone, Copy)]
+struct Limits {
+    /// The worst window.
+    worst: f64,
+    /// The middle one.
+    usual: f64,
+}
+
+/// A point beside the curve.
+const OFF: Limits = Limits { worst: 0.7, usual: 1.0 };
+/// A jump or kink, which has more places to sit and more freedom.
+const BREAK: Limits = Limits { worst: 0.4, usual: 1.6 };
+/// The same once a point beside it is taken out, with which part of it goes.
+const STILL_A_BREAK: Limits = Limits { worst: 0.4, usual: 1.0 };
 /// Faults smaller than this (hartree, 0.002 cm⁻¹) are below what calculations are converged to (common
 /// practice, no source) and are left to the noise.
 const NEGLIGIBLE_HARTREE: f64 = 1e-8;
@@ -29,6 +38,8 @@ const LONG: usize = 2_000;
 const MOST_FREEDOM: usize = 1_000;
 /// Rounds of judging, each after what the one before has found is taken out.
 const ROUNDS: usize = 8;
+/// Points to each side of a break within which it is looked for again.
+const BESIDE: usize = 3;
 /// Most points that are called off: with more of them the scan as a whole is not smooth.
 pub(super) const MOST_OFF: usize = 20;
 
@@ -151,9 +162,37 @@ impl View<'_> {
 /// Suspects of a segment that do not disturb each other, the worst first. Only places are judged that
 /// `asked` names, by their index in the whole scan.
 ///
+/// A point beside the curve looks like a break next to it as well. What tells is the curve without the point:
+/// a break is still there.
+fn judge(r: &[f64], e: &[f64], segment: &[usize], asked: impl Fn(usize) -> bool) -> Vec<Suspect> {
+    let mut all = suspects(r, e, segment, asked, BREAK);
+    let is_break = |s: &Suspect| matches!(s.fault, Fault::Break(_));
+    let points: Vec<usize> = all.iter().filter(|s| !is_break(s)).map(|s| s.at).collect();
+    for point in points {
+        let beside = |s: &Suspect| is_break(s) && s.at.abs_diff(point) <= BESIDE;
+        if !all.iter().any(beside) {
+            continue;
+        }
+        let mut rest = segment.to_vec();
+        let taken_out = rest.remove(point);
+        let near = |i: usize| i.abs_diff(taken_out) <= BESIDE;
+        let still = suspects(r, e, &rest, near, STILL_A_BREAK).iter().any(is_break);
+        all.retain(|s| if still { is_break(s) || s.at != point } else { !beside(s) });
+    }
+    apart(all)
+}
+
+/// All suspects of a segment.
+///
 /// Whoever looks innocent in one view is not looked at in the next ones, and the scatter of all windows is
 /// computed only when somebody is left to be held against it: nearly always nobody is.
-fn judge(r_all: &[f64], e_all: &[f64], segment: &[usize], asked: impl Fn(usize) -> bool) -> Vec<Suspect> {
+fn suspects(
+    r_all: &[f64],
+    e_all: &[f64],
+    segment: &[usize],
+    asked: impl Fn(usize) -> bool,
+    breaks: Limits,
+) -> Vec<Suspect> {
     let n = segment.len();
     if n < Window::FEWEST {
         return Vec::new();
@@ -180,8 +219,8 @@ fn judge(r_all: &[f64], e_all: &[f64], segment: &[usize], asked: impl Fn(usize) 
     let count = views.len();
     for view in &views {
         look(view, &e, &mut spikes, &mut gaps);
-        spikes.retain(|case| case.is_open(count, USUAL_OFF));
-        gaps.retain(|case| case.is_open(count, USUAL_BREAK));
+        spikes.retain(|case| case.is_open(count, OFF));
+        gaps.retain(|case| case.is_open(count, breaks));
     }
     // What the middle scatter of all windows is worth, about.
     let freedom = (n / 2).clamp(3, MOST_FREEDOM);
@@ -216,7 +255,7 @@ fn judge(r_all: &[f64], e_all: &[f64], segment: &[usize], asked: impl Fn(usize) 
             suspects.push(Suspect { fault: Fault::Break(found), at: case.at, ratio: case.usual() });
         }
     }
-    apart(suspects)
+    suspects
 }
 
 /// The worst suspects, each far enough from the worse ones, no more of a kind than can be called faults.
@@ -270,10 +309,10 @@ impl Case {
     }
 
     /// Whether the worst and the middle one of so many views may still be above their limits.
-    fn is_open(&self, views: usize, usual: f64) -> bool {
+    fn is_open(&self, views: usize, limits: Limits) -> bool {
         !self.closed
-            && self.views.iter().all(|v| v.ratio > WORST)
-            && self.views.iter().filter(|v| v.ratio <= usual).count() <= views / 2
+            && self.views.iter().all(|v| v.ratio > limits.worst)
+            && self.views.iter().filter(|v| v.ratio <= limits.usual).count() <= views / 2
     }
 
     /// The middle ratio.

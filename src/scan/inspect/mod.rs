@@ -57,6 +57,7 @@ pub fn inspect(points: &[InspectedPoint], kept: &[usize]) -> Inspection {
         found.left_out.push((left_out.row, reason));
         found.notices.push(notice);
     }
+    found.notices = repeats::gathered(found.notices);
     found.left_out.sort_by_key(|l| l.0);
     found.notices.extend(faults.off.iter().map(|point| off_curve(point, &r)));
     found.notices.extend(faults.breaks.iter().map(|b| broken(b, &r)));

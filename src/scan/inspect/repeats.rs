@@ -1,11 +1,34 @@
 //! Bond lengths that are there more than once.
 
 use super::InspectedPoint;
-use crate::notice::{Code, Notice};
+use crate::notice::{Code, Notice, Severity};
 use crate::units::{to_angstrom, to_per_cm};
 
 /// Repeated energies that differ by less than this (hartree) agree: tight convergence thresholds.
 const SAME_ENERGY_HARTREE: f64 = 1e-9;
+
+/// More repeated bond lengths than this are told in one notice a severity.
+const MOST_TOLD: usize = 10;
+
+/// The same remarks, gathered where there are many.
+pub(super) fn gathered(remarks: Vec<Notice>) -> Vec<Notice> {
+    if remarks.len() <= MOST_TOLD {
+        return remarks;
+    }
+    let (cautions, infos): (Vec<Notice>, Vec<Notice>) =
+        remarks.into_iter().partition(|n| n.severity == Severity::Caution);
+    let one = |all: Vec<Notice>, notice: fn(Code, String) -> Notice, how: &str| {
+        let count = all.len();
+        let text = format!(
+            "{count} rows repeat the bond length of another row; the energies {how}. Of each bond length the first row \
+             is used."
+        );
+        let at = all.into_iter().flat_map(|n| n.at_bohr).take(MOST_TOLD);
+        (count > 0).then(|| notice(Code::RepeatedGeometry, text).at(at))
+    };
+    let agree = one(infos, Notice::info, "agree");
+    one(cautions, Notice::caution, "differ").into_iter().chain(agree).collect()
+}
 
 /// The points with each bond length once, and the pairs of a point used and one left out.
 pub(super) fn part(

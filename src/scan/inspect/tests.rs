@@ -52,3 +52,17 @@ fn repeated_bond_lengths() {
     assert_eq!(inspect(&three, &[]).left_out.len(), 2);
     assert_eq!(inspect(&[], &[]), Inspection::default());
 }
+
+/// Many repeated bond lengths are told together, agreeing ones apart from others.
+#[test]
+fn many_repeats_make_few_notices() {
+    let mut points: Vec<InspectedPoint> =
+        smooth(30).into_iter().flat_map(|p| [p, InspectedPoint { row: p.row + 100, ..p }]).collect();
+    points[1].energy_hartree += 1e-3;
+    let found = inspect(&points, &[]);
+    assert_eq!(found.left_out.len(), 30);
+    let texts: Vec<&str> = found.notices.iter().map(|n| n.text.as_str()).collect();
+    assert_eq!(texts.len(), 2, "{texts:?}");
+    assert!(texts[0].starts_with("1 rows") && texts[0].contains("differ"), "{texts:?}");
+    assert!(texts[1].starts_with("29 rows") && texts[1].contains("agree"), "{texts:?}");
+}

@@ -3,6 +3,7 @@
 use super::ReadSettings;
 use super::columns::{ColumnName, Kind};
 use super::delimited::Table;
+use super::preview::Role;
 use super::prose;
 use super::words::UnitWord;
 use crate::notice::{Code, Notice};
@@ -10,7 +11,7 @@ use crate::scan::error::ScanError;
 use crate::scan::{EnergyColumn, Layout, PropertyColumn, Scan, UnitOrigin, names};
 use crate::units::{EnergyUnit, LengthUnit};
 
-type Column = (ColumnName, Vec<Option<f64>>);
+pub(crate) type Column = (ColumnName, Vec<Option<f64>>);
 
 /// Builds the scan; the caller adds the check sum and passes it through the gate.
 pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -> Result<Scan, ScanError> {
@@ -52,7 +53,9 @@ pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -
     if let Some(((comment, line), header)) = contradicted {
         notices.push(contradiction("energies", header.name(), comment.name(), line));
     }
-    let (atoms, charge) = prose::atoms(&table.prose).unzip();
+    notices.extend(table.left_out.iter().map(|name| text_column(name)));
+    let named = prose::atoms(&table.prose);
+    notices.extend(named.as_ref().map(atoms_from_comment));
     Ok(Scan {
         file_name: file_name.to_owned(),
         sha256: String::new(),
@@ -67,10 +70,30 @@ pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -
         properties,
         row_lines: table.row_lines,
         row_remarks: table.row_remarks,
-        atoms,
-        charge: charge.flatten(),
+        charge: named.as_ref().and_then(|n| n.charge),
+        atoms: named.map(|n| n.atoms),
         notices,
     })
+}
+
+/// What each column of a table is, as far as it can be told; no error, for a look at a file that is refused.
+pub(crate) fn roles(columns: &[Column], settings: &ReadSettings, has_header: bool) -> Vec<Role> {
+    let length = length_index(columns, settings, has_header).ok();
+    let mut others = columns.to_vec();
+    let mut roles = vec![Role::Property; columns.len()];
+    if let Some(length) = length {
+        others.remove(length);
+        roles[length] = Role::Length;
+    }
+    let is_energy = match &settings.energy_columns {
+        Some(wanted) => chosen_columns(&others, wanted).unwrap_or_else(|_| vec![false; others.len()]),
+        None => energy_columns(&others, has_header),
+    };
+    let places = (0..columns.len()).filter(|i| Some(*i) != length);
+    for (place, _) in places.zip(is_energy).filter(|(_, energy)| *energy) {
+        roles[place] = Role::Energy;
+    }
+    roles
 }
 
 fn length_index(columns: &[Column], settings: &ReadSettings, has_header: bool) -> Result<usize, ScanError> {
@@ -178,6 +201,22 @@ fn stated(what: &str, unit: &str, line: usize) -> Notice {
             "The unit of the {what}, {unit}, is stated only in words, in line {line}; the header does not repeat it."
         ),
     )
+}
+
+fn atoms_from_comment(named: &prose::NamedAtoms) -> Notice {
+    let [a, b] = &named.atoms;
+    let charge = named.charge.map_or_else(String::new, |q| format!(" and the charge {q:+}"));
+    let text = format!(
+        "The atoms {a} and {b}{charge} are taken from the words {:?} in line {}; choose others if something else is \
+         meant.",
+        named.words, named.line
+    );
+    Notice::info(Code::AtomsFromComment, text)
+}
+
+fn text_column(name: &str) -> Notice {
+    let text = format!("Column {name} holds words, not numbers; it is left out and shown beside the points.");
+    Notice::info(Code::TextColumn, text)
 }
 
 fn contradiction(what: &str, header: &str, comment: &str, line: usize) -> Notice {

@@ -1,5 +1,6 @@
 //! Delimited text: from lines to a table of named columns of numbers.
 
+use super::ReadSettings;
 use super::columns::ColumnName;
 use super::fixed::Places;
 use super::header::{self, Header, TextLine};
@@ -33,24 +34,28 @@ pub(crate) struct Table<'a> {
     pub row_remarks: Vec<(usize, String)>,
     /// Comment and title lines.
     pub prose: Vec<TextLine<'a>>,
+    /// Names of the columns of words, which are left out.
+    pub left_out: Vec<String>,
 }
 
 /// Reads delimited text.
 ///
 /// # Errors
 /// No rows, a cell that is no finite number, a row or header of another width, a second table.
-pub(crate) fn parse(text: &str) -> Result<Table<'_>, ScanError> {
+pub(crate) fn parse<'a>(text: &'a str, settings: &ReadSettings) -> Result<Table<'a>, ScanError> {
     let sample: Vec<Line<'_>> = lines(text).filter(Line::has_content).take(SAMPLE_LINES).collect();
     let contents: Vec<&str> = sample.iter().map(|l| l.content).collect();
-    let format = choose_format(&contents).ok_or_else(|| no_table(text, &sample))?;
+    let format = choose_format(&contents, settings).ok_or_else(|| no_table(text, &sample))?;
     if format.columns > LIMIT_COLUMNS {
-        let line = first_data_line(&sample, format);
+        let line = first_data_line(&sample, &format);
         return Err(ScanError::TooManyColumns { line, limit_columns: LIMIT_COLUMNS });
     }
-    check_commas(&sample, format)?;
-    let used = used_columns(&contents, format);
-    let mut reader = Reader::new(format, used);
-    reader.places = Places::of(&contents, format);
+    if settings.delimiter.is_none() {
+        check_commas(&sample, &format)?;
+    }
+    let used = used_columns(&contents, &format);
+    let places = Places::of(&contents, &format);
+    let mut reader = Reader::new(format, used, places);
     let mut row = Row::default();
     for line in lines(text) {
         reader.line(line, &mut row)?;
@@ -58,10 +63,10 @@ pub(crate) fn parse(text: &str) -> Result<Table<'_>, ScanError> {
     reader.finish()
 }
 
-fn first_data_line(sample: &[Line<'_>], format: Format) -> usize {
+fn first_data_line(sample: &[Line<'_>], format: &Format) -> usize {
     let mut row = Row::default();
     let found = sample.iter().find(|line| {
-        row.read(line.content, format.delimiter, format.sign);
+        row.read_as(line.content, format);
         row.is_data() && row.cells.len() == format.columns
     });
     found.map_or(1, |line| line.number)
@@ -72,8 +77,9 @@ fn no_table(text: &str, sample: &[Line<'_>]) -> ScanError {
     let mut row = Row::default();
     let mut single = None;
     for line in sample {
-        for delimiter in [Delimiter::Semicolon, Delimiter::Tab, Delimiter::Comma, Delimiter::Blanks] {
-            row.read(line.content, delimiter, DecimalSign::Point);
+        for delimiter in Delimiter::ALL {
+            let format = Format { delimiter, sign: DecimalSign::Point, columns: 0, labels: Vec::new() };
+            row.read_as(line.content, &format);
             let number = |c: &Cell| matches!(c, Cell::Number(_));
             if row.cells.len() == 1 && row.cells.iter().all(number) {
                 single.get_or_insert(line.number);
@@ -128,7 +134,7 @@ fn shortened(text: &str) -> String {
 }
 
 /// `0,74,-1,13` may be two numbers with decimal commas or four whole ones: not for us to say.
-fn check_commas(sample: &[Line<'_>], format: Format) -> Result<(), ScanError> {
+fn check_commas(sample: &[Line<'_>], format: &Format) -> Result<(), ScanError> {
     if format.delimiter != Delimiter::Comma || format.columns < 4 || format.columns % 2 == 1 {
         return Ok(());
     }
@@ -139,7 +145,7 @@ fn check_commas(sample: &[Line<'_>], format: Format) -> Result<(), ScanError> {
     let mut row = Row::default();
     let mut first = None;
     for line in sample {
-        row.read(line.content, format.delimiter, format.sign);
+        row.read_as(line.content, format);
         if !row.is_data() {
             // A header with as many names as cells settles that the commas separate.
             if row.cells.len() == format.columns && !row.cells.iter().any(|c| matches!(c, Cell::Number(_))) {
@@ -158,11 +164,11 @@ fn check_commas(sample: &[Line<'_>], format: Format) -> Result<(), ScanError> {
 }
 
 /// Number of columns without the trailing ones that are empty in every row of the sample.
-fn used_columns(sample: &[&str], format: Format) -> usize {
+fn used_columns(sample: &[&str], format: &Format) -> usize {
     let mut row = Row::default();
     let mut used = 2.min(format.columns);
     for line in sample {
-        row.read(line, format.delimiter, format.sign);
+        row.read_as(line, format);
         if row.is_data() && row.cells.len() == format.columns {
             used = used.max(row.cells.iter().rposition(|c| *c != Cell::Empty).map_or(0, |i| i + 1));
         }
@@ -172,7 +178,6 @@ fn used_columns(sample: &[&str], format: Format) -> usize {
 
 /// The state while the lines go by.
 struct Reader<'a> {
-    format: Format,
     used: usize,
     places: Option<Places>,
     before: Vec<TextLine<'a>>,
@@ -184,7 +189,7 @@ struct Reader<'a> {
 }
 
 impl<'a> Reader<'a> {
-    fn new(format: Format, used: usize) -> Self {
+    fn new(format: Format, used: usize, places: Option<Places>) -> Self {
         let table = Table {
             header: None,
             columns: vec![Vec::new(); format.columns],
@@ -192,17 +197,9 @@ impl<'a> Reader<'a> {
             row_lines: Vec::new(),
             row_remarks: Vec::new(),
             prose: Vec::new(),
+            left_out: Vec::new(),
         };
-        Self {
-            format,
-            used,
-            places: None,
-            before: Vec::new(),
-            header: None,
-            header_text: None,
-            table,
-            plain: Vec::new(),
-        }
+        Self { used, places, before: Vec::new(), header: None, header_text: None, table, plain: Vec::new() }
     }
 
     fn begun(&self) -> bool {
@@ -219,7 +216,7 @@ impl<'a> Reader<'a> {
         if self.begun() && self.plain_row(&line) {
             return Ok(());
         }
-        row.read(line.content, self.format.delimiter, self.format.sign);
+        row.read_as(line.content, &self.table.format);
         let data = row.is_data();
         if !self.begun() {
             if !data {
@@ -236,10 +233,10 @@ impl<'a> Reader<'a> {
     /// Takes a row of nothing but plain numbers, the usual one of a long table; false for any other, which is
     /// then read with all care. What it takes, the careful way reads as the same numbers.
     fn plain_row(&mut self, line: &Line<'a>) -> bool {
-        let Some(sign) = self.format.delimiter.sign() else { return false };
-        let columns = self.format.columns;
+        let Some(sign) = self.table.format.delimiter.sign() else { return false };
+        let columns = self.table.format.columns;
         let room = self.table.row_lines.len() < LIMIT_ROWS;
-        if line.comment.is_some() || self.format.sign != DecimalSign::Point || !room {
+        if line.comment.is_some() || self.table.format.sign != DecimalSign::Point || !room {
             return false;
         }
         self.plain.clear();
@@ -286,7 +283,8 @@ impl<'a> Reader<'a> {
     }
 
     fn find_header(&mut self) -> Result<(), ScanError> {
-        self.header = header::find(&self.before, self.format.delimiter, (self.used, self.format.columns))?;
+        self.header =
+            header::find(&self.before, self.table.format.delimiter, (self.used, self.table.format.columns))?;
         let line = self.header.as_ref().map_or(0, |h| h.line);
         self.header_text = self.before.iter().find(|t| t.number == line).map(|t| t.text);
         // A plain line between header and numbers, or right above numbers without a header, that is as
@@ -294,13 +292,13 @@ impl<'a> Reader<'a> {
         let last_plain = self.before.iter().rev().find(|t| !t.is_comment).map_or(0, |t| t.number);
         let mut row = Row::default();
         for text in self.before.iter().filter(|t| !t.is_comment && t.number > line) {
-            row.read(text.text, self.format.delimiter, self.format.sign);
+            row.read_as(text.text, &self.table.format);
             let numbers = row.cells.iter().any(|c| matches!(c, Cell::Number(_)));
             let above = self.header.is_some() || text.number == last_plain;
             if above
                 && numbers
-                && row.cells.len() == self.format.columns
-                && let Some(error) = bad_cell(&row, text.number, self.format.sign, self.names())
+                && row.cells.len() == self.table.format.columns
+                && let Some(error) = bad_cell(&row, text.number, self.table.format.sign, self.names())
             {
                 return Err(error);
             }
@@ -330,39 +328,41 @@ impl<'a> Reader<'a> {
         if !starts_like_one || self.header_text == Some(text.text) {
             return Ok(());
         }
-        let Some(names) = header::reads_as_header(text, self.format.delimiter) else { return Ok(()) };
+        let Some(names) = header::reads_as_header(text, self.table.format.delimiter) else { return Ok(()) };
         let same = self.names().len() == names.len()
             && self.names().iter().zip(&names).all(|(a, b)| a.label == b.label);
-        if same || names.len() < self.used || names.len() > self.format.columns && text.is_comment {
+        if same || names.len() < self.used || names.len() > self.table.format.columns && text.is_comment {
             return Ok(());
         }
         Err(ScanError::SecondTable { line: text.number, header: shortened(text.text) })
     }
 
     fn row(&mut self, line: Line<'a>, row: &mut Row<'a>) -> Result<(), ScanError> {
-        if row.cells.len() < self.format.columns
+        if row.cells.len() < self.table.format.columns
             && let Some(cells) = self.places.as_ref().and_then(|p| p.cells(line.content))
         {
-            row.set(cells, self.format.sign);
+            row.set(cells, &self.table.format);
         }
-        if row.cells.len() != self.format.columns {
+        if row.cells.len() != self.table.format.columns {
             // A row that begins with a word is a remark: that explains more than the count does.
             if row.cells.first() == Some(&Cell::Text)
-                && let Some(error) = bad_cell(row, line.number, self.format.sign, self.names())
+                && let Some(error) = bad_cell(row, line.number, self.table.format.sign, self.names())
             {
                 return Err(error);
             }
-            let (found, expected) = (row.cells.len(), self.format.columns);
+            let (found, expected) = (row.cells.len(), self.table.format.columns);
             return Err(ScanError::RaggedRow { line: line.number, found, expected });
         }
-        if let Some(error) = bad_cell(row, line.number, self.format.sign, self.names()) {
+        if let Some(error) = bad_cell(row, line.number, self.table.format.sign, self.names()) {
             return Err(error);
         }
         if self.table.row_lines.len() == LIMIT_ROWS {
             return Err(ScanError::TooManyRows { line: line.number, limit_rows: LIMIT_ROWS });
         }
-        if let Some(remark) = line.comment.filter(|c| !c.is_empty()) {
-            self.table.row_remarks.push((self.table.row_lines.len(), remark.to_owned()));
+        let words = self.table.format.labels.iter().map(|&label| row.written[label]);
+        let remarks: Vec<&str> = words.chain(line.comment).filter(|c| !c.is_empty()).collect();
+        if !remarks.is_empty() {
+            self.table.row_remarks.push((self.table.row_lines.len(), remarks.join(", ")));
         }
         self.table.row_lines.push(line.number);
         for (column, cell) in self.table.columns.iter_mut().zip(&row.cells) {
@@ -380,7 +380,10 @@ impl<'a> Reader<'a> {
         let mut kept_columns = Vec::new();
         for (index, column) in self.table.columns.into_iter().enumerate() {
             let name = names.get(index).filter(|n| !n.full.is_empty()).cloned();
-            if name.is_some() || column.iter().any(Option::is_some) {
+            if self.table.format.labels.contains(&index) {
+                let name = name.unwrap_or_else(|| ColumnName::unnamed(index + 1));
+                self.table.left_out.push(name.full);
+            } else if name.is_some() || column.iter().any(Option::is_some) {
                 kept_names.push(name.unwrap_or_else(|| ColumnName::unnamed(index + 1)));
                 kept_columns.push(column);
             }

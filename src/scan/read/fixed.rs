@@ -10,14 +10,14 @@ pub(crate) struct Places(Vec<Range<usize>>);
 impl Places {
     /// The places of the columns, told from complete rows; none unless at least two of them keep all
     /// columns apart.
-    pub(crate) fn of(sample: &[&str], format: Format) -> Option<Self> {
+    pub(crate) fn of(sample: &[&str], format: &Format) -> Option<Self> {
         if format.delimiter != Delimiter::Blanks {
             return None;
         }
         let mut row = Row::default();
         let (mut places, mut rows): (Vec<Range<usize>>, usize) = (Vec::new(), 0);
         for line in sample {
-            row.read(line, format.delimiter, format.sign);
+            row.read_as(line, format);
             let Some(words) = words(line).filter(|w| row.is_data() && w.len() == format.columns) else {
                 continue;
             };
@@ -67,11 +67,12 @@ mod tests {
     use super::*;
     use crate::scan::read::number::DecimalSign;
 
-    const FORMAT: Format = Format { delimiter: Delimiter::Blanks, sign: DecimalSign::Point, columns: 3 };
+    const FORMAT: Format =
+        Format { delimiter: Delimiter::Blanks, sign: DecimalSign::Point, columns: 3, labels: Vec::new() };
 
     #[test]
     fn blank_cells_are_found_by_their_place() {
-        let places = Places::of(&["  0.70   -1.10    0.5", "  0.75  -12.14   10.5"], FORMAT).expect("apart");
+        let places = Places::of(&["  0.70   -1.10    0.5", "  0.75  -12.14   10.5"], &FORMAT).expect("apart");
         assert_eq!(places.cells("  0.80            0.7"), Some(vec!["0.80", "", "0.7"]));
         assert_eq!(places.cells("  0.80   -1.12       "), Some(vec!["0.80", "-1.12", ""]));
         assert_eq!(places.cells("  0.80   -1.12"), None);
@@ -81,7 +82,7 @@ mod tests {
 
     #[test]
     fn free_columns_have_no_place() {
-        assert_eq!(Places::of(&["0.70 -1.10 0.5", "0.75       -1.14      0.5"], FORMAT), None);
-        assert_eq!(Places::of(&["0.70 -1.10 0.5"], FORMAT), None);
+        assert_eq!(Places::of(&["0.70 -1.10 0.5", "0.75       -1.14      0.5"], &FORMAT), None);
+        assert_eq!(Places::of(&["0.70 -1.10 0.5"], &FORMAT), None);
     }
 }

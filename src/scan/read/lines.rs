@@ -130,19 +130,10 @@ impl<'a> Patterns<'a> {
     /// # Errors
     /// [`LinesError::Pattern`]
     pub fn new(settings: &'a LinePatterns) -> Result<Self, LinesError> {
-        let ready = |what, pattern: &str| {
-            let problem = |p: String| LinesError::Pattern { what, pattern: pattern.to_owned(), problem: p };
-            if pattern.trim().is_empty() {
-                return Err(problem("it is empty".to_owned()));
-            }
-            let built = RegexBuilder::new(pattern).size_limit(LIMIT_PATTERN_BYTES).build();
-            // The last line of the package's message says what, those before draw an arrow.
-            built.map_err(|e| problem(e.to_string().lines().last().unwrap_or("").trim().to_owned()))
-        };
         Ok(Self {
             settings,
-            length: ready("bond length", &settings.length)?,
-            energy: ready("energy", &settings.energy)?,
+            length: compiled(LENGTH, &settings.length)?,
+            energy: compiled(ENERGY, &settings.energy)?,
         })
     }
 
@@ -153,51 +144,115 @@ impl<'a> Patterns<'a> {
     pub fn catch(&self, file: &str, bytes: &[u8]) -> Result<[Caught; 2], LinesError> {
         let log = |e| LinesError::Log { file: file.to_owned(), problem: Box::new(e) };
         let (text, _) = text::decode(bytes).map_err(log)?;
-        let mut found: [Option<(usize, String)>; 2] = [None, None];
+        let which = self.settings.which;
+        let length = Pattern { what: LENGTH, text: &self.settings.length, ready: &self.length };
+        let energy = Pattern { what: ENERGY, text: &self.settings.energy, ready: &self.energy };
+        Ok([length.catch(which, file, &text)?, energy.catch(which, file, &text)?])
+    }
+}
+
+/// What the patterns are for.
+const LENGTH: &str = "bond length";
+const ENERGY: &str = "energy";
+
+/// One pattern, ready to be tried.
+struct Pattern<'a> {
+    what: &'static str,
+    text: &'a str,
+    ready: &'a Regex,
+}
+
+impl Pattern<'_> {
+    /// The first or last number that it catches in a text; that of the bond length may also stand in the
+    /// file's name.
+    fn catch(&self, which: Match, file: &str, text: &str) -> Result<Caught, LinesError> {
+        let mut found: Option<(usize, &str)> = None;
         for (number, line) in text.split(['\n', '\r']).enumerate() {
             if line.len() > LIMIT_LINE_BYTES {
                 continue;
             }
-            for (pattern, found) in [&self.length, &self.energy].into_iter().zip(&mut found) {
-                if self.settings.which == Match::Last || found.is_none() {
-                    let caught = match self.settings.which {
-                        Match::First => first_catch(pattern, line),
-                        Match::Last => last_catch(pattern, line),
-                    };
-                    if let Some(caught) = caught {
-                        *found = Some((number + 1, caught.to_owned()));
-                    }
+            let caught = match which {
+                Match::First => first_catch(self.ready, line),
+                Match::Last => last_catch(self.ready, line),
+            };
+            if let Some(caught) = caught {
+                found = Some((number + 1, caught));
+                if which == Match::First {
+                    break;
                 }
             }
-            if self.settings.which == Match::First && found.iter().all(Option::is_some) {
-                break;
-            }
         }
-        let [mut length, energy] = found;
-        if length.is_none() {
-            length = first_catch(&self.length, file).map(|c| (0, c.to_owned()));
+        if found.is_none() && self.what == LENGTH {
+            found = first_catch(self.ready, file).map(|c| (0, c));
         }
-        let number = |found: Option<(usize, String)>, what, pattern: &str| {
-            let (line, text) = found.ok_or_else(|| LinesError::NoMatch {
+        let (line, text) = found.ok_or_else(|| LinesError::NoMatch {
+            file: file.to_owned(),
+            what: self.what,
+            pattern: self.text.to_owned(),
+        })?;
+        match parse_cell(text, DecimalSign::Point) {
+            Cell::Number(value) => Ok(Caught { value, text: text.to_owned(), line }),
+            _ => Err(LinesError::NoNumber {
                 file: file.to_owned(),
-                what,
-                pattern: pattern.to_owned(),
-            })?;
-            match parse_cell(&text, DecimalSign::Point) {
-                Cell::Number(value) => Ok(Caught { value, text, line }),
-                _ => Err(LinesError::NoNumber {
-                    file: file.to_owned(),
-                    place: if line == 0 { "file name".into() } else { format!("line {line}") },
-                    what,
-                    caught: text.chars().take(60).collect(),
-                }),
-            }
-        };
-        Ok([
-            number(length, "bond length", &self.settings.length)?,
-            number(energy, "energy", &self.settings.energy)?,
-        ])
+                place: if line == 0 { "file name".into() } else { format!("line {line}") },
+                what: self.what,
+                caught: text.chars().take(60).collect(),
+            }),
+        }
     }
+}
+
+/// What patterns catch in some logs, each pattern by itself: a look before the scan is read.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct Tried {
+    /// What is wrong with the pattern of the bond length and with that of the energy.
+    pub faults: [Option<String>; 2],
+    /// Of each log what they catch, or why nothing; none where a pattern has a fault.
+    pub logs: Vec<[Option<Result<Caught, String>>; 2]>,
+}
+
+impl Tried {
+    /// How many logs give a point.
+    pub fn points(&self) -> usize {
+        let whole = |caught: &&[Option<Result<Caught, String>>; 2]| {
+            caught.iter().all(|c| c.as_ref().is_some_and(Result::is_ok))
+        };
+        self.logs.iter().filter(whole).count()
+    }
+}
+
+/// Tries patterns on logs, given by name and bytes; nothing is refused.
+pub fn try_patterns<'b>(
+    patterns: &LinePatterns,
+    logs: impl IntoIterator<Item = (&'b str, &'b [u8])>,
+) -> Tried {
+    let both = [(LENGTH, patterns.length.as_str()), (ENERGY, patterns.energy.as_str())];
+    let ready = both.map(|(what, text)| (what, text, compiled(what, text)));
+    let catch = |(file, bytes): (&str, &[u8])| {
+        let text = text::decode(bytes).map(|t| t.0).map_err(|e| e.to_string());
+        [0, 1].map(|i| {
+            let (what, pattern, ready) = &ready[i];
+            let pattern = Pattern { what, text: pattern, ready: ready.as_ref().ok()? };
+            Some(
+                text.as_ref()
+                    .map_err(String::clone)
+                    .and_then(|text| pattern.catch(patterns.which, file, text).map_err(|e| e.to_string())),
+            )
+        })
+    };
+    let logs = logs.into_iter().map(catch).collect();
+    Tried { faults: [0, 1].map(|i| ready[i].2.as_ref().err().map(LinesError::to_string)), logs }
+}
+
+/// A pattern made ready.
+fn compiled(what: &'static str, pattern: &str) -> Result<Regex, LinesError> {
+    let problem = |p: String| LinesError::Pattern { what, pattern: pattern.to_owned(), problem: p };
+    if pattern.trim().is_empty() {
+        return Err(problem("it is empty".to_owned()));
+    }
+    let built = RegexBuilder::new(pattern).size_limit(LIMIT_PATTERN_BYTES).build();
+    // The last line of the package's message says what, those before draw an arrow.
+    built.map_err(|e| problem(e.to_string().lines().last().unwrap_or("").trim().to_owned()))
 }
 
 fn first_catch<'t>(pattern: &Regex, line: &'t str) -> Option<&'t str> {
@@ -283,6 +338,25 @@ mod tests {
             ("point_1.20.log", b"bond 1.20\nenergy now -1.0D+00\nenergy now -1.5\r\ndone\n"),
             ("point_1.40.log", b"bond 1.40\nenergy now -1.1\nenergy now -1.6 after -1.55\n"),
         ]
+    }
+
+    /// Each pattern is tried by itself, whatever is wrong with the other one.
+    #[test]
+    fn patterns_are_tried_before_they_are_used() {
+        let tried = try_patterns(&patterns(r"bond (\S+)", "energy (", Match::Last), logs());
+        assert_eq!(tried.faults[0], None);
+        assert!(tried.faults[1].as_ref().is_some_and(|f| f.contains("not a regular expression")));
+        assert_eq!(tried.points(), 0);
+        let first = tried.logs[0][0].clone().expect("tried").expect("caught");
+        assert_eq!((first.value, first.text.as_str(), first.line), (1.2, "1.20", 1));
+        assert_eq!(tried.logs[0][1], None);
+        let tried = try_patterns(&patterns(r"bond (\S+)", r"after (\S+)", Match::Last), logs());
+        assert_eq!((tried.faults.clone(), tried.points()), ([None, None], 1));
+        assert!(
+            tried.logs[0][1]
+                .as_ref()
+                .is_some_and(|c| c.as_ref().is_err_and(|e| e.contains("no line matches")))
+        );
     }
 
     #[test]

@@ -8,6 +8,7 @@ mod frames;
 mod header;
 mod lines;
 mod number;
+mod preview;
 mod prose;
 mod qcschema;
 mod table;
@@ -25,7 +26,10 @@ use serde::{Deserialize, Serialize};
 use sha2::{Digest, Sha256};
 
 pub use delimited::LIMIT_ROWS;
-pub use lines::{Caught, LIMIT_LOGS, LinePatterns, LinesError, Match, Patterns};
+pub use lines::{Caught, LIMIT_LOGS, LinePatterns, LinesError, Match, Patterns, Tried, try_patterns};
+pub use number::DecimalSign;
+pub use preview::{Preview, PreviewColumn, Role, preview};
+pub use table::Delimiter;
 pub use text::LIMIT_BYTES;
 pub use words::{parse_energy_unit, parse_length_unit};
 
@@ -43,6 +47,12 @@ pub struct ReadSettings {
     pub length_unit: Option<LengthUnit>,
     /// Unit of all energy columns; it goes before what the file says.
     pub energy_unit: Option<EnergyUnit>,
+    /// What separates the columns of a table; none: told from its lines.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub delimiter: Option<Delimiter>,
+    /// What stands for decimals in a table; none: told from its lines.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub decimal_sign: Option<DecimalSign>,
     /// In a file of Cartesian coordinates, the two atoms of the bond by their numbers from 1; none: the
     /// only two there are.
     pub bond: Option<[usize; 2]>,
@@ -67,7 +77,7 @@ pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Resu
     } else if xyz::looks_like(&text) {
         xyz::parse(&text, settings)?.scan(file_name, settings)?
     } else {
-        assemble::scan(file_name, delimited::parse(&text)?, settings)?
+        assemble::scan(file_name, delimited::parse(&text, settings)?, settings)?
     };
     scan.sha256 = sha256_hex(bytes);
     scan.notices.splice(0..0, encoding);

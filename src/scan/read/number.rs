@@ -1,8 +1,11 @@
 //! Numbers as programs and people write them.
 
+use serde::{Deserialize, Serialize};
+
 /// The sign between whole and decimal part.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub(crate) enum DecimalSign {
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "lowercase")]
+pub enum DecimalSign {
     /// `0.95`
     Point,
     /// `0,95`
@@ -10,8 +13,11 @@ pub(crate) enum DecimalSign {
 }
 
 impl DecimalSign {
+    /// Both, the usual one first.
+    pub const ALL: [Self; 2] = [Self::Point, Self::Comma];
+
     /// The word used in messages.
-    pub(crate) const fn word(self) -> &'static str {
+    pub const fn word(self) -> &'static str {
         match self {
             Self::Point => "point",
             Self::Comma => "comma",

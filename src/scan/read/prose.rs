@@ -110,34 +110,57 @@ fn is_number(word: &str) -> bool {
         .starts_with(|c: char| c.is_ascii_digit() || c == '.')
 }
 
+/// Atoms that a comment or title names.
+#[derive(Clone, Debug, PartialEq)]
+pub(crate) struct NamedAtoms {
+    /// The two of them.
+    pub atoms: [AtomChoice; 2],
+    /// The molecule's charge, where it is written.
+    pub charge: Option<i32>,
+    /// The line that names them, from 1.
+    pub line: usize,
+    /// The words they were taken from.
+    pub words: String,
+}
+
 /// The two atoms, and the charge if it is written, that the comments and titles name.
 ///
 /// Only a formula of exactly two atoms that begins a line counts (`H2, X 1Sigma_g+`, `HCl bond scan`,
-/// `molecule: CO`), and not when the line goes on to speak of a bond in something larger. Formulas that
-/// are also abbreviations of the trade (HF is a method too) need a word beside them that settles it.
-pub(crate) fn atoms(lines: &[TextLine<'_>]) -> Option<([AtomChoice; 2], Option<i32>)> {
-    let found: Vec<_> = lines.iter().filter_map(|l| atoms_of_line(l.text)).collect();
+/// `molecule: CO`), and not when the line goes on to speak of a bond in something larger. A formula that
+/// may be something else needs words beside it that settle it: two capitals (`SI units` names no molecule)
+/// what a molecule has, such as a scan or a state; an abbreviation of the trade (HF is a method too) the
+/// word molecule or the term of a state.
+pub(crate) fn atoms(lines: &[TextLine<'_>]) -> Option<NamedAtoms> {
+    let found: Vec<NamedAtoms> = lines.iter().filter_map(atoms_of_line).collect();
     let first = found.first()?;
-    found.iter().all(|f| f == first).then(|| first.clone())
+    let same = |f: &NamedAtoms| (&f.atoms, f.charge) == (&first.atoms, first.charge);
+    found.iter().all(same).then(|| first.clone())
 }
 
-fn atoms_of_line(text: &str) -> Option<([AtomChoice; 2], Option<i32>)> {
-    let (lead, text) = match text.split_once(':') {
+fn atoms_of_line(line: &TextLine<'_>) -> Option<NamedAtoms> {
+    let named = |(atoms, charge): ([AtomChoice; 2], Option<i32>), words: &str| NamedAtoms {
+        atoms,
+        charge,
+        line: line.number,
+        words: words.to_owned(),
+    };
+    let (lead, text) = match line.text.split_once(':') {
         Some((lead, rest))
             if matches!(lead.trim().to_lowercase().as_str(), "molecule" | "system" | "atoms" | "species") =>
         {
             (true, rest.trim())
         }
-        _ => (false, text.trim()),
+        _ => (false, line.text.trim()),
     };
     if lead && let Ok(pair) = crate::species::parse_atoms(text) {
-        return Some((pair, None));
+        return Some(named((pair, None), text));
     }
     let word = text.split_whitespace().next()?;
     let rest = text[word.len()..].trim();
-    let pair = formula(word.trim_end_matches([',', ';', ':', '.']))?;
+    let bare = word.trim_end_matches([',', ';', ':', '.']);
+    let pair = formula(bare)?;
     let clause = rest.split([',', ';', '.', ':']).next().unwrap_or("");
-    let ended = word.ends_with([',', ';', ':', '.']);
+    let ended = bare.len() < word.len();
     let larger = !ended
         && clause.split_whitespace().any(|w| {
             matches!(
@@ -148,14 +171,61 @@ fn atoms_of_line(text: &str) -> Option<([AtomChoice; 2], Option<i32>)> {
     if larger {
         return None;
     }
-    let settled = lead || names_a_molecule(rest);
-    (settled || !is_abbreviation(word)).then_some(pair)
+    let settled = lead
+        || names_a_molecule(rest)
+        || match Reading::of(bare) {
+            Reading::Formula => true,
+            Reading::TwoCapitals => !ended && clause.split_whitespace().take(2).any(belongs_to_a_molecule),
+            Reading::Abbreviation => false,
+        };
+    settled.then(|| named(pair, bare))
 }
 
-/// Formulas that are also abbreviations: Hartree-Fock, configuration interaction, Kohn-Sham, ...
-fn is_abbreviation(word: &str) -> bool {
+/// What else a formula of two atoms may be.
+#[derive(Clone, Copy, PartialEq)]
+enum Reading {
+    /// Nothing: `HCl`, `N2`, `H2+`.
+    Formula,
+    /// Anything that is written in two capitals: `SI`, `NB`, `CO`.
+    TwoCapitals,
+    /// An abbreviation or symbol of the trade.
+    Abbreviation,
+}
+
+impl Reading {
+    fn of(formula: &str) -> Self {
+        let charged = formula.ends_with(['+', '-']);
+        if is_abbreviation(formula) {
+            Self::Abbreviation
+        } else if formula.len() == 2 && !charged && formula.bytes().all(|b| b.is_ascii_uppercase()) {
+            Self::TwoCapitals
+        } else {
+            Self::Formula
+        }
+    }
+}
+
+/// Words for what only a molecule has.
+fn belongs_to_a_molecule(word: &str) -> bool {
     matches!(
-        word.trim_end_matches([',', ';', ':', '.']),
+        word.to_lowercase().as_str(),
+        "scan"
+            | "bond"
+            | "curve"
+            | "potential"
+            | "ground"
+            | "excited"
+            | "state"
+            | "dissociation"
+            | "stretching"
+    )
+}
+
+/// Formulas that are also abbreviations or symbols: Hartree-Fock, configuration interaction, Kohn-Sham, not a
+/// number, the point groups C2 and D2, the dispersion correction D2, amplitudes T2, the spin S2, ...
+fn is_abbreviation(formula: &str) -> bool {
+    matches!(
+        formula,
         "HF" | "CI"
             | "KS"
             | "SO"
@@ -174,6 +244,16 @@ fn is_abbreviation(word: &str) -> bool {
             | "BS"
             | "CC"
             | "SOS"
+            | "PS"
+            | "NB"
+            | "SI"
+            | "NaN"
+            | "BSc"
+            | "B2"
+            | "C2"
+            | "D2"
+            | "S2"
+            | "T2"
     )
 }
 
@@ -271,9 +351,14 @@ mod tests {
             ("H2+ exact", "H,H", Some(1)),
             ("molecule: CO", "C,O", None),
             ("atoms: 2H, 35Cl", "2H,35Cl", None),
+            ("CO bond scan", "C,O", None),
+            ("D2 molecule", "2H,2H", None),
+            ("N2", "N,N", None),
         ] {
-            let (pair, found) = atoms(&[line(text)]).unwrap_or_else(|| panic!("{text}"));
-            assert_eq!((format!("{},{}", pair[0], pair[1]).as_str(), found), (expected, charge), "{text}");
+            let found = atoms(&[line(text)]).unwrap_or_else(|| panic!("{text}"));
+            let [a, b] = &found.atoms;
+            assert_eq!((format!("{a},{b}").as_str(), found.charge), (expected, charge), "{text}");
+            assert_eq!(found.line, 7, "{text}");
         }
     }
 
@@ -290,6 +375,14 @@ mod tests {
             "Potential of something",
             "R (bohr)  E (hartree)",
             "CASSCF(6,6)",
+            "SI units throughout",
+            "SI",
+            "NB: potential energies below zero",
+            "CO, triple zeta",
+            "PS: the scan ends at 3",
+            "C2 symmetry was used",
+            "D2 dispersion added",
+            "NaN marks points that failed",
             "",
         ] {
             assert_eq!(atoms(&[line(text)]), None, "{text}");

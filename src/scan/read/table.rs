@@ -1,13 +1,17 @@
 //! Rows of a delimited text: which sign separates the columns, which stands for decimals, and the numbers.
 
+use super::ReadSettings;
+use super::columns::{ColumnName, Kind};
 use super::number::{Cell, DecimalSign, parse_cell};
+use serde::{Deserialize, Serialize};
 
 /// The most columns that are read; it bounds the memory a line of many separators takes.
 pub const LIMIT_COLUMNS: usize = 1_000;
 
 /// What separates the columns.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub(crate) enum Delimiter {
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Delimiter {
     /// `;`
     Semicolon,
     /// A tab, one per column.
@@ -20,10 +24,10 @@ pub(crate) enum Delimiter {
 
 impl Delimiter {
     /// In the order in which a tie is settled: with the first three an empty cell is possible.
-    const ALL: [Self; 4] = [Self::Semicolon, Self::Tab, Self::Comma, Self::Blanks];
+    pub const ALL: [Self; 4] = [Self::Semicolon, Self::Tab, Self::Comma, Self::Blanks];
 
     /// The sign, where it is a single one.
-    pub(crate) const fn sign(self) -> Option<char> {
+    pub const fn sign(self) -> Option<char> {
         match self {
             Self::Semicolon => Some(';'),
             Self::Tab => Some('\t'),
@@ -32,8 +36,8 @@ impl Delimiter {
         }
     }
 
-    /// The words used for it.
-    pub(crate) const fn words(self) -> &'static str {
+    /// The word used for it.
+    pub const fn words(self) -> &'static str {
         match self {
             Self::Semicolon => "semicolons",
             Self::Tab => "tabs",
@@ -78,7 +82,7 @@ fn split_quoted<'a>(content: &'a str, sign: char, cells: &mut Vec<&'a str>) {
 }
 
 /// How the rows are written.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq, Eq)]
 pub(crate) struct Format {
     /// What separates the columns.
     pub delimiter: Delimiter,
@@ -86,6 +90,8 @@ pub(crate) struct Format {
     pub sign: DecimalSign,
     /// Number of columns.
     pub columns: usize,
+    /// Columns of words instead of numbers, ascending.
+    pub labels: Vec<usize>,
 }
 
 /// One row taken apart: what each cell holds and how it is written.
@@ -99,8 +105,20 @@ pub(crate) struct Row<'a> {
 }
 
 impl<'a> Row<'a> {
+    /// Reads a line in a format: cells in columns of words count as empty.
+    pub(crate) fn read_as(&mut self, content: &'a str, format: &Format) {
+        self.read(content, format.delimiter, format.sign);
+        self.blank(format);
+    }
+
+    fn blank(&mut self, format: &Format) {
+        if self.cells.len() == format.columns {
+            format.labels.iter().for_each(|&label| self.cells[label] = Cell::Empty);
+        }
+    }
+
     /// Reads a line.
-    pub(crate) fn read(&mut self, content: &'a str, delimiter: Delimiter, sign: DecimalSign) {
+    fn read(&mut self, content: &'a str, delimiter: Delimiter, sign: DecimalSign) {
         delimiter.split(content, &mut self.raw);
         self.cells.clear();
         self.written.clear();
@@ -120,9 +138,19 @@ impl<'a> Row<'a> {
     }
 
     /// Replaces the cells by those found in another way.
-    pub(crate) fn set(&mut self, written: Vec<&'a str>, sign: DecimalSign) {
-        self.cells = written.iter().map(|cell| parse_cell(cell, sign)).collect();
+    pub(crate) fn set(&mut self, written: Vec<&'a str>, format: &Format) {
+        self.cells = written.iter().map(|cell| parse_cell(cell, format.sign)).collect();
         self.written = written;
+        self.blank(format);
+    }
+
+    /// The columns that hold words, where the line is otherwise a row: two numbers or more beside them, and
+    /// words that cannot be meant as a number, a name of a column or a unit.
+    fn labels(&self) -> Option<Vec<usize>> {
+        let numbers = self.cells.iter().filter(|c| matches!(c, Cell::Number(_))).count();
+        let words: Vec<usize> = (0..self.cells.len()).filter(|&i| self.cells[i] == Cell::Text).collect();
+        let fine = numbers > 1 && !words.is_empty() && words.iter().all(|&i| is_label(self.written[i]));
+        fine.then_some(words)
     }
 
     /// Whether the line is a row of a table: two or more cells, no text, at least one number.
@@ -152,34 +180,63 @@ fn glued_parts(cell: &str) -> Vec<&str> {
     parts
 }
 
-/// The format that fits most of the sample lines; none where no line is a row of numbers.
-pub(crate) fn choose_format(sample: &[&str]) -> Option<Format> {
+/// Whether a cell is a word: it begins with a letter and names no quantity that a scan has, or is a date.
+fn is_label(cell: &str) -> bool {
+    let date = |sign: char| {
+        let parts: Vec<&str> = cell.split(sign).collect();
+        parts.len() == 3 && parts.iter().all(|p| !p.is_empty() && p.bytes().all(|b| b.is_ascii_digit()))
+    };
+    let word = cell.starts_with(char::is_alphabetic)
+        && matches!(
+            ColumnName::parse(cell),
+            ColumnName { kind: Kind::Unknown | Kind::Property, unit: None, .. }
+        );
+    word || date('-') || date('/') || date(':')
+}
+
+/// Rows that must agree before a column of words is believed.
+const LABELLED_ROWS: usize = 3;
+
+/// The format that fits most of the sample lines, among those the settings allow; none where no line is a
+/// row of numbers.
+pub(crate) fn choose_format(sample: &[&str], settings: &ReadSettings) -> Option<Format> {
     let mut best: Option<(usize, Format)> = None;
+    let mut labelled: Option<(usize, Format)> = None;
+    let keep = |best: &mut Option<(usize, Format)>, rows: usize, format: Format| {
+        if best.as_ref().is_none_or(|(most, _)| rows > *most) {
+            *best = Some((rows, format));
+        }
+    };
     let mut row = Row::default();
-    for delimiter in Delimiter::ALL {
-        for sign in [DecimalSign::Point, DecimalSign::Comma] {
+    for delimiter in Delimiter::ALL.into_iter().filter(|d| settings.delimiter.is_none_or(|s| s == *d)) {
+        for sign in DecimalSign::ALL.into_iter().filter(|d| settings.decimal_sign.is_none_or(|s| s == *d)) {
             if delimiter == Delimiter::Comma && sign == DecimalSign::Comma {
                 continue;
             }
-            let mut counts: Vec<(usize, usize)> = Vec::new();
+            let mut counts: Vec<((usize, Vec<usize>), usize)> = Vec::new();
             for line in sample {
                 row.read(line, delimiter, sign);
-                if row.is_data() {
-                    let columns = row.cells.len();
-                    match counts.iter_mut().find(|c| c.0 == columns) {
+                let labels = if row.is_data() { Some(Vec::new()) } else { row.labels() };
+                if let Some(labels) = labels {
+                    let shape = (row.cells.len(), labels);
+                    match counts.iter_mut().find(|c| c.0 == shape) {
                         Some(count) => count.1 += 1,
-                        None => counts.push((columns, 1)),
+                        None => counts.push((shape, 1)),
                     }
                 }
             }
-            // The most frequent number of columns; the first of equals.
-            let Some(&(columns, rows)) = counts.iter().rev().max_by_key(|c| c.1) else { continue };
-            if best.is_none_or(|(most, _)| rows > most) {
-                best = Some((rows, Format { delimiter, sign, columns }));
+            // The most frequent shape; the first of equals.
+            for with_labels in [false, true] {
+                let alike = counts.iter().rev().filter(|c| c.0.1.is_empty() != with_labels);
+                let Some(((columns, labels), rows)) = alike.max_by_key(|c| c.1) else { continue };
+                let format = Format { delimiter, sign, columns: *columns, labels: labels.clone() };
+                keep(if with_labels { &mut labelled } else { &mut best }, *rows, format);
             }
         }
     }
-    best.map(|b| b.1)
+    let plain_rows = best.as_ref().map_or(0, |b| b.0);
+    let labelled = labelled.filter(|l| l.0 >= LABELLED_ROWS && l.0 > plain_rows);
+    labelled.or(best).map(|b| b.1)
 }
 
 #[cfg(test)]
@@ -199,10 +256,37 @@ mod tests {
             (&["0.700-100.1234", "0.800-100.2345"][..], Delimiter::Blanks, DecimalSign::Point, 2),
             (&["\"0.7\",\"-1.1\""][..], Delimiter::Comma, DecimalSign::Point, 2),
         ] {
-            assert_eq!(choose_format(sample), Some(Format { delimiter, sign, columns }), "{sample:?}");
+            let format = Format { delimiter, sign, columns, labels: Vec::new() };
+            assert_eq!(choose_format(sample, &ReadSettings::default()), Some(format), "{sample:?}");
         }
-        assert_eq!(choose_format(&["one two", "three"]), None);
-        assert_eq!(choose_format(&["1.0", "2.0"]), None);
+        assert_eq!(choose_format(&["one two", "three"], &ReadSettings::default()), None);
+        assert_eq!(choose_format(&["1.0", "2.0"], &ReadSettings::default()), None);
+    }
+
+    #[test]
+    fn columns_of_words_are_seen() {
+        let chosen =
+            |sample: &[&str]| choose_format(sample, &ReadSettings::default()).map(|f| (f.columns, f.labels));
+        let rows = ["tight 0.7 -1.1", "loose 0.8 -1.2", "tight 0.9 -1.1"];
+        assert_eq!(chosen(&rows), Some((3, vec![0])));
+        assert_eq!(
+            chosen(&["0.7,-1.1,a,2024-01-05", "1,2,b,2024-01-06", "2,3,c,2024-01-07"]),
+            Some((4, vec![2, 3]))
+        );
+        // Rows that begin with names of quantities are a table lying on its side.
+        assert_eq!(chosen(&["r 0.7 0.8 0.9", "E -1.1 -1.2 -1.1", "V 1 2 3"]), None);
+        assert_eq!(chosen(&rows[..2]), None);
+        assert_eq!(chosen(&["0.7 O.1", "0.8 O.2", "0.9 O.3"]), None);
+    }
+
+    /// What the user says goes before what the lines look like.
+    #[test]
+    fn a_delimiter_can_be_chosen() {
+        let lines = ["0,70 -1,10", "0,75 -1,14"];
+        let settings = ReadSettings { delimiter: Some(Delimiter::Comma), ..ReadSettings::default() };
+        assert_eq!(choose_format(&lines, &settings), None);
+        let settings = ReadSettings { decimal_sign: Some(DecimalSign::Comma), ..ReadSettings::default() };
+        assert_eq!(choose_format(&lines, &settings).map(|f| f.columns), Some(2));
     }
 
     #[test]

@@ -151,7 +151,7 @@ fn numbers_keep_their_digits_and_their_order() {
     assert_eq!(scan.row_remarks, [(22, "SCF stopped at 1e-3 Eh, redo?".to_owned())]);
     assert_eq!(scan.line(22), 28);
     let codes: Vec<Code> = scan.notices.iter().map(|n| n.code).collect();
-    assert_eq!(codes, [Code::UnitFromComment, Code::UnitFromComment]);
+    assert_eq!(codes, [Code::UnitFromComment, Code::UnitFromComment, Code::AtomsFromComment]);
 }
 
 #[test]
@@ -174,13 +174,10 @@ fn a_table_of_dipoles_is_refused() {
 #[test]
 fn options_go_before_the_header() {
     let settings = ReadSettings {
-        energy_columns: None,
         length_unit: Some(LengthUnit::Bohr),
         energy_unit: Some(EnergyUnit::PerCm),
         length_column: Some("r_OH2".to_owned()),
-        bond: None,
-        made: Vec::new(),
-        lines: None,
+        ..ReadSettings::default()
     };
     let file = "water_oh_relaxed.csv";
     let scan = read_scan(file, &bytes("sample-scans", file), &settings).expect("read");
