@@ -34,8 +34,8 @@ impl GaugeMeasure {
         match self {
             Self::EnergyPercent => Axis { title: "deviation", unit: "%" },
             Self::EnergyPerCm => Axis { title: "deviation", unit: "cm⁻¹" },
-            Self::ForcePercent => Axis { title: "deviation of the force", unit: "%" },
-            Self::ForcePerCmAngstrom => Axis { title: "deviation of the force", unit: "cm⁻¹/Å" },
+            Self::ForcePercent => Axis { title: "force deviation", unit: "%" },
+            Self::ForcePerCmAngstrom => Axis { title: "force deviation", unit: "cm⁻¹/Å" },
         }
     }
 

@@ -75,6 +75,11 @@ fn pictures_have_every_series_axis_title_and_legend_entry() {
             assert!(found.texts.iter().any(|t| t == title), "{what}: no {title} in {:?}", found.texts);
         }
     }
+    // Residuals too small to be seen beside the harmonic fit's have panels of their own.
+    let residuals = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &["--what", "residuals"]].concat()));
+    assert!(residuals.texts.iter().filter(|t| *t == "residual / cm⁻¹").count() > 1);
+    let count = |name: &str| residuals.series.iter().filter(|s| s.0 == name).count();
+    assert!(count("Polynomial 6") > count("Harmonic"), "{:?}", residuals.series);
     // The thermal picture has a panel a quantity, each with its title and unit, and names the levels it counts.
     let thermal = read(&figure("lih_X_A.csv", "svg", &[&LIH[..], &["--what", "thermal"]].concat()));
     for text in [
@@ -127,8 +132,8 @@ fn the_gauge_has_four_measures() {
     for (measure, title) in [
         ("energy", "deviation / %"),
         ("energy-cm-1", "deviation / cm⁻¹"),
-        ("force", "deviation of the force / %"),
-        ("force-cm-1", "deviation of the force / cm⁻¹/Å"),
+        ("force", "force deviation / %"),
+        ("force-cm-1", "force deviation / cm⁻¹/Å"),
     ] {
         let options = [&LIH[..], &["--what", "gauge", "--gauge", measure]].concat();
         let found = read(&figure("lih_X_A.csv", "svg", &options));

@@ -17,7 +17,7 @@ pub fn items(layout: &Layout, ladders: &Ladders, y: (f64, f64)) -> Vec<Item> {
     let frame = Frame {
         left,
         right: layout.size_pt[0] - 3.6 * font,
-        top: 1.2 * font,
+        top: 2.4 * font,
         bottom: layout.size_pt[1] - 2.4 * font,
         bounds: Bounds { x: (0.0, columns), y },
     };
@@ -47,8 +47,8 @@ pub fn items(layout: &Layout, ladders: &Ladders, y: (f64, f64)) -> Vec<Item> {
         items.push(layout.text([at[0], frame.bottom + 1.4 * font], column.label.clone(), Anchor::Middle));
     }
     if ladders.columns.len() > 1 {
-        let at = [frame.left + 0.6 * font, frame.top + 1.3 * font];
-        items.push(layout.dim_text(at, "numbers: minus numerical, in cm⁻¹", Anchor::Start));
+        let at = [frame.left, frame.top - 0.6 * font];
+        items.push(layout.dim_text(at, "numbers: model minus numerical, in cm⁻¹", Anchor::Start));
     }
     items.extend(names(layout, ladders, &frame, shown));
     items.extend(axes::axes(layout, &frame, None, &ENERGY));

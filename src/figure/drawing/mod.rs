@@ -17,7 +17,7 @@ pub use type_face::{FACE, GlyphRun, TypeFace};
 
 use super::geometry::Bounds;
 use super::{
-    ComparisonPicture, Figure, GaugeMeasure, Pictures, Role, Shape, WindowPicture, gauge_of,
+    ComparisonPicture, Figure, GaugeMeasure, Pictures, Role, Series, Shape, WindowPicture, gauge_of,
     gauge_turning_points, thermal_panels,
 };
 use crate::findings::Findings;
@@ -109,6 +109,8 @@ impl Default for Paper {
     }
 }
 
+/// Residuals smaller than this share of those of another fit are not seen beside them.
+const HIDDEN: f64 = 0.2;
 /// Levels whose turning points stand in a gauge.
 const GAUGE_LEVELS: usize = 6;
 /// Points (1/72 inch) in a millimetre.
@@ -268,8 +270,13 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
             panel::items(&layout, &figure, bounds, None)
         }
         Subject::Residuals => {
-            let bounds = figure_bounds(&pictures.residuals).ok_or(nothing("no fit succeeded"))?;
-            panel::items(&layout, &pictures.residuals, bounds, None)
+            let bounds = residual_bounds(&pictures.residuals);
+            if bounds.is_empty() {
+                return Err(nothing("no fit succeeded"));
+            }
+            layout.size_pt[1] *= 1.0 + 0.6 * (bounds.len() - 1) as f64;
+            let figures: Vec<Figure> = bounds.iter().map(|b| shown_within(&pictures.residuals, b)).collect();
+            stack::items(&layout, &figures, &bounds).0
         }
         Subject::Ladders => {
             let bounds = view.filter(|_| !findings.levels.is_empty());
@@ -324,6 +331,34 @@ fn figure_bounds(figure: &Figure) -> Option<Bounds> {
     let wide = |(a, b): (f64, f64)| if b > a { (a, b) } else { (a - 1.0, b + 1.0) };
     let bounds = Bounds { x: wide(bounds.x), y: wide(bounds.y) }.grown(0.03, 0.08);
     Some(bounds).filter(Bounds::is_valid)
+}
+
+/// What the pictures of the residuals show, from above: all fits, then the same enlarged to the fits whose residuals would
+/// not be seen beside those of the worst.
+fn residual_bounds(figure: &Figure) -> Vec<Bounds> {
+    let Some(whole) = figure_bounds(figure) else { return Vec::new() };
+    let mut sizes: Vec<f64> = figure.series.iter().filter_map(largest).filter(|s| *s > 0.0).collect();
+    sizes.dedup();
+    sizes.sort_by(|a, b| b.total_cmp(a));
+    let hidden = sizes.windows(2).filter(|pair| pair[1] < HIDDEN * pair[0]);
+    let enlarged = hidden.map(|pair| Bounds { x: whole.x, y: (-1.2 * pair[1], 1.2 * pair[1]) });
+    std::iter::once(whole).chain(enlarged.filter(Bounds::is_valid).take(2)).collect()
+}
+
+/// The largest ordinate of a line or of points.
+fn largest(series: &Series) -> Option<f64> {
+    match &series.shape {
+        Shape::Points(points) | Shape::Line(points) => {
+            Some(points.iter().map(|p| p[1].abs()).fold(0.0, f64::max))
+        }
+        _ => None,
+    }
+}
+
+/// The figure without series that leave the picture at once.
+fn shown_within(figure: &Figure, bounds: &Bounds) -> Figure {
+    let seen = |s: &&Series| largest(s).is_none_or(|size| size * HIDDEN <= bounds.y.1);
+    Figure { series: figure.series.iter().filter(seen).cloned().collect(), ..figure.clone() }
 }
 
 /// The ordinate reaches a few tolerances to either side, the abscissa as far as the deviation and the zero-point
