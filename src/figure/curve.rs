@@ -1,6 +1,7 @@
 //! The main plot: curve, tails, parabola, fits and reach over the bond length.
 
 use super::{Axis, BOND_LENGTH, Figure, PlotPoint, Role, Series, Shape, number};
+use crate::estimate::ErrorSource;
 use crate::findings::{Findings, FitFindings};
 use crate::fit::{Family, Window};
 use crate::potential::Potential;
@@ -18,6 +19,7 @@ pub fn main_plot(findings: &Findings) -> Figure {
     let mut series = Vec::new();
     if let Some(curve) = findings.curve.as_deref() {
         series.extend(reach_band(findings, curve));
+        series.extend(confidence_bands(findings, curve));
         series.extend(fits(findings, curve));
         series.extend(parabola(curve));
         series.extend(scanned(curve));
@@ -152,6 +154,40 @@ fn fits(findings: &Findings, curve: &ScanCurve) -> Vec<Series> {
         })
     };
     findings.fits.iter().filter_map(draw).collect()
+}
+
+/// Points across a confidence band, and how far beyond the window it goes, as a share of the window.
+const BAND_POINTS: u32 = 80;
+const BAND_BEYOND: f64 = 0.25;
+
+/// The confidence band of each fit that has one: its curve ± two standard errors, in the window and a little beyond.
+fn confidence_bands(findings: &Findings, curve: &ScanCurve) -> Vec<Series> {
+    let (first, last) = curve.scan_range_bohr;
+    let v_e = curve.v_e_hartree.value;
+    let band = |fit: &FitFindings| {
+        let result = fit.result.as_ref().ok()?;
+        let (a, b) = result.window_bohr;
+        let (from, to) = ((a - BAND_BEYOND * (b - a)).max(first), (b + BAND_BEYOND * (b - a)).min(last));
+        let at = |k: u32| {
+            let r = from + (to - from) * f64::from(k) / f64::from(BAND_POINTS);
+            let (energy, half) = (result.model.energy_hartree(r) - v_e, 2.0 * result.band_hartree(r)?);
+            let [low, high] = [energy - half, energy + half].map(|e| e * PER_CM_PER_HARTREE);
+            (low.is_finite() && high.is_finite()).then_some([to_angstrom(r), low, high])
+        };
+        let ribbon = (0..=BAND_POINTS).map(at).collect::<Option<Vec<_>>>()?;
+        let source = match result.error_source() {
+            ErrorSource::Misfit => "; its residuals are misfit, not noise",
+            _ => "",
+        };
+        Some(Series {
+            role: fit_role(fit.request.family),
+            label: fit_label(fit),
+            about: format!("The fit ± two standard errors of its curve{source}."),
+            strong: None,
+            shape: Shape::Ribbon(ribbon),
+        })
+    };
+    findings.fits.iter().filter_map(band).collect()
 }
 
 fn reach_band(findings: &Findings, curve: &ScanCurve) -> Option<Series> {

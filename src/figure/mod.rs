@@ -117,6 +117,8 @@ pub enum Shape {
     Band(Option<f64>, Option<f64>),
     /// A horizontal line.
     Level(f64),
+    /// An area between two lines: abscissa, lower and upper ordinate.
+    Ribbon(Vec<[f64; 3]>),
     /// A horizontal bar: ordinate, from, to.
     Bar(f64, f64, f64),
 }

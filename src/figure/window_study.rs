@@ -54,10 +54,14 @@ const QUANTITIES: [(Axis, Quantity); 3] = [
 impl WindowPicture {
     /// The picture of the findings' window study; none without one or without a fit in it.
     pub fn of(findings: &Findings) -> Option<Self> {
-        let in_force = findings.fits.iter().find_map(|f| f.result.as_ref().ok()).map(|f| f.window_bohr);
+        Self::of_study(findings.window_study.as_ref()?, Self::half_width_in_force_angstrom(findings))
+    }
+
+    /// How far the window of the fits reaches from r_e on its wider side; none without a fit.
+    pub fn half_width_in_force_angstrom(findings: &Findings) -> Option<f64> {
+        let (from, to) = findings.fits.iter().find_map(|f| f.result.as_ref().ok())?.window_bohr;
         let r_e = findings.curve.as_ref()?.local.r_e_bohr;
-        let half = in_force.map(|(a, b)| to_angstrom((r_e - a).max(b - r_e)));
-        Self::of_study(findings.window_study.as_ref()?, half)
+        Some(to_angstrom((r_e - from).max(to - r_e)))
     }
 
     /// The same of a study that is not among findings; `in_force_angstrom` is the half width of the window in force.

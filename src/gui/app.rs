@@ -3,6 +3,7 @@
 use super::apply::{self, Effect, apply};
 use super::command::{Command, InterfaceSize};
 use super::compute::{Ticket, Worker};
+use super::extras::Extras;
 use super::files::{Done, Files};
 use super::job::{Request, StudyJob, broken_off, compute};
 use super::keeper::Keeper;
@@ -53,6 +54,7 @@ pub struct App {
     asked: Option<(CurveKey, Settings, String)>,
     watch: Option<Watch>,
     keeper: Option<Keeper>,
+    extras: Extras,
 }
 
 impl App {
@@ -72,7 +74,10 @@ impl App {
         // Pictures and tests are made from files that hold still.
         let watch = (!start.inline).then(|| Watch::new(move || wake_watch.request_repaint()));
         let files = Files::new(move || wake_files.request_repaint(), start.inline);
-        let mut app = Self { state: State::default(), worker, files, asked: None, watch, keeper: None };
+        let wake_extras = ctx.clone();
+        let extras = Extras::new(move || wake_extras.request_repaint(), start.inline);
+        let state = State::default();
+        let mut app = Self { state, worker, files, asked: None, watch, keeper: None, extras };
         app.state.view.page = start.page;
         if let Some(folder) = start.state_folder {
             app.keeper = Some(Keeper::new(folder, ctx, &mut app.state, &mut app.files));
@@ -134,6 +139,7 @@ impl App {
                 }
             }
             Effect::Stop => self.worker.stop(),
+            Effect::Resample => self.extras.start_resampling(&mut self.state),
             Effect::Copy(text) => ctx.copy_text(text),
             Effect::Prefer => {
                 dress(ctx, &self.state.preferences);
@@ -202,6 +208,7 @@ impl App {
             let (key, _, settings) = answer.input;
             apply::take_outcome(key, settings, result, &mut self.state);
         }
+        self.extras.exchange(&mut self.state);
         let running = self.worker.running();
         let view = &mut self.state.view;
         view.late = running.as_ref().is_some_and(|r| r.since >= LATE);
@@ -312,7 +319,7 @@ impl Program for App {
     }
 
     fn is_working(&self) -> bool {
-        self.worker.is_waiting() || self.files.is_busy()
+        self.worker.is_waiting() || self.files.is_busy() || self.extras.is_working()
     }
 
     fn on_exit(&mut self) {

@@ -5,11 +5,12 @@ use super::densities::DensityView;
 use super::product::Product;
 pub use super::saving::*;
 use super::session::Work;
-use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Search, State, Zoom};
+use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Resampling, Search, State, Zoom};
 pub use super::take::*;
 use crate::export::compare::Quantity;
+use crate::export::parameters;
 use crate::figure::geometry::Bounds;
-use crate::fit::{RowWeight, Weighting};
+use crate::fit::{BootstrapSettings, Family, RowWeight, Weighting};
 use crate::settings::{SetAside, Settings};
 use std::path::PathBuf;
 use std::sync::Arc;
@@ -54,6 +55,8 @@ pub enum Effect {
     Copy(String),
     /// What the program remembers has changed.
     Prefer,
+    /// Resample the residuals of the fits shown.
+    Resample,
     /// List the folder that the path window names.
     ListFolder(String),
     /// Ask where to save the study.
@@ -147,6 +150,20 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
             state.view.message = Some(Message::told("Comparison copied."));
             return vec![Effect::Copy(text)];
         }
+        Command::CopyParameters | Command::CopyParametersLatex => {
+            let latex = command == Command::CopyParametersLatex;
+            if let Some(text) = parameters_text(state, latex) {
+                let kind = if latex { "LaTeX" } else { "text" };
+                state.view.message = Some(Message::told(&format!("Parameters copied as {kind}.")));
+                return vec![Effect::Copy(text)];
+            }
+        }
+        Command::Resample => return vec![Effect::Resample],
+        Command::StopResampling => {
+            if let Resampling::Running(progress) = &state.resampling {
+                progress.stop();
+            }
+        }
         Command::TypePath(text) => {
             if let Some(window) = &mut state.view.path_window {
                 window.text.clone_from(&text);
@@ -235,10 +252,16 @@ fn change_document(command: &Command, state: &mut State) -> bool {
             }
         }
         Command::SetDegree(degree) => edit(state, "change the degree", false, |s| {
-            for request in s.fits.requests.iter_mut().filter(|r| r.degree.is_some()) {
+            for request in s.fits.requests.iter_mut().filter(|r| r.family == Family::Polynomial) {
                 request.degree = Some(*degree);
             }
         }),
+        Command::SetFits(requests) => {
+            edit(state, "choose the fits", false, |s| s.fits.requests.clone_from(requests));
+        }
+        Command::SetWeighting(weights) => {
+            edit(state, "weight the points", true, |s| s.fits.weights.clone_from(weights));
+        }
         Command::SetAside(row) => edit(state, "set a point aside", false, |s| {
             s.kept.retain(|r| r != row);
             s.set_aside.retain(|a| a.row != *row);
@@ -373,6 +396,11 @@ fn change_view(command: Command, state: &mut State) {
                 view.kelvin = Some(kelvin.clamp(low, high));
             }
         }
+        Command::ShowFitsPart(part) => view.fits_part = part,
+        Command::SetRepeats(repeats) => {
+            view.repeats = Some(repeats.clamp(2, BootstrapSettings::MOST_REPEATS));
+        }
+        Command::SetParameterUnits(units) => view.parameter_units = units,
         Command::ShowStrip(strip) => view.strip = strip,
         Command::ToggleWhy => view.why_open = !view.why_open,
         Command::ShowLeft(open) => view.panels.left = Some(open),
@@ -440,6 +468,15 @@ fn point_at(r_angstrom: f64, state: &mut State) {
 /// A number as an orderable key; only used on finite numbers.
 fn ordered(value: f64) -> u64 {
     value.max(0.0).to_bits()
+}
+
+/// The parameters of all fits for the clipboard; none where no fit succeeded.
+fn parameters_text(state: &State, latex: bool) -> Option<String> {
+    let units = &state.view.parameter_units;
+    let fits = state.study()?.findings.fits.iter().filter_map(|f| f.result.as_ref().ok());
+    let one = |fit| if latex { parameters::latex(fit, units) } else { parameters::text(fit, units) };
+    let texts: Vec<String> = fits.map(one).collect();
+    (!texts.is_empty()).then(|| texts.join("\n"))
 }
 
 /// Name offered for something made of the focused curve's study.

@@ -85,6 +85,8 @@ fn draw(painter: &egui::Painter, map: &Map, series: &Series, look: &Look) {
             let ends = [pos2(map.rect.left(), map.y(*value)), pos2(map.rect.right(), map.y(*value))];
             styled_line(painter, &ends, series.role.line_style(), Stroke::new(1.0, color));
         }
+        // No figure of the pages has a confidence band.
+        Shape::Ribbon(_) => {}
         Shape::Bar(y, from, to) => {
             let ends = [map.at([*from, *y]), map.at([*to, *y])];
             painter.line_segment(ends, Stroke::new(3.0, color));

@@ -2,10 +2,11 @@
 
 use super::densities::DensityView;
 use super::product::Product;
-use super::state::{AxisView, CurveKey, Page, Preset, Reference, State, Strip};
+use super::state::{AxisView, CurveKey, FitsPart, Page, Preset, Reference, Resampling, State, Strip};
 use crate::export::compare::{Form, Quantity};
+use crate::export::parameters::ParameterUnits;
 use crate::figure::geometry::Bounds;
-use crate::fit::Window;
+use crate::fit::{FitRequest, Weighting, Window};
 use crate::scan::read::ReadSettings;
 use crate::settings::Settings;
 use crate::species::AtomChoice;
@@ -74,6 +75,24 @@ pub enum Command {
         /// Whether the hand has let go.
         resting: bool,
     },
+    /// Which fits are made.
+    SetFits(Vec<FitRequest>),
+    /// How the points are weighted in fits.
+    SetWeighting(Weighting),
+    /// Show a part of the page of fits.
+    ShowFitsPart(FitsPart),
+    /// How often residuals are resampled.
+    SetRepeats(usize),
+    /// Errors of the fits by resampled residuals.
+    Resample,
+    /// No longer.
+    StopResampling,
+    /// In which units parameters are copied.
+    SetParameterUnits(ParameterUnits),
+    /// Copy the parameters of the fits as text.
+    CopyParameters,
+    /// Copy them as LaTeX.
+    CopyParametersLatex,
     /// Degree of the polynomial fits.
     SetDegree(u32),
     /// Leave a row out.
@@ -295,6 +314,11 @@ impl Command {
                 let name = Form::ALL.iter().find(|(_, f)| f == form).map_or("", |(name, _)| name);
                 format!("Copy as {name}")
             }
+            Self::ShowFitsPart(part) => part.name().into(),
+            Self::Resample => "Resample residuals".into(),
+            Self::StopResampling => "Stop".into(),
+            Self::CopyParameters => "Copy parameters as text".into(),
+            Self::CopyParametersLatex => "Copy parameters as LaTeX".into(),
             Self::CloseScan => "Close scan".into(),
             Self::ResetWindow => "default".into(),
             Self::SetDark(true) => "Dark".into(),
@@ -424,6 +448,16 @@ impl Command {
             Self::ShowComparison(false) => "Show the picture of the curve in focus again.",
             Self::CopyComparison(_) => "Copy the table as it is shown.",
             Self::CopyConstants => "Copy constants, energies and masses to the clipboard.",
+            Self::ShowFitsPart(FitsPart::Parameters) => "Parameters of the fits with their errors.",
+            Self::ShowFitsPart(FitsPart::Windows) => {
+                "The fits over all windows: where their results stay the same."
+            }
+            Self::ShowFitsPart(FitsPart::Compare) => "Which of the fits the points support.",
+            Self::Resample => "Standard errors by resampling the residuals of every fit and fitting anew.",
+            Self::StopResampling => "End the resampling; nothing is kept of it.",
+            Self::CopyParameters | Self::CopyParametersLatex => {
+                "Copy the parameters of all fits to the clipboard, in the units chosen here."
+            }
             Self::CloseScan => "Take this scan out of the window; the file stays.",
             Self::ResetWindow => "Take the default window again: within 15 % of rₑ, at least seven points.",
             Self::ToggleWhy => "What each part of the sentence rests on.",
@@ -529,6 +563,19 @@ impl Command {
             Self::ComputeAgain => need(state.is_stopped(), "Nothing was stopped."),
             Self::CopyReport => need(state.report().is_some(), "Nothing broke off."),
             Self::CopyConstants => need(study.is_some(), "No constants yet."),
+            Self::CopyParameters | Self::CopyParametersLatex => need(
+                study.is_some_and(|s| s.findings.fits.iter().any(|f| f.result.is_ok())),
+                "No fit succeeded.",
+            ),
+            Self::Resample => {
+                need(!matches!(state.resampling, Resampling::Running(_)), "Under way.")?;
+                need(!state.is_stale(), "The fits are being computed.")?;
+                need(
+                    study.is_some_and(|s| s.findings.fits.iter().any(|f| f.result.is_ok())),
+                    "No fit succeeded.",
+                )
+            }
+            Self::StopResampling => need(matches!(state.resampling, Resampling::Running(_)), "Nothing runs."),
             Self::Zoom(preset) => need(
                 study.is_some_and(|s| preset.bounds(&s.pictures).is_some()),
                 "This study has no such region.",

@@ -12,6 +12,7 @@ pub mod command;
 pub mod compute;
 pub mod densities;
 mod dialogs;
+pub mod extras;
 pub mod files;
 pub mod fonts;
 mod history;

@@ -43,9 +43,22 @@ impl Program for Sheet {
         let painter = ui.ctx().layer_painter(egui::LayerId::background());
         painter.rect_filled(ui.ctx().content_rect(), 0.0, colour(self.drawing.ground, 1.0));
         for item in &self.drawing.items {
-            paint(&painter, item);
+            paint(&painter, item, egui::Vec2::ZERO);
         }
     }
+}
+
+/// Shows a drawing in a panel, on the panel's own ground.
+pub(super) fn drawing_ui(ui: &mut egui::Ui, drawing: &Drawing, sense: egui::Sense) -> egui::Response {
+    let size = egui::vec2(drawing.size_pt[0] as f32, drawing.size_pt[1] as f32);
+    let (rect, response) = ui.allocate_exact_size(size, sense);
+    if ui.is_rect_visible(rect) {
+        let painter = ui.painter_at(rect);
+        for item in &drawing.items {
+            paint(&painter, item, rect.min.to_vec2());
+        }
+    }
+    response
 }
 
 fn colour(Rgb(r, g, b): Rgb, opacity: f64) -> Color32 {
@@ -60,12 +73,15 @@ fn pen(stroke: &Stroke, opacity: f64) -> egui::Stroke {
     egui::Stroke::new(stroke.width_pt as f32, colour(stroke.colour, opacity))
 }
 
-fn paint(painter: &egui::Painter, item: &Item) {
+fn paint(painter: &egui::Painter, item: &Item, offset: egui::Vec2) {
+    let place = |p: [f64; 2]| place(p) + offset;
     match item {
         Item::Open(_) | Item::Close => {}
         Item::Path { points, closed, stroke, fill, opacity } => {
             if let Some(fill) = fill {
-                painter.add(Shape::mesh(filled(points, colour(*fill, *opacity))));
+                let mut mesh = filled(points, colour(*fill, *opacity));
+                mesh.translate(offset);
+                painter.add(Shape::mesh(mesh));
             }
             let Some(stroke) = stroke else { return };
             let mut corners: Vec<Pos2> = points.iter().map(|p| place(*p)).collect();

@@ -2,12 +2,14 @@
 
 use super::command::Command;
 use super::densities::DensityView;
+pub use super::extras::{Resampling, Windows};
 use super::history::History;
 use super::meaning::Meaning;
 use super::preferences::Preferences;
 use super::product::Product;
-pub use super::view::{AxisView, Comparison, Page, Preset, Reference, Strip, Zoom};
+pub use super::view::{AxisView, Comparison, FitsPart, Page, Preset, Reference, Strip, Zoom};
 use crate::export::compare::Quantity;
+use crate::export::parameters::ParameterUnits;
 use crate::figure::geometry::Bounds;
 use crate::figure::{Pictures, PlotPoint};
 use crate::findings::Findings;
@@ -169,6 +171,12 @@ pub struct SidePanels {
 pub struct ViewState {
     /// The page on the right.
     pub page: Page,
+    /// The part of the page of fits.
+    pub fits_part: FitsPart,
+    /// How often residuals are resampled; none: as often as by default.
+    pub repeats: Option<usize>,
+    /// Units in which parameters are copied.
+    pub parameter_units: ParameterUnits,
     /// The strip under the plot.
     pub strip: Strip,
     /// Curves side by side.
@@ -240,6 +248,16 @@ impl ViewState {
     /// The temperature looked at in K.
     pub fn kelvin(&self) -> f64 {
         self.kelvin.unwrap_or(298.15)
+    }
+
+    /// Whether the fits over all windows are in sight.
+    pub fn looks_at_windows(&self) -> bool {
+        self.page == Page::Fits && self.fits_part == FitsPart::Windows
+    }
+
+    /// How often residuals are resampled.
+    pub fn repeats(&self) -> usize {
+        self.repeats.unwrap_or(crate::fit::BootstrapSettings::default().repeats)
     }
 }
 
@@ -320,6 +338,10 @@ pub struct State {
     pub view: ViewState,
     /// Results by curve.
     pub results: BTreeMap<CurveKey, Outcome>,
+    /// The fits over all windows, as far as they were looked at.
+    pub windows: Option<Windows>,
+    /// Errors by resampling.
+    pub resampling: Resampling,
     /// The next serial number of a scan.
     pub next_scan: u64,
     /// Number of the study file opened last.
@@ -404,6 +426,15 @@ impl State {
     pub fn points_in_window(&self) -> usize {
         let points = self.study().map_or(&[][..], |s| &s.pictures.points);
         points.iter().filter(|p| p.set_aside.is_none() && self.in_window(p)).count()
+    }
+
+    /// The fits over all windows of the curve in focus, and whether they belong to the study shown.
+    pub fn windows(&self) -> Option<(&Windows, bool)> {
+        let study = self.study()?;
+        let windows = self.windows.as_ref()?;
+        let (ours, theirs) = (&study.findings.source, &windows.findings.source);
+        let same_curve = ours.sha256 == theirs.sha256 && ours.curve == theirs.curve;
+        same_curve.then(|| (windows, std::sync::Arc::ptr_eq(&study.findings, &windows.findings)))
     }
 
     /// The level that the plot brings forward.

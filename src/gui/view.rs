@@ -79,6 +79,32 @@ pub struct Comparison {
     pub sort: Option<(Quantity, bool)>,
 }
 
+/// A part of the page of fits.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum FitsPart {
+    /// Parameters with their errors.
+    #[default]
+    Parameters,
+    /// The fits over all windows.
+    Windows,
+    /// The fits side by side.
+    Compare,
+}
+
+impl FitsPart {
+    /// All parts in order.
+    pub const ALL: [Self; 3] = [Self::Parameters, Self::Windows, Self::Compare];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Parameters => "Parameters",
+            Self::Windows => "Which window",
+            Self::Compare => "Side by side",
+        }
+    }
+}
+
 /// What the strip shows.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub enum Strip {

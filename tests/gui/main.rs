@@ -6,6 +6,7 @@ mod agreement;
 mod by_label;
 mod commands;
 mod every_command;
+mod fits_page;
 mod frames;
 mod gallery;
 mod harness;

@@ -6,6 +6,8 @@ use super::{Anchor, Item, Layout, area, line};
 use crate::figure::geometry::{Bounds, clip_area, clip_line};
 use crate::figure::{Figure, LevelPicture, Pictures, PlotPoint, Role, Series, Shape};
 
+/// Opacity of confidence bands.
+const RIBBON: f64 = 0.22;
 /// Opacities of the reach band, of densities, of lines where they are not at full strength.
 const BAND: f64 = 0.12;
 const DENSITY: f64 = 0.30;
@@ -67,6 +69,15 @@ pub(super) fn drawn(layout: &Layout, frame: &Frame, series: &Series) -> Vec<Item
                 for run in clip_line(&part, &frame.bounds) {
                     items.push(line(placed(&run), stroke.clone(), if strong { 1.0 } else { FAINT }));
                 }
+            }
+        }
+        Shape::Ribbon(ribbon) => {
+            let low = ribbon.iter().map(|p| [p[0], p[1]]);
+            let high = ribbon.iter().rev().map(|p| [p[0], p[2]]);
+            let outline: Vec<[f64; 2]> = low.chain(high).collect();
+            let cut = clip_area(&outline, &frame.bounds);
+            if cut.len() > 2 {
+                items.push(area(placed(&cut), stroke.colour, RIBBON));
             }
         }
         Shape::Points(points) => {

@@ -139,7 +139,7 @@ fn curve_ui(ui: &mut Ui, label: &str, points: usize, focused: bool) -> bool {
 }
 
 /// Ends the gesture when the hand lets go of a field.
-pub(super) fn settle(response: &egui::Response, out: &mut Vec<Command>) {
+pub(in crate::gui::panels) fn settle(response: &egui::Response, out: &mut Vec<Command>) {
     if response.drag_stopped() || response.lost_focus() {
         out.push(Command::Settle);
     }

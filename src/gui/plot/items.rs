@@ -3,7 +3,8 @@
 use crate::figure::geometry::{Bounds, clip_line};
 use crate::figure::{LineStyle, Series, Shape};
 use crate::gui::look::Look;
-use egui_plot::{Line, PlotPoints, PlotUi};
+use eframe::egui;
+use egui_plot::{FilledArea, Line, PlotPoints, PlotUi};
 
 /// How much fainter a fit is outside its window.
 const BEYOND: f32 = 0.5;
@@ -30,8 +31,11 @@ fn plot_style(style: LineStyle) -> egui_plot::LineStyle {
 
 /// Adds the lines of a series. `index` keeps the names of items apart.
 pub fn add_lines(plot: &mut PlotUi<'_>, series: &Series, index: usize, bounds: &Bounds, look: &Look) {
-    let Shape::Line(points) = &series.shape else { return };
     let color = look.role(series.role);
+    if let Shape::Ribbon(ribbon) = &series.shape {
+        add_ribbon(plot, series, ribbon, index, color);
+    }
+    let Shape::Line(points) = &series.shape else { return };
     let style = series.role.line_style();
     // A line is cut a little outside the view, so that its joints are not seen.
     let view = bounds.grown(0.02, 0.02);
@@ -48,6 +52,19 @@ pub fn add_lines(plot: &mut PlotUi<'_>, series: &Series, index: usize, bounds: &
             plot.line(item);
         }
     }
+}
+
+/// A confidence band; thinner than a line where the fit is sure.
+fn add_ribbon(
+    plot: &mut PlotUi<'_>,
+    series: &Series,
+    ribbon: &[[f64; 3]],
+    index: usize,
+    color: egui::Color32,
+) {
+    let column = |k: usize| ribbon.iter().map(|p| p[k]).collect::<Vec<f64>>();
+    let area = FilledArea::new(series.label.clone(), &column(0), &column(1), &column(2));
+    plot.add(area.id((index, "band")).fill_color(color.gamma_multiply(0.22)).allow_hover(false));
 }
 
 /// The parts of the view with the strength at which a series is drawn there.

@@ -1,48 +1,80 @@
-//! The page of fits: parameters, quality, remarks.
+//! The page of fits: parameters with their errors, the fits over all windows, the fits side by side.
+
+mod choice;
+mod compare;
+mod copy;
+mod failure;
+mod resample;
+mod windows;
 
 use crate::figure::{fit_label, fit_role, number};
 use crate::findings::{Findings, FitFindings};
 use crate::fit::{Fit, Parameter, ParameterUnit};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::{self, ButtonForm, Row, RowUi as _, command_button_as, line_sample};
-use crate::gui::state::State;
+use crate::gui::show::{self, ButtonForm, Row, RowUi as _, line_sample};
+use crate::gui::state::{FitsPart, State};
 use crate::units::{
     ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, PER_CM_PER_HARTREE, to_per_cm,
 };
 use eframe::egui;
 use egui::{Align2, Rect, Sense, Ui, WidgetInfo, pos2, vec2};
 
-pub(super) fn fits_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Command>) {
-    if findings.fits.is_empty() {
+pub(in crate::gui::panels) fn fits_ui(
+    ui: &mut Ui,
+    state: &State,
+    findings: &Findings,
+    out: &mut Vec<Command>,
+) {
+    if findings.curve.is_none() {
         show::note(ui, "No minimum, no fits: see the notices below the plot.");
         return;
     }
+    parts_ui(ui, state, out);
+    match state.view.fits_part {
+        FitsPart::Parameters => parameters_ui(ui, state, findings, out),
+        FitsPart::Windows => windows::windows_ui(ui, state, out),
+        FitsPart::Compare => compare::compare_ui(ui, findings),
+    }
+}
+
+/// The parts of the page, the one in front in the colour of links.
+fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    ui.horizontal(|ui| {
+        ui.spacing_mut().item_spacing.x = 16.0;
+        ui.spacing_mut().button_padding.x = 0.0;
+        for part in FitsPart::ALL {
+            let front = state.view.fits_part == part;
+            let form = if front { ButtonForm::Link } else { ButtonForm::Quiet };
+            show::command_button(ui, state, Command::ShowFitsPart(part), form, out);
+        }
+    });
+    ui.add_space(4.0);
+}
+
+fn parameters_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Command>) {
+    choice::choice_ui(ui, state, out);
+    show::rule(ui);
     for (i, fit) in findings.fits.iter().enumerate() {
         if i > 0 {
             show::rule(ui);
         }
-        fit_ui(ui, state, fit, out);
+        fit_ui(ui, state, (i, fit), out);
     }
+    show::rule(ui);
+    resample::resample_ui(ui, state, out);
+    show::rule(ui);
+    copy::copy_ui(ui, state, out);
 }
 
-fn fit_ui(ui: &mut Ui, state: &State, fit: &FitFindings, out: &mut Vec<Command>) {
+fn fit_ui(ui: &mut Ui, state: &State, (index, fit): (usize, &FitFindings), out: &mut Vec<Command>) {
     title_ui(ui, fit);
     match &fit.result {
-        Ok(result) => result_ui(ui, fit, result),
-        Err(error) => {
-            show::note(ui, &format!("No fit: {error}."));
-            if state.can(&Command::ResetWindow).is_ok() {
-                command_button_as(
-                    ui,
-                    state,
-                    "Take the default window",
-                    Command::ResetWindow,
-                    ButtonForm::Link,
-                    out,
-                );
-            }
+        Ok(result) => {
+            result_ui(ui, fit, result);
+            resample::errors_ui(ui, state, index, fit, result);
         }
+        Err(error) => failure::failure_ui(ui, state, index, error, out),
     }
 }
 
@@ -109,7 +141,14 @@ fn parameter_row(parameter: &Parameter) -> Row {
         || "No standard error is known.".to_owned(),
         |s| format!("Standard error: {}.", s.word()),
     );
-    let (factor, unit, decimals) = match parameter.unit {
+    let (factor, unit, decimals) = window_unit(parameter.unit);
+    let scaled = parameter.estimate.scaled(factor);
+    Row::new(symbol(&parameter.name), number::estimate(&scaled, decimals), unit).about(about)
+}
+
+/// Factor from atomic units, name and decimals of a parameter's unit in the window.
+fn window_unit(unit: ParameterUnit) -> (f64, &'static str, usize) {
+    match unit {
         ParameterUnit::TotalEnergy => (1.0, "Eₕ", 8),
         ParameterUnit::Wavenumber => (PER_CM_PER_HARTREE, "cm⁻¹", 1),
         ParameterUnit::Length => (ANGSTROM_PER_BOHR, "Å", 5),
@@ -124,9 +163,7 @@ fn parameter_row(parameter: &Parameter) -> Row {
             (PER_CM_PER_HARTREE / ANGSTROM_PER_BOHR.powi(n as i32), coefficient_unit(n), 0)
         }
         ParameterUnit::Dimensionless => (1.0, "", 5),
-    };
-    let scaled = parameter.estimate.scaled(factor);
-    Row::new(symbol(&parameter.name), number::estimate(&scaled, decimals), unit).about(about)
+    }
 }
 
 fn coefficient_unit(n: u32) -> &'static str {
