@@ -108,7 +108,7 @@ fn resampling_shows_its_progress_and_stops() {
         .renderer(CpuRenderer::default())
         .build_eframe(|cc| Shown(App::new(&cc.egui_ctx, Start { page: Page::Fits, ..Start::default() })));
     let deadline = Instant::now() + Duration::from_secs(300);
-    let mut wait = |window: &mut Window, ready: &dyn Fn(&Window) -> bool| {
+    let wait = |window: &mut Window, ready: &dyn Fn(&Window) -> bool| {
         while !ready(window) {
             assert!(Instant::now() < deadline, "nothing came");
             std::thread::sleep(Duration::from_millis(5));
@@ -116,6 +116,8 @@ fn resampling_shows_its_progress_and_stops() {
         }
     };
     wait(&mut window, &|w| state(w).study().is_some() && !state(w).is_stale());
+    // The panels settle before anything is pressed in them.
+    (0..4).for_each(|_| window.step());
     let ctx = window.ctx.clone();
     for command in [Command::SetRepeats(20_000), Command::Resample] {
         window.state_mut().0.give(command, &ctx);

@@ -6,7 +6,7 @@ use eframe::egui::Theme;
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
 use parabound::gui::densities::DensityView;
-use parabound::gui::state::{Page, Preset};
+use parabound::gui::state::{FitsPart, Page, Preset};
 use std::path::PathBuf;
 
 fn write(window: &mut Window, name: &str) {
@@ -62,6 +62,10 @@ fn every_page_is_shown_in_every_kind_of_window() {
         window.run();
         write(&mut window, &format!("{kind}_compare"));
         give(&mut window, &[Command::ShowComparison(false)]);
+        for part in FitsPart::ALL {
+            give(&mut window, &[Command::ShowPage(Page::Fits), Command::ShowFitsPart(part)]);
+            write(&mut window, &format!("{kind}_fits_{}", part.name().to_lowercase().replace(' ', "_")));
+        }
         let row = state(&window).study().expect("a study").findings.source.points[12].row;
         give(
             &mut window,

@@ -4,6 +4,7 @@ use super::right::fold_ui;
 use super::{asymptote, masses};
 use crate::digits;
 use crate::figure::{fit_label, fit_role};
+use crate::fit::Family;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{self, ButtonForm, command_button, elided, line_sample};
@@ -232,13 +233,15 @@ fn fits_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &mut Vec<Comman
 }
 
 fn degree_ui(ui: &mut Ui, settings: &Settings, out: &mut Vec<Command>) {
-    let Some(degree) = settings.fits.requests.iter().find_map(|r| r.degree) else { return };
+    // Of the polynomials; other families have an order of their own, on the page of fits.
+    let polynomial = settings.fits.requests.iter().find(|r| r.family == Family::Polynomial);
+    let Some(degree) = polynomial.and_then(|r| r.degree) else { return };
     let look = Look::of(ui);
     ui.horizontal(|ui| {
         ui.add_space(34.0 - ui.spacing().item_spacing.x);
         let label = ui.label(RichText::new("degree").font(look::plain(look::SECONDARY)).color(look.dim));
         let mut value = degree;
-        let response = ui.add(DragValue::new(&mut value).range(2..=8).speed(0.03)).labelled_by(label.id);
+        let response = ui.add(DragValue::new(&mut value).range(2..=12).speed(0.03)).labelled_by(label.id);
         if response.changed() {
             out.push(Command::SetDegree(value));
         }

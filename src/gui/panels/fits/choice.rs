@@ -56,7 +56,7 @@ fn added(family: Family) -> FitRequest {
 /// Degree and variable, order and power.
 fn details_ui(ui: &mut Ui, requests: &[FitRequest], at: usize, out: &mut Vec<Command>) {
     let mut request = requests[at];
-    let mut number = |ui: &mut Ui, value: &mut Option<u32>, range, name: &str| {
+    let number = |ui: &mut Ui, value: &mut Option<u32>, range, name: &str| {
         let Some(value) = value else { return };
         let response = ui.add(DragValue::new(value).range(range).speed(0.05).prefix(format!("{name} ")));
         response.on_hover_text(format!("The {name} of this function."));

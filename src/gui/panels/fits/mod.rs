@@ -54,6 +54,8 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 
 fn parameters_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Command>) {
     choice::choice_ui(ui, state, out);
+    // Above the parameters: its bar and its stop button are not to be looked for.
+    resample::resample_ui(ui, state, out);
     show::rule(ui);
     for (i, fit) in findings.fits.iter().enumerate() {
         if i > 0 {
@@ -61,8 +63,6 @@ fn parameters_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<
         }
         fit_ui(ui, state, (i, fit), out);
     }
-    show::rule(ui);
-    resample::resample_ui(ui, state, out);
     show::rule(ui);
     copy::copy_ui(ui, state, out);
 }

@@ -12,7 +12,7 @@ use egui::{DragValue, ProgressBar, RichText, Ui, WidgetInfo};
 use std::sync::Arc;
 
 pub(super) fn resample_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
-    show::heading(ui, "Errors by resampling", "");
+    ui.add_space(4.0);
     let look = Look::of(ui);
     if let Resampling::Running(progress) = &state.resampling {
         let (done, all) = progress.steps();
@@ -40,11 +40,7 @@ pub(super) fn resample_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         ui.label(RichText::new("times").font(look::plain(look::SECONDARY)).color(look.dim));
     });
     match &state.resampling {
-        Resampling::None => show::note(
-            ui,
-            "The residuals of each fit are drawn anew, added to it and fitted again; the spread of the results is \
-             their standard error.",
-        ),
+        Resampling::None => {}
         Resampling::Stopped => show::note(ui, "Stopped; nothing was kept."),
         Resampling::Failed(text) => show::note(ui, text),
         Resampling::Done(findings, _) => {
