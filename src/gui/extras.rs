@@ -116,11 +116,7 @@ impl Extras {
         let job = move |job: &ResamplingJob, _: &Ticket| resample(job, &wake_steps);
         let windows = |findings: &Arc<Findings>, _: &Ticket| windows_of(findings);
         if inline {
-            return Self {
-                windows: Worker::inline(windows),
-                asked: None,
-                resampling: Worker::inline(job),
-            };
+            return Self { windows: Worker::inline(windows), asked: None, resampling: Worker::inline(job) };
         }
         Self {
             windows: Worker::spawn(wake_windows, windows),
