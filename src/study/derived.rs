@@ -130,13 +130,20 @@ fn expectation_gradients(model: &Model, r_bohr: &[f64], densities: &[Vec<f64>]) 
 /// Takes the bond lengths of a mesh and the gradient of V by each parameter there.
 type Seen<'a> = dyn FnMut(&[f64], &[Vec<f64>]) + 'a;
 
+/// The function counted from its own minimum, as the radial problem wants it: beside a total energy the digits of the
+/// levels would be lost.
+pub(super) fn from_own_minimum(model: &Model) -> Model {
+    let mut above = model.clone();
+    above.shift_energy_hartree(-model.energy_hartree(model.minimum_bohr()));
+    above
+}
+
 /// Levels in cm⁻¹; closed form where there is one, else solved, and then `seen` gets the mesh and w ψ² of each level.
 fn solve(model: &Model, mass_me: f64, rungs: usize, seen: &mut Seen<'_>) -> Vec<f64> {
     if let Some(levels) = model.closed_form_levels_hartree(mass_me, rungs) {
         return levels.into_iter().map(to_per_cm).collect();
     }
-    let mut above = model.clone();
-    above.shift_energy_hartree(-model.energy_hartree(model.minimum_bohr()));
+    let above = from_own_minimum(model);
     let request = RadialRequest {
         reduced_mass_me: mass_me,
         rotation_x: 0.0,

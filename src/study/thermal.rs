@@ -1,5 +1,6 @@
 //! Thermal averages of a study: over the levels found, and over E(v, J) when rotation is asked for.
 
+use super::derived::from_own_minimum;
 use crate::findings::Findings;
 use crate::fit::Family;
 use crate::notice::{Code, Notice};
@@ -52,9 +53,9 @@ fn morse_positions(findings: &Findings) -> Option<Vec<Position>> {
         relative_accuracy: findings.settings.levels.relative_accuracy,
         highest_v: Some(populated.clamp(1, MORSE_LEVELS) - 1),
     };
-    let r_e = fit.model.minimum_bohr();
-    let solution = radial::solve(&fit.model, &request).ok()?;
-    let seen = solution.observables(&fit.model, r_e, fit.model.energy_hartree(r_e));
+    let above = from_own_minimum(&fit.model);
+    let solution = radial::solve(&above, &request).ok()?;
+    let seen = solution.observables(&above, above.minimum_bohr(), 0.0);
     let position = |o: radial::Observables| Position {
         mean_r_bohr: o.mean_r_bohr,
         mean_square_x_bohr2: o.mean_square_x_bohr2,
@@ -124,7 +125,7 @@ fn rotate(
     let rigid = rotational_constant_per_cm(curve.local.r_e_bohr, masses.reduced_mass_me);
     let of_morse = findings.fit_of(Family::Morse).and_then(|fit| {
         rotating_levels(
-            &fit.model,
+            &from_own_minimum(&fit.model),
             masses.reduced_mass_me,
             HIGHEST_IN_KT * BOLTZMANN_PER_CM_PER_KELVIN * highest_kelvin,
             highest_v.min(MORSE_LEVELS),
