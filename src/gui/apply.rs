@@ -154,7 +154,7 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
             let latex = command == Command::CopyParametersLatex;
             if let Some(text) = parameters_text(state, latex) {
                 let kind = if latex { "LaTeX" } else { "text" };
-                state.view.message = Some(Message::told(&format!("Parameters copied as {kind}.")));
+                state.view.message = Some(Message::told(format!("Parameters copied as {kind}.")));
                 return vec![Effect::Copy(text)];
             }
         }
