@@ -67,7 +67,7 @@ fn short(hartree: Option<f64>) -> String {
         let raised: String = format!("{power:.0}").chars().map(superscript).collect();
         return format!("{}·10{raised}", crate::digits::fixed(value / 10f64.powf(power), 0));
     }
-    crate::digits::rounded(value, 3)
+    crate::digits::rounded(value, if value.abs() < 0.01 { 2 } else { 3 })
 }
 
 const fn superscript(c: char) -> char {
