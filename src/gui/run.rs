@@ -42,6 +42,10 @@ fn start_of(arguments: &WindowArgs) -> Result<(Start, Option<egui::Theme>), (u8,
     };
     arguments.choices.apply(&mut settings);
     let usage = |message: String| (WRONG_USAGE, message);
+    if settings.read.lines.is_some() {
+        let text = "text logs by patterns are read by parabound study, not by the window";
+        return Err(usage(text.to_owned()));
+    }
     let page = arguments.page.as_deref().map_or(Ok(Page::default()), page_of).map_err(usage)?;
     let theme = arguments.theme.as_deref().map(theme_of).transpose().map_err(usage)?;
     let start = Start { files: arguments.files.clone(), settings, page, ..Start::default() };
@@ -134,6 +138,13 @@ fn paint(path: &Path, start: Start, theme: Option<egui::Theme>, arguments: &Wind
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn patterns_of_text_logs_are_not_dropped_in_silence() {
+        let mut arguments = WindowArgs::default();
+        arguments.choices.length_pattern = Some("R = (\\S+)".to_owned());
+        assert!(start_of(&arguments).is_err_and(|(status, text)| status == 2 && text.contains("study")));
+    }
 
     #[test]
     fn words_of_the_command_line() {

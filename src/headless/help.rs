@@ -33,9 +33,9 @@ READING
   --bond A,B                 the atoms whose distance is the bond length, numbered from 1, in files of
                              Cartesian coordinates with more than two atoms
 
-  --length-pattern REGEX     with these two the files are text logs of one scan, one point each: regular
-  --energy-pattern REGEX     expressions tried line by line, the number being what their first group catches;
-                             the bond length may stand in the file name; a folder stands for its files.
+  --length-pattern REGEX     with these two (study, figure) the files are text logs of one scan, one point
+  --energy-pattern REGEX     each: regular expressions tried line by line, the number being what their first
+                             group catches; the bond length may stand in the file name; a folder stands for its files.
                              Units are given by --length-unit and --energy-unit
   --match first|last         which match in a log counts (default last)
   --make 'NAME = RECIPE'     a curve made from energy columns; may be repeated. A recipe is a sum of columns,

@@ -211,8 +211,12 @@ pub fn study_observed(scan: &Scan, settings: &Settings, observer: &Observer) -> 
     }
     let curve = findings.curve.clone();
     next_points::fill(&mut findings, curve.as_deref());
-    // The gravest first; within one severity the order of the steps is kept.
-    // Where the atoms were read is what least needs to be looked at.
+    // Atoms that were chosen come from no comment.
+    if settings.masses.atoms.is_some() || settings.masses.reduced_mass_u.is_some() {
+        findings.notices.retain(|n| n.code != Code::AtomsFromComment);
+    }
+    // The gravest first; within one severity the order of the steps is kept. Where the atoms were read is what least
+    // needs to be looked at.
     findings.notices.sort_by_key(|n| (std::cmp::Reverse(n.severity), n.code == Code::AtomsFromComment));
     Ok(findings)
 }

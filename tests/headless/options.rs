@@ -321,3 +321,17 @@ fn constants_that_a_degree_cannot_know_are_null() {
         assert_eq!([known(fit, "omega_e_x_e"), known(fit, "alpha_e")], expected, "fit {fit}");
     }
 }
+
+#[test]
+fn atoms_that_were_chosen_come_from_no_comment() {
+    let path = scan("hcl_messy.txt");
+    let of = |more: &[&str]| {
+        let mut list = vec![path.to_str().expect("UTF-8")];
+        list.extend_from_slice(more);
+        text(&study(&list).stdout)
+    };
+    assert!(of(&[]).contains("are taken from the words"));
+    assert!(!of(&["--atoms", "2H,35Cl"]).contains("are taken from the words"));
+    // Words that go on in the next line of the source have one blank between them.
+    assert!(!of(&[]).lines().any(|l| l.starts_with("caution") && l.contains("  ")), "{}", of(&[]));
+}

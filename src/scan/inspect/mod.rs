@@ -106,7 +106,8 @@ fn chance(share: f64) -> String {
 
 fn off_curve(point: &OffPoint, r: &[f64]) -> Notice {
     let text = format!(
-        "The point at {:.4} angstrom lies about {} cm-1 {} the smooth curve through its neighbours. Scatter like          that of the other points would put one so far off {}. It is used; set it aside or compute it again.",
+        "The point at {:.4} angstrom lies about {} cm-1 {} the smooth curve through its neighbours. Scatter like \
+         that of the other points would put one so far off {}. It is used; set it aside or compute it again.",
         to_angstrom(r[point.index]),
         rounded(to_per_cm(point.deviation_hartree.abs()), 2),
         if point.deviation_hartree < 0.0 { "below" } else { "above" },
