@@ -395,6 +395,8 @@ impl Command {
         match self {
             Self::Open => "Read a scan from a file. Files can also be dropped on the window.",
             Self::Export(product) => product.about(),
+            Self::Undo => "Take the latest change back.",
+            Self::Redo => "Do the change again that was taken back.",
             Self::SaveStudy => "Save scans, settings and view, to go on another time.",
             Self::SaveStudyAs => "Save scans, settings and view to another file.",
             Self::SaveStudyTo { .. } => "Save over the file that is there.",
