@@ -15,11 +15,11 @@ const ROW: f32 = 22.0;
 
 /// Right edges of the columns as fractions of the width, with their headings.
 const COLUMNS: [Column; 5] = [
-    Column { right: 0.085, name: "v", unit: "", about: "Vibrational quantum number." },
-    Column { right: 0.33, name: "E − Vₑ", unit: "cm⁻¹", about: "Energy above the minimum." },
-    Column { right: 0.57, name: "E − harmonic", unit: "cm⁻¹", about: "E − Vₑ − ωₑ(v + ½)." },
+    Column { right: 0.075, name: "v", unit: "", about: "Vibrational quantum number." },
+    Column { right: 0.41, name: "E − Vₑ", unit: "cm⁻¹", about: "Energy above the minimum." },
+    Column { right: 0.63, name: "− harmonic", unit: "cm⁻¹", about: "E − Vₑ − ωₑ(v + ½)." },
     Column {
-        right: 0.77, name: "Bᵥ", unit: "cm⁻¹", about: "Rotational constant ℏ²⟨r⁻²⟩/(2μ)."
+        right: 0.82, name: "Bᵥ", unit: "cm⁻¹", about: "Rotational constant ℏ²⟨r⁻²⟩/(2μ)."
     },
     Column {
         right: 1.0,
@@ -86,8 +86,11 @@ fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Resp
     let cells = [
         level.v.to_string(),
         energy.clone(),
-        number::signed(level.minus_harmonic_per_cm, 2),
-        number::fixed(level.b_v_per_cm, 4),
+        number::signed(
+            level.minus_harmonic_per_cm,
+            if level.minus_harmonic_per_cm.abs() < 1e3 { 2 } else { 1 },
+        ),
+        number::fixed(level.b_v_per_cm, if level.b_v_per_cm < 10.0 { 4 } else { 3 }),
         level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1)),
     ];
     for (i, (cell, column)) in cells.iter().zip(&COLUMNS).enumerate() {

@@ -49,9 +49,14 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 /// The row of tabs; the one in front is underlined.
 fn tabs_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let look = Look::of(ui);
+    let folds = state.view.panels.right == Some(true) || ui.ctx().content_rect().width() < 1200.0;
     let row = ui.horizontal(|ui| {
         // The last tab keeps off the word that folds the panel.
-        ui.spacing_mut().item_spacing.x = if ui.available_width() < 340.0 { 6.0 } else { 17.0 };
+        ui.spacing_mut().item_spacing.x = match (ui.available_width() < 340.0, folds) {
+            (true, true) => 6.0,
+            (true, false) => 11.0,
+            (false, _) => 17.0,
+        };
         for page in Page::ALL {
             let front = state.view.page == page;
             let (font, color) = if front {
@@ -74,7 +79,7 @@ fn tabs_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
                 out.push(Command::ShowPage(page));
             }
         }
-        if state.view.panels.right == Some(true) || ui.ctx().content_rect().width() < 1200.0 {
+        if folds {
             fold_ui(ui, Command::ShowRight(false), out);
         }
     });
