@@ -1,6 +1,7 @@
 //! The sections of a findings file that levels lead to: rotation, tails, isotopes, properties, Y_kl.
 
-use super::json::{angstrom, estimated, masses, quantity};
+use super::json::masses;
+use super::numbers::{angstrom, estimated, number, quantity};
 use crate::findings::{Findings, Isotopologue, LevelSupport, PropertyAverages, QuasiBoundLevel};
 use crate::spectroscopy::{BirgeSponer, DunhamCoefficient, DunhamTable, NearDissociation};
 use serde_json::{Map, Value, json};
@@ -46,7 +47,7 @@ fn averages(averages: &PropertyAverages) -> Value {
         "column": averages.column,
         "unit": averages.unit,
         "levels": averages.levels.iter()
-            .map(|a| json!({"v": a.v, "j": a.j, "value": a.value, "outside": a.outside}))
+            .map(|a| json!({"v": a.v, "j": a.j, "value": number(a.value), "outside": number(a.outside)}))
             .collect::<Vec<_>>(),
     })
 }
@@ -112,9 +113,9 @@ fn birge_sponer(line: &BirgeSponer, findings: &Findings) -> Value {
 fn near_dissociation(law: &NearDissociation) -> Value {
     json!({
         "n": law.n,
-        "exponent": law.exponent,
-        "slope": law.slope,
-        "v_at_limit": law.v_at_limit,
-        "levels": law.levels.iter().map(|(v, y)| json!({"v": v, "value": y})).collect::<Vec<_>>(),
+        "exponent": number(law.exponent),
+        "slope": number(law.slope),
+        "v_at_limit": number(law.v_at_limit),
+        "levels": law.levels.iter().map(|(v, y)| json!({"v": v, "value": number(*y)})).collect::<Vec<_>>(),
     })
 }

@@ -7,6 +7,7 @@
 mod fits;
 mod windows;
 
+use super::numbers::{angstrom, estimated, null_what_was_lost, number, numbers, quantity};
 use crate::estimate::Estimate;
 use crate::findings::{Findings, NextPoint, Point};
 use crate::fit::ParameterUnit;
@@ -82,7 +83,7 @@ pub fn findings_to_value(findings: &Findings) -> Value {
         map.append(&mut super::extras::sections(findings));
         map.extend(notices.map(|list| ("notices".to_owned(), list)));
     }
-    let lost = null_quantities_that_lost_a_number(&mut value);
+    let lost = null_what_was_lost(&mut value);
     if !lost.is_empty()
         && let Some(Value::Array(notices)) = value.get_mut("notices")
     {
@@ -92,56 +93,8 @@ pub fn findings_to_value(findings: &Findings) -> Value {
     value
 }
 
-/// A quantity whose value is not finite has become `{"value": null, ...}`; the format wants the whole
-/// quantity to be null and a notice to say where. Returns the paths.
-fn null_quantities_that_lost_a_number(value: &mut Value) -> Vec<String> {
-    fn walk(value: &mut Value, path: &str, lost: &mut Vec<String>) {
-        match value {
-            Value::Object(map) => {
-                let is_quantity = map.contains_key("unit") && map.contains_key("std_error");
-                if is_quantity && map.get("value").is_some_and(Value::is_null) {
-                    lost.push(path.to_owned());
-                    *value = Value::Null;
-                    return;
-                }
-                for (key, inner) in map.iter_mut().filter(|(key, _)| *key != "settings") {
-                    walk(inner, &format!("{path}/{key}"), lost);
-                }
-            }
-            Value::Array(list) => {
-                for (i, inner) in list.iter_mut().enumerate() {
-                    walk(inner, &format!("{path}/{i}"), lost);
-                }
-            }
-            _ => {}
-        }
-    }
-    let mut lost = Vec::new();
-    walk(value, "", &mut lost);
-    lost
-}
-
-pub(super) fn quantity(value: f64, unit: &str) -> Value {
-    json!({"value": value, "unit": unit, "std_error": null})
-}
-
-/// `estimate` times `factor` in `unit`; carries `method` where the source of the error is known.
-pub(super) fn estimated(estimate: Estimate, factor: f64, unit: &str) -> Value {
-    let e = estimate.scaled(factor);
-    match e.source {
-        Some(source) => {
-            json!({"value": e.value, "unit": unit, "std_error": e.std_error, "method": source.word()})
-        }
-        None => json!({"value": e.value, "unit": unit, "std_error": e.std_error}),
-    }
-}
-
 fn per_cm(estimate: Option<Estimate>) -> Value {
     estimate.map_or(Value::Null, |e| estimated(e, 1.0, "cm-1"))
-}
-
-pub(super) fn angstrom(r_bohr: f64) -> Value {
-    quantity(to_angstrom(r_bohr), "angstrom")
 }
 
 fn next_point(next: &NextPoint) -> Value {
@@ -150,10 +103,10 @@ fn next_point(next: &NextPoint) -> Value {
 
 fn point(point: &Point) -> Value {
     json!({
-        "r": to_angstrom(point.r_bohr),
-        "energy": point.energy_hartree,
+        "r": number(to_angstrom(point.r_bohr)),
+        "energy": number(point.energy_hartree),
         "used": point.used,
-        "weight": point.weight,
+        "weight": number(point.weight),
         "why_not": point.why_not, "note": point.note,
     })
 }
@@ -277,9 +230,9 @@ fn level(level: &Level) -> Value {
         },
         "mean_r": angstrom(level.mean_r_bohr),
         "mean_square_x": quantity(level.mean_square_x_bohr2 * ANGSTROM_PER_BOHR * ANGSTROM_PER_BOHR, "angstrom^2"),
-        "forbidden_probability": level.forbidden_probability,
-        "inside_reach": level.inside_reach,
-        "outside_scan": level.outside_scan,
+        "forbidden_probability": number(level.forbidden_probability),
+        "inside_reach": number(level.inside_reach),
+        "outside_scan": number(level.outside_scan),
         "leans_on_tail": level.leans_on_tail,
         "minus_harmonic": quantity(level.minus_harmonic_per_cm, "cm-1"),
         "minus_morse": level.minus_morse_per_cm.map(|d| quantity(d, "cm-1")),
@@ -345,7 +298,7 @@ fn level_reach(reach: Option<LevelReach>) -> Value {
 fn reach(reach: &Reach) -> Value {
     let kelvin = |t: Option<f64>| t.map(|t| quantity(t, "K"));
     json!({
-        "tolerance": reach.tolerance,
+        "tolerance": number(reach.tolerance),
         "energy": interval(&reach.energy),
         "force": interval(&reach.force),
         "absolute": {
@@ -366,7 +319,7 @@ fn reach(reach: &Reach) -> Value {
 
 fn averages(averages: &Averages) -> Value {
     json!({
-        "partition_function": averages.partition_function,
+        "partition_function": number(averages.partition_function),
         "mean_energy": quantity(averages.mean_energy_kilojoule_per_mole(), "kJ/mol"),
         "heat_capacity": quantity(averages.heat_capacity_joule_per_mole_kelvin(), "J/(mol K)"),
         "entropy": quantity(averages.entropy_joule_per_mole_kelvin(), "J/(mol K)"),
@@ -408,7 +361,7 @@ fn thermal_point(point: &ThermalPoint) -> Value {
         "mean_square_x": square(point.mean_square_x_bohr2),
         "harmonic": harmonic,
         "morse": morse,
-        "populations": point.populations,
+        "populations": numbers(&point.populations),
         "rovibrational": rovibrational,
         "ideal_gas": ideal_gas,
         "converged": point.converged,
@@ -421,6 +374,6 @@ fn notice(notice: &Notice) -> Value {
         "severity": notice.severity.word(),
         "code": notice.code.name(),
         "text": notice.text,
-        "at": if at.is_empty() { Value::Null } else { json!(at) },
+        "at": if at.is_empty() { Value::Null } else { numbers(&at) },
     })
 }

@@ -5,6 +5,7 @@ pub mod compare;
 mod densities;
 mod extras;
 pub mod json;
+mod numbers;
 pub mod parameters;
 pub mod recheck;
 pub mod table;

@@ -1,6 +1,7 @@
 //! The fits of a findings file: each fit, and the fits side by side.
 
-use super::{estimated, interval, parameter_unit, per_cm, quantity};
+use super::super::numbers::{estimated, number, numbers, quantity};
+use super::{interval, parameter_unit, per_cm};
 use crate::estimate::{ErrorSource, Estimate};
 use crate::findings::{FitBootstrap, FitFindings};
 use crate::fit::{Comparison, Fit, Parameter, Window};
@@ -22,11 +23,11 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
     let (mut value, rest) = match &findings.result {
         Ok(fit) => {
             let factors: Vec<f64> = fit.parameters.iter().map(|p| parameter_unit(p.unit).1).collect();
-            let covariance: Vec<Vec<f64>> = fit
+            let covariance: Vec<Value> = fit
                 .covariance
                 .iter()
                 .zip(&factors)
-                .map(|(row, fi)| row.iter().zip(&factors).map(|(c, fj)| c * fi * fj).collect())
+                .map(|(row, fi)| row.iter().zip(&factors).map(|(c, fj)| number(c * fi * fj)).collect())
                 .collect();
             let rest = json!({
                 "window": window_json(fit.window, fit.points),
@@ -34,10 +35,10 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
                 "failure": null,
                 "parameters": fit.parameters.iter().map(parameter).collect::<Vec<_>>(),
                 "covariance": covariance,
-                "correlations": fit.correlations(),
+                "correlations": fit.correlations().iter().map(numbers).collect::<Vec<_>>(),
                 "rms_residual": quantity(to_per_cm(fit.rms_residual_hartree), "cm-1"),
                 "largest_residual": quantity(to_per_cm(fit.largest_residual_hartree), "cm-1"),
-                "aicc": fit.aicc,
+                "aicc": number(fit.aicc),
                 "leave_one_out_rms":
                     fit.leave_one_out_rms_hartree.map(|e| quantity(to_per_cm(e), "cm-1")),
                 "constants": constants,
@@ -66,7 +67,7 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
 /// Where the fit stands for the curve.
 fn reach(reach: &FitReach) -> Value {
     json!({
-        "tolerance": reach.tolerance,
+        "tolerance": number(reach.tolerance),
         "absolute_tolerance": quantity(to_per_cm(reach.absolute_hartree), "cm-1"),
         "energy": reach.interval.as_ref().map(interval),
     })
@@ -139,9 +140,9 @@ pub(super) fn comparison(comparison: &Comparison) -> Value {
             "parameters": c.parameters,
             "rms_residual": energy(Some(c.rms_residual_hartree)),
             "largest_residual": energy(Some(c.largest_residual_hartree)),
-            "aicc": c.aicc,
-            "aicc_difference": c.aicc_difference,
-            "akaike_weight": c.akaike_weight,
+            "aicc": number(c.aicc),
+            "aicc_difference": number(c.aicc_difference),
+            "akaike_weight": number(c.akaike_weight),
             "leave_one_out_rms": energy(c.leave_one_out_rms_hartree),
             "outside_rms": energy(c.outside_rms_hartree),
             "outside_points": c.outside_points,

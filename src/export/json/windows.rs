@@ -1,11 +1,9 @@
 //! The window study of a findings file.
 
-use super::{estimated, quantity};
+use super::super::numbers::{angstrom, estimated, number, quantity};
 use crate::estimate::Estimate;
 use crate::fit::window_study::{Plateau, WindowFit, WindowStudy};
-use crate::units::{
-    ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_angstrom, to_per_cm,
-};
+use crate::units::{ANGSTROM_PER_BOHR, LengthUnit, NEWTON_PER_METRE_PER_HARTREE_PER_BOHR2, to_per_cm};
 use serde_json::{Value, json};
 
 /// Models, fits, plateaus and the proposal.
@@ -22,10 +20,6 @@ pub(super) fn window_study(study: &WindowStudy) -> Value {
     })
 }
 
-fn length(r_bohr: f64) -> Value {
-    quantity(to_angstrom(r_bohr), "angstrom")
-}
-
 fn fit(fit: &WindowFit) -> Value {
     let edge = |value: f64| quantity(fit.window.unit.convert(value, LengthUnit::Angstrom), "angstrom");
     let numbers = fit.numbers.as_ref().ok();
@@ -35,7 +29,7 @@ fn fit(fit: &WindowFit) -> Value {
     json!({
         "model": fit.model,
         "window": {"from": edge(fit.window.from), "to": edge(fit.window.to), "points": fit.points},
-        "half_width": length(fit.half_width_bohr()),
+        "half_width": angstrom(fit.half_width_bohr()),
         "symmetric": fit.symmetric,
         "converged": numbers.is_some(),
         "failure": fit.numbers.as_ref().err().map(ToString::to_string),
@@ -48,17 +42,17 @@ fn fit(fit: &WindowFit) -> Value {
         "omega_e": of(numbers.and_then(|n| n.omega_e_per_cm), 1.0, "cm-1"),
         "omega_e_x_e": of(numbers.and_then(|n| n.omega_e_x_e_per_cm), 1.0, "cm-1"),
         "rms_residual": numbers.map(|n| quantity(to_per_cm(n.rms_residual_hartree), "cm-1")),
-        "aicc": numbers.and_then(|n| n.aicc),
+        "aicc": number(numbers.and_then(|n| n.aicc)),
     })
 }
 
 fn plateau(plateau: &Plateau) -> Value {
     json!({
         "model": plateau.model,
-        "from_half_width": length(plateau.from_half_width_bohr),
-        "to_half_width": length(plateau.to_half_width_bohr),
+        "from_half_width": angstrom(plateau.from_half_width_bohr),
+        "to_half_width": angstrom(plateau.to_half_width_bohr),
         "windows": plateau.windows,
-        "spread": plateau.spread,
+        "spread": number(plateau.spread),
         "middle": plateau.middle,
     })
 }
