@@ -3,10 +3,11 @@
 use crate::density::Densities;
 use crate::estimate::Estimate;
 use crate::fit::{
-    BootstrapSettings, Comparison, Fit, FitError, FitRequest, Window, WindowStudy, default_window,
+    BootstrapSettings, Comparison, Family, Fit, FitError, FitRequest, Window, WindowStudy, default_window,
 };
 use crate::notice::{Notice, Severity};
 use crate::potential::curve::ScanCurve;
+use crate::potential::{Model, Morse};
 use crate::radial::Level;
 use crate::reach::{FitReach, Reach};
 use crate::scan::Layout;
@@ -265,8 +266,7 @@ impl Findings {
     /// What thermal averages are made from; none without levels.
     pub fn thermal_input(&self) -> Option<crate::thermal::ThermalInput<'_>> {
         let (curve, masses) = (self.curve.as_ref()?, self.masses.as_ref()?);
-        let morse =
-            self.fits.iter().find(|f| f.request.family == crate::fit::Family::Morse && f.result.is_ok());
+        let morse = self.found_fit(Family::Morse);
         (!self.levels.is_empty()).then_some(crate::thermal::ThermalInput {
             levels: &self.levels,
             force_constant_hartree_per_bohr2: curve.local.second_hartree,
@@ -292,8 +292,16 @@ impl Findings {
         thermal_density(&self.levels, self.curve.as_ref()?.local.r_e_bohr, spring, kelvin)
     }
 
-    /// The fit of a family that succeeded, where there is one.
-    pub fn fit_of(&self, family: crate::fit::Family) -> Option<&Fit> {
-        self.fits.iter().find(|f| f.request.family == family).and_then(|f| f.result.as_ref().ok())
+    /// The first fit of a family that succeeded, with what follows from it.
+    pub fn found_fit(&self, family: Family) -> Option<&FitFindings> {
+        self.fits.iter().find(|f| f.request.family == family && f.result.is_ok())
+    }
+
+    /// The Morse function of the first Morse fit that succeeded.
+    pub fn morse(&self) -> Option<Morse> {
+        match self.found_fit(Family::Morse)?.result.as_ref().ok()?.model {
+            Model::Morse(morse) => Some(morse),
+            _ => None,
+        }
     }
 }

@@ -40,6 +40,7 @@ pub mod reach;
 pub mod report;
 pub mod scan;
 pub mod settings;
+pub mod special;
 pub mod species;
 pub mod spectroscopy;
 pub mod study;

@@ -6,8 +6,8 @@ use std::f64::consts::{FRAC_PI_2, PI};
 
 /// Points between the turning points at which barriers above the energy are looked for.
 const LOOK: usize = 200;
-/// Panels over an allowed region, each with two Gauss points.
-const PANELS: usize = 200;
+/// Panels over an allowed region, each with three Gauss points.
+const PANELS: usize = 40;
 
 /// The density proportional to 1/sqrt(E − V) wherever E > V, normalised.
 ///
@@ -30,14 +30,24 @@ struct Region {
     half: f64,
     /// ∫ dr/sqrt(E − V) up to the start of each panel, from the start of the first region; one more than panels.
     running: Vec<f64>,
-    /// Slope of the integrand (linear through its two Gauss values) over each panel, per panel squared.
-    slopes: Vec<f64>,
+    /// The integrand over each panel, times its width: c0 + c1 u + c2 u² through its Gauss values, u from −½ to ½.
+    panels: Vec<[f64; 3]>,
 }
 
 impl<'a, P: Potential + ?Sized> ClassicalDensity<'a, P> {
     /// Of `energy_hartree` (on the potential's zero) between the outermost turning points; none where nothing is
     /// allowed.
-    pub fn new(potential: &'a P, energy_hartree: f64, (inner, outer): (f64, f64)) -> Option<Self> {
+    pub fn new(potential: &'a P, energy_hartree: f64, turning_points_bohr: (f64, f64)) -> Option<Self> {
+        Self::with_barriers(potential, energy_hartree, turning_points_bohr, true)
+    }
+
+    /// The same; `barriers`: whether to look for barriers between the turning points, which is half of the work.
+    pub fn with_barriers(
+        potential: &'a P,
+        energy_hartree: f64,
+        (inner, outer): (f64, f64),
+        barriers: bool,
+    ) -> Option<Self> {
         let fine = inner.is_finite() && outer.is_finite() && outer > inner && energy_hartree.is_finite();
         if !fine {
             return None;
@@ -45,7 +55,8 @@ impl<'a, P: Potential + ?Sized> ClassicalDensity<'a, P> {
         let kinetic = |r: f64| energy_hartree - potential.energy_hartree(r);
         let mut total = 0.0;
         let mut regions = Vec::new();
-        for (a, b) in allowed(&kinetic, inner, outer) {
+        let allowed = if barriers { allowed(&kinetic, inner, outer) } else { vec![(inner, outer)] };
+        for (a, b) in allowed {
             let region = Region::new(&kinetic, (a, b), total);
             total = *region.running.last()?;
             regions.push(region);
@@ -97,18 +108,19 @@ impl Region {
             if energy > 0.0 { half * cosine / energy.sqrt() } else { 0.0 }
         };
         let width = PI / PANELS as f64;
-        let gauss = 0.5 / 3_f64.sqrt();
+        let gauss = 0.5 * 0.6_f64.sqrt();
         let mut running = vec![before];
-        let mut slopes = Vec::with_capacity(PANELS);
+        let mut panels = Vec::with_capacity(PANELS);
         let mut sum = before;
         for panel in 0..PANELS {
             let centre = -FRAC_PI_2 + (panel as f64 + 0.5) * width;
-            let (low, high) = (integrand(centre - gauss * width), integrand(centre + gauss * width));
-            sum += 0.5 * width * (low + high);
+            let [low, mid, high] = [-gauss, 0.0, gauss].map(|at| width * integrand(centre + at * width));
+            sum += (5.0 * (low + high) + 8.0 * mid) / 18.0;
             running.push(sum);
-            slopes.push(width * (high - low) / (2.0 * gauss));
+            let bend = (low + high - 2.0 * mid) / (2.0 * gauss * gauss);
+            panels.push([mid, (high - low) / (2.0 * gauss), bend]);
         }
-        Self { middle, half, running, slopes }
+        Self { middle, half, running, panels }
     }
 
     /// ∫ dr/sqrt(E − V) up to `r`.
@@ -116,10 +128,10 @@ impl Region {
         let theta = ((r - self.middle) / self.half).clamp(-1.0, 1.0).asin();
         let place = (theta + FRAC_PI_2) / PI * PANELS as f64;
         let panel = (place.max(0.0) as usize).min(PANELS - 1);
-        let t = place - panel as f64;
-        let whole = self.running[panel + 1] - self.running[panel];
-        // The integrand is its mean plus slope (t − ½) over the panel.
-        self.running[panel] + whole * t + 0.5 * self.slopes[panel] * t * (t - 1.0)
+        let u = place - panel as f64 - 0.5;
+        let [mid, slope, bend] = self.panels[panel];
+        let rest = mid * (u + 0.5) + 0.5 * slope * (u * u - 0.25) + bend / 3.0 * (u * u * u + 0.125);
+        self.running[panel] + rest
     }
 }
 

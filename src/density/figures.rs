@@ -33,19 +33,20 @@ pub struct DensityFigures {
 /// The figures of a level without rotation; those of a Morse fit are left to the caller.
 ///
 /// `potential` counts from V_e; `reach_bohr`: the ends of the energy reach as bond lengths; `amplitude_bohr`:
-/// sqrt(ħ/(μ ω)); `width_bohr`: the averaging width.
+/// sqrt(ħ/(μ ω)); `width_bohr`: the averaging width; `barriers`: see [`ClassicalDensity::with_barriers`].
 pub fn density_figures<P: Potential + ?Sized>(
     potential: &P,
     level: &Level,
     reach_bohr: Option<(f64, f64)>,
     amplitude_bohr: Option<f64>,
     width_bohr: Option<f64>,
+    barriers: bool,
 ) -> DensityFigures {
     let quantum = QuantumDensity::new(&level.wavefunction);
     let harmonic = amplitude_bohr.and_then(|a| HarmonicDensity::new(level.v, potential.minimum_bohr(), a));
     let turning = (level.inner_turning_point_bohr, level.outer_turning_point_bohr);
     let energy = level.energy_per_cm / crate::units::PER_CM_PER_HARTREE;
-    let classical = ClassicalDensity::new(potential, energy, turning);
+    let classical = ClassicalDensity::with_barriers(potential, energy, turning, barriers);
     let inside = |d: &dyn Distribution| reach_bohr.map(|(from, to)| d.below(to) - d.below(from));
     DensityFigures {
         v: level.v,

@@ -19,7 +19,7 @@ use serde::{Deserialize, Serialize};
 /// Steps over one averaging width when two averaged densities are compared, at least.
 const STEPS_A_WIDTH: usize = 16;
 /// Steps over the whole range when they are compared, at least and at most.
-const STEPS: (usize, usize) = (400, 40_000);
+const STEPS: (usize, usize) = (250, 40_000);
 
 /// Choices about densities.
 #[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]

@@ -3,7 +3,7 @@
 use super::Distribution;
 use crate::potential::{Morse, Potential as _};
 use crate::radial::gauss_legendre_8;
-use std::f64::consts::TAU;
+use crate::special::log_gamma;
 
 /// The density is followed outwards until ln(|ψ|²/peak) falls below this.
 const FAINT: f64 = -34.0;
@@ -165,30 +165,5 @@ impl Distribution for MorseDensity {
 
     fn support_bohr(&self) -> (f64, f64) {
         (self.panels[0].0, self.panels[self.panels.len() - 1].0)
-    }
-}
-
-/// ln Γ(x) for x > 0 by Stirling's series above 15, shifted up where x is smaller [Abramowitz & Stegun 1964, 6.1.41].
-fn log_gamma(x: f64) -> f64 {
-    let (mut x, mut shift) = (x, 0.0);
-    while x < 15.0 {
-        shift -= x.ln();
-        x += 1.0;
-    }
-    let q = 1.0 / (x * x);
-    let series = (1.0 / 12.0 - q * (1.0 / 360.0 - q * (1.0 / 1260.0 - q * (1.0 / 1680.0 - q / 1188.0)))) / x;
-    shift + (x - 0.5) * x.ln() - x + 0.5 * TAU.ln() + series
-}
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-
-    #[test]
-    fn log_gamma_is_that_of_factorials_and_of_one_half() {
-        let factorial: f64 = (1..=20).map(f64::from).product();
-        assert!((log_gamma(21.0) - factorial.ln()).abs() < 1e-13);
-        assert!((log_gamma(0.5) - 0.5 * std::f64::consts::PI.ln()).abs() < 1e-14);
-        assert!(log_gamma(1.0).abs() < 1e-14 && log_gamma(2.0).abs() < 1e-14);
     }
 }

@@ -2,6 +2,7 @@
 
 use super::wells::{Well, well_base};
 use super::{LocalShape, ModelFault, ParameterUnit};
+use crate::special::digamma_and_trigamma;
 
 /// V(r) = e_min + D_e (1 − exp(−a (r − r_e)))² [P. M. Morse, Phys. Rev. 34, 57 (1929)].
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -38,6 +39,40 @@ impl Morse {
                 n * (omega - anharmonicity * n)
             })
             .collect()
+    }
+
+    /// (⟨r⟩ in bohr, ⟨(r − r_e)²⟩ in bohr²) of the lowest `count` bound levels of the full-line Morse oscillator.
+    ///
+    /// With z = 2λ e^(−a x) and α = 2(λ − v − ½), expanding L_v^(α) in the polynomials of the weight z^(α − 1 + t) e^(−z)
+    /// gives ⟨z^t⟩ = Σ_k w_k [(1 − t)_m/m!]² Γ(k + α + t)/Γ(k + α), m = v − k, w_k = α v! Γ(k + α)/(Γ(α + v + 1) k!), a
+    /// sum of positive terms; ⟨ln z⟩ and ⟨ln² z⟩ are its first and second derivatives at t = 0.
+    pub fn moments_bohr(&self, reduced_mass_me: f64, count: usize) -> Vec<(f64, f64)> {
+        let lambda = (2.0 * reduced_mass_me * self.well_depth_hartree).sqrt() / self.a_per_bohr;
+        let log_two_lambda = (2.0 * lambda).ln();
+        let of_level = |v: usize| {
+            let alpha = 2.0 * (lambda - v as f64 - 0.5);
+            let mut weight = alpha / (alpha + v as f64);
+            let (mut harmonic, mut harmonic_squares) = (0.0, 0.0);
+            let (mut digamma, mut trigamma) = digamma_and_trigamma(alpha + v as f64);
+            let (mut first, mut second) = (0.0, 0.0);
+            for k in (0..=v).rev() {
+                let slope = digamma - 2.0 * harmonic - log_two_lambda;
+                first += weight * slope;
+                second += weight * (slope * slope + trigamma - 2.0 * harmonic_squares);
+                if k > 0 {
+                    // From k to k − 1.
+                    let below = alpha + (k - 1) as f64;
+                    weight *= k as f64 / below;
+                    digamma -= 1.0 / below;
+                    trigamma += 1.0 / (below * below);
+                    let m = (v - k + 1) as f64;
+                    harmonic += 1.0 / m;
+                    harmonic_squares += 1.0 / (m * m);
+                }
+            }
+            (self.r_e_bohr - first / self.a_per_bohr, second / (self.a_per_bohr * self.a_per_bohr))
+        };
+        (0..self.bound_levels(reduced_mass_me).min(count)).map(of_level).collect()
     }
 
     /// V″(r_e) = 2 D_e a² in hartree/bohr².
@@ -104,6 +139,7 @@ impl Well for Morse {
 mod tests {
     use super::*;
     use crate::potential::check;
+    use crate::radial::{self, RadialRequest};
 
     fn example() -> Morse {
         Morse { e_min_hartree: -1.17, r_e_bohr: 1.4, well_depth_hartree: 0.17, a_per_bohr: 1.03 }
@@ -129,6 +165,26 @@ mod tests {
         }
         let few = Morse { well_depth_hartree: 1e-9, ..morse };
         assert!(few.levels_hartree(mu, 40).is_empty());
+    }
+
+    /// Against the averages over the solved levels, which know nothing of closed forms.
+    #[test]
+    fn moments_agree_with_those_of_solved_levels() {
+        let (morse, mu) = (Morse { e_min_hartree: 0.0, ..example() }, 918.0);
+        let moments = morse.moments_bohr(mu, 12);
+        let request = RadialRequest {
+            reduced_mass_me: mu,
+            rotation_x: 0.0,
+            relative_accuracy: 1e-11,
+            highest_v: Some(11),
+        };
+        let solution = radial::solve(&morse, &request).unwrap();
+        let seen = solution.observables(&morse, morse.r_e_bohr, 0.0);
+        assert_eq!((seen.len(), moments.len()), (12, 12));
+        for (seen, (mean_r, mean_square_x)) in seen.iter().zip(moments) {
+            assert!((seen.mean_r_bohr - mean_r).abs() < 1e-8, "{}: {mean_r}", seen.v);
+            assert!((seen.mean_square_x_bohr2 - mean_square_x).abs() < 1e-8, "{}: {mean_square_x}", seen.v);
+        }
     }
 
     /// Nearly harmonic, or a mass beyond all measure: no more rungs than asked for.

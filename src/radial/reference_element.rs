@@ -52,6 +52,9 @@ pub(super) struct Cumulation {
     recurrence: Vec<[f64; 2]>,
 }
 
+/// Places that [`Cumulation::up_to`] works on together.
+const PLACES: usize = 8;
+
 impl Cumulation {
     /// For elements of `degree` (see [`ReferenceElement::of_degree`]), computed once.
     pub fn of_degree(degree: usize) -> &'static Self {
@@ -101,16 +104,21 @@ impl Cumulation {
         let mut s: Vec<f64> =
             self.moments.chunks_exact(self.points).map(|row| pair_dot(row, &squares)).collect();
         s.extend([0.0; 2]);
-        let (mut now, mut after) = (vec![0.0; t.len()], vec![0.0; t.len()]);
-        for k in (0..=self.points).rev() {
-            let g = if k == 0 { s[0] - s[1] } else { s[k - 1] - s[k + 1] };
-            let [first, second] = self.recurrence[k];
-            for ((now, after), t) in now.iter_mut().zip(&mut after).zip(t) {
-                let next = g + first * t * *now - second * *after;
-                (*after, *now) = (*now, next);
+        // Some places at a time, so that the recurrence stays in registers.
+        for places in t.chunks(PLACES) {
+            let mut at = [0.0; PLACES];
+            at[..places.len()].copy_from_slice(places);
+            let (mut now, mut after) = ([0.0; PLACES], [0.0; PLACES]);
+            for k in (0..=self.points).rev() {
+                let g = if k == 0 { s[0] - s[1] } else { s[k - 1] - s[k + 1] };
+                let [first, second] = self.recurrence[k];
+                for i in 0..PLACES {
+                    let next = g + first * at[i] * now[i] - second * after[i];
+                    (after[i], now[i]) = (now[i], next);
+                }
             }
+            found.extend_from_slice(&now[..places.len()]);
         }
-        found.append(&mut now);
     }
 }
 

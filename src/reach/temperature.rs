@@ -15,6 +15,8 @@ const HIGHEST_FACTOR: f64 = 1e-4;
 /// Factor between temperatures tried, and the lowest one in units of ħω/k_B.
 const FACTOR: f64 = 1.01;
 const LOWEST: f64 = 0.01;
+/// Levels this far above the lowest, in units of kT, are left out of a sum: e^−50 = 2e-22.
+const NEGLIGIBLE_IN_KT: f64 = 50.0;
 
 /// The highest temperatures (K) up to which each of three quantities holds at every lower temperature:
 /// |ln q_h − ln q| ≤ 0.01; |U_h − U| ≤ 0.01 k_B T, each counted from its own v = 0; ⟨x²⟩ within 5 %.
@@ -42,24 +44,27 @@ fn limits(used: &[(f64, f64)], omega: f64, zero_point_square: f64) -> Temperatur
     let compare = |kelvin: f64| compare(used, omega, zero_point_square, kelvin);
     let lowest = LOWEST * omega / BOLTZMANN_PER_CM_PER_KELVIN;
     let supported = highest / -HIGHEST_FACTOR.ln() / BOLTZMANN_PER_CM_PER_KELVIN;
-    let limit = |within: fn(&Comparison) -> bool| {
-        if !within(&compare(lowest)) {
-            return Some(0.0);
-        }
-        let mut inside = lowest;
-        while inside < supported {
-            let outside = (inside * FACTOR).min(supported);
-            if !within(&compare(outside)) {
-                return Some(bisect(|t| within(&compare(t)), inside, outside));
+    // One walk for all three; each stops at the first temperature beyond it.
+    const WITHIN: [fn(&Comparison) -> bool; 3] =
+        [|c| c.log_q.abs() <= LOG_Q, |c| c.energy_over_kt.abs() <= ENERGY, |c| c.square.abs() <= SQUARE];
+    let at_lowest = compare(lowest);
+    let mut limit = WITHIN.map(|within| (!within(&at_lowest)).then_some(0.0));
+    let mut inside = lowest;
+    while inside < supported && limit.contains(&None) {
+        let outside = (inside * FACTOR).min(supported);
+        let there = compare(outside);
+        for (limit, within) in limit.iter_mut().zip(WITHIN) {
+            if limit.is_none() && !within(&there) {
+                *limit = Some(bisect(|t| within(&compare(t)), inside, outside));
             }
-            inside = outside;
         }
-        None
-    };
+        inside = outside;
+    }
+    let [partition_function, mean_energy, mean_square_x] = limit;
     TemperatureReach {
-        partition_function: limit(|c| c.log_q.abs() <= LOG_Q),
-        mean_energy: limit(|c| c.energy_over_kt.abs() <= ENERGY),
-        mean_square_x: limit(|c| c.square.abs() <= SQUARE),
+        partition_function,
+        mean_energy,
+        mean_square_x,
         looked_up_to: Some(supported.max(lowest)),
     }
 }
@@ -75,7 +80,8 @@ struct Comparison {
 fn compare(levels: &[(f64, f64)], omega: f64, zero_point_square: f64, kelvin: f64) -> Comparison {
     let kt = BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
     let (mut q, mut energy, mut square) = (0.0, 0.0, 0.0);
-    for &(e, x2) in levels {
+    // Above that a term changes no digit of the sums; energies ascend.
+    for &(e, x2) in levels.iter().take_while(|l| l.0 < NEGLIGIBLE_IN_KT * kt) {
         let factor = (-e / kt).exp();
         q += factor;
         energy += e * factor;

@@ -2,6 +2,7 @@
 //! tail.
 
 use crate::radial::Level;
+use crate::special::gamma;
 use crate::units::{PER_CM_PER_HARTREE, to_per_cm};
 
 /// Spacings of the levels and the straight line through them (R. T. Birge, H. Sponer, Phys. Rev. 28, 259 (1926)).
@@ -102,38 +103,10 @@ pub fn inverse_power_tail(curve: &crate::potential::curve::ScanCurve) -> Option<
     }
 }
 
-/// Γ(x) for x > 0 by the Lanczos series with g = 7 and nine terms (coefficients from memory; the tests pin it to
-/// 1e-14).
-fn gamma(x: f64) -> f64 {
-    const TERMS: [f64; 9] = [
-        0.999_999_999_999_809_9,
-        676.520_368_121_885_1,
-        -1_259.139_216_722_402_8,
-        771.323_428_777_653_1,
-        -176.615_029_162_140_6,
-        12.507_343_278_686_905,
-        -0.138_571_095_265_720_12,
-        9.984_369_578_019_572e-6,
-        1.505_632_735_149_311_6e-7,
-    ];
-    let x = x - 1.0;
-    let sum: f64 = TERMS[1..].iter().enumerate().map(|(i, c)| c / (x + i as f64 + 1.0)).sum();
-    let t = x + 7.5;
-    std::f64::consts::TAU.sqrt() * t.powf(x + 0.5) * (-t).exp() * (TERMS[0] + sum)
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
     use crate::spectroscopy::from_levels::made_level;
-
-    #[test]
-    fn gamma_has_its_known_values() {
-        let root_pi = std::f64::consts::PI.sqrt();
-        for (x, want) in [(0.5, root_pi), (1.0, 1.0), (1.5, 0.5 * root_pi), (2.0, 1.0), (5.0, 24.0)] {
-            assert!((gamma(x) / want - 1.0).abs() < 1e-14, "{x}");
-        }
-    }
 
     /// A Morse ladder is what Birge and Sponer assume: the line meets its depth.
     #[test]

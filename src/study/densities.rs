@@ -5,14 +5,15 @@ use crate::density::{
     MorseDensity, QuantumDensity, density_figures,
 };
 use crate::findings::Findings;
-use crate::fit::Family;
 use crate::potential::curve::ScanCurve;
-use crate::potential::{Model, Morse};
+use crate::potential::{Morse, Potential as _};
 use crate::radial::{Level, in_halves};
 use crate::units::{PER_CM_PER_HARTREE, to_per_cm};
 
 /// Points at which the densities of one level are given.
 const POINTS: usize = 801;
+/// Steps on each side of the minimum in which a barrier is looked for.
+const LOOK: usize = 300;
 /// Fewer levels than this are not worth a second thread.
 const WORTH_A_THREAD: usize = 4;
 
@@ -92,6 +93,21 @@ struct Picture<'a> {
     amplitude_bohr: Option<f64>,
     width_bohr: Option<f64>,
     morse: Option<Morse>,
+    /// Whether a barrier may stand between the turning points of a level.
+    barriers: bool,
+}
+
+/// Whether V does anything but fall to the minimum and rise from there on, between the outermost turning points of all
+/// levels.
+fn has_barriers(curve: &ScanCurve, levels: &[Level]) -> bool {
+    let from = levels.iter().map(|l| l.inner_turning_point_bohr).fold(f64::INFINITY, f64::min);
+    let to = levels.iter().map(|l| l.outer_turning_point_bohr).fold(f64::NEG_INFINITY, f64::max);
+    let r_e = curve.local.r_e_bohr;
+    let monotonic = |end: f64| {
+        let v = (0..=LOOK).map(|i| curve.energy_hartree(r_e + (end - r_e) * i as f64 / LOOK as f64));
+        v.is_sorted()
+    };
+    !(monotonic(from) && monotonic(to))
 }
 
 impl<'a> Picture<'a> {
@@ -110,24 +126,23 @@ impl<'a> Picture<'a> {
             }),
             amplitude_bohr,
             width_bohr: findings.settings.densities.averaging_width_bohr(amplitude_bohr),
-            morse: findings.fit_of(Family::Morse).and_then(|fit| match &fit.model {
-                Model::Morse(morse) => Some(*morse),
-                _ => None,
-            }),
+            morse: findings.morse(),
+            barriers: has_barriers(curve, &findings.levels),
         }
     }
 
     fn figures(&self, level: &Level, compared: bool) -> DensityFigures {
         let above = self.curve.above_minimum();
         let width = self.width_bohr.filter(|_| compared);
-        density_figures(&above, level, self.reach_bohr, self.amplitude_bohr, width)
+        density_figures(&above, level, self.reach_bohr, self.amplitude_bohr, width, self.barriers)
     }
 
     fn densities(&self, level: &Level) -> Option<LevelDensities> {
         let above = self.curve.above_minimum();
         let quantum = QuantumDensity::new(&level.wavefunction)?;
         let turning = (level.inner_turning_point_bohr, level.outer_turning_point_bohr);
-        let classical = ClassicalDensity::new(&above, level.energy_per_cm / PER_CM_PER_HARTREE, turning);
+        let energy = level.energy_per_cm / PER_CM_PER_HARTREE;
+        let classical = ClassicalDensity::with_barriers(&above, energy, turning, self.barriers);
         let r_e = self.curve.local.r_e_bohr;
         let harmonic = self.amplitude_bohr.and_then(|a| HarmonicDensity::new(level.v, r_e, a));
         let morse = self.morse.as_ref().and_then(|m| MorseDensity::new(m, self.mass_me, level.v));

@@ -9,15 +9,16 @@ use crate::radial::{MOST_LEVELS, RadialRequest, bound_states};
 use crate::spectroscopy::dunham;
 use crate::units::to_per_cm;
 
-/// Ladders without an end (harmonic, rising polynomials) are listed up to this many rungs: far beyond what a
-/// fit near the minimum can say.
+/// The harmonic ladder has no end and is listed up to this many rungs, that of a rising polynomial, which has to be
+/// solved for, up to half of it: both far beyond what a fit near the minimum can say.
 const RUNGS: usize = 40;
 
 /// How many levels a function is asked for: the ladder of a well that dissociates ends by itself, but that of a nearly
 /// harmonic Morse function only after millions.
 const fn rungs(family: Family) -> usize {
     match family {
-        Family::Harmonic | Family::Polynomial => RUNGS,
+        Family::Harmonic => RUNGS,
+        Family::Polynomial => RUNGS / 2,
         _ => MOST_LEVELS,
     }
 }

@@ -2,7 +2,7 @@
 
 use super::tail_spread::TailSpread;
 use crate::estimate::{ErrorSource, Estimate};
-use crate::findings::{Findings, FitFindings};
+use crate::findings::Findings;
 use crate::notice::{Code, Notice};
 use crate::potential::curve::{ScanCurve, Side};
 use crate::potential::{Family, Potential as _};
@@ -177,9 +177,8 @@ pub fn judged(curve: &ScanCurve, question: &Question, states: Result<States, Rad
 
 /// Fills in E − E_Morse(v) from the Morse fit, where there is one.
 pub fn beside_morse(findings: &mut Findings) {
-    let is_morse = |f: &&FitFindings| f.request.family == Family::Morse && f.result.is_ok();
-    let Some(morse) = findings.fits.iter().find(is_morse) else { return };
-    for (level, energy) in findings.levels.iter_mut().zip(&morse.levels_per_cm) {
+    let Some(morse) = findings.found_fit(Family::Morse).map(|f| f.levels_per_cm.clone()) else { return };
+    for (level, energy) in findings.levels.iter_mut().zip(morse) {
         level.minus_morse_per_cm = Some(level.energy_per_cm - energy);
     }
 }
@@ -291,7 +290,9 @@ fn remark_on_leaning(curve: &ScanCurve, levels: &[Level], sides: Leans) -> Optio
 /// The shift of a level is taken to first order, ⟨ψ|ΔV|ψ⟩: it decides only levels whose probability
 /// outside the scan is small already, and there the second order is negligible.
 struct TailShifts {
+    /// At the mesh points from `from` on, beyond the scan; before them nothing changes.
     changes: Vec<Vec<f64>>,
+    from: usize,
 }
 
 impl TailShifts {
@@ -306,10 +307,11 @@ impl TailShifts {
         ];
         let end = curve.scan_range_bohr.1;
         let (_, wall) = curve.range_bohr();
+        let from = mesh.r_bohr.partition_point(|r| *r <= end);
         let changes = variants.into_iter().flatten().map(|variant| {
             let (_, variant_wall) = variant.range_bohr();
             let change = |&r: &f64| {
-                if r <= end || r >= wall {
+                if r >= wall {
                     0.0
                 } else if r >= variant_wall {
                     // The moved tail ends in a wall: whatever lies beyond counts as wholly changed.
@@ -318,14 +320,15 @@ impl TailShifts {
                     variant.energy_hartree(r) - curve.energy_hartree(r)
                 }
             };
-            mesh.r_bohr.iter().map(change).collect()
+            mesh.r_bohr[from..].iter().map(change).collect()
         });
-        Self { changes: changes.collect() }
+        Self { changes: changes.collect(), from }
     }
 
     /// The largest shift of a level over the changes, in cm⁻¹.
     fn largest_per_cm(&self, density: &[f64]) -> f64 {
-        self.changes.iter().map(|change| to_per_cm(dot(density, change)).abs()).fold(0.0, f64::max)
+        let beyond = &density[self.from..];
+        self.changes.iter().map(|change| to_per_cm(dot(beyond, change)).abs()).fold(0.0, f64::max)
     }
 }
 

@@ -16,8 +16,13 @@ const DEGREE: usize = 5;
 /// A quintic not-a-knot spline in r through the column's values at the points in use (a cubic below six points);
 /// outside them the end values go on, and the probability there is given beside each average.
 pub fn fill(findings: &mut Findings, scan: &Scan) {
+    if scan.properties.is_empty() {
+        return;
+    }
+    let densities: Vec<Vec<f64>> =
+        findings.levels.iter().map(|level| level.wavefunction.weighted_density()).collect();
     let averages: Vec<PropertyAverages> =
-        scan.properties.iter().filter_map(|column| average(findings, column)).collect();
+        scan.properties.iter().filter_map(|column| average(findings, column, &densities)).collect();
     findings.property_averages = averages;
 }
 
@@ -27,7 +32,8 @@ fn points(findings: &Findings, column: &PropertyColumn) -> (Vec<f64>, Vec<f64>) 
     used.filter_map(|p| Some((p.r_bohr, column.values.get(p.row).copied().flatten()?))).unzip()
 }
 
-fn average(findings: &Findings, column: &PropertyColumn) -> Option<PropertyAverages> {
+/// `densities`: w ψ² of every level at the mesh points.
+fn average(findings: &Findings, column: &PropertyColumn, densities: &[Vec<f64>]) -> Option<PropertyAverages> {
     let (r, values) = points(findings, column);
     if r.len() < LEAST_POINTS {
         return None;
@@ -38,14 +44,16 @@ fn average(findings: &Findings, column: &PropertyColumn) -> Option<PropertyAvera
     let ends = (r[0], r[r.len() - 1]);
     let first = findings.levels.first()?;
     let on_mesh = sampled(&spline, ends, &first.wavefunction);
-    let levels = findings.levels.iter().map(|level| {
-        let psi = &level.wavefunction;
-        PropertyAverage {
-            v: level.v,
-            j: level.j,
-            value: dot(&psi.weighted_density(), &on_mesh),
-            outside: (1.0 - psi.probability(ends.0, ends.1)).max(0.0),
-        }
+    let whole_scan = findings.curve.as_ref().is_some_and(|curve| curve.scan_range_bohr == ends);
+    let levels = findings.levels.iter().zip(densities).map(|(level, density)| PropertyAverage {
+        v: level.v,
+        j: level.j,
+        value: dot(density, &on_mesh),
+        outside: if whole_scan {
+            level.outside_scan
+        } else {
+            (1.0 - level.wavefunction.probability(ends.0, ends.1)).max(0.0)
+        },
     });
     Some(PropertyAverages {
         column: column.name.clone(),

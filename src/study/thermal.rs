@@ -4,15 +4,13 @@ use super::derived::from_own_minimum;
 use crate::findings::Findings;
 use crate::fit::Family;
 use crate::notice::{Code, Notice};
-use crate::potential::Potential as _;
 use crate::potential::curve::ScanCurve;
-use crate::radial::{self, RadialRequest};
 use crate::species::{Masses, mean_atomic_mass_u};
 use crate::thermal::{
     self, Averages, HIGHEST_J, Position, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings,
     ideal_gas, over_levels, rigid_rotor, rotating_levels,
 };
-use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, rotational_constant_per_cm};
+use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, PER_CM_PER_HARTREE, rotational_constant_per_cm};
 
 /// Levels with a Boltzmann factor below e^−30 do not change a sum.
 const HIGHEST_IN_KT: f64 = 30.0;
@@ -39,28 +37,17 @@ pub fn fill(findings: &mut Findings, curve: &ScanCurve) {
     findings.notices.append(&mut notices);
 }
 
-/// ⟨r⟩ and ⟨x²⟩ of the lowest levels of the Morse fit that are populated at the highest temperature.
+/// ⟨r⟩ and ⟨x²⟩ of the levels of the Morse fit that are populated at the highest temperature.
 fn morse_positions(findings: &Findings) -> Option<Vec<Position>> {
-    let (fit, mass_me) = (findings.fit_of(Family::Morse)?, findings.masses.as_ref()?.reduced_mass_me);
-    let levels = findings.fits.iter().find(|f| f.request.family == Family::Morse)?;
+    let (morse, mass_me) = (findings.morse()?, findings.masses.as_ref()?.reduced_mass_me);
     let highest = findings.settings.thermal.temperatures_kelvin.iter().copied().fold(0.0, f64::max);
-    let ceiling = HIGHEST_IN_KT * BOLTZMANN_PER_CM_PER_KELVIN * highest;
-    let lowest = levels.levels_per_cm.first()?;
-    let populated = levels.levels_per_cm.iter().take_while(|e| **e - lowest <= ceiling).count();
-    let request = RadialRequest {
-        reduced_mass_me: mass_me,
-        rotation_x: 0.0,
-        relative_accuracy: findings.settings.levels.relative_accuracy,
-        highest_v: Some(populated.clamp(1, MORSE_LEVELS) - 1),
-    };
-    let above = from_own_minimum(&fit.model);
-    let solution = radial::solve(&above, &request).ok()?;
-    let seen = solution.observables(&above, above.minimum_bohr(), 0.0);
-    let position = |o: radial::Observables| Position {
-        mean_r_bohr: o.mean_r_bohr,
-        mean_square_x_bohr2: o.mean_square_x_bohr2,
-    };
-    Some(seen.into_iter().map(position).collect())
+    let ceiling = HIGHEST_IN_KT * BOLTZMANN_PER_CM_PER_KELVIN * highest / PER_CM_PER_HARTREE;
+    let levels = morse.levels_hartree(mass_me, MORSE_LEVELS);
+    let lowest = *levels.first()?;
+    let populated = levels.iter().take_while(|e| **e - lowest <= ceiling).count();
+    let moments = morse.moments_bohr(mass_me, populated);
+    let position = |(mean_r_bohr, mean_square_x_bohr2)| Position { mean_r_bohr, mean_square_x_bohr2 };
+    Some(moments.into_iter().map(position).collect())
 }
 
 fn left_out(settings: &ThermalSettings) -> Option<Notice> {
@@ -123,7 +110,8 @@ fn rotate(
     let weights = spin_weights(settings, masses);
     let mass_u = molecule_mass_u(masses);
     let rigid = rotational_constant_per_cm(curve.local.r_e_bohr, masses.reduced_mass_me);
-    let of_morse = findings.fit_of(Family::Morse).and_then(|fit| {
+    let of_morse = findings.found_fit(Family::Morse).and_then(|found| {
+        let fit = found.result.as_ref().ok()?;
         rotating_levels(
             &from_own_minimum(&fit.model),
             masses.reduced_mass_me,
