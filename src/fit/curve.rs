@@ -16,6 +16,7 @@ use crate::potential::curve::{
 use crate::potential::interpolant::{Interpolant, Recipe};
 use crate::potential::tail_fit::fit_tail;
 use crate::potential::tails::{Joint, OuterForm, Outside, inner_tail, outer_tail};
+use crate::radial::in_halves;
 use crate::scan::inspect::noise_hartree;
 use crate::units::{to_angstrom, to_per_cm};
 use minimum::{StationaryPoint, minimum_between, stationary_points};
@@ -300,9 +301,11 @@ fn best(data: &Data, recipes: &[Recipe]) -> Option<(Interpolant, usize)> {
     if judgements.len() == 1 {
         return judgements.pop();
     }
-    let score = |j: &(Interpolant, usize)| leave_one_out_hartree(data, j.0.recipe());
-    let mut scored: Vec<(f64, (Interpolant, usize))> =
-        judgements.into_iter().map(|j| (score(&j), j)).collect();
+    let score = |j: &[(Interpolant, usize)]| -> Vec<f64> {
+        j.iter().map(|j| leave_one_out_hartree(data, j.0.recipe())).collect()
+    };
+    let scores = in_halves(&judgements, 2, score);
+    let mut scored: Vec<(f64, (Interpolant, usize))> = scores.into_iter().zip(judgements).collect();
     scored.sort_by(|a, b| a.0.total_cmp(&b.0));
     scored.into_iter().next().map(|s| s.1)
 }

@@ -43,6 +43,8 @@ struct OnMesh {
     effective_hartree: Vec<f64>,
     /// 1/(2μr²), r, r², (r − r_e)²; zero at the walls, where ψ is.
     functions: [Vec<f64>; 4],
+    /// Index of the lowest point where the effective potential falls up to it and rises from there on (walls left out).
+    valley: Option<usize>,
 }
 
 impl OnMesh {
@@ -65,25 +67,39 @@ impl OnMesh {
             on_points(&|r| r * r),
             on_points(&|r| (r - r_e) * (r - r_e)),
         ];
-        Self { effective_hartree, functions }
+        let inside = &effective_hartree[1..last];
+        let lowest = (0..inside.len()).min_by(|i, k| inside[*i].total_cmp(&inside[*k]));
+        let falls_and_rises =
+            |i: &usize| inside[..=*i].is_sorted_by(|a, b| a >= b) && inside[*i..].is_sorted();
+        let valley = lowest.filter(falls_and_rises).map(|i| i + 1);
+        Self { effective_hartree, functions, valley }
     }
 }
 
 /// All bond lengths (bohr, ascending) where `effective` crosses `energy_hartree` between neighbouring points of
-/// `r_bohr` (the two walls left out), with `effective_hartree` its values there.
-fn crossings(
-    effective: &dyn Fn(f64) -> f64,
-    energy_hartree: f64,
-    r_bohr: &[f64],
-    effective_hartree: &[f64],
-) -> Vec<f64> {
+/// `r_bohr` (the two walls left out), with the values on `mesh`.
+fn crossings(effective: &dyn Fn(f64) -> f64, energy_hartree: f64, r_bohr: &[f64], mesh: &OnMesh) -> Vec<f64> {
+    let effective_hartree = &mesh.effective_hartree;
+    let at = |i: usize| {
+        let (low, high) = (effective_hartree[i - 1] - energy_hartree, effective_hartree[i] - energy_hartree);
+        root(&|r| effective(r) - energy_hartree, r_bohr[i - 1], r_bohr[i], low, high)
+    };
+    if let Some(valley) = mesh.valley {
+        if effective_hartree[valley] > energy_hartree {
+            return Vec::new();
+        }
+        let above = effective_hartree[1..valley].partition_point(|v| *v > energy_hartree);
+        let below = effective_hartree[valley..r_bohr.len() - 1].partition_point(|v| *v <= energy_hartree);
+        let outer = valley + below;
+        let crossed = [(above > 0).then_some(above + 1), (outer < r_bohr.len() - 1).then_some(outer)];
+        return crossed.into_iter().flatten().map(at).collect();
+    }
     let mut found = Vec::new();
     let mut last = effective_hartree[1] - energy_hartree;
     for i in 2..r_bohr.len() - 1 {
         let now = effective_hartree[i] - energy_hartree;
         if (last > 0.0) != (now > 0.0) {
-            let (a, b) = (r_bohr[i - 1], r_bohr[i]);
-            found.push(root(&|r| effective(r) - energy_hartree, a, b, last, now));
+            found.push(at(i));
         }
         last = now;
     }
@@ -199,7 +215,7 @@ impl Solution {
             |r: f64| potential.energy_hartree(r) + if x == 0.0 { 0.0 } else { x / (two_mu * r * r) };
         let last = psi.r_bohr.len() - 1;
         let energy = state.energy_hartree;
-        let turning = crossings(&effective, energy, &psi.r_bohr, &mesh.effective_hartree);
+        let turning = crossings(&effective, energy, &psi.r_bohr, mesh);
         let (from, to) = (psi.r_bohr[0], psi.r_bohr[last]);
         // A wall inside the allowed region takes the place of the turning point.
         let inner_end =

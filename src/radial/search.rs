@@ -109,6 +109,9 @@ struct Work<'a> {
     kept: Vec<Option<usize>>,
 }
 
+/// A count at a shift off the level by less than this share of the distance to its neighbours tells which level it is.
+const NEAR_BY: f64 = 0.01;
+
 /// Most levels from which the next one is extrapolated.
 const LOOK_BACK: usize = 8;
 
@@ -230,6 +233,8 @@ fn refine_reduced(
     let mut unwanted = 1e2;
     let mut still = 0;
     let mut level = None;
+    // A shift some way off the level, and the levels below it.
+    let mut aside: Option<(f64, usize)> = None;
     for round in 0..12 {
         if round > 0 {
             work.kept.clear();
@@ -268,7 +273,13 @@ fn refine_reduced(
                 work.reduced.factorise(work.condensed, at);
                 work.reduced.below
             };
-            let sure = is_level(v, (energy, shift), below, rounding, &mut count);
+            let on_the_level = (energy - shift).abs() <= 16.0 * rounding;
+            // An earlier count beside the level, nearer by far than its neighbours, spares one of its own.
+            let told = aside.filter(|(at, _)| on_the_level && (energy - at).abs() < NEAR_BY * gap);
+            let sure = match told {
+                Some((at, below)) => is_level(v, (energy, at), below, rounding, &mut count),
+                None => is_level(v, (energy, shift), below, rounding, &mut count),
+            };
             if sure && residual <= FINISHED_RESIDUAL * work.scale {
                 level = Some(Found { energy, vector, gap });
             }
@@ -276,6 +287,9 @@ fn refine_reduced(
         }
         if (energy < brackets.low[v] - rounding || energy > brackets.high[v] + rounding) && round > 0 {
             break;
+        }
+        if (energy - shift).abs() > 64.0 * rounding {
+            aside = Some((shift, work.reduced.below));
         }
         let outside = energy < brackets.low[v] || energy > brackets.high[v];
         shift = if outside { 0.5 * (brackets.low[v] + brackets.high[v]) } else { energy };

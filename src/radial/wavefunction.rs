@@ -58,7 +58,10 @@ impl Wavefunction {
             return 0.0;
         }
         let reference = ReferenceElement::of_degree(self.degree);
-        (0..self.elements())
+        // Only the elements that the range touches.
+        let first = self.r_bohr.partition_point(|r| *r <= from_bohr).saturating_sub(1) / self.degree;
+        let end = self.r_bohr.partition_point(|r| *r < to_bohr).div_ceil(self.degree).min(self.elements());
+        (first..end)
             .filter_map(|e| {
                 let (left, right, _) = self.element(e);
                 let (a, b) = (left.max(from_bohr), right.min(to_bohr));
