@@ -34,6 +34,7 @@ pub mod fit;
 pub mod gui;
 pub mod headless;
 pub mod notice;
+pub(crate) mod parallel;
 pub mod potential;
 pub mod radial;
 pub mod reach;

@@ -9,6 +9,7 @@ pub use error::CurveError;
 
 use super::{FitPoint, morse_for_base};
 use crate::notice::{Code, Notice};
+use crate::parallel::in_halves;
 use crate::potential::Morse;
 use crate::potential::curve::{
     CurveKind, CurveParts, CurveSettings, InnerTail, LocalDerivatives, ScanCurve, SplineVariable,
@@ -16,7 +17,6 @@ use crate::potential::curve::{
 use crate::potential::interpolant::{Interpolant, Recipe};
 use crate::potential::tail_fit::fit_tail;
 use crate::potential::tails::{Joint, OuterForm, Outside, inner_tail, outer_tail};
-use crate::radial::in_halves;
 use crate::scan::inspect::noise_hartree;
 use crate::units::{to_angstrom, to_per_cm};
 use minimum::{StationaryPoint, minimum_between, stationary_points};

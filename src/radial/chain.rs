@@ -9,10 +9,10 @@
 
 use super::RadialError;
 use super::pair::{Pair, add_row, pair_dot};
-use super::parallel::{WORTH_A_THREAD, side_by_side};
 use super::reference_element::ReferenceElement;
 use super::small_eigen::{diagonalise, overlaps};
 use super::solve::DEGREE;
+use crate::parallel::{WORTH_A_THREAD, side_by_side};
 
 /// Modes of an element of a chain that has vectors: the machine knows the length of the innermost loops.
 pub(super) const MODES: usize = DEGREE - 1;

@@ -6,9 +6,9 @@
 
 use super::Solution;
 use super::chain::{Chain, Factors, dot};
-use super::parallel::{WORTH_A_THREAD, in_halves};
 use super::search::Found;
 use super::solve::mesh_points;
+use crate::parallel::{WORTH_A_THREAD, in_halves};
 
 /// Centrifugal constants of one level.
 #[derive(Clone, Copy, Debug, PartialEq)]

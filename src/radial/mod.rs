@@ -9,7 +9,6 @@ mod mesh;
 mod observables;
 mod outgoing;
 mod pair;
-mod parallel;
 mod quasibound;
 mod real_axis;
 mod reference_element;
@@ -23,7 +22,6 @@ mod wavefunction;
 pub(crate) use chain::dot;
 pub use distortion::Distortion;
 pub use observables::{Observables, turning_points_bohr};
-pub(crate) use parallel::in_halves;
 pub use quasibound::{QuasiBound, quasi_bound};
 pub use wavefunction::RunningProbability;
 

@@ -1,8 +1,8 @@
 //! What is reported of one level: turning points, probabilities, averages, B_v.
 
 use super::chain::dot;
-use super::parallel::{WORTH_A_THREAD, in_halves};
 use super::{Inner, Solution};
+use crate::parallel::{WORTH_A_THREAD, in_halves};
 use crate::potential::Potential;
 use crate::units::to_per_cm;
 

@@ -2,7 +2,7 @@
 
 use super::chain::{Chain, Factors, dot};
 use super::condensed::{Condensed, Reduced, ReducedFactors, product, scale};
-use super::parallel::side_by_side;
+use crate::parallel::side_by_side;
 
 /// Relative size of the unwanted part of a vector at which it is finished.
 const FINISHED: f64 = 1e-13;

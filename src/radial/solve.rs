@@ -2,13 +2,13 @@
 
 use super::chain::{Chain, Factors, node};
 use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
-use super::parallel::{WORTH_A_THREAD, side_by_side};
 use super::reference_element::ReferenceElement;
 use super::search::{Found, lowest_levels};
 use super::{
     BoundState, HIGHEST_V_WITHOUT_LIMIT, Inner, MOST_LEVELS, RadialError, RadialRequest, Solution,
     Wavefunction,
 };
+use crate::parallel::{WORTH_A_THREAD, side_by_side};
 use crate::potential::Potential;
 use std::sync::Arc;
 

@@ -5,9 +5,10 @@ use crate::density::{
     MorseDensity, QuantumDensity, density_figures,
 };
 use crate::findings::Findings;
+use crate::parallel::in_halves;
 use crate::potential::curve::ScanCurve;
 use crate::potential::{Morse, Potential as _};
-use crate::radial::{Level, in_halves};
+use crate::radial::Level;
 use crate::units::{PER_CM_PER_HARTREE, to_per_cm};
 
 /// Points at which the densities of one level are given.

@@ -1,8 +1,9 @@
 //! Other isotopes of the same molecule on the same curve.
 
 use crate::findings::{Findings, IsotopicLevel, Isotopologue};
+use crate::parallel::in_halves;
 use crate::potential::curve::ScanCurve;
-use crate::radial::{RadialRequest, in_halves, solve};
+use crate::radial::{RadialRequest, solve};
 use crate::settings::Settings;
 use crate::species::{self, MassSettings, Masses, SpeciesError};
 use crate::units::{omega_e_per_cm, to_per_cm};

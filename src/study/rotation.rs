@@ -3,8 +3,9 @@
 use super::levels::{Question, Solved, solve};
 use crate::findings::{Findings, QuasiBoundLevel};
 use crate::notice::{Code, Notice};
+use crate::parallel::in_halves;
 use crate::potential::curve::ScanCurve;
-use crate::radial::{in_halves, quasi_bound};
+use crate::radial::quasi_bound;
 use crate::reach::Interval;
 use crate::settings::LevelSettings;
 use crate::units::to_per_cm;

@@ -26,7 +26,7 @@ fn rust_files(folder: &Path) -> Vec<PathBuf> {
 }
 
 /// What every area may name.
-const COMMON: &[&str] = &["units", "estimate", "notice"];
+const COMMON: &[&str] = &["units", "estimate", "notice", "special", "parallel"];
 /// The physics and what it reads.
 const PHYSICS: &[&str] = &[
     "species",
@@ -42,8 +42,10 @@ const PHYSICS: &[&str] = &[
 ];
 
 /// Areas in the order of dependency, each with groups of areas that it may name.
-const LAYERS: [(&str, &[&[&str]]); 21] = [
+const LAYERS: [(&str, &[&[&str]]); 23] = [
     ("units", &[]),
+    ("special", &[]),
+    ("parallel", &[]),
     ("estimate", &[&["units"]]),
     ("digits", &[]),
     ("notice", &[&["units"]]),
@@ -55,7 +57,7 @@ const LAYERS: [(&str, &[&[&str]]); 21] = [
     ("spectroscopy", &[COMMON, &["potential", "radial", "settings", "fit"]]),
     ("thermal", &[&["units", "potential", "radial"]]),
     ("reach", &[&["units", "estimate", "potential", "radial", "thermal", "settings"]]),
-    ("density", &[&["units", "potential", "radial"]]),
+    ("density", &[&["units", "special", "potential", "radial"]]),
     ("settings", &[COMMON, PHYSICS]),
     ("findings", &[COMMON, PHYSICS]),
     ("verdict", &[COMMON, &["digits", "findings", "radial", "reach"]]),

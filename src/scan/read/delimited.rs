@@ -233,15 +233,18 @@ impl<'a> Reader<'a> {
     /// Takes a row of nothing but plain numbers, the usual one of a long table; false for any other, which is
     /// then read with all care. What it takes, the careful way reads as the same numbers.
     fn plain_row(&mut self, line: &Line<'a>) -> bool {
-        let Some(sign) = self.table.format.delimiter.sign() else { return false };
+        let Some(sign) = self.table.format.delimiter.sign().map(|sign| sign as u8) else { return false };
         let columns = self.table.format.columns;
         let room = self.table.row_lines.len() < LIMIT_ROWS;
         if line.comment.is_some() || self.table.format.sign != DecimalSign::Point || !room {
             return false;
         }
         self.plain.clear();
-        for cell in line.content.split(sign) {
-            let cell = cell.trim();
+        let mut rest = Some(line.content);
+        while let Some(text) = rest {
+            let end = text.bytes().position(|b| b == sign);
+            rest = end.map(|at| &text[at + 1..]);
+            let cell = text[..end.unwrap_or(text.len())].trim_ascii();
             let ends_in_digit = cell.as_bytes().last().is_some_and(u8::is_ascii_digit);
             match cell.parse::<f64>() {
                 Ok(value) if ends_in_digit && value.is_finite() && self.plain.len() < columns => {

@@ -21,6 +21,7 @@ mod xyz;
 use super::Scan;
 use super::combine::Recipe;
 use super::error::ScanError;
+use crate::parallel::side_by_side;
 use crate::units::{EnergyUnit, LengthUnit};
 use serde::{Deserialize, Serialize};
 use sha2::{Digest, Sha256};
@@ -62,6 +63,9 @@ pub struct ReadSettings {
     pub lines: Option<LinePatterns>,
 }
 
+/// Files from this size on have their checksum made on a thread of its own.
+const WORTH_A_THREAD_BYTES: usize = 200_000;
+
 /// Reads a scan from the bytes of a file: QCSchema JSON, frames of Cartesian coordinates, or delimited text,
 /// told apart by their content.
 ///
@@ -71,6 +75,20 @@ pub struct ReadSettings {
 /// # Errors
 /// [`ScanError`] with place, value found and remedy.
 pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Result<Scan, ScanError> {
+    // The checksum of a long file is made beside the reading.
+    let (scan, sum) = if bytes.len() < WORTH_A_THREAD_BYTES {
+        (parsed(file_name, bytes, settings), sha256_hex(bytes))
+    } else {
+        side_by_side(|| parsed(file_name, bytes, settings), || sha256_hex(bytes))
+    };
+    let mut scan = scan?;
+    scan.sha256 = sum;
+    let scan = scan.checked()?;
+    settings.made.iter().try_fold(scan, |scan, recipe| Ok(scan.with_made(recipe)?))
+}
+
+/// The scan in the bytes, without their checksum.
+fn parsed(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Result<Scan, ScanError> {
     let (text, encoding) = text::decode(bytes)?;
     let mut scan = if qcschema::looks_like(&text) {
         qcschema::parse(&text, settings)?.scan(file_name, settings)?
@@ -79,10 +97,8 @@ pub fn read_scan(file_name: &str, bytes: &[u8], settings: &ReadSettings) -> Resu
     } else {
         assemble::scan(file_name, delimited::parse(&text, settings)?, settings)?
     };
-    scan.sha256 = sha256_hex(bytes);
     scan.notices.splice(0..0, encoding);
-    let scan = scan.checked()?;
-    settings.made.iter().try_fold(scan, |scan, recipe| Ok(scan.with_made(recipe)?))
+    Ok(scan)
 }
 
 /// Reads one scan from text logs, each given by name and bytes, by the patterns in the settings.

@@ -6,6 +6,9 @@ use crate::scan::error::ScanError;
 /// The most bytes that are read: a scan of a million rows with ten columns fits.
 pub const LIMIT_BYTES: usize = 64 << 20;
 
+/// Bytes that are looked at together.
+const BLOCK: usize = 256;
+
 /// The text of a file and what decoding remarked.
 ///
 /// UTF-8 and, with a byte-order mark, UTF-16 are decoded as such; anything else is taken as Latin-1,
@@ -23,7 +26,14 @@ pub(crate) fn decode(bytes: &[u8]) -> Result<(String, Option<Notice>), ScanError
         _ => {
             let body = bytes.strip_prefix(&[0xef, 0xbb, 0xbf]).unwrap_or(bytes);
             let offset = bytes.len() - body.len();
-            if let Some(at) = body.iter().position(|&b| is_never_text(b)) {
+            // Whole blocks are asked first: the machine then looks at many bytes at a time.
+            let suspect = body
+                .chunks(BLOCK)
+                .position(|block| block.iter().fold(false, |found, &b| found | is_never_text(b)));
+            if let Some(block) = suspect
+                && let Some(at) = body[block * BLOCK..].iter().position(|&b| is_never_text(b))
+            {
+                let at = block * BLOCK + at;
                 return Err(ScanError::Binary { offset: at + offset, value: body[at] });
             }
             match std::str::from_utf8(body) {
@@ -49,7 +59,7 @@ fn utf16(bytes: &[u8], unit: fn([u8; 2]) -> u16) -> String {
 
 /// Control bytes other than tab, line ends, form feed, end-of-file mark of old systems.
 const fn is_never_text(byte: u8) -> bool {
-    matches!(byte, 0..=8 | 11 | 14..=25 | 27..=31 | 127)
+    (byte < 9) | (byte == 11) | ((byte > 13) & (byte < 32) & (byte != 26)) | (byte == 127)
 }
 
 /// One line of a file.
@@ -73,7 +83,7 @@ impl<'a> Line<'a> {
 
     /// Whether the line holds anything before a comment.
     pub(crate) fn has_content(&self) -> bool {
-        !self.content.trim().is_empty()
+        self.content.bytes().next().is_some_and(|b| b.is_ascii_graphic()) || !self.content.trim().is_empty()
     }
 }
 
@@ -102,7 +112,8 @@ pub(crate) fn lines(text: &str) -> impl Iterator<Item = Line<'_>> {
         start = (next < text.len()).then_some(next);
         number += 1;
         // The end-of-file mark of old systems (byte 26) is no content.
-        let line = text[from..from + end].trim_end_matches('\u{1a}');
+        let line = &text[from..from + end];
+        let line = if line.ends_with('\u{1a}') { line.trim_end_matches('\u{1a}') } else { line };
         Some(match comment.filter(|&at| at < line.len()) {
             None => Line { number, raw: line, content: line, comment: None },
             Some(at) => Line {

@@ -2,10 +2,10 @@
 //! and each part is computed as it would be alone.
 
 /// Lists shorter than this are not worth a second thread (starting one costs some ten microseconds).
-pub(super) const WORTH_A_THREAD: usize = 56;
+pub(crate) const WORTH_A_THREAD: usize = 56;
 
 /// Both results, the second computed on a thread of its own.
-pub(super) fn side_by_side<A, B: Send>(
+pub(crate) fn side_by_side<A, B: Send>(
     first: impl FnOnce() -> A,
     second: impl FnOnce() -> B + Send,
 ) -> (A, B) {
