@@ -46,13 +46,18 @@ pub fn all_to_string(findings: &[&Findings]) -> String {
     text
 }
 
+/// The kind of machine that this program was built for: another one may round its last digits in another way.
+pub fn platform() -> String {
+    format!("{}-{}", std::env::consts::ARCH, std::env::consts::OS)
+}
+
 /// One study as a JSON value.
 pub fn findings_to_value(findings: &Findings) -> Value {
     let source = &findings.source;
     let mut value = json!({
         "format": FORMAT,
         "format_version": FORMAT_VERSION,
-        "made_by": {"program": "parabound", "version": env!("CARGO_PKG_VERSION")},
+        "made_by": {"program": "parabound", "version": env!("CARGO_PKG_VERSION"), "platform": platform()},
         "source": {
             "file_name": source.file_name,
             "sha256": source.sha256,

@@ -37,8 +37,8 @@ pub struct Verdict {
     pub compared: usize,
     /// Those that differ, in the order of the file.
     pub differences: Vec<Difference>,
-    /// The version that made the file, where it is another one.
-    pub other_version: Option<String>,
+    /// What made the file, where it was another version or another kind of machine.
+    pub other_maker: Option<String>,
 }
 
 /// Why nothing could be compared.
@@ -57,7 +57,7 @@ pub enum RecheckError {
 
 /// Computes one study of a findings file again from its source, which `source` reads with the settings stored.
 ///
-/// The same version must give every bit; another one 1e-9 relative. A source with another SHA-256 is a
+/// The same version on the same kind of machine must give every bit; any other 1e-9 relative. A source with another SHA-256 is a
 /// difference of its own, and the rest is compared all the same.
 ///
 /// # Errors
@@ -81,10 +81,13 @@ pub fn recheck(
     // Through the text, as the stored values have been.
     let computed: Value =
         serde_json::from_str(&findings_to_string(&findings)).map_err(|e| source_error(&e))?;
-    let version = |v: &Value| v["made_by"]["version"].as_str().unwrap_or("unknown").to_owned();
-    let other_version = Some(version(stored)).filter(|v| *v != version(&computed));
-    let mut verdict = Verdict { compared: 0, differences: Vec::new(), other_version };
-    let exact = verdict.other_version.is_none();
+    let maker = |v: &Value| {
+        let word = |key: &str| v["made_by"][key].as_str().unwrap_or("unknown").to_owned();
+        format!("version {} on {}", word("version"), word("platform"))
+    };
+    let other_maker = Some(maker(stored)).filter(|m| *m != maker(&computed));
+    let mut verdict = Verdict { compared: 0, differences: Vec::new(), other_maker };
+    let exact = verdict.other_maker.is_none();
     verdict.walk(stored, &computed, "", exact);
     Ok(verdict)
 }
@@ -106,8 +109,8 @@ impl Verdict {
                 for (key, value) in a {
                     let path = format!("{path}/{key}");
                     match b.get(key) {
-                        // Which version made a file is said apart.
-                        _ if path == "/made_by/version" => {}
+                        // What made a file is said apart.
+                        _ if path == "/made_by/version" || path == "/made_by/platform" => {}
                         Some(other) => self.walk(value, other, &path, exact),
                         None => self.differ(&path, Some(value), None),
                     }
@@ -147,7 +150,7 @@ mod tests {
     use serde_json::json;
 
     fn compared(a: &Value, b: &Value, exact: bool) -> Vec<String> {
-        let mut verdict = Verdict { compared: 0, differences: Vec::new(), other_version: None };
+        let mut verdict = Verdict { compared: 0, differences: Vec::new(), other_maker: None };
         verdict.walk(a, b, "", exact);
         verdict.differences.into_iter().map(|d| d.path).collect()
     }

@@ -60,7 +60,15 @@ pub struct FitRequest {
     pub power: Option<u32>,
 }
 
+/// Power p of an extended Morse function's variable when none is asked for.
+const DEFAULT_POWER: u32 = 2;
+
 impl FitRequest {
+    /// Power p of an extended Morse function's variable; none for other families.
+    pub fn power_in_use(&self) -> Option<u32> {
+        (self.family == Family::ExtendedMorse).then(|| self.power.unwrap_or(DEFAULT_POWER))
+    }
+
     /// A family with all its choices left open.
     pub const fn plain(family: Family) -> Self {
         Self { family, degree: None, variable: None, power: None }

@@ -3,8 +3,8 @@
 use super::data::Data;
 use super::nonlinear::IterationSettings;
 use super::{
-    Family, Fit, FitEnd, FitError, FitPoint, FitRequest, Parameter, Variable, Variance, Window, families,
-    guess, polynomial, statistics,
+    DEFAULT_POWER, Family, Fit, FitEnd, FitError, FitPoint, FitRequest, Parameter, Variable, Variance,
+    Window, families, guess, polynomial, statistics,
 };
 use crate::estimate::{ErrorSource, Estimate};
 use crate::notice::{Code, Notice};
@@ -18,8 +18,6 @@ const DEGREES: (u32, u32) = (2, 12);
 const DEFAULT_ORDER: u32 = 4;
 /// Orders offered.
 const ORDERS: (u32, u32) = (0, 12);
-/// Power p of its variable when none is asked for.
-const DEFAULT_POWER: u32 = 2;
 /// Powers offered.
 const POWERS: (u32, u32) = (1, 10);
 

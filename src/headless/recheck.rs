@@ -14,9 +14,14 @@ const LISTED: usize = 20;
 /// Runs the command; returns the exit status: 0 the same, 5 something differs, 3 not to be read.
 pub fn run(arguments: &RecheckArgs) -> u8 {
     match compare(arguments) {
-        Ok((text, same)) => {
-            super::print(&text);
-            if same { 0 } else { DIFFERS }
+        Ok(outcome) => {
+            super::print(&outcome.text);
+            outcome.not_read.iter().for_each(|message| eprintln!("parabound: {message}"));
+            match outcome {
+                Outcome { differs: true, .. } => DIFFERS,
+                Outcome { not_read, .. } if not_read.is_empty() => 0,
+                _ => NOT_READ,
+            }
         }
         Err(message) => {
             eprintln!("parabound: {message}");
@@ -29,7 +34,7 @@ fn read(path: &Path) -> Result<Vec<u8>, String> {
     std::fs::read(path).map_err(|e| format!("{}: could not be read ({e})", path.display()))
 }
 
-fn compare(arguments: &RecheckArgs) -> Result<(String, bool), String> {
+fn compare(arguments: &RecheckArgs) -> Result<Outcome, String> {
     let path = &arguments.findings;
     let bytes = read(path)?;
     let value: serde_json::Value =
@@ -41,18 +46,34 @@ fn compare(arguments: &RecheckArgs) -> Result<(String, bool), String> {
     if studies.is_empty() {
         return Err(format!("{}: holds no study", path.display()));
     }
-    let (mut text, mut same) = (String::new(), true);
+    let mut outcome = Outcome::default();
     for study in &studies {
-        let source = source_path(arguments, study)?;
-        let scan = |settings: &ReadSettings| {
-            let input = Input::read(std::slice::from_ref(&source), settings)?;
-            input.scan(settings)
-        };
-        let verdict = recheck(study, scan).map_err(|e| format!("{}: {e}", path.display()))?;
-        same &= verdict.differences.is_empty();
-        text.push_str(&words(study, &verdict));
+        let compared = source_path(arguments, study).and_then(|source| {
+            let scan = |settings: &ReadSettings| {
+                let input = Input::read(std::slice::from_ref(&source), settings)?;
+                input.scan(settings)
+            };
+            recheck(study, scan).map_err(|e| format!("{}: {e}", path.display()))
+        });
+        match compared {
+            Ok(verdict) => {
+                outcome.differs |= !verdict.differences.is_empty();
+                outcome.text.push_str(&words(study, &verdict));
+            }
+            // The other studies of the file are compared all the same.
+            Err(message) => outcome.not_read.push(message),
+        }
     }
-    Ok((text, same))
+    Ok(outcome)
+}
+
+/// What became of the studies of a file.
+#[derive(Default)]
+struct Outcome {
+    text: String,
+    differs: bool,
+    /// Why studies could not be compared.
+    not_read: Vec<String>,
 }
 
 /// The scan: the one given, else the file of the findings' name beside them.
@@ -76,9 +97,9 @@ fn source_path(arguments: &RecheckArgs, study: &serde_json::Value) -> Result<Pat
 fn words(study: &serde_json::Value, verdict: &Verdict) -> String {
     let word = |key: &str| study["source"][key].as_str().unwrap_or("?").to_owned();
     let name = format!("{}, {}", word("file_name"), word("curve"));
-    let basis = match &verdict.other_version {
+    let basis = match &verdict.other_maker {
         None => "this version, every digit".to_owned(),
-        Some(version) => format!("made by version {version}, compared to 1e-9"),
+        Some(maker) => format!("made by {maker}, compared to 1e-9"),
     };
     let count = verdict.differences.len();
     if count == 0 {

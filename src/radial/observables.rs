@@ -94,16 +94,8 @@ fn crossings(effective: &dyn Fn(f64) -> f64, energy_hartree: f64, r_bohr: &[f64]
         let crossed = [(above > 0).then_some(above + 1), (outer < r_bohr.len() - 1).then_some(outer)];
         return crossed.into_iter().flatten().map(at).collect();
     }
-    let mut found = Vec::new();
-    let mut last = effective_hartree[1] - energy_hartree;
-    for i in 2..r_bohr.len() - 1 {
-        let now = effective_hartree[i] - energy_hartree;
-        if (last > 0.0) != (now > 0.0) {
-            found.push(at(i));
-        }
-        last = now;
-    }
-    found
+    let above = |i: usize| effective_hartree[i] > energy_hartree;
+    (2..r_bohr.len() - 1).filter(|&i| above(i - 1) != above(i)).map(at).collect()
 }
 
 /// Root of `f` between `a` and `b`, where it has the values `fa` and `fb` of opposite sign: inverse quadratic

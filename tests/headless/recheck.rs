@@ -67,6 +67,24 @@ fn the_same_is_the_same_and_differences_are_named() {
     assert_eq!(status, Some(0), "{text}");
     assert!(text.contains("version 0.0.1"), "{text}");
 
+    // Made on another kind of machine: the same.
+    changed(&file, |v| {
+        for study in v.as_array_mut().expect("studies") {
+            study["made_by"]["version"] = env!("CARGO_PKG_VERSION").into();
+            study["made_by"]["platform"] = "abacus-wood".into();
+        }
+    });
+    let (status, text) = recheck(&file, &[]);
+    assert_eq!(status, Some(0), "{text}");
+    assert!(text.contains("on abacus-wood, compared to 1e-9"), "{text}");
+
+    // One study without its source: the other is compared all the same.
+    changed(&file, |v| v[0]["source"]["file_name"] = "gone.csv".into());
+    let (status, text) = recheck(&file, &[]);
+    assert_eq!(status, Some(3), "{text}");
+    assert!(text.contains("gone.csv is not beside it") && text.matches("the same").count() == 1, "{text}");
+    changed(&file, |v| v[0]["source"]["file_name"] = "lih_X_A.csv".into());
+
     // A source that has changed: its sum and what follows from it.
     let scan_text = fs::read_to_string(&source).expect("read");
     let moved = folder.path().join("elsewhere.csv");

@@ -19,7 +19,7 @@ pub(super) fn fit(findings: &FitFindings) -> Value {
     let request = &findings.request;
     let constants: Map<String, Value> =
         findings.constants_per_cm.iter().map(|(name, e)| ((*name).to_owned(), per_cm(*e))).collect();
-    let head = |degree: Option<u32>| json!({"model": request.family, "variable": request.variable, "degree": degree});
+    let head = |degree: Option<u32>| json!({"model": request.family, "variable": request.variable, "degree": degree, "power": request.power_in_use()});
     let (mut value, rest) = match &findings.result {
         Ok(fit) => {
             let factors: Vec<f64> = fit.parameters.iter().map(|p| parameter_unit(p.unit).1).collect();
