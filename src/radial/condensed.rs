@@ -5,7 +5,8 @@
 //! of the whole vector is s + yᵀ M x / yᵀ M y; a round costs one division and six sums a mode and keeps no vector of the
 //! length of the mesh. A mode so close to s that eliminating it would cost digits is kept beside the interface values.
 
-use super::chain::{Chain, MODES, guarded, nearest_mode, short_dot};
+use super::chain::{Chain, MODES, short_dot};
+use super::factors::{guarded, nearest_mode};
 
 /// The products of a mode's couplings: left·left, left·right, right·right, and a zero to fill the second pair.
 type Products = [f64; 4];

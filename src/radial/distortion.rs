@@ -5,7 +5,8 @@
 //! the elements of the level itself).
 
 use super::Solution;
-use super::chain::{Chain, Factors, dot};
+use super::chain::{Chain, dot};
+use super::factors::Factors;
 use super::search::Found;
 use super::solve::mesh_points;
 use crate::parallel::{WORTH_A_THREAD, in_halves};

@@ -5,6 +5,7 @@
 mod chain;
 mod condensed;
 mod distortion;
+mod factors;
 mod mesh;
 mod observables;
 mod outgoing;

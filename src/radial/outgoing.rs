@@ -1,6 +1,7 @@
 //! The elements of a chain eliminated at complex energy, and the outgoing wave beyond them.
 
-use super::chain::{Chain, close_to_mode};
+use super::chain::Chain;
+use super::factors::close_to_mode;
 use nalgebra::Complex;
 
 /// A complex number.

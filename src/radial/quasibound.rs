@@ -6,7 +6,8 @@
 //! conditioned as for a bound level, so that widths are right to their own relative accuracy however narrow. Each pole
 //! is found a second time from real energies alone ([`super::real_axis`]).
 
-use super::chain::{Chain, Factors};
+use super::chain::Chain;
+use super::factors::Factors;
 use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
 use super::outgoing::{C, outgoing_slope, pivot_at};
 use super::real_axis::{self, Search};

@@ -1,7 +1,8 @@
 //! Finding the levels of a chain: brackets from counts, Rayleigh-quotient iteration inside them.
 
-use super::chain::{Chain, Factors, dot};
+use super::chain::{Chain, dot};
 use super::condensed::{Condensed, Reduced, ReducedFactors, product, scale};
+use super::factors::Factors;
 use crate::parallel::side_by_side;
 
 /// Relative size of the unwanted part of a vector at which it is finished.

@@ -1,6 +1,7 @@
 //! From a potential to its levels: range, mesh, count, levels, error estimate.
 
-use super::chain::{Chain, Factors, node};
+use super::chain::{Chain, node};
+use super::factors::Factors;
 use super::mesh::{Ground, MeshDemand, Walk, effective, survey};
 use super::reference_element::ReferenceElement;
 use super::search::{Found, lowest_levels};
@@ -20,6 +21,8 @@ const LEAST_BINDING: f64 = 1e-15;
 const LEAST_ACCURACY: f64 = 3e-12;
 /// Rounding of an energy, relative to the depth searched (measured: up to 3e-12 on long tails).
 const ROUNDING: f64 = 2e-12;
+/// Rounding of an energy relative to its distance from the potential's zero (measured: up to 3e-16).
+const ROUNDING_OF_ZERO: f64 = 2e-15;
 /// Accuracy of the potential's polynomials in units of the accuracy of the energies.
 pub(super) const POTENTIAL_SHARE: f64 = 30.0;
 /// Rounds of refinement when the estimated error exceeds the accuracy asked for.
@@ -344,7 +347,10 @@ pub(super) fn solve(potential: &dyn Potential, request: &RadialRequest) -> Resul
         let errors = estimated_errors(&problem, &coarse?, &found);
         let depth = problem.demand.top_hartree - problem.demand.bottom_hartree;
         let worst = errors.iter().fold(0.0_f64, |a, &b| a.max(b));
-        let enough = worst <= request.relative_accuracy.max(LEAST_ACCURACY) * depth;
+        // What a zero far from the well costs no finer mesh brings back.
+        let zero = problem.demand.top_hartree.abs().max(problem.demand.bottom_hartree.abs());
+        let enough =
+            worst <= request.relative_accuracy.max(LEAST_ACCURACY) * depth + 2.0 * ROUNDING_OF_ZERO * zero;
         if enough || round == MOST_REFINEMENTS {
             let states = states(&problem, &found, &errors);
             return Ok(Solution { states, inner: Some(Inner { problem, found }) });
@@ -363,9 +369,12 @@ fn coarser(potential: &dyn Potential, problem: &Problem) -> Result<Chain, Radial
     Chain::without_vectors(demand.two_mu, boundaries, values, degree)
 }
 
-/// Twice the difference to the coarser problem, plus rounding.
+/// Twice the difference to the coarser problem, plus rounding: of the depth, and of the potential's own zero, which
+/// costs digits where it is far from the well.
 fn estimated_errors(problem: &Problem, coarse: &Chain, found: &[Found]) -> Vec<f64> {
-    let rounding = ROUNDING * (problem.demand.top_hartree - problem.demand.bottom_hartree);
+    let demand = &problem.demand;
+    let zero = demand.top_hartree.abs().max(demand.bottom_hartree.abs());
+    let rounding = ROUNDING * (demand.top_hartree - demand.bottom_hartree) + ROUNDING_OF_ZERO * zero;
     let error =
         |level: &Found| 2.0 * (problem.chain.energy_on(coarse, level) - level.energy).abs() + rounding;
     found.iter().map(error).collect()

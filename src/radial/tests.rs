@@ -325,3 +325,32 @@ fn the_stated_error_is_the_true_one_or_more() {
         assert!(found.beyond == 0 && median <= 100.0, "{} beyond", found.beyond);
     }
 }
+
+/// A zero of the potential far from the well costs digits; the error stated says so, and nothing hangs on them.
+#[test]
+fn a_far_zero_is_in_the_error_stated() {
+    let two_mu = 2.0 * 1605.0;
+    let well = |zero: f64| Function {
+        value: move |r: f64| zero + 0.1 * (1.0 - (-(r - 2.0)).exp()).powi(2),
+        range: ANY_R,
+        limit: zero + 0.1,
+        minimum: 2.0,
+    };
+    let own = solve_and_check(&well(0.0), &request(two_mu));
+    for zero in [-8.0, -113.0, -7000.0] {
+        let far = bound_states(&well(zero), &request(two_mu)).expect("levels");
+        let (mut worst, mut stated) = (0.0_f64, 0.0_f64);
+        for (a, b) in own.iter().zip(&far) {
+            let off = (a.energy_hartree - (b.energy_hartree - zero)).abs();
+            assert!(
+                off <= a.error_hartree + b.error_hartree,
+                "{zero} v = {}: {off:e}, {:e}",
+                a.v,
+                b.error_hartree
+            );
+            worst = worst.max(off);
+            stated = stated.max(b.error_hartree);
+        }
+        println!("zero at {zero} hartree: off by {worst:.1e} hartree at most, {stated:.1e} stated");
+    }
+}
