@@ -9,7 +9,7 @@ use super::{
     BoundState, HIGHEST_V_WITHOUT_LIMIT, Inner, MOST_LEVELS, RadialError, RadialRequest, Solution,
     Wavefunction,
 };
-use crate::parallel::{WORTH_A_THREAD, side_by_side};
+use crate::parallel::{WORTH_A_THREAD, in_halves, side_by_side};
 use crate::potential::Potential;
 use std::sync::Arc;
 
@@ -412,33 +412,31 @@ fn node_values(
 
 fn states(problem: &Problem, found: &[Found], errors: &[f64]) -> Vec<BoundState> {
     let (r_bohr, weight_bohr) = mesh_points(&problem.chain);
-    found
-        .iter()
-        .zip(errors)
-        .enumerate()
-        .map(|(v, (level, &error_hartree))| {
-            let mut psi = vec![0.0; r_bohr.len()];
-            problem.chain.to_nodes(&level.vector, &mut psi);
-            let largest = psi.iter().fold(0.0_f64, |a, b| a.max(b.abs()));
-            let first = psi.iter().find(|x| x.abs() > 1e-4 * largest);
-            if first.is_some_and(|x| *x < 0.0) {
-                psi.iter_mut().for_each(|x| *x = -*x);
-            }
-            let wavefunction = Wavefunction {
-                degree: problem.chain.reference.degree,
-                r_bohr: r_bohr.clone(),
-                weight_bohr: weight_bohr.clone(),
-                psi,
-            };
-            BoundState {
-                v,
-                energy_hartree: level.energy,
-                error_hartree,
-                nodes: wavefunction.nodes(),
-                wavefunction,
-            }
-        })
-        .collect()
+    let state = |v: usize| {
+        let level = &found[v];
+        let mut psi = vec![0.0; r_bohr.len()];
+        problem.chain.to_nodes(&level.vector, &mut psi);
+        let largest = psi.iter().fold(0.0_f64, |a, b| a.max(b.abs()));
+        let first = psi.iter().find(|x| x.abs() > 1e-4 * largest);
+        if first.is_some_and(|x| *x < 0.0) {
+            psi.iter_mut().for_each(|x| *x = -*x);
+        }
+        let wavefunction = Wavefunction {
+            degree: problem.chain.reference.degree,
+            r_bohr: r_bohr.clone(),
+            weight_bohr: weight_bohr.clone(),
+            psi,
+        };
+        BoundState {
+            v,
+            energy_hartree: level.energy,
+            error_hartree: errors[v],
+            nodes: wavefunction.nodes(),
+            wavefunction,
+        }
+    };
+    let all: Vec<usize> = (0..found.len()).collect();
+    in_halves(&all, WORTH_A_THREAD, |part| part.iter().map(|&v| state(v)).collect())
 }
 
 /// Mesh points and their lumped weights, in bohr.
