@@ -51,9 +51,11 @@ pub enum StudyError {
     /// Weights are asked of a column that the file does not have.
     #[error("weights: {0}")]
     Weights(ScanError),
-    /// A row is set aside that the scan does not have.
-    #[error("row {row} is set aside, but the scan has {rows} rows; counted from 0")]
+    /// A row is set aside or weighted that the scan does not have.
+    #[error("row {row} is {what}, but the scan has {rows} rows; counted from 0")]
     Row {
+        /// What is done to it.
+        what: &'static str,
         /// The row.
         row: usize,
         /// How many rows there are.

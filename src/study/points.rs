@@ -2,7 +2,7 @@
 
 use super::{StudyError, weights};
 use crate::findings::Point;
-use crate::fit::FitPoint;
+use crate::fit::{FitPoint, Weighting};
 use crate::notice::{Code, Notice};
 use crate::scan::inspect::{InspectedPoint, inspect};
 use crate::scan::{EnergyColumn, Scan};
@@ -19,7 +19,12 @@ pub fn points(
 ) -> Result<(Vec<Point>, Vec<Notice>), StudyError> {
     let rows = scan.bond_lengths.len();
     if let Some(wrong) = settings.set_aside.iter().find(|s| s.row >= rows) {
-        return Err(StudyError::Row { row: wrong.row, rows });
+        return Err(StudyError::Row { what: "set aside", row: wrong.row, rows });
+    }
+    if let Weighting::Point { rows: weights, .. } = &settings.fits.weights
+        && let Some(wrong) = weights.iter().find(|w| w.row >= rows)
+    {
+        return Err(StudyError::Row { what: "given a weight", row: wrong.row, rows });
     }
     let (given, remark) = weights::by_column(scan, column, &settings.fits.weights)?;
     let set_aside: BTreeMap<usize, &str> =

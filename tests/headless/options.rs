@@ -201,6 +201,20 @@ fn two_masses_and_settings_without_sense_are_refused() {
 }
 
 #[test]
+fn what_would_have_no_effect_is_said() {
+    let path = scan("lih_X_A.csv");
+    let path = path.to_str().expect("UTF-8");
+    let refused = |more: &[&str], status: i32, needle: &str| {
+        let output = study(&[&[path, "--atoms", "7Li,1H"], more].concat());
+        assert_eq!(output.status.code(), Some(status), "{more:?}");
+        assert!(text(&output.stderr).contains(needle), "{more:?}: {}", text(&output.stderr));
+    };
+    refused(&["--seed", "3"], 2, "--seed does nothing without --bootstrap");
+    refused(&["--tail-points", "5"], 2, "--tail-points does nothing without --tail-power");
+    refused(&["--weights", "rows=999:0.5"], 3, "row 999 is given a weight, but the scan has 70 rows");
+}
+
+#[test]
 fn thermal_averages_by_option_and_as_a_table() {
     let folder = tempfile::tempdir().expect("a folder");
     let table = folder.path().join("t.csv");

@@ -180,6 +180,20 @@ impl StudyChoices {
     }
 }
 
+impl StudyChoices {
+    /// An option that has no effect as it stands, and the one that it needs. A settings file may hold that one.
+    pub(super) fn idle(&self) -> Option<(&'static str, &'static str)> {
+        if self.settings_file.is_some() {
+            return None;
+        }
+        let pairs = [
+            (self.seed.is_some() && self.bootstrap_repeats.is_none(), "seed", "bootstrap"),
+            (self.tail_fit_points.is_some() && self.tail_power.is_none(), "tail-points", "tail-power"),
+        ];
+        pairs.into_iter().find(|(idle, ..)| *idle).map(|(_, option, needed)| (option, needed))
+    }
+}
+
 /// Takes `--set-aside`, which only commands have that study one scan after the other by themselves.
 pub(super) fn set_aside(parser: &mut Parser, choices: &mut StudyChoices) -> Result<(), UsageError> {
     let list = |t: &str| t.split(',').map(|r| finite(r.trim()).filter(|r| *r > 0.0)).collect();

@@ -71,6 +71,14 @@ pub enum UsageError {
     /// Two ways to say the mass.
     #[error("--atoms and --reduced-mass both give the mass; keep one")]
     TwoMasses,
+    /// An option that does nothing without another one.
+    #[error("--{option} does nothing without --{needed}: give both, or neither")]
+    Needs {
+        /// The option.
+        option: &'static str,
+        /// The one it goes with.
+        needed: &'static str,
+    },
     /// A command that takes one file has none or several.
     #[error("{command}: name one file, not {count}")]
     OneFile {
@@ -141,6 +149,9 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
     }
     if choices.atoms.is_some() && choices.reduced_mass_u.is_some() {
         return Err(UsageError::TwoMasses);
+    }
+    if let Some((option, needed)) = choices.idle() {
+        return Err(UsageError::Needs { option, needed });
     }
     let one = |command, files: Vec<PathBuf>| match <[PathBuf; 1]>::try_from(files) {
         Ok([file]) => Ok(file),
@@ -244,6 +255,21 @@ mod tests {
 
     fn parsed(text: &str) -> Result<Command, UsageError> {
         parse(text.split_whitespace().map(OsString::from))
+    }
+
+    #[test]
+    fn an_option_that_would_do_nothing_is_refused() {
+        for (text, option, needed) in [
+            ("study a.csv --seed 3", "seed", "bootstrap"),
+            ("a.csv --tail-points 5", "tail-points", "tail-power"),
+        ] {
+            let refused = parsed(text).err().map(|e| e.to_string()).unwrap_or_default();
+            assert!(refused.starts_with(&format!("--{option} does nothing without --{needed}")), "{refused}");
+            // A settings file may hold the other one.
+            assert!(parsed(&format!("{text} --settings s.json")).is_ok(), "{text}");
+        }
+        assert!(parsed("study a.csv --seed 3 --bootstrap 200").is_ok());
+        assert!(parsed("study a.csv --tail-points 5 --tail-power 6").is_ok());
     }
 
     #[test]
