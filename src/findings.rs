@@ -297,9 +297,14 @@ impl Findings {
         self.fits.iter().find(|f| f.request.family == family && f.result.is_ok())
     }
 
+    /// That fit itself.
+    pub fn fit_of(&self, family: Family) -> Option<&Fit> {
+        self.found_fit(family)?.result.as_ref().ok()
+    }
+
     /// The Morse function of the first Morse fit that succeeded.
     pub fn morse(&self) -> Option<Morse> {
-        match self.found_fit(Family::Morse)?.result.as_ref().ok()?.model {
+        match self.fit_of(Family::Morse)?.model {
             Model::Morse(morse) => Some(morse),
             _ => None,
         }
