@@ -102,11 +102,39 @@ pub struct StudyScan {
     /// The table itself in hexadecimal digits, where it is not UTF-8 text.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub hex: Option<String>,
+    /// In the place of a table: text logs, a point each.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub logs: Option<StudyLogs>,
     /// How it is read, and what new curves of it start from.
     pub start: Settings,
     /// Its curves.
     #[serde(default)]
     pub curves: Vec<StudyCurve>,
+}
+
+/// Text logs of one scan.
+#[derive(Clone, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct StudyLogs {
+    /// Where they are: files, or a folder that stands for the files in it. Relative paths as those of a table.
+    pub paths: Vec<String>,
+    /// The logs themselves, where there is room.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub files: Vec<StudyLog>,
+}
+
+/// A text log.
+#[derive(Clone, Debug, Default, PartialEq, Eq, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct StudyLog {
+    /// File name without folder.
+    pub file_name: String,
+    /// What stands in it, where it is text.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub text: Option<String>,
+    /// The same in hexadecimal digits, where it is not UTF-8 text.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub hex: Option<String>,
 }
 
 /// A curve.
@@ -151,24 +179,58 @@ impl StudyScan {
         if bytes.len() > CARRIED_BYTES && self.path.is_some() {
             return;
         }
-        match std::str::from_utf8(bytes) {
-            Ok(text) => self.text = Some(text.to_owned()),
-            Err(_) => self.hex = Some(bytes.iter().map(|b| format!("{b:02x}")).collect()),
-        }
+        (self.text, self.hex) = written(bytes);
     }
 
     /// The table that was put in.
     pub fn carried(&self) -> Option<Vec<u8>> {
-        if let Some(text) = &self.text {
-            return Some(text.clone().into_bytes());
-        }
-        let digits = self.hex.as_ref()?.as_bytes();
-        let pair = |p: &[u8]| u8::from_str_radix(std::str::from_utf8(p).ok()?, 16).ok();
-        if !digits.len().is_multiple_of(2) {
-            return None;
-        }
-        digits.chunks(2).map(pair).collect()
+        written_bytes(self.text.as_deref(), self.hex.as_deref())
     }
+}
+
+impl StudyLogs {
+    /// Puts the logs in, where they are small or could not be found again.
+    pub fn carry<'a>(&mut self, files: impl Iterator<Item = (&'a str, &'a [u8])> + Clone) {
+        let size: usize = files.clone().map(|(_, bytes)| bytes.len()).sum();
+        if size > CARRIED_BYTES && !self.paths.is_empty() {
+            return;
+        }
+        let put = |(name, bytes): (&str, &[u8])| {
+            let (text, hex) = written(bytes);
+            StudyLog { file_name: name.to_owned(), text, hex }
+        };
+        self.files = files.map(put).collect();
+    }
+
+    /// The logs that were put in, by name; none where there are none or one is damaged.
+    pub fn carried(&self) -> Option<Vec<(String, Vec<u8>)>> {
+        let one = |log: &StudyLog| {
+            let bytes = written_bytes(log.text.as_deref(), log.hex.as_deref())?;
+            Some((log.file_name.clone(), bytes))
+        };
+        let all: Option<Vec<_>> = self.files.iter().map(one).collect();
+        all.filter(|files| !files.is_empty())
+    }
+}
+
+/// Bytes as text, or in hexadecimal digits where they are none.
+fn written(bytes: &[u8]) -> (Option<String>, Option<String>) {
+    match std::str::from_utf8(bytes) {
+        Ok(text) => (Some(text.to_owned()), None),
+        Err(_) => (None, Some(bytes.iter().map(|b| format!("{b:02x}")).collect())),
+    }
+}
+
+fn written_bytes(text: Option<&str>, hex: Option<&str>) -> Option<Vec<u8>> {
+    if let Some(text) = text {
+        return Some(text.as_bytes().to_vec());
+    }
+    let digits = hex?.as_bytes();
+    let pair = |p: &[u8]| u8::from_str_radix(std::str::from_utf8(p).ok()?, 16).ok();
+    if !digits.len().is_multiple_of(2) {
+        return None;
+    }
+    digits.chunks(2).map(pair).collect()
 }
 
 impl StudyFile {
@@ -270,6 +332,19 @@ mod tests {
         assert_eq!(scan.carried().as_deref(), Some(&bytes[..]));
         scan.hex = Some("0g".into());
         assert_eq!(scan.carried(), None);
+    }
+
+    #[test]
+    fn logs_are_carried_with_their_names() {
+        let mut logs = StudyLogs::default();
+        let files: [(&str, &[u8]); 2] = [("a.log", b"r = 1\n"), ("b.log", b"\xff")];
+        logs.carry(files.into_iter());
+        let text = serde_json::to_string(&logs).expect("written");
+        let read: StudyLogs = serde_json::from_str(&text).expect("read");
+        assert_eq!(read.carried(), Some(files.map(|(n, b)| (n.to_owned(), b.to_vec())).to_vec()));
+        assert_eq!(StudyLogs::default().carried(), None);
+        logs.files[1].hex = Some("f".into());
+        assert_eq!(logs.carried(), None);
     }
 
     #[test]

@@ -8,6 +8,7 @@ use super::files::{Done, Files};
 use super::job::{Request, StudyJob, broken_off, compute};
 use super::keeper::Keeper;
 use super::preferences::dress;
+use super::reading::{self, ReadingCommand, ReadingEffect};
 use super::state::{CurveKey, Failure, Page, PathPurpose, Progress, State, Study};
 use super::watch::{Watch, Watched, Watching};
 use super::{Program, look, panels};
@@ -91,6 +92,11 @@ impl App {
         if start.files.is_empty() && !start.empty {
             app.files.read_sample(0, start.settings.clone());
         }
+        app.files.remembered = Arc::clone(&app.state.view.reading.remembered);
+        if start.settings.read.lines.is_some() && !start.files.is_empty() {
+            app.files.read_log_paths(start.files, start.settings);
+            return app;
+        }
         for path in start.files {
             app.files.read(path, start.settings.clone());
         }
@@ -115,6 +121,7 @@ impl App {
     }
 
     fn carry_out(&mut self, effect: Effect, ctx: &egui::Context) {
+        self.files.remembered = Arc::clone(&self.state.view.reading.remembered);
         match effect {
             Effect::AskOpen => self.files.ask_open(),
             Effect::AskSave { product, name } => self.files.ask_save(PathPurpose::Write(product), name),
@@ -148,14 +155,46 @@ impl App {
                 }
             }
             Effect::ListFolder(text) => self.files.list(text),
+            Effect::Reading(effect) => match effect {
+                ReadingEffect::Meanings(loaded) => self.files.meanings(*loaded),
+                ReadingEffect::AskLogs => self.files.ask_logs(),
+                ReadingEffect::AskPaste => ctx.send_viewport_cmd(egui::ViewportCommand::RequestPaste),
+                ReadingEffect::OpenLogs(paths, patterns) => self.files.open_logs(paths, patterns),
+                ReadingEffect::TryLogs(logs) => self.files.try_logs(*logs),
+                ReadingEffect::ReadLogs(logs) => self.files.read_logs(*logs),
+            },
         }
     }
 
     fn take_done(&mut self, done: Done, ctx: &egui::Context) {
         match done {
             Done::Scan(loaded) => apply::take_scan(loaded, &mut self.state),
-            Done::Reread(loaded) => apply::take_reread(loaded, &mut self.state),
-            Done::Folder(scans, refused) => apply::take_folder(scans, refused, &mut self.state),
+            Done::ScanAsBefore(loaded) => {
+                let name = loaded.scan.file_name.clone();
+                apply::take_scan(loaded, &mut self.state);
+                reading::tell_as_before(&name, &mut self.state);
+            }
+            Done::Looked(looked) => self.state.view.reading.looked = Some(looked),
+            Done::Logs(logs) => {
+                let found = logs.as_ref().ok().map(|logs| logs.read.clone());
+                reading::take_logs(logs, &mut self.state);
+                // What was used last may fit these as well.
+                if let Some(read) = found.filter(|read| read.lines.is_some()) {
+                    self.give(Command::Reading(ReadingCommand::TryLogs(read)), ctx);
+                }
+            }
+            Done::Tried(read, tried) => reading::take_tried(read, tried, &mut self.state),
+            Done::LogsRefused(text) => reading::take_logs_refused(text, &mut self.state),
+            Done::Reread(loaded) => {
+                let key = loaded.key;
+                apply::take_reread(loaded, &mut self.state);
+                if self.state.view.columns_of == Some(key) {
+                    self.give(Command::ShowColumns(Some(key)), ctx);
+                }
+            }
+            Done::Folder(scans, refused, left_out) => {
+                apply::take_folder(scans, refused, left_out, &mut self.state);
+            }
             Done::Problem(problem) => apply::take_problem(problem, &mut self.state),
             Done::Chosen(PathPurpose::Open, paths) => {
                 for path in paths {
@@ -172,6 +211,10 @@ impl App {
                 for path in paths {
                     self.give(Command::SaveStudyTo { path, overwrite: true }, ctx);
                 }
+            }
+            Done::Chosen(PathPurpose::Logs, paths) if paths.is_empty() => {}
+            Done::Chosen(PathPurpose::Logs, paths) => {
+                self.give(Command::Reading(ReadingCommand::OpenLogs(paths)), ctx);
             }
             Done::Study(opened) => apply::take_opened(*opened, &mut self.state),
             Done::Saved(result) => apply::take_saved(result, &mut self.state),
@@ -239,14 +282,16 @@ impl App {
         let scans = state.document.scans.iter().filter(|s| !state.view.changed.contains(&s.key));
         let mut watched: Vec<Watched> = scans
             .filter_map(|s| {
-                let (path, modified) = (s.path.clone()?, s.modified?);
-                Some(Watched { what: Watching::Scan(s.key), path, modified })
+                let paths =
+                    s.logs.as_ref().map_or_else(|| s.path.iter().cloned().collect(), |l| l.paths.clone());
+                let modified = s.modified.filter(|_| !paths.is_empty())?;
+                Some(Watched { what: Watching::Scan(s.key), paths, modified })
             })
             .collect();
         let origin = state.document.origin;
         watched.extend(state.kept.get(&origin).and_then(|kept| {
-            let (path, modified) = (kept.path.clone(), kept.modified?);
-            Some(Watched { what: Watching::Study(origin), path, modified })
+            let (paths, modified) = (vec![kept.path.clone()], kept.modified?);
+            Some(Watched { what: Watching::Study(origin), paths, modified })
         }));
         watch.set(watched, ctx.input(|i| i.focused));
     }

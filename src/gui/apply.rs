@@ -3,6 +3,7 @@
 use super::command::Command;
 use super::densities::DensityView;
 use super::product::Product;
+use super::reading::{self, ReadingCommand, ReadingEffect};
 pub use super::saving::*;
 use super::session::Work;
 use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Resampling, Search, State, Zoom};
@@ -11,7 +12,8 @@ use crate::export::compare::Quantity;
 use crate::export::parameters;
 use crate::figure::geometry::Bounds;
 use crate::fit::{BootstrapSettings, Family, RowWeight, Weighting};
-use crate::settings::{SetAside, Settings};
+use crate::settings::{PointNote, SetAside, Settings};
+use std::collections::BTreeSet;
 use std::path::PathBuf;
 use std::sync::Arc;
 
@@ -82,6 +84,8 @@ pub enum Effect {
     Discard(u64),
     /// Leave unsaved work of earlier windows for later.
     Leave,
+    /// Something about how files are read.
+    Reading(ReadingEffect),
 }
 
 /// Carries one command out and says what else has to happen.
@@ -96,7 +100,26 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
     }
     match command {
         Command::Open => return vec![Effect::AskOpen],
-        Command::OpenPath(path) => return vec![Effect::Read(path)],
+        Command::OpenPath(path) => {
+            // Who reads a refused file again wants to see what comes of it now.
+            if state.view.problem.as_ref().is_some_and(|p| p.path.as_ref() == Some(&path)) {
+                reading::next_problem(state);
+            }
+            return vec![Effect::Read(path)];
+        }
+        // Another way of reading logs that are a scan already.
+        Command::Reading(ReadingCommand::ReadLogs)
+            if let Some((scan, read)) =
+                state.view.reading.logs.as_ref().and_then(|l| Some((l.of?, l.read.clone()))) =>
+        {
+            return apply(Command::ReadWith { scan, read }, state);
+        }
+        Command::Reading(command) => {
+            return reading::apply(command, state).map(Effect::Reading).into_iter().collect();
+        }
+        Command::ShowColumns(Some(key)) => {
+            return reading::show_columns(key, state).map(Effect::Reading).into_iter().collect();
+        }
         Command::OpenSample(index) => return vec![Effect::ReadSample(index)],
         Command::ReadAgain(read) => {
             if let Some(problem) = &mut state.view.problem {
@@ -235,9 +258,7 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 s.masses.reduced_mass_u = None;
             });
         }
-        Command::SetCharge(charge) => {
-            edit(state, "change the charge", true, |s| s.masses.charge = Some(*charge))
-        }
+        Command::SetCharge(charge) => edit(state, "change the charge", true, |s| s.masses.charge = *charge),
         Command::SetReducedMass(mass) => {
             if mass.is_none_or(|m| m.is_finite() && m > 0.0) {
                 edit(state, "give the reduced mass", true, |s| s.masses.reduced_mass_u = *mass);
@@ -267,6 +288,23 @@ fn change_document(command: &Command, state: &mut State) -> bool {
             s.set_aside.retain(|a| a.row != *row);
             s.set_aside.push(SetAside { row: *row, reason: "set aside by hand".into() });
             s.set_aside.sort_by_key(|a| a.row);
+        }),
+        Command::SetRowsAside { rows, reason } => edit(state, "set points aside", false, |s| {
+            s.kept.retain(|r| !rows.contains(r));
+            let known: BTreeSet<usize> = s.set_aside.iter().map(|a| a.row).collect();
+            let new = rows.iter().filter(|row| !known.contains(row));
+            s.set_aside.extend(new.map(|&row| SetAside { row, reason: reason.clone() }));
+            s.set_aside.sort_by_key(|a| a.row);
+        }),
+        Command::RestoreRows(rows) => edit(state, "use points again", false, |s| {
+            s.set_aside.retain(|a| !rows.contains(&a.row));
+        }),
+        Command::SetNote { row, text } => edit(state, "write a note", true, |s| {
+            s.notes.retain(|n| n.row != *row);
+            if !text.is_empty() {
+                s.notes.push(PointNote { row: *row, text: text.clone() });
+                s.notes.sort_by_key(|n| n.row);
+            }
         }),
         Command::SetReason { row, reason } => edit(state, "say why a point is set aside", true, |s| {
             if let Some(aside) = s.set_aside.iter_mut().find(|a| a.row == *row) {
@@ -416,7 +454,7 @@ fn change_view(command: Command, state: &mut State) {
         Command::ShowKeys(open) => view.keys_open = open,
         Command::ShowGuide(open) => view.guide = open,
         Command::ClosePathWindow => view.path_window = None,
-        Command::DropProblem => view.problem = None,
+        Command::DropProblem => reading::next_problem(state),
         Command::DismissMessage => view.message = None,
         _ => {}
     }

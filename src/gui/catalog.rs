@@ -2,8 +2,9 @@
 
 use super::command::{Command, InterfaceSize};
 use super::product::Product;
+use super::reading::ReadingCommand;
 use super::samples::SAMPLES;
-use super::state::{Page, Preset, State, Strip};
+use super::state::{Page, Preset, Problem, State, Strip};
 
 /// Where a command is found.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -83,7 +84,9 @@ pub struct Entry {
 }
 
 /// The menu of files, without its lists.
-pub const FILE_MENU: [Command; 5] = [
+pub const FILE_MENU: [Command; 7] = [
+    Command::Reading(ReadingCommand::AskLogs),
+    Command::Reading(ReadingCommand::AskPaste),
     Command::SaveStudy,
     Command::SaveStudyAs,
     Command::ReopenStudy,
@@ -154,7 +157,13 @@ pub fn entries(state: &State) -> Vec<Entry> {
     }
     let meanings = state.view.problem.iter().flat_map(|p| p.meanings.iter().map(move |m| (p, m)));
     put(Place::Now, meanings.map(|(p, m)| m.command(&p.start.read)).collect());
+    put(Place::Now, state.view.problem.iter().filter_map(Problem::as_logs).collect());
     let now = [
+        Command::Reading(ReadingCommand::ProblemColumns(true)),
+        Command::DropProblem,
+        Command::Reading(ReadingCommand::ShowRefused),
+        Command::Reading(ReadingCommand::ReadLogs),
+        Command::Reading(ReadingCommand::CloseLogs),
         Command::StopComputing,
         Command::ComputeAgain,
         Command::CopyReport,

@@ -2,6 +2,7 @@
 
 use super::densities::DensityView;
 use super::product::Product;
+use super::reading::ReadingCommand;
 use super::state::{AxisView, CurveKey, FitsPart, Page, Preset, Reference, Resampling, State, Strip};
 use crate::export::compare::{Form, Quantity};
 use crate::export::parameters::ParameterUnits;
@@ -38,6 +39,8 @@ pub enum Command {
         /// How it is read.
         read: ReadSettings,
     },
+    /// Something about how files are read.
+    Reading(ReadingCommand),
     /// Put the refused file away.
     DropProblem,
     /// Take the focused curve's scan out of the window.
@@ -62,8 +65,8 @@ pub enum Command {
     },
     /// Name the two atoms.
     SetAtoms([AtomChoice; 2]),
-    /// Set the molecule's charge.
-    SetCharge(i32),
+    /// Set the molecule's charge, or take that of the file again.
+    SetCharge(Option<i32>),
     /// Give the reduced mass directly (u), or take the atoms again.
     SetReducedMass(Option<f64>),
     /// Look at the buttons of the atoms.
@@ -99,6 +102,22 @@ pub enum Command {
     SetAside(usize),
     /// Use a row again.
     Restore(usize),
+    /// Leave several rows out for one reason.
+    SetRowsAside {
+        /// The rows.
+        rows: Vec<usize>,
+        /// Why.
+        reason: String,
+    },
+    /// Use several rows again.
+    RestoreRows(Vec<usize>),
+    /// Write a note on a row.
+    SetNote {
+        /// The row.
+        row: usize,
+        /// The note.
+        text: String,
+    },
     /// Say why a row is left out.
     SetReason {
         /// The row.
@@ -353,6 +372,8 @@ impl Command {
             Self::ShowSearch(_) => "Commands …".into(),
             Self::ShowKeys(_) => "Keys and mouse".into(),
             Self::ShowGuide(_) => "User guide".into(),
+            Self::Reading(command) => command.label().into(),
+            Self::DropProblem => "Put away".into(),
             _ => String::new(),
         }
     }
@@ -386,6 +407,8 @@ impl Command {
             Self::DiscardWork => "Discard unsaved work".into(),
             Self::LeaveWork => "Leave unsaved work for later".into(),
             Self::StopComputing => "Stop computing".into(),
+            Self::Reading(command) => command.name().into(),
+            Self::DropProblem => "Put the refused file away".into(),
             _ => self.label(),
         }
     }
@@ -467,6 +490,8 @@ impl Command {
             Self::Restore(_) => "Use this point again.",
             Self::ShowColumns(Some(_)) => "Which column is what, and in which unit.",
             Self::Reload(_) => "The file has changed on disk: read it again, with all settings kept.",
+            Self::Reading(command) => command.tooltip(),
+            Self::DropProblem => "Leave this file; the file stays as it is.",
             Self::NameAtoms => "Show where the atoms are named.",
             Self::SetAsymptote { energy: None, .. } => {
                 "Let the program assume the energy of the separated atoms."
@@ -547,6 +572,8 @@ impl Command {
                 need(study.is_some_and(|s| !s.pictures.sentence.why.is_empty()), "There is no sentence yet.")
             }
             Self::ShowHints(true) => need(study.is_some(), "There is no picture yet."),
+            Self::Reading(command) => command.is_enabled(state),
+            Self::DropProblem => need(state.view.problem.is_some(), "No file was refused."),
             Self::DismissMessage => need(state.view.message.is_some(), "There is no message."),
             Self::ForgetRecent => need(!state.recent.is_empty(), "The list is empty."),
             Self::RestoreWork | Self::DiscardWork | Self::LeaveWork => {

@@ -1,20 +1,23 @@
 //! Files and dialogs, kept off the frame: every read, write and dialog runs on a thread of its own.
 
 use super::autosave::{self, Slot};
+use super::log_files::{log_set, scan_of_logs};
 use super::meaning::meanings;
 use super::preferences::Preferences;
 use super::product::Product;
+use super::reading::{Logs, Looked, Remembered};
 use super::samples::SAMPLES;
 use super::saving::SavedStudy;
 use super::session::{self, Opened, Work, sha256_of};
-use super::state::{Leftover, LoadedScan, PathPurpose, Problem};
+use super::state::{Asks, Leftover, LoadedScan, PathPurpose, Problem};
 use crate::figure::drawing::Paper;
 use crate::files::{Replace, WriteError};
 use crate::findings::Findings;
 use crate::scan::error::ScanError;
-use crate::scan::read::read_scan;
+use crate::scan::read::{ReadSettings, Tried, preview, read_scan};
 use crate::settings::Settings;
 use crate::study_file::is_study_file;
+use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::path::{Path, PathBuf};
 use std::sync::{Arc, mpsc};
 use std::time::{Duration, Instant};
@@ -22,7 +25,7 @@ use std::time::{Duration, Instant};
 /// A dialog that comes back without a choice sooner than this was never shown.
 const NO_DIALOG: Duration = Duration::from_millis(300);
 /// No more files of a folder are read.
-const MOST_FILES: usize = 1000;
+pub(super) const MOST_FILES: usize = 1000;
 /// Larger files are refused before they are read.
 pub(super) const MOST_BYTES: u64 = 64 << 20;
 
@@ -33,8 +36,18 @@ pub enum Done {
     Scan(LoadedScan),
     /// A scan was read again; its key says which.
     Reread(LoadedScan),
-    /// The files of a folder that could be read, and the names of those that could not.
-    Folder(Vec<LoadedScan>, Vec<String>),
+    /// A scan was read as another one with its header was before.
+    ScanAsBefore(LoadedScan),
+    /// A look at the file of a scan.
+    Looked(Looked),
+    /// Text logs to be searched, or why there are none.
+    Logs(Result<Logs, String>),
+    /// What patterns catch.
+    Tried(ReadSettings, Tried),
+    /// Text logs were refused as a scan.
+    LogsRefused(String),
+    /// The files of a folder that could be read, those that could not, and how many were not looked at.
+    Folder(Vec<LoadedScan>, Vec<Problem>, usize),
     /// A file was refused.
     Problem(Problem),
     /// Files were chosen in a dialog.
@@ -64,13 +77,38 @@ pub struct Files {
     wake: Arc<dyn Fn() + Send + Sync>,
     inline: bool,
     under_way: usize,
+    /// Reads file after file, so that they come in the order in which they were given.
+    reader: Option<mpsc::Sender<Job>>,
+    /// How files were read before.
+    pub remembered: Arc<Remembered>,
+}
+
+type Job = Box<dyn FnOnce() -> Done + Send>;
+
+/// What came of the work; a panic is told, for the window waits for every answer.
+fn guarded(work: impl FnOnce() -> Done) -> Done {
+    catch_unwind(AssertUnwindSafe(work)).unwrap_or_else(|panic| {
+        let text = panic.downcast_ref::<&str>().map(|s| (*s).to_owned());
+        let text = text.or_else(|| panic.downcast_ref::<String>().cloned()).unwrap_or_default();
+        Done::Written(Err(format!(
+            "Working on a file broke off ({text}). This is a fault of the program; the file was left as it is."
+        )))
+    })
 }
 
 impl Files {
     /// `inline` does the work at once, for tests and pictures.
     pub fn new(wake: impl Fn() + Send + Sync + 'static, inline: bool) -> Self {
         let (sender, receiver) = mpsc::channel();
-        Self { sender, receiver, wake: Arc::new(wake), inline, under_way: 0 }
+        Self {
+            sender,
+            receiver,
+            wake: Arc::new(wake),
+            inline,
+            under_way: 0,
+            reader: None,
+            remembered: Arc::default(),
+        }
     }
 
     /// The next thing finished.
@@ -85,11 +123,12 @@ impl Files {
         self.under_way > 0
     }
 
+    /// On a thread of its own: for dialogs, which stay open, and whatever needs no order.
     fn run(&mut self, work: impl FnOnce() -> Done + Send + 'static) {
         self.under_way += 1;
         let (sender, wake) = (self.sender.clone(), Arc::clone(&self.wake));
         let all = move || {
-            let done = work();
+            let done = guarded(work);
             if sender.send(done).is_ok() {
                 wake();
             }
@@ -101,39 +140,74 @@ impl Files {
         }
     }
 
+    /// After what was asked for before.
+    pub(super) fn run_in_order(&mut self, work: impl FnOnce() -> Done + Send + 'static) {
+        if self.inline {
+            self.run(work);
+            return;
+        }
+        if self.reader.is_none() {
+            let (jobs, inbox) = mpsc::channel::<Job>();
+            let (sender, wake) = (self.sender.clone(), Arc::clone(&self.wake));
+            let all = move || {
+                while let Ok(job) = inbox.recv() {
+                    if sender.send(guarded(job)).is_err() {
+                        return;
+                    }
+                    wake();
+                }
+            };
+            let thread = std::thread::Builder::new().name("reader".into()).spawn(all);
+            self.reader = thread.is_ok().then_some(jobs);
+        }
+        match &self.reader {
+            Some(reader) if reader.send(Box::new(work)).is_ok() => self.under_way += 1,
+            _ => {}
+        }
+    }
+
     /// Reads a scan from a file; its studies start from these settings.
     pub fn read(&mut self, path: PathBuf, start: Settings) {
-        self.run(move || read_file(&path, start));
+        let remembered = Arc::clone(&self.remembered);
+        self.run_in_order(move || read_as_before(&path, start, &remembered));
     }
 
     /// Reads a bundled sample.
     pub fn read_sample(&mut self, index: usize, start: Settings) {
         if let Some(sample) = SAMPLES.get(index) {
-            self.run(move || match understand(sample.file_name, Arc::from(sample.bytes), None, start) {
-                Done::Scan(loaded) => Done::Scan(LoadedScan { is_sample: true, ..loaded }),
-                other => other,
+            self.run_in_order(move || {
+                match understand(sample.file_name, Arc::from(sample.bytes), None, start) {
+                    Done::Scan(loaded) => Done::Scan(LoadedScan { is_sample: true, ..loaded }),
+                    other => other,
+                }
             });
         }
     }
 
     /// Reads a table that was copied elsewhere.
     pub fn read_text(&mut self, text: String, start: Settings) {
-        self.run(move || understand("pasted table", Arc::from(text.into_bytes()), None, start));
+        self.run_in_order(move || understand("pasted table", Arc::from(text.into_bytes()), None, start));
     }
 
     /// Reads a scan again, from its file or from the bytes that were read before.
     pub fn reread(&mut self, loaded: LoadedScan, from_disk: bool) {
-        self.run(move || {
-            let LoadedScan { key, scan, path, bytes, modified, is_sample, start } = loaded;
-            let read = match path.as_ref().filter(|_| from_disk) {
-                Some(path) => read_file(path, start),
-                None => understand(&scan.file_name, bytes, path, start),
+        self.run_in_order(move || {
+            let LoadedScan { key, scan, path, bytes, logs, modified, is_sample, start } = loaded;
+            let read = match (logs, path) {
+                (Some(set), _) => {
+                    let set = if from_disk { log_set(&set.paths).map(Arc::new) } else { Ok(set) };
+                    let read = set.and_then(|set| scan_of_logs(&set, start));
+                    read.map_or_else(Done::LogsRefused, Done::Scan)
+                }
+                (None, Some(path)) if from_disk => read_file(&path, start),
+                (None, path) => understand(&scan.file_name, bytes, path, start),
             };
             match read {
                 Done::Scan(new) => {
                     let modified = if from_disk { new.modified } else { modified };
                     Done::Reread(LoadedScan { key, modified, is_sample, ..new })
                 }
+                Done::Problem(problem) => Done::Problem(Problem { of: Some(key), ..problem }),
                 other => other,
             }
         });
@@ -141,8 +215,16 @@ impl Files {
 
     /// Reads the bytes of a refused file with other settings.
     pub fn read_again(&mut self, problem: Problem) {
-        let Problem { file_name, path, bytes: Some(bytes), start, .. } = problem else { return };
-        self.run(move || understand(&file_name, bytes, path, start));
+        let Problem { file_name, path, bytes: Some(bytes), start, modified, of, .. } = problem else {
+            return;
+        };
+        self.run_in_order(move || match (understand(&file_name, bytes, path, start), of) {
+            (Done::Scan(loaded), None) => Done::Scan(LoadedScan { modified, ..loaded }),
+            // It was refused in the place of a scan, which it is again.
+            (Done::Scan(loaded), Some(key)) => Done::Reread(LoadedScan { key, modified, ..loaded }),
+            (Done::Problem(problem), of) => Done::Problem(Problem { of, modified, ..problem }),
+            (other, _) => other,
+        });
     }
 
     /// Writes something made of a study; refuses to replace a file unless told to.
@@ -199,6 +281,23 @@ impl Files {
         });
     }
 
+    /// Asks for a folder of text logs.
+    pub fn ask_logs(&mut self) {
+        if self.inline {
+            self.run(|| no_dialog(PathPurpose::Logs, String::new()));
+            return;
+        }
+        self.run(|| {
+            let start = Instant::now();
+            let dialog = rfd::FileDialog::new().set_title("Text logs: the folder they are in");
+            match dialog.pick_folder() {
+                Some(path) => Done::Chosen(PathPurpose::Logs, vec![path]),
+                None if start.elapsed() < NO_DIALOG => no_dialog(PathPurpose::Logs, String::new()),
+                None => Done::Chosen(PathPurpose::Logs, Vec::new()),
+            }
+        });
+    }
+
     /// Asks where to write something under this name.
     pub fn ask_save(&mut self, purpose: PathPurpose, name: String) {
         if self.inline {
@@ -250,22 +349,48 @@ pub(super) fn file_name_of(path: &Path) -> String {
     path.file_name().map_or_else(|| path.display().to_string(), |n| n.to_string_lossy().into_owned())
 }
 
+/// Reads a file; where nothing was chosen for it, as the last one with its header was read.
+fn read_as_before(path: &Path, start: Settings, remembered: &Remembered) -> Done {
+    let as_it_says = ReadSettings::default();
+    let before = || {
+        let is_open = start.read == as_it_says && !remembered.headers.is_empty();
+        let size = std::fs::metadata(path).ok().filter(|data| is_open && data.is_file())?.len();
+        let bytes = if size <= MOST_BYTES { std::fs::read(path).ok()? } else { return None };
+        remembered.of(&preview(&bytes, &as_it_says).header()?).cloned()
+    };
+    if path.is_dir() {
+        return read_folder(path, &start, remembered);
+    }
+    if let Some(read) = before()
+        && let Done::Scan(loaded) = read_file(path, Settings { read, ..start.clone() })
+    {
+        return Done::ScanAsBefore(loaded);
+    }
+    read_file(path, start)
+}
+
+/// A file that could not be read at all.
+fn unread(path: &Path, text: String) -> Problem {
+    Problem {
+        file_name: file_name_of(path),
+        path: Some(path.to_owned()),
+        bytes: None,
+        text,
+        start: Settings::default(),
+        modified: None,
+        of: None,
+        asks: Asks::Nothing,
+        meanings: Vec::new(),
+        preview: None,
+    }
+}
+
 fn read_file(path: &Path, start: Settings) -> Done {
     let file_name = file_name_of(path);
-    let refuse = |text: String| {
-        Done::Problem(Problem {
-            file_name: file_name_of(path),
-            path: Some(path.to_owned()),
-            bytes: None,
-            text,
-            start: Settings::default(),
-            ask_units: false,
-            meanings: Vec::new(),
-        })
-    };
+    let refuse = |text: String| Done::Problem(unread(path, text));
     let modified = match std::fs::metadata(path) {
         Err(error) => return refuse(format!("{}: {error}. Check the path.", path.display())),
-        Ok(data) if data.is_dir() => return read_folder(path, &start),
+        Ok(data) if data.is_dir() => return refuse(format!("{} is a folder.", path.display())),
         Ok(data) if data.len() > MOST_BYTES => {
             return refuse(format!("{} has {} bytes: too large for a scan.", path.display(), data.len()));
         }
@@ -278,6 +403,7 @@ fn read_file(path: &Path, start: Settings) -> Done {
         },
         Ok(bytes) => match understand(&file_name, Arc::from(bytes), Some(path.to_owned()), start) {
             Done::Scan(loaded) => Done::Scan(LoadedScan { modified, ..loaded }),
+            Done::Problem(problem) => Done::Problem(Problem { modified, ..problem }),
             other => other,
         },
         Err(error) => refuse(format!("{} could not be read: {error}.", path.display())),
@@ -285,7 +411,7 @@ fn read_file(path: &Path, start: Settings) -> Done {
 }
 
 /// Reads the files of a folder that are scans, by name; folders in it are left alone.
-fn read_folder(path: &Path, start: &Settings) -> Done {
+fn read_folder(path: &Path, start: &Settings, remembered: &Remembered) -> Done {
     let mut files: Vec<PathBuf> = match std::fs::read_dir(path) {
         Ok(entries) => entries.filter_map(Result::ok).map(|e| e.path()).filter(|p| p.is_file()).collect(),
         Err(error) => {
@@ -294,15 +420,24 @@ fn read_folder(path: &Path, start: &Settings) -> Done {
     };
     files.sort();
     files.retain(|p| !file_name_of(p).starts_with('.'));
+    let left_out = files.len().saturating_sub(MOST_FILES);
     files.truncate(MOST_FILES);
     let (mut scans, mut refused) = (Vec::new(), Vec::new());
     for file in files {
-        match read_file(&file, start.clone()) {
-            Done::Scan(loaded) => scans.push(loaded),
-            _ => refused.push(file_name_of(&file)),
+        match read_as_before(&file, start.clone(), remembered) {
+            Done::Scan(loaded) | Done::ScanAsBefore(loaded) => scans.push(loaded),
+            Done::Problem(problem) => refused.push(problem),
+            _ => refused.push(unread(&file, "This is a study file: open it by itself.".to_owned())),
         }
     }
-    Done::Folder(scans, refused)
+    // A folder of files none of which is a scan may be a scan as a whole: text logs, a point each.
+    let may_be_logs = |p: &Problem| p.preview.is_some() && matches!(p.asks, Asks::Nothing);
+    if scans.is_empty() && refused.len() > 1 && refused.iter().all(may_be_logs) {
+        let paths = [path.to_owned()];
+        let read = remembered.patterns.clone().unwrap_or_default();
+        return Done::Logs(log_set(&paths).map(|set| Logs::new(Arc::new(set), read)));
+    }
+    Done::Folder(scans, refused, left_out)
 }
 
 /// Reads bytes as a scan, or keeps them for another try.
@@ -315,6 +450,7 @@ pub fn understand(file_name: &str, bytes: Arc<[u8]>, path: Option<PathBuf>, star
             scan: Arc::new(scan),
             path,
             bytes,
+            logs: None,
             modified: None,
             is_sample: false,
             start,
@@ -322,9 +458,15 @@ pub fn understand(file_name: &str, bytes: Arc<[u8]>, path: Option<PathBuf>, star
         Err(error) => Done::Problem(Problem {
             file_name: file_name.to_owned(),
             path,
-            ask_units: asks_for_units(&error),
-            meanings: if asks_for_units(&error) { meanings(file_name, &bytes, &start) } else { Vec::new() },
+            meanings: match asks(&error) {
+                Asks::Units => meanings(file_name, &bytes, &start),
+                _ => Vec::new(),
+            },
+            asks: asks(&error),
+            modified: None,
+            of: None,
             text: words(&error),
+            preview: Some(preview(&bytes, &start.read)),
             bytes: Some(bytes),
             start,
         }),
@@ -347,6 +489,10 @@ fn words(error: &ScanError) -> String {
             let column = plain(column);
             format!("The unit of the energies (column {column}) is not stated. {remedy}, as in E_hartree.")
         }
+        ScanError::BondNotChosen { atoms, .. } => {
+            let count = atoms.len();
+            format!("The molecule has {count} atoms; choose the two whose distance is the bond length.")
+        }
         other => {
             let text = other.to_string();
             let mut letters = text.chars();
@@ -356,9 +502,13 @@ fn words(error: &ScanError) -> String {
     }
 }
 
-/// Whether naming units would settle the refusal.
-fn asks_for_units(error: &ScanError) -> bool {
-    matches!(error, ScanError::LengthUnitMissing { .. } | ScanError::EnergyUnitMissing { .. })
+/// What would settle the refusal.
+fn asks(error: &ScanError) -> Asks {
+    match error {
+        ScanError::LengthUnitMissing { .. } | ScanError::EnergyUnitMissing { .. } => Asks::Units,
+        ScanError::BondNotChosen { atoms, .. } => Asks::Bond(atoms.clone()),
+        _ => Asks::Nothing,
+    }
 }
 
 fn save_study(
@@ -387,5 +537,61 @@ fn save_study(
             Err((format!("{} exists and was left as it is.", there.display()), Some(path)))
         }
         Err(error) => Err((format!("{error}."), None)),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn finished(files: &mut Files, count: usize) -> Vec<Done> {
+        let start = Instant::now();
+        let mut all = Vec::new();
+        while all.len() < count {
+            all.extend(files.poll());
+            assert!(start.elapsed() < Duration::from_secs(60), "no answer");
+            std::thread::sleep(Duration::from_millis(1));
+        }
+        all
+    }
+
+    /// A long file given first comes first.
+    #[test]
+    fn files_come_in_the_order_given() {
+        let folder = tempfile::tempdir().expect("a folder");
+        let mut files = Files::new(|| {}, false);
+        for i in 0..12 {
+            let rows: String =
+                (0..(if i == 0 { 20_000 } else { 3 })).map(|r| format!("{}.5,-1\n", r + 1)).collect();
+            let path = folder.path().join(format!("scan_{i}.csv"));
+            std::fs::write(&path, format!("R_A,E_Eh\n{rows}")).expect("written");
+            files.read(path, Settings::default());
+        }
+        let names: Vec<String> = finished(&mut files, 12)
+            .into_iter()
+            .map(|done| match done {
+                Done::Scan(loaded) => loaded.scan.file_name.clone(),
+                other => panic!("{other:?}"),
+            })
+            .collect();
+        assert_eq!(names, (0..12).map(|i| format!("scan_{i}.csv")).collect::<Vec<_>>());
+        assert!(!files.is_busy());
+    }
+
+    /// A panic while a file is worked on is told, and the next file is read.
+    #[test]
+    fn a_panic_does_not_leave_the_window_busy() {
+        for inline in [false, true] {
+            let mut files = Files::new(|| {}, inline);
+            files.run_in_order(|| panic!("seven is bad"));
+            files.run(|| panic!("eight is bad"));
+            files.read_text("R_A,E_Eh\n1,2\n".to_owned(), Settings::default());
+            let done = finished(&mut files, 3);
+            assert!(!files.is_busy());
+            let failures =
+                done.iter().filter(|d| matches!(d, Done::Written(Err(text)) if text.contains("is bad")));
+            assert_eq!(failures.count(), 2, "{done:?}");
+            assert!(done.iter().any(|d| matches!(d, Done::Scan(_))), "{done:?}");
+        }
     }
 }

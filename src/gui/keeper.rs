@@ -4,11 +4,13 @@ use super::apply::{self, Effect};
 use super::autosave::{Autosave, Slot};
 use super::files::{Done, Files};
 use super::preferences::Preferences;
+use super::reading::Remembered;
 use super::session::Work;
 use super::state::{Message, State};
 use eframe::egui;
 use std::collections::BTreeMap;
 use std::path::PathBuf;
+use std::sync::Arc;
 
 /// Keeps the state of one window in a folder.
 pub(super) struct Keeper {
@@ -16,6 +18,7 @@ pub(super) struct Keeper {
     autosave: Option<Autosave>,
     leftovers: BTreeMap<u64, Slot>,
     recent: Vec<PathBuf>,
+    reading: Arc<Remembered>,
 }
 
 impl Keeper {
@@ -33,8 +36,11 @@ impl Keeper {
         files.look_for_leftovers(folder.clone());
         state.recent.clone_from(&remembered.recent);
         state.view.hints = !remembered.hints_seen;
-        state.preferences = Preferences { recent: Vec::new(), ..remembered.clone() };
-        Self { folder, autosave, leftovers: BTreeMap::new(), recent: remembered.recent }
+        let reading = Arc::new(remembered.reading.clone());
+        state.view.reading.remembered = Arc::clone(&reading);
+        state.preferences =
+            Preferences { recent: Vec::new(), reading: Remembered::default(), ..remembered.clone() };
+        Self { folder, autosave, leftovers: BTreeMap::new(), recent: remembered.recent, reading }
     }
 
     /// Takes note of the work as it is now.
@@ -47,6 +53,14 @@ impl Keeper {
         }
         if self.recent != state.recent {
             self.remember(state, files);
+        }
+        let now = &state.view.reading.remembered;
+        if !Arc::ptr_eq(&self.reading, now) {
+            let (before, now) = (std::mem::replace(&mut self.reading, Arc::clone(now)), Arc::clone(now));
+            files.remember(self.folder.clone(), move |p| {
+                let theirs = std::mem::take(&mut p.reading);
+                p.reading = Remembered::clone(&now).merged(&before, theirs);
+            });
         }
     }
 
@@ -67,7 +81,8 @@ impl Keeper {
             Effect::Prefer => {
                 let now = state.preferences.clone();
                 files.remember(self.folder.clone(), move |p| {
-                    *p = Preferences { recent: std::mem::take(&mut p.recent), ..now };
+                    let (recent, reading) = (std::mem::take(&mut p.recent), std::mem::take(&mut p.reading));
+                    *p = Preferences { recent, reading, ..now };
                 });
             }
             Effect::ForgetRecent => {

@@ -71,6 +71,18 @@ pub fn meanings(file_name: &str, bytes: &[u8], start: &Settings) -> Vec<Meaning>
     all
 }
 
+/// The same for every unit there is, whatever the file says.
+pub fn all_meanings(file_name: &str, bytes: &[u8], start: &Settings) -> Vec<Meaning> {
+    let (length, energy) = (LengthUnit::Angstrom, EnergyUnit::Hartree);
+    let read = ReadSettings { length_unit: Some(length), energy_unit: Some(energy), ..start.read.clone() };
+    let shape = read_scan(file_name, bytes, &read).ok().and_then(|scan| shape(&scan, start));
+    let Some(shape) = shape else { return Vec::new() };
+    LengthUnit::ALL
+        .into_iter()
+        .flat_map(|length| EnergyUnit::ALL.map(|energy| shape.meaning(length, energy)))
+        .collect()
+}
+
 /// The curve as if its file were in angstrom and hartree.
 struct Shape {
     r_e_bohr: f64,

@@ -1,8 +1,9 @@
 //! What the program remembers from one start to the next, beside any study: theme, size of the interface, files
-//! used last. One small file, shared by all windows: each change reads it anew under a lock.
+//! used last, how files were read. One small file, shared by all windows: each change reads it anew under a lock.
 
 use super::apply::Effect;
 use super::command::{Command, InterfaceSize};
+use super::reading::Remembered;
 use super::state::State;
 use crate::files::{Replace, write};
 use eframe::egui;
@@ -26,11 +27,14 @@ pub struct Preferences {
     pub hints_seen: bool,
     /// Files used last, the latest first.
     pub recent: Vec<PathBuf>,
+    /// How files were read.
+    pub reading: Remembered,
 }
 
 impl Default for Preferences {
     fn default() -> Self {
-        Self { dark: None, zoom: 1.0, still: false, hints_seen: false, recent: Vec::new() }
+        let (recent, reading) = (Vec::new(), Remembered::default());
+        Self { dark: None, zoom: 1.0, still: false, hints_seen: false, recent, reading }
     }
 }
 

@@ -6,8 +6,7 @@ use super::preferences::state_folder;
 use super::shell::{Renderer, ShellOptions, run as open_window};
 use super::state::Page;
 use crate::files::{self, Replace};
-use crate::headless::{WindowArgs, read_settings};
-use crate::scan::read::read_scan;
+use crate::headless::{Input, WindowArgs, read_settings};
 use crate::settings::Settings;
 use crate::study::study;
 use eframe::egui;
@@ -42,8 +41,8 @@ fn start_of(arguments: &WindowArgs) -> Result<(Start, Option<egui::Theme>), (u8,
     };
     arguments.choices.apply(&mut settings);
     let usage = |message: String| (WRONG_USAGE, message);
-    if settings.read.lines.is_some() {
-        let text = "text logs by patterns are read by parabound study, not by the window";
+    if settings.read.lines.is_some() && arguments.files.is_empty() {
+        let text = "patterns search text logs: name the files, or the folder they are in";
         return Err(usage(text.to_owned()));
     }
     let page = arguments.page.as_deref().map_or(Ok(Page::default()), page_of).map_err(usage)?;
@@ -94,17 +93,17 @@ fn window(start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u
 /// What `parabound study` would end with for the files in the picture: the picture shows the refusal, the
 /// status says it.
 fn status_of(start: &Start) -> u8 {
-    let one = |path: &Path| -> Result<u8, String> {
-        let bytes = std::fs::read(path).map_err(|e| format!("could not be read ({e})"))?;
-        let name = path.file_name().map_or_else(String::new, |n| n.to_string_lossy().into_owned());
-        let scan = read_scan(&name, &bytes, &start.settings.read).map_err(|e| e.to_string())?;
-        let findings = study(&scan, &start.settings).map_err(|e| e.to_string())?;
+    let settings = &start.settings;
+    let one = |files: &[std::path::PathBuf]| -> Result<u8, String> {
+        let scan = Input::read(files, &settings.read)?.scan(&settings.read)?;
+        let findings = study(&scan, settings).map_err(|e| e.to_string())?;
         Ok(if findings.impossible() { IMPOSSIBLE } else { DONE })
     };
-    let status = |path: &std::path::PathBuf| {
-        one(path).unwrap_or_else(|message| fail(NOT_READ, &format!("{}: {message}", path.display())))
+    let status = |files: Vec<std::path::PathBuf>| {
+        let place = files.first().map_or_else(String::new, |path| path.display().to_string());
+        one(&files).unwrap_or_else(|message| fail(NOT_READ, &format!("{place}: {message}")))
     };
-    start.files.iter().map(status).max().unwrap_or(DONE)
+    Input::groups(&start.files, &settings.read).into_iter().map(status).max().unwrap_or(DONE)
 }
 
 fn paint(path: &Path, start: Start, theme: Option<egui::Theme>, arguments: &WindowArgs) -> u8 {
@@ -140,10 +139,12 @@ mod tests {
     use super::*;
 
     #[test]
-    fn patterns_of_text_logs_are_not_dropped_in_silence() {
+    fn patterns_need_the_logs_to_be_named() {
         let mut arguments = WindowArgs::default();
         arguments.choices.length_pattern = Some("R = (\\S+)".to_owned());
-        assert!(start_of(&arguments).is_err_and(|(status, text)| status == 2 && text.contains("study")));
+        assert!(start_of(&arguments).is_err_and(|(status, text)| status == 2 && text.contains("folder")));
+        arguments.files = vec!["logs".into()];
+        assert!(start_of(&arguments).is_ok_and(|(start, _)| start.settings.read.lines.is_some()));
     }
 
     #[test]

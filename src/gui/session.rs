@@ -1,11 +1,13 @@
 //! The work of a window as a study file, and back.
 
 use super::files::{Done, file_name_of, understand};
+use super::log_files::{log_set, scan_of_logs};
+use super::reading::LogSet;
 use super::samples::SAMPLES;
 use super::state::{Document, LoadedScan, Page, Preset, State, Strip, Zoom};
 use crate::export::compare::Quantity;
 use crate::figure::geometry::Bounds;
-use crate::study_file::{FORMAT, Focus, Kept, StudyCurve, StudyFile, StudyScan, VERSION, View};
+use crate::study_file::{FORMAT, Focus, Kept, StudyCurve, StudyFile, StudyLogs, StudyScan, VERSION, View};
 use sha2::{Digest as _, Sha256};
 use std::collections::BTreeMap;
 use std::path::{Path, PathBuf};
@@ -74,6 +76,12 @@ impl Work {
             let mut scan = StudyScan {
                 file_name: loaded.scan.file_name.clone(),
                 path: loaded.path.as_deref().map(|path| written_path(path, folder)),
+                logs: loaded.logs.as_ref().map(|set| {
+                    let paths = set.paths.iter().map(|path| written_path(path, folder)).collect();
+                    let mut logs = StudyLogs { paths, files: Vec::new() };
+                    logs.carry(set.by_name());
+                    logs
+                }),
                 sha256: loaded.scan.sha256.clone(),
                 sample: loaded.is_sample,
                 text: None,
@@ -81,7 +89,7 @@ impl Work {
                 start: loaded.start.clone(),
                 curves: (0..loaded.scan.energies.len()).filter_map(curve).collect(),
             };
-            if !loaded.is_sample {
+            if !loaded.is_sample && loaded.logs.is_none() {
                 scan.carry(&loaded.bytes);
             }
             scan
@@ -183,6 +191,9 @@ impl Opened {
 /// The scan with its table, from its file where that is what it was, else as carried; false when the file
 /// is there and has changed.
 fn read_scan_of(scan: &StudyScan, folder: &Path) -> Result<(LoadedScan, bool), String> {
+    if let Some(logs) = &scan.logs {
+        return read_logs_of(scan, logs, folder);
+    }
     let path = scan.path.as_ref().map(|p| folder.join(p));
     let on_disk = path.as_deref().and_then(|path| {
         let data =
@@ -206,6 +217,27 @@ fn read_scan_of(scan: &StudyScan, folder: &Path) -> Result<(LoadedScan, bool), S
         Done::Problem(problem) => Err(problem.text),
         _ => Err("the table could not be read".into()),
     }
+}
+
+/// The same for a scan made of text logs.
+fn read_logs_of(scan: &StudyScan, logs: &StudyLogs, folder: &Path) -> Result<(LoadedScan, bool), String> {
+    let paths: Vec<PathBuf> = logs.paths.iter().map(|path| folder.join(path)).collect();
+    let read = |set: LogSet| scan_of_logs(&Arc::new(set), scan.start.clone());
+    let on_disk = log_set(&paths).and_then(read);
+    if let Ok(loaded) = &on_disk
+        && loaded.scan.sha256 == scan.sha256
+    {
+        return Ok((loaded.clone(), true));
+    }
+    let Some(carried) = logs.carried() else {
+        let why = |text| format!("the study file does not carry its logs, and on disk: {text}");
+        return on_disk.map(|loaded| (loaded, false)).map_err(why);
+    };
+    let files = carried.into_iter().map(|(name, bytes)| (name, Arc::from(bytes))).collect();
+    let is_gone = !paths.iter().any(|path| path.exists());
+    let place = folder.join(scan.path.as_deref().unwrap_or(&scan.file_name));
+    let loaded = read(LogSet { paths, folder: place, files, modified: None })?;
+    Ok((loaded, is_gone))
 }
 
 /// Reads a study file.

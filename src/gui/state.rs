@@ -7,6 +7,7 @@ use super::history::History;
 use super::meaning::Meaning;
 use super::preferences::Preferences;
 use super::product::Product;
+use super::reading::{LogSet, Reading, ReadingCommand};
 pub use super::view::{AxisView, Comparison, FitsPart, Page, Preset, Reference, Strip, Zoom};
 use crate::export::compare::Quantity;
 use crate::export::parameters::ParameterUnits;
@@ -15,6 +16,7 @@ use crate::figure::{Pictures, PlotPoint};
 use crate::findings::Findings;
 use crate::fit::Window;
 use crate::scan::Scan;
+use crate::scan::read::Preview;
 use crate::settings::Settings;
 use std::collections::{BTreeMap, BTreeSet};
 use std::path::PathBuf;
@@ -41,6 +43,8 @@ pub struct LoadedScan {
     pub path: Option<PathBuf>,
     /// What was read.
     pub bytes: Arc<[u8]>,
+    /// In the place of `bytes`: the text logs that were read, a point each.
+    pub logs: Option<Arc<LogSet>>,
     /// When the file was last changed as it was read.
     pub modified: Option<SystemTime>,
     /// Whether it came with the program.
@@ -138,6 +142,18 @@ pub struct Leftover {
     pub text: String,
 }
 
+/// What would settle a refusal.
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
+pub enum Asks {
+    /// Another file.
+    #[default]
+    Nothing,
+    /// Units.
+    Units,
+    /// Two of these atoms, between which the bond is; each with its number.
+    Bond(Vec<String>),
+}
+
 /// A file that was refused, with all that is needed to try again.
 #[derive(Clone, Debug)]
 pub struct Problem {
@@ -151,10 +167,24 @@ pub struct Problem {
     pub text: String,
     /// The settings it was read with, the units chosen so far among them.
     pub start: Settings,
-    /// Whether naming units would settle it.
-    pub ask_units: bool,
+    /// When the file was last changed.
+    pub modified: Option<SystemTime>,
+    /// The scan that it would be again, where one was read in another way.
+    pub of: Option<u64>,
+    /// What would settle it.
+    pub asks: Asks,
     /// What it would mean in each unit, where that is what is missing.
     pub meanings: Vec<Meaning>,
+    /// Its beginning; none where it could not be read at all.
+    pub preview: Option<Preview>,
+}
+
+impl Problem {
+    /// The command that searches its folder as text logs.
+    pub fn as_logs(&self) -> Option<Command> {
+        let folder = self.path.as_ref()?.parent().filter(|_| self.asks == Asks::Nothing)?;
+        Some(Command::Reading(ReadingCommand::OpenLogs(vec![folder.to_owned()])))
+    }
 }
 
 /// Which side panels are open; none: by the room there is.
@@ -209,6 +239,8 @@ pub struct ViewState {
     pub changed: BTreeSet<u64>,
     /// The scan whose columns are being looked at.
     pub columns_of: Option<u64>,
+    /// How files are read.
+    pub reading: Reading,
     /// The notice shown in full, counted from the top.
     pub open_notice: Option<usize>,
     /// Whether all notices are shown.
@@ -270,6 +302,8 @@ pub enum PathPurpose {
     Write(Product),
     /// Where a study goes.
     SaveStudy,
+    /// A folder of text logs.
+    Logs,
 }
 
 /// The built-in path window.

@@ -2,6 +2,7 @@
 
 use super::apply::forget_level;
 use super::command::Command;
+use super::reading::{self, ReadingCommand};
 use super::state::{
     CurveKey, Document, Failure, LoadedScan, Message, Outcome, PathPurpose, PathWindow, Problem, State, Study,
 };
@@ -38,12 +39,13 @@ fn add_scan(mut loaded: LoadedScan, state: &mut State) {
     // A bundled sample opens with the point of it all in sight: the first level that the parabola misses.
     let sample = loaded.is_sample;
     let path = loaded.path.clone();
-    document.scans.push(loaded);
+    document.scans.push(loaded.clone());
     if let Some(path) = path {
         super::saving::remember(path, state);
     }
-    state.view.problem = None;
     state.view.message = None;
+    reading::settle_problem(&loaded, state);
+    reading::remember(&loaded, state);
     forget_level(state);
     state.view.pinned_level = sample.then_some(1);
 }
@@ -69,19 +71,26 @@ pub fn take_reread(loaded: LoadedScan, state: &mut State) {
         settings.read = loaded.start.read.clone();
         settings.set_aside.retain(|s| s.row < rows);
         settings.kept.retain(|r| *r < rows);
+        settings.notes.retain(|n| n.row < rows);
         document.settings.insert(CurveKey { scan: key, column }, settings);
     }
     if document.focus.is_some_and(|f| f.scan == key) {
-        let column = loaded.scan.energies.iter().position(|e| Some(&e.name) == focused.as_ref()).unwrap_or(0);
+        let energies = &loaded.scan.energies;
+        let was_there = |name: &String| before.iter().any(|s| s.curve.as_ref() == Some(name));
+        // Who makes a curve wants to see it.
+        let made = energies.iter().position(|e| e.made.is_some() && !was_there(&e.name));
+        let same = || energies.iter().position(|e| Some(&e.name) == focused.as_ref());
+        let column = made.or_else(same).unwrap_or(0);
         document.focus = Some(CurveKey { scan: key, column });
     }
     if let Some(scan) = document.scans.iter_mut().find(|s| s.key == key) {
-        *scan = loaded;
+        *scan = loaded.clone();
     }
     state.results.retain(|k, _| k.scan != key);
     state.view.zoom.retain(|k, _| k.scan != key);
     state.view.changed.remove(&key);
-    state.view.problem = None;
+    reading::settle_problem(&loaded, state);
+    reading::remember(&loaded, state);
     forget_level(state);
 }
 
@@ -93,21 +102,35 @@ pub fn take_changed(key: u64, state: &mut State) {
     state.view.message = Some(Message { action: Some(Command::Reload(key)), ..Message::told(text) });
 }
 
-/// Takes what a folder held.
-pub fn take_folder(scans: Vec<LoadedScan>, refused: Vec<String>, state: &mut State) {
+/// Names of refused files in a message; all of them are told one by one on request.
+const MOST_NAMES: usize = 4;
+
+/// Takes what a folder held; `left_out` files of it were not looked at.
+pub fn take_folder(scans: Vec<LoadedScan>, refused: Vec<Problem>, left_out: usize, state: &mut State) {
     let read = scans.len();
     take_scans(scans, state);
-    let mut text = format!("{read} file{} read.", if read == 1 { "" } else { "s" });
-    if !refused.is_empty() {
-        text.push_str(&format!(" Not read: {}.", refused.join(", ")));
+    let files = |n: usize| if n == 1 { "1 file".to_owned() } else { format!("{n} files") };
+    let mut text = format!("{} read.", files(read));
+    if left_out > 0 {
+        let most = super::files::MOST_FILES;
+        text.push_str(&format!(
+            " {} of the folder not looked at: no more than {most} are read at once, by name.",
+            files(left_out)
+        ));
     }
-    state.view.message = Some(Message { failure: read == 0, ..Message::told(text) });
+    if !refused.is_empty() {
+        let names: Vec<&str> = refused.iter().take(MOST_NAMES).map(|p| p.file_name.as_str()).collect();
+        let more = refused.len().saturating_sub(MOST_NAMES);
+        let more = if more == 0 { String::new() } else { format!(" and {more} more") };
+        text.push_str(&format!(" Not read: {}{more}.", names.join(", ")));
+    }
+    let action = (!refused.is_empty()).then_some(Command::Reading(ReadingCommand::ShowRefused));
+    state.view.reading.aside = refused;
+    let failure = read == 0 || left_out > 0;
+    state.view.message = Some(Message { failure, action, ..Message::told(text) });
 }
 
-/// Takes a file that was refused.
-pub fn take_problem(problem: Problem, state: &mut State) {
-    state.view.problem = Some(problem);
-}
+pub use super::reading::take_problem;
 
 /// Takes the answer of the worker about one curve.
 pub fn take_outcome(key: CurveKey, settings: Settings, answer: Result<Study, Failure>, state: &mut State) {

@@ -1,7 +1,7 @@
 //! Notices when a file that was read changes on disk: a thread that looks at the time of the last change every two
 //! seconds, only while the window is in front, and wakes the window only when there is something to say.
 
-use std::path::PathBuf;
+use std::path::{Path, PathBuf};
 use std::sync::atomic::{AtomicBool, Ordering};
 use std::sync::{Arc, mpsc};
 use std::time::{Duration, SystemTime};
@@ -18,23 +18,43 @@ pub enum Watching {
     Study(u64),
 }
 
-/// A file as it was when it was read.
+/// A file, or several of one scan, as they were when they were read.
 #[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Watched {
     /// What was read from it.
     pub what: Watching,
-    /// Where it is.
-    pub path: PathBuf,
+    /// Where it is; a folder stands for the files in it.
+    pub paths: Vec<PathBuf>,
     /// When it was last changed.
     pub modified: SystemTime,
 }
 
 impl Watched {
-    /// Whether the file is there and is not what it was.
+    /// Whether the files are there and are not what they were.
     pub fn has_changed(&self) -> bool {
-        let now = std::fs::metadata(&self.path).and_then(|data| data.modified());
-        now.is_ok_and(|now| now != self.modified)
+        last_change(&self.paths).is_ok_and(|now| now != self.modified)
     }
+}
+
+/// The latest change of files; of a folder also that of the files in it, hidden ones left out.
+///
+/// # Errors
+/// What the system says of a file that is not there.
+pub fn last_change(paths: &[PathBuf]) -> std::io::Result<SystemTime> {
+    let changed = |path: &Path| std::fs::metadata(path).and_then(|data| data.modified());
+    let mut latest = SystemTime::UNIX_EPOCH;
+    for path in paths {
+        latest = latest.max(changed(path)?);
+        if path.is_dir() {
+            for entry in std::fs::read_dir(path)? {
+                let entry = entry?;
+                if !entry.file_name().to_string_lossy().starts_with('.') {
+                    latest = latest.max(changed(&entry.path())?);
+                }
+            }
+        }
+    }
+    Ok(latest)
 }
 
 /// Watches files.
@@ -121,9 +141,26 @@ mod tests {
         let old = SystemTime::UNIX_EPOCH + Duration::from_secs(1_000_000);
         let (woken, wakes) = mpsc::channel();
         let mut watch = Watch::new(move || woken.send(()).expect("heard"));
-        watch.set(vec![Watched { what: Watching::Scan(3), path, modified: old }], true);
+        watch.set(vec![Watched { what: Watching::Scan(3), paths: vec![path], modified: old }], true);
         wakes.recv_timeout(Duration::from_secs(20)).expect("the change is told");
         assert_eq!(watch.poll().map(|w| w.what), Some(Watching::Scan(3)));
         assert_eq!(watch.poll(), None);
+    }
+
+    #[test]
+    fn a_folder_changes_with_the_files_in_it() {
+        let folder = tempfile::tempdir().expect("a folder");
+        let path = folder.path().join("point.log");
+        std::fs::write(&path, "a").expect("written");
+        let paths = vec![folder.path().to_owned()];
+        let modified = last_change(&paths).expect("there");
+        let watched = Watched { what: Watching::Scan(0), paths: paths.clone(), modified };
+        assert!(!watched.has_changed());
+        let later = modified + Duration::from_secs(5);
+        std::fs::File::options().write(true).open(&path).and_then(|f| f.set_modified(later)).expect("set");
+        assert!(watched.has_changed());
+        drop(folder);
+        assert!(!watched.has_changed(), "what is gone has not changed");
+        assert!(last_change(&paths).is_err());
     }
 }

@@ -25,6 +25,8 @@ READING
                              that fits only one, or its number counted from 1; 'all' for each
                              (default: the first)
   --length-column NAME       likewise, where the first column is not the bond length
+  --energy-column NAME       an energy column, where the header does not tell; may be repeated
+  --ignore-column NAME       a column to leave out; the other numbers are properties; may be repeated
   --length-unit UNIT         angstrom, bohr, pm, nm: where the file does not say, or says it wrong
   --energy-unit UNIT         hartree, eV, meV, kJ/mol, kcal/mol, cm-1
   --delimiter WORD           what separates the columns of a table, where it is not told rightly from its
@@ -33,7 +35,7 @@ READING
   --bond A,B                 the atoms whose distance is the bond length, numbered from 1, in files of
                              Cartesian coordinates with more than two atoms
 
-  --length-pattern REGEX     with these two (study, figure) the files are text logs of one scan, one point
+  --length-pattern REGEX     with these two the files are text logs of one scan, one point
   --energy-pattern REGEX     each: regular expressions tried line by line, the number being what their first
                              group catches; the bond length may stand in the file name; a folder stands for its files.
                              Units are given by --length-unit and --energy-unit

@@ -15,6 +15,8 @@ mod summary;
 
 pub use args::{Command, FigureArgs, RecheckArgs, StudyArgs, UsageError, WindowArgs, parse};
 #[cfg(feature = "gui")]
+pub(crate) use input::Input;
+#[cfg(feature = "gui")]
 pub(crate) use run_study::read_settings;
 pub use summary::summary;
 

@@ -60,7 +60,7 @@ fn a_window_in_angstrom_on_a_scan_in_bohr() {
         assert_eq!(shown.unit, LengthUnit::Bohr, "edges snap in the scan's own unit");
         let inside = study.pictures.points.iter().filter(|p| state(window).in_window(p)).count();
         let marked = study.pictures.points.iter().filter(|p| p.in_window).count();
-        let fitted = study.findings.fit_of(parabound::fit::Family::Harmonic).expect("a fit").points;
+        let fitted = crate::harness::harmonic_fit(study).points;
         assert_eq!((inside, marked), (fitted, fitted));
         fitted
     };

@@ -255,7 +255,7 @@ fn a_missing_unit_is_asked_for_and_the_file_read_again() {
     let mut window =
         open([1400.0, 900.0], egui::Theme::Dark, Start { files: vec![path], ..Start::default() });
     let problem = state(&window).view.problem.clone().expect("a problem");
-    assert!(problem.ask_units, "{}", problem.text);
+    assert_eq!(problem.asks, parabound::gui::state::Asks::Units, "{}", problem.text);
     let ctx = window.ctx.clone();
     let read = parabound::scan::read::ReadSettings {
         length_unit: Some(parabound::units::LengthUnit::Angstrom),

@@ -1,12 +1,16 @@
 //! Every page in both themes, in a wide, a narrow and a sharp window. With `PARABOUND_GALLERY=FOLDER`
 //! the pictures are written there to be looked at.
 
-use crate::harness::{Window, open, state};
+use crate::harness::{Window, open, press, state};
+use crate::invented::{grid, morse, table, write as write_file};
 use eframe::egui::Theme;
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
 use parabound::gui::densities::DensityView;
+use parabound::gui::reading::ReadingCommand;
 use parabound::gui::state::{FitsPart, Page, Preset};
+use parabound::scan::read::{LinePatterns, Match, ReadSettings};
+use parabound::units::{EnergyUnit, LengthUnit};
 use std::path::PathBuf;
 
 fn write(window: &mut Window, name: &str) {
@@ -123,6 +127,56 @@ fn missing_atoms_and_missing_units_are_shown_in_every_kind_of_window() {
         let mut window = open(size, theme, Start { empty: true, ..Start::default() });
         window.ctx.set_pixels_per_point(scale);
         write(&mut window, &format!("{kind}_empty"));
+    }
+}
+
+#[test]
+fn how_files_are_read_is_shown_in_every_kind_of_window() {
+    let folder = tempfile::tempdir().expect("a folder");
+    let logs = folder.path().join("hcl");
+    std::fs::create_dir(&logs).expect("made");
+    for (i, r) in grid().enumerate() {
+        let text = format!(
+            "step 1\nr = {r:.2} angstrom\nenergy     0.2500000000\nenergy     {:.10}\nend\n",
+            morse(r)
+        );
+        write_file(&logs, &format!("point-{i:02}.log"), &text);
+    }
+    let (length_unit, energy_unit) = (Some(LengthUnit::Angstrom), Some(EnergyUnit::Hartree));
+    let patterns = |energy: &str| ReadSettings {
+        lines: Some(LinePatterns { length: r"r = (\S+)".into(), energy: energy.into(), which: Match::Last }),
+        length_unit,
+        energy_unit,
+        ..ReadSettings::default()
+    };
+    let open_units = write_file(folder.path(), "open.csv", &table("# HCl\nR,E", morse));
+    let scan = write_file(folder.path(), "hcl.csv", &table("# HCl\nR_angstrom,E_hartree", morse));
+    let refused = write_file(folder.path(), "bad.csv", "R_angstrom,E_hartree\n1.0,x\n");
+    for (kind, theme, size, scale) in KINDS {
+        let mut window = open(size, theme, Start { files: vec![open_units.clone()], ..Start::default() });
+        window.ctx.set_pixels_per_point(scale);
+        give(&mut window, &[Command::Reading(ReadingCommand::ProblemColumns(true))]);
+        write(&mut window, &format!("{kind}_read_columns_open"));
+        let files = vec![scan.clone(), refused.clone()];
+        let mut window = open(size, theme, Start { files, ..Start::default() });
+        window.ctx.set_pixels_per_point(scale);
+        write(&mut window, &format!("{kind}_read_refused"));
+        press(&mut window, "Put away");
+        let key = state(&window).document.scans[0].key;
+        let recipe = ReadingCommand::TypeRecipe("shifted = E + 0.1 eV".into());
+        give(&mut window, &[Command::ShowColumns(Some(key)), Command::Reading(recipe)]);
+        press(&mut window, "Make");
+        let recipe = ReadingCommand::TypeRecipe("wrong = Q".into());
+        give(&mut window, &[Command::Reading(recipe)]);
+        write(&mut window, &format!("{kind}_read_columns"));
+        press(&mut window, "Done");
+        give(&mut window, &[Command::Reading(ReadingCommand::OpenLogs(vec![logs.clone()]))]);
+        for (name, energy) in [("wrong", "energy ("), ("logs", r"energy\s+(\S+)")] {
+            give(&mut window, &[Command::Reading(ReadingCommand::TryLogs(patterns(energy)))]);
+            write(&mut window, &format!("{kind}_read_{name}"));
+        }
+        press(&mut window, "Read 40 points");
+        assert_eq!(state(&window).document.scans.len(), 2);
     }
 }
 

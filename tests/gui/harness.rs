@@ -3,8 +3,10 @@
 use eframe::egui;
 use egui_kittest::Harness;
 use egui_kittest::kittest::Queryable as _;
+use parabound::fit::{Family, Fit};
 use parabound::gui::app::{App, Start};
-use parabound::gui::state::State;
+use parabound::gui::command::Command;
+use parabound::gui::state::{State, Study};
 use parabound_gui_tests::{CpuRenderer, Shown};
 
 /// A window of the program.
@@ -27,6 +29,21 @@ pub fn open(size: [f32; 2], theme: egui::Theme, start: Start) -> Window {
 /// Opens the program on the bundled sample.
 pub fn open_sample() -> Window {
     open([1400.0, 900.0], egui::Theme::Dark, Start::default())
+}
+
+/// Gives a command.
+pub fn give(window: &mut Window, command: Command) {
+    let ctx = window.ctx.clone();
+    window.state_mut().0.give(command, &ctx);
+    window.run();
+}
+
+/// With `PARABOUND_GALLERY=FOLDER` a picture is written there to be looked at.
+pub fn shown(window: &mut Window, name: &str) {
+    window.run();
+    let Some(folder) = std::env::var_os("PARABOUND_GALLERY") else { return };
+    let picture = window.render().expect("painted");
+    picture.save(std::path::PathBuf::from(folder).join(format!("{name}.png"))).expect("written");
 }
 
 /// What the window knows.
@@ -54,9 +71,15 @@ pub fn drag(window: &mut Window, from: egui::Pos2, to: egui::Pos2) {
     window.run();
 }
 
+/// The harmonic fit of a study.
+pub fn harmonic_fit(study: &Study) -> &Fit {
+    let found = study.findings.found_fit(Family::Harmonic).expect("a harmonic fit");
+    found.result.as_ref().expect("found")
+}
+
 /// The force constant of the harmonic fit in atomic units.
 pub fn harmonic_force_constant(window: &Window) -> f64 {
     let study = state(window).study().expect("a study");
-    let fit = study.findings.fit_of(parabound::fit::Family::Harmonic).expect("a harmonic fit");
+    let fit = harmonic_fit(study);
     fit.parameters.iter().find(|p| p.name == "k").expect("its force constant").estimate.value
 }

@@ -4,13 +4,16 @@
 
 mod agreement;
 mod by_label;
+mod columns;
 mod commands;
 mod every_command;
 mod fits_page;
 mod frames;
 mod gallery;
 mod harness;
+mod invented;
 mod killed;
+mod logs;
 mod pages;
 mod pictures;
 mod reading;

@@ -1,7 +1,7 @@
 //! Getting scans in: units by their row, folders, the clipboard, columns, files read again.
 
 use crate::harness::{Window, open, open_sample, press, state};
-use eframe::egui::{self, Key, Modifiers, accesskit::Role};
+use eframe::egui::{self, Key, Modifiers, accesskit::Role, accesskit::Toggled};
 use egui_kittest::kittest::{Queryable as _, by};
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
@@ -201,15 +201,52 @@ fn a_notice_is_read_in_full_by_a_click() {
     }
 }
 
+/// Two hundred files, and two hundred columns of one: a few lines of the list are drawn, and the curve in focus is
+/// among them. The times are printed, not judged.
 #[test]
 fn two_hundred_curves_are_listed_without_drawing_them_all() {
     let folder = tempfile::tempdir().expect("a folder");
-    for i in 0..100 {
+    for i in 0..200 {
         write(folder.path(), &format!("scan_{i:03}.csv"), "R_angstrom,E_hartree,E2_hartree");
     }
-    let mut window = open([1400.0, 900.0], egui::Theme::Light, Start { empty: true, ..Start::default() });
-    give(&mut window, Command::OpenPath(folder.path().to_owned()));
-    assert_eq!(state(&window).document.settings.len(), 200);
-    let drawn = window.query_all(by().role(Role::RadioButton).label_contains("Curve ")).count();
-    assert!((1..40).contains(&drawn), "{drawn}");
+    let wide = tempfile::tempdir().expect("a folder");
+    let header: Vec<String> = (0..200).map(|i| format!("E{i}_hartree")).collect();
+    let rows: Vec<String> = (0..40)
+        .map(|row| {
+            let x = 0.03 * f64::from(row) - 0.3;
+            let cells: Vec<String> = (0..200)
+                .map(|i| format!("{:.9}", (0.4 + 0.001 * f64::from(i)) * x * x - 0.3 * x.powi(3)))
+                .collect();
+            format!("{:.3},{}", 1.3 + x, cells.join(","))
+        })
+        .collect();
+    let file = wide.path().join("wide.csv");
+    std::fs::write(&file, format!("R_angstrom,{}\n{}\n", header.join(","), rows.join("\n")))
+        .expect("written");
+    for (path, curves) in [(folder.path(), 400), (file.as_path(), 200)] {
+        let mut window = open([1400.0, 900.0], egui::Theme::Light, Start { empty: true, ..Start::default() });
+        let start = std::time::Instant::now();
+        give(&mut window, Command::OpenPath(path.to_owned()));
+        let opened = start.elapsed();
+        assert_eq!(state(&window).document.settings.len(), curves);
+        let drawn = window.query_all(by().role(Role::RadioButton).label_contains("Curve ")).count();
+        assert!((1..40).contains(&drawn), "{drawn}");
+        let start = std::time::Instant::now();
+        for _ in 0..20 {
+            give(&mut window, Command::StepCurve(7));
+            assert!(!state(&window).is_stale(), "it is studied");
+            window.run();
+            let chosen = by().role(Role::RadioButton).predicate(|n| n.toggled() == Some(Toggled::True));
+            assert_eq!(window.query_all(chosen).count(), 1, "the curve in focus is in sight");
+        }
+        let switched = start.elapsed() / 20;
+        let start = std::time::Instant::now();
+        for _ in 0..50 {
+            window.step();
+        }
+        println!(
+            "{curves} curves: opened in {opened:.1?}, a switch {switched:.1?}, a frame {:.1?}",
+            start.elapsed() / 50
+        );
+    }
 }

@@ -24,6 +24,16 @@ fn a_dry_run_says_what_was_understood() {
         assert!(said.contains(needle), "{needle}:\n{said}");
     }
     assert!(!said.contains("omega_e"), "{said}");
+    let chosen = ["--energy-column", "E_A", "--ignore-column", "mu_XA"];
+    let said = study(&[&[path.to_str().expect("UTF-8"), "--dry-run"], &chosen[..]].concat());
+    let said = text(&said.stdout);
+    assert!(
+        said.contains("energy  1    * E_A_hartree") && said.contains("property       E_X_hartree"),
+        "{said}"
+    );
+    assert!(!said.contains("mu_XA_au"), "{said}");
+    let wrong = study(&[path.to_str().expect("UTF-8"), "--dry-run", "--ignore-column", "colour"]);
+    assert_eq!(wrong.status.code(), Some(3));
     let path = scan("hcl_messy.txt");
     let said = study(&[path.to_str().expect("UTF-8"), "--dry-run", "--energy-unit", "eV"]);
     assert!(text(&said.stdout).contains("in eV (as chosen)"), "{}", text(&said.stdout));

@@ -3,6 +3,7 @@
 use crate::gui::catalog::entries;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
+use crate::gui::reading::ReadingCommand;
 use crate::gui::show::{self, elided};
 use crate::gui::state::State;
 use eframe::egui;
@@ -67,6 +68,9 @@ fn commands_ui(ui: &mut Ui, state: &State) {
             row_ui(ui, &ui.ctx().format_shortcut(&keys), &entry.command.name());
         }
     }
+    // The desktop has these keys: what was copied comes with them.
+    let paste = egui::KeyboardShortcut::new(Modifiers::COMMAND, Key::V);
+    row_ui(ui, &ui.ctx().format_shortcut(&paste), ReadingCommand::AskPaste.name());
 }
 
 fn hand_ui(ui: &mut Ui) {

@@ -2,6 +2,7 @@
 
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
+use crate::gui::reading::ReadingCommand;
 use crate::gui::show;
 use crate::gui::state::{PathPurpose, PathWindow, State};
 use eframe::egui;
@@ -15,6 +16,7 @@ pub fn path_window_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         PathPurpose::Open => "Open a bond scan".to_owned(),
         PathPurpose::Write(product) => format!("Write {}", product.name().to_lowercase()),
         PathPurpose::SaveStudy => "Save study".to_owned(),
+        PathPurpose::Logs => "Text logs: the folder they are in".to_owned(),
     };
     egui::Window::new(title)
         .collapsible(false)
@@ -52,7 +54,7 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
     });
     ui.horizontal(|ui| {
         let verb = match window.purpose {
-            PathPurpose::Open => "Open",
+            PathPurpose::Open | PathPurpose::Logs => "Open",
             PathPurpose::Write(_) => "Write",
             PathPurpose::SaveStudy => "Save",
         };
@@ -67,6 +69,7 @@ fn content_ui(ui: &mut Ui, window: &PathWindow, out: &mut Vec<Command>) {
             PathPurpose::Open => Command::OpenPath(path),
             PathPurpose::Write(product) => Command::ExportTo { product, path, overwrite: false },
             PathPurpose::SaveStudy => Command::SaveStudyTo { path, overwrite: false },
+            PathPurpose::Logs => Command::Reading(ReadingCommand::OpenLogs(vec![path])),
         });
         out.push(Command::ClosePathWindow);
     }

@@ -9,6 +9,7 @@ use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{self, ButtonForm, command_button, elided, line_sample};
 use crate::gui::state::{CurveKey, State};
+use crate::scan::EnergyColumn;
 use crate::settings::Settings;
 use crate::units::{LengthUnit, to_per_cm};
 use eframe::egui;
@@ -46,9 +47,14 @@ fn curves_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     let list_ui = |ui: &mut Ui, range: std::ops::Range<usize>, out: &mut Vec<Command>| {
         for line in &lines[range] {
             match line {
-                Line::File(name) => file_ui(ui, name),
-                Line::Curve { key, label, points } => {
-                    if curve_ui(ui, label, *points, state.document.focus == Some(*key)) {
+                Line::File(key, name) => {
+                    if file_ui(ui, name) {
+                        out.push(Command::ShowColumns(Some(*key)));
+                    }
+                }
+                Line::Curve { key, energy } => {
+                    let points = energy.values.iter().flatten().count();
+                    if curve_ui(ui, &energy.label, points, state.document.focus == Some(*key)) {
                         out.push(Command::Focus(*key));
                     }
                 }
@@ -56,10 +62,13 @@ fn curves_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         }
     };
     if lines.len() > MOST_LINES {
-        ScrollArea::vertical()
-            .id_salt("curves")
-            .max_height(look::ROW * MOST_LINES as f32 + look::STEP * (MOST_LINES as f32 - 1.0))
-            .show_rows(ui, look::ROW, lines.len(), |ui, range| list_ui(ui, range, out));
+        let row = look::ROW + look::STEP;
+        let height = row * MOST_LINES as f32 - look::STEP;
+        let mut area = ScrollArea::vertical().id_salt("curves").max_height(height);
+        if let Some(line) = newly_focused(ui, state, &lines) {
+            area = area.vertical_scroll_offset((row * line as f32 - 0.5 * height).max(0.0));
+        }
+        area.show_rows(ui, look::ROW, lines.len(), |ui, range| list_ui(ui, range, out));
     } else {
         list_ui(ui, 0..lines.len(), out);
     }
@@ -82,8 +91,20 @@ const MOST_LINES: usize = 8;
 
 /// A line of the list of curves.
 enum Line<'a> {
-    File(&'a str),
-    Curve { key: CurveKey, label: &'a str, points: usize },
+    File(u64, &'a str),
+    Curve { key: CurveKey, energy: &'a EnergyColumn },
+}
+
+/// The line of the curve in focus, when another one was in focus before: it is brought into sight.
+fn newly_focused(ui: &Ui, state: &State, lines: &[Line<'_>]) -> Option<usize> {
+    let memory = egui::Id::unique("curve in focus");
+    let focus = state.document.focus?;
+    let before: Option<CurveKey> = ui.data(|d| d.get_temp(memory));
+    if before == Some(focus) {
+        return None;
+    }
+    ui.data_mut(|d| d.insert_temp(memory, focus));
+    lines.iter().position(|line| matches!(line, Line::Curve { key, .. } if *key == focus))
 }
 
 /// Files, where there are several, and their curves.
@@ -91,22 +112,28 @@ fn lines(state: &State, several: bool) -> Vec<Line<'_>> {
     let mut lines = Vec::new();
     for loaded in &state.document.scans {
         if several {
-            lines.push(Line::File(&loaded.scan.file_name));
+            lines.push(Line::File(loaded.key, &loaded.scan.file_name));
         }
         for (column, energy) in loaded.scan.energies.iter().enumerate() {
             let key = CurveKey { scan: loaded.key, column };
-            let points = energy.values.iter().flatten().count();
-            lines.push(Line::Curve { key, label: &energy.label, points });
+            lines.push(Line::Curve { key, energy });
         }
     }
     lines
 }
 
-fn file_ui(ui: &mut Ui, name: &str) {
+/// The name of a file; true when it was clicked, for a look at its columns.
+fn file_ui(ui: &mut Ui, name: &str) -> bool {
     let look = Look::of(ui);
-    let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), look::ROW), Sense::hover());
-    elided(ui, rect.left_center(), rect.width(), name, look::plain(look::SMALL), look.dim);
-    response.on_hover_text(name);
+    let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), look::ROW), Sense::click());
+    response.widget_info(|| WidgetInfo::labeled(egui::Role::Button, true, format!("Columns of {name}")));
+    let lively = response.hovered() || response.has_focus();
+    let color = if lively { look.text } else { look.dim };
+    elided(ui, rect.left_center(), rect.width(), name, look::plain(look::SMALL), color);
+    response
+        .on_hover_text(format!("{name}: its columns and units"))
+        .on_hover_cursor(egui::CursorIcon::PointingHand)
+        .clicked()
 }
 
 /// A curve with the number of its points; true when it was chosen.

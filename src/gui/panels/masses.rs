@@ -175,7 +175,7 @@ fn charge_ui(ui: &mut Ui, state: &State, settings: &Settings, out: &mut Vec<Comm
             .custom_formatter(|v, _| number::signed(v, 0));
         let response = ui.add(field).labelled_by(label.id);
         if response.changed() {
-            out.push(Command::SetCharge(charge));
+            out.push(Command::SetCharge(Some(charge)));
         }
         settle(&response, out);
     });

@@ -22,6 +22,7 @@ mod waiting;
 
 pub use crate::figure::rows::constants_text;
 pub use compare::comparison_text;
+pub(super) use units::units_ui;
 pub(super) use waiting::words as progress_words;
 
 use super::command::Command;
@@ -126,12 +127,13 @@ fn parts_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
             }
         });
     problem::problem_ui(ui, state, out);
-    dialogs::columns_ui(ui, state, out);
     dialogs_ui(ui, state, out);
 }
 
 fn dialogs_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     dialogs::guide_ui(ui, state, out);
+    dialogs::columns_ui(ui, state, out);
+    dialogs::logs_ui(ui, state, out);
     dialogs::path_window_ui(ui, state, out);
     dialogs::keys_ui(ui, state, out);
     dialogs::search_ui(ui, state, out);

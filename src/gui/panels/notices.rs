@@ -164,6 +164,28 @@ fn row_ui(ui: &mut Ui, text: &str, mark: Mark, open: bool, actions: impl FnOnce(
     clicked
 }
 
+/// The rows of the points in use at bond lengths (bohr) like these.
+fn rows(findings: &Findings, these: impl Fn(f64) -> bool) -> Vec<usize> {
+    findings.source.points.iter().filter(|p| p.used && these(p.r_bohr)).map(|p| p.row).collect()
+}
+
+/// Restricting a broken scan to one of its branches, the one with the lowest point first from the left.
+fn branches(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
+    let middle = 0.5 * (notice.at_bohr[0] + notice.at_bohr[1]);
+    let used = findings.source.points.iter().filter(|p| p.used);
+    let lowest = used.min_by(|a, b| a.energy_hartree.total_cmp(&b.energy_hartree)).map(|p| p.r_bohr);
+    let only = |name: &str, outside: &dyn Fn(f64) -> bool| {
+        let reason = "beyond a break of the curve".to_owned();
+        (name.to_owned(), Command::SetRowsAside { rows: rows(findings, outside), reason })
+    };
+    let mut both =
+        vec![only("Only the inner part", &|r| r > middle), only("Only the outer part", &|r| r < middle)];
+    if lowest.is_some_and(|r| r < middle) {
+        both.reverse();
+    }
+    both
+}
+
 /// What can be done about a notice; the last one stands first from the left.
 fn actions(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
     let mut actions = Vec::new();
@@ -178,8 +200,30 @@ fn actions(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
     });
     match notice.code {
         Code::OffCurve | Code::Kink | Code::Jump => {
-            if let Some(point) = point.filter(|p| p.used) {
+            if notice.at_bohr.len() == 2 {
+                actions.extend(branches(findings, notice));
+            } else if let Some(point) = point.filter(|p| p.used) {
                 actions.push(("Set aside".to_owned(), Command::SetAside(point.row)));
+            }
+        }
+        Code::RepeatedGeometry => {
+            let other = point.and_then(|p| {
+                let same = |o: &&crate::findings::Point| !o.used && (o.r_bohr - p.r_bohr).abs() < 1e-6;
+                findings.source.points.iter().find(same)
+            });
+            if let Some(other) = other {
+                actions.push(("Use the other one".to_owned(), Command::Restore(other.row)));
+            }
+        }
+        Code::SetAside => {
+            let rows = findings.settings.set_aside.iter().map(|s| s.row).collect();
+            actions.push(("Use them again".to_owned(), Command::RestoreRows(rows)));
+        }
+        Code::Wiggles => {
+            if let Some(&from) = notice.at_bohr.first() {
+                let reason = "the curve wiggles there".to_owned();
+                let beyond = Command::SetRowsAside { rows: rows(findings, |r| r >= from), reason };
+                actions.push(("Leave out beyond".to_owned(), beyond));
             }
         }
         Code::LeansOnTail | Code::CoarseGrid => {
@@ -203,7 +247,7 @@ fn actions(findings: &Findings, notice: &Notice) -> Vec<(String, Command)> {
         _ => {}
     }
     // A place to look at, where there is no better thing to do; a point is looked at before it is left out.
-    let also = actions.is_empty() || matches!(notice.code, Code::OffCurve | Code::Kink | Code::Jump);
+    let also = actions.is_empty() || matches!(notice.code, Code::OffCurve | Code::RepeatedGeometry);
     if let Some(&r) = notice.at_angstrom().first().filter(|_| also) {
         actions.push((Command::PointAt(r).label(), Command::PointAt(r)));
     }

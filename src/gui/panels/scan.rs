@@ -15,7 +15,7 @@ use egui::{Align2, DragValue, RichText, ScrollArea, Sense, TextEdit, Ui, WidgetI
 /// Height of a row of the table.
 const ROW: f32 = 22.0;
 /// Height of what is said about the point looked at.
-const FOOT: f32 = 190.0;
+const FOOT: f32 = 216.0;
 
 fn columns(study: &Study) -> [Column; 4] {
     let source = &study.findings.source;
@@ -169,6 +169,7 @@ fn point_ui(ui: &mut Ui, state: &State, study: &Study, point: &Point, out: &mut 
         residual_ui(ui, fit, point);
     }
     weight_ui(ui, state, point, out);
+    note_ui(ui, state, point, out);
     let remark = state.document.focused().and_then(|(_, loaded, _)| {
         loaded.scan.row_remarks.iter().find(|(row, _)| *row == point.row).map(|(_, text)| text.clone())
     });
@@ -221,6 +222,25 @@ fn weight_ui(ui: &mut Ui, state: &State, point: &Point, out: &mut Vec<Command>) 
             out.push(Command::SetWeight { row: point.row, weight });
         }
         settle(&response, out);
+    });
+}
+
+/// A note on the point, kept in the findings.
+fn note_ui(ui: &mut Ui, state: &State, point: &Point, out: &mut Vec<Command>) {
+    let Some((_, _, settings)) = state.document.focused() else { return };
+    let look = Look::of(ui);
+    ui.horizontal(|ui| {
+        let label = ui.label(RichText::new("note").font(look::plain(look::SECONDARY)).color(look.dim));
+        let known = settings.notes.iter().find(|n| n.row == point.row);
+        let mut text = known.map_or_else(String::new, |n| n.text.clone());
+        let field = TextEdit::singleline(&mut text).desired_width(f32::INFINITY);
+        let response = ui.add(field).labelled_by(label.id);
+        if response.changed() {
+            out.push(Command::SetNote { row: point.row, text });
+        }
+        if response.lost_focus() {
+            out.push(Command::Settle);
+        }
     });
 }
 

@@ -11,7 +11,7 @@ use egui::{Align2, ScrollArea, Sense, Ui, WidgetInfo, pos2, vec2};
 
 const ROW: f32 = 23.0;
 /// Rows shown without scrolling.
-const MOST_ROWS: f32 = 11.0;
+pub(super) const MOST_ROWS: f32 = 11.0;
 
 const COLUMNS: [Column; 5] = [
     Column { right: 0.20, name: "bond lengths", unit: "in", about: "Unit of the bond lengths." },
@@ -30,13 +30,14 @@ const COLUMNS: [Column; 5] = [
     },
     Column {
         right: 1.0,
-        name: "rise to the end",
+        name: "depth to the end",
         unit: "eV",
         about: "From the minimum to the point at the longest bond length: for a whole scan nearly the depth of the well.",
     },
 ];
 
-pub(super) fn units_ui(ui: &mut Ui, problem: &Problem, out: &mut Vec<Command>) {
+/// The choices for a refused file, `most_rows` of them in sight at once.
+pub(in crate::gui) fn units_ui(ui: &mut Ui, problem: &Problem, most_rows: f32, out: &mut Vec<Command>) {
     show::note(
         ui,
         "What each choice would mean. Choose the row that is right; dim rows would be unusual for a bond.",
@@ -47,7 +48,7 @@ pub(super) fn units_ui(ui: &mut Ui, problem: &Problem, out: &mut Vec<Command>) {
     let rows = problem.meanings.len();
     ScrollArea::vertical()
         .id_salt("units")
-        .max_height((ROW * MOST_ROWS).min(0.45 * ui.ctx().content_rect().height()))
+        .max_height((ROW * most_rows).min(0.45 * ui.ctx().content_rect().height()))
         .show_rows(ui, ROW, rows, |ui, range| {
             for meaning in &problem.meanings[range] {
                 if meaning_ui(ui, meaning, width) {

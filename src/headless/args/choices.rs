@@ -48,6 +48,10 @@ pub struct StudyChoices {
     pub lambda: Option<u32>,
     /// Further pairs of isotopes.
     pub isotopologues: Option<Vec<[crate::species::AtomChoice; 2]>>,
+    /// The energy columns.
+    pub energy_columns: Vec<String>,
+    /// Columns left out.
+    pub ignored_columns: Vec<String>,
     /// What separates the columns.
     pub delimiter: Option<Delimiter>,
     /// What stands for decimals.
@@ -128,6 +132,12 @@ impl StudyChoices {
         }
         set(&mut settings.curve, &self.curve);
         set(&mut settings.read.length_column, &self.length_column);
+        if !self.energy_columns.is_empty() {
+            settings.read.energy_columns = Some(self.energy_columns.clone());
+        }
+        if !self.ignored_columns.is_empty() {
+            settings.read.ignored_columns.clone_from(&self.ignored_columns);
+        }
         set(&mut settings.read.length_unit, &self.length_unit);
         set(&mut settings.read.energy_unit, &self.energy_unit);
         set(&mut settings.read.delimiter, &self.delimiter);
@@ -212,6 +222,8 @@ pub(super) fn study_choice(
         "settings" => choices.settings_file = Some(parser.value()?.into()),
         "curve" => choices.curve = Some(parser.value()?.string()?),
         "length-column" => choices.length_column = Some(parser.value()?.string()?),
+        "energy-column" => choices.energy_columns.push(parser.value()?.string()?),
+        "ignore-column" => choices.ignored_columns.push(parser.value()?.string()?),
         "length-unit" => {
             let names = LengthUnit::ALL.map(LengthUnit::name).join(", ");
             choices.length_unit = Some(value(parser, "length-unit", &names, parse_length_unit)?);

@@ -28,12 +28,16 @@ pub(crate) fn scan(file_name: &str, table: Table<'_>, settings: &ReadSettings) -
         Some(wanted) => chosen_columns(&columns, wanted)?,
         None => energy_columns(&columns, has_header),
     };
+    let is_ignored = chosen_columns(&columns, &settings.ignored_columns)?;
+    let is_energy: Vec<bool> =
+        is_energy.into_iter().zip(&is_ignored).map(|(e, ignored)| e && !ignored).collect();
     if !is_energy.contains(&true) {
         return Err(ScanError::NoEnergyColumn { columns: all });
     }
     let (mut energies, mut properties, mut from_comment) = (Vec::new(), Vec::new(), false);
     let (mut energy_unit_origins, mut contradicted) = (Vec::new(), None);
-    for ((name, values), energy) in columns.into_iter().zip(is_energy) {
+    let kept = columns.into_iter().zip(is_energy).zip(is_ignored).filter(|(_, ignored)| !ignored);
+    for (((name, values), energy), _) in kept {
         note_empty(&name.full, &values, &mut notices);
         if energy {
             let (unit, origin) = energy_unit(&name, settings, energies_stated)?;
@@ -90,8 +94,14 @@ pub(crate) fn roles(columns: &[Column], settings: &ReadSettings, has_header: boo
         None => energy_columns(&others, has_header),
     };
     let places = (0..columns.len()).filter(|i| Some(*i) != length);
-    for (place, _) in places.zip(is_energy).filter(|(_, energy)| *energy) {
-        roles[place] = Role::Energy;
+    let is_ignored =
+        chosen_columns(&others, &settings.ignored_columns).unwrap_or_else(|_| vec![false; others.len()]);
+    for (place, (energy, ignored)) in places.zip(is_energy.into_iter().zip(is_ignored)) {
+        if ignored {
+            roles[place] = Role::Ignored;
+        } else if energy {
+            roles[place] = Role::Energy;
+        }
     }
     roles
 }

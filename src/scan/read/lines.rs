@@ -252,7 +252,11 @@ fn compiled(what: &'static str, pattern: &str) -> Result<Regex, LinesError> {
     }
     let built = RegexBuilder::new(pattern).size_limit(LIMIT_PATTERN_BYTES).build();
     // The last line of the package's message says what, those before draw an arrow.
-    built.map_err(|e| problem(e.to_string().lines().last().unwrap_or("").trim().to_owned()))
+    built.map_err(|e| {
+        let text = e.to_string();
+        let last = text.lines().last().unwrap_or("").trim();
+        problem(last.trim_start_matches("error: ").to_owned())
+    })
 }
 
 fn first_catch<'t>(pattern: &Regex, line: &'t str) -> Option<&'t str> {

@@ -44,6 +44,9 @@ pub struct ReadSettings {
     /// Names of the energy columns of a table; none: those that the header calls energies.
     #[serde(skip_serializing_if = "Option::is_none")]
     pub energy_columns: Option<Vec<String>>,
+    /// Names of columns of a table that are left out; the other numbers are properties along the curve.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub ignored_columns: Vec<String>,
     /// Unit of the bond lengths; it goes before what the file says.
     pub length_unit: Option<LengthUnit>,
     /// Unit of all energy columns; it goes before what the file says.

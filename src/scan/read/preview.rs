@@ -18,8 +18,10 @@ pub enum Role {
     Length,
     /// An energy.
     Energy,
-    /// Anything else.
+    /// Any other number along the curve.
     Property,
+    /// Nothing that is used.
+    Ignored,
 }
 
 /// A column with its first values.
@@ -97,6 +99,9 @@ mod tests {
             seen.columns.iter().map(|c| c.role).collect::<Vec<_>>(),
             [Role::Length, Role::Property, Role::Energy]
         );
+        let ignored = ReadSettings { ignored_columns: vec!["first".into()], ..ReadSettings::default() };
+        let seen = preview(b"x,first,second\n1.0,-1.1,3\n", &ignored);
+        assert_eq!(seen.columns[1].role, Role::Ignored);
     }
 
     /// Another delimiter is another table; where there is none the lines are still shown.
