@@ -17,7 +17,6 @@ use crate::settings::Settings;
 use eframe::egui;
 use egui::Key;
 use std::path::PathBuf;
-use std::sync::Arc;
 use std::time::Duration;
 
 /// What the window starts with.
@@ -140,9 +139,9 @@ impl App {
             Effect::Reread { loaded, from_disk } => self.files.reread(loaded, from_disk),
             Effect::ReadBytes(problem) => self.files.read_again(problem),
             Effect::Write { product, path, overwrite } => {
-                if let Some(study) = self.state.study() {
+                if let Some(findings) = super::extras::with_resampled(&self.state) {
                     let paper = Paper { bounds: self.state.bounds(), ..Paper::default() };
-                    self.files.write(product, path, Arc::clone(&study.findings), paper, overwrite);
+                    self.files.write(product, path, findings, paper, overwrite);
                 }
             }
             Effect::Stop => self.worker.stop(),

@@ -5,7 +5,7 @@ use super::state::State;
 use crate::figure::WindowPicture;
 use crate::findings::{Findings, FitBootstrap};
 use crate::fit::BootstrapSettings;
-use crate::study::{bootstrap_fit, study_windows};
+use crate::study::{bootstrap_fit, study_windows, take_bootstraps};
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, AtomicUsize, Ordering};
 
@@ -58,10 +58,23 @@ pub enum Resampling {
     Running(Arc<Steps>),
     /// Ended before the end.
     Stopped,
-    /// Done, for this study.
-    Done(Arc<Findings>, Arc<Resampled>),
+    /// Done, for this study and so often.
+    Done(Arc<Findings>, BootstrapSettings, Arc<Resampled>),
     /// Broken off, and why.
     Failed(String),
+}
+
+/// The study shown, with its resampled errors where there are any: what a file of it holds.
+pub fn with_resampled(state: &State) -> Option<Arc<Findings>> {
+    let shown = &state.study()?.findings;
+    match &state.resampling {
+        Resampling::Done(findings, settings, found) if Arc::ptr_eq(findings, shown) => {
+            let mut findings = Findings::clone(findings);
+            take_bootstraps(&mut findings, *settings, found.to_vec());
+            Some(Arc::new(findings))
+        }
+        _ => Some(Arc::clone(shown)),
+    }
 }
 
 #[derive(Clone)]
@@ -155,7 +168,9 @@ impl Extras {
         }
         if let Some(answer) = self.resampling.poll() {
             state.resampling = match answer.result {
-                Ok(Some(found)) => Resampling::Done(answer.input.findings, Arc::new(found)),
+                Ok(Some(found)) => {
+                    Resampling::Done(answer.input.findings, answer.input.settings, Arc::new(found))
+                }
                 Ok(None) => Resampling::Stopped,
                 Err(panic) => Resampling::Failed(format!(
                     "The resampling broke off: {panic}. This is a fault of the program; your scan and settings are unharmed."

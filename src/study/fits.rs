@@ -46,16 +46,9 @@ pub fn fit_all(findings: &mut Findings, curve: &ScanCurve) {
         findings.fits.iter().map(|f| (f.request, &f.result)).collect();
     findings.comparison = compare(&pairs, &outside);
     if let Some(settings) = findings.settings.fits.bootstrap {
-        for index in 0..findings.fits.len() {
-            match bootstrap_fit(findings, index, settings, &mut |_, _| true) {
-                Ok(found) => findings.fits[index].bootstrap = found,
-                Err(error) => {
-                    let family = findings.fits[index].request.family.title();
-                    let text = format!("No resampled errors of the {family} fit: {error}.");
-                    findings.notices.push(Notice::caution(Code::NotConverged, text));
-                }
-            }
-        }
+        let found = (0..findings.fits.len()).map(|i| bootstrap_fit(findings, i, settings, &mut |_, _| true));
+        let found = found.map(|f| f.map_err(|e| e.to_string()).transpose()).collect();
+        take_bootstraps(findings, settings, found);
     }
     if let Some(settings) = &findings.settings.fits.window_study {
         findings.window_study = study_windows(findings, settings, &mut |_, _| true).ok().flatten();
@@ -187,6 +180,27 @@ pub fn bootstrap_fit(
         constant_errors_per_cm: constant_errors.to_vec(),
         level_errors_per_cm: level_errors.to_vec(),
     }))
+}
+
+/// Puts resampled errors, one entry a fit, where the study itself would have put them.
+pub fn take_bootstraps(
+    findings: &mut Findings,
+    settings: BootstrapSettings,
+    found: Vec<Option<Result<FitBootstrap, String>>>,
+) {
+    findings.settings.fits.bootstrap = Some(settings);
+    for (fit, found) in findings.fits.iter_mut().zip(found) {
+        fit.bootstrap = None;
+        match found {
+            None => {}
+            Some(Ok(errors)) => fit.bootstrap = Some(errors),
+            Some(Err(error)) => {
+                let family = fit.request.family.title();
+                let text = format!("No resampled errors of the {family} fit: {error}.");
+                findings.notices.push(Notice::caution(Code::NotConverged, text));
+            }
+        }
+    }
 }
 
 fn failure(request: FitRequest, error: &FitError) -> Notice {

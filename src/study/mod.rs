@@ -34,7 +34,7 @@ use std::sync::Arc;
 use thiserror::Error;
 
 pub use densities::{LevelDensities, level_densities};
-pub use fits::{bootstrap_fit, study_windows};
+pub use fits::{bootstrap_fit, study_windows, take_bootstraps};
 
 /// Why settings and scan do not fit together (a wrong name, not a bad curve).
 #[derive(Clone, Debug, PartialEq, Error)]

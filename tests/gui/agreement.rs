@@ -1,6 +1,6 @@
 //! Window and command line come to the same findings, whatever the unit of the scan.
 
-use crate::harness::{open, state};
+use crate::harness::{give, open, state};
 use eframe::egui;
 use parabound::fit::Window;
 use parabound::gui::app::Start;
@@ -43,6 +43,23 @@ fn window_and_command_line_find_the_same() {
         settings.curve.clone_from(&of_window.curve);
         assert_eq!(text, headless(&path, &settings), "{file}");
     }
+}
+
+/// Errors resampled by a button are written as the option would have them.
+#[test]
+fn resampled_errors_are_in_the_file_that_is_written() {
+    let path = scan("h2_fci.csv");
+    let mut settings = Settings::default();
+    settings.masses.atoms = Some(parabound::species::parse_atoms("1H,1H").expect("atoms"));
+    let start = Start { files: vec![path.clone()], settings: settings.clone(), ..Start::default() };
+    let mut window = open([1400.0, 900.0], egui::Theme::Dark, start);
+    for command in [Command::SetRepeats(50), Command::Resample] {
+        give(&mut window, command);
+    }
+    settings.curve.clone_from(&state(&window).study().expect("a study").findings.settings.curve);
+    settings.fits.bootstrap = Some(parabound::fit::BootstrapSettings { repeats: 50, ..Default::default() });
+    let written = parabound::gui::extras::with_resampled(state(&window)).expect("findings");
+    assert_eq!(parabound::export::json::findings_to_string(&written), headless(&path, &settings));
 }
 
 /// A window given in another unit than the scan's: edges on the plot, points counted, fit.

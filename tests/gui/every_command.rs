@@ -1,6 +1,6 @@
 //! Every command of the list: through its menu or button, through its keys, through the search; and undone.
 
-use crate::harness::{Window, open, press, state};
+use crate::harness::{Window, give, open, press, state};
 use eframe::egui::{self, Key, Modifiers, Theme, accesskit::Role};
 use egui_kittest::kittest::{NodeT as _, Queryable as _, by};
 use parabound::fit::Window as FitWindow;
@@ -9,12 +9,6 @@ use parabound::gui::catalog::{Entry, Place, entries};
 use parabound::gui::command::Command;
 use parabound::units::LengthUnit;
 use std::path::Path;
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 /// A window in which as many commands as possible can be given: two scans, a study that is kept in a file, a moved
 /// window, a step to take back and one to do again, a level and a message shown.

@@ -1,6 +1,6 @@
 //! The page of fits by label: which window, side by side, resampled errors, families and weights, copying, failures.
 
-use crate::harness::{Window, harmonic_force_constant, open_sample, press, state};
+use crate::harness::{Window, give, harmonic_force_constant, open_sample, press, state};
 use eframe::egui::{self, accesskit::Role};
 use egui_kittest::Harness;
 use egui_kittest::kittest::{NodeT as _, Queryable as _, by};
@@ -15,12 +15,6 @@ use parabound::gui::state::{Page, Resampling};
 use parabound::units::{ForceConstantConvention, ForceConstantUnit, LengthUnit};
 use parabound_gui_tests::{CpuRenderer, Shown};
 use std::time::{Duration, Instant};
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 fn fits_page() -> Window {
     let mut window = open_sample();

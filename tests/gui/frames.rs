@@ -1,17 +1,11 @@
 //! Every sample through a few frames at every size and in both themes; files that are none.
 
-use crate::harness::{Window, open, state};
+use crate::harness::{give, open, state};
 use eframe::egui::{Theme, vec2};
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
 use parabound::gui::samples::SAMPLES;
 use parabound::gui::state::{CurveKey, Page, Preset, Strip};
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 #[test]
 fn every_sample_and_curve_is_drawn() {

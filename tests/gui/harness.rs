@@ -31,7 +31,7 @@ pub fn open_sample() -> Window {
     open([1400.0, 900.0], egui::Theme::Dark, Start::default())
 }
 
-/// Gives a command.
+/// Gives a command as a menu or a key would.
 pub fn give(window: &mut Window, command: Command) {
     let ctx = window.ctx.clone();
     window.state_mut().0.give(command, &ctx);

@@ -1,6 +1,6 @@
 //! The page of temperature, and curves side by side.
 
-use crate::harness::{Window, open_sample, press, state};
+use crate::harness::{Window, give, open_sample, press, state};
 use eframe::egui::accesskit::Role;
 use eframe::egui::{Key, Modifiers, vec2};
 use egui_kittest::kittest::{NodeT as _, Queryable as _, by};
@@ -8,12 +8,6 @@ use parabound::export::compare::{Form, Quantity};
 use parabound::gui::command::Command;
 use parabound::gui::state::{Page, Reference};
 use parabound::units::{EnergyUnit, LengthUnit};
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 /// What the page says of a quantity: its figures for the levels, the harmonic and the Morse picture.
 fn figures(window: &Window, name: &str) -> Vec<f64> {

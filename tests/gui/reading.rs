@@ -1,6 +1,6 @@
 //! Getting scans in: units by their row, folders, the clipboard, columns, files read again.
 
-use crate::harness::{Window, open, open_sample, press, state};
+use crate::harness::{Window, give, open, open_sample, press, state};
 use eframe::egui::{self, Key, Modifiers, accesskit::Role, accesskit::Toggled};
 use egui_kittest::kittest::{Queryable as _, by};
 use parabound::gui::app::Start;
@@ -8,12 +8,6 @@ use parabound::gui::command::Command;
 use parabound::gui::state::Page;
 use parabound::units::{EnergyUnit, LengthUnit};
 use std::path::{Path, PathBuf};
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 /// Invented numbers: a parabola with a cubic term, and a second column with twice its height.
 fn table(header: &str) -> String {

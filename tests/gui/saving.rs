@@ -1,6 +1,6 @@
 //! Study files and unsaved work: saved, opened, restored, never replaced unasked.
 
-use crate::harness::{Window, open, open_sample, press, state};
+use crate::harness::{Window, give, open, open_sample, press, state};
 use eframe::egui::{self, Key, Modifiers, Theme, accesskit::Role};
 use egui_kittest::kittest::Queryable as _;
 use parabound::export::json::findings_to_string;
@@ -10,12 +10,6 @@ use parabound::gui::command::Command;
 use parabound::gui::state::{Page, Preset, Strip, Zoom};
 use parabound::study_file::StudyFile;
 use std::path::{Path, PathBuf};
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 fn open_file(path: &Path) -> Window {
     open([1400.0, 900.0], Theme::Dark, Start { files: vec![path.to_owned()], ..Start::default() })

@@ -43,7 +43,7 @@ pub(super) fn resample_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         Resampling::None => {}
         Resampling::Stopped => show::note(ui, "Stopped; nothing was kept."),
         Resampling::Failed(text) => show::note(ui, text),
-        Resampling::Done(findings, _) => {
+        Resampling::Done(findings, ..) => {
             let current = state.study().is_some_and(|s| Arc::ptr_eq(&s.findings, findings));
             let text = if current {
                 "The errors stand below each fit, beside those of linear propagation."
@@ -58,7 +58,7 @@ pub(super) fn resample_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
 
 /// The errors of one fit, where they belong to what is shown.
 fn found(state: &State, index: usize) -> Option<&Result<FitBootstrap, String>> {
-    let Resampling::Done(findings, fits) = &state.resampling else { return None };
+    let Resampling::Done(findings, _, fits) = &state.resampling else { return None };
     let current = state.study().is_some_and(|s| Arc::ptr_eq(&s.findings, findings));
     fits.get(index).filter(|_| current)?.as_ref()
 }
