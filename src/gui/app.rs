@@ -17,6 +17,7 @@ use crate::settings::Settings;
 use eframe::egui;
 use egui::Key;
 use std::path::PathBuf;
+use std::sync::Arc;
 use std::time::Duration;
 
 /// What the window starts with.
