@@ -14,7 +14,7 @@ use crate::scan::Layout;
 use crate::settings::Settings;
 use crate::species::Masses;
 use crate::spectroscopy::{BirgeSponer, Constants, DunhamTable, NearDissociation};
-use crate::thermal::{Position, ThermalDensity, ThermalPoint, thermal_density};
+use crate::thermal::{Position, RotatingSum, ThermalDensity, ThermalPoint, thermal, thermal_density};
 use crate::units::{EnergyUnit, LengthUnit};
 use std::sync::Arc;
 
@@ -240,6 +240,8 @@ pub struct Findings {
     pub morse_positions: Vec<Position>,
     /// Thermal averages by temperature; empty without levels.
     pub thermal: Vec<ThermalPoint>,
+    /// What the averages with rotation are made from, for other temperatures; none unless asked for.
+    pub rotating_sum: Option<Arc<RotatingSum>>,
     /// Bond lengths whose computation would help most, ascending.
     pub next_points: Vec<NextPoint>,
     /// All remarks, the gravest first.
@@ -274,6 +276,17 @@ impl Findings {
             morse_per_cm: morse.map_or(&[], |f| &f.levels_per_cm),
             morse_positions: &self.morse_positions,
         })
+    }
+
+    /// Thermal averages at other temperatures than those of the settings, with rotation where the settings have it.
+    pub fn thermal_at(&self, temperatures_kelvin: &[f64]) -> Vec<ThermalPoint> {
+        let mut points = self.thermal_input().map_or_else(Vec::new, |i| thermal(&i, temperatures_kelvin));
+        if let Some(sum) = &self.rotating_sum {
+            for point in &mut points {
+                point.rotating = Some(sum.at(point.kelvin, point.harmonic));
+            }
+        }
+        points
     }
 
     /// The window of the fits: as given, or the default one around the minimum; none without a minimum.

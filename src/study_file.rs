@@ -165,8 +165,13 @@ pub struct View {
     pub page: Option<String>,
     /// The strip.
     pub strip: Option<String>,
+    /// What the gauge measures, by its name on the command line.
+    pub gauge: Option<String>,
     /// The level kept shown.
     pub level: Option<usize>,
+    /// Levels kept shown beside it.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub levels: Vec<usize>,
     /// The region of the plot by its name,
     pub region: Option<String>,
     /// or its bounds: bond length from and to (angstrom), energy from and to (cm⁻¹ above the minimum).

@@ -350,6 +350,8 @@ fn thermal_point(point: &ThermalPoint) -> Value {
         value["morse"] = r.morse.as_ref().map_or(Value::Null, averages);
         value["mean_r"] = angstrom(r.mean_r_bohr);
         value["mean_square_x"] = square(r.mean_square_x_bohr2);
+        value["unsupported_share"] = r.unsupported_share.into();
+        value["converged"] = r.converged.into();
         value
     });
     let ideal_gas = point.rotating.and_then(|r| r.ideal_gas).map(|gas| {
@@ -369,6 +371,7 @@ fn thermal_point(point: &ThermalPoint) -> Value {
         "populations": numbers(&point.populations),
         "rovibrational": rovibrational,
         "ideal_gas": ideal_gas,
+        "unsupported_share": point.unsupported_share,
         "converged": point.converged,
     })
 }

@@ -30,6 +30,16 @@ impl GaugeMeasure {
         ("force-cm-1", Self::ForcePerCmAngstrom),
     ];
 
+    /// Its name on the command line.
+    pub fn name(self) -> &'static str {
+        Self::ALL.into_iter().find(|(_, m)| *m == self).map_or("", |(name, _)| name)
+    }
+
+    /// The measure of this name.
+    pub fn of_name(name: &str) -> Option<Self> {
+        Self::ALL.into_iter().find(|(n, _)| *n == name).map(|(_, measure)| measure)
+    }
+
     const fn axis(self) -> Axis {
         match self {
             Self::EnergyPercent => Axis { title: "deviation", unit: "%" },
@@ -192,6 +202,24 @@ fn reach(findings: &Findings, curve: &ScanCurve, measure: GaugeMeasure) -> Vec<S
     for tolerance in measure.tolerance(reach).into_iter().flat_map(|t| [t, -t]) {
         let about = "The tolerance of the reach.".to_owned();
         series.push(plain(Role::Tolerance, "tolerance", about, Shape::Level(tolerance)));
+    }
+    if measure == GaugeMeasure::ForcePerCmAngstrom
+        && let Some(k) = curve.derivatives_hartree[0].map(|e| e.value)
+    {
+        let (first, last) = curve.scan_range_bohr;
+        for sign in [1.0, -1.0] {
+            let at = |r: f64| {
+                let allowed = reach.tolerance * k * (r - r_e).abs();
+                [to_angstrom(r), sign * to_per_cm(allowed) / ANGSTROM_PER_BOHR]
+            };
+            let about = "τ |k x|: the tolerance grows with the displacement.".to_owned();
+            series.push(plain(
+                Role::Tolerance,
+                "tolerance",
+                about,
+                Shape::Line(vec![at(first), at(r_e), at(last)]),
+            ));
+        }
     }
     if let Some(amplitude) = reach.zero_point_amplitude_bohr {
         series.push(plain(

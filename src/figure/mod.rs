@@ -19,6 +19,8 @@ pub mod rows;
 mod sentence;
 pub mod svg;
 mod thermal;
+mod thermal_density;
+mod thermal_quantity;
 pub mod typography;
 mod views;
 mod window_study;
@@ -31,7 +33,9 @@ pub use gauge::{GaugeMeasure, gauge, gauge_of, gauge_turning_points};
 pub use ladders::{Ladder, Ladders, ladders};
 pub use residuals::residuals;
 pub use sentence::{Sentence, sentence};
-pub use thermal::{ThermalPanel, thermal_figure, thermal_panels};
+pub use thermal::{ThermalPanel, thermal_panels};
+pub use thermal_density::{ThermalDensityPicture, thermal_density_picture};
+pub use thermal_quantity::{ThermalPicture, ThermalQuantity, ThermalValues, thermal_picture};
 pub use views::{Views, views};
 pub use window_study::{WindowPicture, WindowTarget};
 
@@ -200,8 +204,6 @@ pub struct Pictures {
     pub gauge: Figure,
     /// Residuals of the fits.
     pub residuals: Figure,
-    /// Averages over temperature.
-    pub thermal: Figure,
     /// Regions worth looking at.
     pub views: Views,
     /// The sentence.
@@ -221,7 +223,6 @@ impl Pictures {
             ladders: ladders(findings),
             gauge: gauge(findings),
             residuals: residuals(findings),
-            thermal: thermal_figure(findings),
             views: views(findings, window),
             sentence: sentence(findings),
             window,

@@ -12,10 +12,10 @@ const POPULATED: usize = 4;
 /// Tolerance of q and U in percent, as the temperature reach has it.
 const WITHIN_PERCENT: f64 = 1.0;
 
-const TEMPERATURE: Axis = Axis { title: "temperature", unit: "K" };
-const HARMONIC: &str = "Of ω_e from k = V″(r_e), in closed form.";
-const MORSE: &str = "Over the levels of the Morse fit.";
-const NUMERICAL: &str = "Over the levels of the curve.";
+pub(super) const TEMPERATURE: Axis = Axis { title: "temperature", unit: "K" };
+pub(super) const HARMONIC: &str = "Of ω_e from k = V″(r_e), in closed form.";
+pub(super) const MORSE: &str = "Over the levels of the Morse fit.";
+pub(super) const NUMERICAL: &str = "Over the levels of the curve.";
 
 /// One of several pictures that share their temperature axis.
 #[derive(Clone, Debug, PartialEq)]
@@ -32,14 +32,6 @@ pub struct ThermalPanel {
 struct Lines<'a> {
     findings: &'a Findings,
     mesh: Vec<ThermalPoint>,
-}
-
-/// The vibrational heat capacity over temperature: numerical, harmonic and over the levels of the Morse fit.
-pub fn thermal_figure(findings: &Findings) -> Figure {
-    match Lines::of(findings) {
-        Some(lines) => lines.heat_capacity().figure,
-        None => figure("heat capacity", "J/(mol K)", Vec::new()),
-    }
 }
 
 /// Six pictures over temperature: how far harmonic and Morse are off in the partition function and in the mean energy,

@@ -6,7 +6,7 @@ use super::product::Product;
 use super::reading::{self, ReadingCommand, ReadingEffect};
 pub use super::saving::*;
 use super::session::Work;
-use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Resampling, Search, State, Zoom};
+use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Resampling, Search, State, Strip, Zoom};
 pub use super::take::*;
 use crate::export::compare::Quantity;
 use crate::export::parameters;
@@ -244,6 +244,31 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                 edit(state, "change the tolerance", !resting, |s| s.reach.tolerance = *tolerance);
             }
         }
+        Command::SetAbsoluteTolerance { tolerance, resting } => {
+            if tolerance.value > 0.0 && tolerance.value.is_finite() {
+                edit(state, "change the absolute tolerance", !resting, |s| s.reach.absolute = *tolerance);
+            }
+        }
+        Command::SetLevelTolerance { tolerance_per_cm, resting } => {
+            if tolerance_per_cm.is_none_or(|t| t.is_finite() && t > 0.0) {
+                edit(state, "change the tolerance of levels", !resting, |s| {
+                    s.reach.level_tolerance_per_cm = *tolerance_per_cm;
+                });
+            }
+        }
+        Command::SetSpacingTolerance { tolerance_per_cm, resting } => {
+            if tolerance_per_cm.is_none_or(|t| t.is_finite() && t > 0.0) {
+                edit(state, "change the tolerance of spacings", !resting, |s| {
+                    s.reach.spacing_tolerance_per_cm = *tolerance_per_cm;
+                });
+            }
+        }
+        Command::SetThermal(thermal) => {
+            let wanted = Settings { thermal: thermal.clone(), ..Settings::default() };
+            if wanted.checked().is_ok() {
+                edit(state, "change the thermal sums", false, |s| s.thermal.clone_from(thermal));
+            }
+        }
         Command::SetPublished { quantity, value } => {
             let Some(index) = Quantity::ALL.iter().position(|q| q == quantity) else { return true };
             if state.document.published[index] != *value {
@@ -383,6 +408,7 @@ fn close_scan(state: &mut State) {
 pub(super) fn forget_level(state: &mut State) {
     state.view.hovered_level = None;
     state.view.pinned_level = None;
+    state.view.kept_levels.clear();
     state.view.pointed_angstrom = None;
     state.view.selected_row = None;
     state.view.open_notice = None;
@@ -403,7 +429,20 @@ fn change_view(command: Command, state: &mut State) {
             }
         }
         Command::HoverLevel(level) => view.hovered_level = level,
-        Command::PinLevel(level) => view.pinned_level = level,
+        Command::PinLevel(level) => {
+            view.pinned_level = level;
+            if level.is_none() {
+                view.kept_levels.clear();
+            }
+        }
+        Command::KeepLevel(v, true) => {
+            if state.study().is_some_and(|s| s.findings.levels.iter().any(|l| l.v == v)) {
+                state.view.kept_levels.insert(v);
+            }
+        }
+        Command::KeepLevel(v, false) => {
+            view.kept_levels.remove(&v);
+        }
         Command::StepLevel(step) => step_level(step, state),
         Command::PointAt(r) => point_at(r, state),
         Command::SelectPoint(row) => select_point(row, state),
@@ -434,12 +473,17 @@ fn change_view(command: Command, state: &mut State) {
                 view.kelvin = Some(kelvin.clamp(low, high));
             }
         }
+        Command::SetThermalView(thermal) => view.thermal = thermal,
         Command::ShowFitsPart(part) => view.fits_part = part,
         Command::SetRepeats(repeats) => {
             view.repeats = Some(repeats.clamp(2, BootstrapSettings::MOST_REPEATS));
         }
         Command::SetParameterUnits(units) => view.parameter_units = units,
         Command::ShowStrip(strip) => view.strip = strip,
+        Command::ShowGauge(measure) => {
+            view.strip = Strip::Gauge;
+            view.gauge = measure;
+        }
         Command::ToggleWhy => view.why_open = !view.why_open,
         Command::ShowLeft(open) => view.panels.left = Some(open),
         Command::ShowRight(open) => view.panels.right = Some(open),

@@ -1,10 +1,12 @@
 //! All commands in one list, with where each lives: for the search, for the sheet of shortcuts, and for tests.
 
 use super::command::{Command, InterfaceSize};
+use super::plot::GAUGE_MENU;
 use super::product::Product;
 use super::reading::ReadingCommand;
 use super::samples::SAMPLES;
 use super::state::{Page, Preset, Problem, State, Strip};
+use crate::figure::GaugeMeasure;
 
 /// Where a command is found.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -27,6 +29,8 @@ pub enum Place {
     Left,
     /// The picture and what stands above it.
     Plot,
+    /// The menu of what the gauge under the picture measures.
+    Gauge,
     /// The tabs on the right.
     Pages,
     /// A page on the right.
@@ -50,6 +54,7 @@ impl Place {
             Self::Help => "Help",
             Self::Left => "panel on the left",
             Self::Plot => "picture",
+            Self::Gauge => "gauge under the picture",
             Self::Pages => "pages on the right",
             Self::Page(page) => match page {
                 Page::Constants => "page Constants",
@@ -69,6 +74,7 @@ impl Place {
             Self::Export => &["Export"],
             Self::View => &["View"],
             Self::Help => &["Help"],
+            Self::Gauge => &[GAUGE_MENU],
             _ => &[],
         }
     }
@@ -97,7 +103,8 @@ pub const FILE_MENU: [Command; 7] = [
 /// The menu of what is seen.
 pub fn view_menu(state: &State) -> Vec<Command> {
     let panels = state.view.panels;
-    vec![
+    let keep = state.view.pinned_level.map(|v| Command::KeepLevel(v, !state.view.kept_levels.contains(&v)));
+    let mut menu = vec![
         Command::StepCurve(-1),
         Command::StepCurve(1),
         Command::StepLevel(1),
@@ -109,7 +116,10 @@ pub fn view_menu(state: &State) -> Vec<Command> {
         Command::SizeInterface(InterfaceSize::Smaller),
         Command::SizeInterface(InterfaceSize::Usual),
         Command::SetStill(!state.preferences.still),
-    ]
+    ];
+    // Beside the other commands of levels.
+    menu.splice(5..5, keep);
+    menu
 }
 
 /// The menu of help.
@@ -140,6 +150,7 @@ pub fn entries(state: &State) -> Vec<Entry> {
     put(Place::Help, help_menu(state));
     put(Place::Plot, Preset::ALL.map(Command::Zoom).to_vec());
     put(Place::Plot, Strip::ALL.map(Command::ShowStrip).to_vec());
+    put(Place::Gauge, GaugeMeasure::ALL.map(|(_, measure)| Command::ShowGauge(measure)).to_vec());
     put(Place::Plot, vec![Command::ToggleWhy]);
     put(Place::Left, vec![Command::ShowComparison(true)]);
     put(Place::Pages, Page::ALL.map(Command::ShowPage).to_vec());

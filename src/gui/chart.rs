@@ -24,8 +24,15 @@ pub struct Shown {
     pub map: Map,
 }
 
-/// Draws a figure in the given height; `mark` is an abscissa marked by a line.
-pub fn chart_ui(ui: &mut Ui, figure: &Figure, height: f32, mark: Option<f64>) -> Option<Shown> {
+/// Draws a figure in the given height; `mark` is an abscissa marked by a line, `range` that of the ordinate, where it is
+/// not that of the lines.
+pub fn chart_ui(
+    ui: &mut Ui,
+    figure: &Figure,
+    height: f32,
+    mark: Option<f64>,
+    range: Option<(f64, f64)>,
+) -> Option<Shown> {
     let content = content_bounds(figure)?;
     let look = Look::of(ui);
     let width = ui.available_width();
@@ -36,7 +43,7 @@ pub fn chart_ui(ui: &mut Ui, figure: &Figure, height: f32, mark: Option<f64>) ->
         pos2(whole.right() - 18.0, whole.bottom() - BELOW),
     );
     let pad = 0.05 * (content.y.1 - content.y.0).max(1e-9 * content.y.1.abs()).max(1e-12);
-    let bounds = Bounds { x: content.x, y: (content.y.0 - pad, content.y.1 + pad) };
+    let bounds = Bounds { x: content.x, y: range.unwrap_or((content.y.0 - pad, content.y.1 + pad)) };
     let map = Map { rect, bounds };
     let id = ui.scope_id().with(("chart", figure.y.title));
     let response = ui.interact(rect, id, Sense::click_and_drag());

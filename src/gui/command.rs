@@ -3,14 +3,19 @@
 use super::densities::DensityView;
 use super::product::Product;
 use super::reading::ReadingCommand;
-use super::state::{AxisView, CurveKey, FitsPart, Page, Preset, Reference, Resampling, State, Strip};
+use super::state::{
+    AxisView, CurveKey, FitsPart, Page, Preset, Reference, Resampling, State, Strip, ThermalView,
+};
 use crate::export::compare::{Form, Quantity};
 use crate::export::parameters::ParameterUnits;
+use crate::figure::GaugeMeasure;
 use crate::figure::geometry::Bounds;
 use crate::fit::{FitRequest, Weighting, Window};
+use crate::reach::AbsoluteTolerance;
 use crate::scan::read::ReadSettings;
 use crate::settings::Settings;
 use crate::species::AtomChoice;
+use crate::thermal::ThermalSettings;
 use eframe::egui;
 use egui::{Key, KeyboardShortcut, Modifiers};
 use std::path::PathBuf;
@@ -63,6 +68,29 @@ pub enum Command {
         /// Whether the hand has let go.
         resting: bool,
     },
+    /// Set the absolute tolerance of the reach.
+    SetAbsoluteTolerance {
+        /// The tolerance.
+        tolerance: AbsoluteTolerance,
+        /// Whether the hand has let go.
+        resting: bool,
+    },
+    /// Set the tolerance of the reach by level in cm⁻¹; none: τ ω_e.
+    SetLevelTolerance {
+        /// The tolerance.
+        tolerance_per_cm: Option<f64>,
+        /// Whether the hand has let go.
+        resting: bool,
+    },
+    /// Set the tolerance of the reach by spacing in cm⁻¹; none: τ ω_e.
+    SetSpacingTolerance {
+        /// The tolerance.
+        tolerance_per_cm: Option<f64>,
+        /// Whether the hand has let go.
+        resting: bool,
+    },
+    /// How thermal averages are made.
+    SetThermal(ThermalSettings),
     /// Name the two atoms.
     SetAtoms([AtomChoice; 2]),
     /// Set the molecule's charge, or take that of the file again.
@@ -144,6 +172,8 @@ pub enum Command {
     HoverLevel(Option<usize>),
     /// Keep a level shown, or none.
     PinLevel(Option<usize>),
+    /// Keep a level shown beside the others that are, or no longer.
+    KeepLevel(usize, bool),
     /// Walk up (+1) or down (-1) the levels.
     StepLevel(i32),
     /// Point at a bond length (angstrom) on the plot.
@@ -171,8 +201,12 @@ pub enum Command {
     SetDensities(DensityView),
     /// Look at another temperature, in K.
     SetKelvin(f64),
+    /// What is shown of temperature.
+    SetThermalView(ThermalView),
     /// Show a strip.
     ShowStrip(Strip),
+    /// What the gauge measures.
+    ShowGauge(GaugeMeasure),
     /// Show or hide the reasons of the sentence.
     ToggleWhy,
     /// Show a notice in full, or none.
@@ -326,6 +360,10 @@ impl Command {
             Self::Zoom(preset) => preset.name().into(),
             Self::ShowPage(page) => page.name().into(),
             Self::ShowStrip(strip) => strip.name().into(),
+            Self::ShowGauge(GaugeMeasure::EnergyPercent) => "energy in percent".into(),
+            Self::ShowGauge(GaugeMeasure::EnergyPerCm) => "energy in its unit".into(),
+            Self::ShowGauge(GaugeMeasure::ForcePercent) => "force in percent".into(),
+            Self::ShowGauge(GaugeMeasure::ForcePerCmAngstrom) => "force in its unit".into(),
             Self::CopyConstants => "Copy as text".into(),
             Self::ShowComparison(true) => "Compare …".into(),
             Self::ShowComparison(false) => "Picture".into(),
@@ -358,6 +396,8 @@ impl Command {
             Self::StepLevel(step) if *step > 0 => "Level up".into(),
             Self::StepLevel(_) => "Level down".into(),
             Self::PinLevel(None) => "Let go of the level".into(),
+            Self::KeepLevel(v, true) => format!("Keep v = {v} shown"),
+            Self::KeepLevel(v, false) => format!("Let go of v = {v}"),
             Self::ShowLeft(true) => "Open the left panel".into(),
             Self::ShowLeft(false) => "Fold the left panel".into(),
             Self::ShowRight(true) => "Open the right panel".into(),
@@ -384,6 +424,7 @@ impl Command {
             Self::Zoom(preset) => format!("Look at {}", preset.name()),
             Self::ShowPage(page) => format!("Page {}", page.name()),
             Self::ShowStrip(strip) => format!("Strip {}", strip.name()),
+            Self::ShowGauge(_) => format!("Gauge of the {}", self.label()),
             Self::SetDark(true) => "Dark theme".into(),
             Self::SetDark(false) => "Light theme".into(),
             Self::ResetWindow => "Default fit window".into(),
@@ -439,6 +480,10 @@ impl Command {
             Self::StepCurve(_) => "Look at another curve of the list.",
             Self::StepLevel(_) => "Walk the levels; the picture shows the one reached.",
             Self::PinLevel(_) => "Show no level.",
+            Self::KeepLevel(_, true) => {
+                "Its density stays on the plot while others are looked at. Shift and a click do the same."
+            }
+            Self::KeepLevel(_, false) => "Its density no longer stays on the plot.",
             Self::ShowLeft(_) => "Curves, masses, fit window, tolerance.",
             Self::ShowRight(_) => "The pages of results.",
             Self::SizeInterface(_) => "Text, lines and controls together.",
@@ -464,6 +509,18 @@ impl Command {
             Self::ShowPage(Page::Reach) => "Where the parabola may be used, by every criterion.",
             Self::ShowStrip(Strip::Gauge) => "How far the curve departs from its parabola.",
             Self::ShowStrip(Strip::Residuals) => "Fitted minus scanned energies.",
+            Self::ShowGauge(GaugeMeasure::EnergyPercent) => {
+                "(V − Vₑ − ½ k x²)/(½ k x²), with k = V″(rₑ): what the energy reach is measured by."
+            }
+            Self::ShowGauge(GaugeMeasure::EnergyPerCm) => {
+                "V − Vₑ − ½ k x² in the unit of the energy axis, against the absolute tolerance."
+            }
+            Self::ShowGauge(GaugeMeasure::ForcePercent) => {
+                "(V′ − k x)/(k x): what the reach by force is measured by."
+            }
+            Self::ShowGauge(GaugeMeasure::ForcePerCmAngstrom) => {
+                "V′ − k x in the units of the axes; the tolerance τ |k x| opens to both sides."
+            }
             Self::ShowPage(Page::Thermal) => {
                 "Partition function, heat capacity and displacements over temperature."
             }
@@ -567,7 +624,10 @@ impl Command {
                 need(state.kept.contains_key(&state.document.origin), "This study is not kept in a file yet.")
             }
             Self::StepCurve(_) => need(state.document.settings.len() > 1, "There is no other curve."),
-            Self::PinLevel(None) => need(state.view.pinned_level.is_some(), "No level is kept."),
+            Self::PinLevel(None) => need(
+                state.view.pinned_level.is_some() || !state.view.kept_levels.is_empty(),
+                "No level is kept.",
+            ),
             Self::ToggleWhy => {
                 need(study.is_some_and(|s| !s.pictures.sentence.why.is_empty()), "There is no sentence yet.")
             }

@@ -1,7 +1,10 @@
 //! The densities of the level shown, computed once for as long as nothing changes.
 
+use super::kept::kept;
 use super::state::{State, Study};
-use crate::figure::{DensityKind, DensityPicture, density_picture};
+use crate::figure::{
+    DensityKind, DensityPicture, ThermalDensityPicture, density_picture, thermal_density_picture,
+};
 use eframe::egui;
 use std::sync::Arc;
 
@@ -56,24 +59,26 @@ impl DensityView {
     }
 }
 
-/// What a picture was made of: the study by its address and check, the level, the width.
-type Made = (usize, usize, Option<u64>);
-
-/// The densities of the level shown, from the last frame where nothing has changed.
-pub fn shown_densities(ctx: &egui::Context, state: &State, study: &Study) -> Option<Arc<DensityPicture>> {
-    let v = state.shown_level()?;
+/// The densities of the levels that stand out, the one shown first, from the last frame where nothing has changed.
+pub fn shown_densities(ctx: &egui::Context, state: &State, study: &Study) -> Arc<Vec<DensityPicture>> {
     let width = state.view.densities.width_angstrom;
-    let made: Made = (Arc::as_ptr(&study.findings) as usize, v, width.map(f64::to_bits));
-    let id = egui::Id::unique("densities of the level shown");
-    // The study is kept beside the picture, so that its address cannot come to mean another one.
-    type Kept = (Made, Arc<crate::findings::Findings>, Option<Arc<DensityPicture>>);
-    if let Some((of, _, picture)) = ctx.data(|d| d.get_temp::<Kept>(id))
-        && of == made
-    {
-        return picture;
+    let levels = state.outstanding();
+    let key = (levels.clone(), width.map(f64::to_bits));
+    kept(ctx, "densities", &study.findings, key, || {
+        levels.iter().filter_map(|&v| density_picture(&study.findings, v, width)).collect()
+    })
+}
+
+/// The density at the temperature looked at, where it is drawn.
+pub fn shown_thermal(
+    ctx: &egui::Context,
+    state: &State,
+    study: &Study,
+) -> Arc<Option<ThermalDensityPicture>> {
+    if !state.view.shows_thermal_density() {
+        return Arc::default();
     }
-    let picture = density_picture(&study.findings, v, width).map(Arc::new);
-    let kept: Kept = (made, Arc::clone(&study.findings), picture.clone());
-    ctx.data_mut(|d| d.insert_temp(id, kept));
-    picture
+    let kelvin = state.view.kelvin();
+    let findings = &study.findings;
+    kept(ctx, "thermal density", findings, kelvin.to_bits(), || thermal_density_picture(findings, kelvin))
 }

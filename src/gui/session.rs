@@ -130,7 +130,9 @@ fn view_of(state: &State) -> View {
     View {
         page: Some(view.page.name().to_owned()),
         strip: Some(view.strip.name().to_owned()),
+        gauge: Some(view.gauge.name().to_owned()),
         level: view.pinned_level,
+        levels: view.kept_levels.iter().copied().collect(),
         region,
         bounds,
     }

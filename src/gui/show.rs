@@ -239,3 +239,26 @@ pub fn styled_line(painter: &egui::Painter, points: &[egui::Pos2], style: LineSt
         LineStyle::Dotted => dashes(2.0, 3.0),
     }
 }
+
+/// A choice of one of a few; `label` is its hint and its name.
+pub fn combo_ui<T: Copy + PartialEq>(
+    ui: &mut Ui,
+    label: &str,
+    value: &mut T,
+    all: &[T],
+    name: impl Fn(T) -> &'static str,
+) {
+    let response = egui::ComboBox::from_id_salt(label)
+        .selected_text(name(*value))
+        .width(0.0)
+        .show_ui(ui, |ui| {
+            for &one in all {
+                ui.selectable_value(value, one, name(one));
+            }
+        })
+        .response
+        .on_hover_text(label);
+    response.widget_info(|| {
+        WidgetInfo::labeled(egui::Role::ComboBox, true, format!("{label}, {}", name(*value)))
+    });
+}

@@ -8,11 +8,11 @@ use super::meaning::Meaning;
 use super::preferences::Preferences;
 use super::product::Product;
 use super::reading::{LogSet, Reading, ReadingCommand};
-pub use super::view::{AxisView, Comparison, FitsPart, Page, Preset, Reference, Strip, Zoom};
+pub use super::view::{AxisView, Comparison, FitsPart, Page, Preset, Reference, Strip, ThermalView, Zoom};
 use crate::export::compare::Quantity;
 use crate::export::parameters::ParameterUnits;
 use crate::figure::geometry::Bounds;
-use crate::figure::{Pictures, PlotPoint};
+use crate::figure::{GaugeMeasure, Pictures, PlotPoint};
 use crate::findings::Findings;
 use crate::fit::Window;
 use crate::scan::Scan;
@@ -209,6 +209,8 @@ pub struct ViewState {
     pub parameter_units: ParameterUnits,
     /// The strip under the plot.
     pub strip: Strip,
+    /// What the gauge measures.
+    pub gauge: GaugeMeasure,
     /// Curves side by side.
     pub comparison: Comparison,
     /// Whether the user guide is open.
@@ -219,12 +221,16 @@ pub struct ViewState {
     pub densities: DensityView,
     /// The temperature looked at in K; none: 298.15 K.
     pub kelvin: Option<f64>,
+    /// What is shown of temperature.
+    pub thermal: ThermalView,
     /// Zoom of every curve looked at.
     pub zoom: BTreeMap<CurveKey, Zoom>,
     /// The level under the pointer.
     pub hovered_level: Option<usize>,
     /// The level kept by a click.
     pub pinned_level: Option<usize>,
+    /// Levels kept shown beside it.
+    pub kept_levels: BTreeSet<usize>,
     /// A bond length pointed at, in angstrom.
     pub pointed_angstrom: Option<f64>,
     /// The panels.
@@ -280,6 +286,11 @@ impl ViewState {
     /// The temperature looked at in K.
     pub fn kelvin(&self) -> f64 {
         self.kelvin.unwrap_or(298.15)
+    }
+
+    /// Whether the density at the temperature looked at is drawn on the plot.
+    pub fn shows_thermal_density(&self) -> bool {
+        self.page == Page::Thermal && self.thermal.density
     }
 
     /// Whether the fits over all windows are in sight.
@@ -474,6 +485,18 @@ impl State {
     /// The level that the plot brings forward.
     pub fn shown_level(&self) -> Option<usize> {
         self.view.hovered_level.or(self.view.pinned_level)
+    }
+
+    /// Whether a level's density stands out: the one shown and those kept beside it.
+    pub fn stands_out(&self, v: usize) -> bool {
+        self.shown_level() == Some(v) || self.view.kept_levels.contains(&v)
+    }
+
+    /// The levels that stand out, the one shown first.
+    pub fn outstanding(&self) -> Vec<usize> {
+        let shown = self.shown_level();
+        let kept = self.view.kept_levels.iter().copied().filter(|v| Some(*v) != shown);
+        shown.into_iter().chain(kept).collect()
     }
 
     /// What part of the plot is seen.

@@ -149,6 +149,7 @@ pub fn take_outcome(key: CurveKey, settings: Settings, answer: Result<Study, Fai
         let kept = |v: &usize| *v < levels;
         state.view.hovered_level = state.view.hovered_level.filter(kept);
         state.view.pinned_level = state.view.pinned_level.filter(kept);
+        state.view.kept_levels.retain(kept);
     }
 }
 

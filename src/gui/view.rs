@@ -2,8 +2,8 @@
 
 use super::state::CurveKey;
 use crate::export::compare::Quantity;
-use crate::figure::Pictures;
 use crate::figure::geometry::Bounds;
+use crate::figure::{Pictures, ThermalQuantity};
 use crate::units::{EnergyUnit, LengthUnit};
 
 /// A page of results.
@@ -102,6 +102,21 @@ impl FitsPart {
             Self::Windows => "Which window",
             Self::Compare => "Side by side",
         }
+    }
+}
+
+/// What is shown of temperature.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct ThermalView {
+    /// The quantity drawn over temperature.
+    pub quantity: ThermalQuantity,
+    /// Whether the density is drawn on the plot while the page is open.
+    pub density: bool,
+}
+
+impl Default for ThermalView {
+    fn default() -> Self {
+        Self { quantity: ThermalQuantity::default(), density: true }
     }
 }
 

@@ -184,6 +184,7 @@ pub fn study_observed(scan: &Scan, settings: &Settings, observer: &Observer) -> 
         densities: Densities::default(),
         morse_positions: Vec::new(),
         thermal: Vec::new(),
+        rotating_sum: None,
         next_points: Vec::new(),
         notices: scan.notices.clone(),
     };

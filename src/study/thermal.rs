@@ -7,10 +7,10 @@ use crate::notice::{Code, Notice};
 use crate::potential::curve::ScanCurve;
 use crate::species::{Masses, mean_atomic_mass_u};
 use crate::thermal::{
-    self, Averages, HIGHEST_J, Position, Rotating, RotatingLevel, SpinWeights, ThermalPoint, ThermalSettings,
-    ideal_gas, over_levels, rigid_rotor, rotating_levels,
+    self, HIGHEST_J, Position, RotatingSum, SpinWeights, ThermalPoint, ThermalSettings, rotating_levels,
 };
 use crate::units::{BOLTZMANN_PER_CM_PER_KELVIN, PER_CM_PER_HARTREE, rotational_constant_per_cm};
+use std::sync::Arc;
 
 /// Levels with a Boltzmann factor below e^−30 do not change a sum.
 const HIGHEST_IN_KT: f64 = 30.0;
@@ -26,14 +26,20 @@ pub fn fill(findings: &mut Findings, curve: &ScanCurve) {
     let settings = &findings.settings.thermal;
     let mut points = thermal::thermal(&input, &settings.temperatures_kelvin);
     let mut notices = Vec::new();
-    if settings.rotation
-        && let Some(notice) = rotate(&mut points, findings, curve, masses)
-    {
-        notices.push(notice);
+    let mut sum = None;
+    if settings.rotation {
+        match rotate(&mut points, findings, curve, masses) {
+            Ok(found) => {
+                notices.extend(cut_too_early(&points, &found));
+                sum = Some(Arc::new(found));
+            }
+            Err(notice) => notices.push(notice),
+        }
     }
     notices.extend(left_out(settings));
     notices.extend(unsupported(&points));
     findings.thermal = points;
+    findings.rotating_sum = sum;
     findings.notices.append(&mut notices);
 }
 
@@ -76,23 +82,24 @@ fn unsupported(points: &[ThermalPoint]) -> Option<Notice> {
     Some(Notice::info(Code::ThermalLevels, text))
 }
 
-/// Adds the averages with rotation; a notice where there are none.
+/// Adds the averages with rotation and gives what they are made from; a notice where there are none.
 fn rotate(
     points: &mut [ThermalPoint],
     findings: &Findings,
     curve: &ScanCurve,
     masses: &Masses,
-) -> Option<Notice> {
+) -> Result<RotatingSum, Notice> {
     let lambda = findings.settings.levels.lambda;
     if lambda > 0 {
         let text = format!(
             "There are no thermal averages with rotation: they are made for closed-shell states, and this one has \
              Lambda = {lambda}."
         );
-        return Some(Notice::caution(Code::ThermalLevels, text));
+        return Err(Notice::caution(Code::ThermalLevels, text));
     }
     let highest_kelvin = points.iter().map(|p| p.kelvin).fold(0.0, f64::max);
-    let highest_v = findings.levels.len().checked_sub(1)?;
+    // Without levels this is not reached.
+    let highest_v = findings.levels.len().saturating_sub(1);
     let levels = match rotating_levels(
         &curve.above_minimum(),
         masses.reduced_mass_me,
@@ -103,13 +110,10 @@ fn rotate(
         Ok(levels) => levels,
         Err(error) => {
             let text = format!("There are no thermal averages with rotation: {error}.");
-            return Some(Notice::caution(Code::NotConverged, text));
+            return Err(Notice::caution(Code::NotConverged, text));
         }
     };
     let settings = &findings.settings.thermal;
-    let weights = spin_weights(settings, masses);
-    let mass_u = molecule_mass_u(masses);
-    let rigid = rotational_constant_per_cm(curve.local.r_e_bohr, masses.reduced_mass_me);
     let of_morse = findings.found_fit(Family::Morse).and_then(|found| {
         let fit = found.result.as_ref().ok()?;
         rotating_levels(
@@ -121,63 +125,40 @@ fn rotate(
         )
         .ok()
     });
-    for point in points {
-        let electronic = f64::from(settings.electronic_weight);
-        let mut rotating = at(&levels, weights, mass_u, electronic, point.kelvin);
-        let rotor = rigid_rotor(rigid, weights, point.kelvin);
-        rotating.harmonic = point.harmonic.map(|h| h.with(&rotor));
-        rotating.morse = of_morse.as_ref().map(|levels| counted(levels, weights, point.kelvin).1);
-        point.rotating = Some(rotating);
+    let leaning_from_v = findings.levels.iter().find(|l| l.leans_on_tail).map(|l| l.v);
+    let rigid = rotational_constant_per_cm(curve.local.r_e_bohr, masses.reduced_mass_me);
+    let weights = spin_weights(settings, masses);
+    let mut sum = RotatingSum::new(&levels, leaning_from_v, of_morse.as_deref(), rigid, weights);
+    sum.mass_u = molecule_mass_u(masses);
+    sum.electronic_weight = f64::from(settings.electronic_weight);
+    sum.solved_for_kelvin = highest_kelvin;
+    for point in points.iter_mut() {
+        point.rotating = Some(sum.at(point.kelvin, point.harmonic));
     }
-    // A sum that runs into the last J solved for may lack what lies beyond it.
-    levels.iter().any(|l| l.j == HIGHEST_J).then(|| {
-        let text = format!(
-            "The thermal averages with rotation stop at J = {HIGHEST_J}: at the highest temperatures more levels \
-             would count. Ask for lower temperatures."
-        );
-        Notice::caution(Code::ThermalLevels, text)
-    })
+    Ok(sum)
 }
 
-/// The levels that count, each with its weight, the lowest first; and the averages over them.
-fn counted(
-    levels: &[RotatingLevel],
-    weights: SpinWeights,
-    kelvin: f64,
-) -> (Vec<(&RotatingLevel, f64)>, Averages) {
-    let mut counted: Vec<(&RotatingLevel, f64)> = levels
-        .iter()
-        .map(|l| (l, weights.of(l.j) * f64::from(2 * l.j + 1)))
-        .filter(|(_, weight)| *weight > 0.0)
-        .collect();
-    counted.sort_by(|a, b| a.0.energy_per_cm.total_cmp(&b.0.energy_per_cm));
-    let lowest = counted.first().map_or(0.0, |(l, _)| l.energy_per_cm);
-    let averages = over_levels(counted.iter().map(|(l, g)| (l.energy_per_cm - lowest, *g)), kelvin);
-    (counted, averages)
-}
-
-fn at(
-    levels: &[RotatingLevel],
-    weights: SpinWeights,
-    mass_u: Option<f64>,
-    electronic_weight: f64,
-    kelvin: f64,
-) -> Rotating {
-    let (counted, rovibrational) = counted(levels, weights, kelvin);
-    let lowest = counted.first().map_or(0.0, |(l, _)| l.energy_per_cm);
-    let kt = BOLTZMANN_PER_CM_PER_KELVIN * kelvin;
-    let average = |value: fn(&RotatingLevel) -> f64| {
-        let terms = counted.iter().map(|(l, g)| g * (-(l.energy_per_cm - lowest) / kt).exp() * value(l));
-        terms.sum::<f64>() / rovibrational.partition_function
+/// Where the sum over E(v, J) was cut too early for what is populated, and by what.
+fn cut_too_early(points: &[ThermalPoint], sum: &RotatingSum) -> Option<Notice> {
+    let wrong = |p: &&ThermalPoint| p.rotating.is_some_and(|r| !r.converged);
+    let lowest = points.iter().filter(wrong).min_by(|a, b| a.kelvin.total_cmp(&b.kelvin))?;
+    let share = lowest.rotating.map_or(0.0, |r| 100.0 * r.unsupported_share);
+    let (levels, highest_j) = sum.extent();
+    let remedy = if highest_j >= HIGHEST_J {
+        format!(
+            " The sum stops at J = {HIGHEST_J}, where more levels would count: ask for lower temperatures."
+        )
+    } else {
+        String::new()
     };
-    Rotating {
-        rovibrational,
-        mean_r_bohr: average(|l| l.mean_r_bohr),
-        mean_square_x_bohr2: average(|l| l.mean_square_x_bohr2),
-        harmonic: None,
-        morse: None,
-        ideal_gas: mass_u.map(|mass| ideal_gas(&rovibrational, mass, electronic_weight, kelvin)),
-    }
+    let text = format!(
+        "Thermal averages with rotation from {} K on are not converged: {} % of the population is in levels that lean on \
+         a tail, or in the last ones below the limit, of {levels} levels up to J = {highest_j}.{remedy}",
+        lowest.kelvin,
+        crate::digits::rounded(share, 2)
+    );
+    let notice = if highest_j >= HIGHEST_J { Notice::caution } else { Notice::info };
+    Some(notice(Code::ThermalLevels, text))
 }
 
 /// The settings' choice, else by nuclear spin for two protons (1/4, 3/4) and two deuterons (2/3, 1/3), whose

@@ -5,11 +5,13 @@
 mod density;
 mod ideal_gas;
 mod rotation;
+mod rovibrational;
 mod sums;
 
 pub use density::{ThermalDensity, thermal_density};
 pub use ideal_gas::{IdealGas, STANDARD_PRESSURE_PASCAL, SpinWeights, ideal_gas};
 pub use rotation::{HIGHEST_J, RotatingLevel, rigid_rotor, rotating_levels};
+pub use rovibrational::RotatingSum;
 pub use sums::{Averages, boltzmann, harmonic, over_levels};
 
 use crate::radial::Level;
@@ -79,6 +81,8 @@ pub struct ThermalPoint {
     pub populations: Vec<f64>,
     /// Over E(v, J) and as an ideal gas; none unless asked for.
     pub rotating: Option<Rotating>,
+    /// Share of the population in levels that lean on a tail and in the last level.
+    pub unsupported_share: f64,
     /// Whether the levels support the averages: less than 1e-4 rests on levels that lean on a tail or lie
     /// beyond the last one.
     pub converged: bool,
@@ -99,6 +103,11 @@ pub struct Rotating {
     pub morse: Option<Averages>,
     /// The ideal gas at 1 bar; none when the masses of the atoms are not known.
     pub ideal_gas: Option<IdealGas>,
+    /// Share of the population in levels that lean on a tail, in the highest v solved for each J, and in the last J: what
+    /// comes after them is not in the sum.
+    pub unsupported_share: f64,
+    /// Whether that share is below 1e-4.
+    pub converged: bool,
 }
 
 /// What the thermal averages are made from.
@@ -172,6 +181,7 @@ pub fn thermal(input: &ThermalInput, temperatures_kelvin: &[f64]) -> Vec<Thermal
             morse_mean_square_x_bohr2: morse_average(|p| p.mean_square_x_bohr2),
             populations: weights.iter().take(POPULATIONS).copied().collect(),
             rotating: None,
+            unsupported_share: leaning + beyond,
             converged: leaning + beyond <= UNSUPPORTED_SHARE,
         }
     };

@@ -4,12 +4,14 @@
 use crate::harness::{Window, open, press, state};
 use crate::invented::{grid, morse, table, write as write_file};
 use eframe::egui::Theme;
+use parabound::figure::{GaugeMeasure, ThermalQuantity};
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
 use parabound::gui::densities::DensityView;
 use parabound::gui::reading::ReadingCommand;
-use parabound::gui::state::{FitsPart, Page, Preset};
+use parabound::gui::state::{FitsPart, Page, Preset, ThermalView};
 use parabound::scan::read::{LinePatterns, Match, ReadSettings};
+use parabound::thermal::ThermalSettings;
 use parabound::units::{EnergyUnit, LengthUnit};
 use std::path::PathBuf;
 
@@ -62,6 +64,29 @@ fn every_page_is_shown_in_every_kind_of_window() {
             write(&mut window, &format!("{kind}_{name}"));
         }
         give(&mut window, &[Command::SetDensities(DensityView::default()), Command::PinLevel(Some(1))]);
+        give(&mut window, &[Command::Zoom(Preset::NearMinimum), Command::ShowPage(Page::Reach)]);
+        for (name, measure) in GaugeMeasure::ALL {
+            give(&mut window, &[Command::ShowGauge(measure)]);
+            write(&mut window, &format!("{kind}_gauge_{name}"));
+        }
+        give(&mut window, &[Command::ShowGauge(GaugeMeasure::EnergyPercent)]);
+        let with_rotation = ThermalSettings { rotation: true, ..ThermalSettings::default() };
+        let kept = [Command::KeepLevel(0, true), Command::KeepLevel(3, true)];
+        give(&mut window, &kept);
+        give(
+            &mut window,
+            &[
+                Command::ShowPage(Page::Thermal),
+                Command::SetKelvin(1500.0),
+                Command::SetThermal(with_rotation),
+                Command::SetThermalView(ThermalView {
+                    quantity: ThermalQuantity::MeanSquareX,
+                    density: true,
+                }),
+            ],
+        );
+        write(&mut window, &format!("{kind}_rotation"));
+        give(&mut window, &[Command::Undo, Command::PinLevel(None), Command::PinLevel(Some(1))]);
         give(&mut window, &[Command::Zoom(Preset::NearMinimum), Command::ShowComparison(true)]);
         window.run();
         write(&mut window, &format!("{kind}_compare"));

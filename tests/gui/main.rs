@@ -16,6 +16,7 @@ mod killed;
 mod logs;
 mod pages;
 mod pictures;
+mod reach;
 mod reading;
 mod saving;
 mod working;

@@ -4,6 +4,7 @@ use crate::harness::{Window, give, open, open_sample, press, state};
 use eframe::egui::{self, Key, Modifiers, Theme, accesskit::Role};
 use egui_kittest::kittest::Queryable as _;
 use parabound::export::json::findings_to_string;
+use parabound::figure::GaugeMeasure;
 use parabound::gui::Program as _;
 use parabound::gui::app::Start;
 use parabound::gui::command::Command;
@@ -42,9 +43,11 @@ fn a_study_is_saved_by_menu_and_opens_as_it_was() {
         Command::SetAside(row),
         Command::SetReason { row, reason: "a test".into() },
         Command::ShowPage(Page::Levels),
-        Command::ShowStrip(Strip::Residuals),
         Command::Zoom(Preset::WholeWell),
+        Command::ShowGauge(GaugeMeasure::ForcePercent),
+        Command::ShowStrip(Strip::Residuals),
         Command::PinLevel(Some(2)),
+        Command::KeepLevel(4, true),
     ] {
         give(&mut window, command);
     }
@@ -70,6 +73,7 @@ fn a_study_is_saved_by_menu_and_opens_as_it_was() {
         b.document.settings.values().collect::<Vec<_>>()
     );
     assert_eq!((a.view.page, a.view.strip, a.view.pinned_level), (Page::Levels, Strip::Residuals, Some(2)));
+    assert_eq!((a.view.gauge, a.outstanding()), (GaugeMeasure::ForcePercent, vec![2, 4]));
     assert_eq!(a.zoom(), Zoom::Preset(Preset::WholeWell));
     assert_eq!(a.history.undo_name(), None, "what the window starts with is no step");
     let text = std::fs::read_to_string(&path).expect("read");

@@ -13,11 +13,12 @@ const ROW: f32 = 22.0;
 const WIDTH: f32 = 420.0;
 
 /// What has no command of its own.
-const BY_HAND: [(&str, &str); 9] = [
+const BY_HAND: [(&str, &str); 10] = [
     ("drag a grip", "fit window, tolerance, separated atoms"),
     ("arrows on a grip", "the same in steps; Tab leads there"),
     ("click on a point", "set it aside, or use it again"),
     ("click on a level", "keep it shown"),
+    ("Shift+click on a level", "keep it shown beside others"),
     ("wheel", "zoom at the pointer"),
     ("drag", "move the view"),
     ("drag with the right button", "zoom to a box"),

@@ -8,7 +8,7 @@ use crate::gui::look::{self, Look};
 use crate::gui::show;
 use crate::gui::state::{State, Study};
 use eframe::egui;
-use egui::{Align2, DragValue, Sense, Ui, WidgetInfo, pos2, vec2};
+use egui::{Align2, DragValue, Rect, Sense, Ui, WidgetInfo, pos2, vec2};
 
 /// Room for all of it.
 pub(super) const HEIGHT: f32 = 196.0;
@@ -19,12 +19,18 @@ const COLUMNS: [(f32, &str); 4] =
 pub(super) fn densities_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command>) {
     show::rule(ui);
     choice_ui(ui, state, out);
-    let Some(picture) = shown_densities(ui.ctx(), state, study) else {
-        show::note(ui, "Point at a level, or choose one with the arrow keys, to see what its densities say.");
+    let all = shown_densities(ui.ctx(), state, study);
+    let shown = state.shown_level();
+    let Some(picture) = all.iter().find(|p| Some(p.v) == shown) else {
+        show::note(
+            ui,
+            "Point at a level, or choose one with the arrow keys, to see what its densities say. Shift and a click \
+             keep several on the plot.",
+        );
         return;
     };
     let figures = &picture.figures;
-    head_ui(ui, figures.v);
+    head_ui(ui, state, figures.v, out);
     shares_ui(
         ui,
         "forbidden",
@@ -39,6 +45,12 @@ pub(super) fn densities_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut 
             number::fixed(distance, 3)
         );
         show::note(ui, &text);
+    } else if picture.averaging_width.is_some() {
+        show::note(
+            ui,
+            "Not compared with the classical density: the averaging width is too small against the range, or there \
+             is no classical motion between two turning points.",
+        );
     }
 }
 
@@ -84,18 +96,23 @@ fn choice_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     }
 }
 
-fn head_ui(ui: &mut Ui, v: usize) {
+/// The level, whether it stays on the plot, and the names of the columns.
+fn head_ui(ui: &mut Ui, state: &State, v: usize, out: &mut Vec<Command>) {
     let look = Look::of(ui);
     let (rect, _) = ui.allocate_exact_size(vec2(ui.available_width(), 22.0), Sense::hover());
-    let name = format!("v = {v}");
-    show::text_in(
-        ui,
-        rect.left_center(),
-        Align2::LEFT_CENTER,
-        &name,
-        &look::semibold(look::SECONDARY),
-        look.accent,
-    );
+    let mut stays = state.view.kept_levels.contains(&v);
+    let place = Rect::from_min_size(rect.min, vec2(0.34 * rect.width(), rect.height()));
+    let layout = egui::Layout::left_to_right(egui::Align::Center);
+    ui.scope_builder(egui::UiBuilder::new().max_rect(place).layout(layout), |ui| {
+        let name = egui::RichText::new(format!("keep v = {v}"))
+            .font(look::semibold(look::SECONDARY))
+            .color(look.accent);
+        let command = Command::KeepLevel(v, !stays);
+        let response = ui.checkbox(&mut stays, name).on_hover_text(command.tooltip());
+        if response.changed() {
+            out.push(command);
+        }
+    });
     for (right, name) in COLUMNS {
         let at = pos2(rect.left() + right * rect.width(), rect.center().y);
         show::text_in(ui, at, Align2::RIGHT_CENTER, name, &look::plain(look::SMALL), look.dim);

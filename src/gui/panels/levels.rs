@@ -57,7 +57,9 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec
                 if response.hovered() {
                     hovered = Some(level.v);
                 }
-                if response.clicked() {
+                if response.clicked() && ui.input(|i| i.modifiers.shift) {
+                    out.push(Command::KeepLevel(level.v, !state.view.kept_levels.contains(&level.v)));
+                } else if response.clicked() {
                     let again = state.view.pinned_level == Some(level.v);
                     out.push(Command::PinLevel((!again).then_some(level.v)));
                 }
@@ -78,7 +80,7 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec
 fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Response {
     let look = Look::of(ui);
     let (rect, response) = ui.allocate_exact_size(vec2(width, ROW), Sense::click());
-    let shown = state.shown_level() == Some(level.v);
+    let shown = state.stands_out(level.v);
     if shown || response.hovered() || response.has_focus() {
         ui.painter().rect_filled(rect.expand2(vec2(4.0, 0.0)), 4.0, look.raised);
     }

@@ -38,7 +38,7 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         match state.view.page {
             Page::Constants => constants::constants_ui(ui, state, findings, out),
             Page::Fits => fits::fits_ui(ui, state, findings, out),
-            Page::Reach => reach::reach_ui(ui, findings),
+            Page::Reach => reach::reach_ui(ui, state, findings, out),
             Page::Thermal => thermal::thermal_ui(ui, state, study, out),
             Page::Levels | Page::Scan => {}
         }

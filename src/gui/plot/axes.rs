@@ -2,7 +2,7 @@
 
 use super::map::Map;
 use super::{GUTTER, Stage};
-use crate::figure::number;
+use crate::figure::{GaugeMeasure, number};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{length_unit, text_in, unit as energy_unit};
@@ -57,7 +57,7 @@ pub(super) struct Scale {
     /// Title with the unit.
     pub title: String,
     /// The unit.
-    pub unit: &'static str,
+    pub unit: String,
     /// Decimals of a read-out.
     pub decimals: usize,
 }
@@ -74,7 +74,7 @@ impl Scale {
         };
         let name = length_unit(unit);
         let decimals = if unit == LengthUnit::Picometre { 1 } else { 3 };
-        Self { origin, factor, title: format!("{what} / {name}"), unit: name, decimals }
+        Self { origin, factor, title: format!("{what} / {name}"), unit: name.to_owned(), decimals }
     }
 
     /// The energy axis as the user wants it.
@@ -90,7 +90,21 @@ impl Scale {
             _ => 2,
         };
         let title = format!("energy above the minimum / {name}");
-        Self { origin: 0.0, factor, title, unit: name, decimals }
+        Self { origin: 0.0, factor, title, unit: name.to_owned(), decimals }
+    }
+
+    /// The axis of the gauge: percent, or the units of the plot's axes.
+    pub fn of_gauge(measure: GaugeMeasure, view: &AxisView) -> Self {
+        let energy = Self::of_energy(view);
+        let per_length = LengthUnit::Angstrom.convert(1.0, view.length);
+        let (factor, unit) = match measure {
+            GaugeMeasure::EnergyPercent | GaugeMeasure::ForcePercent => (1.0, "%".to_owned()),
+            GaugeMeasure::EnergyPerCm => (energy.factor, energy.unit),
+            GaugeMeasure::ForcePerCmAngstrom => {
+                (energy.factor / per_length, format!("{}/{}", energy.unit, length_unit(view.length)))
+            }
+        };
+        Self { origin: 0.0, factor, title: format!("deviation / {unit}"), unit, decimals: 1 }
     }
 
     /// What the axis shows of a value of the figure.
@@ -256,7 +270,7 @@ mod tests {
             origin: 1.6,
             factor: LengthUnit::Angstrom.convert(1.0, LengthUnit::Bohr),
             title: String::new(),
-            unit: "bohr",
+            unit: "bohr".to_owned(),
             decimals: 3,
         };
         let t = scaled_ticks((1.02, 2.62), 640.0, 64.0, &scale);

@@ -5,7 +5,7 @@ use super::map::Map;
 use crate::figure::{Ladder, Ladders, number};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::text_in;
+use crate::gui::show::{self, text_in};
 use crate::gui::state::State;
 use eframe::egui;
 use egui::{Align2, Pos2, Rangef, Sense, Shape, Stroke, Ui, pos2, vec2};
@@ -40,7 +40,7 @@ pub(super) fn ladders_ui(
     }
     numbers_ui(ui, state, ladders, stage, map);
     legend_ui(ui, ladders, stage);
-    hover_ui(ui, ladders, stage, map, out);
+    hover_ui(ui, state, ladders, stage, map, out);
 }
 
 /// Whether a rung has its neighbours at a distance that can be seen.
@@ -56,7 +56,7 @@ fn rungs_ui(ui: &Ui, state: &State, ladder: &Ladder, x: Rangef, map: &Map) {
         if !energy.is_finite() || !map.sees_y(energy) {
             continue;
         }
-        let shown = state.shown_level() == Some(v);
+        let shown = state.stands_out(v);
         let width = match (shown, roomy(&ladder.energies_per_cm, v, map)) {
             (true, _) => 3.0,
             (false, true) => 2.0,
@@ -137,7 +137,7 @@ fn legend_ui(ui: &Ui, ladders: &Ladders, stage: &Stage) {
 }
 
 /// Hovering a rung shows its level and how far the models are off.
-fn hover_ui(ui: &mut Ui, ladders: &Ladders, stage: &Stage, map: &Map, out: &mut Vec<Command>) {
+fn hover_ui(ui: &mut Ui, state: &State, ladders: &Ladders, stage: &Stage, map: &Map, out: &mut Vec<Command>) {
     let response = ui.interact(stage.ladders, ui.scope_id().with("ladders"), Sense::click());
     let pointer = ui.input(|i| i.pointer.hover_pos()).filter(|_| response.hovered());
     let Some(pointer) = pointer else { return };
@@ -156,12 +156,15 @@ fn hover_ui(ui: &mut Ui, ladders: &Ladders, stage: &Stage, map: &Map, out: &mut 
     let Some((v, _)) = near else { return };
     let Some(&energy) = numerical.energies_per_cm.get(v) else { return };
     out.push(Command::HoverLevel(Some(v)));
-    if response.clicked() {
+    if response.clicked() && ui.input(|i| i.modifiers.shift) {
+        out.push(Command::KeepLevel(v, !state.view.kept_levels.contains(&v)));
+    } else if response.clicked() {
         out.push(Command::PinLevel(Some(v)));
     }
+    let spacing = spacing(&numerical.energies_per_cm, v);
     egui::Tooltip::for_enabled(&response).at_pointer().gap(14.0).show(|ui| {
         let look = Look::of(ui);
-        egui::Grid::new("rung").num_columns(2).show(ui, |ui| {
+        egui::Grid::new("rung").num_columns(3).show(ui, |ui| {
             for ladder in &ladders.columns {
                 let Some(&e) = ladder.energies_per_cm.get(v) else { continue };
                 ui.colored_label(look.role(ladder.role), format!("{}, v = {v}", ladder.label));
@@ -171,10 +174,24 @@ fn hover_ui(ui: &mut Ui, ladders: &Ladders, stage: &Stage, map: &Map, out: &mut 
                     format!("{} cm⁻¹", number::signed(e - energy, 2))
                 };
                 ui.monospace(text);
+                let share = spacing.filter(|_| ladder.role != crate::figure::Role::Scanned);
+                let share = share.map(|s| format!("{} %", number::signed(100.0 * (e - energy) / s, 2)));
+                ui.with_layout(egui::Layout::right_to_left(egui::Align::Center), |ui| {
+                    ui.monospace(share.unwrap_or_default());
+                });
                 ui.end_row();
             }
         });
+        let words = "Model minus numerical, in cm⁻¹ and in percent of the numerical spacing";
+        let from = if numerical.energies_per_cm.len() > v + 1 { v } else { v.saturating_sub(1) };
+        show::note(ui, &format!("{words} {} ← {from}.", from + 1));
     });
+}
+
+/// The numerical spacing above a level, of the highest one the spacing below.
+fn spacing(energies_per_cm: &[f64], v: usize) -> Option<f64> {
+    let from = if energies_per_cm.len() > v + 1 { v } else { v.checked_sub(1)? };
+    Some(energies_per_cm.get(from + 1)? - energies_per_cm[from]).filter(|s| *s > 0.0)
 }
 
 /// The strip of screen the ladders stand on.
@@ -182,6 +199,14 @@ fn hover_ui(ui: &mut Ui, ladders: &Ladders, stage: &Stage, map: &Map, out: &mut 
 mod tests {
     use super::*;
     use egui::Rect;
+
+    /// The highest level has no spacing above it.
+    #[test]
+    fn spacings_are_those_above() {
+        let levels = [500.0, 1450.0, 2300.0];
+        assert_eq!([0, 1, 2, 3].map(|v| spacing(&levels, v)), [Some(950.0), Some(850.0), Some(850.0), None]);
+        assert_eq!(spacing(&levels[..1], 0), None);
+    }
 
     #[test]
     fn columns_do_not_overlap() {

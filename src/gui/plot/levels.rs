@@ -1,12 +1,13 @@
 //! Levels with their densities.
 
 use super::map::Map;
-use crate::figure::{DensityKind, DensityPicture, LevelPicture, number};
-use crate::gui::densities::DensityView;
-use crate::gui::look::Look;
+use crate::figure::{DensityKind, DensityPicture, LevelPicture, ThermalDensityPicture, number};
+use crate::gui::densities::{DensityView, shown_thermal};
+use crate::gui::look::{self, Look};
+use crate::gui::show::{as_read, text_in};
 use crate::gui::state::{State, Study};
 use eframe::egui;
-use egui::{Color32, Stroke, Ui, pos2};
+use egui::{Align2, Color32, Stroke, Ui, pos2};
 use egui_plot::{FilledArea, Line, LineStyle, PlotPoints, PlotUi};
 
 /// Densities are drawn where levels are at least this far apart on the screen.
@@ -24,11 +25,11 @@ fn room(levels: &[LevelPicture], index: usize, map: &Map) -> f64 {
     above.or(below).map_or(f64::INFINITY, |d| d * map.points_per_y())
 }
 
-/// Adds the levels that are seen to the plot, the one shown last and strongest.
+/// Adds the levels that are seen to the plot, those that stand out strongest.
 pub fn add_levels(
     plot: &mut PlotUi<'_>,
     levels: &[LevelPicture],
-    shown: Option<usize>,
+    stands_out: &dyn Fn(usize) -> bool,
     height: f64,
     map: &Map,
     look: &Look,
@@ -39,7 +40,7 @@ pub fn add_levels(
         if top < map.bounds.y.0 || level.energy_per_cm > map.bounds.y.1 {
             continue;
         }
-        let is_shown = shown == Some(level.v);
+        let is_shown = stands_out(level.v);
         let room = room(levels, index, map);
         if is_shown || room >= ROOM_FOR_DENSITY {
             let strength = if is_shown { 0.78 } else { 0.40 };
@@ -47,6 +48,58 @@ pub fn add_levels(
         }
         let alpha = if room < 3.0 { 0.35 } else { 0.8 };
         add_line(plot, level, look.level.gamma_multiply(alpha));
+    }
+}
+
+/// The density at a temperature, from the minimum upwards; dashed, the harmonic one.
+pub fn add_thermal(
+    plot: &mut PlotUi<'_>,
+    thermal: &ThermalDensityPicture,
+    height: f64,
+    map: &Map,
+    look: &Look,
+) {
+    let scale = height * thermal.scale_per_cm;
+    let points_per_x = f64::from(map.rect.width()) / (map.bounds.x.1 - map.bounds.x.0);
+    for (part, (inside, range)) in thermal.parts.iter().enumerate() {
+        let chosen = thinned(&thermal.r, range, points_per_x);
+        let x: Vec<f64> = chosen.iter().map(|&i| thermal.r[i]).collect();
+        let high: Vec<f64> = chosen.iter().map(|&i| scale * thermal.density[i]).collect();
+        let color = if *inside { look.reach } else { look.outside };
+        let area = FilledArea::new("thermal density", &x, &vec![0.0; x.len()], &high)
+            .id(("thermal density", part))
+            .fill_color(color.gamma_multiply(0.85))
+            .allow_hover(false);
+        plot.add(area);
+    }
+    let harmonic: Vec<[f64; 2]> = thermal.harmonic.iter().map(|[r, d]| [*r, scale * d]).collect();
+    plot.line(
+        Line::new("harmonic thermal density", PlotPoints::from(harmonic))
+            .color(look.harmonic)
+            .style(LineStyle::dashed_dense())
+            .width(1.6)
+            .allow_hover(false),
+    );
+}
+
+/// Every so many-th index of a range, and both ends, so that neighbouring parts meet.
+fn thinned(r: &[f64], range: &std::ops::RangeInclusive<usize>, points_per_x: f64) -> Vec<usize> {
+    let span = r.last().zip(r.first()).map_or(0.0, |(b, a)| b - a);
+    let wanted = (span * points_per_x / POINT_EVERY).max(24.0);
+    let stride = ((r.len() as f64 / wanted).floor() as usize).max(1);
+    (*range.start()..*range.end()).step_by(stride).chain([*range.end()]).collect()
+}
+
+/// What the density at the foot of the well is.
+pub(super) fn thermal_name_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
+    let thermal = shown_thermal(ui.ctx(), state, study);
+    let Some(end) = thermal.as_ref().as_ref().and_then(|t| t.r.last()) else { return };
+    let look = Look::of(ui);
+    let name = format!("density at {} K", as_read(state.view.kelvin()));
+    // Below its base line, where neither read-outs nor grips stand.
+    let at = pos2(map.x(*end) - 24.0, map.y(0.0) + 2.0);
+    if at.x + 110.0 < map.rect.right() && map.sees_y(0.0) {
+        text_in(ui, at, Align2::LEFT_TOP, &name, &look::plain(look::SMALL), look.outside);
     }
 }
 
@@ -59,14 +112,9 @@ fn add_density(
     look: &Look,
 ) {
     let scale = height * level.scale_per_cm;
-    let span = level.r.last().zip(level.r.first()).map_or(0.0, |(b, a)| b - a);
     let points_per_x = f64::from(map.rect.width()) / (map.bounds.x.1 - map.bounds.x.0);
-    let wanted = (span * points_per_x / POINT_EVERY).max(24.0);
-    let stride = ((level.r.len() as f64 / wanted).floor() as usize).max(1);
     for (part, (inside, range)) in level.parts.iter().enumerate() {
-        // Every stride-th point, and both ends, so that neighbouring parts meet.
-        let (start, end) = (*range.start(), *range.end());
-        let chosen: Vec<usize> = (start..end).step_by(stride).chain([end]).collect();
+        let chosen = thinned(&level.r, range, points_per_x);
         let x: Vec<f64> = chosen.iter().map(|&i| level.r[i]).collect();
         let low = vec![level.energy_per_cm; x.len()];
         let high: Vec<f64> = chosen.iter().map(|&i| level.energy_per_cm + scale * level.density[i]).collect();
@@ -103,7 +151,7 @@ pub fn add_density_lines(plot: &mut PlotUi<'_>, picture: &DensityPicture, view: 
             .collect();
         plot.line(
             Line::new(line.label, PlotPoints::from(points))
-                .id(("density line", line.label))
+                .id(("density line", picture.v, line.label))
                 .color(color)
                 .style(style)
                 .width(1.6)
@@ -135,22 +183,26 @@ fn add_line(plot: &mut PlotUi<'_>, level: &LevelPicture, color: Color32) {
     segment(inner, outer, 1, color);
 }
 
-/// The level brought forward: its line, its turning points, its name.
+/// The levels that stand out: their lines and turning points; those kept beside the one shown finer, with their v.
 pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
     let look = Look::of(ui);
-    let Some(level) = state.shown_level().and_then(|v| study.pictures.levels.iter().find(|l| l.v == v))
-    else {
-        return;
-    };
-    if !map.sees_y(level.energy_per_cm) {
-        return;
-    }
     let painter = ui.painter().with_clip_rect(map.rect);
-    let y = map.y(level.energy_per_cm);
-    let (left, right) = (map.x(level.turning_points.0), map.x(level.turning_points.1));
-    painter.line_segment([pos2(left, y), pos2(right, y)], Stroke::new(2.0, look.accent));
-    for x in [left, right] {
-        painter.line_segment([pos2(x, y - 5.0), pos2(x, y + 5.0)], Stroke::new(2.0, look.accent));
+    for v in state.outstanding() {
+        let level = study.pictures.levels.iter().find(|l| l.v == v && map.sees_y(l.energy_per_cm));
+        let Some(level) = level else { continue };
+        let (width, half) = if state.shown_level() == Some(v) { (2.0, 5.0) } else { (1.3, 4.0) };
+        let stroke = Stroke::new(width, look.accent);
+        let y = map.y(level.energy_per_cm);
+        let (left, right) = (map.x(level.turning_points.0), map.x(level.turning_points.1));
+        painter.line_segment([pos2(left, y), pos2(right, y)], stroke);
+        for x in [left, right] {
+            painter.line_segment([pos2(x, y - half), pos2(x, y + half)], stroke);
+        }
+        if state.view.kept_levels.contains(&v) && right + 40.0 < map.rect.right() {
+            let at = pos2(right + 6.0, y);
+            let name = format!("v = {v}");
+            text_in(ui, at, Align2::LEFT_CENTER, &name, &look::figures(look::SMALL), look.accent);
+        }
     }
 }
 

@@ -6,7 +6,7 @@ use super::{Stage, asymptote, axes, card, hits, items, levels, points, reach_ban
 use crate::figure::geometry::Bounds;
 use crate::figure::number;
 use crate::gui::command::Command;
-use crate::gui::densities::shown_densities;
+use crate::gui::densities::{shown_densities, shown_thermal};
 use crate::gui::look::Look;
 use crate::gui::state::{Preset, State, Study};
 use eframe::egui;
@@ -28,7 +28,7 @@ pub(super) fn main_plot_ui(
     let (x, y) =
         (axes::x_ticks(&before, &r_axis), axes::scaled_ticks(bounds.y, stage.plot.height(), 44.0, &e_axis));
     axes::grid_ui(ui, &before, &x, &y);
-    reach_band_ui(ui, study, stage, &before);
+    reach_band_ui(ui, state, study, stage, &before);
     let (response, bounds) = plot_items_ui(ui, state, study, &before, look, out);
     let map = Map { rect: stage.plot, bounds };
     let hit = hits::find(ui, &response, study, &map);
@@ -36,7 +36,8 @@ pub(super) fn main_plot_ui(
     axes::energy_title_ui(ui, state, &map, &e_axis, out);
     points::points_ui(ui, state, &study.pictures.points, &map, hit.point);
     levels::shown_level_ui(ui, state, study, &map);
-    reach_label_ui(ui, study, stage, &map);
+    levels::thermal_name_ui(ui, state, study, &map);
+    reach_label_ui(ui, state, study, stage, &map);
     axes::frame_ui(ui, &map);
     asymptote::asymptote_ui(ui, state, study, stage, &map, out);
     card::card_ui(ui, state, study, stage, &map);
@@ -57,8 +58,12 @@ fn plot_items_ui(
     let bounds = before.bounds;
     let pictures = &study.pictures;
     let wheel = ui.input(|i| i.smooth_scroll_delta().y);
-    let shown = state.shown_level();
-    let densities = state.view.densities.is_any().then(|| shown_densities(ui.ctx(), state, study)).flatten();
+    let densities = if state.view.densities.is_any() {
+        shown_densities(ui.ctx(), state, study)
+    } else {
+        std::sync::Arc::default()
+    };
+    let thermal = shown_thermal(ui.ctx(), state, study);
     let response = ui
         .scope_builder(UiBuilder::new().max_rect(before.rect), |ui| {
             Plot::new("main plot")
@@ -81,12 +86,15 @@ fn plot_items_ui(
                     levels::add_levels(
                         plot,
                         &pictures.levels,
-                        shown,
+                        &|v| state.stands_out(v),
                         state.view.densities.height,
                         before,
                         look,
                     );
-                    if let Some(densities) = &densities {
+                    if let Some(thermal) = thermal.as_ref().as_ref() {
+                        levels::add_thermal(plot, thermal, state.view.densities.height, before, look);
+                    }
+                    for densities in densities.iter() {
                         levels::add_density_lines(plot, densities, &state.view.densities, look);
                     }
                     for (index, series) in pictures.main.series.iter().enumerate() {
@@ -156,15 +164,18 @@ fn work_ui(
     if response.double_clicked() {
         out.push(Command::Zoom(Preset::NearMinimum));
     } else if response.clicked() {
-        click(state, study, hit, out);
+        click(ui, state, study, hit, out);
     }
     box_zoom_ui(ui, response, map, out);
 }
 
-/// A click on a point sets it aside or uses it again; on a level it keeps it shown; elsewhere it lets go.
-fn click(state: &State, study: &Study, hit: &hits::Hit, out: &mut Vec<Command>) {
+/// A click on a point sets it aside or uses it again; on a level it keeps it shown, with Shift beside others; elsewhere it
+/// lets go.
+fn click(ui: &Ui, state: &State, study: &Study, hit: &hits::Hit, out: &mut Vec<Command>) {
     if let Some(point) = hit.point.and_then(|i| study.pictures.points.get(i)) {
         out.push(points::toggle(point));
+    } else if let Some(v) = hit.level.filter(|_| ui.input(|i| i.modifiers.shift)) {
+        out.push(Command::KeepLevel(v, !state.view.kept_levels.contains(&v)));
     } else {
         let again = hit.level.is_some() && hit.level == state.view.pinned_level;
         out.push(Command::PinLevel(hit.level.filter(|_| !again)));

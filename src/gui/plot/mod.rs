@@ -4,6 +4,7 @@ mod asymptote;
 pub(in crate::gui) mod axes;
 mod card;
 mod cursor;
+mod gauge;
 mod handles;
 mod hints;
 mod hits;
@@ -13,18 +14,20 @@ mod levels;
 mod main_plot;
 pub(in crate::gui) mod map;
 mod points;
-mod steps;
+pub(super) mod steps;
 mod strip;
 mod tolerance;
 
 use super::command::Command;
 use super::look::{self, Look};
 use super::show::{ButtonForm, command_button};
-use super::state::{State, Study};
-use crate::figure::{Role, Shape};
+use super::state::{State, Strip, Study};
+use crate::figure::{GaugeMeasure, Role, Shape};
 use eframe::egui;
 use egui::{Rect, Ui, pos2};
+pub use gauge::MENU as GAUGE_MENU;
 use map::Map;
+pub(super) use tolerance::step as tolerance_step;
 
 /// Room for the vertical axis at the left of the plot.
 pub const GUTTER: f32 = 64.0;
@@ -137,12 +140,18 @@ fn reach_ends(study: &Study, map: &Map) -> Option<(f64, f64)> {
     (ends.1 > ends.0).then_some(ends)
 }
 
-/// The reach as one band through plot and strip.
-fn reach_band_ui(ui: &Ui, study: &Study, stage: &Stage, map: &Map) {
+/// Whether the strip measures by what the reach of the plot is measured by.
+fn one_reach(state: &State) -> bool {
+    state.view.strip != Strip::Gauge || state.view.gauge == GaugeMeasure::EnergyPercent
+}
+
+/// The reach as one band through plot and strip; where the strip measures something else it has a band of its own.
+fn reach_band_ui(ui: &Ui, state: &State, study: &Study, stage: &Stage, map: &Map) {
     let Some((from, to)) = reach_ends(study, map) else { return };
     let look = Look::of(ui);
     let (left, right) = (map.x(from), map.x(to));
-    let band = Rect::from_min_max(pos2(left, stage.plot.top()), pos2(right, stage.strip.bottom()));
+    let bottom = if one_reach(state) { stage.strip.bottom() } else { stage.plot.bottom() };
+    let band = Rect::from_min_max(pos2(left, stage.plot.top()), pos2(right, bottom));
     ui.painter().rect_filled(band, 0.0, look.reach.gamma_multiply(0.20));
     for (x, r) in [(left, from), (right, to)] {
         // An open end has no edge to draw.
@@ -153,11 +162,12 @@ fn reach_band_ui(ui: &Ui, study: &Study, stage: &Stage, map: &Map) {
 }
 
 /// The name of the band, over what is drawn there.
-fn reach_label_ui(ui: &Ui, study: &Study, stage: &Stage, map: &Map) {
+fn reach_label_ui(ui: &Ui, state: &State, study: &Study, stage: &Stage, map: &Map) {
     let Some((from, to)) = reach_ends(study, map) else { return };
     let look = Look::of(ui);
     let (left, right) = (map.x(from), map.x(to));
-    let galley = ui.painter().layout_no_wrap("reach".to_owned(), look::plain(look::SMALL), look.reach);
+    let name = if one_reach(state) { "reach" } else { "reach by energy" };
+    let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look.reach);
     let size = galley.size();
     let inside = right - left > size.x + 12.0;
     let x = if inside { left + 6.0 } else { left - 6.0 - size.x };

@@ -6,7 +6,7 @@ use egui::{EventFilter, Key, Response, Ui, WidgetInfo};
 
 /// A handle as a slider.
 #[derive(Clone, Copy, Debug)]
-pub(super) struct Slider<'a> {
+pub struct Slider<'a> {
     /// Name, as read aloud.
     pub name: &'a str,
     /// Where it stands.

@@ -2,15 +2,15 @@
 
 use super::map::Map;
 use super::tolerance::tolerance_ui;
-use super::{Stage, axes, items};
+use super::{Stage, axes, gauge, items};
 use crate::figure::geometry::Bounds;
-use crate::figure::{Figure, Role, Shape, number};
+use crate::figure::{Figure, Shape, number};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::text_in;
 use crate::gui::state::{State, Strip, Study};
 use eframe::egui;
-use egui::{Align2, Rangef, Rect, Sense, Stroke, Ui, UiBuilder, WidgetInfo, pos2, vec2};
+use egui::{Align2, Rect, Sense, Stroke, Ui, UiBuilder, WidgetInfo, pos2, vec2};
 use egui_plot::{Plot, PlotBounds, PlotPoints, Points};
 
 /// Draws the strip and gives the map of its axes.
@@ -23,7 +23,7 @@ pub(super) fn strip_ui(
     out: &mut Vec<Command>,
 ) -> Map {
     let map = match state.view.strip {
-        Strip::Gauge => gauge_ui(ui, state, study, stage, main),
+        Strip::Gauge => gauge::gauge_ui(ui, state, study, stage, main),
         Strip::Residuals => residuals_ui(ui, state, study, stage, main),
     };
     axes::frame_ui(ui, &map);
@@ -35,7 +35,7 @@ pub(super) fn strip_ui(
 }
 
 /// A figure's lines in a plot that only shows.
-fn lines_ui(ui: &mut Ui, name: &str, figure: &Figure, map: &Map, look: &Look) {
+pub(super) fn lines_ui(ui: &mut Ui, name: &str, figure: &Figure, map: &Map, look: &Look) {
     let bounds = map.bounds;
     ui.scope_builder(UiBuilder::new().max_rect(map.rect), |ui| {
         Plot::new(name)
@@ -70,64 +70,6 @@ fn lines_ui(ui: &mut Ui, name: &str, figure: &Figure, map: &Map, look: &Look) {
                 }
             });
     });
-}
-
-fn gauge_ui(ui: &mut Ui, state: &State, study: &Study, stage: &Stage, main: &Map) -> Map {
-    let look = Look::of(ui);
-    let figure = &study.pictures.gauge;
-    let tolerance = figure.series.iter().find_map(|s| match (s.role, &s.shape) {
-        (Role::Tolerance, Shape::Level(t)) => Some(t.abs()),
-        _ => None,
-    });
-    let half = half_range(tolerance.unwrap_or(5.0));
-    let map = Map { rect: stage.strip, bounds: Bounds { x: main.bounds.x, y: (-half, half) } };
-    let y = axes::ticks(map.bounds.y, map.rect.height(), 22.0);
-    axes::grid_ui(ui, &map, &axes::x_ticks(&map, &axes::Scale::of_length(&state.view.axes, study)), &y);
-    let painter = ui.painter().with_clip_rect(map.rect);
-    if let Some(t) = tolerance {
-        let band = Rect::from_min_max(pos2(map.rect.left(), map.y(t)), pos2(map.rect.right(), map.y(-t)));
-        painter.rect_filled(band, 0.0, look.reach.gamma_multiply(0.10));
-        for value in [t, -t] {
-            let line = [pos2(map.rect.left(), map.y(value)), pos2(map.rect.right(), map.y(value))];
-            painter.extend(egui::Shape::dashed_line(&line, Stroke::new(1.2, look.reach), 4.0, 3.0));
-        }
-    }
-    zero_point_ui(ui, figure, &map);
-    lines_ui(ui, "gauge", figure, &map, look);
-    let decimals = y.decimals;
-    axes::y_labels_ui(ui, &map, &y, |v| format!("{} %", number::signed(v, decimals)));
-    map
-}
-
-/// Half the range of the gauge in percent, about six tolerances, in coarse steps: the axis must not run away
-/// from a tolerance line that is being dragged.
-fn half_range(tolerance_percent: f64) -> f64 {
-    [3.0, 12.0, 30.0, 60.0, 120.0, 300.0].into_iter().find(|h| *h >= 3.0 * tolerance_percent).unwrap_or(300.0)
-}
-
-/// The zero-point amplitude as a bar near the bottom, with its name where there is room.
-fn zero_point_ui(ui: &Ui, figure: &Figure, map: &Map) {
-    let look = Look::of(ui);
-    let Some((from, to)) = figure.series.iter().find_map(|s| match s.shape {
-        Shape::Bar(_, from, to) => Some((from, to)),
-        _ => None,
-    }) else {
-        return;
-    };
-    let painter = ui.painter().with_clip_rect(map.rect);
-    let y = map.rect.bottom() - 11.0;
-    let (left, right) = (map.x(from), map.x(to));
-    painter.hline(Rangef::new(left, right), y, Stroke::new(3.0, look.accent));
-    for x in [left, right] {
-        painter.vline(x, Rangef::new(y - 4.0, y + 4.0), Stroke::new(1.5, look.accent));
-    }
-    // At the left: the deviation falls to the right for every bond, so the line is not met there.
-    let name = "zero-point amplitude";
-    let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look.accent);
-    let size = galley.size();
-    if left - 8.0 - size.x > map.rect.left() + 4.0 {
-        painter.galley(pos2(left - 8.0 - size.x, y - size.y / 2.0), galley, look.accent);
-    }
 }
 
 /// Residuals differ by orders of magnitude between fits: the axis is linear near zero and logarithmic
@@ -215,5 +157,8 @@ fn tabs_ui(ui: &mut Ui, state: &State, stage: &Stage, out: &mut Vec<Command>) {
             out.push(Command::ShowStrip(strip));
         }
         right = rect.left() - 16.0;
+    }
+    if state.view.strip == Strip::Gauge {
+        gauge::measure_ui(ui, state, stage, right, out);
     }
 }
