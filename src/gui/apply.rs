@@ -435,14 +435,7 @@ fn change_view(command: Command, state: &mut State) {
                 view.kept_levels.clear();
             }
         }
-        Command::KeepLevel(v, true) => {
-            if state.study().is_some_and(|s| s.findings.levels.iter().any(|l| l.v == v)) {
-                state.view.kept_levels.insert(v);
-            }
-        }
-        Command::KeepLevel(v, false) => {
-            view.kept_levels.remove(&v);
-        }
+        Command::KeepLevel(v, keep) => keep_level(v, keep, state),
         Command::StepLevel(step) => step_level(step, state),
         Command::PointAt(r) => point_at(r, state),
         Command::SelectPoint(row) => select_point(row, state),
@@ -501,6 +494,16 @@ fn change_view(command: Command, state: &mut State) {
         Command::DropProblem => reading::next_problem(state),
         Command::DismissMessage => view.message = None,
         _ => {}
+    }
+}
+
+/// Only levels that are there are kept.
+fn keep_level(v: usize, keep: bool, state: &mut State) {
+    let is_there = state.study().is_some_and(|s| s.findings.levels.iter().any(|l| l.v == v));
+    if keep && is_there {
+        state.view.kept_levels.insert(v);
+    } else {
+        state.view.kept_levels.remove(&v);
     }
 }
 

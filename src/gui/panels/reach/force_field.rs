@@ -35,7 +35,9 @@ pub(super) fn force_field_ui(ui: &mut Ui, state: &State, findings: &Findings, ou
         out.push(Command::SetParameterUnits(units));
     }
     let unit = state.view.parameter_units.force_constant;
-    let of_fit = findings.fit_of(Family::Harmonic).and_then(|f| f.force_constant_hartree_per_bohr2());
+    let of_fit = findings
+        .found_fit(Family::Harmonic)
+        .and_then(|f| f.result.as_ref().ok()?.force_constant_hartree_per_bohr2());
     for (convention, name) in
         [(ForceConstantConvention::Half, "V = ½ k x²"), (ForceConstantConvention::Full, "V = k x²")]
     {
