@@ -48,7 +48,10 @@ pub fn chart_ui(
     let id = ui.scope_id().with(("chart", figure.y.title));
     let response = ui.interact(rect, id, Sense::click_and_drag());
     ui.painter().rect_filled(rect, 2.0, look.ground);
-    let (x, y) = (ticks(bounds.x, rect.width(), 62.0), ticks(bounds.y, rect.height(), 30.0));
+    let (x, y) = (
+        ticks(bounds.x, rect.width(), 62.0),
+        ticks(bounds.y, rect.height(), if height < 150.0 { 18.0 } else { 30.0 }),
+    );
     grid_ui(ui, &map, &x, &y);
     let clipped = ui.painter().with_clip_rect(rect);
     for series in &figure.series {

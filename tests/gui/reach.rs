@@ -209,11 +209,11 @@ fn the_page_of_the_reach_serves_force_fields_and_tells_where_fits_hold() {
     assert!((half / (102.6 / 0.6948) - 1.0).abs() < 0.04, "{half}");
     assert!((full - 0.5 * half).abs() < 0.01, "{half} {full}");
     // The absolute tolerance in another unit is the same energy, until its number is changed.
-    assert!(text(&window, "energy within 1 kcal/mol").contains('…'));
+    assert!(text(&window, "within 1 kcal/mol").contains('…'));
     let before = ends(&window, GaugeMeasure::EnergyPerCm);
     let tolerance = AbsoluteTolerance { value: 4.184, unit: EnergyUnit::KilojoulePerMole };
     give(&mut window, Command::SetAbsoluteTolerance { tolerance, resting: true });
-    assert!(text(&window, "energy within 4.184 kJ/mol").contains('…'));
+    assert!(text(&window, "within 4.184 kJ/mol").contains('…'));
     let after = ends(&window, GaugeMeasure::EnergyPerCm);
     assert!((before.1 - after.1).abs() < 1e-9, "{before:?} {after:?}");
     // Morse holds farther than the parabola: all fits are listed with an interval.

@@ -97,9 +97,10 @@ pub(super) fn thermal_name_ui(ui: &Ui, state: &State, study: &Study, map: &Map) 
     let look = Look::of(ui);
     let name = format!("density at {} K", as_read(state.view.kelvin()));
     // Below its base line, where neither read-outs nor grips stand.
-    let at = pos2(map.x(*end) - 24.0, map.y(0.0) + 2.0);
-    if at.x + 110.0 < map.rect.right() && map.sees_y(0.0) {
-        text_in(ui, at, Align2::LEFT_TOP, &name, &look::plain(look::SMALL), look.outside);
+    let galley = ui.painter().layout_no_wrap(name, look::plain(look::SMALL), look.outside);
+    let left = (map.x(*end) - 24.0).min(map.rect.right() - galley.size().x - 8.0);
+    if left > map.rect.left() && map.sees_y(0.0) {
+        ui.painter().galley(pos2(left, map.y(0.0) + 2.0), galley, look.outside);
     }
 }
 
@@ -199,9 +200,9 @@ pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
             painter.line_segment([pos2(x, y - half), pos2(x, y + half)], stroke);
         }
         if state.view.kept_levels.contains(&v) && right + 40.0 < map.rect.right() {
-            let at = pos2(right + 6.0, y);
+            let at = pos2(right + 6.0, y - 1.0);
             let name = format!("v = {v}");
-            text_in(ui, at, Align2::LEFT_CENTER, &name, &look::figures(look::SMALL), look.accent);
+            text_in(ui, at, Align2::LEFT_BOTTOM, &name, &look::figures(look::SMALL), look.accent);
         }
     }
 }

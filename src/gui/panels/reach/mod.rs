@@ -104,7 +104,7 @@ fn absolute_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Co
         settle(&response, out);
     });
     let AbsoluteTolerance { value, unit } = reach.absolute_tolerance;
-    let name = format!("energy within {} {}", show::as_read(value), show::unit(unit));
+    let name = format!("within {} {}", show::as_read(value), show::unit(unit));
     let about = "|V − Vₑ − ½ k x²| is smaller than the tolerance.";
     Row::new(name, interval_text(&reach.absolute), "Å")
         .about(format!("{about}{}", errors(&reach.absolute)))
