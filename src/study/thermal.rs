@@ -189,3 +189,56 @@ fn molecule_mass_u(masses: &Masses) -> Option<f64> {
     let atoms = masses.atoms.as_ref()?;
     Some(atoms.iter().map(|a| mean_atomic_mass_u(&a.symbol, a.mass_number).unwrap_or(a.mass_u.value)).sum())
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::settings::Settings;
+
+    fn found(change: impl Fn(&mut Settings)) -> Findings {
+        let text = include_str!("../../sample-scans/lih_X_A.csv");
+        let scan = crate::scan::read::read_scan("lih_X_A.csv", text.as_bytes(), &Default::default()).unwrap();
+        let mut settings = Settings::default();
+        settings.masses.atoms = Some(crate::species::parse_atoms("7Li,1H").unwrap());
+        settings.thermal.rotation = true;
+        change(&mut settings);
+        crate::study::study(&scan, &settings).unwrap()
+    }
+
+    fn notice(findings: &Findings) -> Option<&str> {
+        let with_rotation = |n: &&Notice| n.code == Code::ThermalLevels && n.text.contains("with rotation");
+        findings.notices.iter().find(with_rotation).map(|n| n.text.as_str())
+    }
+
+    /// Levels cut at v = 2 lack what is populated when hot, and the notice says from which temperature on; with all of
+    /// them nothing is lacking.
+    #[test]
+    fn a_sum_cut_too_early_is_said_with_its_temperature() {
+        let whole = found(|_| {});
+        assert!(whole.thermal.iter().all(|p| p.rotating.is_some_and(|r| r.converged)));
+        assert_eq!(notice(&whole), None);
+        let cut = found(|s| s.levels.highest_v = 2);
+        let firm = |kelvin: f64| {
+            let point = cut.thermal.iter().find(|p| p.kelvin == kelvin).unwrap();
+            point.rotating.unwrap().converged
+        };
+        assert!(firm(100.0) && firm(200.0) && !firm(2000.0));
+        let lowest = cut.thermal.iter().find(|p| !firm(p.kelvin)).unwrap().kelvin;
+        let said = notice(&cut).unwrap();
+        assert!(said.contains(&format!("from {lowest} K on")) && said.contains("up to J ="), "{said}");
+    }
+
+    /// At other temperatures than those listed the kept levels give what a study of that temperature gives, and beyond
+    /// the highest one they say when they no longer suffice.
+    #[test]
+    fn kept_levels_serve_any_temperature() {
+        let listed = found(|s| s.thermal.temperatures_kelvin = vec![300.0, 1000.0]);
+        let own = found(|s| s.thermal.temperatures_kelvin = vec![650.0, 1000.0]);
+        let at = listed.thermal_at(&[650.0]).remove(0).rotating.unwrap();
+        let wanted = own.thermal[0].rotating.unwrap();
+        assert_eq!(at.rovibrational, wanted.rovibrational);
+        assert_eq!((at.mean_r_bohr, at.ideal_gas), (wanted.mean_r_bohr, wanted.ideal_gas));
+        let hot = listed.thermal_at(&[9000.0]).remove(0).rotating.unwrap();
+        assert!(!hot.converged && hot.unsupported_share > 1e-4);
+    }
+}

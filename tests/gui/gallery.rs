@@ -9,6 +9,7 @@ use parabound::gui::app::Start;
 use parabound::gui::command::Command;
 use parabound::gui::densities::DensityView;
 use parabound::gui::reading::ReadingCommand;
+use parabound::gui::samples::SAMPLES;
 use parabound::gui::state::{FitsPart, Page, Preset, ThermalView};
 use parabound::scan::read::{LinePatterns, Match, ReadSettings};
 use parabound::thermal::ThermalSettings;
@@ -267,5 +268,41 @@ fn failures_are_shown_in_every_kind_of_window() {
         window.ctx.set_pixels_per_point(scale);
         write(&mut window, &format!("{kind}_failed"));
         assert!(state(&window).study().is_none());
+    }
+}
+
+/// The pictures of the user guide, on samples of the program. What they show is what is told of them there.
+#[test]
+fn pictures_of_the_guide_show_what_it_tells() {
+    let sample = |part: &str| {
+        let index = SAMPLES.iter().position(|s| s.file_name.contains(part)).expect("a sample");
+        Command::OpenSample(index)
+    };
+    let rotation = ThermalSettings { rotation: true, ..ThermalSettings::default() };
+    let pictures: [(&str, &str, Vec<Command>); 4] = [
+        ("window-light", "lih", vec![Command::PinLevel(Some(1))]),
+        ("reach-n2", "n2", vec![Command::ShowPage(Page::Reach)]),
+        ("levels-h2", "h2", vec![Command::ShowPage(Page::Levels), Command::PinLevel(Some(1))]),
+        (
+            "temperature-hf",
+            "hf",
+            vec![
+                Command::StepCurve(-1),
+                Command::ShowPage(Page::Thermal),
+                Command::SetThermal(rotation),
+                Command::SetKelvin(1000.0),
+            ],
+        ),
+    ];
+    for (name, part, commands) in pictures {
+        let mut window = open([1240.0, 800.0], Theme::Light, Start::default());
+        give(&mut window, &[sample(part)]);
+        give(&mut window, &commands);
+        let study = state(&window).study().expect("a study");
+        assert!(
+            study.findings.source.file_name.contains(part) && !study.findings.levels.is_empty(),
+            "{name}"
+        );
+        write(&mut window, name);
     }
 }

@@ -15,6 +15,7 @@ mod invented;
 mod killed;
 mod logs;
 mod pages;
+mod paper;
 mod pictures;
 mod reach;
 mod reading;

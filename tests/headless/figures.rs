@@ -211,7 +211,7 @@ fn a_pdf_is_one_page_with_its_face() {
     // 140 mm are 396.85 points.
     assert!(has(b"/MediaBox [0 0 396.85") && has(b"/FontFile3") && has(b"/ToUnicode"));
     // Every picture: the cross-reference table points at the objects it names, and every object is closed.
-    for what in ["curve", "gauge", "residuals", "ladders", "thermal"] {
+    for what in ["curve", "gauge", "residuals", "ladders", "thermal", "window-study", "comparison"] {
         let pdf = figure("lih_X_A.csv", "pdf", &[&LIH[..], &["--what", what]].concat());
         let objects = references_checked(&pdf);
         assert!(objects > 5, "{what}: {objects} objects");

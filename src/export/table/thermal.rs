@@ -69,13 +69,17 @@ const COLUMNS: [Column; 36] = [
 /// Writes the table of all studies.
 pub fn write(studies: &[&Findings], out: impl Write) -> Result<(), csv::Error> {
     let mut writer = csv::Writer::from_writer(out);
-    let head = ["file", "curve"].into_iter().chain(COLUMNS.iter().map(|c| c.0)).chain(["converged"]);
+    let head = ["file", "curve"]
+        .into_iter()
+        .chain(COLUMNS.iter().map(|c| c.0))
+        .chain(["converged", "rovibrational_converged"]);
     writer.write_record(head)?;
     for study in studies {
         for point in &study.thermal {
             let mut row = vec![study.source.file_name.clone(), study.source.curve.clone()];
             row.extend(COLUMNS.iter().map(|(_, get)| cell(get(point))));
             row.push(point.converged.to_string());
+            row.push(point.rotating.map_or_else(String::new, |r| r.converged.to_string()));
             writer.write_record(&row)?;
         }
     }

@@ -13,6 +13,7 @@ const PICTURES: [(&str, &[u8]); 4] = [
     ("logs.png", include_bytes!("../../../assets/guide/logs.png")),
     ("reach-n2.png", include_bytes!("../../../assets/guide/reach-n2.png")),
     ("levels-h2.png", include_bytes!("../../../assets/guide/levels-h2.png")),
+    ("temperature-hf.png", include_bytes!("../../../assets/guide/temperature-hf.png")),
 ];
 
 /// A part of the guide.

@@ -242,13 +242,9 @@ pub(super) fn temperature_ui(ui: &mut Ui, findings: &Findings) {
     let Some(reach) = &findings.reach else { return };
     let t = reach.temperature_kelvin;
     let rows = [
-        ("partition function within 1 %", t.partition_function, "|ln q(harmonic) − ln q| ≤ 0.01."),
-        (
-            "mean energy within 1 % of kT",
-            t.mean_energy,
-            "|U(harmonic) − U| ≤ 0.01 k_BT, each from its v = 0.",
-        ),
-        ("⟨x²⟩ within 5 %", t.mean_square_x, "Mean square displacement from rₑ."),
+        ("partition function, 1 %", t.partition_function, "|ln q(harmonic) − ln q| ≤ 0.01."),
+        ("mean energy, 1 % of kT", t.mean_energy, "|U(harmonic) − U| ≤ 0.01 k_BT, each from its v = 0."),
+        ("⟨x²⟩, 5 %", t.mean_square_x, "Mean square displacement from rₑ."),
     ];
     if rows.iter().all(|r| r.1.is_none()) && t.looked_up_to.is_none() {
         return;
