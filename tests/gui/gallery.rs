@@ -12,6 +12,7 @@ use parabound::gui::reading::ReadingCommand;
 use parabound::gui::samples::SAMPLES;
 use parabound::gui::state::{FitsPart, Page, Preset, ThermalView};
 use parabound::scan::read::{LinePatterns, Match, ReadSettings};
+use parabound::species::parse_atoms;
 use parabound::thermal::ThermalSettings;
 use parabound::units::{EnergyUnit, LengthUnit};
 use std::path::PathBuf;
@@ -287,7 +288,8 @@ fn pictures_of_the_guide_show_what_it_tells() {
             "temperature-hf",
             "hf",
             vec![
-                Command::StepCurve(-1),
+                Command::StepCurve(2),
+                Command::SetAtoms(parse_atoms("H,F").expect("atoms")),
                 Command::ShowPage(Page::Thermal),
                 Command::SetThermal(rotation),
                 Command::SetKelvin(1000.0),
@@ -301,7 +303,10 @@ fn pictures_of_the_guide_show_what_it_tells() {
         let study = state(&window).study().expect("a study");
         assert!(
             study.findings.source.file_name.contains(part) && !study.findings.levels.is_empty(),
-            "{name}"
+            "{name}: {} of {}, {} levels",
+            study.findings.source.curve,
+            study.findings.source.file_name,
+            study.findings.levels.len()
         );
         write(&mut window, name);
     }
