@@ -100,7 +100,9 @@ pub(super) fn thermal_name_ui(ui: &Ui, state: &State, study: &Study, map: &Map) 
     let galley = ui.painter().layout_no_wrap(name, look::plain(look::SMALL), look.outside);
     let left = (map.x(*end) - 24.0).min(map.rect.right() - galley.size().x - 8.0);
     if left > map.rect.left() && map.sees_y(0.0) {
-        ui.painter().galley(pos2(left, map.y(0.0) + 2.0), galley, look.outside);
+        // A low plot has less room there.
+        let top = (map.y(0.0) + 2.0).min(map.rect.bottom() - galley.size().y);
+        ui.painter().galley(pos2(left, top), galley, look.outside);
     }
 }
 
