@@ -8,7 +8,7 @@ use eframe::egui;
 use egui::{Key, RichText, ScrollArea, TextureHandle, Ui, vec2};
 
 const TEXT: &str = include_str!("../../../assets/guide/GUIDE.md");
-const PICTURES: [(&str, &[u8]); 4] = [
+const PICTURES: [(&str, &[u8]); 5] = [
     ("window-light.png", include_bytes!("../../../assets/guide/window-light.png")),
     ("logs.png", include_bytes!("../../../assets/guide/logs.png")),
     ("reach-n2.png", include_bytes!("../../../assets/guide/reach-n2.png")),
