@@ -179,11 +179,11 @@ impl App {
                 let found = logs.as_ref().ok().map(|logs| logs.read.clone());
                 reading::take_logs(logs, &mut self.state);
                 // What was used last may fit these as well.
-                if let Some(read) = found.filter(|read| read.lines.is_some()) {
+                if let Some(read) = found {
                     self.give(Command::Reading(ReadingCommand::TryLogs(read)), ctx);
                 }
             }
-            Done::Tried(read, tried) => reading::take_tried(read, tried, &mut self.state),
+            Done::Searched(read, found) => reading::take_searched(read, found, &mut self.state),
             Done::LogsRefused(text) => reading::take_logs_refused(text, &mut self.state),
             Done::Reread(loaded) => {
                 let key = loaded.key;

@@ -313,6 +313,7 @@ impl Command {
         // Of two shortcuts with the same key the one with more modifiers stands first: it would be taken for the other.
         let mut commands = vec![
             Self::Open,
+            Self::Reading(ReadingCommand::AskLogs),
             Self::SaveStudyAs,
             Self::SaveStudy,
             Self::Export(Product::Findings),
@@ -563,6 +564,7 @@ impl Command {
             Self::Open => with_command(Key::O),
             Self::Export(Product::Findings) => with_command(Key::E),
             Self::Export(Product::Report) => with_command(Key::R),
+            Self::Reading(ReadingCommand::AskLogs) => with_command(Key::L),
             Self::SaveStudy => with_command(Key::S),
             Self::SaveStudyAs => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::S),
             Self::ShowSearch(true) => with_command(Key::K),

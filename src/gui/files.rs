@@ -5,7 +5,7 @@ use super::log_files::{log_set, scan_of_logs};
 use super::meaning::meanings;
 use super::preferences::Preferences;
 use super::product::Product;
-use super::reading::{Logs, Looked, Remembered};
+use super::reading::{Logs, Looked, Remembered, Searched};
 use super::samples::SAMPLES;
 use super::saving::SavedStudy;
 use super::session::{self, Opened, Work, sha256_of};
@@ -14,11 +14,12 @@ use crate::figure::drawing::Paper;
 use crate::files::{Replace, WriteError};
 use crate::findings::Findings;
 use crate::scan::error::ScanError;
-use crate::scan::read::{ReadSettings, Tried, preview, read_scan};
+use crate::scan::read::{ReadSettings, preview, read_scan};
 use crate::settings::Settings;
 use crate::study_file::is_study_file;
 use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::path::{Path, PathBuf};
+use std::sync::atomic::AtomicU64;
 use std::sync::{Arc, mpsc};
 use std::time::{Duration, Instant};
 
@@ -43,7 +44,7 @@ pub enum Done {
     /// Text logs to be searched, or why there are none.
     Logs(Result<Logs, String>),
     /// What patterns catch.
-    Tried(ReadSettings, Tried),
+    Searched(ReadSettings, Searched),
     /// Text logs were refused as a scan.
     LogsRefused(String),
     /// The files of a folder that could be read, those that could not, and how many were not looked at.
@@ -81,6 +82,8 @@ pub struct Files {
     reader: Option<mpsc::Sender<Job>>,
     /// How files were read before.
     pub remembered: Arc<Remembered>,
+    /// How often patterns were to be tried: only the latest ones still matter.
+    pub(super) searches: Arc<AtomicU64>,
 }
 
 type Job = Box<dyn FnOnce() -> Done + Send>;
@@ -108,6 +111,7 @@ impl Files {
             under_way: 0,
             reader: None,
             remembered: Arc::default(),
+            searches: Arc::default(),
         }
     }
 

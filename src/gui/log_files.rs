@@ -2,7 +2,7 @@
 
 use super::files::{Done, Files, file_name_of};
 use super::meaning::all_meanings;
-use super::reading::{LogSet, Logs, Looked};
+use super::reading::{LogSet, Logs, Looked, Searched};
 use super::state::LoadedScan;
 use super::watch::last_change;
 use crate::scan::Layout;
@@ -10,6 +10,7 @@ use crate::scan::read::{Preview, ReadSettings, preview, read_logs, try_patterns}
 use crate::settings::Settings;
 use std::path::{Path, PathBuf};
 use std::sync::Arc;
+use std::sync::atomic::Ordering;
 
 /// Most logs, and most bytes of all of them, that are looked at.
 const MOST_LOGS: usize = 10_000;
@@ -53,11 +54,14 @@ impl Files {
         });
     }
 
-    /// Tries patterns.
+    /// Tries patterns, unless others have been typed meanwhile.
     pub fn try_logs(&mut self, logs: Logs) {
+        let number = self.searches.fetch_add(1, Ordering::Relaxed) + 1;
+        let latest = Arc::clone(&self.searches);
         self.run_in_order(move || {
-            let lines = logs.read.lines.clone().unwrap_or_default();
-            Done::Tried(logs.read.clone(), try_patterns(&lines, logs.set.by_name()))
+            let is_latest = latest.load(Ordering::Relaxed) == number;
+            let found = if is_latest { searched(&logs) } else { Searched::default() };
+            Done::Searched(logs.read, found)
         });
     }
 
@@ -68,6 +72,48 @@ impl Files {
             scan_of_logs(&logs.set, start).map_or_else(Done::LogsRefused, Done::Scan)
         });
     }
+}
+
+/// What the patterns catch, the logs that give no point first.
+fn searched(logs: &Logs) -> Searched {
+    let patterns = logs.read.lines.clone().unwrap_or_default();
+    let tried = try_patterns(&patterns, logs.set.by_name());
+    let mut order: Vec<usize> = (0..logs.set.files.len()).collect();
+    if tried.points() > 0 {
+        order.sort_by_key(|&i| tried.logs[i].iter().all(|c| c.as_ref().is_some_and(Result::is_ok)));
+    }
+    let lines = order.first().map_or_else(Vec::new, |&first| {
+        let caught: Vec<usize> = tried.logs[first].iter().flatten().flatten().map(|c| c.line).collect();
+        excerpt(&String::from_utf8_lossy(&logs.set.files[first].1), &caught)
+    });
+    Searched { tried, order, lines }
+}
+
+/// Texts of no more lines are shown as a whole.
+const WHOLE: usize = 400;
+/// Lines shown at the beginning and at the end of others, and on either side of a line in which something is caught.
+const ENDS: usize = 20;
+const AROUND: usize = 6;
+/// Letters shown of a line.
+const LETTERS: usize = 160;
+
+/// The lines of a text that are shown, each with its number; 0 where lines are left out.
+fn excerpt(text: &str, caught: &[usize]) -> Vec<(usize, String)> {
+    let total = text.lines().count();
+    let is_shown = |number: usize| {
+        total <= WHOLE
+            || number <= ENDS
+            || number + ENDS > total
+            || caught.iter().any(|line| line.abs_diff(number) <= AROUND)
+    };
+    let mut shown: Vec<(usize, String)> = Vec::new();
+    for (number, line) in (1..).zip(text.lines()).filter(|(number, _)| is_shown(*number)) {
+        if shown.last().is_some_and(|(before, _)| before + 1 < number) {
+            shown.push((0, String::new()));
+        }
+        shown.push((number, line.chars().take(LETTERS).collect()));
+    }
+    shown
 }
 
 /// Logs by their paths. Of a folder they are all its files by name, hidden files and folders left out.
@@ -141,4 +187,21 @@ pub(super) fn scan_of_logs(set: &Arc<LogSet>, start: Settings) -> Result<LoadedS
         is_sample: false,
         start,
     })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn of_a_long_log_the_ends_and_what_is_caught_are_shown() {
+        let text: String = (1..=5000).map(|i| format!("line {i}\n")).collect();
+        let shown = excerpt(&text, &[3000]);
+        let numbers: Vec<usize> = shown.iter().map(|(number, _)| *number).collect();
+        let expected: Vec<usize> =
+            (1..=20).chain([0]).chain(2994..=3006).chain([0]).chain(4981..=5000).collect();
+        assert_eq!(numbers, expected);
+        assert_eq!(shown[25].1, "line 2998");
+        assert_eq!(excerpt("a\nb\n", &[]), [(1, "a".to_owned()), (2, "b".to_owned())]);
+    }
 }

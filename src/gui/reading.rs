@@ -99,6 +99,17 @@ impl LogSet {
     }
 }
 
+/// What patterns catch, and what of it is shown.
+#[derive(Clone, Debug, Default, PartialEq)]
+pub struct Searched {
+    /// What they catch in each log.
+    pub tried: Tried,
+    /// The logs in the order in which they are listed: where some give a point, those that do not stand first.
+    pub order: Vec<usize>,
+    /// The lines shown of the first one, each with its number; 0 where lines are left out.
+    pub lines: Vec<(usize, String)>,
+}
+
 /// Text logs, each a point of one scan, and how they are searched.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Logs {
@@ -109,7 +120,7 @@ pub struct Logs {
     /// Patterns and units chosen so far.
     pub read: ReadSettings,
     /// What the patterns catch, with the settings that were tried.
-    pub tried: Option<(ReadSettings, Tried)>,
+    pub searched: Option<(ReadSettings, Searched)>,
     /// Why they were refused as a scan.
     pub refused: Option<String>,
 }
@@ -117,17 +128,17 @@ pub struct Logs {
 impl Logs {
     /// Logs not yet searched.
     pub const fn new(set: Arc<LogSet>, read: ReadSettings) -> Self {
-        Self { set, of: None, read, tried: None, refused: None }
+        Self { set, of: None, read, searched: None, refused: None }
     }
 
     /// What the patterns in force catch, where they were tried.
-    pub fn caught(&self) -> Option<&Tried> {
-        self.tried.as_ref().filter(|(with, _)| *with == self.read).map(|(_, tried)| tried)
+    pub fn caught(&self) -> Option<&Searched> {
+        self.searched.as_ref().filter(|(with, _)| *with == self.read).map(|(_, searched)| searched)
     }
 
     /// Whether every log gives a point and both units are chosen.
     pub fn are_ready(&self) -> bool {
-        self.caught().map_or(0, Tried::points) == self.set.files.len()
+        self.caught().map_or(0, |s| s.tried.points()) == self.set.files.len()
             && self.read.length_unit.is_some()
             && self.read.energy_unit.is_some()
     }
@@ -367,9 +378,9 @@ pub fn take_logs(logs: Result<Logs, String>, state: &mut State) {
 }
 
 /// Takes what patterns catch, where they are still the ones in question.
-pub fn take_tried(read: ReadSettings, tried: Tried, state: &mut State) {
+pub fn take_searched(read: ReadSettings, searched: Searched, state: &mut State) {
     if let Some(logs) = state.view.reading.logs.as_mut().filter(|l| l.read == read) {
-        logs.tried = Some((read, tried));
+        logs.searched = Some((read, searched));
     }
 }
 

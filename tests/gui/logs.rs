@@ -61,7 +61,7 @@ fn a_folder_of_text_logs_becomes_a_scan_by_two_patterns() {
     assert!(window.query_by_label("Pattern of the bond length").is_some());
     let points = |window: &Window| {
         let logs = state(window).view.reading.logs.clone().expect("the dialog is open");
-        logs.tried.expect("tried").1.points()
+        logs.searched.expect("tried").1.tried.points()
     };
     try_patterns(&mut window, r"bond (\S+)", "energy (", Match::Last);
     assert_eq!(points(&window), 0);
@@ -87,6 +87,31 @@ fn a_folder_of_text_logs_becomes_a_scan_by_two_patterns() {
     let key = state(&window).document.scans[0].key;
     give(&mut window, Command::Reload(key));
     assert_eq!(state(&window).document.scans[0].scan.bond_lengths.len(), 31);
+}
+
+/// Of many logs those that give no point stand first, with their text.
+#[test]
+fn the_log_without_a_point_is_seen_first() {
+    let folder = tempfile::tempdir().expect("a folder");
+    write_logs(folder.path(), 40);
+    let lines: String = (0..3000).map(|i| format!("step {i}\n")).collect();
+    write(folder.path(), "point_99.log", &format!("{lines}bond 3.30\n{lines}broken off\n"));
+    let start = Start { empty: true, ..Start::default() };
+    let mut window = open([1400.0, 900.0], egui::Theme::Light, start);
+    give(&mut window, Command::Reading(ReadingCommand::OpenLogs(vec![folder.path().to_owned()])));
+    assert!(
+        window.query(by().label_contains("run 0")).is_some(),
+        "the first log is shown before there are patterns"
+    );
+    give(&mut window, Command::Reading(ReadingCommand::TryLogs(fitting())));
+    shown(&mut window, "light_logs_one_fails");
+    let logs = state(&window).view.reading.logs.as_ref().expect("open");
+    let found = logs.caught().expect("tried");
+    assert_eq!(logs.set.files[found.order[0]].0, "point_99.log");
+    assert!(found.lines.iter().any(|(number, text)| *number == 3001 && text == "bond 3.30"));
+    assert!(found.lines.len() < 100);
+    assert!(window.query_by_label("no match").is_some());
+    assert!(state(&window).can(&Command::Reading(ReadingCommand::ReadLogs)).is_err());
 }
 
 /// A window with a scan made of the logs in a folder.

@@ -255,6 +255,31 @@ fn odd_data_never_panics() {
     assert!(build_curve(&steps, None, &CurveSettings::default()).is_err());
 }
 
+/// However rough a scan is, the spline in the other variable has a minimum between the neighbours of the lowest point,
+/// for it runs through all three: it always counts for the spread. Invented data, too rough for local polynomials.
+#[test]
+fn the_spline_in_the_other_variable_always_has_its_minimum() {
+    for variable in [SplineVariable::R, SplineVariable::Y] {
+        let settings =
+            CurveSettings { kind: CurveKind::Quintic, variable: Some(variable), ..CurveSettings::default() };
+        let mut built = 0;
+        for seed in 0..200 {
+            let value = |i: usize| ((i * 7919 + seed * 104_729) as f64 * 0.618_033_988_75).fract();
+            let points: Vec<FitPoint> = (0..9)
+                .map(|i| FitPoint { r_bohr: 0.3 + (i * i) as f64, energy_hartree: value(i), weight: 1.0 })
+                .collect();
+            let Ok((curve, _)) = build_curve(&points, None, &settings) else { continue };
+            let r = curve.r_e_bohr.value;
+            let others = curve.other_interpolations_hartree(&[0.9 * r, r, 1.1 * r]);
+            assert!(!others.is_empty() && others.len() == curve.alternatives.len(), "{seed}");
+            assert!(others.iter().flatten().all(|v| v.is_finite()), "{seed}");
+            assert!(curve.r_e_bohr.std_error.is_some_and(f64::is_finite), "{seed}: {:?}", curve.r_e_bohr);
+            built += 1;
+        }
+        assert!(built > 50, "{built}");
+    }
+}
+
 /// Symmetric scans put samples exactly on the minimum, where V′ is 0 to the last bit.
 #[test]
 fn symmetric_scans_have_their_minimum_in_the_middle() {

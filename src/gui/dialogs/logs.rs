@@ -11,9 +11,8 @@ use eframe::egui;
 use egui::{ComboBox, RichText, ScrollArea, TextEdit, Ui};
 use std::collections::BTreeSet;
 
-/// Logs listed, and lines of the first one shown.
+/// Logs listed.
 const LISTED: usize = 200;
-const LINES: usize = 400;
 /// Width of the name of a field.
 const NAME: f32 = 170.0;
 /// Width of the field of a pattern.
@@ -49,7 +48,7 @@ fn content_ui(ui: &mut Ui, state: &State, logs: &Logs, out: &mut Vec<Command>) {
     );
     ui.add_space(6.0);
     let mut lines = read.lines.clone().unwrap_or_default();
-    let tried = logs.caught();
+    let tried = logs.caught().map(|found| &found.tried);
     patterns_ui(ui, &mut lines, &mut read, tried);
     if Some(&lines) != read.lines.as_ref() && lines != LinePatterns::default() {
         read.lines = Some(lines);
@@ -57,7 +56,7 @@ fn content_ui(ui: &mut Ui, state: &State, logs: &Logs, out: &mut Vec<Command>) {
     ui.add_space(8.0);
     caught_ui(ui, logs, tried);
     ui.add_space(8.0);
-    text_ui(ui, logs, tried);
+    text_ui(ui, logs);
     ui.add_space(8.0);
     if let Some(text) = &logs.refused {
         ui.label(RichText::new(text).color(Look::of(ui).stop));
@@ -155,7 +154,11 @@ fn caught_ui(ui: &mut Ui, logs: &Logs, tried: Option<&Tried>) {
                 ui.label(RichText::new(name).font(look::plain(look::SMALL)).color(look.dim));
             }
             ui.end_row();
-            for (index, (name, _)) in logs.set.files.iter().enumerate().take(LISTED) {
+            let as_they_are: Vec<usize> = (0..count).collect();
+            // Until the latest patterns are tried the list keeps the order it had.
+            let order = logs.searched.as_ref().map_or(&as_they_are, |(_, found)| &found.order);
+            for &index in order.iter().take(LISTED) {
+                let Some((name, _)) = logs.set.files.get(index) else { continue };
                 ui.label(RichText::new(name).font(look::plain(look::SECONDARY)).color(look.dim));
                 for which in 0..2 {
                     let caught = tried.and_then(|t| t.logs.get(index)?[which].as_ref());
@@ -190,26 +193,29 @@ fn caught_cell_ui(ui: &mut Ui, caught: Option<&Result<Caught, String>>) {
     }
 }
 
-/// The first file, the lines that were caught in it marked.
-fn text_ui(ui: &mut Ui, logs: &Logs, tried: Option<&Tried>) {
+/// The first file listed, the lines that were caught in it marked.
+fn text_ui(ui: &mut Ui, logs: &Logs) {
     let look = Look::of(ui);
-    let Some((name, bytes)) = logs.set.files.first() else { return };
-    let caught: BTreeSet<usize> = tried
-        .and_then(|t| t.logs.first())
+    let Some((_, found)) = &logs.searched else { return };
+    let Some((index, name)) = found.order.first().and_then(|&i| Some((i, &logs.set.files.get(i)?.0))) else {
+        return;
+    };
+    let caught: BTreeSet<usize> = found
+        .tried
+        .logs
+        .get(index)
         .into_iter()
         .flatten()
         .filter_map(|c| c.as_ref()?.as_ref().ok().map(|c| c.line))
         .collect();
     show::heading(ui, name, "");
-    let text = String::from_utf8_lossy(&bytes[..bytes.len().min(64 << 10)]);
     ScrollArea::both().id_salt("log text").max_height(LIST).auto_shrink([false, true]).show(ui, |ui| {
         ui.spacing_mut().item_spacing.y = 1.0;
-        for (number, line) in text.lines().take(LINES).enumerate() {
-            let marked = caught.contains(&(number + 1));
-            let shown: String = line.chars().take(160).collect();
-            let text = RichText::new(format!("{:4}  {shown}", number + 1)).font(look::figures(look::SMALL));
+        for (number, line) in &found.lines {
+            let marked = *number > 0 && caught.contains(number);
+            let text = if *number == 0 { "   …".to_owned() } else { format!("{number:5}  {line}") };
             let color = if marked { look.text } else { look.dim };
-            let text = text.color(color);
+            let text = RichText::new(text).font(look::figures(look::SMALL)).color(color);
             let text = if marked { text.background_color(look.raised) } else { text };
             ui.add(egui::Label::new(text).extend());
         }
