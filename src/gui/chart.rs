@@ -50,7 +50,7 @@ pub fn chart_ui(
     ui.painter().rect_filled(rect, 2.0, look.ground);
     let (x, y) = (
         ticks(bounds.x, rect.width(), 62.0),
-        ticks(bounds.y, rect.height(), if height < 150.0 { 18.0 } else { 30.0 }),
+        ticks(bounds.y, rect.height(), if height < 150.0 { 15.0 } else { 30.0 }),
     );
     grid_ui(ui, &map, &x, &y);
     let clipped = ui.painter().with_clip_rect(rect);

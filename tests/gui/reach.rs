@@ -1,6 +1,6 @@
 //! Gauge, ladders and densities that stay: what the hand does there changes what is said.
 
-use crate::harness::{Window, drag, open_sample, press, state};
+use crate::harness::{Window, drag, give, open_sample, press, state};
 use eframe::egui::accesskit::Role;
 use eframe::egui::{Key, Modifiers, vec2};
 use egui_kittest::kittest::{NodeT as _, Queryable as _, by};
@@ -13,12 +13,6 @@ use parabound::reach::AbsoluteTolerance;
 use parabound::units::{ANGSTROM_PER_BOHR, EnergyUnit, ForceConstantUnit};
 
 const TOLERANCE: &str = "Tolerance of the reach in percent";
-
-fn give(window: &mut Window, command: Command) {
-    let ctx = window.ctx.clone();
-    window.state_mut().0.give(command, &ctx);
-    window.run();
-}
 
 /// Drags the grip of a tolerance upwards (negative: downwards) by points of the screen.
 fn drag_tolerance(window: &mut Window, name: &str, up: f32) {

@@ -202,9 +202,10 @@ pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
             painter.line_segment([pos2(x, y - half), pos2(x, y + half)], stroke);
         }
         if state.view.kept_levels.contains(&v) && right + 40.0 < map.rect.right() {
-            let at = pos2(right + 6.0, y - 1.0);
+            // Right of the turning point and below the line neither curve nor density passes.
+            let at = pos2(right + 8.0, y + 2.0);
             let name = format!("v = {v}");
-            text_in(ui, at, Align2::LEFT_BOTTOM, &name, &look::figures(look::SMALL), look.accent);
+            text_in(ui, at, Align2::LEFT_TOP, &name, &look::figures(look::SMALL), look.accent);
         }
     }
 }
