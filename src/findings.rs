@@ -119,6 +119,16 @@ pub struct QuasiBoundLevel {
     pub barrier_bohr: f64,
 }
 
+impl QuasiBoundLevel {
+    /// Lifetime ħ/Γ in seconds; none where the width is below the smallest number.
+    pub fn lifetime_seconds(&self) -> Option<f64> {
+        (self.width_per_cm > 0.0).then(|| SECOND_PER_CM / self.width_per_cm)
+    }
+}
+
+/// 1/(2π c) in seconds times cm⁻¹: the lifetime of a width of 1 cm⁻¹ (c is exact).
+const SECOND_PER_CM: f64 = 1.0 / (std::f64::consts::TAU * 29_979_245_800.0);
+
 /// A property column averaged over the levels.
 #[derive(Clone, Debug, PartialEq)]
 pub struct PropertyAverages {

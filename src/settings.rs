@@ -2,6 +2,10 @@
 //! findings file. Unknown keys are refused.
 
 mod checked;
+mod quantum_numbers;
+
+pub use checked::{HIGHEST_J, HIGHEST_LAMBDA};
+pub use quantum_numbers::{quantum_numbers, quantum_numbers_text};
 
 use crate::density::DensitySettings;
 use crate::fit::FitSettings;

@@ -176,6 +176,64 @@ pub struct View {
     pub region: Option<String>,
     /// or its bounds: bond length from and to (angstrom), energy from and to (cm⁻¹ above the minimum).
     pub bounds: Option<[f64; 4]>,
+    /// The J whose levels are shown; none: without rotation.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub j: Option<u32>,
+    /// The part of the page of levels.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub levels_part: Option<String>,
+    /// What the axes show; none: bond lengths in angstrom, energies in cm⁻¹.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub axes: Option<Axes>,
+    /// The densities drawn over that of the level shown; none: no other.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub densities: Option<DrawnDensities>,
+    /// Curves side by side; none: the picture.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub comparison: Option<Compared>,
+    /// The temperature looked at in K.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub kelvin: Option<f64>,
+}
+
+/// Units of the axes.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
+#[serde(default, deny_unknown_fields)]
+pub struct Axes {
+    /// Unit of the bond lengths.
+    pub length: String,
+    /// Displacements instead of bond lengths.
+    pub displacement: bool,
+    /// Unit of the energies.
+    pub energy: String,
+}
+
+/// Densities drawn over that of the level shown.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
+#[serde(default, deny_unknown_fields)]
+pub struct DrawnDensities {
+    /// Which: harmonic, morse, classical, averaged.
+    pub drawn: Vec<String>,
+    /// The averaging width in angstrom; none: the zero-point amplitude.
+    pub width_angstrom: Option<f64>,
+    /// Their height against the usual one.
+    pub height: f64,
+}
+
+/// Curves side by side.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize)]
+#[serde(default, deny_unknown_fields)]
+pub struct Compared {
+    /// Whether the table is in the place of the picture.
+    pub open: bool,
+    /// The curve that differences are taken to,
+    pub reference: Option<Focus>,
+    /// or the published constants.
+    pub published: bool,
+    /// The quantity rows are sorted by, as its symbol and unit.
+    pub sort: Option<String>,
+    /// Whether the largest is on top.
+    pub largest_first: bool,
 }
 
 impl StudyScan {

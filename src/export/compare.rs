@@ -271,7 +271,7 @@ fn latex_number(text: &str) -> String {
 }
 
 /// Words with the characters escaped that LaTeX reads as commands.
-fn latex_words(text: &str) -> String {
+pub(super) fn latex_words(text: &str) -> String {
     let mut out = String::with_capacity(text.len());
     for c in text.chars() {
         match c {

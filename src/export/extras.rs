@@ -6,9 +6,6 @@ use crate::findings::{Findings, Isotopologue, LevelSupport, PropertyAverages, Qu
 use crate::spectroscopy::{BirgeSponer, DunhamCoefficient, DunhamTable, NearDissociation};
 use serde_json::{Map, Value, json};
 
-/// h/(2π · 1 cm⁻¹ · h c) = 1/(2π c) in seconds times cm⁻¹: the lifetime of a width of 1 cm⁻¹ (c is exact).
-const SECOND_PER_CM: f64 = 1.0 / (std::f64::consts::TAU * 29_979_245_800.0);
-
 /// All of these sections by their keys.
 pub(super) fn sections(findings: &Findings) -> Map<String, Value> {
     let mut map = Map::new();
@@ -30,7 +27,7 @@ fn per_cm(value: f64) -> Value {
 }
 
 fn quasi_bound(level: &QuasiBoundLevel) -> Value {
-    let lifetime = (level.width_per_cm > 0.0).then(|| quantity(SECOND_PER_CM / level.width_per_cm, "s"));
+    let lifetime = level.lifetime_seconds().map(|t| quantity(t, "s"));
     json!({
         "v": level.v,
         "j": level.j,

@@ -8,4 +8,5 @@ pub mod json;
 mod numbers;
 pub mod parameters;
 pub mod recheck;
+pub mod sheet;
 pub mod table;

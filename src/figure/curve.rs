@@ -12,7 +12,7 @@ use crate::units::{ANGSTROM_PER_BOHR, PER_CM_PER_HARTREE, to_angstrom, to_per_cm
 const FINE_POINTS: usize = 480;
 const COARSE_POINTS: usize = 320;
 /// Tails are drawn this far beyond the scan, as a fraction of the scanned range.
-const TAIL_FRACTION: f64 = 0.12;
+pub(super) const TAIL_FRACTION: f64 = 0.12;
 
 /// The main plot of a study: energies in cm⁻¹ above the minimum over bond lengths in angstrom.
 pub fn main_plot(findings: &Findings) -> Figure {
@@ -49,7 +49,7 @@ pub(super) fn points(findings: &Findings, window: Option<Window>) -> Vec<PlotPoi
 }
 
 /// Bond lengths (bohr) at which a function is drawn between two ends: dense where the well is.
-fn mesh(from: f64, to: f64, r_e: f64) -> Vec<f64> {
+pub(super) fn mesh(from: f64, to: f64, r_e: f64) -> Vec<f64> {
     if !(from.is_finite() && to.is_finite() && to > from) {
         return Vec::new();
     }

@@ -28,13 +28,20 @@ pub struct LevelPicture {
     pub parts: Vec<(bool, std::ops::RangeInclusive<usize>)>,
     /// cm⁻¹ of the plot per unit of density: one scale for all levels, so that areas compare.
     pub scale_per_cm: f64,
+    /// Whether it is quasi-bound: drawn as a series, without density.
+    pub quasi_bound: bool,
 }
 
 /// The levels of a study as drawn.
 pub fn level_pictures(findings: &Findings) -> Vec<LevelPicture> {
+    level_pictures_of(findings, &findings.levels)
+}
+
+/// Levels of one J as drawn.
+pub(super) fn level_pictures_of(findings: &Findings, levels: &[Level]) -> Vec<LevelPicture> {
     let reach = reach_angstrom(findings);
-    let scale = scale_per_cm(&findings.levels);
-    findings.levels.iter().filter(|l| l.energy_per_cm.is_finite()).map(|l| picture(l, reach, scale)).collect()
+    let scale = scale_per_cm(levels);
+    levels.iter().filter(|l| l.energy_per_cm.is_finite()).map(|l| picture(l, reach, scale)).collect()
 }
 
 /// The energy reach in angstrom; an open end runs to infinity.
@@ -72,6 +79,7 @@ fn picture(level: &Level, reach: Option<(f64, f64)>, scale_per_cm: f64) -> Level
         density,
         parts,
         scale_per_cm,
+        quasi_bound: false,
     }
 }
 

@@ -8,7 +8,9 @@ mod comparison;
 mod curve;
 mod densities;
 mod density_lines;
+mod dissociation;
 pub mod drawing;
+mod effective;
 mod gauge;
 pub mod geometry;
 mod ladders;
@@ -29,6 +31,10 @@ pub use comparison::{ComparedRow, ComparisonPicture, Measure};
 pub use curve::{fit_label, fit_role, main_plot};
 pub use densities::{LevelPicture, level_pictures};
 pub use density_lines::{DensityKind, DensityLine, DensityPicture, density_picture};
+pub use dissociation::{birge_sponer_figure, birge_sponer_sentence, true_limit_per_cm};
+pub use effective::{
+    QuasiBoundPicture, RotationPicture, lifetime_text, quasi_bound_words, rotation_picture, width_text,
+};
 pub use gauge::{GaugeMeasure, gauge, gauge_of, gauge_turning_points};
 pub use ladders::{Ladder, Ladders, ladders};
 pub use residuals::residuals;
@@ -72,6 +78,14 @@ pub enum Role {
     ZeroPoint,
     /// The zero line.
     Zero,
+    /// The effective potential of a rotating molecule.
+    Effective,
+    /// Its continuation beyond the scan.
+    EffectiveTail,
+    /// A quasi-bound level inside its barrier.
+    QuasiBound,
+    /// The same where it tunnels.
+    Tunnelling,
 }
 
 /// How a line is broken.
@@ -95,17 +109,22 @@ impl Role {
         match self {
             Self::Parabola => LineStyle::Dashed,
             Self::Harmonic => LineStyle::LongDashed,
-            Self::Tail | Self::Tolerance => LineStyle::ShortDashed,
-            Self::Polynomial | Self::LeadingOrder => LineStyle::Dotted,
+            Self::Tail | Self::Tolerance | Self::EffectiveTail => LineStyle::ShortDashed,
+            Self::QuasiBound => LineStyle::Dashed,
+            Self::Polynomial | Self::LeadingOrder | Self::Tunnelling => LineStyle::Dotted,
             // Beside their colours, so that neighbouring degrees differ in print too.
             Self::Degree(n) => match n % 3 {
                 0 => LineStyle::ShortDashed,
                 1 => LineStyle::Dotted,
                 _ => LineStyle::Solid,
             },
-            Self::Scanned | Self::Morse | Self::Reach | Self::ZeroPoint | Self::Zero | Self::Proposal => {
-                LineStyle::Solid
-            }
+            Self::Scanned
+            | Self::Morse
+            | Self::Reach
+            | Self::ZeroPoint
+            | Self::Zero
+            | Self::Proposal
+            | Self::Effective => LineStyle::Solid,
         }
     }
 }
@@ -213,6 +232,16 @@ pub struct Pictures {
 }
 
 impl Pictures {
+    /// The same with the levels and the effective potential of one J in the place of those without rotation.
+    pub fn with_rotation(mut self, rotation: &RotationPicture) -> Self {
+        self.main.series.extend(rotation.series.iter().cloned());
+        self.levels.clone_from(&rotation.levels);
+        self.ladders = rotation.ladders.clone();
+        self.views.near_minimum = rotation.near_minimum.or(self.views.near_minimum);
+        self.views.whole_well = rotation.whole_well.or(self.views.whole_well);
+        self
+    }
+
     /// Everything that is drawn of these findings.
     pub fn of(findings: &Findings) -> Self {
         let window = findings.window();

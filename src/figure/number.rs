@@ -70,6 +70,26 @@ pub fn estimate(estimate: &Estimate, decimals: usize) -> String {
     with_error(estimate.value, estimate.std_error, decimals)
 }
 
+/// A number with so many digits that count; a power of ten where it is very small or very large.
+pub fn significant(value: f64, digits: usize) -> String {
+    let size = if value == 0.0 { 0.0 } else { value.abs().log10().floor() };
+    if !value.is_finite() || !(-4.0..=6.0).contains(&size) {
+        return scientific(value, digits.saturating_sub(1));
+    }
+    fixed(value, (digits as f64 - 1.0 - size).max(0.0) as usize)
+}
+
+/// A number as a power of ten with so many decimals, `4.35 × 10⁻¹²`.
+pub fn scientific(value: f64, decimals: usize) -> String {
+    if !value.is_finite() {
+        return NONE.to_owned();
+    }
+    let text = format!("{value:.decimals$e}").replace('-', "−");
+    let Some((number, power)) = text.split_once('e') else { return text };
+    let (sign, power) = power.strip_prefix('−').map_or(("", power), |p| ("⁻", p));
+    format!("{number} × 10{sign}{}", superscript(power.parse().unwrap_or(0)))
+}
+
 /// Digits raised, for mass numbers: 35 gives ³⁵.
 pub fn superscript(number: u32) -> String {
     const RAISED: [char; 10] = ['⁰', '¹', '²', '³', '⁴', '⁵', '⁶', '⁷', '⁸', '⁹'];
@@ -106,5 +126,11 @@ mod tests {
     #[test]
     fn raised_digits() {
         assert_eq!(superscript(35), "³⁵");
+        assert_eq!(scientific(-4.352e-12, 2), "−4.35 × 10⁻¹²");
+        assert_eq!(scientific(1e7, 0), "1 × 10⁷");
+        assert_eq!(significant(0.012345, 3), "0.0123");
+        assert_eq!(significant(12345.6, 3), "12\u{2009}346");
+        assert_eq!(significant(1.2e-9, 2), "1.2 × 10⁻⁹");
+        assert_eq!(significant(0.0, 3), "0.00");
     }
 }

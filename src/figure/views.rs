@@ -43,7 +43,7 @@ impl Views {
 }
 
 /// x and y with room around: more below than a level needs, so that the minimum does not touch the frame.
-fn framed(x: (f64, f64), top: f64) -> Bounds {
+pub(super) fn framed(x: (f64, f64), top: f64) -> Bounds {
     let pad = 0.13 * (x.1 - x.0);
     Bounds { x: (x.0 - pad, x.1 + pad), y: (-0.035 * top, top) }
 }
@@ -66,7 +66,7 @@ fn near_minimum(findings: &Findings, curve: &ScanCurve) -> Option<Bounds> {
     Some(framed((inner, outer), level.energy_per_cm + 0.55 * spacing))
 }
 
-fn whole_well(findings: &Findings, curve: &ScanCurve) -> Option<Bounds> {
+pub(super) fn whole_well(findings: &Findings, curve: &ScanCurve) -> Option<Bounds> {
     let v_e = curve.v_e_hartree.value;
     let limit = to_per_cm(curve.limit_hartree() - v_e);
     let highest = findings.levels.last().map_or(0.0, |l| l.energy_per_cm);

@@ -141,8 +141,14 @@ impl App {
             Effect::ReadBytes(problem) => self.files.read_again(problem),
             Effect::Write { product, path, overwrite } => {
                 if let Some(findings) = super::extras::with_resampled(&self.state) {
-                    let paper = Paper { bounds: self.state.bounds(), ..Paper::default() };
+                    let paper = self.paper();
                     self.files.write(product, path, findings, paper, overwrite);
+                }
+            }
+            Effect::CopyPicture => {
+                if let Some(study) = self.state.study() {
+                    let paper = self.paper();
+                    self.files.paint(Arc::clone(&study.findings), paper);
                 }
             }
             Effect::Stop => self.worker.stop(),
@@ -166,8 +172,24 @@ impl App {
         }
     }
 
+    /// The paper that shows the plot as it is seen.
+    fn paper(&self) -> Paper {
+        let j = self.state.rotation().map_or(0, |(levels, _)| levels.j);
+        Paper { bounds: self.state.bounds(), j, ..Paper::default() }
+    }
+
     fn take_done(&mut self, done: Done, ctx: &egui::Context) {
         match done {
+            Done::Painted(result) => {
+                let (text, failure) = match result {
+                    Ok(image) => {
+                        ctx.copy_image(image);
+                        ("Picture copied.".to_owned(), false)
+                    }
+                    Err(why) => (format!("The picture was not copied: {why}."), true),
+                };
+                apply::take_written(if failure { Err(text) } else { Ok(text) }, &mut self.state);
+            }
             Done::Scan(loaded) => apply::take_scan(loaded, &mut self.state),
             Done::ScanAsBefore(loaded) => {
                 let name = loaded.scan.file_name.clone();

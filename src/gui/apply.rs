@@ -6,7 +6,9 @@ use super::product::Product;
 use super::reading::{self, ReadingCommand, ReadingEffect};
 pub use super::saving::*;
 use super::session::Work;
-use super::state::{CurveKey, LoadedScan, Message, Preset, Problem, Resampling, Search, State, Strip, Zoom};
+use super::state::{
+    CurveKey, LoadedScan, Message, Page, Preset, Problem, Resampling, Search, State, Strip, Zoom,
+};
 pub use super::take::*;
 use crate::export::compare::Quantity;
 use crate::export::parameters;
@@ -55,6 +57,8 @@ pub enum Effect {
     },
     /// Put text on the clipboard.
     Copy(String),
+    /// Put the picture as it is seen on the clipboard.
+    CopyPicture,
     /// What the program remembers has changed.
     Prefer,
     /// Resample the residuals of the fits shown.
@@ -161,12 +165,14 @@ pub fn apply(command: Command, state: &mut State) -> Vec<Effect> {
                 return vec![Effect::Copy(report)];
             }
         }
-        Command::CopyConstants => {
-            if let Some(study) = state.study() {
-                let text = super::panels::constants_text(&study.findings);
-                state.view.message = Some(Message::told("Constants copied."));
-                return vec![Effect::Copy(text)];
-            }
+        Command::CopyPicture => return vec![Effect::CopyPicture],
+        Command::CopyPage(form) => {
+            let name = state.view.page.name();
+            let text = super::sheets::page_text(state, form);
+            let told =
+                if text.is_some() { format!("{name} copied.") } else { format!("{name} has no table.") };
+            state.view.message = Some(Message::told(told));
+            return text.map(Effect::Copy).into_iter().collect();
         }
         Command::CopyComparison(form) => {
             let text = super::panels::comparison_text(state, form);
@@ -296,6 +302,21 @@ fn change_document(command: &Command, state: &mut State) -> bool {
                     s.interpolation.asymptote = *energy
                 });
             }
+        }
+        Command::SetLambda(lambda) => {
+            let lambda = (*lambda).min(crate::settings::HIGHEST_LAMBDA);
+            edit(state, "change Λ", true, |s| s.levels.lambda = lambda);
+        }
+        Command::SetRotation(all) => {
+            if all.iter().all(|j| *j <= crate::settings::HIGHEST_J) {
+                edit(state, "choose the J of the study", false, |s| s.levels.rotation.clone_from(all));
+            }
+        }
+        Command::SetTailSensitivity(on) => {
+            edit(state, "levels with moved tails", false, |s| s.levels.tail_sensitivity = *on);
+        }
+        Command::SetIsotopologues(pairs) => {
+            edit(state, "choose isotopes", false, |s| s.isotopologues.clone_from(pairs));
         }
         Command::SetDegree(degree) => edit(state, "change the degree", false, |s| {
             for request in s.fits.requests.iter_mut().filter(|r| r.family == Family::Polynomial) {
@@ -437,6 +458,13 @@ fn change_view(command: Command, state: &mut State) {
         }
         Command::KeepLevel(v, keep) => keep_level(v, keep, state),
         Command::StepLevel(step) => step_level(step, state),
+        Command::ShowJ(j) => show_j(j, state),
+        Command::StepJ(step) => show_j(next_j(step, state), state),
+        Command::ShowLevelsPart(part) => {
+            view.page = Page::Levels;
+            view.levels_part = part;
+            view.comparison.open = false;
+        }
         Command::PointAt(r) => point_at(r, state),
         Command::SelectPoint(row) => select_point(row, state),
         Command::NameAtoms => {
@@ -508,13 +536,29 @@ fn keep_level(v: usize, keep: bool, state: &mut State) {
 }
 
 fn step_level(step: i32, state: &mut State) {
-    let Some(count) = state.study().map(|s| s.findings.levels.len()).filter(|n| *n > 0) else { return };
-    let next = match state.view.pinned_level {
-        None => 0,
-        Some(v) => v.saturating_add_signed(step as isize).min(count - 1),
-    };
-    state.view.pinned_level = Some(next);
+    let levels: Vec<usize> = state.levels_shown().iter().map(|l| l.v).collect();
+    let here = state.view.pinned_level.map(|v| levels.partition_point(|l| *l < v));
+    let next = here.map_or(0, |i| i.saturating_add_signed(step as isize)).min(levels.len().saturating_sub(1));
+    if let Some(v) = levels.get(next) {
+        state.view.pinned_level = Some(*v);
+        state.view.hovered_level = None;
+    }
+}
+
+/// Looks at another J. J below Λ does not exist; what is between is passed over.
+fn show_j(j: u32, state: &mut State) {
+    state.view.j = j.min(crate::settings::HIGHEST_J);
     state.view.hovered_level = None;
+}
+
+fn next_j(step: i32, state: &State) -> u32 {
+    let lambda = state.document.focused().map_or(0, |(_, _, s)| s.levels.lambda);
+    let next = state.view.j.saturating_add_signed(step);
+    match (next > 0 && next < lambda, step > 0) {
+        (false, _) => next,
+        (true, true) => lambda,
+        (true, false) => 0,
+    }
 }
 
 /// Looks at a row of the scan, on its page and on the plot.

@@ -5,7 +5,8 @@ use super::plot::GAUGE_MENU;
 use super::product::Product;
 use super::reading::ReadingCommand;
 use super::samples::SAMPLES;
-use super::state::{Page, Preset, Problem, State, Strip};
+use super::state::{LevelsPart, Page, Preset, Problem, State, Strip};
+use crate::export::compare::Form;
 use crate::figure::GaugeMeasure;
 
 /// Where a command is found.
@@ -57,8 +58,12 @@ impl Place {
             Self::Gauge => "gauge under the picture",
             Self::Pages => "pages on the right",
             Self::Page(page) => match page {
+                Page::Scan => "page Scan",
                 Page::Constants => "page Constants",
-                _ => "page on the right",
+                Page::Levels => "page Levels",
+                Page::Fits => "page Fits",
+                Page::Reach => "page Reach",
+                Page::Thermal => "page Thermal",
             },
             Self::Notices => "notices",
             Self::Now => "shown when needed",
@@ -110,6 +115,9 @@ pub fn view_menu(state: &State) -> Vec<Command> {
         Command::StepLevel(1),
         Command::StepLevel(-1),
         Command::PinLevel(None),
+        Command::StepJ(1),
+        Command::StepJ(-1),
+        Command::ShowJ(0),
         Command::ShowLeft(panels.left == Some(false)),
         Command::ShowRight(panels.right == Some(false)),
         Command::SizeInterface(InterfaceSize::Larger),
@@ -141,6 +149,7 @@ pub fn entries(state: &State) -> Vec<Entry> {
     };
     put(Place::Bar, vec![Command::Open, Command::Undo, Command::Redo]);
     put(Place::Export, Product::ALL.map(Command::Export).to_vec());
+    put(Place::Export, vec![Command::CopyPicture]);
     put(Place::Bar, vec![Command::SetDark(true), Command::SetDark(false)]);
     put(Place::File, FILE_MENU.to_vec());
     put(Place::Samples, (0..SAMPLES.len()).map(Command::OpenSample).collect());
@@ -154,7 +163,8 @@ pub fn entries(state: &State) -> Vec<Entry> {
     put(Place::Plot, vec![Command::ToggleWhy]);
     put(Place::Left, vec![Command::ShowComparison(true)]);
     put(Place::Pages, Page::ALL.map(Command::ShowPage).to_vec());
-    put(Place::Page(Page::Constants), vec![Command::CopyConstants]);
+    put(Place::Pages, Form::ALL.map(|(_, form)| Command::CopyPage(form)).to_vec());
+    put(Place::Page(Page::Levels), LevelsPart::ALL.map(Command::ShowLevelsPart).to_vec());
     put(Place::Left, vec![Command::ResetWindow]);
     if let Some((key, ..)) = state.document.focused() {
         put(Place::Left, vec![Command::ShowColumns(Some(key.scan))]);

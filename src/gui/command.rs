@@ -4,7 +4,7 @@ use super::densities::DensityView;
 use super::product::Product;
 use super::reading::ReadingCommand;
 use super::state::{
-    AxisView, CurveKey, FitsPart, Page, Preset, Reference, Resampling, State, Strip, ThermalView,
+    AxisView, CurveKey, FitsPart, LevelsPart, Page, Preset, Reference, Resampling, State, Strip, ThermalView,
 };
 use crate::export::compare::{Form, Quantity};
 use crate::export::parameters::ParameterUnits;
@@ -176,6 +176,20 @@ pub enum Command {
     KeepLevel(usize, bool),
     /// Walk up (+1) or down (-1) the levels.
     StepLevel(i32),
+    /// Show the effective potential and the levels of this J; 0: without rotation.
+    ShowJ(u32),
+    /// The next (+1) or the previous (-1) J.
+    StepJ(i32),
+    /// Λ of the electronic state.
+    SetLambda(u32),
+    /// The J whose levels the study lists.
+    SetRotation(Vec<u32>),
+    /// Whether the levels are computed again with moved tails.
+    SetTailSensitivity(bool),
+    /// The other isotopes solved on the same curve.
+    SetIsotopologues(Vec<[AtomChoice; 2]>),
+    /// Show a part of the page of levels.
+    ShowLevelsPart(LevelsPart),
     /// Point at a bond length (angstrom) on the plot.
     PointAt(f64),
     /// Show a page of results.
@@ -263,8 +277,10 @@ pub enum Command {
     ComputeAgain,
     /// Copy the report of a computation that broke off.
     CopyReport,
-    /// Copy the constants as text.
-    CopyConstants,
+    /// Copy the picture as it is seen.
+    CopyPicture,
+    /// Copy the tables of the page in front.
+    CopyPage(Form),
     /// Change the text of the path window.
     TypePath(String),
     /// Close the path window.
@@ -318,6 +334,7 @@ impl Command {
             Self::SaveStudy,
             Self::Export(Product::Findings),
             Self::Export(Product::Report),
+            Self::CopyPicture,
             Self::Redo,
             Self::Undo,
             Self::ShowSearch(true),
@@ -329,6 +346,7 @@ impl Command {
             Self::SizeInterface(InterfaceSize::Smaller),
             Self::SizeInterface(InterfaceSize::Usual),
         ];
+        commands.extend([Self::StepJ(1), Self::StepJ(-1)]);
         commands.extend(Preset::ALL.map(Self::Zoom));
         commands.extend(Page::ALL.map(Self::ShowPage));
         commands.push(Self::ShowComparison(true));
@@ -365,10 +383,9 @@ impl Command {
             Self::ShowGauge(GaugeMeasure::EnergyPerCm) => "energy in its unit".into(),
             Self::ShowGauge(GaugeMeasure::ForcePercent) => "force in percent".into(),
             Self::ShowGauge(GaugeMeasure::ForcePerCmAngstrom) => "force in its unit".into(),
-            Self::CopyConstants => "Copy as text".into(),
             Self::ShowComparison(true) => "Compare …".into(),
             Self::ShowComparison(false) => "Picture".into(),
-            Self::CopyComparison(form) => {
+            Self::CopyComparison(form) | Self::CopyPage(form) => {
                 let name = Form::ALL.iter().find(|(_, f)| f == form).map_or("", |(name, _)| name);
                 format!("Copy as {name}")
             }
@@ -399,6 +416,12 @@ impl Command {
             Self::PinLevel(None) => "Let go of the level".into(),
             Self::KeepLevel(v, true) => format!("Keep v = {v} shown"),
             Self::KeepLevel(v, false) => format!("Let go of v = {v}"),
+            Self::ShowJ(0) => "without rotation".into(),
+            Self::StepJ(step) if *step > 0 => "Next J".into(),
+            Self::StepJ(_) => "Previous J".into(),
+            Self::SetTailSensitivity(true) => "Move the tail".into(),
+            Self::SetTailSensitivity(false) => "Leave the tail".into(),
+            Self::ShowLevelsPart(part) => part.name().into(),
             Self::ShowLeft(true) => "Open the left panel".into(),
             Self::ShowLeft(false) => "Fold the left panel".into(),
             Self::ShowRight(true) => "Open the right panel".into(),
@@ -426,11 +449,18 @@ impl Command {
             Self::ShowPage(page) => format!("Page {}", page.name()),
             Self::ShowStrip(strip) => format!("Strip {}", strip.name()),
             Self::ShowGauge(_) => format!("Gauge of the {}", self.label()),
+            Self::ShowJ(0) => "Levels without rotation (J = 0)".into(),
+            Self::ShowLevelsPart(part) => format!("Levels: {}", part.name()),
+            Self::SetTailSensitivity(true) => "Levels with moved tails (tail sensitivity)".into(),
+            Self::SetTailSensitivity(false) => "No levels with moved tails".into(),
             Self::SetDark(true) => "Dark theme".into(),
             Self::SetDark(false) => "Light theme".into(),
             Self::ResetWindow => "Default fit window".into(),
             Self::ToggleWhy => "Why: the reasons of the sentence".into(),
-            Self::CopyConstants => "Copy constants as text".into(),
+            Self::CopyPage(form) => {
+                let name = Form::ALL.iter().find(|(_, f)| f == form).map_or("", |(name, _)| name);
+                format!("Copy the page as {name}")
+            }
             Self::ForgetRecent => "Forget the files used last".into(),
             Self::OpenSample(_) => format!("Sample {}", self.label()),
             Self::OpenPath(_) => format!("Open {}", self.label()),
@@ -485,6 +515,20 @@ impl Command {
                 "Its density stays on the plot while others are looked at. Shift and a click do the same."
             }
             Self::KeepLevel(_, false) => "Its density no longer stays on the plot.",
+            Self::ShowJ(_) => "Show curve and levels of J = 0 again.",
+            Self::StepJ(_) => "Effective potential V(r) + ℏ²[J(J + 1) − Λ²]/(2μr²) and levels of another J.",
+            Self::SetTailSensitivity(true) => {
+                "Solve again with C_n and the limit moved, and see how many levels stay."
+            }
+            Self::SetTailSensitivity(false) => "No longer solve with moved tails.",
+            Self::ShowLevelsPart(LevelsPart::Table) => "The levels of the J shown, quasi-bound ones too.",
+            Self::ShowLevelsPart(LevelsPart::Rotation) => {
+                "E(v, J) of several J and the Dunham coefficients Y_kl fitted to them."
+            }
+            Self::ShowLevelsPart(LevelsPart::Limit) => {
+                "Spacings up to dissociation (Birge and Sponer), how the levels end, what leans on the tail."
+            }
+            Self::ShowLevelsPart(LevelsPart::Isotopes) => "Levels of other isotopes on the same curve.",
             Self::ShowLeft(_) => "Curves, masses, fit window, tolerance.",
             Self::ShowRight(_) => "The pages of results.",
             Self::SizeInterface(_) => "Text, lines and controls together.",
@@ -530,7 +574,12 @@ impl Command {
             }
             Self::ShowComparison(false) => "Show the picture of the curve in focus again.",
             Self::CopyComparison(_) => "Copy the table as it is shown.",
-            Self::CopyConstants => "Copy constants, energies and masses to the clipboard.",
+            Self::CopyPicture => {
+                "Put the plot as it is seen on the clipboard, on white, for a text or a slide."
+            }
+            Self::CopyPage(Form::Text) => "Copy the tables of this page, tab-separated, with their units.",
+            Self::CopyPage(Form::Csv) => "Copy the tables of this page as CSV, numbers with all digits.",
+            Self::CopyPage(Form::Latex) => "Copy the tables of this page as LaTeX.",
             Self::ShowFitsPart(FitsPart::Parameters) => "Parameters of the fits with their errors.",
             Self::ShowFitsPart(FitsPart::Windows) => {
                 "The fits over all windows: where their results stay the same."
@@ -565,6 +614,7 @@ impl Command {
             Self::Export(Product::Findings) => with_command(Key::E),
             Self::Export(Product::Report) => with_command(Key::R),
             Self::Reading(ReadingCommand::AskLogs) => with_command(Key::L),
+            Self::CopyPicture => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::C),
             Self::SaveStudy => with_command(Key::S),
             Self::SaveStudyAs => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::S),
             Self::ShowSearch(true) => with_command(Key::K),
@@ -578,6 +628,10 @@ impl Command {
             Self::StepLevel(1) => KeyboardShortcut::new(Modifiers::NONE, Key::ArrowUp),
             Self::StepLevel(-1) => KeyboardShortcut::new(Modifiers::NONE, Key::ArrowDown),
             Self::PinLevel(None) => KeyboardShortcut::new(Modifiers::NONE, Key::Escape),
+            Self::StepJ(step) => {
+                let key = if *step > 0 { Key::ArrowUp } else { Key::ArrowDown };
+                KeyboardShortcut::new(Modifiers::ALT, key)
+            }
             Self::Undo => with_command(Key::Z),
             Self::Redo => KeyboardShortcut::new(Modifiers::COMMAND.plus(Modifiers::SHIFT), Key::Z),
             Self::ShowComparison(true) => KeyboardShortcut::new(Modifiers::ALT, Key::Num7),
@@ -615,7 +669,7 @@ impl Command {
         match self {
             Self::Undo => need(state.history.undo_name().is_some(), "Nothing to take back."),
             Self::Redo => need(state.history.redo_name().is_some(), "Nothing was taken back."),
-            Self::Export(_) | Self::ExportTo { .. } => {
+            Self::Export(_) | Self::ExportTo { .. } | Self::CopyPicture => {
                 need(study.is_some(), "No findings yet.")?;
                 need(!state.is_stale(), "The findings are being computed.")
             }
@@ -653,7 +707,7 @@ impl Command {
             }
             Self::ComputeAgain => need(state.is_stopped(), "Nothing was stopped."),
             Self::CopyReport => need(state.report().is_some(), "Nothing broke off."),
-            Self::CopyConstants => need(study.is_some(), "No constants yet."),
+            Self::CopyPage(_) => need(study.is_some(), "No results yet."),
             Self::CopyParameters | Self::CopyParametersLatex => need(
                 study.is_some_and(|s| s.findings.fits.iter().any(|f| f.result.is_ok())),
                 "No fit succeeded.",
@@ -667,10 +721,7 @@ impl Command {
                 )
             }
             Self::StopResampling => need(matches!(state.resampling, Resampling::Running(_)), "Nothing runs."),
-            Self::Zoom(preset) => need(
-                study.is_some_and(|s| preset.bounds(&s.pictures).is_some()),
-                "This study has no such region.",
-            ),
+            Self::Zoom(preset) => need(state.region(*preset).is_some(), "This study has no such region."),
             Self::CloseScan => need(state.document.focus.is_some(), "No scan is open."),
             Self::ShowComparison(_) | Self::CopyComparison(_) => {
                 need(!state.document.settings.is_empty(), "No curve is open.")
@@ -681,6 +732,14 @@ impl Command {
             ),
             Self::StepLevel(_) => {
                 need(study.is_some_and(|s| !s.findings.levels.is_empty()), "There are no levels.")
+            }
+            Self::ShowJ(0) => need(state.view.j > 0, "There is no rotation shown."),
+            Self::StepJ(step) => {
+                need(study.is_some_and(|s| !s.findings.levels.is_empty()), "There are no levels.")?;
+                need(*step > 0 || state.view.j > 0, "This is the lowest J.")
+            }
+            Self::SetTailSensitivity(_) | Self::SetRotation(_) | Self::SetIsotopologues(_) => {
+                need(state.document.focus.is_some(), "No scan is open.")
             }
             _ => Ok(()),
         }

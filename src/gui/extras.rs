@@ -1,11 +1,12 @@
-//! Work beside the study: the fits over all windows, and the errors by resampling, which can be stopped.
+//! Work beside the study: the fits over all windows, the levels of the J looked at, and the errors by resampling,
+//! which can be stopped.
 
 use super::compute::{Ticket, Worker};
 use super::state::State;
-use crate::figure::WindowPicture;
+use crate::figure::{RotationPicture, WindowPicture, rotation_picture};
 use crate::findings::{Findings, FitBootstrap};
 use crate::fit::BootstrapSettings;
-use crate::study::{bootstrap_fit, study_windows, take_bootstraps};
+use crate::study::{RotatingLevels, bootstrap_fit, rotating_levels, study_windows, take_bootstraps};
 use std::sync::Arc;
 use std::sync::atomic::{AtomicBool, AtomicUsize, Ordering};
 
@@ -43,6 +44,17 @@ pub struct Windows {
     pub findings: Arc<Findings>,
     /// What they look like; none where no window could be fitted.
     pub picture: Option<Arc<WindowPicture>>,
+}
+
+/// The levels of one J of one study.
+#[derive(Clone, Debug)]
+pub struct Rotation {
+    /// The study.
+    pub findings: Arc<Findings>,
+    /// The J.
+    pub j: u32,
+    /// The levels and what they look like; none where this J has none.
+    pub found: Option<Arc<(RotatingLevels, RotationPicture)>>,
 }
 
 /// Errors by resampling, one entry a fit: none where there is no fit, else the errors or why there are none.
@@ -84,10 +96,15 @@ struct ResamplingJob {
     progress: Arc<Steps>,
 }
 
-/// The two workers.
+/// A study and a J of it.
+type OfJ = (Arc<Findings>, u32);
+
+/// The workers.
 pub struct Extras {
     windows: Worker<Arc<Findings>, Option<WindowPicture>>,
     asked: Option<Arc<Findings>>,
+    rotation: Worker<OfJ, Option<(RotatingLevels, RotationPicture)>>,
+    asked_j: Option<OfJ>,
     resampling: Worker<ResamplingJob, Option<Resampled>>,
 }
 
@@ -97,6 +114,12 @@ fn windows_of(findings: &Arc<Findings>) -> Option<WindowPicture> {
     }
     let study = study_windows(findings, &Default::default(), &mut |_, _| true).ok()??;
     WindowPicture::of_study(&study, WindowPicture::half_width_in_force_angstrom(findings))
+}
+
+fn rotation_of((findings, j): &OfJ) -> Option<(RotatingLevels, RotationPicture)> {
+    let levels = rotating_levels(findings, *j)?;
+    let picture = rotation_picture(findings, &levels)?;
+    Some((levels, picture))
 }
 
 /// None when it was stopped.
@@ -125,22 +148,32 @@ fn resample(job: &ResamplingJob, wake: &dyn Fn()) -> Option<Resampled> {
 impl Extras {
     /// Workers of their own, or, `inline`, on the thread that asks; `wake` is called when there is something new.
     pub fn new(wake: impl Fn() + Clone + Send + Sync + 'static, inline: bool) -> Self {
-        let (wake_windows, wake_done, wake_steps) = (wake.clone(), wake.clone(), wake);
+        let (wake_windows, wake_rotation, wake_done, wake_steps) =
+            (wake.clone(), wake.clone(), wake.clone(), wake);
         let job = move |job: &ResamplingJob, _: &Ticket| resample(job, &wake_steps);
         let windows = |findings: &Arc<Findings>, _: &Ticket| windows_of(findings);
+        let rotation = |of: &OfJ, _: &Ticket| rotation_of(of);
         if inline {
-            return Self { windows: Worker::inline(windows), asked: None, resampling: Worker::inline(job) };
+            return Self {
+                windows: Worker::inline(windows),
+                asked: None,
+                rotation: Worker::inline(rotation),
+                asked_j: None,
+                resampling: Worker::inline(job),
+            };
         }
         Self {
             windows: Worker::spawn(wake_windows, windows),
             asked: None,
+            rotation: Worker::spawn(wake_rotation, rotation),
+            asked_j: None,
             resampling: Worker::spawn(wake_done, job),
         }
     }
 
     /// Whether something is still to come.
     pub fn is_working(&self) -> bool {
-        self.windows.is_waiting() || self.resampling.is_waiting()
+        self.windows.is_waiting() || self.rotation.is_waiting() || self.resampling.is_waiting()
     }
 
     /// Starts resampling the fits shown.
@@ -166,6 +199,7 @@ impl Extras {
             let picture = answer.result.ok().flatten().map(Arc::new);
             state.windows = Some(Windows { findings: answer.input, picture });
         }
+        self.exchange_rotation(state);
         if let Some(answer) = self.resampling.poll() {
             state.resampling = match answer.result {
                 Ok(Some(found)) => {
@@ -176,6 +210,25 @@ impl Extras {
                     "The resampling broke off: {panic}. This is a fault of the program; your scan and settings are unharmed."
                 )),
             };
+        }
+    }
+
+    /// Asks for the levels of the J looked at and takes what has come.
+    fn exchange_rotation(&mut self, state: &mut State) {
+        let wanted =
+            state.study().filter(|_| state.view.j > 0).map(|s| (Arc::clone(&s.findings), state.view.j));
+        if let Some(wanted) = wanted {
+            let is_asked = |asked: &OfJ| asked.1 == wanted.1 && Arc::ptr_eq(&asked.0, &wanted.0);
+            if !self.asked_j.as_ref().is_some_and(is_asked) {
+                self.asked_j = Some((Arc::clone(&wanted.0), wanted.1));
+                self.rotation.send(wanted);
+            }
+        }
+        if let Some(answer) = self.rotation.poll() {
+            let (findings, j) = answer.input;
+            // A panic leaves nothing to show; the study itself stands.
+            let found = answer.result.ok().flatten().map(Arc::new);
+            state.rotation = Some(Rotation { findings, j, found });
         }
     }
 }

@@ -10,7 +10,7 @@ use super::samples::SAMPLES;
 use super::saving::SavedStudy;
 use super::session::{self, Opened, Work, sha256_of};
 use super::state::{Asks, Leftover, LoadedScan, PathPurpose, Problem};
-use crate::figure::drawing::Paper;
+use crate::figure::drawing::{Paper, Subject, drawing};
 use crate::files::{Replace, WriteError};
 use crate::findings::Findings;
 use crate::scan::error::ScanError;
@@ -25,6 +25,8 @@ use std::time::{Duration, Instant};
 
 /// A dialog that comes back without a choice sooner than this was never shown.
 const NO_DIALOG: Duration = Duration::from_millis(300);
+/// Sharp on a slide, and small enough for every clipboard.
+const CLIPBOARD_DOTS_PER_INCH: f64 = 220.0;
 /// No more files of a folder are read.
 pub(super) const MOST_FILES: usize = 1000;
 /// Larger files are refused before they are read.
@@ -59,6 +61,8 @@ pub enum Done {
     Entries(Vec<String>),
     /// A file was written, or why not.
     Written(Result<String, String>),
+    /// A picture for the clipboard was painted, or why not.
+    Painted(Result<eframe::egui::ColorImage, String>),
     /// A study file was read.
     Study(Box<Opened>),
     /// Unsaved work of an earlier window was read, or why not.
@@ -241,6 +245,14 @@ impl Files {
         overwrite: bool,
     ) {
         self.run(move || Done::Written(product.write(&findings, &path, &paper, overwrite)));
+    }
+
+    /// Paints the picture for the clipboard.
+    pub fn paint(&mut self, findings: Arc<Findings>, paper: Paper) {
+        self.run(move || {
+            let drawing = drawing(&findings, Subject::Curve, &paper).map_err(|e| e.to_string());
+            Done::Painted(drawing.and_then(|d| super::paper::drawing_to_image(&d, CLIPBOARD_DOTS_PER_INCH)))
+        });
     }
 
     /// Saves a study; replaces only the file whose check sum is known, unless told otherwise.

@@ -43,6 +43,7 @@ pub struct Look {
     pub outside: Color32,
     pub level: Color32,
     pub accent: Color32,
+    pub rotation: Color32,
     pub stop: Color32,
 }
 
@@ -75,6 +76,7 @@ const fn shared(of: &'static Palette, own: Own) -> Look {
         outside: color(of.outside),
         level: color(of.level),
         accent: color(of.accent),
+        rotation: color(of.rotation),
     }
 }
 
@@ -230,7 +232,15 @@ mod tests {
                         contrast(text, ground)
                     );
                 }
-                for line in [look.scan, look.morse, look.polynomial, look.reach, look.outside, look.level] {
+                for line in [
+                    look.scan,
+                    look.morse,
+                    look.polynomial,
+                    look.reach,
+                    look.outside,
+                    look.level,
+                    look.rotation,
+                ] {
                     assert!(
                         contrast(line, ground) >= 3.0,
                         "{line:?} on {ground:?}: {}",
@@ -240,7 +250,7 @@ mod tests {
             }
             // Figures in the colour of a model stand on panels and cards only.
             for ground in [look.panel, look.raised] {
-                for text in [look.harmonic, look.morse, look.reach] {
+                for text in [look.harmonic, look.morse, look.reach, look.rotation] {
                     assert!(
                         contrast(text, ground) >= 4.5,
                         "{text:?} on {ground:?}: {}",

@@ -1,7 +1,7 @@
 //! Pictures for paper as PNG: the drawing turned into egui's shapes and painted in memory.
 
 use super::fonts::install_fonts;
-use super::painter::{Canvas, MAX_SIDE_PX, render_offscreen};
+use super::painter::{Canvas, MAX_SIDE_PX, Picture, render_offscreen};
 use super::program::Program;
 use crate::figure::drawing::{Anchor, Drawing, Item, Rgb, Stroke};
 use eframe::egui::{self, Color32, Mesh, Pos2, Shape};
@@ -14,6 +14,20 @@ const PT_PER_INCH: f64 = 72.0;
 /// # Errors
 /// A sentence when it would be larger than the painter can hold, or could not be encoded.
 pub fn drawing_to_png(drawing: &Drawing, dots_per_inch: f64) -> Result<Vec<u8>, String> {
+    let picture = painted(drawing, dots_per_inch)?;
+    picture.to_png().map_err(|e| format!("the picture could not be encoded ({e})"))
+}
+
+/// The picture as pixels, for the clipboard.
+///
+/// # Errors
+/// A sentence when it would be larger than the painter can hold.
+pub fn drawing_to_image(drawing: &Drawing, dots_per_inch: f64) -> Result<egui::ColorImage, String> {
+    let picture = painted(drawing, dots_per_inch)?;
+    Ok(egui::ColorImage::from_rgba_unmultiplied(picture.size_px(), &picture.to_rgba8()))
+}
+
+fn painted(drawing: &Drawing, dots_per_inch: f64) -> Result<Picture, String> {
     let scale = dots_per_inch / PT_PER_INCH;
     let size_px = drawing.size_pt.map(|side| (side * scale).round().max(1.0) as usize);
     if size_px.iter().any(|side| *side > MAX_SIDE_PX) {
@@ -28,7 +42,7 @@ pub fn drawing_to_png(drawing: &Drawing, dots_per_inch: f64) -> Result<Vec<u8>, 
         install_fonts(ctx);
         Sheet { drawing: drawing.clone() }
     };
-    render_offscreen(make, canvas).to_png().map_err(|e| format!("the picture could not be encoded ({e})"))
+    Ok(render_offscreen(make, canvas))
 }
 
 /// A program that shows one drawing.

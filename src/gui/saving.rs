@@ -2,9 +2,9 @@
 
 use super::apply::{Effect, forget_level};
 use super::command::Command;
-use super::session::{Opened, Work, looked_at};
+use super::seen::look_at;
+use super::session::{Opened, Work};
 use super::state::{CurveKey, Document, KeptStudy, Leftover, Message, State};
-use crate::figure::GaugeMeasure;
 use crate::settings::Settings;
 use crate::study_file::EXTENSION;
 use std::path::PathBuf;
@@ -131,17 +131,8 @@ pub fn take_opened(opened: Opened, state: &mut State) {
     }
     document.focus = document.focus.or_else(|| document.settings.keys().next().copied());
     state.document = document;
-    let (page, strip, zoom) = looked_at(&opened.view);
-    state.view.page = page.unwrap_or(state.view.page);
-    state.view.strip = strip.unwrap_or(state.view.strip);
-    let gauge = opened.view.gauge.as_deref().and_then(GaugeMeasure::of_name);
-    state.view.gauge = gauge.unwrap_or(state.view.gauge);
-    if let (Some(key), Some(zoom)) = (state.document.focus, zoom) {
-        state.view.zoom.insert(key, zoom);
-    }
     forget_level(state);
-    state.view.pinned_level = opened.view.level;
-    state.view.kept_levels = opened.view.levels.iter().copied().collect();
+    look_at(&opened.view, state);
     state.view.problem = None;
     state.view.changed.extend(changed.iter().copied());
     if let Some((path, sha256)) = opened.kept {

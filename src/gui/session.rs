@@ -4,9 +4,9 @@ use super::files::{Done, file_name_of, understand};
 use super::log_files::{log_set, scan_of_logs};
 use super::reading::LogSet;
 use super::samples::SAMPLES;
-use super::state::{Document, LoadedScan, Page, Preset, State, Strip, Zoom};
+use super::seen::{symbol, view_of};
+use super::state::{Document, LoadedScan, State};
 use crate::export::compare::Quantity;
-use crate::figure::geometry::Bounds;
 use crate::study_file::{FORMAT, Focus, Kept, StudyCurve, StudyFile, StudyLogs, StudyScan, VERSION, View};
 use sha2::{Digest as _, Sha256};
 use std::collections::BTreeMap;
@@ -111,31 +111,9 @@ impl Work {
     }
 }
 
-/// Symbol and unit of a quantity.
-fn symbol(quantity: Quantity) -> String {
-    format!("{} / {}", quantity.name(), quantity.unit())
-}
-
 fn published_of(document: &Document) -> BTreeMap<String, f64> {
     let all = Quantity::ALL.into_iter().zip(document.published);
     all.filter_map(|(q, v)| Some((symbol(q), v?))).collect()
-}
-
-fn view_of(state: &State) -> View {
-    let view = &state.view;
-    let (region, bounds) = match state.zoom() {
-        Zoom::Preset(preset) => (Some(preset.name().to_owned()), None),
-        Zoom::Free(b) => (None, Some([b.x.0, b.x.1, b.y.0, b.y.1])),
-    };
-    View {
-        page: Some(view.page.name().to_owned()),
-        strip: Some(view.strip.name().to_owned()),
-        gauge: Some(view.gauge.name().to_owned()),
-        level: view.pinned_level,
-        levels: view.kept_levels.iter().copied().collect(),
-        region,
-        bounds,
-    }
 }
 
 fn kept_of(state: &State) -> Option<Kept> {
@@ -178,12 +156,22 @@ impl Opened {
                     if !is_current {
                         opened.changed.push(opened.scans.len());
                     }
+                    // Scans that are lost shift the numbers of those after them.
+                    let reference = opened.view.comparison.as_mut().and_then(|c| c.reference.as_mut());
+                    if let Some(reference) = reference.filter(|r| r.scan == number) {
+                        reference.scan = opened.scans.len();
+                    }
                     if let Some(focus) = focus {
                         opened.focus = Some(Focus { scan: opened.scans.len(), curve: focus.curve.clone() });
                     }
                     opened.scans.push((loaded, scan.curves));
                 }
-                Err(reason) => opened.lost.push(format!("{}: {reason}", scan.file_name)),
+                Err(reason) => {
+                    if let Some(compared) = &mut opened.view.comparison {
+                        compared.reference = compared.reference.take().filter(|r| r.scan != number);
+                    }
+                    opened.lost.push(format!("{}: {reason}", scan.file_name));
+                }
             }
         }
         opened
@@ -253,13 +241,4 @@ pub fn open(path: &Path, bytes: &[u8]) -> Result<Opened, String> {
     opened.kept = Some((path.to_owned(), Some(sha256_of(bytes))));
     opened.modified = std::fs::metadata(path).and_then(|d| d.modified()).ok();
     Ok(opened)
-}
-
-/// The page, strip and region that a file names; words not known are passed over.
-pub(super) fn looked_at(view: &View) -> (Option<Page>, Option<Strip>, Option<Zoom>) {
-    let page = Page::ALL.into_iter().find(|p| Some(p.name()) == view.page.as_deref());
-    let strip = Strip::ALL.into_iter().find(|s| Some(s.name()) == view.strip.as_deref());
-    let region = Preset::ALL.into_iter().find(|p| Some(p.name()) == view.region.as_deref());
-    let free = view.bounds.map(|[a, b, c, d]| Bounds { x: (a, b), y: (c, d) }).filter(Bounds::is_valid);
-    (page, strip, free.map(Zoom::Free).or(region.map(Zoom::Preset)))
 }

@@ -2,22 +2,25 @@
 
 use super::command::Command;
 use super::densities::DensityView;
-pub use super::extras::{Resampling, Windows};
+pub use super::extras::{Resampling, Rotation, Windows};
 use super::history::History;
 use super::meaning::Meaning;
 use super::preferences::Preferences;
 use super::product::Product;
 use super::reading::{LogSet, Reading, ReadingCommand};
-pub use super::view::{AxisView, Comparison, FitsPart, Page, Preset, Reference, Strip, ThermalView, Zoom};
+pub use super::view::{
+    AxisView, Comparison, FitsPart, LevelsPart, Page, Preset, Reference, Strip, ThermalView, Zoom,
+};
 use crate::export::compare::Quantity;
 use crate::export::parameters::ParameterUnits;
 use crate::figure::geometry::Bounds;
-use crate::figure::{GaugeMeasure, Pictures, PlotPoint};
+use crate::figure::{GaugeMeasure, Ladders, LevelPicture, Pictures, PlotPoint, RotationPicture};
 use crate::findings::Findings;
 use crate::fit::Window;
 use crate::scan::Scan;
 use crate::scan::read::Preview;
 use crate::settings::Settings;
+use crate::study::RotatingLevels;
 use std::collections::{BTreeMap, BTreeSet};
 use std::path::PathBuf;
 use std::sync::Arc;
@@ -203,6 +206,10 @@ pub struct ViewState {
     pub page: Page,
     /// The part of the page of fits.
     pub fits_part: FitsPart,
+    /// The part of the page of levels.
+    pub levels_part: LevelsPart,
+    /// The J whose effective potential and levels are shown; 0: without rotation.
+    pub j: u32,
     /// How often residuals are resampled; none: as often as by default.
     pub repeats: Option<usize>,
     /// Units in which parameters are copied.
@@ -385,6 +392,8 @@ pub struct State {
     pub results: BTreeMap<CurveKey, Outcome>,
     /// The fits over all windows, as far as they were looked at.
     pub windows: Option<Windows>,
+    /// The levels of the J looked at.
+    pub rotation: Option<Rotation>,
     /// Errors by resampling.
     pub resampling: Resampling,
     /// The next serial number of a scan.
@@ -482,6 +491,42 @@ impl State {
         same_curve.then(|| (windows, std::sync::Arc::ptr_eq(&study.findings, &windows.findings)))
     }
 
+    /// The levels of the J looked at with what they look like: of the curve in focus, maybe of older settings or of
+    /// the J before.
+    pub fn rotation(&self) -> Option<&(RotatingLevels, RotationPicture)> {
+        if self.view.j == 0 {
+            return None;
+        }
+        let (ours, rotation) = (&self.study()?.findings.source, self.rotation.as_ref()?);
+        let theirs = &rotation.findings.source;
+        let same_curve = ours.sha256 == theirs.sha256 && ours.curve == theirs.curve;
+        rotation.found.as_deref().filter(|_| same_curve)
+    }
+
+    /// The levels on the plot.
+    pub fn levels_shown(&self) -> &[LevelPicture] {
+        match (self.rotation(), self.study()) {
+            (Some((_, picture)), _) => &picture.levels,
+            (None, Some(study)) => &study.pictures.levels,
+            (None, None) => &[],
+        }
+    }
+
+    /// The ladders at the plot.
+    pub fn ladders_shown(&self) -> Option<&Ladders> {
+        self.rotation().map(|(_, picture)| &picture.ladders).or(self.study().map(|s| &s.pictures.ladders))
+    }
+
+    /// A named region, with rotation where that is shown.
+    pub fn region(&self, preset: Preset) -> Option<Bounds> {
+        let turning = self.rotation().and_then(|(_, picture)| match preset {
+            Preset::NearMinimum => picture.near_minimum,
+            Preset::WholeWell => picture.whole_well,
+            Preset::FitWindow | Preset::AllPoints => None,
+        });
+        turning.or_else(|| preset.bounds(&self.study()?.pictures))
+    }
+
     /// The level that the plot brings forward.
     pub fn shown_level(&self) -> Option<usize> {
         self.view.hovered_level.or(self.view.pinned_level)
@@ -510,7 +555,7 @@ impl State {
         let pictures = &self.study()?.pictures;
         match self.zoom() {
             Zoom::Free(bounds) => Some(bounds),
-            Zoom::Preset(preset) => preset.bounds(pictures).or_else(|| pictures.views.first()),
+            Zoom::Preset(preset) => self.region(preset).or_else(|| pictures.views.first()),
         }
     }
 

@@ -120,6 +120,35 @@ impl Default for ThermalView {
     }
 }
 
+/// A part of the page of levels.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub enum LevelsPart {
+    /// The levels of one J.
+    #[default]
+    Table,
+    /// E(v, J) of several J, and the Y_kl fitted to them.
+    Rotation,
+    /// Spacings, limit, tail.
+    Limit,
+    /// Other isotopes on the same curve.
+    Isotopes,
+}
+
+impl LevelsPart {
+    /// All parts in order.
+    pub const ALL: [Self; 4] = [Self::Table, Self::Rotation, Self::Limit, Self::Isotopes];
+
+    /// Its name.
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Table => "One J",
+            Self::Rotation => "All J",
+            Self::Limit => "To the limit",
+            Self::Isotopes => "Isotopes",
+        }
+    }
+}
+
 /// What the strip shows.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
 pub enum Strip {

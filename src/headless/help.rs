@@ -113,7 +113,9 @@ RESULTS
 
 FIGURE
   --what NAME                curve (the default), gauge, residuals, ladders, thermal, window-study (and
-                             asks for that study), comparison
+                             asks for that study), comparison, birge-sponer
+  --show-j J                 the curve or the ladders with the effective potential and the bound and
+                             quasi-bound levels of this J
   --view NAME                near-minimum (the default), whole-well, fit-window, all-points
   --gauge MEASURE            what the gauge measures: energy (%, the default), energy-cm-1, force (%), force-cm-1
   --width-mm 140             width; the height follows

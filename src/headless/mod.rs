@@ -13,7 +13,9 @@ mod recheck;
 mod run_study;
 mod summary;
 
-pub use args::{Command, FigureArgs, RecheckArgs, StudyArgs, UsageError, WindowArgs, parse};
+pub use args::{
+    Command, FigureArgs, RecheckArgs, StudyArgs, UsageError, WindowArgs, parse, parse_with_remarks,
+};
 #[cfg(feature = "gui")]
 pub(crate) use input::Input;
 #[cfg(feature = "gui")]
@@ -24,7 +26,13 @@ use std::process::ExitCode;
 
 /// Entry point of the program.
 pub fn main() -> ExitCode {
-    let status = match parse(std::env::args_os().skip(1)) {
+    let parsed = parse_with_remarks(std::env::args_os().skip(1)).map(|(command, remarks)| {
+        for remark in remarks {
+            eprintln!("parabound: {remark}");
+        }
+        command
+    });
+    let status = match parsed {
         Ok(Command::Help) => print(help::HELP),
         Ok(Command::Version) => print(concat!("parabound ", env!("CARGO_PKG_VERSION"), "\n")),
         Ok(Command::Study(arguments)) => run_study::run(&arguments),

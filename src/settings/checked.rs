@@ -8,9 +8,9 @@ use crate::thermal::ThermalSettings;
 use std::fmt::Display;
 
 /// Highest J, as the command line takes it.
-const HIGHEST_J: u32 = 1_000;
+pub const HIGHEST_J: u32 = 1_000;
 /// Highest Λ.
-const HIGHEST_LAMBDA: u32 = 20;
+pub const HIGHEST_LAMBDA: u32 = 20;
 /// More levels than this no curve of a molecule has.
 const HIGHEST_V: usize = 100_000;
 /// Degrees beyond this make a fit to levels meaningless.

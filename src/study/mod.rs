@@ -35,6 +35,7 @@ use thiserror::Error;
 
 pub use densities::{LevelDensities, level_densities};
 pub use fits::{bootstrap_fit, study_windows, take_bootstraps};
+pub use rotation::{RotatingLevels, rotating_levels};
 
 /// Why settings and scan do not fit together (a wrong name, not a bad curve).
 #[derive(Clone, Debug, PartialEq, Error)]

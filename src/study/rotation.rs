@@ -5,10 +5,42 @@ use crate::findings::{Findings, QuasiBoundLevel};
 use crate::notice::{Code, Notice};
 use crate::parallel::in_halves;
 use crate::potential::curve::ScanCurve;
-use crate::radial::quasi_bound;
-use crate::reach::Interval;
+use crate::radial::{Level, quasi_bound};
+use crate::reach::{self, Interval};
 use crate::settings::LevelSettings;
 use crate::units::to_per_cm;
+
+/// The levels of one J.
+#[derive(Clone, Debug)]
+pub struct RotatingLevels {
+    /// J.
+    pub j: u32,
+    /// The bound levels, v ascending.
+    pub levels: Vec<Level>,
+    /// The quasi-bound levels, v ascending.
+    pub quasi_bound: Vec<QuasiBoundLevel>,
+}
+
+/// The levels of any J on the curve of a study, whether or not its settings name that J; none without a curve or a
+/// mass, for J = 0 and for J below Λ.
+pub fn rotating_levels(findings: &Findings, j: u32) -> Option<RotatingLevels> {
+    let (curve, masses) = (findings.curve.as_deref()?, findings.masses.as_ref()?);
+    let settings = &findings.settings.levels;
+    if j == 0 || j < settings.lambda {
+        return None;
+    }
+    if settings.rotation.contains(&j) {
+        return Some(RotatingLevels {
+            j,
+            levels: findings.rotational_levels.iter().filter(|l| l.j == j).cloned().collect(),
+            quasi_bound: findings.quasi_bound.iter().flatten().filter(|q| q.j == j).cloned().collect(),
+        });
+    }
+    let reach = reach::energy_and_force_reach(curve, &findings.settings.reach).map(|(energy, _)| energy);
+    let question = Question { settings, mass_me: masses.reduced_mass_me, reach: reach.as_ref(), j };
+    let OneJ { solved, quasi } = one(curve, &question);
+    Some(RotatingLevels { j, levels: solved.levels, quasi_bound: quasi })
+}
 
 /// What one J gives.
 struct OneJ {

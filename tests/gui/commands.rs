@@ -1,5 +1,6 @@
 //! Commands without a window: what they change, what they refuse, what undo restores.
 
+use parabound::export::compare::Form;
 use parabound::fit::Window;
 use parabound::gui::apply::{Effect, apply, take_outcome, take_scan, wanted};
 use parabound::gui::command::Command;
@@ -122,7 +123,7 @@ fn a_disabled_command_does_nothing_and_says_why() {
         Command::Undo,
         Command::Export(Product::Findings),
         Command::Zoom(Preset::WholeWell),
-        Command::CopyConstants,
+        Command::CopyPage(Form::Text),
     ] {
         let reason = command.is_enabled(&state).expect_err("nothing is open");
         assert!(reason.ends_with('.'), "{reason}");

@@ -31,6 +31,7 @@ fn prepared(folder: &Path) -> Window {
         Command::Undo,
         Command::SaveStudyTo { path: folder.join("kept.parabound"), overwrite: true },
         Command::PinLevel(Some(1)),
+        Command::ShowJ(3),
     ] {
         give(&mut window, command);
     }
@@ -65,6 +66,10 @@ fn document(window: &Window) -> String {
 fn by_label(window: &mut Window, entry: &Entry) {
     for menu in entry.place.menus() {
         press(window, menu);
+    }
+    if let Place::Page(page) = entry.place {
+        window.get_by_role_and_label(Role::Tab, page.name()).click();
+        window.run();
     }
     let label = entry.command.label();
     let pressable = |role| matches!(role, Role::Button | Role::Tab | Role::RadioButton);

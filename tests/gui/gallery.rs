@@ -97,6 +97,7 @@ fn every_page_is_shown_in_every_kind_of_window() {
             give(&mut window, &[Command::ShowPage(Page::Fits), Command::ShowFitsPart(part)]);
             write(&mut window, &format!("{kind}_fits_{}", part.name().to_lowercase().replace(' ', "_")));
         }
+        rotation(&mut window, kind);
         let row = state(&window).study().expect("a study").findings.source.points[12].row;
         give(
             &mut window,
@@ -121,6 +122,40 @@ fn every_page_is_shown_in_every_kind_of_window() {
         );
         write(&mut window, &format!("{kind}_asymptote"));
     }
+}
+
+/// The picture and the page of one J, and the other parts of the page of levels.
+fn rotation(window: &mut Window, kind: &str) {
+    use parabound::gui::state::LevelsPart;
+    let pair = |text: &str| parabound::species::parse_atoms(text).expect("a pair");
+    give(
+        window,
+        &[
+            Command::SetRotation(vec![5, 10, 15, 20, 25, 30]),
+            Command::SetIsotopologues(vec![pair("7Li,2H"), pair("6Li,1H")]),
+            Command::SetTailSensitivity(true),
+            Command::ShowJ(20),
+        ],
+    );
+    let quasi = state(window).rotation().and_then(|(levels, _)| levels.quasi_bound.first()).map(|q| q.v);
+    for part in LevelsPart::ALL {
+        let zoom = if part == LevelsPart::Rotation { Preset::NearMinimum } else { Preset::WholeWell };
+        let level = if zoom == Preset::WholeWell { quasi } else { Some(2) };
+        give(window, &[Command::ShowLevelsPart(part), Command::Zoom(zoom), Command::PinLevel(level)]);
+        write(window, &format!("{kind}_levels_{}", part.name().to_lowercase().replace(' ', "_")));
+    }
+    give(
+        window,
+        &[
+            Command::Undo,
+            Command::Undo,
+            Command::Undo,
+            Command::ShowJ(0),
+            Command::ShowLevelsPart(LevelsPart::Table),
+            Command::PinLevel(Some(1)),
+            Command::Zoom(Preset::NearMinimum),
+        ],
+    );
 }
 
 /// Invented numbers: a parabola with a cubic term, without atoms and, if so wanted, without units.

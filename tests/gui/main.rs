@@ -19,5 +19,6 @@ mod paper;
 mod pictures;
 mod reach;
 mod reading;
+mod rotation;
 mod saving;
 mod working;

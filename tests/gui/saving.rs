@@ -267,3 +267,59 @@ fn recent_files_are_opened_from_the_menu() {
     press(&mut window, "h2.csv");
     assert_eq!(state(&window).document.scans.len(), 2);
 }
+
+/// What is looked at comes back with the study: axes, densities, J, the part of a page, the comparison.
+#[test]
+fn what_is_looked_at_is_saved_and_comes_back() {
+    use parabound::export::compare::Quantity;
+    use parabound::gui::densities::DensityView;
+    use parabound::gui::state::{AxisView, LevelsPart, Reference};
+    use parabound::units::{EnergyUnit, LengthUnit};
+    let folder = tempfile::tempdir().expect("a folder");
+    let path = folder.path().join("seen.parabound");
+    let mut window = open_sample();
+    let other = *state(&window).document.settings.keys().last().expect("a second curve");
+    let axes = AxisView { length: LengthUnit::Bohr, displacement: true, energy: EnergyUnit::Electronvolt };
+    let densities = DensityView {
+        classical: true,
+        averaged: true,
+        width_angstrom: Some(0.123),
+        height: 2.5,
+        ..DensityView::default()
+    };
+    for command in [
+        Command::SetAxes(axes),
+        Command::SetDensities(densities),
+        Command::ShowLevelsPart(LevelsPart::Isotopes),
+        Command::ShowJ(7),
+        Command::SetKelvin(512.5),
+        Command::SetReference(Some(Reference::Curve(other))),
+        Command::SortComparison(Some((Quantity::OmegaE, true))),
+        Command::ShowComparison(true),
+        Command::SaveStudyTo { path: path.clone(), overwrite: false },
+    ] {
+        give(&mut window, command);
+    }
+    let again = open_file(&path);
+    let view = &state(&again).view;
+    assert_eq!((view.axes, view.densities, view.j), (axes, densities, 7));
+    assert_eq!((view.page, view.levels_part), (Page::Levels, LevelsPart::Isotopes));
+    assert_eq!(view.kelvin(), 512.5);
+    let Some(Reference::Curve(key)) = view.comparison.reference else { panic!("{:?}", view.comparison) };
+    let document = &state(&again).document;
+    assert_eq!(document.curve_name(key, false), state(&window).document.curve_name(other, false));
+    assert_eq!(view.comparison.sort, Some((Quantity::OmegaE, true)));
+    assert!(view.comparison.open);
+    // Words and numbers that are not known are passed over.
+    let text = std::fs::read_to_string(&path).expect("written");
+    let odd = text
+        .replace("\"bohr\"", "\"ell\"")
+        .replace("\"classical\"", "\"brown\"")
+        .replace("Isotopes", "Nowhere")
+        .replace("512.5", "-4.0");
+    std::fs::write(&path, odd).expect("written");
+    let view = &state(&open_file(&path)).view.clone();
+    assert_eq!((view.axes.length, view.levels_part), (LengthUnit::Angstrom, LevelsPart::Table));
+    assert!(view.densities.averaged && !view.densities.classical);
+    assert_eq!(view.kelvin(), 298.15);
+}

@@ -154,3 +154,46 @@ fn a_fault_at_the_very_start_leaves_a_window_that_can_be_used() {
     press(&mut window, "File");
     assert!(window.query_by_label("Samples").is_some());
 }
+
+/// A frame is drawn only when somebody asks for one: nobody does while nothing changes, with the files watched, the
+/// work saved and the workers at rest. With levels of a J shown too.
+#[test]
+fn a_window_at_rest_draws_no_frame_in_five_seconds() {
+    use std::sync::Arc;
+    use std::sync::atomic::{AtomicUsize, Ordering};
+    let folder = tempfile::tempdir().expect("a folder");
+    let scan = folder.path().join("h2.csv");
+    let from = concat!(env!("CARGO_MANIFEST_DIR"), "/../../sample-scans/h2_fci.csv");
+    std::fs::copy(from, &scan).expect("copied");
+    let start =
+        Start { files: vec![scan], state_folder: Some(folder.path().join("state")), ..Start::default() };
+    let mut window = Harness::builder()
+        .with_size(egui::vec2(1400.0, 900.0))
+        .with_max_steps(24)
+        .renderer(CpuRenderer::default())
+        .build_eframe(|cc| Shown(App::new(&cc.egui_ctx, start)));
+    until(&mut window, |w| state(w).study().is_some());
+    let ctx = window.ctx.clone();
+    window.state_mut().0.give(Command::ShowJ(10), &ctx);
+    until(&mut window, |w| state(w).rotation().is_some());
+    // What was begun comes to its end: notes of the work, fading.
+    let quiet = Instant::now();
+    while quiet.elapsed() < Duration::from_secs(3) {
+        window.step();
+        std::thread::sleep(Duration::from_millis(20));
+    }
+    let asked = Arc::new(AtomicUsize::new(0));
+    let count = Arc::clone(&asked);
+    // Every wish for a frame, at once or later than now within the five seconds, is heard here.
+    window.ctx.set_request_repaint_callback(move |info| {
+        if info.delay < Duration::from_secs(5) {
+            count.fetch_add(1, Ordering::Relaxed);
+        }
+    });
+    window.step();
+    let delay = window.output().viewport_output[&egui::ViewportId::ROOT].repaint_delay;
+    assert!(delay > Duration::from_secs(5), "the last frame asks for another in {delay:?}");
+    asked.store(0, Ordering::Relaxed);
+    std::thread::sleep(Duration::from_secs(5));
+    assert_eq!(asked.load(Ordering::Relaxed), 0, "frames asked for in five seconds of rest");
+}

@@ -244,3 +244,51 @@ fn refusals_of_pictures() {
     assert_eq!(status(&[path, "--out", &at("f.svg")]), Some(3));
     assert_eq!(status(&[path, "--out", &at("f.svg"), "--overwrite"]), Some(0));
 }
+
+/// With a J the curve is drawn with its effective potential, and the quasi-bound levels apart from the bound ones.
+#[test]
+fn the_curve_and_the_ladders_are_drawn_for_a_j() {
+    let with = |more: [&'static str; 2]| [&LIH[..], &["--show-j", "20"], &more].concat();
+    let found = read(&figure("lih_X_A.csv", "svg", &with(["--view", "whole-well"])));
+    for name in ["scan", "effective, J = 20", "quasi-bound", "tunnelling"] {
+        let parts: usize = found.series.iter().filter(|s| s.0 == name).map(|s| s.1).sum();
+        assert!(parts > 0, "nothing drawn of {name} in {:?}", found.series);
+    }
+    // The highest bound level stands under the barrier with its number.
+    assert!(found.texts.iter().any(|t| t == "v = 0"), "{:?}", found.texts);
+    let ladders = read(&figure("lih_X_A.csv", "svg", &with(["--what", "ladders"])));
+    assert!(ladders.series.iter().any(|s| s.0 == "J = 20" && s.1 > 4), "{:?}", ladders.series);
+    // Without a mass there is nothing that rotates, and it is said.
+    let folder = tempfile::tempdir().expect("a folder");
+    let plain = folder.path().join("plain.csv");
+    // Invented: a parabola.
+    let rows: Vec<String> = (0..12)
+        .map(|i| f64::from(i) * 0.05)
+        .map(|x| format!("{:.2},{:.6}", 1.0 + x, (x - 0.25) * (x - 0.25)))
+        .collect();
+    fs::write(&plain, format!("R_angstrom,E_hartree\n{}\n", rows.join("\n"))).expect("written");
+    let out = folder.path().join("f.svg");
+    let output = run(&[
+        "figure",
+        plain.to_str().expect("UTF-8"),
+        "--show-j",
+        "3",
+        "--out",
+        out.to_str().expect("UTF-8"),
+    ]);
+    assert_eq!(output.status.code(), Some(4));
+    assert!(String::from_utf8_lossy(&output.stderr).contains("no effective potential"));
+}
+
+/// The spacings of the levels with the straight line through them.
+#[test]
+fn the_spacings_are_drawn_with_their_line() {
+    let found = read(&figure("h2_fci.csv", "svg", &["--what", "birge-sponer"]));
+    for name in ["straight line", "spacings"] {
+        let parts: usize = found.series.iter().filter(|s| s.0 == name).map(|s| s.1).sum();
+        assert!(parts > 0, "nothing drawn of {name} in {:?}", found.series);
+    }
+    for text in ["v + ½", "spacing / cm⁻¹"] {
+        assert!(found.texts.iter().any(|t| t == text), "{text} in {:?}", found.texts);
+    }
+}

@@ -17,10 +17,12 @@ pub use type_face::{FACE, GlyphRun, TypeFace};
 
 use super::geometry::Bounds;
 use super::{
-    ComparisonPicture, Figure, GaugeMeasure, Pictures, Role, Series, Shape, WindowPicture, gauge_of,
-    gauge_turning_points, thermal_panels,
+    ComparisonPicture, Figure, GaugeMeasure, Pictures, Role, RotationPicture, Series, Shape, WindowPicture,
+    birge_sponer_figure, birge_sponer_sentence, gauge_of, gauge_turning_points, rotation_picture,
+    thermal_panels,
 };
 use crate::findings::Findings;
+use crate::study::rotating_levels;
 use crate::units::to_angstrom;
 
 /// Which picture of a study.
@@ -40,11 +42,13 @@ pub enum Subject {
     WindowStudy,
     /// The fits side by side.
     Comparison,
+    /// Spacings of the levels against v + ½ with their straight line.
+    BirgeSponer,
 }
 
 impl Subject {
     /// The pictures by their names on the command line.
-    pub const ALL: [(&'static str, Self); 7] = [
+    pub const ALL: [(&'static str, Self); 8] = [
         ("curve", Self::Curve),
         ("gauge", Self::Gauge),
         ("residuals", Self::Residuals),
@@ -52,6 +56,7 @@ impl Subject {
         ("thermal", Self::Thermal),
         ("window-study", Self::WindowStudy),
         ("comparison", Self::Comparison),
+        ("birge-sponer", Self::BirgeSponer),
     ];
 }
 
@@ -94,6 +99,8 @@ pub struct Paper {
     pub bounds: Option<Bounds>,
     /// What the gauge measures.
     pub gauge: GaugeMeasure,
+    /// The J whose effective potential and levels the curve is drawn with; 0: without rotation.
+    pub j: u32,
 }
 
 impl Default for Paper {
@@ -105,6 +112,7 @@ impl Default for Paper {
             view: View::NearMinimum,
             bounds: None,
             gauge: GaugeMeasure::EnergyPercent,
+            j: 0,
         }
     }
 }
@@ -243,12 +251,15 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
         Subject::Curve | Subject::Ladders => 0.72,
         Subject::Gauge | Subject::Residuals => 0.45,
         Subject::Thermal => thermal::HEIGHT,
-        Subject::Comparison => 0.60,
+        Subject::Comparison | Subject::BirgeSponer => 0.60,
         Subject::WindowStudy => 1.0,
     };
     let size_pt = [width_pt, (share * width_pt).max(16.0 * paper.font_pt)];
     let mut layout = Layout::new(size_pt, paper.font_pt, paper.dark);
-    let pictures = Pictures::of(findings);
+    let pictures = match rotation(findings, paper.j)? {
+        Some(rotation) => Pictures::of(findings).with_rotation(&rotation),
+        None => Pictures::of(findings),
+    };
     let named = match paper.view {
         View::NearMinimum => pictures.views.near_minimum,
         View::WholeWell => pictures.views.whole_well,
@@ -298,10 +309,40 @@ pub fn drawing(findings: &Findings, subject: Subject, paper: &Paper) -> Result<D
             layout.size_pt[1] = comparison::height(&layout, &picture);
             comparison::items(&layout, &picture)
         }
+        Subject::BirgeSponer => {
+            let (figure, bounds) = birge_sponer_figure(findings)
+                .ok_or(nothing("fewer than three levels are supported by the scan"))?;
+            panel::items(&layout, &figure, bounds, None)
+        }
     };
     let about =
         format!("{}, {}: {}", findings.source.file_name, findings.source.curve, pictures.sentence.text);
     Ok(Drawing { size_pt: layout.size_pt, about, ground: layout.palette.ground, items })
+}
+
+/// The picture of one J; none for J = 0.
+fn rotation(findings: &Findings, j: u32) -> Result<Option<RotationPicture>, DrawingError> {
+    if j == 0 {
+        return Ok(None);
+    }
+    let levels = rotating_levels(findings, j);
+    let picture = levels.and_then(|levels| rotation_picture(findings, &levels));
+    let why = "this J has no effective potential (name the atoms or a reduced mass; J begins at Lambda)";
+    picture.map(Some).ok_or(DrawingError::Nothing { why })
+}
+
+/// The spacings of the levels laid out at a size, for the screen; none with fewer than three supported levels.
+pub fn birge_sponer_drawing(
+    findings: &Findings,
+    size_pt: [f64; 2],
+    font_pt: f64,
+    dark: bool,
+) -> Option<Drawing> {
+    let layout = Layout::new(size_pt, font_pt, dark);
+    let (figure, bounds) = birge_sponer_figure(findings)?;
+    let items = panel::items(&layout, &figure, bounds, None);
+    let about = birge_sponer_sentence(findings).unwrap_or_default();
+    Some(Drawing { size_pt, about, ground: layout.palette.ground, items })
 }
 
 /// A window study laid out at a size, with where each of its figures lies: for the screen, where it is clicked on.

@@ -26,6 +26,7 @@ pub struct Palette {
     pub outside: Rgb,
     pub level: Rgb,
     pub accent: Rgb,
+    pub rotation: Rgb,
 }
 
 /// Dark theme.
@@ -42,6 +43,7 @@ pub const DARK: Palette = Palette {
     outside: rgb(0xd98a5b),
     level: rgb(0x8593a5),
     accent: rgb(0xe9c46a),
+    rotation: rgb(0xb79cf0),
 };
 
 /// Light theme; the ground is white, as paper is.
@@ -58,6 +60,7 @@ pub const LIGHT: Palette = Palette {
     outside: rgb(0xb3592a),
     level: rgb(0x6f7a88),
     accent: rgb(0x8a6500),
+    rotation: rgb(0x6d48b5),
 };
 
 /// `percent` of the way from one colour to another.
@@ -84,6 +87,7 @@ impl Palette {
             Role::LeadingOrder => self.dim,
             Role::ZeroPoint => self.accent,
             Role::Zero => self.level,
+            Role::Effective | Role::EffectiveTail | Role::QuasiBound | Role::Tunnelling => self.rotation,
         }
     }
 }

@@ -50,7 +50,8 @@ pub fn items(layout: &Layout, figure: &Figure, bounds: Bounds, pictures: Option<
 
 fn width(role: Role) -> f64 {
     match role {
-        Role::Scanned => 1.5,
+        Role::Scanned | Role::Effective => 1.5,
+        Role::QuasiBound | Role::Tunnelling => 1.0,
         Role::ZeroPoint => 3.0,
         Role::Zero | Role::Tolerance => 0.8,
         _ => 1.2,
@@ -151,7 +152,8 @@ fn levels(layout: &Layout, frame: &Frame, levels: &[LevelPicture]) -> Vec<Item> 
             }
         }
         let (a, b) = level.turning_points;
-        for run in clip_line(&[[a, energy], [b, energy]], &frame.bounds) {
+        let own_line = if level.quasi_bound { &[][..] } else { &[[a, energy], [b, energy]][..] };
+        for run in clip_line(own_line, &frame.bounds) {
             let run = run.iter().map(|p| frame.place(*p)).collect();
             items.push(line(run, layout.solid(layout.palette.level, 0.7), 1.0));
         }
@@ -211,7 +213,9 @@ pub(super) fn entries(
     }
     // Tails of which the view shows nothing need no entry.
     let shown = |s: &&Series| match &s.shape {
-        Shape::Line(points) if s.role == Role::Tail => !clip_line(points, bounds).is_empty(),
+        Shape::Line(points) if matches!(s.role, Role::Tail | Role::QuasiBound | Role::Tunnelling) => {
+            !clip_line(points, bounds).is_empty()
+        }
         _ => true,
     };
     for entry in entries_of(layout, figure.series.iter().filter(shown)) {

@@ -85,9 +85,9 @@ const ROW: f32 = 22.0;
 
 /// Legend at the left, regions at the right; where both do not fit, the legend has a row of its own.
 fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
-    let fits = ui.available_width() >= legend_width(ui) + ROOM_FOR_REGIONS;
+    let fits = ui.available_width() >= legend_width(ui, state) + ROOM_FOR_REGIONS;
     if !fits && ui.available_height() > ROOM_FOR_LEGEND {
-        ui.horizontal_wrapped(legend_ui);
+        ui.horizontal_wrapped(|ui| legend_ui(ui, state, out));
     }
     ui.allocate_ui_with_layout(vec2(ui.available_width(), ROW), Layout::right_to_left(Align::Center), |ui| {
         ui.spacing_mut().item_spacing.x = BETWEEN;
@@ -102,28 +102,54 @@ fn regions_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
             command_button(ui, state, Command::Zoom(preset), form, out);
         }
         if fits {
-            ui.with_layout(Layout::left_to_right(Align::Center), legend_ui);
+            ui.with_layout(Layout::left_to_right(Align::Center), |ui| legend_ui(ui, state, out));
         }
     });
 }
 
-fn legend_width(ui: &Ui) -> f32 {
+/// Room for the way back from a J.
+const WAY_BACK: f32 = 104.0;
+
+/// What the legend says of rotation.
+fn rotation_name(state: &State) -> Option<String> {
+    let lambda = state.document.focused().map_or(0, |(_, _, s)| s.levels.lambda);
+    let j = match (state.view.j, state.rotation()) {
+        (0, _) => return None,
+        (_, Some((levels, _))) => levels.j,
+        (j, None) => return Some(format!("no levels with J = {j}")),
+    };
+    Some(if lambda > 0 { format!("J = {j}, Λ = {lambda}") } else { format!("J = {j}") })
+}
+
+fn legend_width(ui: &Ui, state: &State) -> f32 {
     let width = |name: &str| {
         let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look::DARK.dim);
         SAMPLE + AFTER_SAMPLE + galley.size().x + BETWEEN_NAMES
     };
-    LEGEND.iter().map(|(_, name)| width(name)).sum()
+    let rotation = rotation_name(state).map_or(0.0, |name| width(&name) + WAY_BACK);
+    LEGEND.iter().map(|(_, name)| width(name)).sum::<f32>() + rotation
 }
 
-fn legend_ui(ui: &mut Ui) {
-    let look = Look::of(ui);
+fn legend_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
     ui.spacing_mut().item_spacing = vec2(BETWEEN_NAMES, 0.0);
     for (role, name) in LEGEND {
-        let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look.dim);
-        let size = vec2(SAMPLE + AFTER_SAMPLE + galley.size().x, ROW);
-        let (rect, _) = ui.allocate_exact_size(size, Sense::hover());
-        show::line_sample(ui, Rect::from_min_size(rect.min, vec2(SAMPLE, ROW)), role, look.role(role));
-        let at = egui::pos2(rect.left() + SAMPLE + AFTER_SAMPLE, rect.center().y - galley.size().y / 2.0);
-        ui.painter().galley(at, galley, look.dim);
+        name_ui(ui, role, name);
     }
+    if let Some(name) = rotation_name(state) {
+        name_ui(ui, Role::Effective, &name);
+        ui.spacing_mut().button_padding.x = 0.0;
+        ui.spacing_mut().interact_size.y = ROW;
+        command_button(ui, state, Command::ShowJ(0), ButtonForm::Link, out);
+    }
+}
+
+/// One line of the plot by its name.
+fn name_ui(ui: &mut Ui, role: Role, name: &str) {
+    let look = Look::of(ui);
+    let galley = ui.painter().layout_no_wrap(name.to_owned(), look::plain(look::SMALL), look.dim);
+    let size = vec2(SAMPLE + AFTER_SAMPLE + galley.size().x, ROW);
+    let (rect, _) = ui.allocate_exact_size(size, Sense::hover());
+    show::line_sample(ui, Rect::from_min_size(rect.min, vec2(SAMPLE, ROW)), role, look.role(role));
+    let at = egui::pos2(rect.left() + SAMPLE + AFTER_SAMPLE, rect.center().y - galley.size().y / 2.0);
+    ui.painter().galley(at, galley, look.dim);
 }

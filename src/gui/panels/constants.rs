@@ -4,7 +4,7 @@ use crate::figure::rows::{curve_rows, energy_rows, short_reach_rows};
 use crate::findings::Findings;
 use crate::gui::command::Command;
 use crate::gui::product::Product;
-use crate::gui::show::{self, ButtonForm, RowUi as _, command_button};
+use crate::gui::show::{self, ButtonForm, RowUi as _};
 use crate::gui::state::State;
 use eframe::egui::Ui;
 
@@ -41,7 +41,6 @@ pub(super) fn constants_ui(ui: &mut Ui, state: &State, findings: &Findings, out:
     }
     ui.add_space(12.0);
     ui.horizontal(|ui| {
-        command_button(ui, state, Command::CopyConstants, ButtonForm::Framed, out);
         show::command_button_as(
             ui,
             state,

@@ -6,6 +6,7 @@ mod compare;
 mod constants;
 mod densities;
 mod fits;
+mod grid;
 mod left;
 mod levels;
 mod masses;
@@ -20,8 +21,8 @@ mod top;
 mod units;
 mod waiting;
 
-pub use crate::figure::rows::constants_text;
 pub use compare::comparison_text;
+pub(super) use fits::{parameter_row, symbol};
 pub(super) use units::units_ui;
 pub(super) use waiting::words as progress_words;
 

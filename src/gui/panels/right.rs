@@ -1,6 +1,7 @@
 //! The pages on the right and their tabs.
 
 use super::{constants, fits, levels, reach, scan, thermal};
+use crate::export::compare::Form;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
 use crate::gui::show::{self, ButtonForm, command_button};
@@ -23,6 +24,7 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         ui.multiply_opacity(0.55);
     }
     let findings = &*study.findings;
+    copy_ui(ui, state, out);
     if state.view.page == Page::Levels {
         levels::levels_ui(ui, state, study, out);
         return;
@@ -44,6 +46,24 @@ pub(super) fn right_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         }
         ui.add_space(8.0);
     });
+}
+
+/// At the foot of every page: its tables for the clipboard.
+fn copy_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
+    egui::Panel::bottom("copy")
+        .exact_size(30.0)
+        .resizable(false)
+        .show_separator_line(false)
+        .frame(egui::Frame::new())
+        .show(ui, |ui| {
+            ui.horizontal_centered(|ui| {
+                ui.spacing_mut().item_spacing.x = 16.0;
+                ui.spacing_mut().button_padding.x = 0.0;
+                for (_, form) in Form::ALL {
+                    command_button(ui, state, Command::CopyPage(form), ButtonForm::Quiet, out);
+                }
+            });
+        });
 }
 
 /// The row of tabs; the one in front is underlined.

@@ -170,6 +170,8 @@ fn export_ui(ui: &mut Ui, state: &State, out: &mut Vec<Command>) {
         for product in Product::ALL {
             entry_ui(ui, state, Command::Export(product), out);
         }
+        ui.separator();
+        entry_ui(ui, state, Command::CopyPicture, out);
     });
 }
 

@@ -2,9 +2,9 @@
 
 use super::map::Map;
 use crate::figure::geometry::read_line;
-use crate::figure::{Role, Series, Shape, number};
+use crate::figure::{LevelPicture, Role, Series, Shape, number};
 use crate::gui::look::{self, Look};
-use crate::gui::state::Study;
+use crate::gui::state::{State, Study};
 use eframe::egui;
 use egui::{Pos2, Response, RichText, Ui};
 
@@ -24,7 +24,7 @@ pub struct Hit {
 }
 
 /// Finds what is under the pointer while it is over the plot.
-pub fn find(ui: &Ui, response: &Response, study: &Study, map: &Map) -> Hit {
+pub fn find(ui: &Ui, response: &Response, state: &State, study: &Study, map: &Map) -> Hit {
     let mut hit = Hit::default();
     let hovering = response.hovered() && !response.dragged();
     let Some(pointer) = ui.input(|i| i.pointer.hover_pos()).filter(|p| hovering && map.rect.contains(*p))
@@ -43,8 +43,10 @@ pub fn find(ui: &Ui, response: &Response, study: &Study, map: &Map) -> Hit {
     if hit.point.is_some() {
         return hit;
     }
-    hit.series = pictures.main.series.iter().rposition(|s| near(s, pointer, map));
-    hit.level = level_at(study, pointer, map);
+    let turning = state.rotation().map_or(&[][..], |(_, picture)| &picture.series);
+    let series: Vec<&Series> = pictures.main.series.iter().chain(turning).collect();
+    hit.series = series.iter().rposition(|s| near(s, pointer, map));
+    hit.level = level_at(state.levels_shown(), pointer, map);
     hit
 }
 
@@ -64,8 +66,7 @@ fn near(series: &Series, pointer: Pos2, map: &Map) -> bool {
 }
 
 /// The level whose line is nearest, within half the distance to the next one.
-fn level_at(study: &Study, pointer: Pos2, map: &Map) -> Option<usize> {
-    let levels = &study.pictures.levels;
+fn level_at(levels: &[LevelPicture], pointer: Pos2, map: &Map) -> Option<usize> {
     let energy = map.y_value(pointer.y);
     let r = map.x_value(pointer.x);
     let nearest = levels
@@ -77,7 +78,7 @@ fn level_at(study: &Study, pointer: Pos2, map: &Map) -> Option<usize> {
 }
 
 /// Says what is under the pointer.
-pub fn explain_ui(ui: &Ui, response: &Response, study: &Study, hit: &Hit, map: &Map) {
+pub fn explain_ui(ui: &Ui, response: &Response, state: &State, study: &Study, hit: &Hit, map: &Map) {
     let look = Look::of(ui);
     if let Some(point) = hit.point.and_then(|i| study.pictures.points.get(i)) {
         egui::Tooltip::for_enabled(response).at_pointer().gap(14.0).show(|ui| {
@@ -97,13 +98,18 @@ pub fn explain_ui(ui: &Ui, response: &Response, study: &Study, hit: &Hit, map: &
         });
         return;
     }
-    let Some(series) = hit.series.and_then(|i| study.pictures.main.series.get(i)) else { return };
+    let turning = state.rotation().map_or(&[][..], |(_, picture)| &picture.series);
+    let Some(series) = hit.series.and_then(|i| study.pictures.main.series.iter().chain(turning).nth(i))
+    else {
+        return;
+    };
     let pointer = ui.input(|i| i.pointer.hover_pos());
     egui::Tooltip::for_enabled(response).at_pointer().gap(14.0).show(|ui| {
         ui.label(
             RichText::new(&series.label).font(look::semibold(look::SECONDARY)).color(look.role(series.role)),
         );
-        if let (Shape::Line(points), Some(pointer)) = (&series.shape, pointer)
+        let has_energy = !matches!(series.role, Role::QuasiBound | Role::Tunnelling);
+        if let (Shape::Line(points), Some(pointer), true) = (&series.shape, pointer, has_energy)
             && let Some(energy) = read_line(points, map.x_value(pointer.x))
         {
             let words =

@@ -2,10 +2,10 @@
 
 use super::Stage;
 use super::map::Map;
-use crate::figure::{Ladder, Ladders, number};
+use crate::figure::{Ladder, Ladders, Role, number};
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
-use crate::gui::show::{self, text_in};
+use crate::gui::show::{self, styled_line, text_in};
 use crate::gui::state::State;
 use eframe::egui;
 use egui::{Align2, Pos2, Rangef, Sense, Shape, Stroke, Ui, pos2, vec2};
@@ -62,7 +62,15 @@ fn rungs_ui(ui: &Ui, state: &State, ladder: &Ladder, x: Rangef, map: &Map) {
             (false, true) => 2.0,
             (false, false) => 1.0,
         };
-        ui.painter().hline(x, map.y(energy), Stroke::new(width, look.role(ladder.role)));
+        let stroke = Stroke::new(width, look.role(ladder.role));
+        let quasi = ladder.role == Role::Effective
+            && state.rotation().is_some_and(|(_, picture)| picture.quasi_bound.iter().any(|q| q.v == v));
+        if quasi {
+            let ends = [pos2(x.min, map.y(energy)), pos2(x.max, map.y(energy))];
+            styled_line(ui.painter(), &ends, Role::Tolerance.line_style(), stroke);
+        } else {
+            ui.painter().hline(x, map.y(energy), stroke);
+        }
     }
 }
 
@@ -150,11 +158,12 @@ fn hover_ui(ui: &mut Ui, state: &State, ladders: &Ladders, stage: &Stage, map: &
         .energies_per_cm
         .iter()
         .enumerate()
+        .filter(|(_, e)| e.is_finite())
         .map(|(v, &e)| (v, (map.y(e) - pointer.y).abs()))
         .filter(|(_, d)| *d < 9.0)
         .min_by(|a, b| a.1.total_cmp(&b.1));
     let Some((v, _)) = near else { return };
-    let Some(&energy) = numerical.energies_per_cm.get(v) else { return };
+    let energy = numerical.energies_per_cm.get(v).copied().unwrap_or(f64::NAN);
     out.push(Command::HoverLevel(Some(v)));
     if response.clicked() && ui.input(|i| i.modifiers.shift) {
         out.push(Command::KeepLevel(v, !state.view.kept_levels.contains(&v)));
@@ -166,9 +175,9 @@ fn hover_ui(ui: &mut Ui, state: &State, ladders: &Ladders, stage: &Stage, map: &
         let look = Look::of(ui);
         egui::Grid::new("rung").num_columns(3).show(ui, |ui| {
             for ladder in &ladders.columns {
-                let Some(&e) = ladder.energies_per_cm.get(v) else { continue };
+                let Some(&e) = ladder.energies_per_cm.get(v).filter(|e| e.is_finite()) else { continue };
                 ui.colored_label(look.role(ladder.role), format!("{}, v = {v}", ladder.label));
-                let text = if ladder.role == crate::figure::Role::Scanned {
+                let text = if ladder.role == crate::figure::Role::Scanned || !energy.is_finite() {
                     format!("{} cm⁻¹", number::fixed(e, 2))
                 } else {
                     format!("{} cm⁻¹", number::signed(e - energy, 2))

@@ -46,6 +46,10 @@ pub fn add_levels(
             let strength = if is_shown { 0.78 } else { 0.40 };
             add_density(plot, level, height, strength, map, look);
         }
+        // A quasi-bound level has lines of its own.
+        if level.quasi_bound {
+            continue;
+        }
         let alpha = if room < 3.0 { 0.35 } else { 0.8 };
         add_line(plot, level, look.level.gamma_multiply(alpha));
     }
@@ -187,11 +191,11 @@ fn add_line(plot: &mut PlotUi<'_>, level: &LevelPicture, color: Color32) {
 }
 
 /// The levels that stand out: their lines and turning points; those kept beside the one shown finer, with their v.
-pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
+pub(super) fn shown_level_ui(ui: &Ui, state: &State, map: &Map) {
     let look = Look::of(ui);
     let painter = ui.painter().with_clip_rect(map.rect);
     for v in state.outstanding() {
-        let level = study.pictures.levels.iter().find(|l| l.v == v && map.sees_y(l.energy_per_cm));
+        let level = state.levels_shown().iter().find(|l| l.v == v && map.sees_y(l.energy_per_cm));
         let Some(level) = level else { continue };
         let (width, half) = if state.shown_level() == Some(v) { (2.0, 5.0) } else { (1.3, 4.0) };
         let stroke = Stroke::new(width, look.accent);
@@ -211,21 +215,22 @@ pub(super) fn shown_level_ui(ui: &Ui, state: &State, study: &Study, map: &Map) {
 }
 
 /// The levels as a list for those who do not see the picture. It takes no room and no pointer.
-pub(super) fn list_ui(ui: &mut Ui, study: &Study, map: &Map) {
+pub(super) fn list_ui(ui: &mut Ui, state: &State, map: &Map) {
     let builder = egui::UiBuilder::new().id_salt("levels of the picture").max_rect(map.rect);
     ui.scope_builder(builder, |ui| {
         ui.ctx().accesskit_node_builder(ui.unique_id(), |node| {
             node.set_role(egui::accesskit::Role::List);
             node.set_label("Levels of the picture");
         });
-        for level in &study.pictures.levels {
+        for level in state.levels_shown() {
             let y = map.y(level.energy_per_cm).clamp(map.rect.top(), map.rect.bottom());
             let line = egui::Rect::from_min_size(pos2(map.rect.left(), y), egui::vec2(map.rect.width(), 0.0));
             let response = ui.interact(line, ui.unique_id().with(level.v), egui::Sense::hover());
             response.widget_info(|| {
                 let (inner, outer) = level.turning_points;
+                let kind = if level.quasi_bound { "Quasi-bound level" } else { "Level" };
                 let text = format!(
-                    "Level v = {}: {} cm⁻¹ above the minimum, turning points {} and {} Å",
+                    "{kind} v = {}: {} cm⁻¹ above the minimum, turning points {} and {} Å",
                     level.v,
                     number::fixed(level.energy_per_cm, 2),
                     number::fixed(inner, 3),

@@ -31,17 +31,17 @@ pub(super) fn main_plot_ui(
     reach_band_ui(ui, state, study, stage, &before);
     let (response, bounds) = plot_items_ui(ui, state, study, &before, look, out);
     let map = Map { rect: stage.plot, bounds };
-    let hit = hits::find(ui, &response, study, &map);
+    let hit = hits::find(ui, &response, state, study, &map);
     axes::y_labels_ui(ui, &map, &y, |v| number::fixed(v, y.decimals));
     axes::energy_title_ui(ui, state, &map, &e_axis, out);
     points::points_ui(ui, state, &study.pictures.points, &map, hit.point);
-    levels::shown_level_ui(ui, state, study, &map);
+    levels::shown_level_ui(ui, state, &map);
     levels::thermal_name_ui(ui, state, study, &map);
     reach_label_ui(ui, state, study, stage, &map);
     axes::frame_ui(ui, &map);
     asymptote::asymptote_ui(ui, state, study, stage, &map, out);
     card::card_ui(ui, state, study, stage, &map);
-    name_ui(&response, study);
+    name_ui(&response, state, study);
     work_ui(ui, state, study, &response, &hit, &map, out);
     map
 }
@@ -58,11 +58,14 @@ fn plot_items_ui(
     let bounds = before.bounds;
     let pictures = &study.pictures;
     let wheel = ui.input(|i| i.smooth_scroll_delta().y);
-    let densities = if state.view.densities.is_any() {
+    // The other densities are those of the levels without rotation.
+    let rotation = state.rotation().map(|(_, picture)| picture);
+    let densities = if state.view.densities.is_any() && rotation.is_none() {
         shown_densities(ui.ctx(), state, study)
     } else {
         std::sync::Arc::default()
     };
+    let turning = rotation.map_or(&[][..], |r| &r.series);
     let thermal = shown_thermal(ui.ctx(), state, study);
     let response = ui
         .scope_builder(UiBuilder::new().max_rect(before.rect), |ui| {
@@ -85,7 +88,7 @@ fn plot_items_ui(
                     }
                     levels::add_levels(
                         plot,
-                        &pictures.levels,
+                        state.levels_shown(),
                         &|v| state.stands_out(v),
                         state.view.densities.height,
                         before,
@@ -97,7 +100,7 @@ fn plot_items_ui(
                     for densities in densities.iter() {
                         levels::add_density_lines(plot, densities, &state.view.densities, look);
                     }
-                    for (index, series) in pictures.main.series.iter().enumerate() {
+                    for (index, series) in pictures.main.series.iter().chain(turning).enumerate() {
                         items::add_lines(plot, series, index, &bounds, look);
                     }
                 })
@@ -132,12 +135,20 @@ fn too_far(view: &Bounds, all: &Option<Bounds>) -> bool {
 }
 
 /// Tells what the plot shows to those who do not see it.
-fn name_ui(response: &Response, study: &Study) {
+fn name_ui(response: &Response, state: &State, study: &Study) {
     response.widget_info(|| {
+        let turning = state.rotation().map_or_else(String::new, |(levels, _)| {
+            format!(
+                " With J = {}: {} bound and {} quasi-bound levels.",
+                levels.j,
+                levels.levels.len(),
+                levels.quasi_bound.len()
+            )
+        });
         let points = &study.pictures.points;
         let used = points.iter().filter(|p| p.set_aside.is_none()).count();
         let text = format!(
-            "Plot of {}: {} points, {used} used, {} levels. {}",
+            "Plot of {}: {} points, {used} used, {} levels. {}{turning}",
             study.findings.source.curve_label,
             points.len(),
             study.findings.levels.len(),
@@ -160,7 +171,7 @@ fn work_ui(
     if let Some(level) = hit.level {
         out.push(Command::HoverLevel(Some(level)));
     }
-    hits::explain_ui(ui, response, study, hit, map);
+    hits::explain_ui(ui, response, state, study, hit, map);
     if response.double_clicked() {
         out.push(Command::Zoom(Preset::NearMinimum));
     } else if response.clicked() {

@@ -68,8 +68,8 @@ impl Stage {
 /// Draws the picture and collects what the hand does on it.
 pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command>) {
     let whole = ui.available_rect_before_wrap();
-    let has_ladders = !study.pictures.ladders.columns.is_empty() && whole.width() > 420.0;
-    let stage = Stage::within(whole, has_ladders);
+    let ladders = state.ladders_shown().filter(|l| !l.columns.is_empty() && whole.width() > 420.0);
+    let stage = Stage::within(whole, ladders.is_some());
     let Some(bounds) = state.bounds().filter(|b| b.is_valid()) else { return };
     if stage.plot.width() < 40.0 || stage.plot.height() < 40.0 {
         return;
@@ -82,12 +82,12 @@ pub fn stage_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command
     let strip = strip::strip_ui(ui, state, study, &stage, &map, out);
     let r_axis = axes::Scale::of_length(&state.view.axes, study);
     axes::x_axis_ui(ui, state, &stage, &map, &r_axis, out);
-    if has_ladders {
-        ladders::ladders_ui(ui, state, &study.pictures.ladders, &stage, &map, out);
+    if let Some(ladders) = ladders {
+        ladders::ladders_ui(ui, state, ladders, &stage, &map, out);
     }
     handles::window_edges_ui(ui, state, study, &stage, &map, out);
     cursor::cursor_ui(ui, state, &stage, &map, &strip, &r_axis);
-    levels::list_ui(ui, study, &map);
+    levels::list_ui(ui, state, &map);
     hints::hints_ui(ui, state, &stage, &map, &strip, out);
     stale_mark_ui(ui, state, &stage, out);
     ui.allocate_rect(whole, egui::Sense::hover());

@@ -2,11 +2,12 @@
 
 use super::UsageError;
 use super::tolerance::Tolerances;
-use super::value::{family_words, finite, fit_requests, quantum_numbers, value, weighting, window_range};
+use super::value::{family_words, finite, fit_requests, value, weighting, window_range};
 use crate::fit::{BootstrapSettings, FitRequest, Weighting, Window};
 use crate::scan::Scan;
 use crate::scan::combine::Recipe;
 use crate::scan::read::{DecimalSign, Delimiter, Match, parse_energy_unit, parse_length_unit};
+use crate::settings::quantum_numbers;
 use crate::settings::{SetAside, Settings};
 use crate::species::parse_atoms;
 use crate::units::{EnergyUnit, LengthUnit};
@@ -299,7 +300,7 @@ pub(super) fn study_choice(
         "tail-sensitivity" => choices.tail_sensitivity = true,
         "rotation" => {
             let accepted = "J up to 1000 with commas or a range: 1,2,10 or 0-20";
-            choices.rotation = Some(value(parser, "rotation", accepted, quantum_numbers)?);
+            choices.rotation = Some(value(parser, "rotation", accepted, some_numbers)?);
         }
         "lambda" => {
             let accepted = "a whole number from 0 to 20";
@@ -364,11 +365,16 @@ pub(super) fn study_choice(
         }
         "density-levels" => {
             let accepted = "v up to 1000 with commas or a range: 0,1,10 or 0-5";
-            let levels = |t: &str| Some(quantum_numbers(t)?.into_iter().map(|v| v as usize).collect());
+            let levels = |t: &str| Some(some_numbers(t)?.into_iter().map(|v| v as usize).collect());
             choices.density_levels = Some(value(parser, "density-levels", accepted, levels)?);
         }
         "thermal-rotation" => choices.thermal_rotation = true,
         _ => return Ok(false),
     }
     Ok(true)
+}
+
+/// A list that is not empty.
+fn some_numbers(text: &str) -> Option<Vec<u32>> {
+    quantum_numbers(text).filter(|all| !all.is_empty())
 }

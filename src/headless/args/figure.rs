@@ -59,6 +59,10 @@ pub(super) fn figure_option(
             let list = &GaugeMeasure::ALL;
             figure.paper.gauge = value(parser, "gauge", &names(list), |t| named(list, t))?;
         }
+        "show-j" => {
+            let j = |t: &str| t.parse().ok().filter(|j| *j <= 1000);
+            figure.paper.j = value(parser, "show-j", "a whole number from 0 to 1000", j)?;
+        }
         "width-mm" => {
             figure.paper.width_mm =
                 value(parser, "width-mm", "a number from 40 to 1000", range(40.0, 1000.0))?;

@@ -6,6 +6,7 @@ mod study;
 mod tolerance;
 mod value;
 mod window;
+mod without_effect;
 
 pub use choices::StudyChoices;
 pub use figure::FigureArgs;
@@ -17,6 +18,7 @@ use crate::figure::drawing::Subject;
 use choices::{set_aside, study_choice};
 use figure::{FigureOptions, figure_option};
 use lexopt::{Arg, Parser};
+use std::collections::BTreeSet;
 use std::ffi::OsString;
 use std::path::PathBuf;
 use study::study_option;
@@ -105,6 +107,27 @@ pub enum UsageError {
 /// # Errors
 /// [`UsageError`] for unknown options and values that are not understood.
 pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, UsageError> {
+    parse_with_remarks(arguments).map(|(command, _)| command)
+}
+
+/// The same with a sentence for each option that was given and has no effect.
+///
+/// # Errors
+/// As [`parse`].
+pub fn parse_with_remarks(
+    arguments: impl IntoIterator<Item = OsString>,
+) -> Result<(Command, Vec<String>), UsageError> {
+    let mut given = BTreeSet::new();
+    let command = read(arguments, &mut given)?;
+    let remarks = without_effect::without_effect(&command, &given);
+    Ok((command, remarks))
+}
+
+/// Reads the arguments and notes the names of the options given.
+fn read(
+    arguments: impl IntoIterator<Item = OsString>,
+    given: &mut BTreeSet<String>,
+) -> Result<Command, UsageError> {
     let mut arguments: Vec<OsString> = arguments.into_iter().collect();
     let verb = arguments.first().and_then(|a| Verb::named(a.to_str()?)).unwrap_or(Verb::Window);
     if verb != Verb::Window {
@@ -119,6 +142,9 @@ pub fn parse(arguments: impl IntoIterator<Item = OsString>) -> Result<Command, U
     let mut figure = FigureOptions::default();
     let mut source = None;
     while let Some(argument) = parser.next()? {
+        if let Arg::Long(name) = argument {
+            given.insert(name.to_owned());
+        }
         match argument {
             Arg::Short('h') | Arg::Long("help") => return Ok(Command::Help),
             Arg::Short('V') | Arg::Long("version") => return Ok(Command::Version),
@@ -220,7 +246,9 @@ impl Verb {
                 "force-constant-unit",
                 "convention",
             ],
-            Self::Figure => &["out", "what", "view", "gauge", "width-mm", "font-pt", "theme", "dpi"],
+            Self::Figure => {
+                &["out", "what", "view", "gauge", "show-j", "width-mm", "font-pt", "theme", "dpi"]
+            }
             Self::Recheck => &["source"],
         }
     }

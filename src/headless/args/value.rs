@@ -21,24 +21,6 @@ pub(super) fn finite(text: &str) -> Option<f64> {
     text.parse().ok().filter(|v: &f64| v.is_finite())
 }
 
-/// `1,2,10`, `0-20` or both mixed.
-pub(super) fn quantum_numbers(text: &str) -> Option<Vec<u32>> {
-    const HIGHEST: u32 = 1000;
-    let mut all = Vec::new();
-    for part in text.split(',') {
-        let number = |t: &str| t.trim().parse().ok().filter(|j: &u32| *j <= HIGHEST);
-        let (from, to) = match part.split_once('-') {
-            Some((from, to)) => (number(from)?, number(to)?),
-            None => (number(part)?, number(part)?),
-        };
-        if from > to {
-            return None;
-        }
-        all.extend(from..=to);
-    }
-    Some(all)
-}
-
 /// `equal`, `noise`, `noise=SIGMA`, `energy`, `energy=STEP` (both in cm-1), `column=NAME`, `sigma=NAME` or
 /// `rows=ROW:W,ROW:W`.
 pub(super) fn weighting(text: &str) -> Option<Weighting> {

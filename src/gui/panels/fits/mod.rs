@@ -136,7 +136,7 @@ fn result_ui(ui: &mut Ui, fit: &FitFindings, result: &Fit) {
 }
 
 /// A parameter in the units of the window.
-fn parameter_row(parameter: &Parameter) -> Row {
+pub(in crate::gui) fn parameter_row(parameter: &Parameter) -> Row {
     let about = parameter.estimate.source.map_or_else(
         || "No standard error is known.".to_owned(),
         |s| format!("Standard error: {}.", s.word()),
@@ -181,7 +181,7 @@ fn coefficient_unit(n: u32) -> &'static str {
 }
 
 /// A name of the findings format as the trade writes it.
-fn symbol(name: &str) -> String {
+pub(in crate::gui) fn symbol(name: &str) -> String {
     match name {
         "e_min" => "V(rₑ)".to_owned(),
         "r_e" => "rₑ".to_owned(),
@@ -190,6 +190,7 @@ fn symbol(name: &str) -> String {
         "omega_e_x_e" => "ωₑxₑ".to_owned(),
         "b_e" => "Bₑ".to_owned(),
         "alpha_e" => "αₑ".to_owned(),
+        "zero_point_energy" => "zero-point energy".to_owned(),
         "centrifugal_d_e" => "Dₑ (rotation)".to_owned(),
         _ => {
             const LOWERED: [char; 10] = ['₀', '₁', '₂', '₃', '₄', '₅', '₆', '₇', '₈', '₉'];

@@ -1,9 +1,10 @@
-//! The page of levels: one row each, hovering shows the level on the plot.
+//! The levels of one J: one row each, hovering shows the level on the plot.
 
-use super::densities;
+use super::quasi;
 use crate::figure::number;
 use crate::gui::command::Command;
 use crate::gui::look::{self, Look};
+use crate::gui::panels::densities;
 use crate::gui::show::{self, Column, columns_ui};
 use crate::gui::state::{State, Study};
 use crate::radial::Level;
@@ -29,31 +30,40 @@ const COLUMNS: [Column; 5] = [
     },
 ];
 
-pub(super) fn levels_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command>) {
+/// With rotation two columns differ.
+const TURNING: [Column; 5] = [
+    COLUMNS[0],
+    COLUMNS[1],
+    Column { right: 0.63, name: "− E(v, 0)", unit: "cm⁻¹", about: "E(v, J) minus E(v, 0), all of it." },
+    Column {
+        right: 0.82, name: "ℏ²⟨r⁻²⟩/2μ", unit: "cm⁻¹", about: "Over the state of this J."
+    },
+    COLUMNS[4],
+];
+
+pub(super) fn table_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<Command>) {
     let findings = &*study.findings;
-    if findings.levels.is_empty() {
-        let text = if findings.masses.is_none() {
-            "Levels need a mass: name the atoms or give a reduced mass on the left."
-        } else {
-            "This curve holds no level; see the notices below the plot."
-        };
-        show::note(ui, text);
-        return;
+    let turning = state.rotation().map(|(levels, _)| levels);
+    let levels = turning.map_or(&findings.levels, |r| &r.levels);
+    if turning.is_none() && state.view.j > 0 {
+        show::note(ui, "There are no levels with this J: rotation begins at J = Λ.");
     }
     ui.spacing_mut().item_spacing.y = 0.0;
     let width = ui.available_width() - 10.0;
-    columns_ui(ui, width, &COLUMNS);
-    let leaning = findings.levels.iter().any(|l| l.leans_on_tail);
+    columns_ui(ui, width, if turning.is_some() { &TURNING } else { &COLUMNS });
+    let leaning = levels.iter().any(|l| l.leans_on_tail);
     let mut hovered = None;
-    let roomy = ui.available_height() > densities::HEIGHT + 8.0 * ROW;
+    let roomy = turning.is_none() && ui.available_height() > densities::HEIGHT + 8.0 * ROW;
     let foot = if leaning { 30.0 } else { 0.0 } + if roomy { densities::HEIGHT } else { 0.0 };
+    let foot = foot + turning.map_or(0.0, |r| quasi::height(&r.quasi_bound));
     ScrollArea::vertical()
         .id_salt("levels")
-        .auto_shrink(false)
+        .auto_shrink([false, turning.is_some()])
         .max_height((ui.available_height() - foot).max(3.0 * ROW))
-        .show_rows(ui, ROW, findings.levels.len(), |ui, rows| {
-            for level in &findings.levels[rows] {
-                let response = level_ui(ui, state, level, width);
+        .show_rows(ui, ROW, levels.len(), |ui, rows| {
+            for level in &levels[rows] {
+                let without = turning.and_then(|_| findings.levels.get(level.v));
+                let response = level_ui(ui, state, level, without, width);
                 if response.hovered() {
                     hovered = Some(level.v);
                 }
@@ -65,39 +75,49 @@ pub(super) fn levels_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec
                 }
             }
         });
-    if hovered.is_some() {
-        out.push(Command::HoverLevel(hovered));
-    }
     if leaning {
         ui.add_space(6.0);
         show::note(ui, "○ leans on the tail: would change if the curve beyond the scan did.");
+    }
+    if let Some(turning) = turning {
+        ui.add_space(4.0);
+        hovered = quasi::quasi_ui(ui, state, &turning.quasi_bound, out).or(hovered);
+    }
+    if hovered.is_some() {
+        out.push(Command::HoverLevel(hovered));
     }
     if roomy {
         densities::densities_ui(ui, state, study, out);
     }
 }
 
-fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Response {
+/// A row; beside the level with rotation stands the one without.
+fn level_ui(
+    ui: &mut Ui,
+    state: &State,
+    level: &Level,
+    without: Option<&Level>,
+    width: f32,
+) -> egui::Response {
     let look = Look::of(ui);
     let (rect, response) = ui.allocate_exact_size(vec2(width, ROW), Sense::click());
     let shown = state.stands_out(level.v);
     if shown || response.hovered() || response.has_focus() {
         ui.painter().rect_filled(rect.expand2(vec2(4.0, 0.0)), 4.0, look.raised);
     }
+    let third = without.map_or(level.minus_harmonic_per_cm, |w| level.energy_per_cm - w.energy_per_cm);
     let energy = number::with_error_capped(level.energy_per_cm, level.energy_error_per_cm, 2);
     let cells = [
         level.v.to_string(),
         energy.clone(),
-        number::signed(
-            level.minus_harmonic_per_cm,
-            if level.minus_harmonic_per_cm.abs() < 1e3 { 2 } else { 1 },
-        ),
+        number::signed(third, if third.abs() < 1e3 { 2 } else { 1 }),
         number::fixed(level.b_v_per_cm, if level.b_v_per_cm < 10.0 { 4 } else { 3 }),
         level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1)),
     ];
     for (i, (cell, column)) in cells.iter().zip(&COLUMNS).enumerate() {
         let color = match i {
             0 if shown => look.accent,
+            2 if level.j > 0 => look.rotation,
             2 => look.harmonic,
             4 => look.dim,
             _ => look.text,
@@ -111,12 +131,9 @@ fn level_ui(ui: &mut Ui, state: &State, level: &Level, width: f32) -> egui::Resp
     }
     let lean = if level.leans_on_tail { ", leans on the tail" } else { "" };
     response.widget_info(|| {
-        WidgetInfo::selected(
-            egui::Role::Button,
-            true,
-            shown,
-            format!("Level v = {}: {energy} cm⁻¹{lean}", level.v),
-        )
+        let j = if level.j > 0 { format!(", J = {}", level.j) } else { String::new() };
+        let words = format!("Level v = {}{j}: {energy} cm⁻¹{lean}", level.v);
+        WidgetInfo::selected(egui::Role::Button, true, shown, words)
     });
     response
 }
