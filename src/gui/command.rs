@@ -369,6 +369,7 @@ impl Command {
             Self::ResetSettings => "Default settings".into(),
             Self::StopComputing => "Stop".into(),
             Self::ComputeAgain => "Compute".into(),
+            Self::CopyPicture => "Copy picture".into(),
             Self::CopyReport => "Copy report".into(),
             Self::OpenPath(path) => super::files::file_name_of(path),
             Self::Undo => "Undo".into(),

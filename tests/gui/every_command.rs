@@ -78,7 +78,7 @@ fn by_label(window: &mut Window, entry: &Entry) {
     let found =
         if entry.place == Place::Notices { found.label_contains(&label) } else { found.label(&label) };
     // What stands in a menu may stand elsewhere too; menus are drawn last.
-    window.get_all(found).last().expect("it is there").click();
+    window.query_all(found).last().unwrap_or_else(|| panic!("no {label:?} in {:?}", entry.place)).click();
     window.run();
 }
 
