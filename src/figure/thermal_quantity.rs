@@ -77,7 +77,7 @@ impl ThermalQuantity {
         match self {
             Self::PartitionFunction => "q",
             Self::MeanEnergy => "U − E(0)",
-            Self::HeatCapacity => "C_V",
+            Self::HeatCapacity => "Cᵥ",
             Self::Entropy => "S",
             Self::MeanLength => "⟨r⟩",
             Self::MeanSquareX => "⟨x²⟩",
@@ -100,7 +100,7 @@ impl ThermalQuantity {
         match self {
             Self::PartitionFunction => "q = Σ g exp(−(E − E(0))/k_BT), counted from the lowest level.",
             Self::MeanEnergy => "Mean energy above the lowest level.",
-            Self::HeatCapacity => "C_V: variance of the energy over k_BT².",
+            Self::HeatCapacity => "Cᵥ: variance of the energy over k_BT².",
             Self::Entropy => "S = R (ln q + U/k_BT).",
             Self::MeanLength => "Mean bond length; the harmonic picture keeps it at rₑ.",
             Self::MeanSquareX => "Mean square displacement from rₑ, the mean-square amplitude.",
@@ -112,7 +112,7 @@ impl ThermalQuantity {
         match self {
             Self::PartitionFunction => Axis { title: "off in q", unit: "%" },
             Self::MeanEnergy => Axis { title: "off in U", unit: "% of kT" },
-            Self::HeatCapacity => Axis { title: "off in C_V", unit: "% of R" },
+            Self::HeatCapacity => Axis { title: "off in Cᵥ", unit: "% of R" },
             Self::Entropy => Axis { title: "off in S", unit: "% of R" },
             Self::MeanLength => Axis { title: "off in ⟨r⟩", unit: "%" },
             Self::MeanSquareX => Axis { title: "off in ⟨x²⟩", unit: "%" },

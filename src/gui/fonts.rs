@@ -76,6 +76,36 @@ mod tests {
         }
     }
 
+    /// Whatever stands in a text of the window is in our own faces.
+    #[test]
+    fn every_sign_in_the_sources_of_the_window_can_be_drawn() {
+        let own = definitions(FontDefinitions::empty());
+        let mut fonts = egui::epaint::text::Fonts::new(egui::epaint::text::TextOptions::default(), own);
+        let mut view = fonts.with_pixels_per_point(1.0);
+        let id = FontId::new(13.0, FontFamily::Proportional);
+        let mut missing = String::new();
+        let mut folders = ["gui", "figure"]
+            .map(|f| std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("src").join(f))
+            .to_vec();
+        while let Some(folder) = folders.pop() {
+            for entry in std::fs::read_dir(folder).expect("a folder").flatten() {
+                let path = entry.path();
+                if path.is_dir() {
+                    folders.push(path);
+                    continue;
+                }
+                let text = std::fs::read_to_string(&path).expect("a source");
+                let code = text.split("#[cfg(test)]").next().unwrap_or(&text);
+                let lines = code.lines().filter(|l| !l.trim_start().starts_with("//"));
+                missing
+                    .extend(lines.flat_map(str::chars).filter(|c| !c.is_ascii() && !view.has_glyph(&id, *c)));
+            }
+        }
+        let spaces = ['\u{2009}', '\u{202f}', '\u{a0}'];
+        missing.retain(|c| !spaces.contains(&c));
+        assert_eq!(missing, "");
+    }
+
     #[test]
     fn figures_have_equal_width() {
         let ctx = egui::Context::default();

@@ -62,7 +62,9 @@ impl Product {
             Self::Findings => "All findings of this curve; the headless command writes the same.",
             Self::Report => "One page with picture, sentence, constants, fits, levels, notices and settings.",
             Self::Picture => "The plot as it is seen, for paper: the ending of the name chooses the format.",
-            Self::Levels => "Every level with its constants and densities.",
+            Self::Levels => {
+                "Every level without rotation and of every J listed under All J, with constants and densities."
+            }
             Self::Constants => "One row with all constants.",
             Self::Points => "Bond lengths and energies to the last digit.",
             Self::Thermal => "Averages at the temperatures of the settings.",

@@ -288,7 +288,7 @@ pub fn dunham_rows(findings: &Findings) -> Vec<Row> {
         Row::new(format!("Y{}{}{name}", lowered(y.k), lowered(y.l)), shown(&y.value_per_cm), unit)
             .beside(second)
             .about(
-                "Coefficient of (v + ½)ᵏ [J(J + 1) − Λ²]ˡ: at the left fitted to E(v, J), at the right from the derivatives at rₑ to leading order [Dunham 1932].",
+                "Coefficient of (v + ½) to the power k times J(J + 1) − Λ² to the power l: at the left fitted to E(v, J), at the right from the derivatives at rₑ to leading order [Dunham 1932].",
             )
     };
     table.coefficients.iter().map(row).collect()

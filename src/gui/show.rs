@@ -21,22 +21,7 @@ impl RowUi for Row {
         let (rect, response) = ui.allocate_exact_size(vec2(ui.available_width(), look::ROW), Sense::hover());
         response.widget_info(|| WidgetInfo::labeled(egui::Role::Label, true, self.text()));
         let at = |fraction: f32| rect.left() + fraction * rect.width();
-        let value_right = at(if self.second.is_some() { 0.53 } else { 0.82 });
-        let painter = ui.painter();
-        let value = painter.layout_no_wrap(self.value.clone(), look::figures(look::SECONDARY), look.text);
-        let value_left = value_right - value.size().x;
-        painter.galley(pos2(value_left, rect.center().y - value.size().y / 2.0), value, look.text);
-        if let Some(second) = &self.second {
-            text_in(
-                ui,
-                pos2(at(0.82), rect.center().y),
-                Align2::RIGHT_CENTER,
-                second,
-                &look::figures(look::SECONDARY),
-                look.dim,
-            );
-        }
-        text_in(
+        let unit = text_in(
             ui,
             rect.right_center(),
             Align2::RIGHT_CENTER,
@@ -44,6 +29,21 @@ impl RowUi for Row {
             &look::plain(look::SECONDARY),
             look.dim,
         );
+        // Long numbers push those at their left on, never into each other.
+        let figures = |text: &str, color| {
+            ui.painter().layout_no_wrap(text.to_owned(), look::figures(look::SECONDARY), color)
+        };
+        let put = |galley: std::sync::Arc<egui::Galley>, right: f32, color| {
+            let left = right - galley.size().x;
+            ui.painter().galley(pos2(left, rect.center().y - galley.size().y / 2.0), galley, color);
+            left
+        };
+        let mut value_right = at(0.82).min(unit.left() - look::STEP);
+        if let Some(second) = &self.second {
+            let left = put(figures(second, look.dim), value_right, look.dim);
+            value_right = at(0.53).min(left - look::STEP);
+        }
+        let value_left = put(figures(&self.value, look.text), value_right, look.text);
         let room = value_left - rect.left() - look::STEP;
         elided(ui, rect.left_center(), room, &self.label, look::plain(look::BODY), look.text);
         if self.about.is_empty() { response } else { response.on_hover_text(&self.about) }
@@ -96,6 +96,34 @@ pub struct Column {
     pub unit: &'static str,
     /// What it is.
     pub about: &'static str,
+}
+
+/// The columns with their right edges where what stands in them needs them: the room that is left is shared out
+/// between them. None where there is too little room.
+pub fn fitted<const N: usize>(
+    ui: &Ui,
+    columns: &[Column; N],
+    rows: &[[String; N]],
+    width: f32,
+) -> Option<[Column; N]> {
+    let size = |text: &str, font: FontId| {
+        ui.painter().layout_no_wrap(text.to_owned(), font, Color32::PLACEHOLDER).size().x
+    };
+    let needed: [f32; N] = std::array::from_fn(|i| {
+        let head = [columns[i].name, columns[i].unit].map(|t| size(t, look::plain(look::SMALL)));
+        // Figures are all as wide as each other: the longest text is the widest.
+        let longest = rows.iter().map(|row| &row[i]).max_by_key(|cell| cell.chars().count());
+        let cells = longest.map_or(0.0, |cell| size(cell, look::figures(look::SECONDARY)));
+        head.into_iter().fold(cells, f32::max)
+    });
+    let gap = (width - needed.iter().sum::<f32>()) / (N - 1).max(1) as f32;
+    let mut right = 0.0;
+    (gap >= look::STEP).then(|| {
+        std::array::from_fn(|i| {
+            right += needed[i] + if i == 0 { 0.0 } else { gap };
+            Column { right: right / width, ..columns[i] }
+        })
+    })
 }
 
 /// The header of a table: names, and under them the units.

@@ -1,5 +1,7 @@
 //! The readable summary of a study on standard output.
 
+mod beyond;
+
 use crate::digits::{fixed, rounded, signed, with_uncertainty};
 use crate::estimate::Estimate;
 use crate::export::parameters::ParameterUnits;
@@ -25,6 +27,7 @@ pub fn summary(findings: &Findings, units: &ParameterUnits) -> String {
         reach(&mut text, findings);
         force_field(&mut text, findings, units);
         thermal(&mut text, findings);
+        beyond::beyond(&mut text, findings);
     }
     notices(&mut text, findings);
     in_ascii(&text)

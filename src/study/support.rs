@@ -11,7 +11,11 @@ pub fn fill(findings: &mut Findings, curve: &ScanCurve, mass_me: f64) {
     let settings = &findings.settings.levels;
     let depth = curve.tail_depth_hartree().unwrap_or(0.0);
     let (c_n, limit) = (settings.lean_c_n_fraction, settings.lean_asymptote_fraction);
-    let moved = |sign: f64| curve.with_asymptote_shifted(sign * limit * depth);
+    // A limit at or below the last point is none that the scan admits.
+    let moved = |sign: f64| {
+        let variant = curve.with_asymptote_shifted(sign * limit * depth)?;
+        variant.tail_depth_hartree().is_some().then_some(variant)
+    };
     let trials = [
         (format!("C_n * {}", 1.0 + c_n), curve.with_c_n_scaled(1.0 + c_n)),
         (format!("C_n * {}", 1.0 - c_n), curve.with_c_n_scaled(1.0 - c_n)),

@@ -60,12 +60,12 @@ fn rotation_is_summed_on_demand_with_the_ideal_gas_and_its_weights() {
     let mut window = open_sample();
     give(&mut window, Command::ShowPage(Page::Thermal));
     give(&mut window, Command::SetKelvin(1000.0));
-    let alone = figures(&window, "C_V");
-    assert!(window.query(by().role(Role::Label).label_contains("C_p ")).is_none());
+    let alone = figures(&window, "Cᵥ");
+    assert!(window.query(by().role(Role::Label).label_contains("Cₚ ")).is_none());
     window.get_by_role_and_label(Role::CheckBox, "with rotation").click();
     window.run();
     assert_eq!(state(&window).history.undo_name(), Some("change the thermal sums"));
-    let both = figures(&window, "C_V");
+    let both = figures(&window, "Cᵥ");
     const R: f64 = 8.314_462_618;
     // The stretching of a rotor, which a rigid one lacks, adds 4 D k_BT/B² R = 0.04 R with B = 7.51 and D = 8.6e-4 cm⁻¹
     // [Huber & Herzberg 1979]; the levels' own B(v) as much again.
@@ -76,7 +76,7 @@ fn rotation_is_summed_on_demand_with_the_ideal_gas_and_its_weights() {
         let text = node.accesskit_node().value().unwrap_or_default();
         text.trim_start_matches(row).split_whitespace().next().unwrap().parse().expect("a number")
     };
-    let capacity = value(&window, "C_p ");
+    let capacity = value(&window, "Cₚ ");
     assert!((capacity - both[0] - 2.5 * R).abs() < 2e-3, "{capacity}");
     let before = state(&window).study().expect("a study").findings.thermal_at(&[1000.0])[0].clone();
     let gas = before.rotating.and_then(|r| r.ideal_gas).expect("a gas");
@@ -94,7 +94,7 @@ fn rotation_is_summed_on_demand_with_the_ideal_gas_and_its_weights() {
     assert_eq!(state(&window).document.focused().expect("a curve").2.thermal.spin_weights, None);
     press(&mut window, "Undo");
     press(&mut window, "Undo");
-    assert_eq!(figures(&window, "C_V"), alone);
+    assert_eq!(figures(&window, "Cᵥ"), alone);
 }
 
 #[test]

@@ -7,6 +7,21 @@ fn number(value: &Value) -> f64 {
     value.as_f64().expect("a number")
 }
 
+/// What was asked for is in the summary too.
+#[test]
+fn the_summary_names_rotation_tails_and_isotopologues() {
+    let path = super::scan("h2_fci.csv");
+    let plain = [path.to_str().expect("UTF-8"), "--atoms", "1H,1H"];
+    let asked = ["--rotation", "0-3", "--tail-sensitivity", "--isotopologues", "2H,2H"];
+    let of = |arguments: &[&str]| String::from_utf8(super::study(arguments).stdout).expect("UTF-8");
+    let without = of(&plain);
+    let with = of(&[&plain[..], &asked].concat());
+    for needle in ["levels with J from 1 to 3", "Moving the tail", "Isotopologues on the same curve", "2H 2H"]
+    {
+        assert!(with.contains(needle) && !without.contains(needle), "{needle}\n{with}");
+    }
+}
+
 /// LiH with rotation, other isotopes and its dipole columns. Reduced masses and isotopes: AME2020.
 #[test]
 fn rotation_isotopes_and_properties_of_lithium_hydride() {

@@ -154,7 +154,10 @@ fn axis(layout: &Layout, frame: &Frame, (from, to): (i32, i32)) -> Vec<Item> {
         let ends = vec![[x, frame.top], [x, frame.bottom]];
         items.push(line(ends, layout.solid(layout.palette.grid, 0.8), 1.0));
         if (power - from) % every == 0 {
-            let text = if power < 0 {
+            let text = if from < -3 || to > 4 {
+                let sign = if power < 0 { "⁻" } else { "" };
+                format!("10{sign}{}", number::superscript(power.unsigned_abs()))
+            } else if power < 0 {
                 crate::digits::fixed(10f64.powi(power), power.unsigned_abs() as usize)
             } else {
                 number::fixed(10f64.powi(power), 0)

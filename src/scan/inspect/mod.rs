@@ -128,7 +128,7 @@ fn broken(found: &Break, r: &[f64]) -> Notice {
                 "beyond, the curve runs above the inner branch continued: it follows a higher state"
             };
             let text = format!(
-                "{between} the curve has a kink, near {:.4} angstrom: its slope changes by {} cm-1/angstrom; {side}, or                  the calculation has changed there. Restrict the scan to one branch, or compute one state throughout.",
+                "{between} the curve has a kink, near {:.4} angstrom: its slope changes by {} cm-1/angstrom; {side}, or the calculation has changed there. Restrict the scan to one branch, or compute one state throughout.",
                 to_angstrom(crossing),
                 rounded(change, 3)
             );
@@ -137,7 +137,7 @@ fn broken(found: &Break, r: &[f64]) -> Notice {
         None => {
             let lower = if found.shift_hartree < 0.0 { "lower" } else { "higher" };
             let text = format!(
-                "{between} the curve jumps: the outer branch lies {} cm-1 {lower} than the inner one continued.                  Another state, or another solution of the calculation, begins there. Restrict the scan to one branch,                  or compute one state throughout.",
+                "{between} the curve jumps: the outer branch lies {} cm-1 {lower} than the inner one continued. Another state, or another solution of the calculation, begins there. Restrict the scan to one branch, or compute one state throughout.",
                 rounded(to_per_cm(found.shift_hartree.abs()), 3)
             );
             Notice::caution(Code::Jump, text).at([from, to])

@@ -56,7 +56,10 @@ fn tail_ui(ui: &mut Ui, state: &State, findings: &Findings, out: &mut Vec<Comman
     }
     let on = findings.settings.levels.tail_sensitivity;
     if on && support.is_some_and(|s| s.sensitivity.is_empty()) {
-        show::note(ui, "This curve has no tail that could be moved: it ends in a wall.");
+        show::note(
+            ui,
+            "Nothing to move: the curve ends in a wall, or the scan comes nearer to its limit than the move.",
+        );
     }
     ui.add_space(4.0);
     command_button(ui, state, Command::SetTailSensitivity(!on), ButtonForm::Framed, out);

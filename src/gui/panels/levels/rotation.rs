@@ -85,6 +85,6 @@ fn dunham_ui(ui: &mut Ui, findings: &Findings) {
     }
     let rms = number::significant(table.rms_residual_per_cm, 2);
     Row::new(format!("rms over {} levels", table.levels), rms, "")
-        .about("E(v, J) = Σ Yₖₗ (v + ½)ᵏ [J(J + 1) − Λ²]ˡ, least squares with equal weights: the errors measure the terms left out.")
+        .about("E(v, J) = Σ Yₖₗ times (v + ½) to the power k and J(J + 1) − Λ² to the power l, least squares with equal weights: the errors measure the terms left out.")
         .ui(ui);
 }

@@ -50,7 +50,22 @@ pub(super) fn table_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<
     }
     ui.spacing_mut().item_spacing.y = 0.0;
     let width = ui.available_width() - 10.0;
-    columns_ui(ui, width, if turning.is_some() { &TURNING } else { &COLUMNS });
+    let plain = if turning.is_some() { &TURNING } else { &COLUMNS };
+    let without = |level: &Level| turning.and_then(|_| findings.levels.get(level.v));
+    let cells = |brief: bool| -> Vec<[String; 5]> {
+        levels.iter().map(|level| cells(level, without(level), brief)).collect()
+    };
+    // In a narrow panel the errors are left to the text on hover.
+    let full = cells(false);
+    let (rows, columns) = match show::fitted(ui, plain, &full, width) {
+        Some(columns) => (full, columns),
+        None => {
+            let brief = cells(true);
+            let columns = show::fitted(ui, plain, &brief, width).unwrap_or(*plain);
+            (brief, columns)
+        }
+    };
+    columns_ui(ui, width, &columns);
     let leaning = levels.iter().any(|l| l.leans_on_tail);
     let mut hovered = None;
     let roomy = turning.is_none() && ui.available_height() > densities::HEIGHT + 8.0 * ROW;
@@ -60,10 +75,9 @@ pub(super) fn table_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<
         .id_salt("levels")
         .auto_shrink([false, turning.is_some()])
         .max_height((ui.available_height() - foot).max(3.0 * ROW))
-        .show_rows(ui, ROW, levels.len(), |ui, rows| {
-            for level in &levels[rows] {
-                let without = turning.and_then(|_| findings.levels.get(level.v));
-                let response = level_ui(ui, state, level, without, width);
+        .show_rows(ui, ROW, levels.len(), |ui, seen| {
+            for (level, cells) in levels[seen.clone()].iter().zip(&rows[seen]) {
+                let response = level_ui(ui, state, level, (cells, &columns), width);
                 if response.hovered() {
                     hovered = Some(level.v);
                 }
@@ -91,12 +105,29 @@ pub(super) fn table_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<
     }
 }
 
-/// A row; beside the level with rotation stands the one without.
+/// The energy with its error.
+fn energy(level: &Level) -> String {
+    number::with_error_capped(level.energy_per_cm, level.energy_error_per_cm, 2)
+}
+
+/// What stands in a row; beside the level with rotation stands the one without. `brief`: no error.
+fn cells(level: &Level, without: Option<&Level>, brief: bool) -> [String; 5] {
+    let third = without.map_or(level.minus_harmonic_per_cm, |w| level.energy_per_cm - w.energy_per_cm);
+    [
+        level.v.to_string(),
+        if brief { number::fixed(level.energy_per_cm, 2) } else { energy(level) },
+        number::signed(third, if third.abs() < 1e3 { 2 } else { 1 }),
+        number::fixed(level.b_v_per_cm, if level.b_v_per_cm < 10.0 { 4 } else { 3 }),
+        level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1)),
+    ]
+}
+
+/// A row.
 fn level_ui(
     ui: &mut Ui,
     state: &State,
     level: &Level,
-    without: Option<&Level>,
+    (cells, columns): (&[String; 5], &[Column; 5]),
     width: f32,
 ) -> egui::Response {
     let look = Look::of(ui);
@@ -105,16 +136,7 @@ fn level_ui(
     if shown || response.hovered() || response.has_focus() {
         ui.painter().rect_filled(rect.expand2(vec2(4.0, 0.0)), 4.0, look.raised);
     }
-    let third = without.map_or(level.minus_harmonic_per_cm, |w| level.energy_per_cm - w.energy_per_cm);
-    let energy = number::with_error_capped(level.energy_per_cm, level.energy_error_per_cm, 2);
-    let cells = [
-        level.v.to_string(),
-        energy.clone(),
-        number::signed(third, if third.abs() < 1e3 { 2 } else { 1 }),
-        number::fixed(level.b_v_per_cm, if level.b_v_per_cm < 10.0 { 4 } else { 3 }),
-        level.inside_reach.map_or_else(|| number::NONE.to_owned(), |p| number::percent(p, 1)),
-    ];
-    for (i, (cell, column)) in cells.iter().zip(&COLUMNS).enumerate() {
+    for (i, (cell, column)) in cells.iter().zip(columns).enumerate() {
         let color = match i {
             0 if shown => look.accent,
             2 if level.j > 0 => look.rotation,
@@ -132,7 +154,7 @@ fn level_ui(
     let lean = if level.leans_on_tail { ", leans on the tail" } else { "" };
     response.widget_info(|| {
         let j = if level.j > 0 { format!(", J = {}", level.j) } else { String::new() };
-        let words = format!("Level v = {}{j}: {energy} cm⁻¹{lean}", level.v);
+        let words = format!("Level v = {}{j}: {} cm⁻¹{lean}", level.v, energy(level));
         WidgetInfo::selected(egui::Role::Button, true, shown, words)
     });
     response

@@ -79,7 +79,7 @@ pub(super) fn ideal_gas_ui(
         Some(gas) => {
             let [capacity, entropy] =
                 [gas.heat_capacity_joule_per_mole_kelvin, gas.entropy_joule_per_mole_kelvin];
-            Row::new("C_p", number::fixed(capacity, 3), "J/(mol K)").about("C_V + 5R/2.").ui(ui);
+            Row::new("Cₚ", number::fixed(capacity, 3), "J/(mol K)").about("Cᵥ + 5R/2.").ui(ui);
             Row::new("S", number::fixed(entropy, 3), "J/(mol K)")
                 .about(
                     "With translation [Sackur 1911, Tetrode 1912], without nuclear spin as tables have it.",
