@@ -64,27 +64,11 @@ fn short(hartree: Option<f64>) -> String {
     };
     if value >= 1e5 || (value > 0.0 && value < 1e-3) {
         let power = value.log10().floor();
-        let raised: String = format!("{power:.0}").chars().map(superscript).collect();
-        return format!("{}·10{raised}", crate::digits::fixed(value / 10f64.powf(power), 0));
+        let sign = if power < 0.0 { "⁻" } else { "" };
+        let raised = number::superscript(power.abs() as u32);
+        return format!("{}·10{sign}{raised}", crate::digits::fixed(value / 10f64.powf(power), 0));
     }
     crate::digits::rounded(value, if value.abs() < 0.01 { 2 } else { 3 })
-}
-
-const fn superscript(c: char) -> char {
-    match c {
-        '-' => '⁻',
-        '0' => '⁰',
-        '1' => '¹',
-        '2' => '²',
-        '3' => '³',
-        '4' => '⁴',
-        '5' => '⁵',
-        '6' => '⁶',
-        '7' => '⁷',
-        '8' => '⁸',
-        '9' => '⁹',
-        other => other,
-    }
 }
 
 fn row_ui(ui: &mut Ui, label: &str, fit: &Compared) {

@@ -47,6 +47,7 @@ pub(super) fn table_ui(ui: &mut Ui, state: &State, study: &Study, out: &mut Vec<
     let levels = turning.map_or(&findings.levels, |r| &r.levels);
     if turning.is_none() && state.view.j > 0 {
         show::note(ui, "There are no levels with this J: rotation begins at J = Λ.");
+        return;
     }
     ui.spacing_mut().item_spacing.y = 0.0;
     let width = ui.available_width() - 10.0;
