@@ -238,6 +238,14 @@ fn ordinates(
     Some((centre - half, centre + half))
 }
 
+/// An estimate with half the relative spread over the plateau beside its own error: a fit knows nothing of what the
+/// choice of its window does.
+fn widened(estimate: Estimate, spread: f64) -> Estimate {
+    let by_window = 0.5 * spread * estimate.value.abs();
+    let error = estimate.std_error.map_or(by_window, |own| own.hypot(by_window));
+    Estimate { std_error: Some(error), ..estimate }
+}
+
 fn sentence(study: &WindowStudy, plateau: Option<&Plateau>) -> String {
     let Some((plateau, fit)) = plateau.zip(study.proposal()) else {
         return "No plateau: the curvature of every model changes with the window by more than 2 %."
@@ -245,10 +253,10 @@ fn sentence(study: &WindowStudy, plateau: Option<&Plateau>) -> String {
     };
     let numbers = fit.numbers.as_ref().ok();
     let what = match numbers.and_then(|n| n.omega_e_per_cm) {
-        Some(omega) => format!("ωₑ = {} cm⁻¹", number::estimate(&omega, 2)),
+        Some(omega) => format!("ωₑ = {} cm⁻¹", number::estimate(&widened(omega, plateau.spread), 2)),
         None => {
             let k = numbers.and_then(k_of).unwrap_or(Estimate::exact(f64::NAN));
-            format!("k = {} N/m", number::estimate(&k, 2))
+            format!("k = {} N/m", number::estimate(&widened(k, 2.0 * plateau.spread), 2))
         }
     };
     let half = |r: f64| number::fixed(to_angstrom(r), 3);
@@ -268,6 +276,14 @@ mod tests {
     use super::*;
     use crate::fit::window_study::WindowStudySettings;
     use crate::settings::Settings;
+
+    /// 3 and 4 make 5: the error of the fit and half of the spread.
+    #[test]
+    fn the_error_told_counts_the_spread_over_the_plateau() {
+        let own = Estimate::with_error(1000.0, 3.0, crate::estimate::ErrorSource::Fit);
+        assert!((widened(own, 0.008).std_error.unwrap() - 5.0).abs() < 1e-12);
+        assert!((widened(Estimate::exact(1000.0), 0.008).std_error.unwrap() - 4.0).abs() < 1e-12);
+    }
 
     fn pictured(text: &str, name: &str, atoms: &str) -> WindowPicture {
         let scan = crate::scan::read::read_scan(name, text.as_bytes(), &Default::default()).unwrap();
