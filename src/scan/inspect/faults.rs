@@ -29,6 +29,9 @@ const STILL_A_BREAK: Limits = Limits { worst: 0.4, usual: 1.0 };
 /// Faults smaller than this (hartree, 0.002 cm⁻¹) are below what calculations are converged to (common
 /// practice, no source) and are left to the noise.
 const NEGLIGIBLE_HARTREE: f64 = 1e-8;
+/// A break smaller than this (0.02 cm⁻¹) parts no two states and no two solutions: where points stand coarse on a steep
+/// wall, windows of few points see as much where there is none.
+const NEGLIGIBLE_BREAK_HARTREE: f64 = 1e-7;
 /// Scatter below this is rounding (hartree).
 const ROUNDING_HARTREE: f64 = 1e-12;
 /// Scans longer than this are judged in one abscissa and one width, and after the first round only around
@@ -251,7 +254,7 @@ fn suspects(
         let Some(worst) = case.worst() else { continue };
         let found = as_break(&r, segment, case.at, worst.suited, worst.kink);
         let size = found.shift_hartree.abs().max(worst.suited.size[1].abs());
-        if size > NEGLIGIBLE_HARTREE && chance(case, worse) < CHANCE {
+        if size > NEGLIGIBLE_BREAK_HARTREE && chance(case, worse) < CHANCE {
             suspects.push(Suspect { fault: Fault::Break(found), at: case.at, ratio: case.usual() });
         }
     }
