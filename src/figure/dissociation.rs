@@ -22,16 +22,9 @@ pub fn birge_sponer_figure(findings: &Findings) -> Option<(Figure, Bounds)> {
     let line = |x: f64| a - b * (x + 0.5);
     let last = points.len() as f64;
     let end = found.extrapolated_limit_per_cm.map_or(last, |_| a / b - 0.5);
-    let plain = |role, label: &str, about: &str, shape| Series {
-        role,
-        label: label.to_owned(),
-        about: about.to_owned(),
-        strong: None,
-        shape,
-    };
     // An extrapolation that goes on for ever is not followed.
     let shown = end.clamp(0.0, 3.0 * last.max(1.0));
-    let mut series = vec![plain(
+    let mut series = vec![Series::plain(
         Role::Tolerance,
         "straight line",
         "Least squares through the spacings between levels that lean on no tail, extrapolated to zero: its area is \
@@ -39,14 +32,14 @@ pub fn birge_sponer_figure(findings: &Findings) -> Option<(Figure, Bounds)> {
         Shape::Line(vec![[0.0, line(0.0)], [shown, line(shown)]]),
     )];
     if !leaning.is_empty() {
-        series.push(plain(
+        series.push(Series::plain(
             Role::Proposal,
             "lean on the tail",
             "Spacings of levels that would move if the curve beyond the scan did.",
             Shape::Points(leaning.to_vec()),
         ));
     }
-    series.push(plain(
+    series.push(Series::plain(
         Role::Scanned,
         "spacings",
         "E(v + 1) − E(v) of the levels of the curve.",
@@ -55,7 +48,7 @@ pub fn birge_sponer_figure(findings: &Findings) -> Option<(Figure, Bounds)> {
     let top = points.iter().map(|p| p[1]).fold(line(0.0), f64::max);
     let law_end = findings.near_dissociation.as_ref().map(|law| law.v_at_limit + 0.5);
     if let Some(x) = law_end.filter(|x| x.is_finite()) {
-        series.push(plain(
+        series.push(Series::plain(
             Role::ZeroPoint,
             "limit by the tail",
             "Where the levels end by the law of the inverse-power tail (R. J. Le Roy, R. B. Bernstein 1970).",

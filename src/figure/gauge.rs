@@ -182,26 +182,19 @@ fn reach(findings: &Findings, curve: &ScanCurve, measure: GaugeMeasure) -> Vec<S
     let Some(reach) = findings.reach.as_ref() else { return Vec::new() };
     let r_e = curve.r_e_bohr.value;
     let end = |x: Option<f64>| x.map(|x| to_angstrom(r_e + x));
-    let plain = |role, label: &str, about: String, shape| Series {
-        role,
-        label: label.to_owned(),
-        about,
-        strong: None,
-        shape,
-    };
     let interval = measure.interval(reach);
     let mut series = vec![
-        plain(
+        Series::plain(
             Role::Reach,
             "reach",
             "Between the two crossings of the deviation with the tolerance.".to_owned(),
             Shape::Band(end(interval.x_minus_bohr), end(interval.x_plus_bohr)),
         ),
-        plain(Role::Zero, "no deviation", String::new(), Shape::Level(0.0)),
+        Series::plain(Role::Zero, "no deviation", String::new(), Shape::Level(0.0)),
     ];
     for tolerance in measure.tolerance(reach).into_iter().flat_map(|t| [t, -t]) {
         let about = "The tolerance of the reach.".to_owned();
-        series.push(plain(Role::Tolerance, "tolerance", about, Shape::Level(tolerance)));
+        series.push(Series::plain(Role::Tolerance, "tolerance", about, Shape::Level(tolerance)));
     }
     if measure == GaugeMeasure::ForcePerCmAngstrom
         && let Some(k) = curve.derivatives_hartree[0].map(|e| e.value)
@@ -213,7 +206,7 @@ fn reach(findings: &Findings, curve: &ScanCurve, measure: GaugeMeasure) -> Vec<S
                 [to_angstrom(r), sign * to_per_cm(allowed) / ANGSTROM_PER_BOHR]
             };
             let about = "τ |k x|: the tolerance grows with the displacement.".to_owned();
-            series.push(plain(
+            series.push(Series::plain(
                 Role::Tolerance,
                 "tolerance",
                 about,
@@ -222,7 +215,7 @@ fn reach(findings: &Findings, curve: &ScanCurve, measure: GaugeMeasure) -> Vec<S
         }
     }
     if let Some(amplitude) = reach.zero_point_amplitude_bohr {
-        series.push(plain(
+        series.push(Series::plain(
             Role::ZeroPoint,
             "zero-point amplitude",
             format!(

@@ -161,6 +161,13 @@ pub struct Series {
     pub shape: Shape,
 }
 
+impl Series {
+    /// One that is at full strength everywhere.
+    pub fn plain(role: Role, label: &str, about: impl Into<String>, shape: Shape) -> Self {
+        Self { role, label: label.to_owned(), about: about.into(), strong: None, shape }
+    }
+}
+
 /// An axis.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Axis {

@@ -92,20 +92,14 @@ impl<'a> Lines<'a> {
 
     /// The band up to the temperature reach, and the tolerance at either side of zero.
     fn tolerance(&self, limit: Option<f64>, about: &str) -> Vec<Series> {
-        let plain = |role, label: &str, about: &str, shape| Series {
-            role,
-            label: label.to_owned(),
-            about: about.to_owned(),
-            strong: None,
-            shape,
-        };
         let looked = self.findings.reach.as_ref().and_then(|r| r.temperature_kelvin.looked_up_to);
-        let band = limit.or(looked).map(|t| plain(Role::Reach, "reach", about, Shape::Band(None, Some(t))));
+        let band =
+            limit.or(looked).map(|t| Series::plain(Role::Reach, "reach", about, Shape::Band(None, Some(t))));
         band.into_iter()
             .chain([
-                plain(Role::Zero, "no deviation", NUMERICAL, Shape::Level(0.0)),
-                plain(Role::Tolerance, "tolerance", about, Shape::Level(WITHIN_PERCENT)),
-                plain(Role::Tolerance, "tolerance", about, Shape::Level(-WITHIN_PERCENT)),
+                Series::plain(Role::Zero, "no deviation", NUMERICAL, Shape::Level(0.0)),
+                Series::plain(Role::Tolerance, "tolerance", about, Shape::Level(WITHIN_PERCENT)),
+                Series::plain(Role::Tolerance, "tolerance", about, Shape::Level(-WITHIN_PERCENT)),
             ])
             .collect()
     }

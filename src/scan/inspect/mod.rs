@@ -63,8 +63,8 @@ pub fn inspect(points: &[InspectedPoint], kept: &[usize]) -> Inspection {
     found.notices.extend(faults.breaks.iter().map(|b| broken(b, &r)));
     if let Some(noise) = found.noise_hartree.filter(|n| *n > ROUNDING_HARTREE) {
         let text = format!(
-            "The energies carry a noise of about {:.1e} cm-1 ({noise:.1e} hartree); it enters the standard errors.",
-            to_per_cm(noise)
+            "The energies carry a noise of about {} cm-1 ({noise:.1e} hartree); it enters the standard errors.",
+            rounded(to_per_cm(noise), 2)
         );
         found.notices.push(Notice::info(Code::Noise, text));
     }
